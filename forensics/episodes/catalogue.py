@@ -1,0 +1,104 @@
+"""Episodes, groups and causes as the report and the exports see them."""
+
+from __future__ import annotations
+
+import enum
+from dataclasses import dataclass
+
+from forensics.estimate import Estimate
+
+
+class Kind(enum.StrEnum):
+    """What an episode is."""
+
+    BUCKLING = "buckling"
+    LOCKUP = "lockup"
+    DRAG = "drag"
+    TORQUE = "torque"
+
+
+class State(enum.StrEnum):
+    """Worst state of the string in an episode."""
+
+    NONE = "none"
+    SINUSOIDAL = "sinusoidal"
+    HELICAL = "helical"
+
+
+class Consequence(enum.StrEnum):
+    """What an episode led to."""
+
+    NONE = "none"
+    WEIGHT_LOST = "weight_lost"
+    LOCKED_UP = "locked_up"
+    ROTATED_BUCKLED = "rotated_buckled"
+
+
+@dataclass(frozen=True)
+class Evidence:
+    """A named measurement for or against a cause; `weight` > 0 supports it, < 0 speaks against it."""
+
+    name: str
+    text: str
+    weight: float
+    origin: str
+
+
+@dataclass(frozen=True)
+class CauseView:
+    """One cause weighed for one episode."""
+
+    cause: str
+    probability: float
+    evidence: tuple[Evidence, ...] = ()
+
+
+@dataclass(frozen=True)
+class Episode:
+    """One episode; times in s since 1970 UTC, depths in m, forces in N, SI throughout.
+
+    `first` and `last` are row numbers in the log (inclusive); `peak` the row of the peak load ratio
+    (of the largest residual for drag and torque).
+    """
+
+    id: str
+    kind: Kind
+    state: State
+    start: float
+    end: float
+    first: int
+    last: int
+    peak: int
+    activity: str
+    top_md: float
+    bottom_md: float
+    peak_md: float
+    peak_load_ratio: Estimate
+    peak_compression: Estimate
+    lost_weight: Estimate
+    lost_to_buckling: Estimate
+    probability: float
+    consequence: Consequence
+    family: str = ""
+    cause: str = ""
+    note: str = ""
+    causes: tuple[CauseView, ...] = ()
+
+    @property
+    def duration(self) -> float:
+        """Length in time [s]."""
+        return self.end - self.start
+
+
+@dataclass(frozen=True)
+class Family:
+    """A group of like episodes: its name, what its members share in words, and how stable it is.
+
+    `stability` is the mean agreement of the group under resampling, 0 to 1 (NaN where groups were
+    made by rule and no resampling applies).
+    """
+
+    name: str
+    description: str
+    members: tuple[str, ...]
+    stability: float

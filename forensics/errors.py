@@ -1,0 +1,76 @@
+"""Refusals: what came, what was expected, and what to do about it."""
+
+from __future__ import annotations
+
+import difflib
+from collections.abc import Iterable
+from pathlib import Path
+
+
+class TallybackError(Exception):
+    """Base of every error the program raises on purpose."""
+
+
+class InputError(TallybackError):
+    """The input can't be used; the message says where, what came and what is needed.
+
+    Parameters
+    ----------
+    message : str
+        What was found, what was expected and what to do.
+    file : Path or str, optional
+        The file at fault.
+    line : int, optional
+        Line number, counted from 1.
+    column : str or int, optional
+        Column name or number.
+    """
+
+    def __init__(
+        self,
+        message: str,
+        *,
+        file: Path | str | None = None,
+        line: int | None = None,
+        column: str | int | None = None,
+    ) -> None:
+        self.message = message
+        self.file = file
+        self.line = line
+        self.column = column
+        super().__init__(self.text)
+
+    @property
+    def text(self) -> str:
+        """The message with its place in front."""
+        place = [str(self.file)] if self.file is not None else []
+        if self.line is not None:
+            place.append(f"line {self.line}")
+        if self.column is not None:
+            place.append(f"column {self.column!r}")
+        return f"{', '.join(place)}: {self.message}" if place else self.message
+
+
+class CaseError(InputError):
+    """The case file is wrong."""
+
+
+class LogError(InputError):
+    """A log can't be used."""
+
+
+class TableError(InputError):
+    """A survey, hole, string or mud table can't be used."""
+
+
+class UnitError(InputError):
+    """A unit is unknown, absent, or not one for its quantity."""
+
+
+def nearest(word: str, known: Iterable[str]) -> str:
+    """A clause naming the known word nearest to `word`, or all of them where none is near."""
+    names = list(known)
+    close = difflib.get_close_matches(word, names, n=1, cutoff=0.6)
+    if close:
+        return f"did you mean {close[0]!r}?"
+    return f"known are: {', '.join(sorted(names))}"

@@ -1,0 +1,1 @@
+"""The jobs a user runs, built from the library."""
