@@ -1,0 +1,125 @@
+"""The case file as frozen objects, every number in SI."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from pathlib import Path
+
+
+@dataclass(frozen=True)
+class ChannelChoice:
+    """A column the user named for a channel, with a unit where the file gives none."""
+
+    column: str
+    unit: str | None = None
+
+
+@dataclass(frozen=True)
+class LogSettings:
+    """`[logs]`: files in the order given; zone for stamps that carry none."""
+
+    time: tuple[Path, ...]
+    depth: tuple[Path, ...] = ()
+    timezone: str = "UTC"
+    channels: Mapping[str, ChannelChoice] = field(default_factory=dict)
+
+
+@dataclass(frozen=True)
+class TieIn:
+    """Where the survey starts [m, rad, rad]."""
+
+    md: float
+    inclination: float
+    azimuth: float
+
+
+@dataclass(frozen=True)
+class FluidSettings:
+    """`[fluid]`: outside density [kg/m3] or a file; inside density where it differs."""
+
+    density: float | None = None
+    file: Path | None = None
+    density_inside: float | None = None
+
+
+@dataclass(frozen=True)
+class RigSettings:
+    """`[rig]`: block weight [N], lines strung, efficiency per sheave, whether hookload has the block in it."""
+
+    block_weight: float | None = None
+    lines: int | None = None
+    sheave_efficiency: float | None = None
+    hookload_includes_block: bool = True
+
+
+@dataclass(frozen=True)
+class FrictionSettings:
+    """`[friction]`: what to assume before, or instead of, calibration (None: the program's own default)."""
+
+    cased: float | None = None
+    open: float | None = None
+    fixed: bool = False
+
+
+@dataclass(frozen=True)
+class CriteriaSettings:
+    """`[criteria]`: thresholds and episode rules [s]."""
+
+    helical_onset: str = "chen"
+    helical_release: str = "unbuckled"
+    clearance: str = "tool_joint"
+    bridge_gap: float = 60.0
+    minimum_duration: float = 20.0
+
+
+@dataclass(frozen=True)
+class LimitSettings:
+    """`[limits]`: what the report checks margins against [N, N, N.m, N]; None where not given."""
+
+    hookload: float | None = None
+    overpull: float | None = None
+    torque: float | None = None
+    wob: float | None = None
+    pipe_class: str | None = None
+
+
+@dataclass(frozen=True)
+class RecordSettings:
+    """`[records]`: hand-kept tables."""
+
+    weights: Path | None = None
+    slides: Path | None = None
+    verdicts: Path | None = None
+
+
+@dataclass(frozen=True)
+class Case:
+    """One run of one string in one hole section, as its case file states it."""
+
+    path: Path
+    id: str
+    title: str
+    logs: LogSettings
+    survey: Path
+    hole: Path
+    string: Path
+    fluid: FluidSettings
+    tie_in: TieIn | None = None
+    rig: RigSettings = field(default_factory=RigSettings)
+    friction: FrictionSettings = field(default_factory=FrictionSettings)
+    criteria: CriteriaSettings = field(default_factory=CriteriaSettings)
+    limits: LimitSettings = field(default_factory=LimitSettings)
+    records: RecordSettings = field(default_factory=RecordSettings)
+    well: str | None = None
+    field_name: str | None = None
+    rig_name: str | None = None
+    section: str | None = None
+    mud_system: str | None = None
+    notes: str | None = None
+    campaign: str | None = None
+
+
+def load_case(path: Path) -> Case:
+    """Read a case file."""
+    raise RuntimeError(path)

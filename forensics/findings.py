@@ -1,0 +1,48 @@
+"""Everything one run's analysis found: what the report describes and the exports write."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+
+from forensics.case import Case
+from forensics.episodes.catalogue import Episode, Family
+from forensics.friction.result import Calibration
+from forensics.loads import Fan, LoadHistory, Profile
+from forensics.logs.table import TimeLog
+from forensics.rig.view import RigView
+from forensics.well.model import Well
+
+
+@dataclass(frozen=True)
+class Headline:
+    """The finding in words: one sentence, its support, what the data can't tell."""
+
+    sentence: str
+    confidence: str
+    details: tuple[str, ...] = ()
+    can_not_tell: tuple[str, ...] = ()
+
+
+@dataclass(frozen=True)
+class Findings:
+    """All that one incident run found.
+
+    `profiles` maps an episode id to the load profile at that episode's peak; `dropped` counts what the
+    episode rules set aside, by reason; `inputs` maps a file's name to its SHA-256.
+    """
+
+    case: Case
+    log: TimeLog
+    well: Well
+    rig: RigView
+    calibration: Calibration
+    loads: LoadHistory
+    fan: Fan
+    episodes: tuple[Episode, ...]
+    families: tuple[Family, ...]
+    profiles: Mapping[str, Profile]
+    headline: Headline
+    dropped: Mapping[str, int] = field(default_factory=dict)
+    inputs: Mapping[str, str] = field(default_factory=dict)
+    warnings: tuple[str, ...] = ()
