@@ -1,0 +1,126 @@
+"""Compiled marches along the string; scalar code, no Python objects.
+
+Sign: tension positive, `sigma` +1 while the string moves or tends to move down, -1 up.
+Going up the string dT/dx = w cos I - sigma mu N, with N the contact force per length.
+Each element takes its direction at its middle and its tension at its middle too, the latter carried on
+from the slope of the element before: second order along smooth stretches at one root an element.
+"""
+
+from __future__ import annotations
+
+from typing import NamedTuple
+
+import numpy as np
+from numba import njit
+
+Array = np.ndarray
+
+
+class Hole(NamedTuple):
+    """Columns of `HoleGrid`, for compiled code."""
+
+    inv_step: float
+    cos_i: Array
+    sin2: Array
+    kappa2: Array
+    kappa_d: Array
+    diameter: Array
+
+
+class Pipe(NamedTuple):
+    """Columns of `PipeGrid`, for compiled code."""
+
+    x: Array
+    node: Array
+    weight: Array
+    ei: Array
+    ea: Array
+    clearance_od: Array
+    radius: Array
+
+
+@njit(cache=True, inline="always")
+def contact(tension: float, weight: float, kappa2: float, kappa_d: float, sin2: float) -> float:
+    """Contact force per length of unbuckled pipe [N/m]."""
+    square = tension * (tension * kappa2 + 2.0 * weight * kappa_d) + weight * weight * sin2
+    return np.sqrt(max(square, 0.0))
+
+
+@njit(cache=True)
+def top_element(x: Array, bit: float) -> int:
+    """Row of the element that reaches through the rotary table, for a bit at depth `bit` [m]."""
+    return min(max(np.searchsorted(x, bit, side="left") - 1, 0), len(x) - 2)
+
+
+@njit(cache=True, error_model="numpy")
+def march_up(
+    hole: Hole, pipe: Pipe, mu: Array, bit: float, sigma: float, tension_bit: float, helical: float,
+    out: Array, scale: float,
+) -> float:
+    """Tension at the rotary from the tension at the bit; fills `out` with tension at the nodes [N].
+
+    `helical` is the multiple of the Dawson-Paslay load above which an element carries the contact of a
+    helix (infinite: never); `scale` multiplies all weights, where the mud has changed.
+    """
+    top = top_element(pipe.x, bit)
+    first = int(bit * hole.inv_step + 0.5)
+    tension = tension_bit
+    out[0] = tension
+    slope = 0.0
+    for j in range(top + 1):
+        length = min(pipe.x[j + 1], bit) - pipe.x[j]
+        i = max(first - ((pipe.node[j] + pipe.node[j + 1]) >> 1), 0)
+        weight = pipe.weight[j] * scale
+        middle = tension + 0.5 * length * slope
+        force = contact(middle, weight, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i])
+        if middle < 0.0 and helical < 1e9:
+            gap = max(0.5 * (hole.diameter[i] - pipe.clearance_od[j]), 2e-3)
+            if middle * middle > helical * helical * 4.0 * pipe.ei[j] * force / gap:
+                force += gap * middle * middle / (4.0 * pipe.ei[j])
+        slope = weight * hole.cos_i[i] - sigma * mu[i] * force
+        tension += slope * length
+        out[j + 1] = tension
+    return tension
+
+
+@njit(cache=True, error_model="numpy")
+def torque_up(
+    hole: Hole, pipe: Pipe, mu: Array, bit: float, tension_bit: float, scale: float
+) -> float:
+    """Torque at the rotary that turns the string off bottom or on, bit torque left out [N.m]."""
+    top = top_element(pipe.x, bit)
+    first = int(bit * hole.inv_step + 0.5)
+    tension = tension_bit
+    torque = 0.0
+    for j in range(top + 1):
+        length = min(pipe.x[j + 1], bit) - pipe.x[j]
+        i = max(first - ((pipe.node[j] + pipe.node[j + 1]) >> 1), 0)
+        weight = pipe.weight[j] * scale
+        slope = weight * hole.cos_i[i]
+        force = contact(
+            tension + 0.5 * length * slope, weight, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i]
+        )
+        tension += slope * length
+        torque += mu[i] * force * pipe.radius[j] * length
+    return torque
+
+
+@njit(cache=True)
+def march_up_many(
+    hole: Hole, pipe: Pipe, mu: Array, bits: Array, sigma: Array, helical: float, scale: Array
+) -> Array:
+    """String weight at the rotary for many bit depths, bit free [N]."""
+    result = np.empty(len(bits))
+    work = np.empty(len(pipe.x))
+    for k in range(len(bits)):
+        result[k] = march_up(hole, pipe, mu, bits[k], sigma[k], 0.0, helical, work, scale[k])
+    return result
+
+
+@njit(cache=True)
+def torque_up_many(hole: Hole, pipe: Pipe, mu: Array, bits: Array, scale: Array) -> Array:
+    """Off-bottom rotating torque for many bit depths [N.m]."""
+    result = np.empty(len(bits))
+    for k in range(len(bits)):
+        result[k] = torque_up(hole, pipe, mu, bits[k], 0.0, scale[k])
+    return result

@@ -1,0 +1,109 @@
+"""What the string should weigh and how hard it should turn off bottom, by the soft-string model."""
+
+from __future__ import annotations
+
+import numpy as np
+from numpy.typing import ArrayLike, NDArray
+
+from forensics.mechanics import kernels_march as kernels
+from forensics.mechanics.grid import HoleGrid, PipeGrid, hole_grid, pipe_grid
+from forensics.well.model import Well
+
+Floats = NDArray[np.float64]
+
+SIGMA = {"pick_up": -1.0, "slack_off": 1.0, "rotating": 0.0}
+
+
+class OffBottomModel:
+    """String weight and torque off bottom, for many depths at once.
+
+    Parameters
+    ----------
+    well : Well
+        Trajectory, hole, string and fluid.
+    depth : float
+        Deepest bit depth that will be asked for [m].
+    clearance : str
+        "tool_joint" or "body": the diameter clearance is taken from.
+    helical_multiple : float
+        Multiple of the Dawson-Paslay load from which sliding pipe carries helical contact.
+    block_zero : float
+        Block height at which no pipe stands above the rotary [m]; what hangs there always is part of the
+        block weight.
+    """
+
+    def __init__(
+        self,
+        well: Well,
+        depth: float,
+        clearance: str = "tool_joint",
+        helical_multiple: float = np.sqrt(2.0),
+        block_zero: float = 0.0,
+    ) -> None:
+        self.well = well
+        self.block_zero = block_zero
+        self.hole: HoleGrid = hole_grid(well, depth)
+        self.pipe: PipeGrid = pipe_grid(well, depth, clearance)
+        self.helical_multiple = helical_multiple
+        self.hole_arrays = hole_arrays(self.hole)
+        self.pipe_arrays = pipe_arrays(self.pipe)
+
+    def friction(self, cased: float, open_hole: float) -> Floats:
+        """Friction factor at each depth of the hole grid, shape (n,)."""
+        return np.where(self.hole.open_hole, open_hole, cased)
+
+    def string_weight(
+        self, kind: str, bit_depth: ArrayLike, cased: float, open_hole: float, scale: ArrayLike = 1.0
+    ) -> Floats:
+        """Hookload of the string alone at the rotary, bit free [N], shape (k,).
+
+        Parameters
+        ----------
+        kind : str
+            "pick_up", "slack_off" or "rotating".
+        bit_depth : array_like, shape (k,)
+            [m]
+        cased, open_hole : float
+            Friction factors.
+        scale : array_like, shape () or (k,)
+            Multiplies all weights (mud or weight-per-length correction).
+        """
+        bits = np.atleast_1d(np.asarray(bit_depth, dtype=float))
+        scales = np.broadcast_to(np.asarray(scale, dtype=float), bits.shape).copy()
+        sigma = np.full(bits.shape, SIGMA[kind])
+        mu = self.friction(cased, open_hole)
+        return kernels.march_up_many(
+            self.hole_arrays, self.pipe_arrays, mu, bits, sigma, self.helical_multiple, scales
+        )
+
+    def torque(self, bit_depth: ArrayLike, factor: float, scale: ArrayLike = 1.0) -> Floats:
+        """Torque that turns the string off bottom at rotational friction `factor` [N.m], shape (k,)."""
+        bits = np.atleast_1d(np.asarray(bit_depth, dtype=float))
+        scales = np.broadcast_to(np.asarray(scale, dtype=float), bits.shape).copy()
+        mu = np.full(len(self.hole.cos_i), factor)
+        return kernels.torque_up_many(self.hole_arrays, self.pipe_arrays, mu, bits, scales)
+
+    def open_length(self, bit_depth: ArrayLike) -> Floats:
+        """Length of string in open hole [m], shape (k,)."""
+        bits = np.atleast_1d(np.asarray(bit_depth, dtype=float))
+        total = np.concatenate([[0.0], np.cumsum(self.hole.open_hole[1:]) * self.hole.step])
+        return np.interp(bits, np.arange(len(total)) * self.hole.step, total)
+
+    def above_rotary(self, block: ArrayLike) -> Floats:
+        """Weight of pipe between rotary and hook at block height `block` [m], at full share [N]."""
+        height = np.atleast_1d(np.asarray(block, dtype=float)) - self.block_zero
+        return self.pipe.hanging * np.maximum(np.nan_to_num(height), 0.0)
+
+
+def hole_arrays(hole: HoleGrid) -> kernels.Hole:
+    """The hole grid as compiled code takes it."""
+    return kernels.Hole(
+        1.0 / hole.step, hole.cos_i, hole.sin2, hole.kappa2, hole.kappa_d, hole.diameter
+    )
+
+
+def pipe_arrays(pipe: PipeGrid) -> kernels.Pipe:
+    """The pipe grid as compiled code takes it."""
+    return kernels.Pipe(
+        pipe.x, pipe.node, pipe.weight, pipe.ei, pipe.ea, pipe.clearance_od, pipe.radius
+    )
