@@ -1,0 +1,1 @@
+"""Results as files: Parquet, CSV, and JSON with its schema."""

@@ -1,0 +1,115 @@
+"""`episodes.csv`: one row an episode, in the contract's names and units."""
+
+from __future__ import annotations
+
+import csv
+import datetime as dt
+from collections.abc import Mapping
+from pathlib import Path
+
+from forensics.episodes.catalogue import Episode
+from forensics.estimate import Estimate
+from forensics.exports.stamps import number, stamp, zone
+from forensics.findings import Findings
+
+Cell = str | float | None
+
+ESTIMATES: Mapping[str, tuple[str, float, int]] = {
+    "peak_load_ratio": ("peak_load_ratio", 1.0, 4),
+    "peak_compression_kN": ("peak_compression", 1e3, 3),
+    "lost_weight_kN": ("lost_weight", 1e3, 3),
+    "lost_to_buckling_kN": ("lost_to_buckling", 1e3, 3),
+}
+COLUMNS = (
+    "id",
+    "start",
+    "end",
+    "duration_s",
+    "kind",
+    "state",
+    "activity",
+    "top_md_m",
+    "bottom_md_m",
+    "peak_md_m",
+    *ESTIMATES,
+    "probability",
+    "consequence",
+    "family",
+    "cause",
+    "note",
+    *(f"{name}_{end}" for name in ESTIMATES for end in ("low", "high")),
+)
+
+
+def episode_row(episode: Episode, tz: dt.tzinfo) -> dict[str, Cell]:
+    """Lay out one episode under the contract's names.
+
+    Parameters
+    ----------
+    episode : Episode
+        The episode, in SI.
+    tz : datetime.tzinfo
+        Zone to show times in.
+
+    Returns
+    -------
+    dict of str to str, float or None
+        One cell for each of `COLUMNS`, in their order; None where there is no number. Forces [kN], depths
+        [m], duration [s].
+    """
+    row: dict[str, Cell] = {
+        "id": episode.id,
+        "start": stamp(episode.start, tz),
+        "end": stamp(episode.end, tz),
+        "duration_s": number(episode.duration, 3),
+        "kind": episode.kind.value,
+        "state": episode.state.value,
+        "activity": episode.activity,
+        "top_md_m": number(episode.top_md, 2),
+        "bottom_md_m": number(episode.bottom_md, 2),
+        "peak_md_m": number(episode.peak_md, 2),
+        "probability": number(episode.probability, 4),
+        "consequence": episode.consequence.value,
+        "family": episode.family,
+        "cause": episode.cause,
+        "note": episode.note,
+    }
+    for name, (attribute, scale, decimals) in ESTIMATES.items():
+        estimate: Estimate = getattr(episode, attribute)
+        row[name] = number(estimate.value / scale, decimals)
+        row[f"{name}_low"] = number(estimate.low / scale, decimals)
+        row[f"{name}_high"] = number(estimate.high / scale, decimals)
+    return {name: row[name] for name in COLUMNS}
+
+
+def episode_rows(findings: Findings) -> list[dict[str, Cell]]:
+    """Lay out all episodes of a run, in the order of the catalogue.
+
+    Parameters
+    ----------
+    findings : Findings
+        What the run's analysis found.
+
+    Returns
+    -------
+    list of dict
+        One `episode_row` for each episode.
+    """
+    tz = zone(findings.log.timezone)
+    return [episode_row(episode, tz) for episode in findings.episodes]
+
+
+def write_episodes(findings: Findings, path: Path) -> None:
+    """Write `episodes.csv`: UTF-8, comma, a header row, an empty cell where there is no number.
+
+    Parameters
+    ----------
+    findings : Findings
+        What the run's analysis found.
+    path : Path
+        The file to write.
+    """
+    with path.open("w", encoding="utf-8", newline="") as file:
+        writer = csv.DictWriter(file, COLUMNS, lineterminator="\n")
+        writer.writeheader()
+        writer.writerows(episode_rows(findings))

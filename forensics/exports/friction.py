@@ -1,0 +1,123 @@
+"""`friction.json`: what the calibration found, and how sure it is."""
+
+from __future__ import annotations
+
+from pathlib import Path
+from typing import Any
+
+from forensics.estimate import Estimate
+from forensics.exports.stamps import number, stamp, zone
+from forensics.exports.text import write_json
+from forensics.findings import Findings
+from forensics.friction.result import Calibration, FrictionSection, Reading
+
+FORMAT = 1
+KILO = 1e3
+
+
+def friction_content(findings: Findings) -> dict[str, Any]:
+    """Lay out a calibration under the contract's names.
+
+    Parameters
+    ----------
+    findings : Findings
+        What the run's analysis found.
+
+    Returns
+    -------
+    dict
+        Content of `friction.json`: forces [kN], moments [kN.m], depths [m]; None where there is no
+        number.
+    """
+    calibration = findings.calibration
+    return {
+        "sections": [_section(section) for section in calibration.sections],
+        **_force("block_weight_kN", calibration.block_weight),
+        **_force("hookload_bias_kN", calibration.hookload_bias),
+        "rotational_friction": _rotational(calibration),
+        "residual_rms_kN": number(calibration.residual_rms / KILO, 3),
+        "pipe_above_rotary": number(calibration.pipe_above_rotary.value, 3),
+        "can_not_tell": list(calibration.can_not_tell),
+        "readings": _readings(findings),
+    }
+
+
+def write_friction(findings: Findings, path: Path) -> None:
+    """Write `friction.json`.
+
+    Parameters
+    ----------
+    findings : Findings
+        What the run's analysis found.
+    path : Path
+        The file to write.
+    """
+    write_json({"format": FORMAT, "case": findings.case.id, **friction_content(findings)}, path)
+
+
+def _factor(estimate: Estimate) -> dict[str, Any]:
+    return {
+        "friction_factor": number(estimate.value, 4),
+        "low": number(estimate.low, 4),
+        "high": number(estimate.high, 4),
+        "samples": int(estimate.samples),
+        "determined": bool(estimate.determined),
+        "source": estimate.source,
+    }
+
+
+def _section(section: FrictionSection) -> dict[str, Any]:
+    return {
+        "kind": section.kind,
+        "top_m": number(section.top, 2),
+        "bottom_m": number(section.bottom, 2),
+        **_factor(section.factor),
+    }
+
+
+def _rotational(calibration: Calibration) -> dict[str, Any] | None:
+    """Give the rotational factor in the form of a section that spans the whole hole."""
+    if calibration.rotational is None:
+        return None
+    tops = [section.top for section in calibration.sections]
+    bottoms = [section.bottom for section in calibration.sections]
+    whole = FrictionSection(
+        "all", min(tops, default=float("nan")), max(bottoms, default=float("nan")), calibration.rotational
+    )
+    return _section(whole)
+
+
+def _force(name: str, estimate: Estimate) -> dict[str, Any]:
+    stem = name.removesuffix("_kN")
+    return {
+        name: number(estimate.value / KILO, 3),
+        f"{name}_low": number(estimate.low / KILO, 3),
+        f"{name}_high": number(estimate.high / KILO, 3),
+        f"{stem}_determined": bool(estimate.determined),
+        f"{stem}_source": estimate.source,
+    }
+
+
+def _readings(findings: Findings) -> list[dict[str, Any]]:
+    tz = zone(findings.log.timezone)
+    calibration = findings.calibration
+    rows = []
+    for reading, residual in zip(calibration.readings, calibration.residuals, strict=True):
+        unit = _reading_unit(reading)
+        rows.append(
+            {
+                "kind": reading.kind,
+                "start": stamp(reading.start, tz),
+                "end": stamp(reading.end, tz),
+                "bit_depth_m": number(reading.bit_depth, 2),
+                f"value_{unit}": number(reading.value / KILO, 3),
+                f"residual_{unit}": number(residual / KILO, 3),
+                "samples": int(reading.samples),
+                "pumping": bool(reading.pumping),
+            }
+        )
+    return rows
+
+
+def _reading_unit(reading: Reading) -> str:
+    return "kNm" if reading.kind == "torque" else "kN"

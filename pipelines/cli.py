@@ -1,0 +1,142 @@
+"""The command line: `tallyback COMMAND ...`.
+
+Only argparse is imported on the way to the help text. A job, with all it needs, is imported when its
+command runs, so that asking for help does not wait for the numerical libraries.
+"""
+
+from __future__ import annotations
+
+import argparse
+import os
+import sys
+from collections.abc import Callable, Sequence
+
+DONE, FAULT, BAD_INPUT = 0, 1, 2
+TRACEBACK_SWITCH = "TALLYBACK_TRACEBACK"
+
+
+class Command:
+    """A command: its name, what it does in a line, how its arguments are declared and what runs it."""
+
+    def __init__(
+        self,
+        name: str,
+        summary: str,
+        declare: Callable[[argparse.ArgumentParser], None],
+        job: Callable[[argparse.Namespace], int],
+    ) -> None:
+        self.name = name
+        self.summary = summary
+        self.declare = declare
+        self.job = job
+
+
+def _incident_arguments(parser: argparse.ArgumentParser) -> None:
+    parser.add_argument("case", metavar="CASE.toml", help="the case file of the run")
+
+
+def _incident(arguments: argparse.Namespace) -> int:
+    from pipelines import incident  # heavy: loaded only when the job runs
+
+    result = incident.run(arguments.case, arguments.out, arguments.units, arguments.quiet)
+    sys.stdout.write("\n".join(result.lines) + "\n")
+    return DONE
+
+
+COMMANDS: tuple[Command, ...] = (
+    Command(
+        "incident",
+        "read a run's logs, reconstruct its loads, and report when, where and how the string buckled",
+        _incident_arguments,
+        _incident,
+    ),
+)
+
+
+def build_parser(commands: Sequence[Command] = COMMANDS) -> argparse.ArgumentParser:
+    """Make the parser of the command line from the table of commands.
+
+    Parameters
+    ----------
+    commands : sequence of Command
+        The commands to offer.
+
+    Returns
+    -------
+    argparse.ArgumentParser
+        Parser whose result names the command in `command`.
+    """
+    parser = argparse.ArgumentParser(
+        prog="tallyback",
+        description="Reconstructs how a drill string or liner was loaded and where it buckled, from the "
+        "rig's logs, the day after.",
+        epilog="exit status: 0 done; 1 a fault of the program; 2 the input can't be used",
+    )
+    parser.add_argument("--version", action="store_true", help="show the version and exit")
+    offered = parser.add_subparsers(dest="command", metavar="COMMAND", title="commands")
+    for command in commands:
+        sub = offered.add_parser(command.name, help=command.summary, description=command.summary)
+        command.declare(sub)
+        sub.add_argument("--out", metavar="DIR", help="folder for the results (default reports/<case id>)")
+        sub.add_argument(
+            "--units", choices=("metric", "field"), default="metric", help="units the report shows"
+        )
+        sub.add_argument("--quiet", action="store_true", help="show no progress")
+        sub.set_defaults(job=command.job)
+    return parser
+
+
+def _say(message: str) -> None:
+    sys.stderr.write(f"tallyback: {message}\n")
+
+
+def _fault(error: Exception) -> int:
+    """Word an exception as one line, and say how to see more."""
+    from forensics.errors import InputError  # its imports would slow the help text
+
+    if isinstance(error, InputError):
+        _say(" ".join(error.text.split()))
+        return BAD_INPUT
+    if os.environ.get(TRACEBACK_SWITCH, "") not in ("", "0"):
+        import traceback
+
+        traceback.print_exception(error)
+    words = " ".join(f"{type(error).__name__}: {error}".split())
+    _say(f"a fault of the program: {words} (set {TRACEBACK_SWITCH}=1 to see where it happened)")
+    return FAULT
+
+
+def main(argv: Sequence[str] | None = None) -> int:
+    """Run the command line.
+
+    Parameters
+    ----------
+    argv : sequence of str, optional
+        Arguments without the program's name; `sys.argv[1:]` where left out.
+
+    Returns
+    -------
+    int
+        Exit status: 0 done, 1 a fault of the program, 2 the input can't be used.
+    """
+    parser = build_parser()
+    try:
+        arguments = parser.parse_args(argv)
+    except SystemExit as leaving:  # argparse leaves by exception after help (0) or wrong usage (2)
+        return int(leaving.code or 0)
+    if arguments.version:
+        from forensics import __version__
+
+        sys.stdout.write(f"tallyback {__version__}\n")
+        return DONE
+    if arguments.command is None:
+        parser.print_usage(sys.stderr)
+        _say("name a command; `tallyback --help` lists them")
+        return BAD_INPUT
+    try:
+        return arguments.job(arguments)
+    except KeyboardInterrupt:
+        _say("stopped; nothing was written")
+        return FAULT
+    except Exception as error:  # the last line of defence: every fault gets its one line
+        return _fault(error)
