@@ -1,0 +1,1 @@
+"""Friction: steady readings, calibration, and what the data can tell."""

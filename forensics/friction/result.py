@@ -11,6 +11,8 @@ from forensics.estimate import Estimate
 
 Floats = NDArray[np.float64]
 
+UNIT_SCALE = Estimate(1.0, 1.0, 1.0, "assumed", determined=False)
+
 
 @dataclass(frozen=True)
 class Reading:
@@ -69,6 +71,11 @@ class Calibration:
         Joint draws (cased factor, open factor, block weight [N]) from the posterior.
     can_not_tell : tuple of str
         What the readings could not determine, in sentences.
+    weight_scale : Estimate
+        Factor on the modelled string weight (weight per length, mud density): a modelled hookload is
+        block weight + bias + share * pipe above the rotary + scale * string weight.
+    torque_loss : Estimate or None
+        Constant torque lost inside the top drive: modelled torque is loss + torque of the string [N.m].
     """
 
     sections: tuple[FrictionSection, ...]
@@ -81,6 +88,8 @@ class Calibration:
     residual_rms: float
     draws: Floats
     can_not_tell: tuple[str, ...] = ()
+    weight_scale: Estimate = UNIT_SCALE
+    torque_loss: Estimate | None = None
 
     def factor(self, kind: str) -> float:
         """Axial friction factor of a hole kind, "cased" or "open"."""

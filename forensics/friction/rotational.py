@@ -1,0 +1,123 @@
+"""Rotational friction from off-bottom torque, with what the top drive itself eats."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from forensics.estimate import Estimate
+from forensics.friction.assumptions import Z90
+from forensics.friction.result import Reading
+from forensics.friction.spread import MODEL_ERROR, blocks
+from forensics.friction.surface import OffBottom
+
+Floats = NDArray[np.float64]
+
+#: Loss inside the top drive and swivel: centre and one sigma [N.m] (trade values, from memory).
+LOSS = (500.0, 1000.0)
+
+#: One sigma of the rotational factor about the axial one: often a little more or less than it.
+FACTOR_SIGMA = 0.08
+
+#: Robust sigmas at which a reading is let go: with more torque than the rest, and with less.
+LET_GO = (4.0, 6.0)
+
+UNSEPARATED = "The loss inside the top drive could not be told from hole friction: torque readings span too little depth."
+
+
+@dataclass(frozen=True)
+class Rotational:
+    """Rotational factor, the loss inside the top drive [N.m], and the residuals [N.m] of the readings."""
+
+    factor: Estimate
+    loss: Estimate
+    residuals: Floats
+    sentences: tuple[str, ...]
+
+
+def fit_rotational(readings: tuple[Reading, ...], model: OffBottom, centre: float) -> Rotational | None:
+    """Fit torque = loss + factor * unit torque, robustly.
+
+    Parameters
+    ----------
+    readings : tuple of Reading
+        Of kind "torque".
+    model : OffBottom
+    centre : float
+        Where the weak prior of the factor lies: the axial factor [-].
+
+    Returns
+    -------
+    Rotational or None
+        None where there are no readings.
+    """
+    if not readings:
+        return None
+    depth = np.array([r.bit_depth for r in readings])
+    value = np.array([r.value for r in readings])
+    own = np.array([r.spread / np.sqrt(min(max(r.samples, 1), 10)) for r in readings])
+    sigma = np.hypot(own, np.maximum(100.0, 0.01 * np.abs(value)))
+    unit = np.asarray(model.torque(depth, 1.0), dtype=float)
+    jacobian = np.column_stack([unit, np.ones_like(unit)])
+    prior = np.array([[centre, FACTOR_SIGMA], [LOSS[0], LOSS[1]]])
+    p, weights, inflation = _solve(jacobian, value, sigma, prior)
+    cov = _covariance(jacobian, (value - jacobian @ p) * weights, weights, sigma * inflation, (prior, depth))
+    sd = np.sqrt(np.diag(cov))
+    sd[0] = np.hypot(sd[0], MODEL_ERROR * p[0])
+    kept = int((weights > 0.1).sum())
+    determined = bool(sd[0] < 0.5 * FACTOR_SIGMA)
+    factor = _interval(p[0], sd[0], "off-bottom torque", determined, kept)
+    separate = bool(sd[1] < 0.5 * LOSS[1])
+    loss = _interval(p[1], sd[1], "off-bottom torque" if separate else "assumed", separate, kept)
+    sentences = () if separate else (UNSEPARATED,)
+    return Rotational(factor, loss, value - jacobian @ p, sentences)
+
+
+def _solve(jacobian: Floats, value: Floats, sigma: Floats, prior: Floats) -> tuple[Floats, Floats, float]:
+    """Iterate lopsided biweight least squares with the prior as two more rows; loss is never negative."""
+    p = prior[:, 0].copy()
+    weights, inflation = np.ones(len(value)), 1.0
+    for n in range(40):
+        residuals = (value - jacobian @ p) / sigma
+        if n < 15:  # the lower envelope first: solids and sticking only add torque
+            weights = np.where(residuals > 0.0, 0.7, 1.3) / np.maximum(np.abs(residuals), 0.5)
+            inflation = 1.0
+        else:
+            inflation = max(1.0, 1.4826 * float(np.median(np.abs(residuals))))
+            u = residuals / inflation
+            cut = np.where(u > 0.0, LET_GO[0], LET_GO[1])
+            weights = np.where(np.abs(u) < cut, (1.0 - (u / cut) ** 2) ** 2, 0.0)
+        a = jacobian / (sigma * inflation)[:, None] * prior[:, 1]
+        normal = a.T @ (weights[:, None] * a) + np.eye(2)
+        right = a.T @ (weights * value / (sigma * inflation)) + prior[:, 0] / prior[:, 1]
+        p = prior[:, 1] * np.linalg.solve(normal, right)
+        if p[1] < 0.0:
+            p[1] = 0.0
+            p[0] = prior[0, 1] * (right[0]) / normal[0, 0]
+    return p, weights, inflation
+
+
+def _covariance(
+    jacobian: Floats, weighted: Floats, weights: Floats, sigma: Floats, context: tuple[Floats, Floats]
+) -> Floats:
+    """Posterior covariance, widened where readings of one stand share their error."""
+    prior, depth = context
+    a = jacobian / sigma[:, None] * prior[:, 1]
+    inverse = np.linalg.inv(a.T @ (weights[:, None] * a) + np.eye(2))
+    label = blocks(depth)
+    groups = int(label.max()) + 1
+    widen = np.ones(2)
+    if groups >= 4:
+        summed = np.zeros((groups, 2))
+        np.add.at(summed, label, a * (weighted / sigma)[:, None])
+        sandwich = inverse @ (summed.T @ summed * groups / (groups - 1) + np.eye(2)) @ inverse
+        widen = np.maximum(1.0, np.sqrt(np.diag(sandwich) / np.diag(inverse)))
+    return inverse * np.outer(widen * prior[:, 1], widen * prior[:, 1])
+
+
+def _interval(value: float, sd: float, source: str, determined: bool, samples: int) -> Estimate:
+    return Estimate(
+        float(value), max(0.0, float(value - Z90 * sd)), float(value + Z90 * sd), source, determined, samples
+    )
