@@ -1,0 +1,1 @@
+"""The well: trajectory, hole, string and mud as arrays along depth."""

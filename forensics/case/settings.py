@@ -45,7 +45,7 @@ class FluidSettings:
 
 @dataclass(frozen=True)
 class RigSettings:
-    """`[rig]`: block weight [N], lines strung, efficiency per sheave, whether hookload has the block in it."""
+    """`[rig]`: block weight [N], lines strung, efficiency per sheave, block in the hookload or not."""
 
     block_weight: float | None = None
     lines: int | None = None
@@ -118,8 +118,3 @@ class Case:
     mud_system: str | None = None
     notes: str | None = None
     campaign: str | None = None
-
-
-def load_case(path: Path) -> Case:
-    """Read a case file."""
-    raise RuntimeError(path)
