@@ -40,7 +40,7 @@ BIAS_SIGMA = (10.0e3, 0.03)
 Z90 = 1.6448536269514722
 
 LOWEST = np.array([-np.inf, 0.0, 0.9, 0.01, 0.01])
-HIGHEST = np.array([np.inf, 1.2, 1.1, 0.8, 0.8])
+HIGHEST = np.array([np.inf, 1.2, 1.1, 0.6, 0.6])
 
 
 @dataclass(frozen=True)

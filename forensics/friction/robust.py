@@ -24,6 +24,12 @@ LET_GO = (4.0, 6.0)
 #: Quantile of the friction-signed residuals that the start follows.
 ENVELOPE = 0.35
 
+#: Where factors start at most; block, share and scale are not held by it.
+GENTLE = np.array([np.inf, np.inf, np.inf, 0.15, 0.15])
+
+#: A factor moves at most this far in one step.
+STRIDE = np.array([np.inf, np.inf, np.inf, 0.05, 0.05])
+
 #: A robust sigma is never taken smaller than this part of the reading's own.
 SIGMA_FLOOR = 1.0
 
@@ -102,6 +108,8 @@ def _best_start(problem: Problem, start: Floats, active: Bools) -> Floats:
     """
     n = len(problem.value)
     best, least = start, np.inf
+    # from below: at too high a factor the modelled string is locked up and shows no way back
+    start = np.where(active, np.minimum(start, GENTLE), start)
     for parts, k in ((1, 0), (2, 0), (2, 1), (3, 0), (3, 1), (3, 2)):
         within = np.zeros(n)
         within[n * k // parts : n * (k + 1) // parts] = 1.0
@@ -151,9 +159,9 @@ def _step(problem: Problem, p: Floats, active: Bools, weights: Floats) -> Floats
     w = weights[:, None]
     normal = a.T @ (w * a) + np.eye(int(active.sum()))
     right = a.T @ (weights * residuals) + ((prior.centre - p) / prior.sigma)[active]
-    moved = p.copy()
-    moved[active] += prior.sigma[active] * np.linalg.solve(normal, right)
-    return np.clip(moved, LOWEST, HIGHEST)
+    change = np.zeros(len(p))
+    change[active] = prior.sigma[active] * np.linalg.solve(normal, right)
+    return np.clip(p + np.clip(change, -STRIDE, STRIDE), LOWEST, HIGHEST)
 
 
 def _settled(before: Floats, after: Floats, prior: Prior) -> bool:

@@ -24,7 +24,10 @@ FACTOR_SIGMA = 0.08
 #: Robust sigmas at which a reading is let go: with more torque than the rest, and with less.
 LET_GO = (4.0, 6.0)
 
-UNSEPARATED = "The loss inside the top drive could not be told from hole friction: torque readings span too little depth."
+UNSEPARATED = (
+    "The loss inside the top drive could not be told from hole friction: torque readings span too "
+    "little depth."
+)
 
 
 @dataclass(frozen=True)

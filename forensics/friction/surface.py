@@ -1,7 +1,9 @@
-"""String weight of every reading as a smooth function of the two friction factors.
+"""String weight of every reading as a function of the two friction factors.
 
-The soft string is marched once on a small Chebyshev grid of factors; the fit, its Jacobian and the
-draws then cost a small matrix product each, whatever the string's length.
+The soft string is marched once on a small grid of factors; the fit, its Jacobian and its many starts
+then cost a few table look-ups each, whatever the string's length. Local cubics, not one polynomial:
+where slacked-off pipe buckles and nears lockup the weight bends sharply, and that bend must not spoil
+the rest of the table.
 """
 
 from __future__ import annotations
@@ -10,14 +12,16 @@ from dataclasses import dataclass
 from typing import Protocol
 
 import numpy as np
-from numpy.polynomial import chebyshev
 from numpy.typing import NDArray
 
 Floats = NDArray[np.float64]
 
-#: Nodes a side and span of factors. exp(mu * angle) with 2 rad of bends is held to 1e-5 of its value.
-NODES = 6
-SPAN = (0.0, 0.8)
+#: Grid of factors. A capstan of 2 rad of bends is held to 1e-5 of its value by cubics of this step.
+STEP = 0.05
+FACTORS = np.arange(13) * STEP
+
+#: String weight is never taken lower than this [N]: past lockup the march runs away.
+LOWEST_WEIGHT = -3.0e6
 
 
 class OffBottom(Protocol):
@@ -38,9 +42,9 @@ class OffBottom(Protocol):
 
 @dataclass(frozen=True)
 class ResponseSurface:
-    """String weight of n readings over (cased, open) friction; coefficients of shape (n, m, m) [N]."""
+    """String weight of n readings over (cased, open) friction; `table` has shape (13, 13, n) [N]."""
 
-    coefficients: Floats
+    table: Floats
 
     def at(self, cased: float, open_: float) -> tuple[Floats, Floats, Floats]:
         """Weights and their slopes against the cased and the open factor.
@@ -48,26 +52,36 @@ class ResponseSurface:
         Parameters
         ----------
         cased, open_ : float
-            Friction factors [-].
+            Friction factors, from 0 to 0.6 [-].
 
         Returns
         -------
         weight, slope_cased, slope_open : ndarray, shape (n,)
             [N].
         """
-        tc, dc = _basis(cased)
-        to, do = _basis(open_)
-        along = self.coefficients @ to
-        return along @ tc, along @ dc, (self.coefficients @ do) @ tc
+        i, value_i, slope_i = _cubic(cased)
+        j, value_j, slope_j = _cubic(open_)
+        near = self.table[i : i + 4, j : j + 4]
+        along = np.tensordot(value_j, near, axes=(0, 1))
+        across = np.tensordot(slope_j, near, axes=(0, 1))
+        return value_i @ along, slope_i @ along, value_i @ across
 
 
-def _basis(mu: float) -> tuple[Floats, Floats]:
-    """Chebyshev polynomials and their slopes at a factor."""
-    half = 0.5 * (SPAN[1] - SPAN[0])
-    x = (mu - SPAN[0]) / half - 1.0
-    eye = np.eye(NODES)
-    slopes = chebyshev.chebder(eye, axis=0)
-    return chebyshev.chebval(x, eye), chebyshev.chebval(x, slopes) / half
+def _cubic(mu: float) -> tuple[int, Floats, Floats]:
+    """First of the four nodes about a factor, their Lagrange weights, and the slopes of these."""
+    first = int(np.clip(int(mu / STEP) - 1, 0, len(FACTORS) - 4))
+    x = mu / STEP - first
+    a, b, c, d = x, x - 1.0, x - 2.0, x - 3.0
+    value = np.array([-b * c * d / 6.0, a * c * d / 2.0, -a * b * d / 2.0, a * b * c / 6.0])
+    slope = np.array(
+        [
+            -(c * d + b * d + b * c) / 6.0,
+            (c * d + a * d + a * c) / 2.0,
+            -(b * d + a * d + a * b) / 2.0,
+            (b * c + a * c + a * b) / 6.0,
+        ]
+    )
+    return first, value, slope / STEP
 
 
 def build_surface(model: OffBottom, kinds: tuple[str, ...], bit_depth: Floats) -> ResponseSurface:
@@ -85,17 +99,17 @@ def build_surface(model: OffBottom, kinds: tuple[str, ...], bit_depth: Floats) -
     -------
     ResponseSurface
     """
-    nodes = chebyshev.chebpts1(NODES)
-    factors = SPAN[0] + 0.5 * (nodes + 1.0) * (SPAN[1] - SPAN[0])
-    inverse = np.linalg.inv(chebyshev.chebvander(nodes, NODES - 1))
-    coefficients = np.zeros((len(bit_depth), NODES, NODES))
+    m = len(FACTORS)
+    table = np.zeros((m, m, len(bit_depth)))
     which = np.array(kinds)
     for kind in sorted(set(kinds)):
         rows = np.flatnonzero(which == kind)
         depths = np.asarray(bit_depth, dtype=float)[rows]
         if kind == "rotating":  # no axial friction: one march serves
-            coefficients[rows, 0, 0] = model.string_weight(kind, depths, factors[0], factors[0])
+            table[:, :, rows] = model.string_weight(kind, depths, 0.0, 0.0)
             continue
-        grid = np.array([[model.string_weight(kind, depths, c, o) for o in factors] for c in factors])
-        coefficients[rows] = np.einsum("ia,jb,abn->nij", inverse, inverse, grid)
-    return ResponseSurface(coefficients)
+        for i, cased in enumerate(FACTORS):
+            for j, open_ in enumerate(FACTORS):
+                table[i, j, rows] = model.string_weight(kind, depths, float(cased), float(open_))
+    np.nan_to_num(table, copy=False, nan=LOWEST_WEIGHT)
+    return ResponseSurface(np.maximum(table, LOWEST_WEIGHT))
