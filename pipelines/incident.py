@@ -1,0 +1,83 @@
+"""The main job: one run's case file in, one folder of results out."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from forensics.errors import InputError
+from pipelines.output import check_target, whole_folder
+from pipelines.progress import Progress
+
+if TYPE_CHECKING:
+    from forensics.findings import Findings
+
+
+@dataclass(frozen=True)
+class IncidentResult:
+    """What one run of the job gave.
+
+    Parameters
+    ----------
+    findings : Findings
+        All that the analysis found.
+    folder : Path
+        Where the results are.
+    timings : mapping of str to float
+        Seconds spent by stage: imports, reading, well, rig, calibration, replay, draws, episodes, figures,
+        exports.
+    lines : tuple of str
+        The result in a few lines, for the terminal.
+    """
+
+    findings: Findings
+    folder: Path
+    timings: Mapping[str, float]
+    lines: tuple[str, ...]
+
+
+def run(
+    case_path: Path | str,
+    out: Path | str | None = None,
+    units: str = "metric",
+    quiet: bool = False,
+) -> IncidentResult:
+    """Read a case, reconstruct its loads, find its episodes, and write report and exports.
+
+    Parameters
+    ----------
+    case_path : Path or str
+        The case file.
+    out : Path or str, optional
+        Folder for the results; `reports/<case id>` in the working folder where left out.
+    units : str
+        "metric" or "field": what the report shows. Exports keep the contract's units.
+    quiet : bool
+        Show no progress.
+
+    Returns
+    -------
+    IncidentResult
+        The findings, where the results are, the time each stage took, and the result in lines.
+
+    Raises
+    ------
+    InputError
+        If the case, a log or a table can't be used, or the results can't be written where asked.
+    """
+    if units not in ("metric", "field"):
+        raise InputError(f"units are {units!r}; expected 'metric' or 'field'")
+    progress = Progress(quiet)
+    with progress.stage("imports", "loading the libraries"):
+        from forensics.case import load_case
+        from pipelines import analysis, results
+
+    case = load_case(Path(case_path))
+    folder = Path(out) if out is not None else Path("reports") / case.id
+    check_target(folder)
+    findings = analysis.analyse(case, progress)
+    with whole_folder(folder) as fresh:
+        results.write(findings, fresh, units, progress)
+    return IncidentResult(findings, folder, progress.timings, results.lines(findings, folder, units))

@@ -1,0 +1,140 @@
+"""What the job leaves: the files, and the few lines of result for the terminal."""
+
+from __future__ import annotations
+
+from collections import Counter
+from collections.abc import Callable, Mapping
+from pathlib import Path
+
+import numpy as np
+
+from forensics import units
+from forensics.episodes.catalogue import Consequence, Episode, Kind, State
+from forensics.estimate import Estimate
+from forensics.exports.episodes import write_episodes
+from forensics.exports.friction import write_friction
+from forensics.exports.history import write_history
+from forensics.exports.stamps import stamp, zone
+from forensics.exports.summary import write_summary
+from forensics.findings import Findings
+from pipelines.progress import Progress
+
+EXPORTS: Mapping[str, Callable[[Findings, Path], None]] = {
+    "summary.json": write_summary,
+    "episodes.csv": write_episodes,
+    "history.parquet": write_history,
+    "friction.json": write_friction,
+}
+
+
+def write(findings: Findings, folder: Path, system: str, progress: Progress) -> None:
+    """Write the report and every export into a folder.
+
+    Parameters
+    ----------
+    findings : Findings
+        What the run's analysis found.
+    folder : Path
+        An existing folder.
+    system : str
+        "metric" or "field": what the report shows.
+    progress : Progress
+        Times the stages "figures" and "exports".
+    """
+    with progress.stage("figures", "drawing the report"):
+        from forensics.report import render
+
+        (folder / "report.html").write_text(render(findings, system), encoding="utf-8", newline="\n")
+    with progress.stage("exports", "writing the exports"):
+        for name, export in EXPORTS.items():
+            export(findings, folder / name)
+
+
+def lines(findings: Findings, folder: Path, system: str = "metric") -> tuple[str, ...]:
+    """Give the result in at most ten lines.
+
+    Parameters
+    ----------
+    findings : Findings
+        What the run's analysis found.
+    folder : Path
+        Where the results are.
+    system : str
+        "metric" or "field".
+
+    Returns
+    -------
+    tuple of str
+        The finding, the run, its rows, friction and block weight, the episodes, the worst, the report.
+    """
+    case, headline = findings.case, findings.headline
+    said = [
+        f"{case.id}: {case.title}",
+        headline.sentence,
+        f"Confidence: {headline.confidence}",
+        _run(findings, system),
+        _rows(findings),
+        _friction(findings),
+        f"Block weight: {_interval(findings.calibration.block_weight, 'force', system)}",
+        _episodes(findings.episodes),
+        _worst(findings, system),
+        f"Report: {folder / 'report.html'}",
+    ]
+    return tuple(" ".join(line.split()) for line in said if line)
+
+
+def _run(findings: Findings, system: str) -> str:
+    log = findings.log
+    tz = zone(log.timezone)
+    depth = log.values["bit_depth"]
+    low, high = (units.show(float(f(depth)), "length", system) for f in (np.nanmin, np.nanmax))
+    return f"Run: {stamp(log.time[0], tz)} to {stamp(log.time[-1], tz)}, bit {low} to {high}"
+
+
+def _rows(findings: Findings) -> str:
+    used = int(np.count_nonzero(findings.log.used))
+    files = len(findings.log.files)
+    return (
+        f"Read: {len(findings.log):,} rows from {files} file{'s' * (files != 1)}, "
+        f"{len(findings.log) - used:,} set aside"
+    )
+
+
+def _friction(findings: Findings) -> str:
+    parts = []
+    for section in findings.calibration.sections:
+        factor = section.factor
+        how = f"({factor.low:.2f} to {factor.high:.2f})" if factor.determined else "(assumed)"
+        parts.append(f"{section.kind} {factor.value:.2f} {how}")
+    return f"Friction: {', '.join(parts)}"
+
+
+def _interval(estimate: Estimate, quantity: str, system: str) -> str:
+    value = units.show(estimate.value, quantity, system)
+    if not (np.isfinite(estimate.low) and np.isfinite(estimate.high)):
+        return value
+    low, high = (units.show(end, quantity, system) for end in (estimate.low, estimate.high))
+    return f"{value} ({low} to {high})"
+
+
+def _episodes(episodes: tuple[Episode, ...]) -> str:
+    if not episodes:
+        return "Episodes: none"
+    counts = Counter(episode.kind.value for episode in episodes)
+    routine = sum(
+        e.kind is Kind.BUCKLING and e.state is not State.HELICAL and e.consequence is Consequence.NONE
+        for e in episodes
+    )
+    told = ", ".join(f"{counts[kind.value]} {kind.value}" for kind in Kind if counts[kind.value])
+    return f"Episodes: {told}" + (f" ({routine} of them routine sinusoidal running)" if routine else "")
+
+
+def _worst(findings: Findings, system: str) -> str:
+    """Name the episode that lost the most weight, if any did."""
+    losing = [e for e in findings.episodes if np.isfinite(e.lost_weight.value) and e.lost_weight.value > 0]
+    if not losing:
+        return ""
+    worst = max(losing, key=lambda e: e.lost_weight.value)
+    tz = zone(findings.log.timezone)
+    lost = _interval(worst.lost_weight, "force", system)
+    return f"Most weight lost: {lost} in {worst.id}, from {stamp(worst.start, tz)}"
