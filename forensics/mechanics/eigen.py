@@ -171,10 +171,10 @@ def interpolate(n: ArrayLike, length: ArrayLike) -> Floats:
 
     Notes
     -----
-    Bilinear in the logarithms. Above n = 1e6 the departure from `LIMIT` falls as ``1/sqrt(n)``.
-    The error of c is below 0.1 % wherever length is at least 8. Below that c swings with the number
-    of half waves that fit and can be off by some per cent at great n, but by less than 0.1 % of ``phi``,
-    which is what a critical load is made of.
+    Bilinear. Above n = 1e6 the departure from `LIMIT` falls as ``1/sqrt(n)``. The error of c is below
+    0.02 % from length 8 on. Shorter, c swings with the number of half waves that fit: the error is then
+    below 0.2 % of ``phi``, which is what a critical load is made of, and can be some per cent of c itself
+    where n is so great that c hardly matters.
 
     Examples
     --------
