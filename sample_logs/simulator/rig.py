@@ -1,0 +1,231 @@
+"""The rig: block, slips, stands, pumps and top drive over the string, recording every second."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass, field
+
+import numpy as np
+from numpy.typing import NDArray
+
+from . import core
+from .hole import FIRST, STEP, Hole
+from .pipe import build_elements, mark_runs, stand_elements
+
+Floats = NDArray[np.float64]
+ACCELERATION = 0.05  # m/s2: the block never jumps to its speed
+
+
+@dataclass
+class Demand:
+    """What the driller asks for during the next second."""
+
+    speed: float = 0.0  # block, down positive [m/s]
+    rpm: float = 0.0
+    pump: float = 0.0  # share of the usual flow
+
+
+@dataclass
+class Rig:
+    """State of the rig and the string; `advance` moves it by one second."""
+
+    settings: dict
+    hole: Hole
+    bit_depth: float
+    height: float = 2.0
+    bottom: float = 0.0
+    time: float = 0.0
+    dt: float = 1.0
+    slips: bool = False
+    logging: bool = True
+    speed: float = 0.0
+    rpm: float = 0.0
+    pump: float = 0.0
+    load_in_slips: float = 0.0
+    zero: float = 0.0
+    tag: str = ""
+    rows: list[tuple] = field(default_factory=list)
+    tags: list[str] = field(default_factory=list)
+
+    def __post_init__(self) -> None:
+        """Hang the string, at rest and without friction, with the bit near the depth given."""
+        self.length = self.bit_depth + self.height
+        self.elements = build_elements(self.settings, self.length)
+        n = len(self.elements)
+        self.x = np.empty(n + 1)
+        self.s = np.zeros(n + 1)
+        self.spent = np.zeros(n + 1)
+        self.latched = np.zeros(n, dtype=np.int64)
+        planted = self.settings["planted"]
+        self.keep = planted.get("trapped_torque", 0.0)
+        self.block_weight = self.settings["rig"]["block_weight"] * 1e3
+        self.pump_shift = planted.get("pump_shift_kN", 0.0) * 1e3
+        self._hang()
+        self.moved = np.zeros(n + 1, dtype=bool)
+        self.anchor = self.x.copy()
+        self.sense = 0
+        self.travel = 0.0
+
+    def _hang(self) -> None:
+        n = len(self.elements)
+        self.x[n] = -self.height
+        for j in range(n - 1, -1, -1):
+            self.x[j] = self.x[j + 1] + self.elements[j, core.LENGTH]
+        for _ in range(3):
+            g = core.geometry(self.x, self.elements, self.hole.table, FIRST, STEP)
+            weight = np.cumsum(g[:, core.E_WEIGHT] * g[:, core.E_COS])
+            for j in range(n - 1, -1, -1):
+                pull = weight[j] - 0.5 * g[j, core.E_WEIGHT] * g[j, core.E_COS]
+                stretch = self.elements[j, core.COMPLIANCE] * pull
+                self.x[j] = self.x[j + 1] + self.elements[j, core.LENGTH] + stretch
+
+    @property
+    def tally_depth(self) -> float:
+        """Bit depth as the rig counts it: pipe in the hole by the tally, blind to stretch."""
+        return self.length + self.x[-1]
+
+    def control(self) -> Floats:
+        """Control vector of the core for the present state."""
+        planted = self.settings["planted"]
+        c = np.empty(10)
+        c[core.TOP] = self.x[-1]
+        c[core.DT] = self.dt
+        c[core.TURN_RATE] = self.rpm * 2.0 * math.pi / 60.0
+        c[core.BOTTOM] = self.bottom
+        rate = planted["rate_m_h"] / 3600.0 * (1.0 if self.rpm > 5.0 else planted.get("slide_rate", 0.8))
+        c[core.DRILL_RATE] = rate * self.formation() if self.pump > 0.5 else 0.0
+        c[core.DRILL_EXPONENT] = planted.get("rate_exponent", 1.0)
+        c[core.ROCK_STIFFNESS] = 5.0e7
+        c[core.UNTWIST] = planted.get("untwist_m", 0.3)
+        c[core.MD_FIRST] = FIRST
+        c[core.MD_STEP] = STEP
+        return c
+
+    def formation(self) -> float:
+        """Drillability of the rock at the bit, varying slowly along the hole."""
+        swing = self.settings["planted"].get("rate_variation", 0.1)
+        return 1.0 + swing * math.sin(self.bottom / 11.0) * math.cos(self.bottom / 29.0)
+
+    def advance(self, demand: Demand) -> None:
+        """Move one second on and record it."""
+        if demand.rpm <= 5.0 < self.rpm:
+            self.spent *= self.keep
+        self.rpm, self.pump = demand.rpm, demand.pump
+        change = demand.speed - self.speed
+        self.speed += max(-ACCELERATION * self.dt, min(ACCELERATION * self.dt, change))
+        if abs(demand.speed) < 1e-12 and abs(self.speed) < ACCELERATION * self.dt * 1.01:
+            self.speed = 0.0
+        block_move = self.speed * self.dt
+        control = self.control()
+        if not self.slips:
+            control[core.TOP] = self.x[-1] + block_move
+            self.height = -control[core.TOP]
+        else:
+            self.height -= block_move
+            control[core.TURN_RATE] = 0.0
+        before = self.x.copy()
+        self.tension, self.geo, self.found = core.step(
+            self.x, self.s, self.spent, self.latched, self.elements, self.hole.table, control
+        )
+        self.bottom = self.found[core.NEW_BOTTOM]
+        self.time += self.dt
+        self._feel(block_move, before)
+        if self.logging:
+            self._record()
+
+    def _feel(self, block_move: float, before: Floats) -> None:
+        """Keep track of how deep the last surface motion has been felt."""
+        if self.slips:
+            return
+        sense = int(np.sign(block_move)) if abs(block_move) > 2e-4 else 0
+        if self.rpm > 5.0 or (sense and sense != self.sense):
+            self.anchor = before
+            self.moved[:] = self.rpm > 5.0
+            self.sense = sense or self.sense
+        self.moved |= np.abs(self.x - self.anchor) > 1.5e-4
+
+    @property
+    def reach(self) -> float:
+        """Depth down to which every node has moved since the last reversal."""
+        still = np.nonzero(~self.moved[:-1])[0]
+        return float(self.x[0] if len(still) == 0 else self.x[still[-1] + 1])
+
+    @property
+    def hookload(self) -> float:
+        """True pull on the hook [N]."""
+        if self.slips:
+            return self.block_weight + self.load_in_slips
+        lift = self.pump_shift if self.pump > 0.3 else 0.0
+        return self.found[core.TOP_TENSION] + self.block_weight + lift
+
+    @property
+    def string_weight(self) -> float:
+        """True tension at the hook, pump shift left out [N]."""
+        return self.found[core.TOP_TENSION]
+
+    def hookload_at_rest(self) -> float:
+        """Frictionless hanging weight of the string [N]."""
+        g = core.geometry(self.x, self.elements, self.hole.table, FIRST, STEP)
+        return float((g[:, core.E_WEIGHT] * g[:, core.E_COS]).sum())
+
+    def _record(self) -> None:
+        loads = core.survey_loads(self.tension, self.geo, self.elements, self.x)
+        spans = [np.nan] * 4
+        for k, level in enumerate((1, 2)):
+            places = np.nonzero(self.latched >= level)[0]
+            if len(places):
+                spans[2 * k] = self.x[places[-1] + 1]
+                spans[2 * k + 1] = self.x[places[0]]
+        bit = self.found[core.BIT_LOAD]
+        bit_torque = 0.0
+        if bit > 0.0 and self.rpm > 5.0:
+            bit_torque = bit * self.settings["planted"].get("bit_torque_m", 0.03)
+        self.rows.append(
+            (
+                self.time, self.height, self.tally_depth, self.x[0], self.bottom, self.hookload,
+                self.string_weight, bit, self.found[core.FRICTION_TORQUE] + bit_torque, self.rpm, self.pump,
+                float(self.slips), loads[3], loads[0], loads[1], loads[2], float(self.latched.max()),
+                *spans, self.reach, self.found[core.RESIDUAL], self.zero, self.length,
+            )
+        )  # fmt: skip
+        self.tags.append(self.tag)
+
+    def add_stand(self) -> None:
+        """Screw one stand onto the string while it hangs in slips."""
+        rows = stand_elements(self.settings)
+        top = self.x[-1]
+        pull = max(float(self.tension[-1]), 0.0)
+        added = top - np.cumsum(rows[:, core.LENGTH] + rows[:, core.COMPLIANCE] * pull)
+        self._resize(np.vstack([self.elements, rows]), np.append(self.x, added))
+        self.length += float(rows[:, core.LENGTH].sum())
+        self.height = -self.x[-1]
+
+    def drop_stand(self) -> None:
+        """Break one stand out while the string hangs in slips."""
+        count = self.settings["rig"].get("elements_per_stand", 1)
+        self.length -= float(self.elements[-count:, core.LENGTH].sum())
+        self._resize(self.elements[:-count], self.x[:-count])
+        self.height = -self.x[-1]
+
+    def _resize(self, elements: Floats, x: Floats) -> None:
+        n, old = len(elements), len(self.elements)
+
+        def fit(values: NDArray, size: int) -> NDArray:
+            grown = np.zeros(size, dtype=values.dtype)
+            grown[: min(size, len(values))] = values[:size]
+            return grown
+
+        self.s, self.spent = fit(self.s, n + 1), fit(self.spent, n + 1)
+        self.latched, self.moved = fit(self.latched, n), fit(self.moved, n + 1)
+        if n > old:
+            self.moved[old:] = True
+        self.elements, self.x = elements.copy(), x.copy()
+        mark_runs(self.elements)
+        self.anchor = self.x.copy() if n < old else np.append(self.anchor, self.x[old + 1 :])
+
+
+COLUMNS = (
+    "time", "block", "tally_depth", "bit_true", "bottom_true", "hookload", "string_weight", "bit_load",
+    "torque", "rpm", "pump", "slips", "hanging", "ratio", "ratio_md", "compression", "state",
+    "top", "bottom", "helical_top", "helical_bottom", "reach", "residual", "zero", "tally",
+)  # fmt: skip
