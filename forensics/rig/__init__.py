@@ -1,0 +1,1 @@
+"""What surface sensors mean: block weight, tare, activity."""

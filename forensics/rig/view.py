@@ -5,11 +5,15 @@ from __future__ import annotations
 import enum
 from collections.abc import Mapping
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 import numpy as np
 from numpy.typing import NDArray
 
 from forensics.estimate import Estimate
+
+if TYPE_CHECKING:
+    from forensics.rig.steady import Steady
 
 Floats = NDArray[np.float64]
 Bools = NDArray[np.bool_]
@@ -83,6 +87,10 @@ class RigView:
         Reference readings used, by stand.
     can_not_tell : tuple of str
         What the log could not show, in sentences.
+    bottom_vote : ndarray of int8 or None
+        What each row alone says about the bit: +1 on bottom, -1 off, 0 nothing (the state was held).
+    steady : Steady or None
+        The steady moments off bottom that the references rest on.
     """
 
     block_weight: Estimate
@@ -101,3 +109,5 @@ class RigView:
     usual_flow: float
     tares: tuple[Tare, ...] = ()
     can_not_tell: tuple[str, ...] = ()
+    bottom_vote: NDArray[np.int8] | None = None
+    steady: Steady | None = None

@@ -1,0 +1,203 @@
+"""On bottom or not, and the activity of each row, by one rule set for every well."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+
+import numpy as np
+from numpy.typing import NDArray
+
+from forensics.logs.table import TimeLog
+from forensics.rig import noise
+from forensics.rig.depth import DepthView
+from forensics.rig.noise import Bools, Floats
+from forensics.rig.signals import Signals, read_signals
+from forensics.rig.tare import Reference
+from forensics.rig.view import Activity, RigView
+
+# Window over which hookload is averaged before it is judged [s].
+SMOOTHING = 9.0
+# Least weight that counts as weight on bottom, whatever the noise [N].
+_LEAST_WEIGHT = 2e3
+# A threshold never grows beyond this: poor references must not hide real weight [N].
+_MOST_WEIGHT = 15e3
+# A bit lowered at this speed for the window of motion is not on bottom [m/s].
+_FREE_SPEED = 0.05
+# Off bottom by less than this a free bit can't be told from a loaded one by depth [m].
+_TOUCH = 0.3
+# Second pass: bit load above this is on bottom (the contract's rule) [N].
+_REFINE_WEIGHT = 1e3
+
+
+@dataclass(frozen=True)
+class Surface:
+    """What the surface shows at each row, for judging the bit; arrays of shape (n,).
+
+    `smooth` hookload averaged [N]; `direction` +1 down; `differential` pressure re-zeroed, NaN where
+    there is none, with the level that counts as load [Pa].
+    """
+
+    smooth: Floats
+    direction: NDArray[np.int8]
+    speed: Floats
+    turning: Bools
+    pumping: Bools
+    slips: Bools
+    differential: Floats
+    differential_level: float
+
+
+def bottom_evidence(
+    surface: Surface, depths: DepthView, references: tuple[Reference, Reference, Reference], signals: Signals
+) -> NDArray[np.int8]:
+    """Ask what each row says by itself: +1 on bottom, -1 off it, 0 nothing.
+
+    Parameters
+    ----------
+    surface : Surface
+        Hookload, motion, drives.
+    depths : DepthView
+        Hole depth and gap.
+    references : tuple of Reference
+        Rotating, slack-off and pick-up weight.
+    signals : Signals
+        Noise and sampling.
+
+    Returns
+    -------
+    ndarray of int8, shape (n,)
+        Votes; the state holds where there's none.
+
+    Notes
+    -----
+    Turning, weight is the rotating reference less the hookload. Not turning, drag hides the bit between
+    slack-off and pick-up weight: only a hookload below the slack-off weight proves contact, only one at
+    the pick-up weight after lifting proves there's none, and between them the last answer stands (a
+    partial pick-up leaves the bit loaded).
+    """
+    rotating, slack, pick = references
+    close = (depths.gap < depths.near) & ~depths.run_in
+    settled = _settled(surface.turning, signals.count(SMOOTHING))
+    vote = np.zeros(len(close), dtype=np.int8)
+    _vote(vote, depths.advancing & surface.pumping, 1)
+    level = surface.differential_level
+    _vote(vote, surface.pumping & (surface.differential > level), 1)
+    _vote(vote, surface.pumping & (surface.differential < 0.5 * level), -1)
+    limit = weight_limit(rotating, signals)
+    load = rotating.weight - surface.smooth
+    turned = surface.turning & settled
+    _vote(vote, turned & (load > limit), 1)
+    _vote(vote, turned & (load < 0.5 * limit), -1)
+    still = ~surface.turning & settled
+    limit = weight_limit(slack, signals)
+    load = slack.weight - surface.smooth
+    _vote(vote, still & (load > limit), 1)
+    freely = (surface.direction > 0) & (-surface.speed > _FREE_SPEED) & (depths.gap > _TOUCH)
+    _vote(vote, still & freely & (load < limit), -1)
+    lifted = noise.hold(surface.direction) < 0
+    high = surface.smooth > pick.weight - weight_limit(pick, signals)
+    _vote(vote, still & lifted & high & (depths.gap > _TOUCH), -1)
+    far = (surface.direction < 0) & (depths.gap > 0.5 * depths.near)
+    _vote(vote, still & far & ~np.isfinite(pick.weight), -1)
+    _vote(vote, surface.slips, 0)
+    _vote(vote, ~close, -1)
+    return vote
+
+
+def weight_limit(reference: Reference, signals: Signals) -> float:
+    """Give the weight that counts: above six times the smoothed noise and the readings' scatter [N]."""
+    level = noise.NOISE_FACTOR * signals.smooth_noise(SMOOTHING)
+    return float(np.clip(max(level, 3.0 * reference.scatter), _LEAST_WEIGHT, max(_MOST_WEIGHT, level)))
+
+
+def on_bottom_from(vote: NDArray[np.int8]) -> Bools:
+    """Hold the last vote; before the first the bit is taken as off bottom."""
+    return noise.hold(vote, initial=-1) > 0
+
+
+def classify(view: RigView, unknown: Bools, unsure: tuple[Bools, Bools]) -> NDArray[np.int8]:
+    """Activity of each row, in the order the definitions give.
+
+    Parameters
+    ----------
+    view : RigView
+        Its slips, turning, pumping, on_bottom and direction are used.
+    unknown : ndarray of bool, shape (n,)
+        Rows whose hookload or bit depth is missing.
+    unsure : tuple of ndarray of bool, shape (n,)
+        Rows where turning, and where pumping, could not be told.
+
+    Returns
+    -------
+    ndarray of int8, shape (n,)
+        `Activity` codes.
+    """
+    turning, pumping, down, up = view.turning, view.pumping, view.direction > 0, view.direction < 0
+    moving = down | up
+    no_turn, no_pump = unsure
+    rules: list[tuple[Bools, Activity]] = [
+        (unknown, Activity.UNKNOWN),
+        (view.slips, Activity.CONNECTION),
+        # Without rotary speed a slide can't be told from rotary drilling; dry trips hardly ever turn.
+        (no_turn & (pumping | no_pump), Activity.UNKNOWN),
+        (no_pump & view.on_bottom, Activity.UNKNOWN),
+        (view.on_bottom & pumping & turning, Activity.DRILL_ROTATE),
+        (view.on_bottom & pumping, Activity.DRILL_SLIDE),
+        (turning & down, Activity.REAM_DOWN),
+        (turning & up, Activity.REAM_UP),
+        (turning, Activity.ROTATE_OFF_BOTTOM),
+        (moving & down, Activity.TRIP_IN),
+        (moving & up, Activity.TRIP_OUT),
+        (no_pump, Activity.UNKNOWN),
+        (pumping, Activity.CIRCULATE),
+    ]
+    return np.select(
+        [mask for mask, _ in rules], [int(code) for _, code in rules], default=int(Activity.STATIC)
+    ).astype(np.int8)
+
+
+def refine_activity(rig: RigView, bit_load: Floats, log: TimeLog) -> RigView:
+    """Second pass: settle on bottom or not, where drag hid it, by the replayed bit load.
+
+    Parameters
+    ----------
+    rig : RigView
+        First pass.
+    bit_load : ndarray, shape (n,)
+        Replayed load on the bit [N]; NaN where there's none.
+    log : TimeLog
+        The log the view was made from.
+
+    Returns
+    -------
+    RigView
+        With `on_bottom` and `activity` refined.
+
+    Notes
+    -----
+    Only rows that the first pass could not settle by themselves are looked at: out of slips, not turning,
+    near bottom, and no vote of depth or weight. Elsewhere a measured reference is the better witness.
+    """
+    signals = read_signals(log)
+    limit = max(_REFINE_WEIGHT, signals.smooth_noise(SMOOTHING))
+    known = np.isfinite(bit_load)
+    loaded = noise.running_median(np.where(known, bit_load, 0.0), signals.count(SMOOTHING)) > limit
+    unsettled = np.ones(len(log), dtype=bool) if rig.bottom_vote is None else rig.bottom_vote == 0
+    open_rows = known & unsettled & ~rig.slips & ~rig.turning
+    on_bottom = np.where(open_rows, loaded, rig.on_bottom)
+    refined = replace(rig, on_bottom=on_bottom)
+    kept = rig.activity == Activity.UNKNOWN
+    none = np.zeros(len(log), dtype=bool)
+    activity = classify(refined, kept & ~rig.slips, (none, none))
+    return replace(refined, activity=activity)
+
+
+def _vote(votes: NDArray[np.int8], where: Bools, value: int) -> None:
+    """Overrule earlier votes on some rows: the rules are called from the weakest witness to the strongest."""
+    votes[where] = value
+
+
+def _settled(state: Bools, count: int) -> Bools:
+    """Rows around which a state doesn't change within the averaging window."""
+    share = noise.running_mean(state.astype(np.float64), count)
+    return (share < 1e-6) | (share > 1 - 1e-6)

@@ -1,0 +1,186 @@
+"""Noise, resolution and the small window tools every rule on rig signals is built from."""
+
+from __future__ import annotations
+
+from typing import NamedTuple
+
+import numpy as np
+from numpy.typing import NDArray
+from scipy import ndimage
+
+Floats = NDArray[np.float64]
+Bools = NDArray[np.bool_]
+Ints = NDArray[np.int64]
+
+# A threshold lies at least this many times the noise above zero.
+NOISE_FACTOR = 6.0
+# A window holds at least this many samples.
+LEAST_SAMPLES = 3
+_MAD_TO_SIGMA = 1.4826
+# Standard deviation of x[i-1] - 2 x[i] + x[i+1] for white noise of unit standard deviation.
+_SECOND_DIFFERENCE = 6.0**0.5
+# Standard deviation of a rounding error, in rounding steps.
+_ROUNDING = 12.0**-0.5
+
+
+class Runs(NamedTuple):
+    """Stretches of consecutive True rows: rows `start` to `stop` - 1; both of shape (k,)."""
+
+    start: Ints
+    stop: Ints
+
+    def __len__(self) -> int:
+        """Count the stretches."""
+        return len(self.start)
+
+
+def resolution(values: Floats) -> float:
+    """Find the rounding step of a channel, zero where every change differs.
+
+    Parameters
+    ----------
+    values : ndarray, shape (n,)
+        Samples in time order; NaN allowed.
+
+    Returns
+    -------
+    float
+        The step, in the channel's unit.
+    """
+    change = np.abs(np.diff(values))
+    change = change[np.isfinite(change) & (change > 0)][:20000]
+    if change.size < 8:
+        return 0.0
+    step = float(np.quantile(change, 0.02))
+    off = np.abs(change / step - np.round(change / step))
+    return step if float(np.quantile(off, 0.9)) < 0.1 else 0.0
+
+
+def short_noise(values: Floats) -> float:
+    """Short-term noise of a channel, one standard deviation, from its second differences.
+
+    Second differences are blind to slow change, and their median to steps. Rows that repeat both
+    neighbours are left out (a held value shows no noise); rounding sets a floor.
+
+    Parameters
+    ----------
+    values : ndarray, shape (n,)
+        Samples in time order; NaN allowed.
+
+    Returns
+    -------
+    float
+        Standard deviation, in the channel's unit; zero for fewer than three usable samples.
+    """
+    second = np.abs(values[2:] - 2.0 * values[1:-1] + values[:-2])
+    second = second[np.isfinite(second)]
+    moved = second[second > 0]
+    floor = resolution(values) * _ROUNDING
+    if moved.size < 8:
+        return floor
+    # Held rows count as silence only where most rows move: a channel that rests at zero is not quiet.
+    kept = second if moved.size > 0.5 * second.size else moved
+    return max(float(np.median(kept)) * _MAD_TO_SIGMA / _SECOND_DIFFERENCE, floor)
+
+
+def samples_in(seconds: float, interval: float) -> int:
+    """Odd number of samples that spans a window, three at least."""
+    count = max(LEAST_SAMPLES, round(seconds / max(interval, 1e-9)))
+    return count + 1 - count % 2
+
+
+def window_seconds(seconds: float, interval: float) -> float:
+    """Give the window, widened to hold three samples."""
+    return max(seconds, (LEAST_SAMPLES - 1) * interval)
+
+
+def fill(values: Floats) -> Floats:
+    """Values with every gap bridged by a straight line, ends held.
+
+    Parameters
+    ----------
+    values : ndarray, shape (n,)
+        Samples; NaN where missing.
+
+    Returns
+    -------
+    ndarray, shape (n,)
+        No NaN left, unless all were.
+    """
+    good = np.isfinite(values)
+    if good.all() or not good.any():
+        return values
+    rows = np.arange(len(values))
+    return np.interp(rows, rows[good], values[good])
+
+
+def running_mean(values: Floats, count: int) -> Floats:
+    """Centred mean over `count` samples of a filled channel, ends shortened by reflection."""
+    return ndimage.uniform_filter1d(values, min(count, max(len(values), 1)), mode="nearest")
+
+
+def running_median(values: Floats, count: int) -> Floats:
+    """Centred median over `count` samples of a filled channel."""
+    return ndimage.median_filter(values, size=count, mode="nearest")
+
+
+def rate(values: Floats, time: Floats, seconds: float) -> Floats:
+    """Mean rate of change over a centred window in time.
+
+    Parameters
+    ----------
+    values : ndarray, shape (n,)
+        Filled channel.
+    time : ndarray, shape (n,)
+        [s]
+    seconds : float
+        Width of the window [s].
+
+    Returns
+    -------
+    ndarray, shape (n,)
+        Change per second; zero for a log of one row.
+    """
+    if len(time) < 2:
+        return np.zeros(len(time))
+    late = np.minimum(time + seconds / 2, time[-1])
+    early = np.maximum(time - seconds / 2, time[0])
+    change = np.interp(late, time, values) - np.interp(early, time, values)
+    return change / (late - early)
+
+
+def runs_of(mask: Bools) -> Runs:
+    """Stretches of consecutive True rows."""
+    edges = np.diff(np.concatenate(([0], mask.astype(np.int8), [0])))
+    return Runs(np.flatnonzero(edges == 1), np.flatnonzero(edges == -1))
+
+
+def rows_of(runs: Runs, count: int) -> Bools:
+    """Mask of `count` rows, True inside the stretches (the inverse of `runs_of`)."""
+    edges = np.zeros(count + 1, dtype=np.int64)
+    np.add.at(edges, runs.start, 1)
+    np.add.at(edges, runs.stop, -1)
+    return np.cumsum(edges[:-1]) > 0
+
+
+def span_in(values: Floats, runs: Runs) -> Floats:
+    """Largest less smallest value within each stretch of a filled channel, shape (k,)."""
+    if not len(runs):
+        return np.zeros(0)
+    edges = np.column_stack((runs.start, runs.stop)).ravel()
+    closed = np.append(values, values[-1])
+    high = np.maximum.reduceat(closed, edges)[::2]
+    low = np.minimum.reduceat(closed, edges)[::2]
+    return high - low
+
+
+def hold(values: NDArray[np.int8], initial: int = 0) -> NDArray[np.int8]:
+    """Last non-zero value at each row; `initial` before the first."""
+    rows = np.where(values != 0, np.arange(len(values)), -1)
+    last = np.maximum.accumulate(rows)
+    return np.where(last >= 0, values[np.maximum(last, 0)], initial).astype(np.int8)
+
+
+def despeckle(mask: Bools, count: int) -> Bools:
+    """Mask with stretches shorter than half of `count` samples turned over (a running majority)."""
+    return ndimage.uniform_filter1d(mask.astype(np.float64), count, mode="nearest") > 0.5

@@ -1,0 +1,153 @@
+"""The log as the rig rules use it: gaps bridged, noise known, motion worked out."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from forensics.logs.table import TimeLog
+from forensics.rig import noise
+from forensics.rig.noise import Bools, Floats
+
+# The contract's rule of motion: above 1 cm/s over 15 s.
+MOVING_SPEED = 0.01
+MOVING_WINDOW = 15.0
+# A block noisier than this [m] is averaged over a few seconds before its speed is taken.
+_QUIET_BLOCK = 0.01
+_STEADYING = 5.0
+# A gap longer than this is missing data, not a dropout to be bridged.
+LONGEST_BRIDGE = 60.0
+_NOISY = ("hookload", "bit_depth", "block_position", "torque", "rpm", "wob", "standpipe_pressure",
+          "flow_in", "differential_pressure")  # fmt: skip
+
+
+@dataclass(frozen=True)
+class Signals:
+    """Filled channels and their noise; arrays of shape (n,).
+
+    Parameters
+    ----------
+    time : ndarray
+        [s]
+    interval : float
+        Usual sampling interval [s].
+    bit, hookload : ndarray
+        Bit depth [m] and hookload as read [N], gaps bridged.
+    block : ndarray or None
+        Block height [m], gaps bridged; None where the log has none.
+    bit_noise, hookload_noise, block_noise : float
+        One standard deviation [m], [N], [m].
+    noise : mapping of str to float
+        The same for every channel the log has.
+    missing : ndarray of bool
+        Rows too far from any hookload or bit depth to know anything.
+    """
+
+    time: Floats
+    interval: float
+    bit: Floats
+    hookload: Floats
+    block: Floats | None
+    noise: dict[str, float]
+    missing: Bools
+
+    @property
+    def bit_noise(self) -> float:
+        """Noise of the bit depth [m]."""
+        return self.noise["bit_depth"]
+
+    @property
+    def hookload_noise(self) -> float:
+        """Noise of the hookload [N]."""
+        return self.noise["hookload"]
+
+    @property
+    def block_noise(self) -> float:
+        """Noise of the block height, or of the bit depth where there is no block channel [m]."""
+        return self.noise.get("block_position", self.bit_noise)
+
+    def count(self, seconds: float) -> int:
+        """Odd number of samples in a window of `seconds`, three at least."""
+        return noise.samples_in(seconds, self.interval)
+
+    def smooth_noise(self, seconds: float) -> float:
+        """Noise left in the hookload after a running mean over `seconds` [N]."""
+        return self.hookload_noise / self.count(seconds) ** 0.5
+
+
+def read_signals(log: TimeLog) -> Signals:
+    """Take from a log what the rig rules need.
+
+    Parameters
+    ----------
+    log : TimeLog
+        The SI table.
+
+    Returns
+    -------
+    Signals
+        Filled channels, noise, and the rows where too much is missing.
+    """
+    levels = {name: noise.short_noise(v) for name in _NOISY if (v := log.get(name)) is not None}
+    levels.setdefault("hookload", 0.0)
+    levels.setdefault("bit_depth", 0.0)
+    block = log.get("block_position")
+    bit = np.where(log.used, log.values["bit_depth"], np.nan)
+    return Signals(
+        time=log.time,
+        interval=log.interval,
+        bit=noise.fill(bit if np.isfinite(bit).any() else log.values["bit_depth"]),
+        hookload=noise.fill(log.values["hookload"]),
+        block=None if block is None else noise.fill(block),
+        noise=levels,
+        missing=far_from_data(log, "hookload") | far_from_data(log, "bit_depth"),
+    )
+
+
+def far_from_data(log: TimeLog, channel: str) -> Bools:
+    """Rows that lie inside a gap of a channel too long to bridge (all rows where it is absent)."""
+    values = log.get(channel)
+    if values is None:
+        return np.ones(len(log), dtype=bool)
+    gaps = noise.runs_of(~np.isfinite(values))
+    before = log.time[np.maximum(gaps.start - 1, 0)]
+    after = log.time[np.minimum(gaps.stop, len(log) - 1)]
+    long = after - before > max(LONGEST_BRIDGE, noise.LEAST_SAMPLES * log.interval)
+    return noise.rows_of(noise.Runs(gaps.start[long], gaps.stop[long]), len(log))
+
+
+def block_speed(signals: Signals) -> Floats:
+    """Speed of the block, up positive, over the contract's 15 s window [m/s].
+
+    Where the log has no block position the bit's depth stands in for it; in slips that says nothing.
+    """
+    height = -signals.bit if signals.block is None else signals.block
+    if signals.block_noise > _QUIET_BLOCK and signals.interval * noise.LEAST_SAMPLES <= _STEADYING:
+        height = noise.running_mean(height, signals.count(_STEADYING))
+    return noise.rate(height, signals.time, noise.window_seconds(MOVING_WINDOW, signals.interval))
+
+
+def direction_of(speed: Floats, signals: Signals) -> NDArray[np.int8]:
+    """Direction of the block: +1 down, -1 up, 0 not moving.
+
+    Parameters
+    ----------
+    speed : ndarray, shape (n,)
+        Block speed, up positive [m/s].
+    signals : Signals
+        For the noise of the block and the sampling.
+
+    Returns
+    -------
+    ndarray of int8, shape (n,)
+        Signs by the contract's rule, its threshold raised to six times the noise of the speed.
+    """
+    window = noise.window_seconds(MOVING_WINDOW, signals.interval)
+    level = signals.block_noise
+    if level > _QUIET_BLOCK and signals.interval * noise.LEAST_SAMPLES <= _STEADYING:
+        level /= signals.count(_STEADYING) ** 0.5
+    scatter = noise.NOISE_FACTOR * level * 2.0**0.5 / window
+    limit = max(MOVING_SPEED, scatter)
+    return (np.where(speed < -limit, 1, 0) + np.where(speed > limit, -1, 0)).astype(np.int8)
