@@ -117,8 +117,8 @@ def pipe_grid(well: Well, depth: float, clearance: str = "tool_joint") -> PipeGr
     Component ends are moved to the nearest depth step with their weight kept; a component shorter than
     half a step hands its weight to the one above.
     """
-    outside = float(well.fluid.reference_density)
-    inside = well.fluid.density_inside
+    outside = well.fluid.typical
+    inside = well.fluid.inside
     parts = well.string.components
     edges, rows, weights = _cut(parts, depth, outside, inside)
     chosen = [parts[row] for row in rows]

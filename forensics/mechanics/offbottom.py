@@ -7,6 +7,7 @@ from numpy.typing import ArrayLike, NDArray
 
 from forensics.mechanics import kernels_march as kernels
 from forensics.mechanics.grid import HoleGrid, PipeGrid, hole_grid, pipe_grid
+from forensics.mechanics.softstring import hole_arrays, pipe_arrays
 from forensics.well.model import Well
 
 Floats = NDArray[np.float64]
@@ -93,17 +94,3 @@ class OffBottomModel:
         """Weight of pipe between rotary and hook at block height `block` [m], at full share [N]."""
         height = np.atleast_1d(np.asarray(block, dtype=float)) - self.block_zero
         return self.pipe.hanging * np.maximum(np.nan_to_num(height), 0.0)
-
-
-def hole_arrays(hole: HoleGrid) -> kernels.Hole:
-    """The hole grid as compiled code takes it."""
-    return kernels.Hole(
-        1.0 / hole.step, hole.cos_i, hole.sin2, hole.kappa2, hole.kappa_d, hole.diameter
-    )
-
-
-def pipe_arrays(pipe: PipeGrid) -> kernels.Pipe:
-    """The pipe grid as compiled code takes it."""
-    return kernels.Pipe(
-        pipe.x, pipe.node, pipe.weight, pipe.ei, pipe.ea, pipe.clearance_od, pipe.radius
-    )

@@ -1,0 +1,198 @@
+"""The two-ended load memory, compiled: motion enters from the top or the bit and dies out in friction.
+
+The tension profile of the last sample is kept by distance above the bit. A front from the surface is
+marched down for as long as its curve lies beyond the remembered one; a front from the bit is found from
+the length the bit has drilled. Once a front has crossed the whole string, the profile follows the
+hookload until the motion turns.
+"""
+
+from __future__ import annotations
+
+from typing import NamedTuple
+
+import numpy as np
+from numba import njit
+
+from forensics.mechanics.kernels_judge import Criteria, latch
+from forensics.mechanics.kernels_march import Array, Hole, Pipe, contact
+
+FREE = 0
+ROTATING = 2
+
+
+class Memory(NamedTuple):
+    """What the string remembers: tension at nodes, at the last reversal, work space, state of elements."""
+
+    tension: Array
+    reversal: Array
+    work: Array
+    drag: Array
+    state: Array
+
+
+class Place(NamedTuple):
+    """Where the string is: bit depth, row of the top element, depth index of the bit, weight scale."""
+
+    bit: float
+    top: int
+    first: int
+    scale: float
+
+
+@njit(cache=True, error_model="numpy")
+def march_down(
+    hole: Hole, pipe: Pipe, criteria: Criteria, mu: Array, memory: Memory, place: Place,
+    sigma: float, share: float, tension_top: float, bounded: bool,
+) -> int:
+    """March from the rotary down; returns the lowest node reached (0: the bit).
+
+    Bounded, the march ends where the curve meets the remembered tension; below, that stands.
+    Elements that pass the helical threshold on the way carry helical contact at once.
+    """
+    kept = memory.tension
+    tension = tension_top
+    kept[place.top + 1] = tension
+    slope = 0.0
+    for j in range(place.top, -1, -1):
+        length = min(pipe.x[j + 1], place.bit) - pipe.x[j]
+        i = max(place.first - ((pipe.node[j] + pipe.node[j + 1]) >> 1), 0)
+        weight = pipe.weight[j] * place.scale
+        middle = tension + 0.5 * length * slope
+        force = contact(middle, weight, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i])
+        if middle < 0.0:
+            if memory.state[j] < 2 and latch(pipe, criteria, j, i, middle, place.scale):
+                memory.state[j] = 2
+            if memory.state[j] == 2:
+                force += (middle / criteria.root[criteria.kind[j], i]) ** 2
+        slope = -weight * hole.cos_i[i] + sigma * share * mu[i] * force
+        tension += slope * length
+        if bounded and (tension - kept[j]) * sigma >= 0.0:
+            return j + 1
+        kept[j] = tension
+    return 0
+
+
+@njit(cache=True, error_model="numpy")
+def rise(
+    hole: Hole, pipe: Pipe, criteria: Criteria, mu: Array, memory: Memory, place: Place,
+    sigma: float, share: float, tension_bit: float, helices: bool,
+) -> float:
+    """March up from the bit into work space, with the friction summed beside; returns tension at the rotary."""
+    tension = tension_bit
+    drag = 0.0
+    slope = 0.0
+    memory.work[0] = tension
+    memory.drag[0] = 0.0
+    for j in range(place.top + 1):
+        length = min(pipe.x[j + 1], place.bit) - pipe.x[j]
+        i = max(place.first - ((pipe.node[j] + pipe.node[j + 1]) >> 1), 0)
+        weight = pipe.weight[j] * place.scale
+        middle = tension + 0.5 * length * slope
+        force = contact(middle, weight, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i])
+        if helices and middle < 0.0 and memory.state[j] == 2:
+            force += (middle / criteria.root[criteria.kind[j], i]) ** 2
+        rub = share * mu[i] * force
+        slope = weight * hole.cos_i[i] - sigma * rub
+        tension += slope * length
+        drag += rub * length
+        memory.work[j + 1] = tension
+        memory.drag[j + 1] = drag
+    return tension
+
+
+@njit(cache=True)
+def anchor(memory: Memory, place: Place, tension_top: float, model_top: float) -> None:
+    """Take the curve in work space, free at the bit, as the profile.
+
+    What the hookload says beyond it is spread as the friction is: the whole string is taken to rub
+    more, or less, by one ratio.
+    """
+    whole = memory.drag[place.top + 1]
+    excess = (tension_top - model_top) / whole if whole > 1.0 else 0.0
+    for j in range(place.top + 2):
+        memory.tension[j] = memory.work[j] + excess * memory.drag[j]
+
+
+@njit(cache=True)
+def stretch_between(pipe: Pipe, first: Array, second: Array, place: Place) -> float:
+    """Length by which the string differs between two tension profiles [m]."""
+    total = 0.0
+    for j in range(place.top + 1):
+        length = min(pipe.x[j + 1], place.bit) - pipe.x[j]
+        total += 0.5 * (second[j] - first[j] + second[j + 1] - first[j + 1]) * length / pipe.ea[j]
+    return total
+
+
+@njit(cache=True, error_model="numpy")
+def bit_curve(
+    hole: Hole, pipe: Pipe, criteria: Criteria, mu: Array, memory: Memory, place: Place, tension_bit: float,
+    limit: float,
+) -> tuple[float, int]:
+    """Stretch of the curve from `tension_bit` up to where it meets the memory, and the node it ends under.
+
+    The curve is left in work space. Ends early where the stretch passes `limit`. The node is -1 where
+    the curve runs to the rotary without meeting the memory.
+    """
+    kept = memory.tension
+    tension = tension_bit
+    over = tension - kept[0]
+    memory.work[0] = tension
+    stretch = 0.0
+    slope = 0.0
+    for j in range(place.top + 1):
+        length = min(pipe.x[j + 1], place.bit) - pipe.x[j]
+        i = max(place.first - ((pipe.node[j] + pipe.node[j + 1]) >> 1), 0)
+        weight = pipe.weight[j] * place.scale
+        middle = tension + 0.5 * length * slope
+        force = contact(middle, weight, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i])
+        give = 1.0 / pipe.ea[j]
+        if middle < 0.0 and memory.state[j] == 2:
+            root = criteria.root[criteria.kind[j], i]
+            force += (middle / root) ** 2
+            give += 4.0 * pipe.ei[j] / root**4
+        slope = weight * hole.cos_i[i] - mu[i] * force
+        tension += slope * length
+        memory.work[j + 1] = tension
+        above = tension - kept[j + 1]
+        if above <= 0.0:
+            return stretch + 0.5 * over * length * over / (over - above) * give, j
+        stretch += 0.5 * (over + above) * length * give
+        if stretch > limit:
+            return stretch, j
+        over = above
+    return stretch, -1
+
+
+@njit(cache=True, error_model="numpy")
+def bit_front(
+    hole: Hole, pipe: Pipe, criteria: Criteria, mu: Array, memory: Memory, place: Place, drilled: float
+) -> bool:
+    """Unload the string from below by the length drilled [m]; returns whether the front reached the rotary."""
+    low = memory.tension[0]
+    high = 0.0
+    if low >= high or drilled <= 0.0:
+        return False
+    most, _ = bit_curve(hole, pipe, criteria, mu, memory, place, high, drilled)
+    if most <= drilled:
+        value = high
+    else:
+        low_value, high_value = -drilled, most - drilled
+        value = low
+        for _ in range(24):
+            value = 0.5 * (low + high)
+            if high_value < 3.0 * drilled:
+                value = low - low_value * (high - low) / (high_value - low_value)
+            got, _ = bit_curve(hole, pipe, criteria, mu, memory, place, value, 8.0 * drilled)
+            miss = got - drilled
+            if abs(miss) < 0.01 * drilled or high - low < 1.0:
+                break
+            if miss > 0.0:
+                high, high_value = value, miss
+            else:
+                low, low_value = value, miss
+    _, end = bit_curve(hole, pipe, criteria, mu, memory, place, value, np.inf)
+    reached = end < 0
+    last = place.top if reached else end
+    for j in range(last + 1):
+        memory.tension[j] = memory.work[j]
+    return reached

@@ -1,0 +1,117 @@
+"""Model lines of hookload and torque against depth, and what was measured beyond them."""
+
+from __future__ import annotations
+
+import numpy as np
+from numpy.typing import NDArray
+
+from forensics.friction.result import Calibration
+from forensics.loads import Fan
+from forensics.logs.table import TimeLog
+from forensics.replay.model import LoadModel, factors
+from forensics.replay.samples import Prepared
+from forensics.rig.view import Activity, RigView
+
+Floats = NDArray[np.float64]
+
+FAN_POINTS = 160
+
+
+def fan(calibration: Calibration, model: LoadModel, depths: tuple[float, float]) -> Fan:
+    """Hookload against bit depth for pick-up, rotating and slack-off, with the band of the friction draws.
+
+    Block weight and bias are in; pipe above the rotary is not.
+    """
+    depth = np.linspace(max(depths[0], 1.0), max(depths[1], depths[0] + 1.0, 2.0), FAN_POINTS)
+    lines = {kind: _line(kind, depth, calibration, model) for kind in ("pick_up", "rotating", "slack_off")}
+    bands = {kind: _band(kind, depth, calibration, model) for kind in ("pick_up", "slack_off")}
+    return Fan(
+        depth, lines["pick_up"], lines["rotating"], lines["slack_off"],
+        np.minimum(bands["pick_up"][0], lines["pick_up"]), np.maximum(bands["pick_up"][1], lines["pick_up"]),
+        np.minimum(bands["slack_off"][0], lines["slack_off"]),
+        np.maximum(bands["slack_off"][1], lines["slack_off"]),
+    )
+
+
+def _line(kind: str, depth: Floats, calibration: Calibration, model: LoadModel) -> Floats:
+    cased, open_hole = factors(calibration)
+    base = calibration.block_weight.value + calibration.hookload_bias.value
+    scale = calibration.weight_scale.value
+    return base + model.offbottom.string_weight(kind, depth, cased, open_hole, scale)
+
+
+def _band(kind: str, depth: Floats, calibration: Calibration, model: LoadModel) -> tuple[Floats, Floats]:
+    """Fifth and ninety-fifth percentile of the line over the calibration's draws."""
+    draws = calibration.draws[:32]
+    if len(draws) == 0:
+        line = _line(kind, depth, calibration, model)
+        return line, line
+    bias = calibration.hookload_bias.value
+    scale = calibration.weight_scale.value
+    lines = [
+        block + bias + model.offbottom.string_weight(kind, depth, cased, open_hole, scale)
+        for cased, open_hole, block in draws
+    ]
+    low, high = np.percentile(lines, [5.0, 95.0], axis=0)
+    return low, high
+
+
+def drag_lines(
+    prepared: Prepared, rig: RigView, calibration: Calibration, model: LoadModel, moving: NDArray[np.int8]
+) -> tuple[Floats, Floats]:
+    """Expected hookload off bottom and measured less expected [N]; NaN where no line applies.
+
+    Parameters
+    ----------
+    prepared : Prepared
+        Samples and smoothed hookload.
+    rig, calibration, model
+        The run and its calibration.
+    moving : ndarray of int8, shape (n,)
+        +1 where the whole string slides down, -1 up, 2 where it turns, 0 elsewhere.
+    """
+    samples = prepared.samples
+    away = samples.free & (rig.direction != 0)
+    kinds = {
+        "slack_off": away & (moving == 1),
+        "pick_up": away & (moving == -1),
+        "rotating": samples.free & (moving == 2),
+    }
+    expected = np.full(len(samples.bit), np.nan)
+    grid = np.linspace(np.min(samples.bit), np.max(samples.bit) + 1.0, 2 * FAN_POINTS)
+    cased, open_hole = factors(calibration)
+    for kind, rows in kinds.items():
+        if rows.any():
+            line = model.offbottom.string_weight(kind, grid, cased, open_hole)
+            weight = np.interp(samples.bit[rows], grid, line) * samples.scale[rows]
+            expected[rows] = weight + prepared.hanging[rows]
+    return expected, prepared.hookload - expected
+
+
+def torque_lines(
+    log: TimeLog, prepared: Prepared, rig: RigView, calibration: Calibration, model: LoadModel, bit_load: Floats
+) -> Floats:
+    """Surface torque measured less expected [N.m], while turning; NaN elsewhere.
+
+    On bottom the bit's torque is taken as proportional to the bit load, at the ratio this run's own
+    rotary drilling shows.
+    """
+    torque = log.get("torque")
+    residual = np.full(len(log), np.nan)
+    if torque is None or calibration.rotational is None:
+        return residual
+    samples = prepared.samples
+    grid = np.linspace(np.min(samples.bit), np.max(samples.bit) + 1.0, 2 * FAN_POINTS)
+    line = model.offbottom.torque(grid, calibration.rotational.value)
+    loss = calibration.torque_loss.value if calibration.torque_loss else 0.0
+    expected = np.interp(samples.bit, grid, line) * samples.scale + loss
+    beyond = torque - expected
+    turning = rig.turning & ~rig.slips
+    off = turning & samples.free
+    residual[off] = beyond[off]
+    drilling = rig.activity == Activity.DRILL_ROTATE
+    loaded = drilling & (bit_load > 5e3) & np.isfinite(beyond)
+    if loaded.sum() >= 30:
+        ratio = max(float(np.median(beyond[loaded] / bit_load[loaded])), 0.0)
+        residual[drilling] = beyond[drilling] - ratio * bit_load[drilling]
+    return residual

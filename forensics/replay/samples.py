@@ -1,0 +1,164 @@
+"""What moves the string at each row: hookload, block, bottom and rotation made ready for the kernels."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numba import njit
+from numpy.typing import NDArray
+from scipy import ndimage
+
+from forensics.friction.result import Calibration
+from forensics.logs.table import TimeLog
+from forensics.mechanics.kernels_replay import HOLD, SLIDE, TURN, Samples
+from forensics.replay.local import LocalMatch
+from forensics.replay.model import LoadModel
+from forensics.rig.view import Activity, RigView
+from forensics.well.model import Well
+
+Floats = NDArray[np.float64]
+
+SMOOTH_SECONDS = 15.0  # moving median of the hookload; longer hides tags, shorter lets noise ratchet
+EDGE_SECONDS = 3.0  # around slips the hookload is neither the block's nor the string's
+CLEAR_OF_BOTTOM = 1.0  # m; nearer than this, stretch may still hold the bit on bottom
+MIN_REVERSAL = 0.02  # m; a block that comes back by less has not reversed
+
+
+@dataclass(frozen=True)
+class Prepared:
+    """Samples for the kernels, with the smoothed hookload and the block and pipe weight taken off it [N]."""
+
+    samples: Samples
+    hookload: Floats
+    hanging: Floats
+
+
+def prepare(
+    log: TimeLog, well: Well, rig: RigView, calibration: Calibration, model: LoadModel, local: LocalMatch
+) -> Prepared:
+    """Make the replay's samples from the log and the rig view, one a row."""
+    mode = _mode(log, rig)
+    hookload = _smooth(rig.hookload, mode != HOLD, log.interval)
+    above = model.offbottom.above_rotary(rig.block) * calibration.pipe_above_rotary.value
+    hanging = calibration.block_weight.value + calibration.hookload_bias.value + above
+    bit = np.maximum(_filled(log.values["bit_depth"]), 1.0)
+    height = _filled(rig.block) if np.isfinite(rig.block).any() else -bit
+    noise = rig.noise.get("block_position", 0.0)
+    direction, travel = _reversals(height, mode == HOLD, max(MIN_REVERSAL, 6.0 * noise))
+    drilling = rig.on_bottom & (rig.pumping if np.isfinite(rig.usual_flow) else True)
+    clear = np.nan_to_num(rig.hole_depth, nan=np.inf) - bit > CLEAR_OF_BOTTOM
+    samples = Samples(
+        bit=bit,
+        top=hookload - hanging - local.shift,
+        mode=mode,
+        direction=direction,
+        travel=travel,
+        drilling=drilling,
+        free=clear & ~rig.on_bottom,
+        share=_share(log, height, model),
+        down=local.down,
+        up=local.up,
+        scale=weight_scale(log, well, calibration),
+        step=np.clip(np.diff(log.time, prepend=log.time[0]), 0.0, 4.0 * log.interval),
+        witness=np.full(len(log), np.nan),
+    )
+    return Prepared(samples, hookload, hanging)
+
+
+def weight_scale(log: TimeLog, well: Well, calibration: Calibration) -> Floats:
+    """Factor on all buoyed weights at each row: calibrated, and for mud other than the reference."""
+    steel = 7850.0
+    reference = well.fluid.typical
+    density = np.asarray(well.fluid.outside_at(log.time, log.values["bit_depth"]), dtype=float)
+    density = np.where(np.isfinite(density), density, reference)
+    change = (1.0 - density / steel) / (1.0 - reference / steel)
+    return calibration.weight_scale.value * np.broadcast_to(change, len(log)).astype(float)
+
+
+def _mode(log: TimeLog, rig: RigView) -> NDArray[np.int8]:
+    """HOLD in slips, at their edges and where the hookload is missing; TURN where the string turns."""
+    held = rig.slips | (rig.activity == Activity.CONNECTION)
+    edge = max(1, round(EDGE_SECONDS / log.interval))
+    held = ndimage.binary_dilation(held, iterations=edge)
+    held |= ~np.isfinite(rig.hookload) | ~np.isfinite(log.values["bit_depth"])
+    return np.where(held, HOLD, np.where(rig.turning, TURN, SLIDE)).astype(np.int8)
+
+
+def _smooth(values: Floats, good: NDArray[np.bool_], interval: float) -> Floats:
+    """Moving median over the good samples, each run of them padded by its own end values."""
+    filled = np.where(good, values, np.nan)
+    rows = np.flatnonzero(np.isfinite(filled))
+    if len(rows) == 0:
+        return np.zeros_like(values)
+    filled = filled[_nearest(rows, len(values))]
+    width = max(3, round(SMOOTH_SECONDS / interval))
+    if width > 3 or interval <= SMOOTH_SECONDS / 3:
+        filled = ndimage.median_filter(filled, size=width | 1, mode="nearest")
+    return filled
+
+
+def _nearest(rows: NDArray[np.int64], count: int) -> NDArray[np.int64]:
+    """Row of the nearest good sample for every sample."""
+    at = np.arange(count)
+    right = np.clip(np.searchsorted(rows, at), 0, len(rows) - 1)
+    left = np.maximum(right - 1, 0)
+    closer = np.abs(rows[right] - at) <= np.abs(rows[left] - at)
+    return np.where(closer, rows[right], rows[left])
+
+
+def _filled(values: Floats) -> Floats:
+    """Gaps filled from the last good value (the first good one at the start)."""
+    good = np.isfinite(values)
+    if good.all():
+        return values.astype(float)
+    at = np.maximum.accumulate(np.where(good, np.arange(len(values)), -1))
+    at = np.where(at < 0, np.argmax(good), at)
+    return values[at]
+
+
+def _share(log: TimeLog, height: Floats, model: LoadModel) -> Floats:
+    """Axial share of friction while turning, |v| / sqrt(v² + (ωR)²), signed + going down."""
+    rpm = log.get("rpm")
+    if rpm is None:
+        return np.zeros(len(log))
+    window = max(3, round(15.0 / log.interval))
+    speed = -ndimage.uniform_filter1d(np.gradient(height, log.time), window)
+    radius = float(np.median(model.offbottom.pipe.radius))
+    rim = np.maximum(np.nan_to_num(rpm), 5.0) * 2.0 * np.pi / 60.0 * radius
+    return speed / np.hypot(speed, rim)
+
+
+@njit(cache=True)
+def _reversals(
+    height: Floats, held: NDArray[np.bool_], threshold: float
+) -> tuple[NDArray[np.int8], Floats]:
+    """Direction of the block (+1 down) kept until it comes back by `threshold`, and travel since [m]."""
+    count = len(height)
+    direction = np.zeros(count, dtype=np.int8)
+    travel = np.zeros(count)
+    way = 0
+    start = turn = height[0]
+    for t in range(count):
+        here = height[t]
+        if held[t]:
+            way = 0
+            start = turn = here
+            continue
+        if way == 0:
+            if abs(here - start) > threshold:
+                way = 1 if here < start else -1
+                turn = here
+        elif way == 1:
+            if here < turn:
+                turn = here
+            elif here - turn > threshold:
+                way, start, turn = -1, turn, here
+        else:
+            if here > turn:
+                turn = here
+            elif turn - here > threshold:
+                way, start, turn = 1, turn, here
+        direction[t] = way
+        travel[t] = abs(turn - start)
+    return direction, travel

@@ -1,0 +1,45 @@
+"""How much of the weight lost while sliding is ordinary drag, and how much came with the helix."""
+
+from __future__ import annotations
+
+import numpy as np
+from numba import njit
+from numpy.typing import NDArray
+
+from forensics.mechanics.kernels_march import Array, Hole, Pipe, march_up
+from forensics.mechanics.kernels_replay import SLIDE, Found
+from forensics.replay.model import LoadModel
+from forensics.replay.samples import Prepared
+
+Floats = NDArray[np.float64]
+
+
+@njit(cache=True)
+def _top_many(hole: Hole, pipe: Pipe, mu: Array, bits: Array, loads: Array, factor: Array, scale: Array) -> Array:
+    """Tension at the rotary of a string sliding down on a loaded bit, without helical contact [N]."""
+    result = np.empty(len(bits))
+    work = np.empty(len(pipe.x))
+    for k in range(len(bits)):
+        result[k] = march_up(hole, pipe, mu * factor[k], bits[k], 1.0, -loads[k], np.inf, work, scale[k])
+    return result
+
+
+def straight_drag(
+    model: LoadModel, prepared: Prepared, factors: tuple[float, float], found: Found, lost: Floats
+) -> Floats:
+    """Ordinary sliding drag between surface and bit at each row, helical contact left out [N].
+
+    Where no place is helical all lost weight is ordinary.
+    """
+    samples = prepared.samples
+    ordinary = lost.copy()
+    rows = np.flatnonzero((found.state == 2) & (samples.mode == SLIDE) & np.isfinite(lost))
+    if len(rows) == 0:
+        return ordinary
+    hole, pipe = model.offbottom.hole_arrays, model.offbottom.pipe_arrays
+    args = (samples.bit[rows], found.bit_load[rows])
+    scale = samples.scale[rows]
+    sliding = _top_many(hole, pipe, model.friction(*factors), *args, samples.down[rows], scale)
+    still = _top_many(hole, pipe, np.zeros(len(hole.cos_i)), *args, samples.down[rows], scale)
+    ordinary[rows] = np.minimum(still - sliding, lost[rows])
+    return ordinary
