@@ -17,6 +17,8 @@ G = 9.80665
 BLOCK = 300e3
 STAND = 28.0
 LIFT = 8.0
+RPM = 80.0
+RADIUS = 0.084
 
 
 @dataclass(frozen=True)
@@ -68,10 +70,12 @@ def _linear_weight(job: Job, above_bit: np.ndarray) -> np.ndarray:
 
 
 def string_weight(
-    job: Job, depths: np.ndarray, kind: str, push: float = 0.0
+    job: Job, depths: np.ndarray, drag: float, push: float = 0.0
 ) -> tuple[np.ndarray, np.ndarray]:
-    """Weight at the rotary [N] and torque [N.m] for bits at `depths` and `push` [N] on each."""
-    sign = {"pick_up": 1.0, "slack_off": -1.0, "rotating": 0.0}[kind]
+    """Weight at the rotary [N] and torque [N.m] for bits at `depths` and `push` [N] on each.
+
+    `drag` is the part of friction that acts along the hole: 1 going up, -1 going down, 0 turning in place.
+    """
     tension = np.full(depths.shape, -push)
     torque = np.zeros(depths.shape)
     step = 5.0
@@ -83,8 +87,8 @@ def string_weight(
         bend = np.where((angle > 0) & (angle < job.hold), job.build, 0.0)
         contact = np.abs(weight * np.sin(angle) - tension * bend)
         friction = np.where(md < job.shoe, job.cased, job.open)
-        torque += (sign == 0.0) * job.torque_friction * contact * 0.084 * length
-        tension = tension + length * (weight * np.cos(angle) + sign * friction * contact)
+        torque += math.sqrt(1.0 - drag**2) * job.torque_friction * contact * RADIUS * length
+        tension = tension + length * (weight * np.cos(angle) + drag * friction * contact)
     return tension, torque
 
 
@@ -124,23 +128,24 @@ def _weights(job: Job, phase: np.ndarray, bit: np.ndarray) -> tuple[np.ndarray, 
     grid = np.linspace(bit.min() - 1.0, bit.max() + 1.0, 40)
     push = np.select([phase == "drill", phase == "slide"], [job.weight, job.slide_weight], 0.0)
 
-    def at(kind: str, load: float = 0.0) -> tuple[np.ndarray, np.ndarray]:
-        tension, torque = string_weight(job, grid, kind, load)
+    def at(drag: float, load: float = 0.0) -> tuple[np.ndarray, np.ndarray]:
+        tension, torque = string_weight(job, grid, drag, load)
         return np.interp(bit, grid, tension), np.interp(bit, grid, torque)
 
-    turning = np.isin(phase, ("rotating", "ream", "drill"))
+    around = RPM * 2.0 * math.pi / 60.0 * RADIUS
+    shared = {"drill": job.rop / math.hypot(around, job.rop), "ream": 0.1 / math.hypot(around, 0.1)}
     raised = np.isin(phase, ("pick_up", "lift"))
+    conditions = [raised, phase == "slide", phase == "slack_off", phase == "drill", phase == "ream"]
+    drilled, reamed = at(-shared["drill"], job.weight), at(-shared["ream"])
+    still = at(0.0)
     hook = np.select(
-        [raised, phase == "slide", phase == "slack_off", phase == "drill", turning],
-        [
-            at("pick_up")[0],
-            at("slack_off", job.slide_weight)[0],
-            at("slack_off")[0],
-            at("rotating", job.weight)[0],
-            at("rotating")[0],
-        ],
+        conditions,
+        [at(1.0)[0], at(-1.0, job.slide_weight)[0], at(-1.0)[0], drilled[0], reamed[0]],
+        still[0],
     )
-    torque = np.where(turning, at("rotating")[1] + 4000.0 * (phase == "drill"), 0.0)
+    torque = np.select(
+        [phase == "drill", phase == "ream", phase == "rotating"], [drilled[1] + 4000.0, reamed[1], still[1]]
+    )
     return np.where(np.isin(phase, ("slips", "raise")), BLOCK, hook + BLOCK), torque, push
 
 
@@ -153,6 +158,8 @@ def log_columns(job: Job) -> dict[str, np.ndarray]:
     bit = job.start_depth - LIFT + np.cumsum(np.where(slips, 0.0, speed)) * job.interval
     hole = np.maximum(np.maximum.accumulate(bit), job.start_depth)
     hook, torque, push = _weights(job, phase, bit)
+    # The pipe between rotary and hook hangs from the hook too, and in air.
+    hook = hook + np.where(slips, 0.0, (block - block.min()) * ROWS[-1][5] * G)
     turning = np.isin(phase, ("rotating", "ream", "drill"))
     pumping = ~slips
     flow = np.where(pumping, 2000.0, 0.0)
@@ -169,9 +176,9 @@ def log_columns(job: Job) -> dict[str, np.ndarray]:
         "Hole Depth (m)": hole,
         "Block Position (m)": block,
         "Hookload (kN)": hook / 1e3,
-        "WOB (kN)": (string_weight(job, bit[:1], "rotating")[0][0] + BLOCK + 9e3 - hook) / 1e3,
+        "WOB (kN)": (string_weight(job, bit[:1], 0.0)[0][0] + BLOCK + 9e3 - hook) / 1e3,
         "Torque (kN.m)": np.where(turning, noisy(torque, 150.0), 0.0) / 1e3,
-        "RPM (rpm)": np.where(turning, noisy(np.full(len(bit), 80.0), 0.5), 0.0),
+        "RPM (rpm)": np.where(turning, noisy(np.full(len(bit), RPM), 0.5), 0.0),
         "Standpipe Pressure (bar)": np.where(pumping, noisy(180.0 + push / 4e3, 0.3), 0.0),
         "Flow In (L/min)": np.where(pumping, noisy(flow, 5.0), 0.0),
     }
