@@ -1,0 +1,161 @@
+"""Paper, ink and layout shared by all figures."""
+
+from __future__ import annotations
+
+import functools
+from collections.abc import Callable, Sequence
+from typing import ParamSpec
+
+import matplotlib as mpl
+from matplotlib.axes import Axes
+from matplotlib.backends.backend_agg import FigureCanvasAgg
+from matplotlib.colors import BoundaryNorm, ListedColormap
+from matplotlib.figure import Figure
+
+MAX_WIDTH = 11.0
+MAX_HEIGHT = 11.0
+DPI = 130
+
+INK = "#1b2733"
+MUTED = "#66717b"
+FAINT = "#c3c9ce"
+GRID = "#e7e9eb"
+SPAN = "#f3e9cf"
+
+# Told apart by lightness as well as hue, and by width or dash where they share an axis.
+LOGGED = "#9aa1a7"
+SURFACE = "#2b7bb0"
+BIT = "#0b4f4a"
+MODEL = "#c77f0a"
+REACH = "#8cc0e0"
+SINUSOIDAL = "#e9b949"
+HELICAL = "#7a1f3d"
+PICK_UP = "#2b7bb0"
+SLACK_OFF = "#c77f0a"
+ROTATING = INK
+
+# Load ratio classes: each step darker than the last, the first colour change at the threshold itself.
+RATIO_EDGES = (0.0, 0.25, 0.5, 0.75, 1.0, 1.41, 2.0, 3.0)
+_RATIO_COLOURS = ("#ffffff", "#eef1f2", "#dbe1e4", "#bcc7cd", "#f0b93a", "#d0662a", "#8e2443")
+_RATIO_OVER = "#3d0f2b"
+
+_STYLE = {
+    "font.family": ["DejaVu Sans"],
+    "font.size": 8.0,
+    "axes.labelsize": 8.0,
+    "axes.titlesize": 8.5,
+    "axes.titlelocation": "left",
+    "axes.edgecolor": FAINT,
+    "axes.labelcolor": INK,
+    "axes.linewidth": 0.7,
+    "axes.spines.top": False,
+    "axes.spines.right": False,
+    "axes.axisbelow": True,
+    "axes.formatter.useoffset": False,
+    "axes.unicode_minus": True,
+    "text.color": INK,
+    "xtick.color": MUTED,
+    "ytick.color": MUTED,
+    "xtick.labelsize": 7.5,
+    "ytick.labelsize": 7.5,
+    "xtick.major.size": 3.0,
+    "ytick.major.size": 3.0,
+    "grid.color": GRID,
+    "grid.linewidth": 0.6,
+    "lines.linewidth": 0.9,
+    "lines.solid_joinstyle": "bevel",
+    "path.simplify": True,
+    "path.simplify_threshold": 0.5,
+    "agg.path.chunksize": 20000,
+    "svg.hashsalt": "report",
+    "figure.facecolor": "white",
+    "savefig.facecolor": "white",
+}
+_BACKEND_KEYS = {"backend", "backend_fallback", "interactive", "toolbar", "timezone", "webagg.port"}
+
+P = ParamSpec("P")
+
+
+def house_settings() -> dict[str, object]:
+    """Settings for drawing: matplotlib's own defaults, whatever the user's file says, then the house style."""
+    defaults = {k: v for k, v in mpl.rcParamsDefault.items() if k not in _BACKEND_KEYS}
+    return defaults | _STYLE
+
+
+def styled(draw: Callable[P, Figure]) -> Callable[P, Figure]:
+    """Run a drawing function under the house settings."""
+
+    @functools.wraps(draw)
+    def wrapper(*args: P.args, **kwargs: P.kwargs) -> Figure:
+        with mpl.rc_context(house_settings()):
+            return draw(*args, **kwargs)
+
+    return wrapper
+
+
+def sheet(width: float, height: float) -> Figure:
+    """An empty figure on the Agg canvas, size in inches capped.
+
+    Raises
+    ------
+    ValueError
+        If the size is beyond the cap or not positive.
+    """
+    if not (0 < width <= MAX_WIDTH and 0 < height <= MAX_HEIGHT):
+        raise ValueError(f"figure of {width} x {height} in; the cap is {MAX_WIDTH} x {MAX_HEIGHT} in")
+    figure = Figure(figsize=(width, height), dpi=DPI)
+    FigureCanvasAgg(figure)
+    return figure
+
+
+def stack(figure: Figure, heights: Sequence[float], edges: tuple[float, float, float, float]) -> list[Axes]:
+    """Axes one above the other, first on top.
+
+    Parameters
+    ----------
+    figure : Figure
+        Where to put them.
+    heights : sequence of float
+        Height of each [in]; the gap between two is fixed.
+    edges : tuple of float
+        Left, right, top, bottom margins [in].
+
+    Returns
+    -------
+    list of Axes
+    """
+    width, height = figure.get_size_inches()
+    left, right, top, _ = edges
+    gap = 0.09
+    axes, y = [], height - top
+    for tall in heights:
+        y -= tall
+        axes.append(
+            figure.add_axes((left / width, y / height, (width - left - right) / width, tall / height))
+        )
+        y -= gap
+    return axes
+
+
+def stack_height(heights: Sequence[float], edges: tuple[float, float, float, float]) -> float:
+    """Height of the figure that `stack` fills [in]."""
+    return sum(heights) + 0.09 * (len(heights) - 1) + edges[2] + edges[3]
+
+
+def ratio_colours() -> tuple[ListedColormap, BoundaryNorm]:
+    """Colour steps of the load ratio."""
+    colours = ListedColormap(list(_RATIO_COLOURS)).with_extremes(over=_RATIO_OVER, bad="#ffffff")
+    return colours, BoundaryNorm(list(RATIO_EDGES), colours.N)
+
+
+def side_name(axes: Axes, name: str, unit: str = "") -> None:
+    """Name of a track and its unit, level, left of its axis."""
+    text = f"{name}\n[{unit}]" if unit else name
+    axes.text(
+        -0.068, 0.5, text, transform=axes.transAxes, ha="right", va="center", fontsize=7.8, linespacing=1.3
+    )
+
+
+def empty_note(axes: Axes, text: str) -> None:
+    """Say in the middle of an empty plot why it is empty."""
+    axes.text(0.5, 0.5, text, transform=axes.transAxes, ha="center", va="center", color=MUTED)

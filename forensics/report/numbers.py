@@ -1,0 +1,163 @@
+"""Numbers the report derives from the findings: times in each state, turns while buckled, margins."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+import numpy as np
+from numpy.typing import NDArray
+
+from forensics.episodes.catalogue import Episode
+
+if TYPE_CHECKING:
+    from forensics.findings import Findings
+
+Floats = NDArray[np.float64]
+
+
+@dataclass(frozen=True)
+class Margin:
+    """A limit beside the largest value of the run [SI]; `row` is where it occurred."""
+
+    name: str
+    quantity: str
+    limit: float
+    largest: float
+    row: int
+    origin: str
+
+    @property
+    def left(self) -> float:
+        """What is left below the limit, negative where it was passed [SI]."""
+        return self.limit - self.largest
+
+
+def row_seconds(findings: Findings) -> Floats:
+    """Time each row stands for, shape (n,): to the next row, or the usual interval before a gap [s]."""
+    log = findings.log
+    if len(log) < 2:
+        return np.full(len(log), log.interval)
+    steps = np.append(np.diff(log.time), log.interval)
+    return np.where(steps > 5.0 * log.interval, log.interval, steps)
+
+
+def seconds_in_state(findings: Findings, least: int) -> float:
+    """Time with the worst state at least sinusoidal (1) or helical (2) [s]."""
+    return float(row_seconds(findings)[findings.loads.state >= least].sum())
+
+
+def turns_while_buckled(findings: Findings, first: int = 0, last: int | None = None) -> float:
+    """Revolutions of the top drive over rows first to last (inclusive) while the string was buckled.
+
+    Returns
+    -------
+    float
+        NaN where the log has no rpm.
+    """
+    rpm = findings.log.get("rpm")
+    if rpm is None:
+        return math.nan
+    stop = len(findings.log) if last is None else last + 1
+    rows = slice(first, stop)
+    counted = (findings.loads.state[rows] > 0) & findings.rig.turning[rows]
+    turns = np.nan_to_num(rpm[rows]) * row_seconds(findings)[rows] / 60.0
+    return float(turns[counted].sum())
+
+
+def helix_bending_stress(findings: Findings, episode: Episode, compression: float) -> float:
+    """Bending stress of a helix at an episode's peak place.
+
+    Parameters
+    ----------
+    findings : Findings
+        Gives hole, string and bit depth.
+    episode : Episode
+        Gives place and moment.
+    compression : float
+        [N]
+
+    Returns
+    -------
+    float
+        OD r F / (4 I) [Pa], NaN where the place isn't known.
+
+    References
+    ----------
+    Lubinski, A., Althouse, W. S. and Logan, J. L. (1962), Helical buckling of tubing sealed in packers.
+    """
+    bit = findings.log.get("bit_depth")
+    if bit is None or not math.isfinite(episode.peak_md) or not math.isfinite(bit[episode.peak]):
+        return math.nan
+    well = findings.well
+    above_bit = max(float(bit[episode.peak]) - episode.peak_md, 0.0)
+    part = well.string.components[int(well.string.index_at(above_bit)[0])]
+    diameter = float(well.hole.diameter_at(episode.peak_md)[0])
+    contact = part.contact_diameter(findings.case.criteria.clearance)
+    clearance = max((diameter - contact) / 2.0, 0.0)
+    return part.od * clearance * compression / (4.0 * part.inertia)
+
+
+def margins(findings: Findings) -> tuple[Margin, ...]:
+    """Limits of the case and ratings of the string beside the largest values of the run."""
+    limits = findings.case.limits
+    rig, log = findings.rig, findings.log
+    hanging = rig.hookload - findings.calibration.block_weight.value
+    torque = log.get("torque")
+    top = findings.well.string.components[-1]
+    weakest = [c for c in findings.well.string.components if c.torque_rating is not None]
+    candidates = [
+        ("hookload", "force", limits.hookload, rig.hookload, "[limits] of the case"),
+        (
+            "overpull over rotating weight",
+            "force",
+            limits.overpull,
+            _overpull(findings),
+            "[limits] of the case",
+        ),
+        ("surface torque", "moment", limits.torque, torque, "[limits] of the case"),
+        ("re-zeroed weight on bit", "force", limits.wob, rig.wob_surface, "[limits] of the case"),
+        (f"tension in {top.name} at surface", "force", top.tensile_rating, hanging, "string table, as given"),
+    ]
+    if weakest:
+        part = min(weakest, key=lambda c: c.torque_rating or math.inf)
+        candidates.append(
+            (
+                f"surface torque against {part.name}",
+                "moment",
+                part.torque_rating,
+                torque,
+                "string table, as given",
+            )
+        )
+    made = [_margin(*candidate) for candidate in candidates]
+    return tuple(margin for margin in made if margin is not None)
+
+
+def _margin(
+    name: str, quantity: str, limit: float | None, values: Floats | None, origin: str
+) -> Margin | None:
+    if limit is None:
+        return None
+    if values is None or not np.isfinite(values).any():
+        return Margin(name, quantity, limit, math.nan, 0, origin)
+    row = int(np.nanargmax(values))
+    return Margin(name, quantity, limit, float(values[row]), row, origin)
+
+
+def _overpull(findings: Findings) -> Floats | None:
+    """Hookload above the model's rotating weight out of slips, shape (n,) [N]."""
+    fan, bit = findings.fan, findings.log.get("bit_depth")
+    good = np.isfinite(fan.rotating)
+    if bit is None or not good.any():
+        return None
+    rotating = np.interp(bit, fan.bit_depth[good], fan.rotating[good], left=np.nan, right=np.nan)
+    return np.where(findings.rig.slips, np.nan, findings.rig.hookload - rotating)
+
+
+def gaps(findings: Findings) -> list[tuple[float, float]]:
+    """Start and end of each gap: no row for more than five usual intervals [s since 1970 UTC]."""
+    log = findings.log
+    rows = np.flatnonzero(np.diff(log.time) > 5.0 * log.interval)
+    return [(float(log.time[row]), float(log.time[row + 1])) for row in rows]

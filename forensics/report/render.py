@@ -1,0 +1,108 @@
+"""Content to one offline HTML file: figures drawn, numbered and put inline."""
+
+from __future__ import annotations
+
+import base64
+import io
+import itertools
+from collections.abc import Iterator
+from dataclasses import dataclass
+from functools import cache
+from typing import TYPE_CHECKING
+
+import matplotlib as mpl
+from jinja2 import Environment, PackageLoader, StrictUndefined
+
+from forensics.report.describe import describe
+from forensics.report.elements import Element, Part, Picture, Report, Section
+from forensics.report.figures.style import house_settings
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
+
+    from forensics.findings import Findings
+
+_PIXELS_SHOWN = 0.8
+
+
+@dataclass(frozen=True)
+class Drawn:
+    """A figure as it stands in the page: number, PNG as base64, size shown [px], caption, alternative text."""
+
+    number: int
+    data: str
+    width: int
+    height: int
+    caption: str
+    alt: str
+    form = "drawn"
+
+
+def render(findings: Findings, units: str = "metric") -> str:
+    """Render the event report of one run.
+
+    Parameters
+    ----------
+    findings : Findings
+        What the run's analysis found.
+    units : str
+        "metric" or "field".
+
+    Returns
+    -------
+    str
+        One HTML document with all it needs inside; the same findings give the same bytes.
+    """
+    return render_report(describe(findings, units))
+
+
+def render_report(report: Report) -> str:
+    """Render content elements to HTML, figures numbered in order."""
+    counter = itertools.count(1)
+    with mpl.rc_context(house_settings()):
+        sections = [_draw_section(section, counter) for section in report.sections]
+    return _environment().get_template("report.html.j2").render(report=report, sections=sections)
+
+
+def png(figure: Figure) -> bytes:
+    """A figure as PNG without anything that changes from run to run."""
+    buffer = io.BytesIO()
+    figure.savefig(buffer, format="png", dpi=figure.dpi, metadata={"Software": None})
+    return buffer.getvalue()
+
+
+def _draw_section(section: Section, counter: Iterator[int]) -> dict[str, object]:
+    return {
+        "id": section.id,
+        "title": section.title,
+        "elements": _drawn(section.elements, counter),
+        "parts": [_draw_part(part, counter) for part in section.parts],
+    }
+
+
+def _draw_part(part: Part, counter: Iterator[int]) -> dict[str, object]:
+    return {"id": part.id, "title": part.title, "elements": _drawn(part.elements, counter)}
+
+
+def _drawn(elements: tuple[Element, ...], counter: Iterator[int]) -> list[Element | Drawn]:
+    return [_draw(e, next(counter)) if isinstance(e, Picture) else e for e in elements]
+
+
+def _draw(picture: Picture, number: int) -> Drawn:
+    """Draw one figure and let go of it before the next."""
+    figure = picture.draw()
+    data = base64.b64encode(png(figure)).decode("ascii")
+    width, height = (round(side * figure.dpi * _PIXELS_SHOWN) for side in figure.get_size_inches())
+    figure.clear()
+    return Drawn(number, data, width, height, picture.caption, picture.alt)
+
+
+@cache
+def _environment() -> Environment:
+    return Environment(
+        loader=PackageLoader("forensics.report", "templates"),
+        autoescape=True,
+        undefined=StrictUndefined,
+        trim_blocks=True,
+        lstrip_blocks=True,
+    )

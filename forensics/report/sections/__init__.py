@@ -1,0 +1,1 @@
+"""Sections of the report: each module turns findings into content elements."""

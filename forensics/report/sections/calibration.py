@@ -1,0 +1,84 @@
+"""How far the model fits this run: hookload against depth, residuals, reference readings."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from forensics.report.elements import Column, Element, Picture, Section, Table, Text
+from forensics.report.figures import weights
+from forensics.report.scene import Scene
+from forensics.report.words import count, fixed, plain
+
+TARE_ROWS = 60
+
+
+def describe(scene: Scene) -> Section:
+    """Describe fit and residuals."""
+    elements: list[Element] = [Text(_fit_sentence(scene)), _fan(scene), _residuals(scene), tare_table(scene)]
+    return Section("fit", "How far the model fits", tuple(elements))
+
+
+def _fit_sentence(scene: Scene) -> str:
+    cal = scene.findings.calibration
+    kinds = ("pick_up", "slack_off", "rotating", "torque")
+    counts = {kind: sum(1 for r in cal.readings if r.kind == kind) for kind in kinds}
+    if not cal.readings:
+        return (
+            "The log shows no steady off-bottom reading, so nothing was calibrated: the friction factors are the "
+            "assumed ones, and the reconstruction is worth no more than they are."
+        )
+    parts = ", ".join(f"{fixed(n, 0)} {plain(kind)}" for kind, n in counts.items() if n)
+    rms = scene.show.value(cal.residual_rms, "force")
+    return (
+        f"Calibrated on steady off-bottom readings: {parts}. Hookload readings miss the model by {rms} (rms)."
+    )
+
+
+def _fan(scene: Scene) -> Picture:
+    caption = (
+        "Hookload against bit depth, block weight included: lines are the model at the calibrated friction, bands its "
+        "90 % friction interval, marks the steady readings (triangle up: pick-up; circle: rotating; triangle down: "
+        "slack-off). Marks along the lines: a good fit. All marks shifted alike: a tare. Marks that cross the band: "
+        "friction changed with depth."
+    )
+    alt = f"Three model lines of hookload over bit depth with {count(len(scene.findings.calibration.readings), 'reading')}."
+    return Picture(lambda: weights.fan_chart(scene), caption, alt)
+
+
+def _residuals(scene: Scene) -> Picture:
+    caption = (
+        "What the model leaves over, measured less modelled: positive means the hook carries, or the top drive turns "
+        "against, more than the model says. Left: each steady reading over depth. Right: each sample off bottom over "
+        "time, for hookload and torque. Look for a drift or a step; scatter about zero is noise."
+    )
+    residuals = scene.findings.calibration.residuals
+    worst = float(np.max(np.abs(residuals))) if len(residuals) else float("nan")
+    alt = f"Residuals of readings and samples; the largest reading residual is {scene.show.value(worst, 'force')}."
+    return Picture(lambda: weights.residual_chart(scene), caption, alt)
+
+
+def tare_table(scene: Scene) -> Table:
+    """Reference readings by stand."""
+    show, tares = scene.show, scene.findings.rig.tares
+    rows = tuple(
+        (
+            show.time(tare.start),
+            show.value(tare.bit_depth, "length", 0),
+            plain(tare.kind),
+            show.value(tare.weight, "force"),
+            show.value(tare.offset, "force"),
+            fixed(tare.samples, 0),
+        )
+        for tare in tares[:TARE_ROWS]
+    )
+    columns = (
+        Column(f"stand from ({show.timezone})"), Column("bit depth", "number"), Column("reference"),
+        Column("reading", "number"), Column("offset from model", "number"), Column("samples", "number"),
+    )  # fmt: skip
+    note = "Offset: the reading less the model's or interpolated reference weight."
+    if len(tares) > TARE_ROWS:
+        note += f" The first {TARE_ROWS} of {len(tares)} are listed."
+    empty = "No off-bottom reference reading was found; surface weight rests on the model's rotating weight."
+    return Table(
+        "Reference weights the surface weight was re-zeroed on", columns, rows, note, empty, dense=True
+    )

@@ -1,0 +1,246 @@
+"""The episodes: each main one in detail, then all of them in tables."""
+
+from __future__ import annotations
+
+import math
+
+from forensics.episodes.catalogue import CauseView, Consequence, Episode, Evidence, Kind, State
+from forensics.report.elements import (
+    Column,
+    Element,
+    Notice,
+    Number,
+    Numbers,
+    Part,
+    Picture,
+    Section,
+    Table,
+    Text,
+)
+from forensics.report.figures import depths, timeline
+from forensics.report.scene import MAIN_CAP, Scene, is_routine, severity
+from forensics.report.sections.cautions import for_episode
+from forensics.report.sections.first import episode_numbers, rotation_sentence
+from forensics.report.words import count, duration, fixed, plain
+
+TABLE_ROWS = 200
+MEMBERS = 12
+
+
+def describe(scene: Scene) -> Section:
+    """Describe the main episodes one by one."""
+    total = len(scene.findings.episodes)
+    if not total:
+        return Section(
+            "episodes", "Main episodes", (Text("No episode passed the rules; there is nothing to show."),)
+        )
+    lead = f"{count(len(scene.mains), 'episode')} of {total} shown in detail, in order of time."
+    if all(is_routine(e) for e in scene.mains):
+        lead += (
+            " All are harmless sinusoidal running; the one that came nearest to mattering stands for them."
+        )
+    elif total > len(scene.mains):
+        lead += (
+            f" At most {MAIN_CAP} are, chosen by consequence, then state, probability and lost weight; "
+            "routine sinusoidal running is left out. The table below lists the rest."
+        )
+    parts = tuple(_part(scene, episode) for episode in scene.mains)
+    return Section("episodes", "Main episodes", (Text(lead),), parts)
+
+
+def kind_words(episode: Episode) -> str:
+    """Kind and state in words."""
+    if episode.kind is Kind.BUCKLING and episode.state is not State.NONE:
+        return f"{episode.state} buckling"
+    return str(episode.kind)
+
+
+def _part(scene: Scene, episode: Episode) -> Part:
+    show = scene.show
+    start, end = show.time(episode.start), show.time(episode.end)
+    until = end[11:] if end[:10] == start[:10] else end
+    title = f"{episode.id}: {kind_words(episode)}, {start} to {until}"
+    elements: list[Element] = [Text(summary(scene, episode))]
+    profile = scene.findings.profiles.get(episode.id)
+    elements.append(Numbers(f"{episode.id} in numbers", _numbers(scene, episode)))
+    if profile is not None and len(profile.md) > 1:
+        elements.append(_profile_picture(scene, episode))
+    elements.append(_moment_picture(scene, episode))
+    elements.append(cause_table(episode))
+    cautions = for_episode(episode)
+    if cautions:
+        elements.append(Notice(f"Cautions that apply to {episode.id}", cautions))
+    return Part(f"episode-{episode.id}", title, tuple(elements))
+
+
+def summary(scene: Scene, episode: Episode) -> str:
+    """What happened, where, during what, and what it led to."""
+    show = scene.show
+    sentences = [
+        f"{kind_words(episode).capitalize()} for {duration(episode.duration)} while {_doing(episode)}"
+    ]
+    if math.isfinite(episode.top_md) and math.isfinite(episode.bottom_md):
+        what = "buckled" if episode.kind is Kind.BUCKLING else "affected"
+        sentences[0] += f", {what} interval at its largest {show.depths(episode.top_md, episode.bottom_md)}"
+    sentences.append(_consequence(scene, episode))
+    if episode.note:
+        sentences.append(episode.note[0].upper() + episode.note[1:].rstrip("."))
+    if episode.cause:
+        sentences.append(f"Best-supported cause: {plain(episode.cause)}")
+    return ". ".join(s.rstrip(".") for s in sentences) + "."
+
+
+def _doing(episode: Episode) -> str:
+    words = {
+        "connection": "in a connection", "drill_rotate": "drilling with rotation", "drill_slide": "sliding",
+        "ream_down": "reaming down", "ream_up": "reaming up", "rotate_off_bottom": "rotating off bottom",
+        "trip_in": "running in", "trip_out": "pulling out", "circulate": "circulating", "static": "standing still",
+    }  # fmt: skip
+    return words.get(episode.activity, "doing what the log does not tell")
+
+
+def _consequence(scene: Scene, episode: Episode) -> str:
+    lost = scene.show.with_interval(episode.lost_weight, "force")
+    if episode.consequence is Consequence.WEIGHT_LOST:
+        return f"Consequence: {lost} of surface weight did not reach the bit"
+    if episode.consequence is Consequence.LOCKED_UP:
+        return "Consequence: locked up, weight slacked off at surface no longer moved the lower end"
+    if episode.consequence is Consequence.ROTATED_BUCKLED:
+        return f"Consequence: turned while buckled ({rotation_sentence(scene, episode).rstrip('.')})"
+    return "No consequence was found"
+
+
+def _numbers(scene: Scene, episode: Episode) -> tuple[Number, ...]:
+    """The episode's numbers, with those of its kind and its place."""
+    show, loads = scene.show, scene.findings.loads
+    rows = episode_numbers(episode, show)
+    if math.isfinite(episode.peak_md):
+        rows.insert(0, Number("depth of the peak", show.value(episode.peak_md, "length", 0), "", "replay"))
+    when = show.stamp(float(scene.findings.log.time[episode.peak]))
+    rows.insert(0, Number("moment of the peak", when, "", "time log"))
+    residuals = {
+        Kind.DRAG: (loads.drag_residual, "force", "hookload less model at the peak"),
+        Kind.TORQUE: (loads.torque_residual, "moment", "torque less model at the peak"),
+    }
+    if episode.kind in residuals:
+        values, quantity, name = residuals[episode.kind]
+        value = show.value(float(values[episode.peak]), quantity)
+        rows.append(Number(name, value, "", "measured less modelled at the calibrated friction"))
+    return tuple(rows)
+
+
+def _profile_picture(scene: Scene, episode: Episode) -> Picture:
+    profile = scene.findings.profiles[episode.id]
+    show = scene.show
+    caption = (
+        f"{episode.id}, load along the hole at {show.stamp(profile.time)}, near its peak. Effective tension is positive "
+        "to the right, compression negative to the left. Dashed: sinusoidal threshold; dotted: "
+        "helical threshold, both at the actual wall force. Where the load lies left of a threshold the string is past "
+        "it; bars at the left edge show the state the replay gave (light: sinusoidal; dark: helical)."
+    )
+    compression = -float(profile.tension.min()) if len(profile.tension) else math.nan
+    alt = (
+        f"Effective tension over measured depth with sinusoidal and helical thresholds; the largest compression is "
+        f"{show.value(compression, 'force')}."
+    )
+    return Picture(lambda: depths.load_profile(scene, profile, episode), caption, alt)
+
+
+def _moment_picture(scene: Scene, episode: Episode) -> Picture:
+    caption = (
+        f"{episode.id}, the strip around it: shaded while it lasts, dashed at its peak. The load ratio crosses the "
+        "dotted line where the sinusoidal threshold is passed. In the last depth track the pale line shows how far "
+        "down the motion at surface had been felt since the last reversal: short of the bit, the lower "
+        "end did not move."
+    )
+    alt = f"Strip chart of rig channels and reconstruction from before to after episode {episode.id}."
+    return Picture(lambda: timeline.moment_strip(scene, episode), caption, alt)
+
+
+def cause_table(episode: Episode) -> Table:
+    """Evidence for and against each cause."""
+    columns = (
+        Column("cause"),
+        Column("probability", "number"),
+        Column("speaks for it"),
+        Column("speaks against it"),
+    )
+    ranked = sorted(episode.causes, key=lambda c: -c.probability)
+    rows = tuple((plain(c.cause), fixed(c.probability, 2), _side(c, 1), _side(c, -1)) for c in ranked)
+    note = "Probabilities weigh the causes against one another on this evidence. In brackets: where it comes from."
+    empty = "No cause was weighed for this episode."
+    return Table(f"{episode.id}: causes weighed", columns, rows, note if rows else "", empty)
+
+
+def _side(cause: CauseView, sign: int) -> tuple[str, ...]:
+    """Evidence on one side, strongest first."""
+    picked = [e for e in cause.evidence if e.weight * sign > 0]
+    ordered = sorted(picked, key=lambda e: -abs(e.weight))
+    return tuple(_evidence(e) for e in ordered) or ("nothing found",)
+
+
+def _evidence(evidence: Evidence) -> str:
+    origin = f" [{evidence.origin}]" if evidence.origin else ""
+    return f"{evidence.name}: {evidence.text}{origin}"
+
+
+def describe_tables(scene: Scene) -> Section:
+    """Describe all episodes and groups."""
+    return Section("catalogue", "All episodes and groups", (episode_table(scene), family_table(scene)))
+
+
+def episode_table(scene: Scene) -> Table:
+    """All episodes in order of time, up to a cap."""
+    show, episodes = scene.show, scene.findings.episodes
+    chosen = sorted(episodes, key=lambda e: (-severity(e), e.start, e.id))[:TABLE_ROWS]
+    rows = tuple(_episode_row(scene, e) for e in sorted(chosen, key=lambda e: (e.start, e.id)))
+    columns = (
+        Column("id", "code"), Column("kind"), Column(f"start ({show.timezone})"), Column("length", "number"),
+        Column("while"), Column(f"interval [{show.unit('length')}]", "number"), Column("load ratio", "number"),
+        Column(f"compression [{show.unit('force')}]", "number"), Column(f"lost weight [{show.unit('force')}]", "number"),
+        Column("prob.", "number"), Column("consequence"), Column("group"), Column("cause"),
+    )  # fmt: skip
+    note = "In brackets: 90 % interval. Lost weight is at the peak of load ratio; the second figure is the part lost to "
+    note += "buckling. Origin of all: the replay at the calibrated friction and its draws."
+    if len(episodes) > TABLE_ROWS:
+        note += (
+            f" The {TABLE_ROWS} most severe of {len(episodes)} are listed here; episodes.csv has them all."
+        )
+    caption = f"Episodes, in order of time ({fixed(len(rows), 0)} of {fixed(len(episodes), 0)})"
+    return Table(caption, columns, rows, note if rows else "", "No episode passed the rules.", dense=True)
+
+
+def _episode_row(scene: Scene, e: Episode) -> tuple[str | tuple[str, ...], ...]:
+    show = scene.show
+
+    def bare(estimate: object, quantity: str) -> str:
+        text = show.with_interval(estimate, quantity)  # type: ignore[arg-type]
+        return "" if text == "not known" else text.replace(f" {show.unit(quantity)}", "", 1)
+
+    lost = tuple(filter(None, (bare(e.lost_weight, "force"), bare(e.lost_to_buckling, "force"))))
+    span = show.depths(e.top_md, e.bottom_md).removesuffix(f" {show.unit('length')}")
+    return (
+        e.id, kind_words(e), show.time(e.start), duration(e.duration), plain(e.activity),
+        "" if span == "not known" else span, bare(e.peak_load_ratio, "dimensionless"),
+        bare(e.peak_compression, "force"), lost or "", fixed(e.probability, 2) if math.isfinite(e.probability) else "",
+        plain(e.consequence), e.family, plain(e.cause),
+    )  # fmt: skip
+
+
+def family_table(scene: Scene) -> Table:
+    """Groups of like episodes."""
+    columns = (
+        Column("group"), Column("what its members share"), Column("members", "number"), Column("episodes", "code"),
+        Column("stability", "number"),
+    )  # fmt: skip
+    rows = []
+    for family in scene.findings.families:
+        listed = ", ".join(family.members[:MEMBERS])
+        more = len(family.members) - MEMBERS
+        listed += f" and {more} more" if more > 0 else ""
+        stable = fixed(family.stability, 2) if math.isfinite(family.stability) else "by rule"
+        rows.append((family.name, family.description, fixed(len(family.members), 0), listed, stable))
+    note = "Stability: mean agreement of the group when the episodes are resampled, 0 to 1; by rule: not resampled."
+    return Table(
+        "Groups of like episodes", columns, tuple(rows), note if rows else "", "No group was formed."
+    )

@@ -1,0 +1,212 @@
+"""The first page: the finding in words, what the data can't tell, the key numbers, margins."""
+
+from __future__ import annotations
+
+import math
+
+from forensics.episodes.catalogue import Consequence, Episode, Kind
+from forensics.estimate import Estimate
+from forensics.report import numbers
+from forensics.report.elements import Column, Element, Finding, Notice, Number, Numbers, Section, Table, Text
+from forensics.report.scene import Scene, is_routine, severity
+from forensics.report.words import Show, count, duration, fixed
+
+REPLAY = "replay at the calibrated friction"
+
+
+def describe(scene: Scene) -> Section:
+    """Describe the first page."""
+    head = scene.findings.headline
+    elements: list[Element] = [Finding(head.sentence, head.confidence, head.details)]
+    elements += rotation_notice(scene)
+    unknown = cannot_tell(scene)
+    if unknown:
+        elements.append(Notice("What the data can't tell", unknown, tone="limit"))
+    elements.append(
+        Numbers("Key numbers: value, 90 % interval, and where each comes from", key_numbers(scene))
+    )
+    margin_table = describe_margins(scene)
+    if margin_table:
+        elements.append(margin_table)
+    elements.append(Text(_tally(scene)))
+    return Section("finding", "The finding", tuple(elements))
+
+
+def cannot_tell(scene: Scene) -> tuple[str, ...]:
+    """Everything that could not be told, each said once, the finding's own first."""
+    found = scene.findings
+    said = (*found.headline.can_not_tell, *found.rig.can_not_tell, *found.calibration.can_not_tell)
+    return tuple(dict.fromkeys(said))
+
+
+def number(name: str, estimate: Estimate, quantity: str, show: Show) -> Number:
+    """A row of a number table from an estimate."""
+    value, interval = show.estimate(estimate, quantity)
+    origin = estimate.source
+    if estimate.samples:
+        origin = f"{origin}; {count(estimate.samples, 'reading')}"
+    if not estimate.determined:
+        origin = f"assumed, not determined by the data; {origin}"
+    return Number(name, value, interval, origin, estimate.determined)
+
+
+def key_numbers(scene: Scene) -> tuple[Number, ...]:
+    """The numbers a reader needs first."""
+    found, show = scene.findings, scene.show
+    rows: list[Number] = []
+    worst = worst_episode(scene)
+    if worst is not None:
+        rows += episode_numbers(worst, show, prefix=f"{worst.id}: ")
+    if found.loads.state.size:
+        helical, any_state = (numbers.seconds_in_state(found, k) for k in (2, 1))
+        rows += [
+            Number("time with a helix somewhere in the string", duration(helical), "", REPLAY),
+            Number("time with any buckling, sinusoidal included", duration(any_state), "", REPLAY),
+        ]
+    rows += friction_numbers(scene)
+    return tuple(rows)
+
+
+def friction_numbers(scene: Scene) -> list[Number]:
+    """Friction factors and weights of the calibration."""
+    found, show = scene.findings, scene.show
+    cal = found.calibration
+    rows = [
+        number(f"friction factor, {section_name(s.kind)}", s.factor, "dimensionless", show)
+        for s in cal.sections
+    ]
+    if cal.rotational is not None:
+        rows.append(number("friction factor, rotational", cal.rotational, "dimensionless", show))
+    rows.append(number("block weight", cal.block_weight, "force", show))
+    if cal.hookload_bias.value:
+        rows.append(number("constant bias of the hookload", cal.hookload_bias, "force", show))
+    hookload = sum(1 for reading in cal.readings if reading.kind != "torque")
+    rows.append(
+        Number(
+            "hookload left over after calibration (rms)", show.value(cal.residual_rms, "force"), "",
+            f"{count(hookload, 'steady reading')} against the model",
+        )
+    )  # fmt: skip
+    return rows
+
+
+def section_name(kind: str) -> str:
+    """Kind of hole in words."""
+    return {"cased": "cased hole", "open": "open hole"}.get(kind, kind)
+
+
+def worst_episode(scene: Scene) -> Episode | None:
+    """The episode the key numbers speak of: the most severe main one that has a load ratio."""
+    judged = [e for e in scene.mains if math.isfinite(e.peak_load_ratio.value)]
+    return max(judged, key=severity) if judged else None
+
+
+def episode_numbers(episode: Episode, show: Show, prefix: str = "") -> list[Number]:
+    """The numbers of one episode; those it does not have are left out."""
+    pairs = [
+        ("largest load ratio (compression over sinusoidal load)", episode.peak_load_ratio, "dimensionless"),
+        ("compression at that place", episode.peak_compression, "force"),
+        ("surface weight that did not reach the bit", episode.lost_weight, "force"),
+        ("of it, lost to buckling rather than to ordinary drag", episode.lost_to_buckling, "force"),
+    ]
+    rows = [number(prefix + name, e, q, show) for name, e, q in pairs if math.isfinite(e.value)]
+    if math.isfinite(episode.probability):
+        origin = "share of the draws of friction, block weight and the like in which the rule held"
+        name = f"{prefix}probability that it happened"
+        rows.append(Number(name, fixed(episode.probability, 2), "", origin))
+    return rows
+
+
+def rotation_notice(scene: Scene) -> list[Element]:
+    """A red notice where the string was turned while buckled."""
+    turned = [e for e in scene.findings.episodes if e.consequence is Consequence.ROTATED_BUCKLED]
+    if not turned:
+        return []
+    items = tuple(rotation_sentence(scene, e) for e in turned[:5])
+    if len(turned) > 5:
+        items = (*items, f"{count(len(turned) - 5, 'more episode')} of the same kind in the episode table.")
+    return [Notice("The string was turned while buckled", (*items, FATIGUE), tone="danger")]
+
+
+FATIGUE = (
+    "Each turn of a bent pipe is a cycle of bending fatigue. Whether joints need inspection or retirement is for "
+    "the owner of the pipe to judge from its records; this report does not track cumulative damage."
+)
+
+
+def rotation_sentence(scene: Scene, episode: Episode) -> str:
+    """How often and how hard the pipe was bent in one episode."""
+    found, show = scene.findings, scene.show
+    turns = numbers.turns_while_buckled(found, episode.first, episode.last)
+    often = (
+        f"about {fixed(turns, 0)} turns" if math.isfinite(turns) else "turns not counted, the log has no rpm"
+    )
+    stress = [
+        numbers.helix_bending_stress(found, episode, force)
+        for force in (
+            episode.peak_compression.value,
+            episode.peak_compression.low,
+            episode.peak_compression.high,
+        )
+    ]
+    text = f"{episode.id}: {often} between {show.stamp(episode.start)} and {show.stamp(episode.end)}"
+    if math.isfinite(stress[0]):
+        value, interval = show.estimate(Estimate(*stress, "helix"), "stress")
+        spread = f" ({interval})" if interval != "no interval" else ""
+        text += f"; bending stress of a helix there {value}{spread}, from pitch and clearance, pipe body"
+    return text + "."
+
+
+def describe_margins(scene: Scene) -> Table | None:
+    """Margins against limits and ratings, where any are given."""
+    show = scene.show
+    rows = []
+    for m in numbers.margins(scene.findings):
+        if not math.isfinite(m.largest):
+            rows.append(
+                (m.name, show.value(m.limit, m.quantity), "not in the log", "", "not judged", m.origin)
+            )
+            continue
+        left = (
+            show.value(m.left, m.quantity) if m.left >= 0 else f"passed by {show.value(-m.left, m.quantity)}"
+        )
+        when = show.time(float(scene.findings.log.time[m.row]))
+        used = f"{left} ({fixed(100.0 * m.largest / m.limit, 0)} % used)"
+        rows.append(
+            (m.name, show.value(m.limit, m.quantity), show.value(m.largest, m.quantity), when, used, m.origin)
+        )
+    if not rows:
+        return None
+    titles = ("quantity", "limit", "largest in the run", f"when ({show.timezone})", "margin", "limit from")
+    aligns = ("text", "number", "number", "text", "number", "text")
+    grade = scene.findings.case.limits.pipe_class
+    note = "Single samples count. A limit on one quantity says nothing of pull, torque and pressure together."
+    if grade:
+        note += f" The case states pipe class {grade}; ratings are used as the string table gives them."
+    columns = tuple(Column(t, a) for t, a in zip(titles, aligns, strict=True))
+    return Table("Margins against the limits given", columns, tuple(rows), note)
+
+
+def _tally(scene: Scene) -> str:
+    """How many episodes of what kind, in a sentence."""
+    episodes = scene.findings.episodes
+    if not episodes:
+        text = "No episode passed the rules."
+    else:
+        parts = [
+            count(sum(1 for e in episodes if e.kind is kind), f"{kind} episode")
+            for kind in Kind
+            if any(e.kind is kind for e in episodes)
+        ]
+        routine = sum(1 for e in episodes if is_routine(e))
+        text = f"In all: {', '.join(parts)}."
+        if routine:
+            text += (
+                f" {count(routine, 'of the buckling episodes is', 'of the buckling episodes are')} harmless "
+                "sinusoidal running: counted, kept out of the finding."
+            )
+    dropped = scene.findings.dropped
+    if dropped:
+        reasons = "; ".join(f"{reason}: {n}" for reason, n in sorted(dropped.items()))
+        text += f" Set aside by the episode rules: {reasons}."
+    return text

@@ -1,0 +1,81 @@
+"""Assumptions made, limits of the method, cautions."""
+
+from __future__ import annotations
+
+from forensics.report.elements import Bullets, Column, Notice, Section, Table, Text
+from forensics.report.scene import Scene
+from forensics.report.sections.cautions import GENERAL, METHOD_LIMITS
+from forensics.report.words import duration, fixed, plain
+
+# Quantity of each channel whose noise is shown.
+_NOISE = {
+    "hookload": "force", "wob": "force", "torque": "moment", "rpm": "rotation", "standpipe_pressure": "pressure",
+    "differential_pressure": "pressure", "flow_in": "flow", "flow_out": "flow", "block_position": "length",
+    "bit_depth": "length", "hole_depth": "length", "downhole_wob": "force", "downhole_torque": "moment",
+}  # fmt: skip
+
+
+def describe(scene: Scene) -> Section:
+    """Describe assumptions, limits and cautions."""
+    elements = (
+        assumption_table(scene),
+        noise_table(scene),
+        Text(
+            "Signs: tension is positive and compression negative where loads along the hole are shown; weight on bit and "
+            "compression stated as such are positive; residuals are measured less modelled. Depths are measured along "
+            "the hole from the datum of the survey. Intervals are 90 % intervals."
+        ),
+        Bullets(METHOD_LIMITS, "Limits of the method:"),
+        Notice("Cautions", GENERAL),
+    )
+    return Section("method", "Assumptions, limits and cautions", elements)
+
+
+def assumption_table(scene: Scene) -> Table:
+    """The choices the result rests on."""
+    case, found, show = scene.findings.case, scene.findings, scene.show
+    rules = case.criteria
+    given = case.friction
+    rows = [
+        ("helical onset", plain(rules.helical_onset), "[criteria] of the case, or default"),
+        ("helical release", plain(rules.helical_release), "[criteria] of the case, or default"),
+        ("clearance measured at", plain(rules.clearance), "[criteria] of the case, or default"),
+        (
+            "episodes closer than this are one",
+            duration(rules.bridge_gap),
+            "[criteria] of the case, or default",
+        ),
+        ("shortest episode kept", duration(rules.minimum_duration), "[criteria] of the case, or default"),
+        (
+            "friction used as given, not calibrated",
+            "yes" if given.fixed else "no",
+            "[friction] of the case, or default",
+        ),
+        (
+            "hookload has the block in it",
+            "yes" if case.rig.hookload_includes_block else "no",
+            "[rig] of the case",
+        ),
+    ]
+    if case.rig.lines:
+        text = f"{case.rig.lines} lines"
+        if case.rig.sheave_efficiency:
+            text += f", {fixed(case.rig.sheave_efficiency, 3)} per sheave"
+        rows.append(("hoisting tackle", text, "[rig] of the case"))
+    rows.append(("usual flow of the run", show.value(found.rig.usual_flow, "flow"), "flow in"))
+    columns = (Column("assumption"), Column("value"), Column("from"))
+    return Table("What the result rests on", columns, tuple(rows))
+
+
+def noise_table(scene: Scene) -> Table:
+    """Noise by channel, from which thresholds follow."""
+    show = scene.show
+    rows = tuple(
+        (name, show.value(value, _NOISE[name]) if name in _NOISE else f"{value:.3g} (SI)")
+        for name, value in sorted(scene.findings.rig.noise.items())
+    )
+    note = "Thresholds are at least six times the noise, and windows at least three samples long."
+    columns = (Column("channel", "code"), Column("noise, one sigma", "number"))
+    return Table(
+        "Short-term noise found in the log", columns, rows, note if rows else "", "No noise was estimated."
+    )
