@@ -30,6 +30,7 @@ def friction_content(findings: Findings) -> dict[str, Any]:
         number.
     """
     calibration = findings.calibration
+    loss = calibration.torque_loss
     return {
         "sections": [_section(section) for section in calibration.sections],
         **_force("block_weight_kN", calibration.block_weight),
@@ -37,6 +38,8 @@ def friction_content(findings: Findings) -> dict[str, Any]:
         "rotational_friction": _rotational(calibration),
         "residual_rms_kN": number(calibration.residual_rms / KILO, 3),
         "pipe_above_rotary": number(calibration.pipe_above_rotary.value, 3),
+        "weight_scale": number(calibration.weight_scale.value, 4),
+        "torque_loss_kNm": number(loss.value / KILO, 3) if loss is not None else None,
         "can_not_tell": list(calibration.can_not_tell),
         "readings": _readings(findings),
     }
