@@ -1,0 +1,1 @@
+"""Episodes: thresholds passed, spans of time, groups, causes, and the finding in words."""

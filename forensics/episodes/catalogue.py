@@ -58,7 +58,8 @@ class Episode:
     """One episode; times in s since 1970 UTC, depths in m, forces in N, SI throughout.
 
     `first` and `last` are row numbers in the log (inclusive); `peak` the row of the peak load ratio
-    (of the largest residual for drag and torque).
+    (of the largest residual for drag and torque); `peak_residual` is that residual, measured less modelled
+    [N or N.m], None for other kinds.
     """
 
     id: str
@@ -83,6 +84,7 @@ class Episode:
     cause: str = ""
     note: str = ""
     causes: tuple[CauseView, ...] = ()
+    peak_residual: Estimate | None = None
 
     @property
     def duration(self) -> float:

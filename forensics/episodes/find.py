@@ -1,0 +1,199 @@
+"""From load history to a catalogue of episodes."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass, replace
+
+import numpy as np
+from numpy.typing import NDArray
+
+from forensics.episodes import measure, rules
+from forensics.episodes.catalogue import Consequence, Episode, Kind, State
+from forensics.episodes.consequence import consequence_of
+from forensics.episodes.material import Material
+from forensics.episodes.spans import Span, SpanRule, find_spans
+from forensics.estimate import Estimate
+
+Floats = NDArray[np.float64]
+Bools = NDArray[np.bool_]
+
+STATES = (State.NONE, State.SINUSOIDAL, State.HELICAL)
+
+FLAGS: dict[Kind, Callable[[Material], Bools]] = {
+    Kind.BUCKLING: rules.buckled,
+    Kind.LOCKUP: rules.locked_up,
+    Kind.DRAG: rules.dragging,
+    Kind.TORQUE: rules.hard_to_turn,
+}
+
+
+@dataclass(frozen=True)
+class Found:
+    """A span of one kind, with the rows its rule flags and the least duration it had to last [s]."""
+
+    kind: Kind
+    span: Span
+    flags: Bools
+    least: float
+
+
+def find_episodes(material: Material) -> tuple[tuple[Episode, ...], dict[str, int]]:
+    """Find a run's episodes by the contract's rules.
+
+    Parameters
+    ----------
+    material : Material
+        Log, rig view, loads, draws and calibration of the run.
+
+    Returns
+    -------
+    episodes : tuple of Episode
+        In time order, numbered from E001; without family and cause.
+    dropped : dict of str to int
+        Spans left out, by reason.
+    """
+    criteria = material.case.criteria
+    least = material.window(criteria.minimum_duration)
+    gap = material.window(criteria.bridge_gap)
+    found: list[Found] = []
+    dropped: dict[str, int] = {}
+    for kind, flag in FLAGS.items():
+        flags = np.asarray(flag(material), dtype=bool) & np.asarray(material.log.used, dtype=bool)
+        if kind is Kind.BUCKLING:
+            flags = np.asarray(flag(material), dtype=bool)  # states stand while rows are set aside
+        exact = kind in (Kind.DRAG, Kind.TORQUE)
+        rule = SpanRule(gap, least, material.log.interval, flagged=exact)
+        spans, short = find_spans(flags, material.time, rule)
+        found += [Found(kind, span, flags, least) for span in spans]
+        if short:
+            dropped[f"{kind.value}: shorter than {least:g} s"] = short
+    lockups = [f.span for f in found if f.kind is Kind.LOCKUP]
+    episodes = [_episode(material, f, lockups) for f in found]
+    episodes.sort(key=lambda e: (e.start, list(Kind).index(e.kind)))
+    return tuple(replace(e, id=f"E{n:03d}") for n, e in enumerate(episodes, 1)), dropped
+
+
+def _episode(material: Material, found: Found, lockups: list[Span]) -> Episode:
+    """Measure one span."""
+    span, kind = found.span, found.kind
+    peak = _peak(material, found)
+    state = STATES[int(np.max(material.loads.state[span.rows]))]
+    ratio = measure.peak_ratio(material, span, peak)
+    lost = measure.Lost(measure.NOTHING, measure.NOTHING)
+    if kind in (Kind.BUCKLING, Kind.LOCKUP):
+        lost = measure.lost_weight(material, peak)
+    top, bottom = _depths(material, found)
+    flagged = np.flatnonzero(found.flags[span.rows]) + span.first
+    episode = Episode(
+        id="",
+        kind=kind,
+        state=state,
+        start=float(material.time[span.first]),
+        end=_end(material, span),
+        first=span.first,
+        last=span.last,
+        peak=peak,
+        activity=material.usual_activity(flagged),
+        top_md=top,
+        bottom_md=bottom,
+        peak_md=_peak_depth(material, kind, peak),
+        peak_load_ratio=ratio,
+        peak_compression=measure.peak_compression(material, peak, ratio),
+        lost_weight=lost.weight,
+        lost_to_buckling=lost.to_buckling,
+        probability=_chance(material, found),
+        consequence=Consequence.NONE,
+        peak_residual=_residual(material, kind, peak),
+    )
+    consequence = consequence_of(material, episode, lockups)
+    return replace(episode, consequence=consequence, note=_note(material, episode, consequence))
+
+
+def _peak(material: Material, found: Found) -> int:
+    """Row of the peak load ratio, or of the largest residual, within the span."""
+    rows = np.flatnonzero(found.flags[found.span.rows]) + found.span.first
+    values = {
+        Kind.DRAG: material.drag,
+        Kind.TORQUE: material.loads.torque_residual,
+    }.get(found.kind, material.loads.peak_ratio)[rows]
+    return int(rows[np.argmax(np.nan_to_num(values, nan=-np.inf))])
+
+
+def _end(material: Material, span: Span) -> float:
+    """End of the span: the first row back to normal, at most one sample on [s]."""
+    time = material.time
+    last = float(time[span.last])
+    after = float(time[span.last + 1]) if span.last + 1 < len(time) else np.inf
+    return min(after, last + material.log.interval)
+
+
+def _depths(material: Material, found: Found) -> tuple[float, float]:
+    """Affected depths: the buckled interval at its largest, else the depths the bit was at [m]."""
+    loads, rows = material.loads, found.span.rows
+    length = loads.bottom[rows] - loads.top[rows]
+    if found.kind in (Kind.BUCKLING, Kind.LOCKUP) and np.isfinite(length).any():
+        at = found.span.first + int(np.nanargmax(length))
+        return float(loads.top[at]), float(loads.bottom[at])
+    bit = material.bit[rows]
+    if not np.isfinite(bit).any():
+        return float("nan"), float("nan")
+    if found.kind is Kind.LOCKUP:
+        return float(min(np.nanmin(loads.reach[rows]), np.nanmax(bit))), float(np.nanmax(bit))
+    return float(np.nanmin(bit)), float(np.nanmax(bit))
+
+
+def _peak_depth(material: Material, kind: Kind, peak: int) -> float:
+    if kind in (Kind.DRAG, Kind.TORQUE):
+        return float(material.bit[peak])
+    return float(material.loads.peak_md[peak])
+
+
+def _residual(material: Material, kind: Kind, peak: int) -> Estimate | None:
+    """Residual at the peak of a drag or torque episode [N or N.m], with the noise as its interval."""
+    if kind not in (Kind.DRAG, Kind.TORQUE):
+        return None
+    channel = "hookload" if kind is Kind.DRAG else "torque"
+    values = material.loads.drag_residual if kind is Kind.DRAG else material.loads.torque_residual
+    half = measure.Z90 * material.noise(channel)
+    value = float(values[peak])
+    return Estimate(value, value - half, value + half, "measured less modelled")
+
+
+def _chance(material: Material, found: Found) -> float:
+    span, least = found.span, found.least
+    if found.kind is Kind.BUCKLING:
+        return measure.buckling_chance(material, span, least)
+    if found.kind is Kind.LOCKUP:
+        return measure.lockup_chance(material, span, found.flags)
+    if found.kind is Kind.DRAG:
+        return measure.drag_chance(material, span, least)
+    return measure.torque_chance(material, span, least)
+
+
+def _note(material: Material, episode: Episode, consequence: Consequence) -> str:
+    """Write what the columns leave out: the helical span, the size of a residual, revolutions while buckled."""
+    rows = slice(episode.first, episode.last + 1)
+    loads, said = material.loads, []
+    length = loads.helical_bottom[rows] - loads.helical_top[rows]
+    if episode.state is State.HELICAL and np.isfinite(length).any():
+        at = episode.first + int(np.nanargmax(length))
+        time = float((loads.state[rows] == 2).sum() * material.log.interval)
+        said.append(
+            f"helical from {loads.helical_top[at]:.0f} to {loads.helical_bottom[at]:.0f} m, {time:.0f} s in all"
+        )
+    if episode.peak_residual is not None:
+        unit = "kN" if episode.kind is Kind.DRAG else "kN.m"
+        said.append(f"{episode.peak_residual.value / 1e3:+.1f} {unit} against the model")
+    if consequence is Consequence.ROTATED_BUCKLED:
+        said.append(f"about {_revolutions(material, episode):.0f} revolutions while helical")
+    return "; ".join(said)
+
+
+def _revolutions(material: Material, episode: Episode) -> float:
+    rows = slice(episode.first, episode.last + 1)
+    rpm = material.log.get("rpm")
+    if rpm is None:
+        return float("nan")
+    turned = np.where((material.loads.state[rows] == 2) & material.rig.turning[rows], rpm[rows], 0.0)
+    return float(np.nansum(turned) * material.log.interval / 60.0)

@@ -1,0 +1,152 @@
+"""What the episode rules look at, gathered once."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import cached_property
+from typing import TYPE_CHECKING
+
+import numpy as np
+from numpy.typing import NDArray
+
+from forensics.rig.view import Activity
+
+if TYPE_CHECKING:
+    from forensics.case import Case
+    from forensics.friction.result import Calibration
+    from forensics.loads import DrawHistory, LoadHistory
+    from forensics.logs.table import TimeLog
+    from forensics.rig.view import RigView
+    from forensics.well.model import Well
+
+Floats = NDArray[np.float64]
+Bools = NDArray[np.bool_]
+
+#: A window or a duration is never shorter than this many samples (contract).
+LEAST_SAMPLES = 3
+
+#: Thresholds are at least this many times the noise found in the log (contract).
+NOISE_MULTIPLE = 6.0
+
+#: Part of the rotating value that a residual must pass (contract).
+RESIDUAL_SHARE = 0.10
+
+
+@dataclass(frozen=True)
+class Material:
+    """One run's log, loads and calibration, as the episode rules need them.
+
+    `draws` is None where the replay was not repeated.
+    """
+
+    log: TimeLog
+    rig: RigView
+    loads: LoadHistory
+    draws: DrawHistory | None
+    calibration: Calibration
+    well: Well
+    case: Case
+
+    @property
+    def time(self) -> Floats:
+        """Seconds since 1970 UTC, shape (n,) [s]."""
+        return self.log.time
+
+    @property
+    def bit(self) -> Floats:
+        """Bit depth, shape (n,) [m]."""
+        return self.log.values["bit_depth"]
+
+    def window(self, seconds: float) -> float:
+        """Lengthen a time window to at least three samples [s]."""
+        return max(seconds, LEAST_SAMPLES * self.log.interval)
+
+    def noise(self, channel: str) -> float:
+        """Short-term noise of a channel, zero where none was found [SI]."""
+        value = float(self.rig.noise.get(channel, 0.0))
+        return value if np.isfinite(value) else 0.0
+
+    @cached_property
+    def rotating_weight(self) -> Floats:
+        """Weight of the string as it hangs without friction, shape (n,) [N]."""
+        bit = self.bit
+        known = np.isfinite(bit)
+        if not known.any():
+            return np.full(len(bit), np.nan)
+        grid = np.linspace(float(bit[known].min()), float(bit[known].max()) + 1.0, 64)
+        weight = np.asarray(self.well.rotating_weight(grid)) * self.calibration.weight_scale.value
+        return np.where(known, np.interp(bit, grid, weight), np.nan)
+
+    @cached_property
+    def friction_sign(self) -> NDArray[np.int8]:
+        """Which way more friction moves the hookload: +1 going up, -1 going down, 0 else; shape (n,)."""
+        return (-self.rig.direction * ~self.rig.turning).astype(np.int8)
+
+    @cached_property
+    def drag(self) -> Floats:
+        """Drag beyond the model, positive for more of it, shape (n,) [N].
+
+        Going up it is the hookload's residual, going down its negative; while turning or still, where
+        drag has no direction, its size.
+        """
+        residual = self.loads.drag_residual
+        return np.where(self.friction_sign == 0, np.abs(residual), self.friction_sign * residual)
+
+    @cached_property
+    def drag_threshold(self) -> Floats:
+        """Drag that counts as an episode, shape (n,) [N]."""
+        return np.maximum(RESIDUAL_SHARE * self.rotating_weight, NOISE_MULTIPLE * self.noise("hookload"))
+
+    @cached_property
+    def model_torque(self) -> Floats:
+        """Torque the model expects, shape (n,) [N.m]; NaN where none applies."""
+        torque = self.log.get("torque")
+        if torque is None:
+            return np.full(len(self.time), np.nan)
+        return torque - self.loads.torque_residual
+
+    @cached_property
+    def torque_threshold(self) -> Floats:
+        """Torque beyond the model that counts as an episode, shape (n,) [N.m]."""
+        return np.maximum(RESIDUAL_SHARE * self.model_torque, NOISE_MULTIPLE * self.noise("torque"))
+
+    def usual_activity(self, rows: Floats) -> str:
+        """Name the activity most of the rows are in, idle ones aside where there are others."""
+        codes = self.rig.activity[rows]
+        idle = (Activity.UNKNOWN, Activity.CONNECTION, Activity.STATIC)
+        busy = codes[~np.isin(codes, idle)]
+        counts = np.bincount(busy if len(busy) else codes, minlength=1)
+        return Activity(int(np.argmax(counts))).word
+
+    def friction_multiple(self, rows: Floats, cased: Floats, open_: Floats) -> Floats:
+        """Drag at other factors over drag at the calibrated ones, to first order.
+
+        Parameters
+        ----------
+        rows : ndarray of int, shape (m,)
+        cased, open_ : ndarray, shape (k,)
+            Friction factors of the draws.
+
+        Returns
+        -------
+        ndarray, shape (k, m)
+
+        Notes
+        -----
+        Cased and open hole are weighed by the inclined length of string in each, which is what contact
+        follows where tension is moderate.
+        """
+        mu = max(self.calibration.factor("cased"), 1e-3), max(self.calibration.factor("open"), 1e-3)
+        share = self.open_share[rows]
+        return np.outer(cased / mu[0], 1.0 - share) + np.outer(open_ / mu[1], share)
+
+    @cached_property
+    def open_share(self) -> Floats:
+        """Part of the drag that comes from open hole, shape (n,), 0 to 1."""
+        bit = np.nan_to_num(self.bit)
+        grid = np.linspace(0.0, max(float(bit.max()), 1.0), 400)
+        side = np.sin(np.asarray(self.well.trajectory.at(grid).inclination)) + 0.01
+        is_open = np.asarray(self.well.hole.is_open(grid), dtype=bool)
+        mu = np.where(is_open, self.calibration.factor("open"), self.calibration.factor("cased"))
+        total = np.cumsum(side * mu)
+        return np.interp(bit, grid, np.cumsum(side * mu * is_open) / np.maximum(total, 1e-12))
