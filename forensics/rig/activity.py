@@ -25,6 +25,8 @@ _MOST_WEIGHT = 15e3
 _FREE_SPEED = 0.05
 # Off bottom by less than this a free bit can't be told from a loaded one by depth [m].
 _TOUCH = 0.3
+# Differential pressure below this share of the level that counts is none: a locked-in load dies slowly.
+_NO_PRESSURE = 0.25
 # Second pass: bit load above this is on bottom (the contract's rule) [N].
 _REFINE_WEIGHT = 1e3
 
@@ -33,13 +35,15 @@ _REFINE_WEIGHT = 1e3
 class Surface:
     """What the surface shows at each row, for judging the bit; arrays of shape (n,).
 
-    `smooth` hookload averaged [N]; `direction` +1 down; `differential` pressure re-zeroed, NaN where
-    there is none, with the level that counts as load [Pa].
+    `smooth` hookload averaged [N]; `direction` +1 down; `axial` share of the drag that acts along the
+    string while it turns, by its pitch of motion: + down, - up [-]; `differential` pressure re-zeroed, NaN
+    where there is none, with the level that counts as load [Pa].
     """
 
     smooth: Floats
     direction: NDArray[np.int8]
     speed: Floats
+    axial: Floats
     turning: Bools
     pumping: Bools
     slips: Bools
@@ -50,7 +54,7 @@ class Surface:
 def bottom_evidence(
     surface: Surface, depths: DepthView, references: tuple[Reference, Reference, Reference], signals: Signals
 ) -> NDArray[np.int8]:
-    """Ask what each row says by itself: +1 on bottom, -1 off it, 0 nothing.
+    """Ask what each row says by itself: above zero on bottom, below zero off it, 0 nothing.
 
     Parameters
     ----------
@@ -66,42 +70,74 @@ def bottom_evidence(
     Returns
     -------
     ndarray of int8, shape (n,)
-        Votes; the state holds where there's none.
+        2 and -2 for depth and weight, 1 and -1 for the weaker witness of pressure; the state holds where
+        there is no vote.
 
     Notes
     -----
-    Turning, weight is the rotating reference less the hookload. Not turning, drag hides the bit between
-    slack-off and pick-up weight: only a hookload below the slack-off weight proves contact, only one at
-    the pick-up weight after lifting proves there's none, and between them the last answer stands (a
-    partial pick-up leaves the bit loaded).
+    Turning, weight is the rotating reference less the hookload, and less the part of the drag that a
+    turning string still feels as it moves. Not turning, drag hides the bit between slack-off and pick-up
+    weight: only a hookload below the slack-off weight proves contact, only one at the pick-up weight after
+    lifting proves there's none, and between them the last answer stands (a partial pick-up leaves the bit
+    loaded).
     """
-    rotating, slack, pick = references
     close = (depths.gap < depths.near) & ~depths.run_in
-    settled = _settled(surface.turning, signals.count(SMOOTHING))
     vote = np.zeros(len(close), dtype=np.int8)
-    _vote(vote, depths.advancing & surface.pumping, 1)
+    _vote(vote, depths.advancing & surface.pumping, 2)
     level = surface.differential_level
     _vote(vote, surface.pumping & (surface.differential > level), 1)
-    _vote(vote, surface.pumping & (surface.differential < 0.5 * level), -1)
-    limit = weight_limit(rotating, signals)
-    load = rotating.weight - surface.smooth
-    turned = surface.turning & settled
-    _vote(vote, turned & (load > limit), 1)
-    _vote(vote, turned & (load < 0.5 * limit), -1)
-    still = ~surface.turning & settled
-    limit = weight_limit(slack, signals)
-    load = slack.weight - surface.smooth
-    _vote(vote, still & (load > limit), 1)
+    _vote(vote, surface.pumping & (surface.differential < _NO_PRESSURE * level), -1)
+    _vote_by_weight(vote, surface, depths, references, signals)
     freely = (surface.direction > 0) & (-surface.speed > _FREE_SPEED) & (depths.gap > _TOUCH)
-    _vote(vote, still & freely & (load < limit), -1)
+    loaded = references[1].weight - surface.smooth > weight_limit(references[1], signals)
+    _vote(vote, freely & (surface.turning | ~loaded), -2)
+    _vote(vote, surface.slips, 0)
+    _vote(vote, ~close, -2)
+    return vote
+
+
+def _vote_by_weight(
+    vote: NDArray[np.int8],
+    surface: Surface,
+    depths: DepthView,
+    references: tuple[Reference, Reference, Reference],
+    signals: Signals,
+) -> None:
+    """Add what the hookload says against its references, turning and not turning."""
+    rotating, slack, pick = references
+    settled = _settled(surface.turning, signals.count(SMOOTHING))
+    turned, still = surface.turning & settled, ~surface.turning & settled
+    limit = weight_limit(rotating, signals)
+    load = turning_reference(references, surface.axial) - surface.smooth
+    _vote(vote, turned & (load > limit), 2)
+    _vote(vote, turned & (load < 0.5 * limit), -2)
+    _vote(vote, still & (slack.weight - surface.smooth > weight_limit(slack, signals)), 2)
     lifted = noise.hold(surface.direction) < 0
     high = surface.smooth > pick.weight - weight_limit(pick, signals)
-    _vote(vote, still & lifted & high & (depths.gap > _TOUCH), -1)
+    _vote(vote, still & lifted & high & (depths.gap > _TOUCH), -2)
     far = (surface.direction < 0) & (depths.gap > 0.5 * depths.near)
-    _vote(vote, still & far & ~np.isfinite(pick.weight), -1)
-    _vote(vote, surface.slips, 0)
-    _vote(vote, ~close, -1)
-    return vote
+    _vote(vote, still & far & ~np.isfinite(pick.weight), -2)
+
+
+def turning_reference(references: tuple[Reference, Reference, Reference], axial: Floats) -> Floats:
+    """Give the weight off bottom while turning, with the drag that motion along the hole leaves.
+
+    Parameters
+    ----------
+    references : tuple of Reference
+        Rotating, slack-off and pick-up weight.
+    axial : ndarray, shape (n,)
+        Axial share of the sliding direction, + down, - up [-].
+
+    Returns
+    -------
+    ndarray, shape (n,)
+        [N]
+    """
+    rotating, slack, pick = references
+    down = np.nan_to_num(rotating.weight - slack.weight)
+    up = np.nan_to_num(pick.weight - rotating.weight)
+    return rotating.weight - np.where(axial > 0, down, up) * axial
 
 
 def weight_limit(reference: Reference, signals: Signals) -> float:
@@ -176,13 +212,13 @@ def refine_activity(rig: RigView, bit_load: Floats, log: TimeLog) -> RigView:
     Notes
     -----
     Only rows that the first pass could not settle by themselves are looked at: out of slips, not turning,
-    near bottom, and no vote of depth or weight. Elsewhere a measured reference is the better witness.
+    and no vote of depth or weight. Elsewhere a measured reference is the better witness.
     """
     signals = read_signals(log)
     limit = max(_REFINE_WEIGHT, signals.smooth_noise(SMOOTHING))
     known = np.isfinite(bit_load)
     loaded = noise.running_median(np.where(known, bit_load, 0.0), signals.count(SMOOTHING)) > limit
-    unsettled = np.ones(len(log), dtype=bool) if rig.bottom_vote is None else rig.bottom_vote == 0
+    unsettled = np.ones(len(log), dtype=bool) if rig.bottom_vote is None else np.abs(rig.bottom_vote) < 2
     open_rows = known & unsettled & ~rig.slips & ~rig.turning
     on_bottom = np.where(open_rows, loaded, rig.on_bottom)
     refined = replace(rig, on_bottom=on_bottom)

@@ -146,8 +146,9 @@ def usual_level(values: Floats, level_noise: float) -> float:
     if not good.size:
         return np.nan
     top = float(np.quantile(good, 0.995))
-    floor = max(_RUNNING * top, noise.NOISE_FACTOR * level_noise if top > 12 * level_noise else top)
-    running = good[good > floor]
+    if top <= noise.NOISE_FACTOR * level_noise:
+        return np.nan
+    running = good[good > _RUNNING * top]
     return float(np.median(running)) if running.size >= noise.LEAST_SAMPLES else np.nan
 
 
@@ -161,6 +162,5 @@ def _flow_steady(log: TimeLog, signals: Signals, pumping: Bools, usual: float) -
         return steady
     filled = noise.running_median(noise.fill(flow), count)
     change = np.abs(noise.rate(filled, signals.time, noise.window_seconds(10.0, signals.interval)))
-    return steady & (
-        change * 10.0 < max(_FLOW_CHANGE * usual, noise.NOISE_FACTOR * signals.noise.get("flow_in", 0))
-    )
+    level = min(noise.NOISE_FACTOR * signals.noise.get("flow_in", 0.0), PUMPING_SHARE * usual)
+    return steady & (change * 10.0 < max(_FLOW_CHANGE * usual, level))

@@ -48,12 +48,17 @@ def resolution(values: Floats) -> float:
         The step, in the channel's unit.
     """
     change = np.abs(np.diff(values))
-    change = change[np.isfinite(change) & (change > 0)][:20000]
+    change = change[np.isfinite(change) & (change > _nothing(values))][:20000]
     if change.size < 8:
         return 0.0
     step = float(np.quantile(change, 0.02))
     off = np.abs(change / step - np.round(change / step))
     return step if float(np.quantile(off, 0.9)) < 0.1 else 0.0
+
+
+def _nothing(values: Floats) -> float:
+    """Give the size below which a difference is none: rounding left by a change of unit."""
+    return 1e-9 * float(np.max(np.abs(values), initial=0.0, where=np.isfinite(values)))
 
 
 def short_noise(values: Floats) -> float:
@@ -74,7 +79,7 @@ def short_noise(values: Floats) -> float:
     """
     second = np.abs(values[2:] - 2.0 * values[1:-1] + values[:-2])
     second = second[np.isfinite(second)]
-    moved = second[second > 0]
+    moved = second[second > _nothing(values)]
     floor = resolution(values) * _ROUNDING
     if moved.size < 8:
         return floor

@@ -6,6 +6,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from forensics.logs.table import TimeLog
 from forensics.rig import noise
 from forensics.rig.noise import Bools, Floats
 from forensics.rig.signals import Signals
@@ -20,6 +21,10 @@ _PAIR_TIME = 3600.0
 _LEAST_PAIRS = 5
 # Fewer readings with pumps on than this, and those without serve as well.
 _LEAST_PUMPED = 3
+# Differential pressure: averaged over this [s]; load shows above this [Pa] and so many wanders of its zero.
+_ZERO_TIME = 9.0
+_LEAST_PRESSURE = 5e4
+_WANDERS = 1.5
 
 
 @dataclass(frozen=True)
@@ -114,6 +119,40 @@ def build_reference(kind: str, steady: Steady, base: Floats, signals: Signals) -
 def weight_on_bit(reference: Reference, hookload: Floats, rows: Bools) -> Floats:
     """Take hookload from reference on the rows given, NaN elsewhere [N]."""
     return np.where(rows, reference.weight - hookload, np.nan)
+
+
+def rezero_pressure(log: TimeLog, signals: Signals, free: Bools) -> tuple[Floats, float]:
+    """Re-zero the differential pressure on moments off bottom with steady pumps.
+
+    Parameters
+    ----------
+    log : TimeLog
+        Channel `differential_pressure`.
+    signals : Signals
+        Noise and sampling.
+    free : ndarray of bool, shape (n,)
+        Rows surely off bottom, pumps steady.
+
+    Returns
+    -------
+    pressure : ndarray, shape (n,)
+        Averaged and re-zeroed [Pa]; NaN where there is no channel or no moment to zero it on.
+    level : float
+        Pressure that counts as load: six times the noise left, or the wander of the zero between moments.
+    """
+    channel = log.get("differential_pressure")
+    runs = noise.runs_of(free)
+    count = signals.count(_ZERO_TIME)
+    long = runs.stop - runs.start >= count
+    if channel is None or not long.any():
+        return np.full(len(log), np.nan), np.inf
+    smooth = noise.running_mean(noise.fill(channel), count)
+    runs = noise.Runs(runs.start[long], runs.stop[long])
+    zeros = np.array([np.median(smooth[a:b]) for a, b in zip(runs.start, runs.stop, strict=True)])
+    zero = np.interp(log.time, log.time[(runs.start + runs.stop) // 2], zeros)
+    wander = 1.4826 * float(np.median(np.abs(np.diff(zeros)))) if len(zeros) > 1 else 0.0
+    level = noise.NOISE_FACTOR * signals.noise["differential_pressure"] / count**0.5
+    return smooth - zero, max(level, _WANDERS * wander, _LEAST_PRESSURE)
 
 
 def list_tares(

@@ -31,6 +31,7 @@ from forensics.rig.tare import (
     build_reference,
     hanging_share,
     list_tares,
+    rezero_pressure,
     stand_spans,
     weight_on_bit,
 )
@@ -40,6 +41,7 @@ from forensics.well.model import Well
 
 __all__ = ["refine_activity", "understand_rig"]
 
+_COMMON_RPM = 60.0
 # Spacing of the depths at which the string is weighed [m].
 _WEIGH_STEP = 5.0
 # Off bottom by at least this much, tried in turn until readings turn up, as shares of `near`.
@@ -155,7 +157,7 @@ def _judge(
             break
     base = below + hanging_share(steady, below, hanging) * hanging * np.nan_to_num(moves.block)
     references = _references(steady, base, signals)
-    surface = _surface(log, signals, moves, drives, depths)
+    surface = _surface(log, well, signals, moves, drives, depths)
     vote = bottom_evidence(surface, depths, references, signals)
     # Once more: a bit known to be free close to bottom gives the references of that very place.
     free = (noise.hold(vote, initial=-1) < 0) & ((depths.gap > 0.5) | depths.run_in)
@@ -188,20 +190,21 @@ def _references(steady: Steady, base: Floats, signals: Signals) -> tuple[Referen
     )
 
 
-def _surface(log: TimeLog, signals: Signals, moves: _Moves, drives: Drives, depths: DepthView) -> Surface:
-    differential = log.get("differential_pressure")
-    pressure, level = np.full(len(log), np.nan), np.inf
-    free = (depths.gap > depths.near) & drives.pumping & ~moves.slips
-    if differential is not None and free.sum() >= noise.LEAST_SAMPLES:
-        smooth = noise.running_median(noise.fill(differential), signals.count(SMOOTHING))
-        zero = float(np.median(smooth[free]))
-        scatter = 1.4826 * float(np.median(np.abs(smooth[free] - zero)))
-        pressure = smooth - zero
-        level = noise.NOISE_FACTOR * max(scatter, signals.noise["differential_pressure"], 1e4)
+def _surface(
+    log: TimeLog, well: Well, signals: Signals, moves: _Moves, drives: Drives, depths: DepthView
+) -> Surface:
+    free = (depths.gap > depths.near) & drives.pumping & drives.flow_steady & ~moves.slips
+    pressure, level = rezero_pressure(log, signals, free)
+    pace = -noise.rate(moves.block, log.time, noise.window_seconds(SMOOTHING, signals.interval))
+    radius = 0.5 * well.string.components[-1].contact_diameter()
+    # A string known to turn only by its torque is taken to turn at a common speed.
+    rpm = noise.fill(drives.rpm) if np.isfinite(drives.rpm).any() else np.full(len(log), _COMMON_RPM)
+    spin = np.abs(rpm) * (2.0 * np.pi / 60.0) * radius
     return Surface(
         smooth=noise.running_mean(moves.hookload, signals.count(SMOOTHING)),
         direction=moves.direction,
         speed=moves.speed,
+        axial=np.nan_to_num(pace / np.hypot(pace, np.maximum(spin, 1e-3))),
         turning=drives.turning,
         pumping=drives.pumping,
         slips=moves.slips,
