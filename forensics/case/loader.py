@@ -69,6 +69,8 @@ def load_case(path: Path | str) -> Case:
         message = re.sub(r" \(at .*\)$", "", str(error))
         line = int(place.group(1)) if place else len(text.splitlines())
         raise CaseError(f"is not TOML: {message[:1].lower()}{message[1:]}", file=path, line=line) from None
+    if not tree:
+        raise CaseError("is empty; format = 1 and the sections of a case are needed", file=path)
     root = Node(path, text, tree, ())
     root.only(("format", *_SECTIONS.split()))
     version = root.take("format", as_whole(1, 999), 1)

@@ -13,8 +13,9 @@ from forensics.errors import TableError
 from forensics.well.fluid import Fluid, load_fluid
 from forensics.well.hole import Hole, load_hole
 from forensics.well.string import Component, String, buoyed_weight
+from forensics.well.survey import load_trajectory
 from forensics.well.tally import load_string
-from forensics.well.trajectory import Trajectory, load_trajectory
+from forensics.well.trajectory import Trajectory
 
 Floats = NDArray[np.float64]
 
@@ -97,6 +98,7 @@ class Well:
                 f"string is {self.string.length:.1f} m long and ends in {last.name} ({last.kind}), but the "
                 f"log has the bit at {max_bit_depth:.1f} m; add the pipe above it as the last row",
                 file=self.string_file,
+                line=last.line,
             )
         bottom = float(self.hole.bottom[-1])
         if self.hole.kind[-1] == "cased" and max_bit_depth > bottom + _BEYOND_CASED:
@@ -130,6 +132,7 @@ class Well:
                     f"hole of {self.hole.diameter[row] * 1000:.1f} mm below {self.hole.top[row]:.0f} m; "
                     "check od and diameter",
                     file=self.string_file,
+                    line=component.line,
                 )
 
 

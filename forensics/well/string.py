@@ -44,6 +44,8 @@ class Component:
         Minimum yield stress [Pa].
     youngs_modulus, density : float
         [Pa], [kg/m3]
+    line : int, optional
+        Line of the tally it stands on, for refusals.
     """
 
     name: str
@@ -58,6 +60,7 @@ class Component:
     yield_strength: float | None = None
     youngs_modulus: float = STEEL_MODULUS
     density: float = STEEL_DENSITY
+    line: int | None = None
 
     @property
     def area(self) -> float:

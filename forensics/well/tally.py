@@ -121,6 +121,7 @@ def _component(table: Table, row: int, kind: str, remarks: list[str]) -> Compone
         weight=weight,
         youngs_modulus=_or(number["youngs_modulus"], STEEL_MODULUS),
         density=density,
+        line=table.lines[row],
         **{key: None if math.isnan(number[key]) or number[key] == 0.0 else number[key] for key in optional},
     )
 

@@ -6,39 +6,19 @@ Above the first station the hole is vertical; below the last one its direction h
 
 from __future__ import annotations
 
-from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cached_property
-from pathlib import Path
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-from forensics.case import TieIn
 from forensics.errors import TableError
-from forensics.tables import Column, Table, read_table
 
 Floats = NDArray[np.float64]
 
 LARGEST_TURN = np.radians(60.0)
 # A first station written as -1.5e-6 m is the rotary, not a station above it.
-_DEPTH_NOISE = 0.01
-
-SURVEY_COLUMNS = (
-    Column(
-        "md",
-        "length",
-        ("measured depth", "measureddepth", "meas depth", "depth", "dept", "depthmd", "md depth", "ahd"),
-        required=True,
-    ),
-    Column(
-        "inclination",
-        "angle",
-        ("inc", "incl", "inclin", "devi", "dev", "inc angle", "hole inclination"),
-        True,
-    ),
-    Column("azimuth", "angle", ("azi", "azim", "az", "hole azimuth", "azimuth true", "azimuth grid"), True),
-)
+DEPTH_NOISE = 0.01
 
 
 @dataclass(frozen=True)
@@ -144,7 +124,7 @@ class Trajectory:
         if inside.any():
             result[inside] = places[index[inside]] + _chord(self._arcs, index[inside], along[inside])
         below = depth > self.md[last]
-        ahead = _tangent(self.inclination[last:], self.azimuth[last:])
+        ahead = tangent_of(self.inclination[last:], self.azimuth[last:])
         result[below] = places[last] + along[below, None] * ahead
         return result
 
@@ -155,7 +135,7 @@ class Trajectory:
         above = depth < self.md[0]
         tangent[above, 2] = 1.0
         below = depth >= self.md[last]
-        tangent[below] = _tangent(self.inclination[last:], self.azimuth[last:])
+        tangent[below] = tangent_of(self.inclination[last:], self.azimuth[last:])
         inside = ~(above | below)
         if inside.any():
             arcs = self._arcs
@@ -217,10 +197,8 @@ def build_trajectory(md: ArrayLike, inclination: ArrayLike, azimuth: ArrayLike) 
 def find_fault(md: Floats, inclination: Floats, azimuth: Floats) -> tuple[int, str] | None:
     """Find the first station that no hole could have: its row from 0, and what is wrong with it."""
     if md.ndim != 1 or not (md.shape == inclination.shape == azimuth.shape) or md.size == 0:
-        return (
-            0,
-            f"arrays have shapes {md.shape}, {inclination.shape}, {azimuth.shape}; one length is needed",
-        )
+        shapes = f"{md.shape}, {inclination.shape}, {azimuth.shape}"
+        return 0, f"arrays have shapes {shapes}; one length of one station or more is needed"
     finite = np.isfinite(md) & np.isfinite(inclination) & np.isfinite(azimuth)
     wrong = ~finite | (inclination < -1e-9) | (inclination > np.pi) | (np.abs(azimuth) > 4.0 * np.pi)
     faults = []
@@ -228,9 +206,9 @@ def find_fault(md: Floats, inclination: Floats, azimuth: Floats) -> tuple[int, s
         row = int(wrong.argmax())
         shown = f"{np.degrees(inclination[row]):.4g} deg, azimuth {np.degrees(azimuth[row]):.4g} deg"
         faults.append((row, f"inclination {shown} is no direction; 0 to 180 and 0 to 360 deg are needed"))
-    if md[0] < -_DEPTH_NOISE:
+    if md[0] < -DEPTH_NOISE:
         faults.append((0, f"starts at {md[0]:.2f} m; depths count down from the rotary"))
-    back = np.diff(md) <= 0.0
+    back = np.diff(np.maximum(md, 0.0)) <= 0.0
     if back.any():
         row = int(back.argmax()) + 1
         how = "repeats the depth of" if md[row] == md[row - 1] else "goes back up from"
@@ -238,12 +216,12 @@ def find_fault(md: Floats, inclination: Floats, azimuth: Floats) -> tuple[int, s
             (row, f"{md[row]:.2f} m {how} the row before ({md[row - 1]:.2f} m); remove or sort the rows")
         )
     faults += _impossible_turns(md, inclination, azimuth)
-    return min(faults, default=None)
+    return min(faults, key=lambda fault: fault[0], default=None)
 
 
 def _impossible_turns(md: Floats, inclination: Floats, azimuth: Floats) -> list[tuple[int, str]]:
-    tangents = np.vstack([[0.0, 0.0, 1.0], _tangent(inclination, azimuth)])
-    turns = _angle(tangents[:-1], tangents[1:])
+    tangents = np.vstack([[0.0, 0.0, 1.0], tangent_of(inclination, azimuth)])
+    turns = angle_between(tangents[:-1], tangents[1:])
     wild = turns > LARGEST_TURN
     if not wild.any():
         return []
@@ -255,23 +233,24 @@ def _impossible_turns(md: Floats, inclination: Floats, azimuth: Floats) -> list[
     ]
 
 
-def _tangent(inclination: Floats, azimuth: Floats) -> Floats:
+def tangent_of(inclination: Floats, azimuth: Floats) -> Floats:
+    """Give unit vectors (north, east, down), shape (k, 3)."""
     across = np.sin(inclination)
     return np.column_stack([across * np.cos(azimuth), across * np.sin(azimuth), np.cos(inclination)])
 
 
-def _angle(first: Floats, second: Floats) -> Floats:
-    """Angle between unit vectors, exact for small ones too [rad]."""
+def angle_between(first: Floats, second: Floats) -> Floats:
+    """Measure the angle between unit vectors of shape (k, 3), exact for small ones too [rad]."""
     return np.arctan2(np.linalg.norm(np.cross(first, second), axis=-1), (first * second).sum(axis=-1))
 
 
 def _arcs(md: Floats, inclination: Floats, azimuth: Floats) -> _Arcs:
-    tangents = _tangent(inclination, azimuth)
+    tangents = tangent_of(inclination, azimuth)
     start, end = tangents[:-1], tangents[1:]
     across = end - (start * end).sum(axis=1)[:, None] * start
     size = np.linalg.norm(across, axis=1)[:, None]
     normal = np.divide(across, size, out=np.zeros_like(across), where=size > 0.0)
-    return _Arcs(start, normal, _angle(start, end), np.diff(md))
+    return _Arcs(start, normal, angle_between(start, end), np.diff(md))
 
 
 def _chord(arcs: _Arcs, index: NDArray[np.intp], along: Floats) -> Floats:
@@ -281,74 +260,3 @@ def _chord(arcs: _Arcs, index: NDArray[np.intp], along: Floats) -> Floats:
     ahead = along * np.sinc(angle / np.pi)
     aside = along * np.sin(angle / 2.0) * np.sinc(angle / (2.0 * np.pi))
     return ahead[:, None] * arcs.tangent[index] + aside[:, None] * arcs.normal[index]
-
-
-def load_trajectory(file: Path, tie_in: TieIn | None = None) -> tuple[Trajectory, tuple[str, ...]]:
-    """Read a survey table into a trajectory.
-
-    Parameters
-    ----------
-    file : Path
-        Columns md, inclination, azimuth.
-    tie_in : TieIn, optional
-        A station above the first row.
-
-    Returns
-    -------
-    Trajectory
-    tuple of str
-        What a reader of the result should know.
-
-    Raises
-    ------
-    TableError
-        If the table can't be read, or as `build_trajectory`, with the rows named.
-    """
-    table = read_table(file, SURVEY_COLUMNS)
-    stations = [table.number(name) for name in ("md", "inclination", "azimuth")]
-    extra = 0
-    if tie_in is not None:
-        first = (tie_in.md, tie_in.inclination, tie_in.azimuth)
-        gap = stations[0][0] - tie_in.md
-        if gap < -_DEPTH_NOISE:
-            raise table.error(f"first station is {-gap:.2f} m above the tie-in of the case file", 0, "md")
-        if gap > _DEPTH_NOISE:
-            stations = [np.insert(values, 0, value) for values, value in zip(stations, first, strict=True)]
-            extra = 1
-        else:
-            _agree(stations, tie_in, table)
-    fault = find_fault(*stations)
-    if fault is not None:
-        row, message = fault
-        raise table.error(message, max(row - extra, 0))
-    return build_trajectory(*stations), _remarks(file.name, stations)
-
-
-def _agree(stations: Sequence[Floats], tie_in: TieIn, table: Table) -> None:
-    """Refuse a tie-in at the first station's depth that points elsewhere."""
-    own = _tangent(stations[1][:1], stations[2][:1])
-    given = _tangent(np.array([tie_in.inclination]), np.array([tie_in.azimuth]))
-    apart = np.degrees(_angle(own, given))[0]
-    if apart > 0.5:
-        raise table.error(
-            f"first station is {apart:.1f} deg off the tie-in of the case file; leave one out", 0
-        )
-
-
-def _remarks(name: str, stations: Sequence[Floats]) -> tuple[str, ...]:
-    md, inclination, azimuth = stations
-    remarks = []
-    if inclination[0] > np.radians(5.0) and md[0] > 0.0:
-        remarks.append(
-            f"{name}: the hole is taken as vertical down to the first station at {md[0]:.1f} m, "
-            f"where it leans {np.degrees(inclination[0]):.1f} deg"
-        )
-    # In degrees no deviated hole keeps both angles below these; in radians every hole does.
-    narrow = (
-        np.degrees(inclination).max() <= np.pi / 2 + 0.01 and np.degrees(azimuth).max() <= 2 * np.pi + 0.01
-    )
-    if narrow and len(md) > 3 and np.degrees(azimuth).max() > 0.5 and np.degrees(inclination).max() > 0.5:
-        remarks.append(
-            f"{name}: no angle exceeds 6.3 deg; the numbers may be radians under a header of degrees"
-        )
-    return tuple(remarks)
