@@ -1,0 +1,1 @@
+"""Logs: any file to one SI table with its history."""

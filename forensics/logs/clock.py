@@ -1,0 +1,403 @@
+"""Stamps of a log: whichever columns hold them, to seconds since 1970 UTC."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
+from typing import TYPE_CHECKING
+from zoneinfo import ZoneInfo
+
+import numpy as np
+from numpy.typing import NDArray
+
+from forensics import channels
+from forensics.errors import CaseError, LogError
+from forensics.logs import clock_number
+from forensics.logs.clock_text import (
+    date_fields,
+    day_number,
+    find_order,
+    looks_like_clock,
+    looks_like_date,
+    take_apart,
+)
+from forensics.logs.raw import RawLog
+
+if TYPE_CHECKING:
+    import pandas as pd
+
+Floats = NDArray[np.float64]
+DAY = 86400.0
+_DATE_NAMES = frozenset(
+    [
+        "date",
+        "day",
+        "datum",
+        "dato",
+        "yyyymmdd",
+        "ddmmyyyy",
+        "mmddyyyy",
+        "yymmdd",
+        "ddmmyy",
+        "logdate",
+        "fecha",
+    ]
+)
+_CLOCK_NAMES = frozenset(
+    ["time", "hhmmss", "hhmm", "clock", "timeofday", "tod", "tid", "uhrzeit", "zeit", "hora"]
+)
+
+
+class OpenOrderError(LogError):
+    """The order of day and month can't be told from this file alone."""
+
+
+@dataclass(frozen=True)
+class Clock:
+    """Stamps of one file.
+
+    Parameters
+    ----------
+    time : ndarray, shape (n,)
+        Seconds since 1970-01-01 UTC, NaN where a stamp could not be read [s].
+    columns : tuple of str
+        Columns they came from.
+    why : str
+        How they were read.
+    dated : bool
+        False where the file gives no date; stamps then count from 1970-01-01.
+    order : str or None
+        Order of day and month the data showed.
+    warnings : tuple of str
+        What the reader of the report should know.
+    """
+
+    time: Floats
+    columns: tuple[str, ...]
+    why: str
+    dated: bool = True
+    order: str | None = None
+    warnings: tuple[str, ...] = ()
+
+
+def zone_of(name: str) -> ZoneInfo | float:
+    """Read a time zone: an IANA name, or an offset from UTC in seconds.
+
+    Raises
+    ------
+    CaseError
+        If it is neither.
+
+    Examples
+    --------
+    >>> zone_of("+05:30")
+    19800.0
+    """
+    bare = name.strip()
+    found = re.fullmatch(r"(?:UTC|GMT)?\s*([+-])(\d{1,2})(?::?(\d{2}))?", bare, re.IGNORECASE)
+    if found:
+        seconds = int(found.group(2)) * 3600.0 + int(found.group(3) or 0) * 60.0
+        return -seconds if found.group(1) == "-" else seconds
+    if bare.upper() in {"", "UTC", "Z", "GMT"}:
+        return 0.0
+    try:
+        return ZoneInfo(bare)
+    except (KeyError, ValueError, OSError) as error:
+        raise CaseError(
+            f"unknown time zone {name!r}; use an IANA name such as 'Europe/Oslo' or an offset such as '+01:00'",
+            column="logs.timezone",
+        ) from error
+
+
+def to_utc(local: Floats, zone: ZoneInfo | float) -> Floats:
+    """Shift local seconds to UTC; in the hour that comes twice the stamps' order decides where it can."""
+    if isinstance(zone, float):
+        return local - zone
+    import pandas as pd
+
+    known = np.isfinite(local)
+    index = pd.DatetimeIndex((local[known] * 1e6).round().astype("int64").view("datetime64[us]"))
+    try:
+        aware = index.tz_localize(zone, ambiguous="infer", nonexistent="shift_forward")
+    except ValueError:
+        summer = np.ones(len(index), dtype=bool)
+        aware = index.tz_localize(zone, ambiguous=summer, nonexistent="shift_forward")
+    out = local.copy()
+    out[known] = aware.as_unit("us").asi8 / 1e6
+    return out
+
+
+def is_time_name(name: str) -> bool:
+    """Tell whether a column's name says it holds a date or a time."""
+    key = channels.normalise(name)
+    return key in _DATE_NAMES or key in _CLOCK_NAMES or channels.match(name)[0] == "time"
+
+
+def read_clock(raw: RawLog, timezone: str, chosen: tuple[str, str | None] | None, order: str | None) -> Clock:
+    """Read the stamps of one file.
+
+    Parameters
+    ----------
+    raw : RawLog
+        The file.
+    timezone : str
+        Zone of stamps that carry none.
+    chosen : tuple of (str, str or None), optional
+        Column and unit the case file names for the time.
+    order : str or None
+        "dmy" or "mdy" where other files of the case have shown it.
+
+    Returns
+    -------
+    Clock
+        Stamps in UTC.
+
+    Raises
+    ------
+    LogError
+        If no column holds time, or day and month can't be told apart (`OpenOrderError`).
+    """
+    zone = zone_of(timezone)
+    place, unit = _pick(raw, chosen)
+    date_place = next(
+        (
+            i
+            for i, name in enumerate(raw.names)
+            if channels.normalise(name) in _DATE_NAMES and i != place and i in raw.table
+        ),
+        None,
+    )
+    column = raw.table[place]
+    if date_place is not None and raw.table[date_place].isna().all():
+        date_place = None
+    if _is_number(column):
+        return _from_numbers(raw, (place, date_place), unit, zone)
+    sample = column.dropna()
+    if len(sample) == 0:
+        raise LogError("the time column is empty", file=raw.path, column=raw.names[place])
+    stamps = _stamps(column, raw, order)
+    if np.isfinite(stamps.days).mean() < 0.5 or _is_placeholder(stamps.days):
+        # The date is a filler, or is kept elsewhere.
+        return _clock_and_date(raw, (place, date_place), stamps, zone, order)
+    local = stamps.days * DAY + np.nan_to_num(stamps.seconds)
+    time = np.where(np.isfinite(stamps.offset), local - np.nan_to_num(stamps.offset), to_utc(local, zone))
+    return Clock(time, (raw.names[place],), "date and time in one column", order=stamps.order)
+
+
+def _pick(raw: RawLog, chosen: tuple[str, str | None] | None) -> tuple[int, str | None]:
+    """Find the time column: the one named, the best by name, or the first if it holds stamps."""
+    loaded = [i for i in range(len(raw.names)) if i in raw.table]
+    if chosen is not None:
+        key = channels.normalise(chosen[0])
+        for i in loaded:
+            if raw.names[i] == chosen[0] or channels.normalise(raw.names[i]) == key:
+                return i, chosen[1] or raw.units[i]
+    filled = [i for i in loaded if not raw.table[i].isna().all()]
+    named = [i for i in filled if channels.normalise(raw.names[i]) in _CLOCK_NAMES]
+    named += [i for i in filled if channels.match(raw.names[i])[0] == "time"]
+    named += [i for i in filled if channels.normalise(raw.names[i]) in _DATE_NAMES]
+    full = [i for i in named if not _is_number(raw.table[i]) and _holds_stamps(raw.table[i])]
+    for i in (*full, *named):
+        return i, raw.units[i]
+    for i in filled:
+        if not _is_number(raw.table[i]) and _holds_stamps(raw.table[i]):
+            return i, raw.units[i]
+    if raw.format.startswith("LAS") and filled and raw.start is not None:
+        return filled[0], raw.units[filled[0]]
+    seen = ", ".join(repr(name) for name in raw.names[:40])
+    raise LogError(
+        f'found no column of time among {seen}; name it under [logs.channels] as time = "..."', file=raw.path
+    )
+
+
+def _is_number(column: pd.Series) -> bool:
+    import pandas as pd
+
+    return bool(pd.api.types.is_numeric_dtype(column))
+
+
+def _holds_stamps(column: pd.Series) -> bool:
+    texts = [str(text) for text in column.dropna().iloc[:5]]
+    return bool(texts) and all(looks_like_date(text) and take_apart(text).clock is not None for text in texts)
+
+
+def _is_placeholder(days: Floats) -> bool:
+    known = days[np.isfinite(days)]
+    return len(known) > 0 and bool((np.abs(known) <= 1).all())
+
+
+@dataclass(frozen=True)
+class _Stamps:
+    """Day number, seconds of the day and offset of every row, NaN where absent."""
+
+    days: Floats
+    seconds: Floats
+    offset: Floats
+    order: str | None
+
+
+def _stamps(column: pd.Series, raw: RawLog, order: str | None) -> _Stamps:
+    fast = _iso(column)
+    if fast is not None:
+        return fast
+    import pandas as pd
+
+    codes, uniques = pd.factorize(column)
+    parts = [take_apart(str(text)) for text in uniques]
+    dates = list(dict.fromkeys(part.date for part in parts if part.date))
+    order = _decide(dates, raw, order)
+    days = {date: day_number(date, order) for date in dates}
+    table = np.array(
+        [[_nan(days.get(part.date)), _nan(part.clock), _nan(part.offset)] for part in parts] + [[np.nan] * 3]
+    )
+    return _Stamps(table[codes, 0], table[codes, 1], table[codes, 2], order)
+
+
+def _nan(value: float | None) -> float:
+    return np.nan if value is None else float(value)
+
+
+def _iso(column: pd.Series) -> _Stamps | None:
+    """Read ISO 8601 stamps at compiled speed; None where they aren't all of that form."""
+    import pandas as pd
+
+    first = str(column.dropna().iloc[0])
+    if not re.match(r"\d{4}-\d{2}-\d{2}[T ]\d{2}:\d{2}", first):
+        return None
+    try:
+        index = pd.DatetimeIndex(pd.to_datetime(column, format="ISO8601"))
+    except (ValueError, OverflowError, TypeError):
+        return None
+    aware = index.tz is not None
+    missing = index.isna()
+    seconds = np.where(missing, np.nan, index.as_unit("us").asi8 / 1e6)
+    days = np.floor(seconds / DAY)
+    return _Stamps(days, seconds - days * DAY, np.full(len(days), 0.0 if aware else np.nan), None)
+
+
+def _decide(dates: Sequence[str], raw: RawLog, known: str | None) -> str | None:
+    """Settle the order of day and month, from the file, then from the other files, else refuse."""
+    order = find_order(dates)
+    if order == "clash":
+        bad = next(d for d in dates if (f := date_fields(d)) is not None and len(f) == 4)
+        raise LogError(
+            f"some dates put the day first and some the month (the first is {bad!r}); export them as YYYY-MM-DD",
+            file=raw.path,
+        )
+    if order in {"dmy", "mdy", "either"}:
+        return order
+    if known is not None:
+        return known
+    hint = raw.date_hint.casefold().replace(".", "/").replace("-", "/")
+    if ("dd/mm" in hint) != ("mm/dd" in hint):
+        return "dmy" if "dd/mm" in hint else "mdy"
+    raise OpenOrderError(
+        f"the date {dates[0]!r} can be read day first or month first, and nothing in the data decides; "
+        "export dates as YYYY-MM-DD",
+        file=raw.path,
+        line=raw.first_line,
+    )
+
+
+def _clock_and_date(
+    raw: RawLog, places: tuple[int, int | None], stamps: _Stamps, zone: ZoneInfo | float, order: str | None
+) -> Clock:
+    """Put a date column beside a clock, or count midnights where there is none."""
+    place, date_place = places
+    if not np.isfinite(stamps.seconds).any():
+        raise LogError(
+            f"can't read time from {str(raw.table[place].dropna().iloc[0])!r}; expected ISO 8601, date and time, "
+            "epoch seconds or a clock",
+            file=raw.path, line=raw.first_line, column=raw.names[place],
+        )  # fmt: skip
+    if date_place is not None:
+        column = raw.table[date_place]
+        days = (
+            clock_number.days(column.to_numpy(float)) if _is_number(column) else _stamps(column, raw, order)
+        )
+        if isinstance(days, _Stamps):
+            order, days = days.order, days.days
+        local = days * DAY + stamps.seconds
+        names = (raw.names[date_place], raw.names[place])
+        return Clock(_shift(local, stamps.offset, zone), names, "date and clock in two columns", order=order)
+    local = wrap_midnight(stamps.seconds)
+    return Clock(
+        _shift(local, stamps.offset, zone),
+        (raw.names[place],),
+        "clock only; midnights counted",
+        dated=False,
+        warnings=("the log gives a clock without a date: stamps count from 1970-01-01",),
+    )
+
+
+def _shift(local: Floats, offset: Floats, zone: ZoneInfo | float) -> Floats:
+    return np.where(np.isfinite(offset), local - np.nan_to_num(offset), to_utc(local, zone))
+
+
+def wrap_midnight(seconds: Floats) -> Floats:
+    """Add a day each time a clock falls back by more than half a day.
+
+    Examples
+    --------
+    >>> wrap_midnight(np.array([86399.0, 1.0])).tolist()
+    [86399.0, 86401.0]
+    """
+    out = seconds.copy()
+    known = np.flatnonzero(np.isfinite(seconds))
+    if len(known) > 1:
+        step = np.diff(seconds[known])
+        days = np.cumsum(np.where(step < -0.5 * DAY, 1.0, 0.0))
+        # A row that arrives late, across midnight, belongs to the day before.
+        days -= np.cumsum(np.where(step > 0.5 * DAY, 1.0, 0.0)) * (days > 0)
+        out[known[1:]] += DAY * np.maximum(days, 0.0)
+    return out
+
+
+def _from_numbers(
+    raw: RawLog, places: tuple[int, int | None], unit: str | None, zone: ZoneInfo | float
+) -> Clock:
+    place, date_place = places
+    values = raw.table[place].to_numpy(dtype=np.float64, na_value=np.nan)
+    name = raw.names[place]
+    if date_place is not None and channels.normalise(name) not in _DATE_NAMES:
+        return _number_and_date(raw, (place, date_place), values, zone)
+    found = clock_number.read(values, unit, name)
+    if found is None:
+        raise LogError(
+            f"can't read time from numbers such as {values[np.isfinite(values)][:1]!r}; give its unit under "
+            "[logs.channels]: time = { column = \"...\", unit = \"s\" }",
+            file=raw.path, column=name,
+        )  # fmt: skip
+    if found.absolute:
+        time = found.seconds if found.utc else to_utc(found.seconds, zone)
+        return Clock(time, (name,), found.why)
+    if raw.start is not None:
+        start = take_apart(raw.start)
+        order = _decide([start.date], raw, None)
+        base = (day_number(start.date, order) or 0) * DAY + (start.clock or 0.0)
+        first = found.seconds[np.isfinite(found.seconds)][:1].sum() if raw.start_is_first_row else 0.0
+        local = base + found.seconds - first
+        offset = np.full(len(local), _nan(start.offset))
+        return Clock(_shift(local, offset, zone), (name,), f"{found.why} from {raw.start}", order=order)
+    warning = f"{raw.path.name} gives elapsed time without a start: stamps count from 1970-01-01"
+    return Clock(found.seconds, (name,), found.why, dated=False, warnings=(warning,))
+
+
+def _number_and_date(raw: RawLog, places: tuple[int, int], values: Floats, zone: ZoneInfo | float) -> Clock:
+    place, date_place = places
+    column = raw.table[date_place]
+    names = (raw.names[date_place], raw.names[place])
+    seconds = clock_number.seconds_of_day(values, raw.units[place])
+    order = None
+    if _is_number(column):
+        days = clock_number.days(column.to_numpy(float))
+    else:
+        stamps = _stamps(column, raw, None)
+        days, order = stamps.days, stamps.order
+    if seconds is None or not np.isfinite(days).any():
+        alone = replace(raw, table=raw.table.drop(columns=date_place))
+        return _from_numbers(alone, (place, None), raw.units[place], zone)
+    return Clock(
+        to_utc(days * DAY + seconds, zone), names, "date and time as numbers in two columns", order=order
+    )

@@ -1,0 +1,139 @@
+"""Logs as delimited text: CSV and its relatives, packed with gzip or not."""
+
+from __future__ import annotations
+
+import gzip
+import io
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from forensics.errors import LogError
+from forensics.logs.dialect import Dialect, find_dialect, split_line
+from forensics.logs.nulls import words_for_pandas
+from forensics.logs.raw import Keep, RawLog
+
+if TYPE_CHECKING:
+    import pandas as pd
+
+HEAD = 2**18
+SUFFIXES = (".csv", ".gz", ".txt", ".tsv", ".asc", ".dat", ".prn")
+
+
+def sniff(path: Path, head: bytes) -> bool:
+    """Tell whether a file looks like delimited text; the last reader to be asked, so it takes all but XML."""
+    return path.suffix.casefold() in SUFFIXES or not head.lstrip(b"\xef\xbb\xbf \r\n\t").startswith(b"<")
+
+
+def read(path: Path, head: bytes, keep: Keep) -> RawLog:
+    """Read a delimited file.
+
+    Parameters
+    ----------
+    path : Path
+        The file; gzip is unpacked in memory.
+    head : bytes
+        Its first bytes, unpacked.
+    keep : callable
+        Says which columns to load, by name.
+
+    Returns
+    -------
+    RawLog
+        Columns as numbers where every entry is one, else as text.
+
+    Raises
+    ------
+    LogError
+        If the file is empty, has no rows of data or can't be unpacked.
+    """
+    dialect = find_dialect(head, path)
+    wanted = [number for number, name in enumerate(dialect.names) if keep(name)]
+    notes = list(dialect.notes)
+    table = _fast(path, dialect, wanted)
+    dropped = 0
+    if table is None:
+        table, dropped = _patient(path, dialect, wanted)
+        notes.append("rows with more fields than the header were cut to it")
+    if (
+        _cut_short(path)
+        and len(table) > 1
+        and table.iloc[-1].isna().any()
+        and not table.iloc[-2].isna().any()
+    ):
+        # A line the recorder did not finish: its last number may have lost digits.
+        table, dropped = table.iloc[:-1], dropped + 1
+        notes.append("the last line breaks off and was left out")
+    return RawLog(
+        path=path,
+        format="CSV",
+        names=dialect.names,
+        units=dialect.units,
+        table=table,
+        first_line=dialect.skip + 1,
+        date_hint=" ".join(filter(None, (*dialect.names, *dialect.units))),
+        notes=tuple(notes),
+        dropped=dropped,
+    )
+
+
+def _fast(path: Path, dialect: Dialect, wanted: list[int]) -> pd.DataFrame | None:
+    """Read with the C parser; None where a row has more fields than it allows."""
+    import pandas as pd
+
+    try:
+        return pd.read_csv(
+            path,
+            engine="c",
+            sep=r"\s+" if dialect.delimiter == " " else dialect.delimiter,
+            decimal=dialect.decimal,
+            header=None,
+            names=range(len(dialect.names)),
+            usecols=wanted,
+            skiprows=dialect.skip,
+            skip_blank_lines=False,
+            skipinitialspace=True,
+            index_col=False,
+            encoding=dialect.encoding,
+            encoding_errors="replace",
+            na_values=words_for_pandas(),
+            low_memory=False,
+            compression="gzip" if is_packed(path) else None,
+        )
+    except pd.errors.ParserError:
+        return None
+    except (OSError, EOFError, gzip.BadGzipFile) as error:
+        raise LogError(f"the file can't be unpacked: {error}", file=path) from error
+
+
+def _text(path: Path, dialect: Dialect) -> io.TextIOBase:
+    packed = gzip.open if is_packed(path) else open
+    return packed(path, "rt", encoding=dialect.encoding, errors="replace")  # type: ignore[return-value]
+
+
+def is_packed(path: Path) -> bool:
+    """Tell whether a file is packed with gzip, whatever its name says."""
+    with path.open("rb") as file:
+        return file.read(2) == b"\x1f\x8b"
+
+
+def _patient(path: Path, dialect: Dialect, wanted: list[int]) -> tuple[pd.DataFrame, int]:
+    """Read line by line: long rows are cut, short ones filled, so that line numbers hold."""
+    import pandas as pd
+
+    rows: list[list[str | None]] = []
+    with _text(path, dialect) as lines:
+        for number, line in enumerate(lines):
+            if number < dialect.skip:
+                continue
+            fields = split_line(line.rstrip("\r\n"), dialect.delimiter)
+            rows.append([fields[i] if i < len(fields) and fields[i] else None for i in wanted])
+    return pd.DataFrame(rows, columns=wanted), 0
+
+
+def _cut_short(path: Path) -> bool:
+    """Tell whether the last line lacks its end."""
+    if is_packed(path) or path.stat().st_size < 2:
+        return False
+    with path.open("rb") as file:
+        file.seek(-2, 2)
+        return b"\n" not in (tail := file.read(2)) and b"\r" not in tail

@@ -1,0 +1,280 @@
+"""Which column is which channel, in what unit, and why."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Mapping
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from forensics import channels, units
+from forensics.case import ChannelChoice
+from forensics.channels import BY_NAME, GENERIC_DEPTH, Need
+from forensics.errors import LogError, UnitError, nearest
+from forensics.logs.clock import is_time_name
+from forensics.logs.nulls import to_numbers
+from forensics.logs.raw import RawLog
+from forensics.logs.table import SourceColumn
+
+Floats = NDArray[np.float64]
+Choices = Mapping[str, ChannelChoice]
+_BRACKETED = re.compile(r"^(.*?)\s*[\[({<]\s*([^\])}>]*?)\s*[\])}>]?\s*$")
+# Channels whose usual name is its unit: "RPM", "GPM".
+_UNIT_IN_NAME = (("rpm", "rotation", "rpm"), ("gpm", "flow", "gpm"), ("lpm", "flow", "L/min"))
+# Units a rig may have meant, likeliest first, for the hint where one is missing or absurd.
+_LIKELY = {
+    "hookload": ("kN", "klbf", "tonnef", "kdaN", "N", "lbf", "kgf", "daN"),
+    "bit_depth": ("m", "ft"),
+}
+_USUAL = {"hookload": (1.5e5, 6.0e6), "bit_depth": (100.0, 12000.0)}
+
+
+@dataclass(frozen=True)
+class Candidate:
+    """A column that may be a channel."""
+
+    place: int
+    name: str
+    channel: str
+    unit: str | None
+    why: str
+    chosen: bool = False
+
+
+@dataclass(frozen=True)
+class Mapped:
+    """Channels found in one file: values in the file's unit, how to bring them to SI, and the account.
+
+    Parameters
+    ----------
+    values : mapping of str to ndarray, shape (n,)
+        As the file has them.
+    units : mapping of str to str
+        Unit of each.
+    columns : tuple of SourceColumn
+        Every column of the file and what became of it.
+    garbled : mapping of str to int
+        Entries of a channel that were text no number could be read from.
+    warnings : tuple of str
+        Channels set aside, and why.
+    """
+
+    values: Mapping[str, Floats]
+    units: Mapping[str, str]
+    columns: tuple[SourceColumn, ...]
+    garbled: Mapping[str, int]
+    warnings: tuple[str, ...]
+
+
+def split_name(name: str) -> tuple[str, str | None]:
+    """Part a column's name from a unit glued to it.
+
+    Examples
+    --------
+    >>> split_name("Hookload (k-lbs)"), split_name("Weight on Bit kkgf"), split_name("Surface RPM")
+    (('Hookload', 'k-lbs'), ('Weight on Bit', 'kkgf'), ('Surface RPM', None))
+    """
+    found = _BRACKETED.match(name)
+    if found and found.group(1) and (not found.group(2) or units.quantities_of(found.group(2))):
+        return found.group(1), found.group(2) or None
+    if channels.match(name)[0] is not None or channels.normalise(name) in channels.LOOKALIKES:
+        return name, None
+    words = [word for word in re.split(r"[\s_,;:/]+", name) if word]
+    for count in (1, 2, 3):
+        stem = " ".join(words[:-count])
+        known = channels.match(stem)[0] if stem else None
+        if known is None:
+            continue
+        for joint in ("", "/", "."):
+            unit = joint.join(words[-count:])
+            if BY_NAME[known].quantity in units.quantities_of(unit):
+                return stem, unit
+    return name, None
+
+
+def wanted(choices: Choices) -> frozenset[str]:
+    """Names the case file chose, in the form names are compared in."""
+    return frozenset(channels.normalise(choice.column) for choice in choices.values())
+
+
+def keep(name: str, chosen: frozenset[str]) -> bool:
+    """Tell whether a column may be needed, from its name alone."""
+    if channels.normalise(name) in chosen or is_time_name(name):
+        return True
+    return channels.match(split_name(name)[0])[0] is not None
+
+
+def map_columns(raw: RawLog, choices: Choices, time_columns: tuple[str, ...]) -> Mapped:
+    """Say which column is which channel.
+
+    Parameters
+    ----------
+    raw : RawLog
+        The file.
+    choices : mapping of str to ChannelChoice
+        What the case file names.
+    time_columns : tuple of str
+        Columns the stamps came from.
+
+    Returns
+    -------
+    Mapped
+        Channels with a column each.
+
+    Raises
+    ------
+    LogError
+        If a needed channel has no unit, or one that is not of its quantity.
+    """
+    numbers: dict[int, tuple[Floats, int]] = {}
+    account: dict[int, SourceColumn] = {}
+    file = raw.path.name
+
+    def say(place: int, channel: str | None, why: str, unit: str | None = None) -> None:
+        account[place] = SourceColumn(file, raw.names[place], unit or raw.units[place], channel, why)
+
+    candidates = []
+    for place, name in enumerate(raw.names):
+        if name in time_columns:
+            say(place, "time", "holds the stamps")
+        elif (found := _candidate(raw, place, choices)) is None:
+            say(place, None, channels.match(split_name(name)[0])[1])
+        else:
+            numbers[place] = to_numbers(raw.table[place])
+            candidates.append(found)
+    filled = [c for c in candidates if np.isfinite(numbers[c.place][0]).any()]
+    for candidate in candidates:
+        if candidate not in filled:
+            say(candidate.place, None, "every value is missing")
+    picked = _pick(_settle_depth(filled, say), say)
+    return _finish(raw, picked, numbers, account)
+
+
+def _candidate(raw: RawLog, place: int, choices: Choices) -> Candidate | None:
+    name = raw.names[place]
+    if place not in raw.table:
+        return None
+    for channel, choice in choices.items():
+        if channel != "time" and choice.column == name or (
+            channel != "time" and channels.normalise(choice.column) == channels.normalise(name)
+            and choice.column not in raw.names
+        ):  # fmt: skip
+            unit = choice.unit or raw.units[place] or split_name(name)[1]
+            return Candidate(place, name, channel, unit, "named in the case file", chosen=True)
+    stem, glued = split_name(name)
+    unit = raw.units[place] if not units.is_blank(raw.units[place]) else glued
+    channel, why = channels.match(stem, unit)
+    if channel in {None, "time"} or channel is None:
+        return None
+    if units.is_blank(unit):
+        key = channels.normalise(stem)
+        quantity = BY_NAME[channel].quantity
+        unit = next((u for word, q, u in _UNIT_IN_NAME if word in key and q == quantity), None)
+    return Candidate(place, stem, channel, unit, why)
+
+
+def _settle_depth(found: list[Candidate], say: object) -> list[Candidate]:
+    """Give a lone depth to the bit: a time log that has one depth follows the bit with it."""
+    del say
+    if any(c.channel == "bit_depth" for c in found):
+        return found
+    depths = [c for c in found if channels.normalise(c.name) in GENERIC_DEPTH and not c.chosen]
+    if not depths:
+        return found
+    lone = min(depths, key=lambda c: channels.rank(c.name))
+    why = f"{lone.name!r}: a lone depth in a time log is the bit's"
+    bit = Candidate(lone.place, lone.name, "bit_depth", lone.unit, why)
+    return [bit if c is lone else c for c in found]
+
+
+def _pick(found: list[Candidate], say: object) -> list[Candidate]:
+    """Take the best column for each channel."""
+    picked = []
+    for channel in dict.fromkeys(c.channel for c in found):
+        rivals = [c for c in found if c.channel == channel]
+        rivals.sort(key=lambda c: (not c.chosen, units.is_blank(c.unit), channels.rank(c.name), c.place))
+        best = rivals[0]
+        others = ", ".join(repr(c.name) for c in rivals[1:])
+        why = f"{best.why}; preferred to {others}" if others else best.why
+        picked.append(Candidate(best.place, best.name, channel, best.unit, why, best.chosen))
+        for rival in rivals[1:]:
+            say(rival.place, None, f"{channel} is taken from {best.name!r}")  # type: ignore[operator]
+    return picked
+
+
+def _finish(
+    raw: RawLog,
+    picked: list[Candidate],
+    numbers: Mapping[int, tuple[Floats, int]],
+    account: dict[int, SourceColumn],
+) -> Mapped:
+    values: dict[str, Floats] = {}
+    used_units: dict[str, str] = {}
+    warnings: list[str] = []
+    file = raw.path.name
+    for c in picked:
+        data, _ = numbers[c.place]
+        fault = _unit_fault(c, data)
+        if fault is None:
+            values[c.channel] = data
+            used_units[c.channel] = c.unit or "1"
+            account[c.place] = SourceColumn(file, raw.names[c.place], c.unit, c.channel, c.why)
+            continue
+        if BY_NAME[c.channel].need is Need.NEEDED:
+            raise LogError(fault, file=raw.path, column=raw.names[c.place])
+        account[c.place] = SourceColumn(file, raw.names[c.place], c.unit, None, f"set aside: {fault}")
+        warnings.append(f"{file}, column {raw.names[c.place]!r}: {c.channel} set aside; {fault}")
+    garbled = {c.channel: numbers[c.place][1] for c in picked if numbers[c.place][1] and c.channel in values}
+    return Mapped(values, used_units, tuple(account[i] for i in sorted(account)), garbled, tuple(warnings))
+
+
+def _unit_fault(candidate: Candidate, data: Floats) -> str | None:
+    """Say what is wrong with a column's unit, or None."""
+    quantity = BY_NAME[candidate.channel].quantity
+    if quantity == "dimensionless":
+        return None
+    if candidate.unit is None or units.is_blank(candidate.unit):
+        hint = likely_unit(candidate.channel, data)
+        given = f" (the file says {candidate.unit!r})" if candidate.unit else ""
+        return (
+            f"no unit is given{given}; {hint}give it under [logs.channels]: "
+            f'{candidate.channel} = {{ column = "{candidate.name}", unit = "..." }}'
+        )
+    try:
+        units.factor(candidate.unit, quantity)
+    except UnitError as error:
+        return f"{error.message}; {likely_unit(candidate.channel, data)}give it under [logs.channels]"
+    return None
+
+
+def likely_unit(channel: str, data: Floats) -> str:
+    """Name the units under which the values would be usual ones for the channel."""
+    quantity = BY_NAME[channel].quantity
+    known = data[np.isfinite(data)]
+    if len(known) == 0:
+        return ""
+    top = float(np.percentile(np.abs(known), 95))
+    low, high = _USUAL.get(channel, (BY_NAME[channel].plausible[1] * 1e-3, BY_NAME[channel].plausible[1]))
+    names = _LIKELY.get(channel, units.spellings(quantity))
+    fits = [name for name in names if low <= float(units.to_si(top, name, quantity)) <= high]
+    if not fits:
+        return ""
+    return f"values near {top:g} would be usual in {' or '.join(fits[:3])}; "
+
+
+def missing_channel(channel: str, raws: list[RawLog]) -> LogError:
+    """Word the refusal of a case whose logs lack a needed channel."""
+    seen = list(dict.fromkeys(name for raw in raws for name in raw.names if name))
+    near = nearest(channel, seen)
+    close = f"; {near}" if near.startswith("did you mean") else ""
+    hole = [name for name in seen if channels.match(split_name(name)[0])[0] == "hole_depth"]
+    if channel == "bit_depth" and hole:
+        close += f"; if {hole[0]!r} is the bit's depth, say so there"
+    listed = ", ".join(repr(name) for name in seen[:60])
+    return LogError(
+        f"found no column for {channel} among {listed}{close}; name it under [logs.channels] as "
+        f"{channel} = {{ column = \"...\", unit = \"...\" }}",
+        file=raws[0].path if raws else None,
+    )  # fmt: skip

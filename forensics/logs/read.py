@@ -1,0 +1,235 @@
+"""Time logs of a case: any files to one SI table with its history."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import replace
+
+import numpy as np
+from numpy.typing import NDArray
+
+from forensics import channels, units
+from forensics.case import Case
+from forensics.channels import BY_NAME
+from forensics.errors import LogError, nearest
+from forensics.logs.clock import DAY, Clock, OpenOrderError, read_clock
+from forensics.logs.join import Piece, interval_of, join
+from forensics.logs.mapping import Mapped, keep, likely_unit, map_columns, missing_channel, wanted
+from forensics.logs.nulls import find_codes
+from forensics.logs.quality import clean
+from forensics.logs.raw import RawLog
+from forensics.logs.registry import digest, read_raw
+from forensics.logs.smear import find_smeared
+from forensics.logs.table import FileRecord, Reason, Step, TimeLog
+
+Floats = NDArray[np.float64]
+NEEDED = ("bit_depth", "hookload")
+# Hookload no rig shows: below, the block alone weighs more; above, no derrick holds it [N].
+HOOKLOAD_LOW, HOOKLOAD_HIGH = 5.0e3, 2.0e7
+DEPTH_LOW, DEPTH_HIGH = 5.0, 1.5e4
+
+
+def read_time_logs(case: Case) -> TimeLog:
+    """Read a case's time logs into one table.
+
+    Parameters
+    ----------
+    case : Case
+        `case.logs` names the files, the zone of stamps without one, and columns to take for channels.
+
+    Returns
+    -------
+    TimeLog
+        One row for each distinct stamp, in time order, SI; what was set aside stands in `history`.
+
+    Raises
+    ------
+    LogError
+        If a file can't be read, a needed channel or its unit is missing or absurd, or time can't be told.
+    """
+    settings = case.logs
+    if not settings.time:
+        raise LogError("no time log is named; [logs] time needs at least one file", file=case.path)
+    names = wanted(settings.channels)
+    raws = [read_raw(path, lambda name: keep(name, names)) for path in settings.time]
+    _check_choices(case, raws)
+    clocks = _read_clocks(case, raws)
+    pieces, records, steps, warnings = [], [], [], []
+    for raw, clock in zip(raws, clocks, strict=True):
+        mapped = map_columns(raw, settings.channels, clock.columns)
+        piece, account = _to_piece(raw, clock, mapped, case.rig.hookload_includes_block)
+        pieces.append(piece)
+        steps.extend(account)
+        warnings.extend((*clock.warnings, *mapped.warnings))
+        records.append(_record(raw, clock, mapped, piece))
+    for channel in NEEDED:
+        if not any(channel in piece.values for piece in pieces):
+            raise missing_channel(channel, raws)
+    del raws
+    return _assemble(case, pieces, tuple(records), steps, warnings)
+
+
+def _assemble(
+    case: Case, pieces: list[Piece], records: tuple[FileRecord, ...], steps: list[Step], warnings: list[str]
+) -> TimeLog:
+    time, values, joined, remarks = join(pieces)
+    interval = interval_of(time)
+    if len(time) < 2:
+        raise LogError(f"found {len(time)} row with a stamp; a log needs two or more", file=pieces[0].path)
+    logged = values["hookload"].copy()
+    work = clean(time, values, interval)
+    reason = work.cause["hookload"].copy()
+    lacking = ~np.isfinite(work.values["hookload"])
+    depthless = ~np.isfinite(work.values["bit_depth"])
+    reason[~lacking] = 0
+    reason[~lacking & depthless] = work.cause["bit_depth"][~lacking & depthless]
+    used = ~(lacking | depthless)
+    if not used.any():
+        raise LogError(_nothing_left(reason), file=pieces[0].path)
+    return TimeLog(
+        time=time,
+        values=work.values,
+        hookload_logged=logged,
+        used=used,
+        reason=reason,
+        interval=interval,
+        timezone=case.logs.timezone,
+        history=(*steps, *joined, *work.steps),
+        files=records,
+        warnings=tuple(dict.fromkeys((*warnings, *remarks, *work.warnings))),
+    )
+
+
+def _nothing_left(reason: NDArray[np.int8]) -> str:
+    codes, counts = np.unique(reason, return_counts=True)
+    words = ", ".join(f"{Reason(int(c)).words}: {n}" for c, n in zip(codes, counts, strict=True))
+    return f"no row has both a usable hookload and a usable bit depth ({words} rows)"
+
+
+def _check_choices(case: Case, raws: Sequence[RawLog]) -> None:
+    """Refuse a column named in the case that no file has."""
+    seen = list(dict.fromkeys(name for raw in raws for name in raw.names))
+    keys = {channels.normalise(name) for name in seen}
+    for channel, choice in case.logs.channels.items():
+        if channel not in BY_NAME:
+            raise LogError(
+                f"[logs.channels] names an unknown channel {channel!r}; {nearest(channel, BY_NAME)}",
+                file=case.path,
+            )
+        if choice.column not in seen and channels.normalise(choice.column) not in keys:
+            raise LogError(
+                f"no log has a column {choice.column!r}, named for {channel} in the case; {nearest(choice.column, seen)}",
+                file=raws[0].path,
+                column=choice.column,
+            )
+
+
+def _read_clocks(case: Case, raws: Sequence[RawLog]) -> list[Clock]:
+    """Read the stamps of all files; one whose day and month are open learns from the others."""
+    choice = case.logs.channels.get("time")
+    chosen = None if choice is None else (choice.column, choice.unit)
+    clocks: list[Clock | None] = []
+    learned: str | None = None
+    for raw in raws:
+        try:
+            clock = read_clock(raw, case.logs.timezone, chosen, None)
+            learned = clock.order if clock.order in {"dmy", "mdy"} else learned
+            clocks.append(clock)
+        except OpenOrderError:
+            if len(raws) == 1:
+                raise
+            clocks.append(None)
+    done = [
+        read_clock(raw, case.logs.timezone, chosen, learned) if clock is None else clock
+        for raw, clock in zip(raws, clocks, strict=True)
+    ]
+    return _date_the_undated(done, raws)
+
+
+def _date_the_undated(clocks: list[Clock], raws: Sequence[RawLog]) -> list[Clock]:
+    """Chain files that give a clock alone, in the order the case lists them."""
+    undated = [raw for raw, clock in zip(raws, clocks, strict=True) if not clock.dated]
+    if not undated or len(clocks) == 1:
+        return clocks
+    if len(undated) < len(clocks):
+        raise LogError(
+            "this file gives no date while other logs of the case do; add a date column", file=undated[0].path
+        )
+    out: list[Clock] = []
+    end = -np.inf
+    for clock in clocks:
+        known = clock.time[np.isfinite(clock.time)]
+        shift = DAY * np.ceil(max(0.0, end - known[0]) / DAY) if len(known) and np.isfinite(end) else 0.0
+        out.append(replace(clock, time=clock.time + shift))
+        end = float(known[-1] + shift) if len(known) else end
+    return out
+
+
+def _to_piece(raw: RawLog, clock: Clock, mapped: Mapped, with_block: bool) -> tuple[Piece, list[Step]]:
+    """Bring one file's channels to SI and leave out rows without a stamp."""
+    stamped = np.isfinite(clock.time)
+    blank = raw.table.isna().all(axis=1).to_numpy()
+    steps = []
+    lost = int((~stamped & ~blank).sum()) + raw.dropped
+    if lost:
+        steps.append(
+            Step("unreadable row", lost, detail=f"{raw.path.name}: no stamp, or not split into columns")
+        )
+    if not stamped.any():
+        raise LogError("no row has a readable stamp", file=raw.path, column=clock.columns[0])
+    values: dict[str, Floats] = {}
+    for channel, data in mapped.values.items():
+        if mapped.garbled.get(channel):
+            steps.append(Step("text where a number belongs", mapped.garbled[channel], channel, raw.path.name))
+        codes = find_codes(data, raw.nulls)
+        smeared = find_smeared(data, codes)
+        for name, where in (("null code", codes), ("smeared null", smeared)):
+            if where.any():
+                steps.append(Step(name, int(where.sum()), channel, raw.path.name))
+        kept = np.where(codes | smeared, np.nan, data)
+        if channel in NEEDED:
+            _check_size(raw, channel, kept, mapped, with_block)
+        quantity = BY_NAME[channel].quantity
+        unit = mapped.units[channel] if quantity != "dimensionless" else "1"
+        converted = units.to_si(kept, unit, quantity)[stamped]
+        missing = int((~np.isfinite(converted)).sum()) - int((codes | smeared)[stamped].sum())
+        if missing > 0:
+            steps.append(Step("no value", missing, channel, raw.path.name))
+        values[channel] = converted
+    line = raw.first_line + np.flatnonzero(stamped)
+    return Piece(raw.path, clock.time[stamped], line, values), steps
+
+
+def _check_size(raw: RawLog, channel: str, data: Floats, mapped: Mapped, with_block: bool) -> None:
+    """Refuse values impossible under the unit given, or missing throughout."""
+    unit = mapped.units[channel]
+    column = next(c.column for c in mapped.columns if c.channel == channel)
+    known = data[np.isfinite(data)]
+    if len(known) == 0:
+        raise LogError(f"every value of {channel} is missing", file=raw.path, column=column)
+    quantity = BY_NAME[channel].quantity
+    top = float(np.percentile(units.to_si(known, unit, quantity), 95))
+    low, high = (HOOKLOAD_LOW, HOOKLOAD_HIGH) if channel == "hookload" else (DEPTH_LOW, DEPTH_HIGH)
+    if channel == "hookload" and not with_block:
+        low = -np.inf
+    if not low <= top <= high:
+        typical = float(np.percentile(known, 95))
+        raise LogError(
+            f"{channel} near {typical:g} {unit} can't be; {likely_unit(channel, data)}"
+            f"give the right unit under [logs.channels]: {channel} = {{ column = \"{column}\", unit = \"...\" }}",
+            file=raw.path, column=column,
+        )  # fmt: skip
+
+
+def _record(raw: RawLog, clock: Clock, mapped: Mapped, piece: Piece) -> FileRecord:
+    return FileRecord(
+        name=raw.path.name,
+        sha256=digest(raw.path),
+        format=raw.format,
+        rows=len(piece.time),
+        start=float(piece.time.min()),
+        end=float(piece.time.max()),
+        interval=interval_of(piece.time),
+        columns=mapped.columns,
+        notes=(clock.why, *raw.notes),
+    )

@@ -1,0 +1,80 @@
+"""The readers, in the order they are asked."""
+
+from __future__ import annotations
+
+import gzip
+import hashlib
+from collections.abc import Callable
+from dataclasses import dataclass
+from pathlib import Path
+
+from forensics.errors import LogError
+from forensics.logs import csv_log, las_log
+from forensics.logs.raw import Keep, RawLog
+
+
+@dataclass(frozen=True)
+class Reader:
+    """A format: `sniff` says whether a file is one of its kind, `read` reads it."""
+
+    name: str
+    sniff: Callable[[Path, bytes], bool]
+    read: Callable[[Path, bytes, Keep], RawLog]
+
+
+# The more particular format stands first; delimited text takes what is left.
+READERS: tuple[Reader, ...] = (
+    Reader("LAS", las_log.sniff, las_log.read),
+    Reader("CSV", csv_log.sniff, csv_log.read),
+)
+
+
+def read_head(path: Path, size: int = csv_log.HEAD) -> bytes:
+    """Read the first bytes of a file, unpacked.
+
+    Raises
+    ------
+    LogError
+        If the file is missing, a folder, unreadable or empty.
+    """
+    if not path.exists():
+        raise LogError("the file does not exist; check the path in [logs]", file=path)
+    if path.is_dir():
+        raise LogError("this is a folder; [logs] names files", file=path)
+    try:
+        with gzip.open(path) if csv_log.is_packed(path) else path.open("rb") as file:
+            head = file.read(size)
+    except (OSError, EOFError) as error:
+        raise LogError(f"the file can't be read: {error}", file=path) from error
+    if not head.strip():
+        raise LogError("the file is empty; expected a header and rows of data", file=path)
+    return head
+
+
+def digest(path: Path) -> str:
+    """SHA-256 of a file."""
+    with path.open("rb") as file:
+        return hashlib.file_digest(file, "sha256").hexdigest()
+
+
+def read_raw(path: Path, keep: Keep) -> RawLog:
+    """Read a log of any known format.
+
+    Parameters
+    ----------
+    path : Path
+        The file.
+    keep : callable
+        Says which columns to load, by name.
+
+    Raises
+    ------
+    LogError
+        If no reader knows the file, or it can't be read.
+    """
+    head = read_head(path)
+    for reader in READERS:
+        if reader.sniff(path, head):
+            return reader.read(path, head, keep)
+    known = ", ".join(reader.name for reader in READERS)
+    raise LogError(f"the file is in no known format; known are {known}", file=path)

@@ -1,0 +1,164 @@
+"""Short excursions that return: spikes of a signal and jumps no block can make.
+
+A spike is one or two samples that leave the running median by far more than the noise around them
+and come back to where they left. What stays away (slips set or pulled, the bit tagged, an overpull
+held) is no spike, however fast it came: a running median of five follows it.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+Floats = NDArray[np.float64]
+Bools = NDArray[np.bool_]
+BLOCK = 64
+MAD = 1.4826
+# Nothing on a rig moves the bit or the block faster [m/s].
+TOP_SPEED = 5.0
+
+
+@dataclass(frozen=True)
+class SpikeRule:
+    """When an excursion is a spike.
+
+    Parameters
+    ----------
+    longest : int
+        Samples an excursion may last.
+    noise : float
+        Times the local noise it must exceed.
+    share : float
+        Share of the channel's own range (1st to 99th percentile) it must exceed.
+    floor : float
+        Size below which nothing is a spike [SI].
+    """
+
+    longest: int = 2
+    noise: float = 8.0
+    share: float = 0.04
+    floor: float = 0.0
+
+
+def rule_for(channel: str, interval: float) -> SpikeRule:
+    """Give the rule for a channel at a sampling interval.
+
+    Notes
+    -----
+    At 5 s and more a single sample can be a real event of its own (a joint picked up, a tag), so
+    only what reaches beyond half the channel's whole range counts there.
+    """
+    floor = {
+        "hookload": 15e3,
+        "hookload_max": 15e3,
+        "wob": 15e3,
+        "torque": 1.0e3,
+        "standpipe_pressure": 5e5,
+    }.get(channel, 0.0)
+    if interval >= 5.0:
+        return SpikeRule(longest=1, noise=15.0, share=0.5, floor=floor)
+    return SpikeRule(share=0.04 if channel == "hookload" else 0.1, floor=floor)
+
+
+def find_spikes(values: Floats, rule: SpikeRule) -> Bools:
+    """Find spikes.
+
+    Parameters
+    ----------
+    values : ndarray, shape (n,)
+        A channel, NaN where missing; missing samples are passed over.
+    rule : SpikeRule
+        When an excursion counts.
+
+    Returns
+    -------
+    ndarray of bool, shape (n,)
+        True at the samples of a spike.
+
+    Notes
+    -----
+    Local noise is the larger of three neighbouring blocks' median absolute departure from the running
+    median, blocks of 64 samples, so that a busy spell beside a calm one is not taken for spikes.
+    """
+    from scipy.ndimage import median_filter
+
+    found = np.zeros(len(values), dtype=bool)
+    place = np.flatnonzero(np.isfinite(values))
+    if len(place) < 7:
+        return found
+    x = values[place]
+    away = x - median_filter(x, size=5, mode="nearest")
+    low, high = np.percentile(x, [1, 99])
+    limit = np.maximum(rule.noise * _local_noise(away), max(rule.floor, rule.share * float(high - low)))
+    out = np.abs(away) > limit
+    if not out.any():
+        return found
+    starts = np.flatnonzero(out & ~np.concatenate(([False], out[:-1])))
+    ends = np.flatnonzero(out & ~np.concatenate((out[1:], [False])))
+    for start, end in zip(starts, ends, strict=True):
+        before, after = max(start - 1, 0), min(end + 1, len(x) - 1)
+        same_side = (np.sign(away[start : end + 1]) == np.sign(away[start])).all()
+        returns = abs(x[after] - x[before]) <= 0.3 * np.abs(away[start : end + 1]).min()
+        if end - start < rule.longest and same_side and (returns or start == 0 or end == len(x) - 1):
+            found[place[start : end + 1]] = True
+    return found
+
+
+def _local_noise(away: Floats) -> Floats:
+    blocks = -(-len(away) // BLOCK)
+    padded = np.full(blocks * BLOCK, np.nan)
+    padded[: len(away)] = np.abs(away)
+    noise = MAD * np.nanmedian(padded.reshape(blocks, BLOCK), axis=1)
+    wide = np.concatenate((noise[:1], noise, noise[-1:]))
+    return np.repeat(np.maximum.reduce((wide[:-2], wide[1:-1], wide[2:])), BLOCK)[: len(away)]
+
+
+def find_jumps(values: Floats, time: Floats, floor: float = 2.0, longest: float = 120.0) -> Bools:
+    """Find stretches where a depth or a height jumps away and back faster than anything moves.
+
+    Parameters
+    ----------
+    values, time : ndarray, shape (n,)
+        Position [m], NaN where missing, and stamps [s].
+    floor : float
+        Jump below which nothing is said [m].
+    longest : float
+        Longest stretch that counts, or ten samples where that is longer [s].
+
+    Returns
+    -------
+    ndarray of bool, shape (n,)
+        True at the samples that jumped away.
+    """
+    found = np.zeros(len(values), dtype=bool)
+    place = np.flatnonzero(np.isfinite(values))
+    if len(place) < 4:
+        return found
+    x, t = values[place], time[place]
+    usual = float(np.median(np.diff(t)))
+    longest = max(longest, 10.0 * usual)
+    step = np.diff(x)
+    big = np.flatnonzero(np.abs(step) > floor + TOP_SPEED * np.minimum(np.diff(t), 60.0))
+    i = 0
+    while i < len(big):
+        out = int(big[i])
+        back = next((int(b) for b in big[i + 1 :] if _closes(x, t, out, int(b), floor, longest)), None)
+        if back is not None:
+            found[place[out + 1 : back + 1]] = True
+            i = int(np.searchsorted(big, back, side="right"))
+            continue
+        # A jump with no way back is a fault of the record's edge, or a change of reference to keep.
+        if i == 0 and out < 10 and len(x) > 40:
+            found[place[: out + 1]] = True
+        elif len(x) - out <= 10 and len(x) > 40:
+            found[place[out + 1 :]] = True
+        i += 1
+    return found
+
+
+def _closes(x: Floats, t: Floats, out: int, back: int, floor: float, longest: float) -> bool:  # noqa: PLR0913
+    span = t[back + 1] - t[out]
+    jump = abs(x[out + 1] - x[out])
+    return bool(span <= longest and abs(x[back + 1] - x[out]) <= max(floor, 0.2 * jump))
