@@ -159,7 +159,7 @@ def interpolate(n: ArrayLike, length: ArrayLike) -> Floats:
     Parameters
     ----------
     n : array_like
-        Side load, as in `column_eigenvalue` [-]; below 1e-6 the value at 1e-6 is given.
+        Side load, as in `column_eigenvalue` [-].
     length : array_like
         Length over Lubinski's length [-]; held between 2 and 1e6: below 2 the true value is greater,
         so that holding it is on the cautious side.
@@ -171,10 +171,10 @@ def interpolate(n: ArrayLike, length: ArrayLike) -> Floats:
 
     Notes
     -----
-    Bilinear. Above n = 1e6 the departure from `LIMIT` falls as ``1/sqrt(n)``. The error of c is below
-    0.02 % from length 8 on. Shorter, c swings with the number of half waves that fit: the error is then
-    below 0.2 % of ``phi``, which is what a critical load is made of, and can be some per cent of c itself
-    where n is so great that c hardly matters.
+    Bilinear. Below n = 1e-6 ``phi`` is held; above n = 1e6 the departure from `LIMIT` falls as
+    ``1/sqrt(n)``. The error of c is below 0.02 % from length 8 on. Shorter, c swings with the number of
+    half waves that fit: the error is then below 0.2 % of ``phi``, which is what a critical load is made
+    of, and can be some per cent of c itself where n is so great that c hardly matters.
 
     Examples
     --------
@@ -183,7 +183,8 @@ def interpolate(n: ArrayLike, length: ArrayLike) -> Floats:
     """
     table = load_table()
     n, length = np.broadcast_arrays(np.asarray(n, dtype=float), np.asarray(length, dtype=float))
-    log_n = np.log(np.maximum(n, math.exp(LOG_N[0])))
+    lowest = math.exp(LOG_N[0])
+    log_n = np.log(np.maximum(n, lowest))
     row = (np.minimum(log_n, LOG_N[1]) - table.n0) / table.dn
     place = np.log(np.maximum(length, SHORTEST) - OFFSET)
     column = (np.minimum(place, LENGTH_RANGE[1]) - table.l0) / table.dl
@@ -194,7 +195,8 @@ def interpolate(n: ArrayLike, length: ArrayLike) -> Floats:
     high = g[i + 1, j] * (1 - v) + g[i + 1, j + 1] * v
     inside = low * (1 - u) + high * u
     fade = np.exp(-0.5 * np.maximum(log_n - LOG_N[1], 0.0))
-    return LIMIT + (inside - LIMIT) * fade
+    below = 2 * np.maximum(math.sqrt(lowest) - np.sqrt(n), 0.0)
+    return LIMIT + (inside - LIMIT) * fade + below
 
 
 def _table(values: Floats) -> EigenTable:

@@ -17,6 +17,7 @@ Table = tuple[Floats, float, float, float, float]
 """What `EigenTable.as_tuple` gives: values, first log n, its step, first length place, its step."""
 
 _LOG_N_LOW, _LOG_N_HIGH = LOG_N
+_ROOT_N_LOW = math.exp(0.5 * LOG_N[0])
 _PLACE_LOW, _PLACE_HIGH = LENGTH_RANGE
 _LAST_ROW, _LAST_COLUMN = ROWS - 2, COLUMNS - 2
 
@@ -41,7 +42,9 @@ def c_scalar(log_n: float, place: float, table: Table) -> float:
     low = values[i, j] + v * (values[i, j + 1] - values[i, j])
     high = values[i + 1, j] + v * (values[i + 1, j + 1] - values[i + 1, j])
     c = low + u * (high - low)
-    if log_n > _LOG_N_HIGH:
+    if log_n < _LOG_N_LOW:
+        c += 2.0 * (_ROOT_N_LOW - math.exp(0.5 * log_n))
+    elif log_n > _LOG_N_HIGH:
         c = LIMIT + (c - LIMIT) * math.exp(0.5 * (_LOG_N_HIGH - log_n))
     return c
 
@@ -86,13 +89,13 @@ def sinusoidal_prepared(
 
     `root` is `stiffness_root`, `cube` is `weight_cube`, `contact` the averaged contact force per length
     [N/m], `place` is `length_place`. Returned: F_sin [N], F_DP [N], log n [-] (infinite where
-    there is no weight along the hole, at the table's low edge or below where there is no contact).
+    there is no weight along the hole, minus infinity where there is no contact).
     """
     local = root * math.sqrt(contact)
     if cube <= 0.0:
         return local, local, math.inf
     scaled = local / cube  # two roots of n
-    log_n = _LOG_N_LOW if scaled < 1e-5 else 2.0 * math.log(0.5 * scaled)
+    log_n = 2.0 * math.log(0.5 * scaled) if scaled > 0.0 else -math.inf
     return local + c_scalar(log_n, place, table) * cube, local, log_n
 
 
@@ -116,5 +119,5 @@ def sinusoidal_load(
 @nb.njit(cache=True, error_model="numpy")
 def helical_load(local: float, ei: float, w_cos: float, n: float, onset: float) -> float:
     """Give the helical onset of one place from its local load, n and the criterion's factor `onset` [N]."""
-    log_n = math.log(n) if n > 0.0 else _LOG_N_LOW
+    log_n = math.log(n) if n > 0.0 else -math.inf
     return helical_prepared(local, weight_cube(ei, w_cos), log_n, onset)
