@@ -8,7 +8,7 @@ from pathlib import Path
 import numpy as np
 import pandas as pd
 
-from . import core
+from . import elements as el
 from .deliver import write_case, write_csv, write_las, write_tables, write_truth
 from .driller import Driller
 from .hole import FIRST, STEP, build_hole, delivered_survey
@@ -19,7 +19,7 @@ from .truth import summary, truth_frame
 
 
 def load_settings(path: Path) -> dict:
-    """Settings of one well; `base` names another file whose tables are taken where not given."""
+    """Read the settings of one well; `base` names another file whose tables fill what is not given."""
     settings = tomllib.loads(path.read_text(encoding="utf-8"))
     if "base" in settings:
         base = load_settings(path.parent / settings.pop("base"))
@@ -48,9 +48,9 @@ def simulate(settings: dict) -> tuple[Rig, Driller, dict]:
 
 
 def stretches(true: pd.DataFrame, rig: Rig) -> np.ndarray:
-    """Stretch between full pick-up and full slack-off by tally depth: a block must go that far to move the bit."""
+    """Find the block travel between full pick-up and full slack-off, which moves no bit."""
     control = rig.control()
-    per = core.slack(rig.x, rig.elements, rig.hole.table, control)
+    per = el.slack(rig.x, rig.elements, rig.hole.table, control)
     return np.full(len(true), per)
 
 

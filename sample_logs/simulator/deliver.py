@@ -74,7 +74,8 @@ def write_las(path: Path, rows: pd.DataFrame, settings: dict, layout: dict) -> N
     first = stamps(settings["start"], rows["time"])[0]
     elapsed = rows["time"].to_numpy() - rows["time"].iloc[0]
     lines = [
-        "~Version information", " VERS.   2.0 : CWLS LOG ASCII STANDARD - VERSION 2.0", " WRAP.    NO : One line per step",
+        "~Version information", " VERS.   2.0 : CWLS LOG ASCII STANDARD - VERSION 2.0",
+        " WRAP.    NO : One line per step",
         "~Well information", f" STRT.S  {0.0:.1f} : Start", f" STOP.S  {elapsed[-1]:.1f} : Stop",
         " STEP.S  0 : Irregular", " NULL.  -999.25 : Null value", " COMP.   INVENTED OPERATOR : Company",
         f" WELL.   {settings['case']['well'].upper()} : Well", f" DATE.   {first:%d-%b-%Y} : Date",
@@ -128,7 +129,7 @@ def write_tables(folder: Path, survey: dict, settings: dict, field: bool) -> Non
 
 
 def write_case(folder: Path, settings: dict, logs: list[str], field: bool) -> None:
-    """The case file: what the office knows, not what was planted."""
+    """Write the case file: what the office knows, not what was planted."""
     case, rig = settings["case"], settings["rig"]
     density = settings["fluid"]["density"]
     shown = f"{density / 119.826427:.2f} ppg" if field else f"{density / 1000.0:.3f} g/cm3"

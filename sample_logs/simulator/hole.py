@@ -7,7 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from .core import DIAMETER, MU, T_DOWN
+from .elements import DIAMETER, MU, T_DOWN
 
 Floats = NDArray[np.float64]
 STEP = 2.0
@@ -50,7 +50,7 @@ def profile(well: dict, md: Floats) -> tuple[Floats, Floats]:
 
 
 def build_hole(settings: dict, rng: np.random.Generator) -> Hole:
-    """True tangent, diameter and friction every two metres."""
+    """Lay out true tangent, diameter and friction every two metres."""
     well, planted = settings["well"], settings["planted"]
     md = np.arange(FIRST, well["table_end"] + STEP, STEP)
     inc, azi = profile(well, md)

@@ -7,7 +7,7 @@ import math
 import numpy as np
 from numpy.typing import NDArray
 
-from . import core
+from . import elements as el
 
 Floats = NDArray[np.float64]
 GRAVITY = 9.80665
@@ -31,12 +31,12 @@ def element_row(component: dict, length: float, settings: dict) -> Floats:
     inside = settings["fluid"].get("density_inside", mud)
     buoyed = air * (1.0 - mud / density) + GRAVITY * (inside - mud) * bore
     row = np.zeros(7)
-    row[core.LENGTH] = length
-    row[core.COMPLIANCE] = length / (modulus * area)
-    row[core.BENDING] = modulus * inertia
-    row[core.CONTACT_OD] = component.get("tool_joint_od", component["od"])
-    row[core.WEIGHT] = buoyed * length
-    row[core.WEIGHT_AIR] = (air + GRAVITY * inside * bore) * length
+    row[el.LENGTH] = length
+    row[el.COMPLIANCE] = length / (modulus * area)
+    row[el.BENDING] = modulus * inertia
+    row[el.CONTACT_OD] = component.get("tool_joint_od", component["od"])
+    row[el.WEIGHT] = buoyed * length
+    row[el.WEIGHT_AIR] = (air + GRAVITY * inside * bore) * length
     return row
 
 
@@ -44,9 +44,9 @@ def mark_runs(rows: Floats) -> None:
     """Note for each element how long the run of like bending stiffness is that holds it."""
     start = 0
     for i in range(1, len(rows) + 1):
-        last = i == len(rows) or abs(rows[i, core.BENDING] / rows[start, core.BENDING] - 1.0) > 0.2
+        last = i == len(rows) or abs(rows[i, el.BENDING] / rows[start, el.BENDING] - 1.0) > 0.2
         if last:
-            rows[start:i, core.STIFF_RUN] = rows[start:i, core.LENGTH].sum()
+            rows[start:i, el.STIFF_RUN] = rows[start:i, el.LENGTH].sum()
             start = i
 
 
@@ -75,9 +75,12 @@ def build_elements(settings: dict, length: float) -> Floats:
     return rows
 
 
-def stand_elements(settings: dict, length: float | None = None) -> Floats:
-    """Elements of one more stand of the last component."""
-    span = settings["rig"]["stand"] if length is None else length
+def stand_elements(settings: dict, used: float) -> Floats:
+    """Elements of one more stand on a string of length `used`, of the component the tally has there."""
     count = settings["rig"].get("elements_per_stand", 1)
-    component = settings["string"]["components"][-1]
-    return np.array([element_row(component, span / count, settings) for _ in range(count)])
+    span = settings["rig"]["stand"] / count
+    components = settings["string"]["components"]
+    ends = np.cumsum([component["length"] for component in components])
+    middles = used + (np.arange(count) + 0.5) * span
+    rows = np.minimum(np.searchsorted(ends, middles), len(components) - 1)
+    return np.array([element_row(components[row], span, settings) for row in rows])

@@ -9,6 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from . import core
+from . import elements as el
 from .hole import FIRST, STEP, Hole
 from .pipe import build_elements, mark_runs, stand_elements
 
@@ -52,14 +53,14 @@ class Rig:
         self.length = self.bit_depth + self.height
         self.elements = build_elements(self.settings, self.length)
         n = len(self.elements)
-        self.x = np.empty(n + 1)
-        self.s = np.zeros(n + 1)
-        self.spent = np.zeros(n + 1)
+        self.nodes = np.zeros((3, n + 1))
         self.latched = np.zeros(n, dtype=np.int64)
         planted = self.settings["planted"]
         self.keep = planted.get("trapped_torque", 0.0)
         self.block_weight = self.settings["rig"]["block_weight"] * 1e3
         self.pump_shift = planted.get("pump_shift_kN", 0.0) * 1e3
+        self.table = self.hole.table.copy()
+        self.bed = 0.0
         self._hang()
         self.moved = np.zeros(n + 1, dtype=bool)
         self.anchor = self.x.copy()
@@ -70,14 +71,19 @@ class Rig:
         n = len(self.elements)
         self.x[n] = -self.height
         for j in range(n - 1, -1, -1):
-            self.x[j] = self.x[j + 1] + self.elements[j, core.LENGTH]
+            self.x[j] = self.x[j + 1] + self.elements[j, el.LENGTH]
         for _ in range(3):
-            g = core.geometry(self.x, self.elements, self.hole.table, FIRST, STEP)
-            weight = np.cumsum(g[:, core.E_WEIGHT] * g[:, core.E_COS])
+            g = el.geometry(self.x, self.elements, self.hole.table, FIRST, STEP)
+            weight = np.cumsum(g[:, el.E_WEIGHT] * g[:, el.E_COS])
             for j in range(n - 1, -1, -1):
-                pull = weight[j] - 0.5 * g[j, core.E_WEIGHT] * g[j, core.E_COS]
-                stretch = self.elements[j, core.COMPLIANCE] * pull
-                self.x[j] = self.x[j + 1] + self.elements[j, core.LENGTH] + stretch
+                pull = weight[j] - 0.5 * g[j, el.E_WEIGHT] * g[j, el.E_COS]
+                stretch = self.elements[j, el.COMPLIANCE] * pull
+                self.x[j] = self.x[j + 1] + self.elements[j, el.LENGTH] + stretch
+
+    @property
+    def x(self) -> Floats:
+        """Measured depth of every node, bit first [m]."""
+        return self.nodes[core.PLACE]
 
     @property
     def tally_depth(self) -> float:
@@ -88,17 +94,17 @@ class Rig:
         """Control vector of the core for the present state."""
         planted = self.settings["planted"]
         c = np.empty(10)
-        c[core.TOP] = self.x[-1]
-        c[core.DT] = self.dt
-        c[core.TURN_RATE] = self.rpm * 2.0 * math.pi / 60.0
-        c[core.BOTTOM] = self.bottom
+        c[el.TOP] = self.x[-1]
+        c[el.DT] = self.dt
+        c[el.TURN_RATE] = self.rpm * 2.0 * math.pi / 60.0
+        c[el.BOTTOM] = self.bottom
         rate = planted["rate_m_h"] / 3600.0 * (1.0 if self.rpm > 5.0 else planted.get("slide_rate", 0.8))
-        c[core.DRILL_RATE] = rate * self.formation() if self.pump > 0.5 else 0.0
-        c[core.DRILL_EXPONENT] = planted.get("rate_exponent", 1.0)
-        c[core.ROCK_STIFFNESS] = 5.0e7
-        c[core.UNTWIST] = planted.get("untwist_m", 0.3)
-        c[core.MD_FIRST] = FIRST
-        c[core.MD_STEP] = STEP
+        c[el.DRILL_RATE] = rate * self.formation() if self.pump > 0.5 else 0.0
+        c[el.DRILL_EXPONENT] = planted.get("rate_exponent", 1.0)
+        c[el.ROCK_STIFFNESS] = 5.0e7
+        c[el.UNTWIST] = planted.get("untwist_m", 0.3)
+        c[el.MD_FIRST] = FIRST
+        c[el.MD_STEP] = STEP
         return c
 
     def formation(self) -> float:
@@ -109,7 +115,7 @@ class Rig:
     def advance(self, demand: Demand) -> None:
         """Move one second on and record it."""
         if demand.rpm <= 5.0 < self.rpm:
-            self.spent *= self.keep
+            self.nodes[core.SPENT] *= self.keep
         self.rpm, self.pump = demand.rpm, demand.pump
         change = demand.speed - self.speed
         self.speed += max(-ACCELERATION * self.dt, min(ACCELERATION * self.dt, change))
@@ -118,20 +124,47 @@ class Rig:
         block_move = self.speed * self.dt
         control = self.control()
         if not self.slips:
-            control[core.TOP] = self.x[-1] + block_move
-            self.height = -control[core.TOP]
+            control[el.TOP] = self.x[-1] + block_move
+            self.height = -control[el.TOP]
         else:
             self.height -= block_move
-            control[core.TURN_RATE] = 0.0
+            control[el.TURN_RATE] = 0.0
         before = self.x.copy()
         self.tension, self.geo, self.found = core.step(
-            self.x, self.s, self.spent, self.latched, self.elements, self.hole.table, control
+            self.nodes, self.latched, self.elements, self.table, control
         )
-        self.bottom = self.found[core.NEW_BOTTOM]
+        self.bottom = self.found[el.NEW_BOTTOM]
         self.time += self.dt
         self._feel(block_move, before)
+        self._settle_cuttings(control[el.BOTTOM])
         if self.logging:
             self._record()
+
+    def _settle_cuttings(self, bottom_before: float) -> None:
+        """Let cuttings pile up with footage and be carried off by flow, faster with rotation."""
+        bed = self.settings["planted"].get("bed")
+        if not bed:
+            return
+        grown = (self.bottom - bottom_before) * bed["grow_slide" if self.rpm <= 5.0 else "grow_rotary"]
+        washed = self.dt / bed["clean_s"] if self.pump > 0.5 and self.rpm > 30.0 else 0.0
+        if self.found[el.BIT_LOAD] > 1e3:
+            washed *= bed.get("clean_on_bottom", 0.1)
+        self.bed = min(max(self.bed * (1.0 - washed) + grown, 0.0), 1.0)
+        if round(self.time) % 10 == 0:
+            inside = (self.hole.md > bed["top"]) & (self.hole.md < bed["bottom"])
+            lumps = 1.0 + 0.35 * np.sin(self.hole.md / 9.0) * np.sin(self.hole.md / 31.0)
+            extra = (bed["factor"] - 1.0) * self.bed * lumps
+            self.table[:, el.MU] = self.hole.table[:, el.MU] * np.where(inside, 1.0 + extra, 1.0)
+
+    def plain_drag(self) -> float:
+        """Find what the hook carries beyond everyday friction, while all of the string slides [N]."""
+        if self.slips or self.rpm > 5.0 or self.found[el.BIT_LOAD] > 0.0 or abs(self.speed) < 0.02:
+            return float("nan")
+        if self.reach < self.x[0] - 0.1 or self.latched.max() > 0:
+            return float("nan")
+        sign = 1.0 if self.speed > 0.0 else -1.0
+        usual = el.steady(self.x, self.elements, self.hole.table, self.control(), sign)
+        return float(self.string_weight - usual)
 
     def _feel(self, block_move: float, before: Floats) -> None:
         """Keep track of how deep the last surface motion has been felt."""
@@ -156,54 +189,55 @@ class Rig:
         if self.slips:
             return self.block_weight + self.load_in_slips
         lift = self.pump_shift if self.pump > 0.3 else 0.0
-        return self.found[core.TOP_TENSION] + self.block_weight + lift
+        return self.found[el.TOP_TENSION] + self.block_weight + lift
 
     @property
     def string_weight(self) -> float:
         """True tension at the hook, pump shift left out [N]."""
-        return self.found[core.TOP_TENSION]
+        return self.found[el.TOP_TENSION]
 
     def hookload_at_rest(self) -> float:
         """Frictionless hanging weight of the string [N]."""
-        g = core.geometry(self.x, self.elements, self.hole.table, FIRST, STEP)
-        return float((g[:, core.E_WEIGHT] * g[:, core.E_COS]).sum())
+        g = el.geometry(self.x, self.elements, self.hole.table, FIRST, STEP)
+        return float((g[:, el.E_WEIGHT] * g[:, el.E_COS]).sum())
 
     def _record(self) -> None:
-        loads = core.survey_loads(self.tension, self.geo, self.elements, self.x)
+        loads = el.survey_loads(self.tension, self.geo, self.elements, self.x)
         spans = [np.nan] * 4
         for k, level in enumerate((1, 2)):
             places = np.nonzero(self.latched >= level)[0]
             if len(places):
                 spans[2 * k] = self.x[places[-1] + 1]
                 spans[2 * k + 1] = self.x[places[0]]
-        bit = self.found[core.BIT_LOAD]
+        bit = self.found[el.BIT_LOAD]
         bit_torque = 0.0
         if bit > 0.0 and self.rpm > 5.0:
             bit_torque = bit * self.settings["planted"].get("bit_torque_m", 0.03)
         self.rows.append(
             (
                 self.time, self.height, self.tally_depth, self.x[0], self.bottom, self.hookload,
-                self.string_weight, bit, self.found[core.FRICTION_TORQUE] + bit_torque, self.rpm, self.pump,
+                self.string_weight, bit, self.found[el.FRICTION_TORQUE] + bit_torque, self.rpm, self.pump,
                 float(self.slips), loads[3], loads[0], loads[1], loads[2], float(self.latched.max()),
-                *spans, self.reach, self.found[core.RESIDUAL], self.zero, self.length,
+                *spans, self.reach, self.found[el.RESIDUAL], self.zero, self.length,
+                self.plain_drag(), self.bed,
             )
         )  # fmt: skip
         self.tags.append(self.tag)
 
     def add_stand(self) -> None:
         """Screw one stand onto the string while it hangs in slips."""
-        rows = stand_elements(self.settings)
+        rows = stand_elements(self.settings, self.length)
         top = self.x[-1]
         pull = max(float(self.tension[-1]), 0.0)
-        added = top - np.cumsum(rows[:, core.LENGTH] + rows[:, core.COMPLIANCE] * pull)
+        added = top - np.cumsum(rows[:, el.LENGTH] + rows[:, el.COMPLIANCE] * pull)
         self._resize(np.vstack([self.elements, rows]), np.append(self.x, added))
-        self.length += float(rows[:, core.LENGTH].sum())
+        self.length += float(rows[:, el.LENGTH].sum())
         self.height = -self.x[-1]
 
     def drop_stand(self) -> None:
         """Break one stand out while the string hangs in slips."""
         count = self.settings["rig"].get("elements_per_stand", 1)
-        self.length -= float(self.elements[-count:, core.LENGTH].sum())
+        self.length -= float(self.elements[-count:, el.LENGTH].sum())
         self._resize(self.elements[:-count], self.x[:-count])
         self.height = -self.x[-1]
 
@@ -215,11 +249,12 @@ class Rig:
             grown[: min(size, len(values))] = values[:size]
             return grown
 
-        self.s, self.spent = fit(self.s, n + 1), fit(self.spent, n + 1)
+        self.nodes = np.array([fit(row, n + 1) for row in self.nodes])
+        self.nodes[core.PLACE] = x
         self.latched, self.moved = fit(self.latched, n), fit(self.moved, n + 1)
         if n > old:
             self.moved[old:] = True
-        self.elements, self.x = elements.copy(), x.copy()
+        self.elements = elements.copy()
         mark_runs(self.elements)
         self.anchor = self.x.copy() if n < old else np.append(self.anchor, self.x[old + 1 :])
 
@@ -227,5 +262,5 @@ class Rig:
 COLUMNS = (
     "time", "block", "tally_depth", "bit_true", "bottom_true", "hookload", "string_weight", "bit_load",
     "torque", "rpm", "pump", "slips", "hanging", "ratio", "ratio_md", "compression", "state",
-    "top", "bottom", "helical_top", "helical_bottom", "reach", "residual", "zero", "tally",
+    "top", "bottom", "helical_top", "helical_bottom", "reach", "residual", "zero", "tally", "drag", "bed",
 )  # fmt: skip

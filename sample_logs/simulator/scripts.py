@@ -7,7 +7,7 @@ from collections.abc import Callable
 import numpy as np
 
 from .driller import KN, Driller
-from .rig import Rig
+from .rig import Demand, Rig
 
 
 def trip_in(driller: Driller, stands: int, check_every: int = 0, pump: float = 0.0) -> None:
@@ -105,4 +105,74 @@ def lateral(rig: Rig, driller: Driller, script: dict) -> None:
         trip_out(driller, script["pull_stands"])
 
 
-SCRIPTS: dict[str, Callable[[Rig, Driller, dict], None]] = {"lateral": lateral}
+def calibration(_rig: Rig, driller: Driller, script: dict) -> None:
+    """Trip in with pick-up, slack-off and rotating weights every few stands, then out again with them."""
+    driller.hold(60, pump=0.0)
+    trip_in(driller, script["trip_stands"], script["check_every"])
+    driller.hold(120, pump=1.0)
+    driller.move(-6.0, driller.check_speed)
+    driller.weight_check()
+    driller.hold(script.get("clean", 300), rpm=driller.rpm)
+    out, every = script["pull_stands"], script["check_every"]
+    for k in range(out):
+        trip_out(driller, 1)
+        if k % every == 0:
+            driller.move(-10.0, driller.trip_speed, pump=0.0)
+            driller.hold(20)
+            driller.weight_check()
+
+
+def push_down(driller: Driller, goal: float, floor: float, speed: float) -> bool:
+    """Lower the block to a height; false where the hook would carry less than `floor` [N] before."""
+    rig = driller.rig
+    while rig.height > goal:
+        left = rig.height - goal
+        near = max((rig.string_weight - floor) / (60.0 * KN), 0.1)
+        rig.advance(Demand(min(speed, 0.03 + 0.25 * left, speed * near), 0.0, 0.0))
+        if rig.string_weight < floor:
+            while rig.speed:
+                rig.advance(Demand(0.0, 0.0, 0.0))
+            return False
+    while rig.speed:
+        rig.advance(Demand(0.0, 0.0, 0.0))
+    return True
+
+
+def liner(rig: Rig, driller: Driller, script: dict) -> None:
+    """Run a liner on drill pipe: pick-up and slack-off each stand, until it goes no further."""
+    floor = script["floor_kN"] * KN
+    driller.hold(60, pump=0.0)
+    for k in range(script["stands"]):
+        rig.tag = "run"
+        driller.connection(pump_after=0.0, minutes=script.get("minutes", 2.5))
+        if k % script.get("pick_every", 1) == 0:
+            driller.move(-min(4.0, rig.settings["rig"]["stand"] / 6.0), driller.check_speed, pump=0.0)
+            driller.hold(8, pump=0.0)
+        if k and k % script.get("circulate_every", 20) == 0:
+            driller.hold(script.get("circulate_s", 240), pump=0.6)
+        if push_down(driller, 1.2, floor, driller.trip_speed):
+            driller.hold(5, pump=0.0)
+            continue
+        stuck(driller, script, floor)
+        break
+    rig.tag = ""
+
+
+def stuck(driller: Driller, script: dict, floor: float) -> None:
+    """Try again and again where the liner went no further, then come up and wait."""
+    driller.rig.tag = "stuck"
+    for attempt in script["attempts"]:
+        driller.hold(attempt.get("wait", 60), pump=0.0)
+        driller.move(-attempt["pick"], driller.check_speed, pump=0.0)
+        driller.hold(20, pump=attempt.get("pump", 0.0))
+        push_down(driller, 1.2, floor, attempt.get("speed", 0.15))
+    driller.hold(240, pump=0.0)
+    driller.move(-min(20.0, 29.0 - driller.rig.height), driller.check_speed, pump=0.0)
+    driller.hold(120, pump=0.0)
+
+
+SCRIPTS: dict[str, Callable[[Rig, Driller, dict], None]] = {
+    "lateral": lateral,
+    "calibration": calibration,
+    "liner": liner,
+}

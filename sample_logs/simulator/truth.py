@@ -102,6 +102,8 @@ def truth_frame(true: pd.DataFrame, settings: dict, stretch: Floats) -> pd.DataF
             "string_weight_kN": (true["string_weight"] / 1e3).round(2),
             "surface_torque_kNm": (true["torque"] / 1e3).round(2),
             "lockup": lockups(true, noise, stretch).astype(int),
+            "drag_residual_kN": (true["drag"] / 1e3).round(2),
+            "cuttings_level": true["bed"].round(3),
             "residual_kN": (true["residual"] / 1e3).round(3),
         }
     )
@@ -114,6 +116,9 @@ def summary(truth: pd.DataFrame, true: pd.DataFrame, hole: Hole, settings: dict)
     helical = (truth["state"] == "helical").to_numpy()
     deepest = float(true["bottom_true"].max())
     steep = float(hole.md[np.argmax(np.degrees(hole.inclination) > 5.0)])
+    noise = settings["instrument"].get("hookload_noise_kN", 0.8)
+    bar = np.maximum(0.1 * true["hanging"].to_numpy() / 1e3, 6.0 * noise)
+    dragging = (truth["drag_residual_kN"].abs() > bar).to_numpy()
     worst = truth.loc[truth["peak_load_ratio"].idxmax()]
     drilling = truth["activity"].isin(["drill_rotate", "drill_slide"])
     has_cased, has_open = hole.shoe > 0.0, deepest > hole.shoe
@@ -138,5 +143,6 @@ def summary(truth: pd.DataFrame, true: pd.DataFrame, hole: Hole, settings: dict)
         "buckling_episodes": [list(s) for s in spans(buckled, time, 60.0, 20.0)],
         "helical_episodes": [list(s) for s in spans(helical, time, 60.0, 20.0)],
         "lockup_intervals": [list(s) for s in spans(truth["lockup"].to_numpy() > 0, time, 60.0, 0.0)],
+        "drag_episodes": [list(s) for s in spans(dragging, time, 60.0, 20.0)],
         "largest_imbalance_kN": float(truth["residual_kN"].max()),
     }
