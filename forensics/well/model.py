@@ -76,7 +76,8 @@ class Well:
         ends[-1] = np.inf if self.string.can_extend else ends[-1]
         depths = np.clip(bit[None, :] - ends[:, None], 0.0, None)
         tvd = self.trajectory.position(depths.ravel())[:, 2].reshape(depths.shape)
-        return (weights * (tvd[:-1] - tvd[1:])).sum(axis=0)
+        total: Floats = (weights * (tvd[:-1] - tvd[1:])).sum(axis=0)
+        return total
 
     def check_reach(self, max_bit_depth: float) -> None:
         """Refuse a bit depth that string or hole can't have reached.

@@ -119,7 +119,7 @@ class Trajectory:
         last = len(self.md) - 1
         index = np.clip(np.searchsorted(self.md, depth, side="right") - 1, 0, last)
         along = depth - self.md[index]
-        result = places[index] + along[:, None] * np.array([0.0, 0.0, 1.0])
+        result: Floats = places[index] + along[:, None] * np.array([0.0, 0.0, 1.0])
         inside = (depth > self.md[0]) & (index < last)
         if inside.any():
             result[inside] = places[index[inside]] + _chord(self._arcs, index[inside], along[inside])
@@ -241,7 +241,8 @@ def tangent_of(inclination: Floats, azimuth: Floats) -> Floats:
 
 def angle_between(first: Floats, second: Floats) -> Floats:
     """Measure the angle between unit vectors of shape (k, 3), exact for small ones too [rad]."""
-    return np.arctan2(np.linalg.norm(np.cross(first, second), axis=-1), (first * second).sum(axis=-1))
+    turn: Floats = np.arctan2(np.linalg.norm(np.cross(first, second), axis=-1), (first * second).sum(axis=-1))
+    return turn
 
 
 def _arcs(md: Floats, inclination: Floats, azimuth: Floats) -> _Arcs:

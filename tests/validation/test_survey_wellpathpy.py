@@ -40,3 +40,15 @@ def test_places_and_severity_agree(stations):
     np.testing.assert_allclose(ours.north, theirs.northing, atol=1e-7)
     np.testing.assert_allclose(ours.east, theirs.easting, atol=1e-7)
     np.testing.assert_allclose(ours.dogleg_severity * 30 / DEG, theirs.dls[1:], atol=1e-6)
+
+
+@pytest.mark.parametrize("stations", [lateral, s_shape, scattered])
+def test_places_between_stations_agree(stations):
+    md, inc, azi = stations()
+    inc[0] = 0.0
+    depth = np.linspace(1.0, md[-1] - 1.0, 57)
+    theirs = wellpathpy.deviation(md, inc, azi).minimum_curvature().resample(depths=list(depth))
+    ours = build_trajectory(md, inc * DEG, azi * DEG).position(depth)
+    np.testing.assert_allclose(
+        ours, np.column_stack([theirs.northing, theirs.easting, theirs.depth]), atol=1e-6
+    )

@@ -40,6 +40,8 @@ HEADERS = [
     "md,inc,azi\nm,deg,deg",
     "md,inc,azi\n[m],(deg),(deg)",
     "md [m],inc,azi\n,deg,deg",
+    "MD (driller) [m],Inc [deg] (raw),Azi (grid) [deg]",
+    "md [m],inc [deg],azi [deg]\nm,deg,dega",
     "# a remark\n\nmd [m],inc [deg],azi [deg]",
 ]
 
@@ -145,6 +147,7 @@ REFUSED = {
     "unit of another quantity": ("md [kN],inc [deg],azi [deg]\n0,0,0\n", ["'md [kN]'", "kN", "length"]),
     "unknown unit": ("md [mq],inc [deg],azi [deg]\n0,0,0\n", ["'md [mq]'", "mq"]),
     "two of a kind": ("md [m],inc [deg],incl [deg],azi [deg]\n0,0,0,0\n", ["'inc [deg]' and 'incl [deg]'"]),
+    "two units": ("md [m],inc [deg],azi [deg]\nft,deg,deg\n0,0,0\n", ["line 2", "'md [m]'", "'m'", "'ft'"]),
     "same name twice": ("md [m],md [ft],inc [deg],azi [deg]\n0,0,0,0\n", ["'md [m]' and 'md [ft]'"]),
     "word in a cell": (
         "md [m],inc [deg],azi [deg]\n0,0,0\n5,thirty,0\n",
