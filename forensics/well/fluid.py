@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-import datetime as dt
-import zoneinfo
 from dataclasses import dataclass
 
 import numpy as np
@@ -11,13 +9,16 @@ from numpy.typing import ArrayLike, NDArray
 
 from forensics.case import FluidSettings
 from forensics.errors import TableError
+from forensics.logs.clock import DAY, to_utc, zone_of
+from forensics.logs.clock_text import date_fields, day_number, find_order, take_apart
 from forensics.tables import Column, Table, read_table
 
 Floats = NDArray[np.float64]
 
 _HEAVIEST, _LIGHTEST_MUD = 3500.0, 600.0
 MUD_COLUMNS = (
-    Column("time", "text", ("date", "datetime", "timestamp", "date time", "stamp")),
+    Column("time", "text", ("datetime", "timestamp", "date time", "stamp", "clock")),
+    Column("date", "text", ("day",)),
     Column("depth", "length", ("md", "bit depth", "hole depth", "measured depth")),
     Column("density", "density", ("mud density", "mud weight", "mw", "weight"), required=True),
 )
@@ -83,7 +84,7 @@ def load_fluid(settings: FluidSettings, timezone: str = "UTC") -> tuple[Fluid, t
     Parameters
     ----------
     settings : FluidSettings
-        A density, or a file with `time` or `depth`, and `density`.
+        A density, or a file with `density` and either `depth` or `time` (one stamp, or date and clock).
     timezone : str
         Zone of stamps that carry none.
 
@@ -103,7 +104,8 @@ def load_fluid(settings: FluidSettings, timezone: str = "UTC") -> tuple[Fluid, t
         fluid = constant_fluid(settings.density or 0.0, settings.density_inside)
         return fluid, _remarks("[fluid]", fluid)
     table = read_table(settings.file, MUD_COLUMNS)
-    by = [name for name in ("time", "depth") if name in table.headers]
+    timed = "time" in table.headers or "date" in table.headers
+    by = [name for name, there in (("time", timed), ("depth", "depth" in table.headers)) if there]
     if len(by) != 1:
         found = "both 'time' and 'depth'" if by else "neither 'time' nor 'depth'"
         raise TableError(f"has {found}; one of them is needed beside 'density'", file=table.file)
@@ -129,24 +131,29 @@ def _remarks(name: str, fluid: Fluid) -> tuple[str, ...]:
 
 
 def _stamps(table: Table, timezone: str) -> Floats:
-    zone = _zone(timezone)
-    return np.array([_stamp(table, row, text, zone) for row, text in enumerate(table.text("time"))])
-
-
-def _stamp(table: Table, row: int, text: str, zone: dt.tzinfo) -> float:
-    try:
-        moment = dt.datetime.fromisoformat(text.strip())
-    except ValueError:
-        raise table.error(
-            f"is {text!r}; a stamp such as 2024-05-03T14:30:00Z is needed", row, "time"
-        ) from None
-    return (moment if moment.tzinfo else moment.replace(tzinfo=zone)).timestamp()
-
-
-def _zone(name: str) -> dt.tzinfo:
-    """Turn an IANA name or an offset such as +02:00 into a zone."""
-    if name[:1] in "+-":
-        sign = -1 if name[0] == "-" else 1
-        hours, _, minutes = name[1:].partition(":")
-        return dt.timezone(sign * dt.timedelta(hours=int(hours), minutes=int(minutes or 0)))
-    return zoneinfo.ZoneInfo(name)
+    """Read date and clock of each row to seconds since 1970 UTC."""
+    texts = [
+        f"{date} {time}".strip() for date, time in zip(table.text("date"), table.text("time"), strict=True)
+    ]
+    column = "time" if "time" in table.headers else "date"
+    parts = [take_apart(text) for text in texts]
+    order = find_order(part.date for part in parts)
+    local, offset = np.full(len(table), np.nan), np.full(len(table), np.nan)
+    for row, part in enumerate(parts):
+        day = day_number(part.date, order)
+        if day is None or not part.date:
+            raise table.error(
+                f"is {texts[row]!r}; a stamp such as 2024-05-03T14:30:00Z is needed", row, column
+            )
+        if order in (None, "clash") and len(date_fields(part.date) or ()) == 4:
+            raise table.error(
+                f"is {texts[row]!r}, which can be day first or month first; write dates as YYYY-MM-DD",
+                row,
+                column,
+            )
+        local[row] = day * DAY + (part.clock or 0.0)
+        offset[row] = np.nan if part.offset is None else part.offset
+    known = np.isfinite(offset)
+    seconds: Floats = local - np.nan_to_num(offset)
+    seconds[~known] = to_utc(local[~known], zone_of(timezone))
+    return seconds

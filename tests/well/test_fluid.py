@@ -36,6 +36,23 @@ def test_a_mud_by_time_is_read_between_stamps(load):
 
 
 @pytest.mark.parametrize(
+    "stamps",
+    [
+        "date,time,density [sg]\n2024-05-03,12:00:00,1.2\n2024-05-03,14:00,1.3\n",
+        "time,density [sg]\n03.05.2024 12:00,1.2\n03.05.2024 14:00,1.3\n",
+        "time,density [sg]\n05/03/2024 12:00:00 PM,1.2\n05/13/2024 14:00,1.3\n",
+        "time,density [sg]\n3-May-2024 12:00,1.2\n3-May-2024 14:00,1.3\n",
+        "time,density [sg]\n2024-05-03T15:00+03:00,1.2\n2024-05-03T14:00,1.3\n",
+        "date,density [sg]\n2024-05-03,1.2\n2024-05-04,1.3\n",
+    ],
+)
+def test_stamps_come_in_many_forms(load, stamps):
+    fluid, _ = load(stamps)
+    expected = NOON if "12:00" in stamps or "15:00" in stamps else NOON - 43200.0
+    assert fluid.index[0] == expected
+
+
+@pytest.mark.parametrize(
     ("zone", "shift"), [("UTC", 0), ("+02:00", -7200), ("-03:30", 12600), ("Europe/Oslo", -7200)]
 )
 def test_stamps_without_a_zone_take_the_case_s(load, zone, shift):
@@ -58,6 +75,7 @@ REFUSED = {
     "neither": ("density [sg]\n1.2\n", "neither 'time' nor 'depth'"),
     "both": ("time,depth [m],density [sg]\n2024-05-03T12:00:00Z,1,1.2\n", "both 'time' and 'depth'"),
     "stamp": ("time,density [sg]\nnoon,1.2\n", r"line 2, column 'time': is 'noon'"),
+    "open order": ("time,density [sg]\n03/05/2024 12:00,1.2\n", "line 2.*day first or month first"),
     "no stamp": ("time,density [sg]\n,1.2\n", r"line 2, column 'time': is ''"),
     "goes back": ("depth [m],density [sg]\n10,1.2\n5,1.2\n", r"line 3, column 'depth \[m\]': goes back"),
     "no depth": ("depth [m],density [sg]\n,1.2\n", r"line 2, column 'depth \[m\]': is empty"),
