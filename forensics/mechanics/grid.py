@@ -214,7 +214,7 @@ def averaged(hole: HoleGrid, well: Well, window: float) -> tuple[Floats, Floats,
 
 
 def _smooth(values: Floats, half: int) -> Floats:
-    """Moving mean of each column over 2 half + 1 rows, shorter at the ends."""
+    """Take the moving mean of each column over 2 half + 1 rows, shorter at the ends."""
     total = np.vstack([np.zeros((1, values.shape[1])), np.cumsum(values, axis=0)])
     rows = np.arange(len(values))
     low = np.maximum(rows - half, 0)

@@ -9,9 +9,9 @@ from numba import njit
 
 from forensics.mechanics.eigen import LIMIT
 from forensics.mechanics.kernels_critical import VERTICAL_HELICAL, c_scalar
-from forensics.mechanics.kernels_march import Array, Pipe, contact
+from forensics.mechanics.kernels_march import Array, Hole, Pipe, contact
 
-ENVELOPE = 1.370  # times Dawson-Paslay: least load a helix can be unloaded to (exact solution of its equations)
+ENVELOPE = 1.370  # times Dawson-Paslay: least load a helix keeps its shape at, from its own equations
 FAR_FROM_VERTICAL = 200.0  # local load in units of the near-vertical one; beyond, c is its limit to 0.1 %
 LOG_100 = np.log(100.0)
 
@@ -22,8 +22,8 @@ class Criteria(NamedTuple):
     `a`, `b`, `c` give the lateral load averaged over a sine wave; `root` is 2 √(EI / r), the local load per
     root of contact (infinite on a support); `cube` is (EI w² cos² I)^⅓, zero where cos I <= 0; `log_unit` the
     logarithm of Lubinski's length. `log_run` (elements) is the logarithm of the length of like stiffness that
-    holds a place near vertical; `onset` multiplies the Dawson-Paslay load for the helix; `envelope` is 1 where a helix lasts until its own unloading limit; `table` holds the
-    near-vertical coefficients.
+    holds a place near vertical; `onset` multiplies the Dawson-Paslay load for the helix; `envelope` is 1
+    where a helix lasts until its own unloading limit; `table` holds the near-vertical coefficients.
     """
 
     kind: Array
@@ -39,21 +39,33 @@ class Criteria(NamedTuple):
     table: tuple[Array, float, float, float, float]
 
 
+class Setting(NamedTuple):
+    """What does not change while a run is replayed: hole, string, criteria, friction by depth."""
+
+    hole: Hole
+    pipe: Pipe
+    criteria: Criteria
+    mu: Array
+
+
 @njit(cache=True, error_model="numpy", inline="always")
-def local_load(pipe: Pipe, criteria: Criteria, j: int, i: int, tension: float, scale: float) -> float:
+def local_load(setting: Setting, j: int, i: int, tension: float, scale: float) -> float:
     """Dawson-Paslay load of element `j` at depth index `i`, at the contact that is there [N]."""
+    criteria = setting.criteria
     row = criteria.kind[j]
-    weight = pipe.weight[j] * scale
+    weight = setting.pipe.weight[j] * scale
     force = contact(tension, weight, criteria.a[row, i], criteria.b[row, i], criteria.c[row, i])
     return criteria.root[row, i] * np.sqrt(force)
 
 
 @njit(cache=True, error_model="numpy")
-def thresholds(
-    pipe: Pipe, criteria: Criteria, j: int, i: int, tension: float, scale: float
-) -> tuple[float, float, float]:
-    """Dawson-Paslay, sinusoidal and helical load of element `j` at depth index `i` [N]; infinite on a support."""
-    local = local_load(pipe, criteria, j, i, tension, scale)
+def thresholds(setting: Setting, j: int, i: int, tension: float, scale: float) -> tuple[float, float, float]:
+    """Dawson-Paslay, sinusoidal and helical load of element `j` at depth index `i` [N].
+
+    All are infinite on a support.
+    """
+    criteria = setting.criteria
+    local = local_load(setting, j, i, tension, scale)
     cube = criteria.cube[criteria.kind[j], i]
     if cube <= 0.0:
         return local, local, criteria.onset * local
@@ -70,14 +82,12 @@ def thresholds(
 
 
 @njit(cache=True, error_model="numpy")
-def latch(
-    pipe: Pipe, criteria: Criteria, j: int, i: int, tension: float, scale: float
-) -> bool:
+def latch(setting: Setting, j: int, i: int, tension: float, scale: float) -> bool:
     """Whether element `j`, not yet helical, turns helical at this tension."""
     # the near-vertical term only raises the threshold, so most places end here
-    if -tension < criteria.onset * local_load(pipe, criteria, j, i, tension, scale):
+    if -tension < setting.criteria.onset * local_load(setting, j, i, tension, scale):
         return False
-    return -tension >= thresholds(pipe, criteria, j, i, tension, scale)[2]
+    return -tension >= thresholds(setting, j, i, tension, scale)[2]
 
 
 @njit(cache=True, error_model="numpy")

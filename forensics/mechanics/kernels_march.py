@@ -39,6 +39,20 @@ class Pipe(NamedTuple):
     radius: Array
 
 
+class Ask(NamedTuple):
+    """One string to march up: bit depth [m], +1 going down or -1 up, tension at the bit [N].
+
+    `helical` is the multiple of the Dawson-Paslay load above which an element carries the contact of a
+    helix (infinite: never); `scale` multiplies all weights, where the mud has changed.
+    """
+
+    bit: float
+    sigma: float
+    tension_bit: float
+    helical: float
+    scale: float
+
+
 @njit(cache=True, inline="always")
 def contact(tension: float, weight: float, kappa2: float, kappa_d: float, sin2: float) -> float:
     """Contact force per length of unbuckled pipe [N/m]."""
@@ -53,31 +67,25 @@ def top_element(x: Array, bit: float) -> int:
 
 
 @njit(cache=True, error_model="numpy")
-def march_up(
-    hole: Hole, pipe: Pipe, mu: Array, bit: float, sigma: float, tension_bit: float, helical: float,
-    out: Array, scale: float,
-) -> float:
-    """Tension at the rotary from the tension at the bit; fills `out` with tension at the nodes [N].
-
-    `helical` is the multiple of the Dawson-Paslay load above which an element carries the contact of a
-    helix (infinite: never); `scale` multiplies all weights, where the mud has changed.
-    """
+def march_up(hole: Hole, pipe: Pipe, mu: Array, ask: Ask, out: Array) -> float:
+    """Tension at the rotary from the tension at the bit; fills `out` with tension at the nodes [N]."""
+    bit, helical = ask.bit, ask.helical
     top = top_element(pipe.x, bit)
     first = int(bit * hole.inv_step + 0.5)
-    tension = tension_bit
+    tension = ask.tension_bit
     out[0] = tension
     slope = 0.0
     for j in range(top + 1):
         length = min(pipe.x[j + 1], bit) - pipe.x[j]
         i = max(first - ((pipe.node[j] + pipe.node[j + 1]) >> 1), 0)
-        weight = pipe.weight[j] * scale
+        weight = pipe.weight[j] * ask.scale
         middle = tension + 0.5 * length * slope
         force = contact(middle, weight, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i])
         if middle < 0.0 and helical < 1e9:
             gap = max(0.5 * (hole.diameter[i] - pipe.clearance_od[j]), 2e-3)
             if middle * middle > helical * helical * 4.0 * pipe.ei[j] * force / gap:
                 force += gap * middle * middle / (4.0 * pipe.ei[j])
-        slope = weight * hole.cos_i[i] - sigma * mu[i] * force
+        slope = weight * hole.cos_i[i] - ask.sigma * mu[i] * force
         tension += slope * length
         out[j + 1] = tension
     return tension
@@ -107,13 +115,16 @@ def torque_up(
 
 @njit(cache=True)
 def march_up_many(
-    hole: Hole, pipe: Pipe, mu: Array, bits: Array, sigma: Array, helical: float, scale: Array
+    hole: Hole, pipe: Pipe, mu: Array, bits: Array, scale: Array, motion: tuple[float, float]
 ) -> Array:
-    """String weight at the rotary for many bit depths, bit free [N]."""
+    """Weigh the string at the rotary for many bit depths, bit free [N].
+
+    `motion` holds sigma and the helical multiple.
+    """
     result = np.empty(len(bits))
     work = np.empty(len(pipe.x))
     for k in range(len(bits)):
-        result[k] = march_up(hole, pipe, mu, bits[k], sigma[k], 0.0, helical, work, scale[k])
+        result[k] = march_up(hole, pipe, mu, Ask(bits[k], motion[0], 0.0, motion[1], scale[k]), work)
     return result
 
 

@@ -13,8 +13,8 @@ from typing import NamedTuple
 import numpy as np
 from numba import njit
 
-from forensics.mechanics.kernels_judge import Criteria, latch
-from forensics.mechanics.kernels_march import Array, Hole, Pipe, contact
+from forensics.mechanics.kernels_judge import Setting, latch
+from forensics.mechanics.kernels_march import Array, Pipe, contact
 
 FREE = 0
 ROTATING = 2
@@ -41,14 +41,15 @@ class Place(NamedTuple):
 
 @njit(cache=True, error_model="numpy")
 def march_down(
-    hole: Hole, pipe: Pipe, criteria: Criteria, mu: Array, memory: Memory, place: Place,
-    sigma: float, share: float, tension_top: float, bounded: bool,
+    setting: Setting, memory: Memory, place: Place, rub: float, tension_top: float, bounded: bool
 ) -> int:
     """March from the rotary down; returns the lowest node reached (0: the bit).
 
+    `rub` is the share of friction that acts axially, signed as the motion is: positive down.
     Bounded, the march ends where the curve meets the remembered tension; below, that stands.
     Elements that pass the helical threshold on the way carry helical contact at once.
     """
+    hole, pipe, criteria, mu = setting.hole, setting.pipe, setting.criteria, setting.mu
     kept = memory.tension
     tension = tension_top
     kept[place.top + 1] = tension
@@ -60,13 +61,13 @@ def march_down(
         middle = tension + 0.5 * length * slope
         force = contact(middle, weight, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i])
         if middle < 0.0:
-            if memory.state[j] < 2 and latch(pipe, criteria, j, i, middle, place.scale):
+            if memory.state[j] < 2 and latch(setting, j, i, middle, place.scale):
                 memory.state[j] = 2
             if memory.state[j] == 2:
                 force += (middle / criteria.root[criteria.kind[j], i]) ** 2
-        slope = -weight * hole.cos_i[i] + sigma * share * mu[i] * force
+        slope = -weight * hole.cos_i[i] + rub * mu[i] * force
         tension += slope * length
-        if bounded and (tension - kept[j]) * sigma >= 0.0:
+        if bounded and (tension - kept[j]) * rub >= 0.0:
             return j + 1
         kept[j] = tension
     return 0
@@ -74,10 +75,13 @@ def march_down(
 
 @njit(cache=True, error_model="numpy")
 def rise(
-    hole: Hole, pipe: Pipe, criteria: Criteria, mu: Array, memory: Memory, place: Place,
-    sigma: float, share: float, tension_bit: float, helices: bool,
+    setting: Setting, memory: Memory, place: Place, rub: float, tension_bit: float, helices: bool
 ) -> float:
-    """March up from the bit into work space, with the friction summed beside; returns tension at the rotary."""
+    """March up from the bit into work space, friction summed beside; returns tension at the rotary.
+
+    `rub` as in `march_down`.
+    """
+    hole, pipe, criteria, mu = setting.hole, setting.pipe, setting.criteria, setting.mu
     tension = tension_bit
     drag = 0.0
     slope = 0.0
@@ -91,10 +95,10 @@ def rise(
         force = contact(middle, weight, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i])
         if helices and middle < 0.0 and memory.state[j] == 2:
             force += (middle / criteria.root[criteria.kind[j], i]) ** 2
-        rub = share * mu[i] * force
-        slope = weight * hole.cos_i[i] - sigma * rub
+        friction = rub * mu[i] * force
+        slope = weight * hole.cos_i[i] - friction
         tension += slope * length
-        drag += rub * length
+        drag += friction * length
         memory.work[j + 1] = tension
         memory.drag[j + 1] = drag
     return tension
@@ -108,7 +112,7 @@ def anchor(memory: Memory, place: Place, tension_top: float, model_top: float) -
     more, or less, by one ratio.
     """
     whole = memory.drag[place.top + 1]
-    excess = (tension_top - model_top) / whole if whole > 1.0 else 0.0
+    excess = (tension_top - model_top) / whole if abs(whole) > 1.0 else 0.0
     for j in range(place.top + 2):
         memory.tension[j] = memory.work[j] + excess * memory.drag[j]
 
@@ -125,14 +129,14 @@ def stretch_between(pipe: Pipe, first: Array, second: Array, place: Place) -> fl
 
 @njit(cache=True, error_model="numpy")
 def bit_curve(
-    hole: Hole, pipe: Pipe, criteria: Criteria, mu: Array, memory: Memory, place: Place, tension_bit: float,
-    limit: float,
+    setting: Setting, memory: Memory, place: Place, rub: float, tension_bit: float, limit: float
 ) -> tuple[float, int]:
     """Stretch of the curve from `tension_bit` up to where it meets the memory, and the node it ends under.
 
     The curve is left in work space. Ends early where the stretch passes `limit`. The node is -1 where
     the curve runs to the rotary without meeting the memory.
     """
+    hole, pipe, criteria, mu = setting.hole, setting.pipe, setting.criteria, setting.mu
     kept = memory.tension
     tension = tension_bit
     over = tension - kept[0]
@@ -150,7 +154,7 @@ def bit_curve(
             root = criteria.root[criteria.kind[j], i]
             force += (middle / root) ** 2
             give += 4.0 * pipe.ei[j] / root**4
-        slope = weight * hole.cos_i[i] - mu[i] * force
+        slope = weight * hole.cos_i[i] - rub * mu[i] * force
         tension += slope * length
         memory.work[j + 1] = tension
         above = tension - kept[j + 1]
@@ -165,14 +169,17 @@ def bit_curve(
 
 @njit(cache=True, error_model="numpy")
 def bit_front(
-    hole: Hole, pipe: Pipe, criteria: Criteria, mu: Array, memory: Memory, place: Place, drilled: float
+    setting: Setting, memory: Memory, place: Place, rub: float, drilled: float
 ) -> bool:
-    """Unload the string from below by the length drilled [m]; returns whether the front reached the rotary."""
+    """Unload the string from below by the length drilled [m].
+
+    Returns whether the front reached the rotary.
+    """
     low = memory.tension[0]
     high = 0.0
     if low >= high or drilled <= 0.0:
         return False
-    most, _ = bit_curve(hole, pipe, criteria, mu, memory, place, high, drilled)
+    most, _ = bit_curve(setting, memory, place, rub, high, drilled)
     if most <= drilled:
         value = high
     else:
@@ -182,7 +189,7 @@ def bit_front(
             value = 0.5 * (low + high)
             if high_value < 3.0 * drilled:
                 value = low - low_value * (high - low) / (high_value - low_value)
-            got, _ = bit_curve(hole, pipe, criteria, mu, memory, place, value, 8.0 * drilled)
+            got, _ = bit_curve(setting, memory, place, rub, value, 8.0 * drilled)
             miss = got - drilled
             if abs(miss) < 0.01 * drilled or high - low < 1.0:
                 break
@@ -190,7 +197,7 @@ def bit_front(
                 high, high_value = value, miss
             else:
                 low, low_value = value, miss
-    _, end = bit_curve(hole, pipe, criteria, mu, memory, place, value, np.inf)
+    _, end = bit_curve(setting, memory, place, rub, value, np.inf)
     reached = end < 0
     last = place.top if reached else end
     for j in range(last + 1):

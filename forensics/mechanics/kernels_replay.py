@@ -7,8 +7,8 @@ from typing import NamedTuple
 import numpy as np
 from numba import njit
 
-from forensics.mechanics.kernels_judge import Criteria, next_state, thresholds
-from forensics.mechanics.kernels_march import Array, Hole, Pipe, top_element
+from forensics.mechanics.kernels_judge import Setting, next_state, thresholds
+from forensics.mechanics.kernels_march import Array, top_element
 from forensics.mechanics.kernels_memory import (
     FREE,
     ROTATING,
@@ -24,6 +24,11 @@ from forensics.mechanics.kernels_memory import (
 
 HOLD, TURN, SLIDE = 0, 1, 2  # what a sample lets the string do
 BY_HOOKLOAD, BY_MEMORY, BY_RATE, BY_PRESSURE = 0, 1, 2, 3  # what the bit load rests on
+MODE, WAY, HOOK, REACH, AT, TOP = range(6)  # columns of `Run.now`
+
+SAME = 0.2  # of the dead band: a string that moves as a whole is not marched again for less
+ARRIVED = 4.0  # dead bands the hookload must rise, block not raised, to show that the bit's front is here
+OVER_STRETCH, OVER_LENGTH = 1.3, 0.3  # travel beyond stretch, and [m], that shows a clear bit to be moving
 
 
 class Samples(NamedTuple):
@@ -61,7 +66,7 @@ class Rules(NamedTuple):
 
 
 class Found(NamedTuple):
-    """What the replay writes, row by row; arrays of shape (n,), the map (times, depths)."""
+    """What the replay writes, row by row; arrays of shape (n,), `span` (n, 4), `chart` (times, depths)."""
 
     bit_load: Array
     ratio: Array
@@ -77,23 +82,38 @@ class Found(NamedTuple):
     chart_row: Array
 
 
+class Run(NamedTuple):
+    """One replay: samples in, results out, and what is carried from row to row.
+
+    `now` holds what the string is doing (`FREE`, +1 or -1 sliding as a whole, `ROTATING`), the last
+    direction, the last hookload taken [N], how near the bit surface motion has come [m above it], and
+    depth index and top element of the last row (-1 before the first).
+    """
+
+    samples: Samples
+    rules: Rules
+    found: Found
+    memory: Memory
+    now: Array
+    chart_step: float
+
+
 @njit(cache=True, error_model="numpy")
-def judge(
-    pipe: Pipe, criteria: Criteria, memory: Memory, place: Place, found: Found, t: int, chart_step: float
-) -> None:
+def judge(setting: Setting, run: Run, place: Place, t: int) -> None:
     """Judge every compressed element, move its state on, and write the row's peaks."""
+    pipe, memory, found = setting.pipe, run.memory, run.found
     best, best_md, best_load, worst = 0.0, np.nan, 0.0, 0
     top, bottom, helix_top, helix_bottom = np.nan, np.nan, np.nan, np.nan
     for j in range(place.top + 1):
-        end = min(pipe.x[j + 1], place.bit)
         tension = 0.5 * (memory.tension[j] + memory.tension[j + 1])
         if tension >= 0.0:
             memory.state[j] = 0
             continue
         i = max(place.first - ((pipe.node[j] + pipe.node[j + 1]) >> 1), 0)
-        levels = thresholds(pipe, criteria, j, i, tension, place.scale)
-        now = next_state(memory.state[j], -tension, levels, criteria.envelope)
+        levels = thresholds(setting, j, i, tension, place.scale)
+        now = next_state(memory.state[j], -tension, levels, setting.criteria.envelope)
         memory.state[j] = now
+        end = min(pipe.x[j + 1], place.bit)
         md = place.bit - 0.5 * (pipe.x[j] + end)
         ratio = -tension / levels[1]
         if ratio > best:
@@ -105,202 +125,199 @@ def judge(
             if now == 2:
                 helix_bottom = place.bit - pipe.x[j] if np.isnan(helix_bottom) else helix_bottom
                 helix_top = place.bit - end
-        column = int(md / chart_step)
-        if found.chart[found.chart_row[t], column] < ratio:
-            found.chart[found.chart_row[t], column] = ratio
+        column = int(md / run.chart_step)
+        found.chart[found.chart_row[t], column] = max(found.chart[found.chart_row[t], column], ratio)
     found.ratio[t], found.ratio_md[t], found.compression[t], found.state[t] = best, best_md, best_load, worst
     found.span[t, 0], found.span[t, 1] = top, bottom
     found.span[t, 2], found.span[t, 3] = helix_top, helix_bottom
 
 
 @njit(cache=True, error_model="numpy")
-def turning(
-    hole: Hole, pipe: Pipe, criteria: Criteria, mu: Array, memory: Memory, place: Place, samples: Samples, t: int
-) -> None:
+def turning(setting: Setting, run: Run, place: Place, t: int) -> None:
     """Profile of a turning string: nearly frictionless, free at the bit or hung from the hookload."""
-    share = samples.share[t]
-    sigma = 1.0 if share >= 0.0 else -1.0
-    if samples.free[t]:
-        model = rise(hole, pipe, criteria, mu, memory, place, sigma, abs(share), 0.0, False)
-        anchor(memory, place, model, model)
+    rub = run.samples.share[t]
+    if run.samples.free[t]:
+        model = rise(setting, run.memory, place, rub, 0.0, False)
+        anchor(run.memory, place, model, model)
     else:
-        march_down(hole, pipe, criteria, mu, memory, place, sigma, abs(share), samples.top[t], False)
+        march_down(setting, run.memory, place, rub, run.samples.top[t], False)
+
+
+@njit(cache=True)
+def friction_of(samples: Samples, t: int, sigma: float) -> float:
+    """Local multiple of friction, signed as the motion is."""
+    return samples.down[t] if sigma > 0.0 else -samples.up[t]
 
 
 @njit(cache=True, error_model="numpy")
-def whole_slide(
-    hole: Hole, pipe: Pipe, criteria: Criteria, mu: Array, memory: Memory, place: Place, samples: Samples, t: int,
-    sigma: float,
-) -> None:
+def whole_slide(setting: Setting, run: Run, place: Place, t: int, sigma: float) -> None:
     """Profile of a string that slides as a whole in one direction."""
-    factor = samples.down[t] if sigma > 0 else samples.up[t]
-    if samples.free[t]:
-        model = rise(hole, pipe, criteria, mu, memory, place, sigma, factor, 0.0, True)
-        anchor(memory, place, samples.top[t], model)
+    rub = friction_of(run.samples, t, sigma)
+    if run.samples.free[t]:
+        model = rise(setting, run.memory, place, rub, 0.0, True)
+        anchor(run.memory, place, run.samples.top[t], model)
     else:
-        march_down(hole, pipe, criteria, mu, memory, place, sigma, factor, samples.top[t], False)
+        march_down(setting, run.memory, place, rub, run.samples.top[t], False)
 
 
 @njit(cache=True, error_model="numpy")
-def all_moving(
-    hole: Hole, pipe: Pipe, criteria: Criteria, mu: Array, memory: Memory, place: Place, samples: Samples, t: int, rules: Rules,
-    found: Found,
-) -> bool:
+def all_moving(setting: Setting, run: Run, place: Place, t: int) -> bool:
     """Whether a bit clear of bottom must be moving: the block has gone further than the string can stretch.
 
-    A hookload well below the model's slack-off weight is not taken for it: that string may be held.
+    A hookload well below the model's slack-off weight, or above its pick-up weight, is not taken for it:
+    that string may be held.
     """
+    samples, memory = run.samples, run.memory
     sigma = float(samples.direction[t])
-    factor = samples.down[t] if sigma > 0 else samples.up[t]
-    model = rise(hole, pipe, criteria, mu, memory, place, sigma, factor, 0.0, True)
-    found.stretch[t] = abs(stretch_between(pipe, memory.reversal, memory.work, place))
-    if samples.travel[t] < 1.3 * found.stretch[t] + 0.3:
+    model = rise(setting, memory, place, friction_of(samples, t, sigma), 0.0, True)
+    stretch = abs(stretch_between(setting.pipe, memory.reversal, memory.work, place))
+    run.found.stretch[t] = stretch
+    if samples.travel[t] < OVER_STRETCH * stretch + OVER_LENGTH:
         return False
-    return (samples.top[t] - model) * sigma > -rules.tolerance
+    return (samples.top[t] - model) * sigma > -run.rules.tolerance
 
 
 @njit(cache=True, error_model="numpy")
-def sliding(
-    hole: Hole, pipe: Pipe, criteria: Criteria, mu: Array, memory: Memory, place: Place, samples: Samples, t: int,
-    rules: Rules, found: Found, now: Array,
-) -> None:
-    """Move a string that does not turn; `now` holds mode, last direction, last hookload, reach above the bit."""
-    direction = samples.direction[t]
-    if now[0] == ROTATING:
-        now[0] = FREE
-        now[1] = 0.0
-    if direction != 0 and direction != now[1]:
-        memory.reversal[: place.top + 2] = memory.tension[: place.top + 2]
-        now[1] = direction
-        now[3] = place.bit
-        if now[0] != direction:
-            now[0] = FREE
-    top = samples.top[t]
-    if now[0] == FREE:
+def sliding(setting: Setting, run: Run, place: Place, t: int) -> None:
+    """Move a string that does not turn: a front from the surface, or the whole string once it is through."""
+    samples, now, band = run.samples, run.now, run.rules.band
+    direction, top = samples.direction[t], samples.top[t]
+    if now[MODE] == ROTATING:
+        now[MODE], now[WAY] = FREE, 0.0
+    if direction != 0 and direction != now[WAY]:
+        run.memory.reversal[: place.top + 2] = run.memory.tension[: place.top + 2]
+        now[WAY], now[REACH] = direction, place.bit
+        if now[MODE] != direction:
+            now[MODE] = FREE
+    if now[MODE] == FREE:
         sigma = float(direction)
-        factor = samples.down[t] if direction > 0 else samples.up[t]
-        beyond = (now[2] - top) * sigma
-        if direction != 0 and beyond > rules.band:
-            node = march_down(hole, pipe, criteria, mu, memory, place, sigma, factor, top, True)
-            now[2] = top
-            now[3] = min(now[3], pipe.x[node])
+        if direction != 0 and (now[HOOK] - top) * sigma > band:
+            rub = friction_of(samples, t, sigma)
+            node = march_down(setting, run.memory, place, rub, top, True)
+            now[HOOK] = top
+            now[REACH] = min(now[REACH], setting.pipe.x[node])
             if node == 0:
-                now[0] = direction
-        elif samples.drilling[t] and direction >= 0 and top - now[2] > 4.0 * rules.band:
-            now[0] = 1.0
-        if now[0] == FREE and samples.free[t] and direction != 0:
-            if all_moving(hole, pipe, criteria, mu, memory, place, samples, t, rules, found):
-                now[0] = direction
-    if now[0] != FREE:
-        whole_slide(hole, pipe, criteria, mu, memory, place, samples, t, now[0])
-        now[2] = top
-        now[3] = 0.0
+                now[MODE] = sigma
+        elif samples.drilling[t] and direction >= 0 and top - now[HOOK] > ARRIVED * band:
+            now[MODE] = 1.0
+        if now[MODE] == FREE and direction != 0 and samples.free[t] and all_moving(setting, run, place, t):
+            now[MODE] = sigma
+    if now[MODE] != FREE:
+        whole_slide(setting, run, place, t, now[MODE])
+        now[HOOK], now[REACH] = top, 0.0
 
 
 @njit(cache=True, error_model="numpy")
-def drilling_off(
-    hole: Hole, pipe: Pipe, criteria: Criteria, mu: Array, memory: Memory, place: Place, samples: Samples, t: int, rules: Rules,
-    now: Array,
-) -> int:
+def drilling_off(setting: Setting, run: Run, place: Place, t: int) -> int:
     """Let the bit unload the string from below; returns what the bit load then rests on."""
+    samples, memory, rules = run.samples, run.memory, run.rules
     load = -memory.tension[0]
+    rub = samples.down[t]
     witness = samples.witness[t]
-    factor = mu * samples.down[t]
     if not np.isnan(witness):
         if load - witness > rules.band:
-            _, end = bit_curve(hole, pipe, criteria, factor, memory, place, -max(witness, 0.0), np.inf)
+            _, end = bit_curve(setting, memory, place, rub, -max(witness, 0.0), np.inf)
             last = place.top if end < 0 else end
             memory.tension[: last + 1] = memory.work[: last + 1]
             if end < 0:
-                now[0] = 1.0
+                run.now[MODE] = 1.0
         return BY_PRESSURE
     if rules.rate <= 0.0 or load <= 0.0:
         return BY_MEMORY
     drilled = rules.rate * load**rules.exponent * samples.step[t]
-    if bit_front(hole, pipe, criteria, factor, memory, place, drilled):
-        now[0] = 1.0
+    if bit_front(setting, memory, place, rub, drilled):
+        run.now[MODE] = 1.0
     return BY_RATE
 
 
-@njit(cache=True, error_model="numpy")
-def replay_rows(
-    hole: Hole, pipe: Pipe, criteria: Criteria, mu: Array, memory: Memory, samples: Samples, rules: Rules,
-    found: Found, chart_step: float, now: Array,
-) -> int:
-    """Replay rows in order, the memory moved on from row to row; returns the number of stations visited.
-
-    `memory` and `now` (mode, last direction, last hookload, reach above the bit, last depth index, last
-    top element) are changed in place: called again with later rows it goes on where it stopped. A fresh
-    start has -1 for the last two.
-    """
-    visits = 0
-    last_first, last_top = int(now[4]), int(now[5])
-    for t in range(len(samples.bit)):
-        bit = samples.bit[t]
-        top = top_element(pipe.x, bit)
-        place = Place(bit, top, int(bit * hole.inv_step + 0.5), samples.scale[t])
-        if last_top < 0:
-            model = rise(hole, pipe, criteria, mu, memory, place, 0.0, 0.0, 0.0, False)
-            anchor(memory, place, model, model)
-            now[2] = model
-        elif top > last_top:
-            for j in range(last_top + 1, top + 1):
-                i = max(place.first - pipe.node[j], 0)
-                step = pipe.x[j + 1] - pipe.x[j]
-                memory.tension[j + 1] = memory.tension[j] + pipe.weight[j] * place.scale * hole.cos_i[i] * step
-                memory.reversal[j + 1] = memory.tension[j + 1]
-                memory.state[j] = 0
-        mode = samples.mode[t]
-        if still_the_same(samples, rules, t, now, place.first):
-            copy_row(found, t)
-            continue
-        basis = BY_MEMORY
-        if mode == TURN:
-            turning(hole, pipe, criteria, mu, memory, place, samples, t)
-            now[0], now[2], now[3] = ROTATING, samples.top[t], 0.0
-            basis = BY_HOOKLOAD
-        elif mode == SLIDE:
-            sliding(hole, pipe, criteria, mu, memory, place, samples, t, rules, found, now)
-            if now[0] != FREE:
-                basis = BY_HOOKLOAD
-            elif samples.drilling[t]:
-                basis = drilling_off(hole, pipe, criteria, mu, memory, place, samples, t, rules, now)
-        elif mode == HOLD:
-            now[0] = FREE
-            now[1] = 0.0
-        if mode == HOLD and t > 0 and place.first == last_first:
-            copy_row(found, t)
-        else:
-            judge(pipe, criteria, memory, place, found, t, chart_step)
-        visits += top + 1
-        last_first, last_top = place.first, top
-        now[4], now[5] = last_first, last_top
-        found.bit_load[t] = max(-memory.tension[0], 0.0)
-        found.reach[t] = bit - now[3]
-        found.basis[t] = basis
-        found.full[t] = int(now[0])
-    return visits
+@njit(cache=True)
+def lengthen(setting: Setting, run: Run, place: Place) -> None:
+    """Give pipe new below the rotary its tension: it hangs on what is below."""
+    pipe, memory = setting.pipe, run.memory
+    last = int(run.now[TOP])
+    if last < 0:
+        model = rise(setting, memory, place, 0.0, 0.0, False)
+        anchor(memory, place, model, model)
+        run.now[HOOK], run.now[REACH] = model, place.bit
+    for j in range(last + 1, place.top + 1):
+        if last < 0:
+            break
+        i = max(place.first - pipe.node[j], 0)
+        weight = pipe.weight[j] * place.scale * setting.hole.cos_i[i]
+        memory.tension[j + 1] = memory.tension[j] + weight * (pipe.x[j + 1] - pipe.x[j])
+        memory.reversal[j + 1] = memory.tension[j + 1]
+        memory.state[j] = 0
 
 
 @njit(cache=True)
-def still_the_same(samples: Samples, rules: Rules, t: int, now: Array, first: int) -> bool:
-    """Whether a string that moves as a whole hangs as it did: same place, mode and, within a fifth of the dead band, hookload."""
-    if t == 0 or now[0] == FREE or samples.mode[t] != samples.mode[t - 1] or first != int(now[4]):
+def still_the_same(run: Run, t: int, first: int) -> bool:
+    """Whether a string that moves as a whole hangs as it did: same place, mode and nearly same hookload."""
+    samples, now = run.samples, run.now
+    if t == 0 or now[MODE] == FREE or samples.mode[t] != samples.mode[t - 1] or first != int(now[AT]):
         return False
     if samples.free[t] != samples.free[t - 1] or samples.direction[t] != samples.direction[t - 1]:
         return False
-    return abs(samples.top[t] - now[2]) < 0.2 * rules.band
+    return abs(samples.top[t] - now[HOOK]) < SAME * run.rules.band
 
 
 @njit(cache=True)
 def copy_row(found: Found, t: int) -> None:
-    """Nothing changed: the row's peaks are those of the row before."""
+    """Nothing changed: the row's results are those of the row before."""
+    found.bit_load[t] = found.bit_load[t - 1]
     found.ratio[t] = found.ratio[t - 1]
     found.ratio_md[t] = found.ratio_md[t - 1]
     found.compression[t] = found.compression[t - 1]
     found.state[t] = found.state[t - 1]
     found.span[t] = found.span[t - 1]
-    found.bit_load[t] = found.bit_load[t - 1]
     found.reach[t] = found.reach[t - 1]
     found.basis[t] = found.basis[t - 1]
     found.full[t] = found.full[t - 1]
+
+
+@njit(cache=True, error_model="numpy")
+def move(setting: Setting, run: Run, place: Place, t: int) -> int:
+    """Move the profile on to row `t`; returns what the bit load rests on."""
+    mode, now = run.samples.mode[t], run.now
+    if mode == TURN:
+        turning(setting, run, place, t)
+        now[MODE], now[HOOK], now[REACH] = ROTATING, run.samples.top[t], 0.0
+        return BY_HOOKLOAD
+    if mode == HOLD:
+        now[MODE], now[WAY] = FREE, 0.0
+        return BY_MEMORY
+    sliding(setting, run, place, t)
+    if now[MODE] != FREE:
+        return BY_HOOKLOAD
+    return drilling_off(setting, run, place, t) if run.samples.drilling[t] else BY_MEMORY
+
+
+@njit(cache=True, error_model="numpy")
+def replay_rows(setting: Setting, run: Run) -> int:
+    """Replay rows in order, the memory moved on from row to row; returns the number of stations visited.
+
+    `run.memory` and `run.now` are changed in place: called again with later rows, the replay goes on
+    where it stopped.
+    """
+    visits = 0
+    samples, found, now = run.samples, run.found, run.now
+    for t in range(len(samples.bit)):
+        bit = samples.bit[t]
+        top = top_element(setting.pipe.x, bit)
+        place = Place(bit, top, int(bit * setting.hole.inv_step + 0.5), samples.scale[t])
+        lengthen(setting, run, place)
+        if still_the_same(run, t, place.first):
+            copy_row(found, t)
+            now[TOP] = top
+            continue
+        found.basis[t] = move(setting, run, place, t)
+        held = samples.mode[t] == HOLD and t > 0 and place.first == int(now[AT])
+        if held:
+            copy_row(found, t)
+        else:
+            judge(setting, run, place, t)
+            visits += top + 1
+        now[AT], now[TOP] = place.first, top
+        found.bit_load[t] = max(-run.memory.tension[0], 0.0)
+        found.reach[t] = bit - now[REACH]
+        found.full[t] = int(now[MODE])
+    return visits

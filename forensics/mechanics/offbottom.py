@@ -71,10 +71,9 @@ class OffBottomModel:
         """
         bits = np.atleast_1d(np.asarray(bit_depth, dtype=float))
         scales = np.broadcast_to(np.asarray(scale, dtype=float), bits.shape).copy()
-        sigma = np.full(bits.shape, SIGMA[kind])
         mu = self.friction(cased, open_hole)
         return kernels.march_up_many(
-            self.hole_arrays, self.pipe_arrays, mu, bits, sigma, self.helical_multiple, scales
+            self.hole_arrays, self.pipe_arrays, mu, bits, scales, (SIGMA[kind], float(self.helical_multiple))
         )
 
     def torque(self, bit_depth: ArrayLike, factor: float, scale: ArrayLike = 1.0) -> Floats:

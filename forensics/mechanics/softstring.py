@@ -6,7 +6,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics.mechanics.grid import HoleGrid, PipeGrid
-from forensics.mechanics.kernels_march import Hole, Pipe, march_up, torque_up
+from forensics.mechanics.kernels_march import Ask, Hole, Pipe, march_up, torque_up
 
 Floats = NDArray[np.float64]
 
@@ -54,10 +54,8 @@ def tension_from_bit(
     """
     out = np.empty(len(pipe.x))
     mu = np.ascontiguousarray(friction, dtype=float)
-    march_up(
-        hole_arrays(hole), pipe_arrays(pipe), mu, float(bit_depth), float(sigma), float(tension_bit),
-        np.inf, out, 1.0,
-    )
+    ask = Ask(float(bit_depth), float(sigma), float(tension_bit), np.inf, 1.0)
+    march_up(hole_arrays(hole), pipe_arrays(pipe), mu, ask, out)
     nodes = int(np.searchsorted(pipe.x, bit_depth)) + 1
     return np.maximum(bit_depth - pipe.x[:nodes], 0.0), out[:nodes]
 
@@ -70,4 +68,5 @@ def torque_from_bit(
     Parameters are those of `tension_from_bit`; axial friction is taken as spent on rotation.
     """
     mu = np.ascontiguousarray(friction, dtype=float)
-    return float(torque_up(hole_arrays(hole), pipe_arrays(pipe), mu, float(bit_depth), float(tension_bit), 1.0))
+    arrays = hole_arrays(hole), pipe_arrays(pipe)
+    return float(torque_up(*arrays, mu, float(bit_depth), float(tension_bit), 1.0))

@@ -59,7 +59,7 @@ def _band(kind: str, depth: Floats, calibration: Calibration, model: LoadModel) 
 def drag_lines(
     prepared: Prepared, rig: RigView, calibration: Calibration, model: LoadModel, moving: NDArray[np.int8]
 ) -> tuple[Floats, Floats]:
-    """Expected hookload off bottom and measured less expected [N]; NaN where no line applies.
+    """Give the hookload expected off bottom and measured less expected [N]; NaN where no line applies.
 
     Parameters
     ----------
@@ -89,7 +89,12 @@ def drag_lines(
 
 
 def torque_lines(
-    log: TimeLog, prepared: Prepared, rig: RigView, calibration: Calibration, model: LoadModel, bit_load: Floats
+    log: TimeLog,
+    prepared: Prepared,
+    rig: RigView,
+    calibration: Calibration,
+    model: LoadModel,
+    bit_load: Floats,
 ) -> Floats:
     """Surface torque measured less expected [N.m], while turning; NaN elsewhere.
 

@@ -68,7 +68,7 @@ def string_part(readings: list[Reading], calibration: Calibration, model: LoadMo
 def _shifts(
     readings: list[Reading], calibration: Calibration, model: LoadModel
 ) -> tuple[Floats, Floats]:
-    """Times and weight shifts of the rotating readings."""
+    """Find times and weight shifts of the rotating readings."""
     if not readings:
         return np.empty(0), np.empty(0)
     depth = np.array([r.bit_depth for r in readings])
@@ -97,7 +97,7 @@ def _multiples(
 
 
 def _carry(time: Floats, at: Floats, values: Floats, default: float) -> Floats:
-    """Readings carried along time, lightly smoothed by a running median of three."""
+    """Carry readings along time, lightly smoothed by a running median of three."""
     if len(at) == 0:
         return np.full(len(time), default)
     order = np.argsort(at, kind="stable")

@@ -57,9 +57,17 @@ def _criteria(well: Well, model: OffBottomModel, settings: CriteriaSettings) -> 
     with np.errstate(divide="ignore"):
         log_unit = np.log(pipe.ei[first][:, None] / along) / 3.0
     return Criteria(
-        kind=kind.astype(np.int64), a=a, b=b, c=c, root=root, cube=np.cbrt(pipe.ei[first][:, None] * along**2),
-        log_unit=log_unit, log_run=np.log(pipe.stiff_run), onset=float(HELICAL_ONSETS[settings.helical_onset].factor),
-        envelope=int(settings.helical_release == "envelope"), table=load_table().as_tuple(),
+        kind=kind.astype(np.int64),
+        a=a,
+        b=b,
+        c=c,
+        root=root,
+        cube=np.cbrt(pipe.ei[first][:, None] * along**2),
+        log_unit=log_unit,
+        log_run=np.log(pipe.stiff_run),
+        onset=float(HELICAL_ONSETS[settings.helical_onset].factor),
+        envelope=int(settings.helical_release == "envelope"),
+        table=load_table().as_tuple(),
     )
 
 

@@ -86,7 +86,7 @@ def _mode(log: TimeLog, rig: RigView) -> NDArray[np.int8]:
 
 
 def _smooth(values: Floats, good: NDArray[np.bool_], interval: float) -> Floats:
-    """Moving median over the good samples, each run of them padded by its own end values."""
+    """Take the moving median over the good samples, gaps filled from the nearest."""
     filled = np.where(good, values, np.nan)
     rows = np.flatnonzero(np.isfinite(filled))
     if len(rows) == 0:
@@ -154,11 +154,10 @@ def _reversals(
                 turn = here
             elif here - turn > threshold:
                 way, start, turn = -1, turn, here
-        else:
-            if here > turn:
-                turn = here
-            elif turn - here > threshold:
-                way, start, turn = 1, turn, here
+        elif here > turn:
+            turn = here
+        elif turn - here > threshold:
+            way, start, turn = 1, turn, here
         direction[t] = way
         travel[t] = abs(turn - start)
     return direction, travel

@@ -6,7 +6,7 @@ import numpy as np
 from numba import njit
 from numpy.typing import NDArray
 
-from forensics.mechanics.kernels_march import Array, Hole, Pipe, march_up
+from forensics.mechanics.kernels_march import Array, Ask, Hole, Pipe, march_up
 from forensics.mechanics.kernels_replay import SLIDE, Found
 from forensics.replay.model import LoadModel
 from forensics.replay.samples import Prepared
@@ -15,12 +15,13 @@ Floats = NDArray[np.float64]
 
 
 @njit(cache=True)
-def _top_many(hole: Hole, pipe: Pipe, mu: Array, bits: Array, loads: Array, factor: Array, scale: Array) -> Array:
+def _top_many(hole: Hole, pipe: Pipe, mu: Array, rows: tuple[Array, Array, Array, Array]) -> Array:
     """Tension at the rotary of a string sliding down on a loaded bit, without helical contact [N]."""
+    bits, loads, factor, scale = rows
     result = np.empty(len(bits))
     work = np.empty(len(pipe.x))
     for k in range(len(bits)):
-        result[k] = march_up(hole, pipe, mu * factor[k], bits[k], 1.0, -loads[k], np.inf, work, scale[k])
+        result[k] = march_up(hole, pipe, mu * factor[k], Ask(bits[k], 1.0, -loads[k], np.inf, scale[k]), work)
     return result
 
 
@@ -37,9 +38,8 @@ def straight_drag(
     if len(rows) == 0:
         return ordinary
     hole, pipe = model.offbottom.hole_arrays, model.offbottom.pipe_arrays
-    args = (samples.bit[rows], found.bit_load[rows])
-    scale = samples.scale[rows]
-    sliding = _top_many(hole, pipe, model.friction(*factors), *args, samples.down[rows], scale)
-    still = _top_many(hole, pipe, np.zeros(len(hole.cos_i)), *args, samples.down[rows], scale)
+    chosen = (samples.bit[rows], found.bit_load[rows], samples.down[rows], samples.scale[rows])
+    sliding = _top_many(hole, pipe, model.friction(*factors), chosen)
+    still = _top_many(hole, pipe, np.zeros(len(hole.cos_i)), chosen)
     ordinary[rows] = np.minimum(still - sliding, lost[rows])
     return ordinary

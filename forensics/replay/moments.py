@@ -1,0 +1,62 @@
+"""The load profile along the hole at chosen moments."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+import numpy as np
+
+from forensics.loads import Profile
+from forensics.mechanics.kernels_judge import Setting, thresholds
+from forensics.mechanics.kernels_march import contact
+from forensics.mechanics.kernels_memory import Memory
+from forensics.replay.model import factors
+from forensics.replay.room import fresh, go, restart, setting, take
+from forensics.replay.run import Replay
+
+
+def profiles(run: Replay, rows: Sequence[int]) -> tuple[Profile, ...]:
+    """Axial load along the hole at the given rows of the log, in the order given."""
+    cased, open_hole = factors(run.calibration)
+    at = setting(run.model, cased, open_hole)
+    taken: dict[int, Profile] = {}
+    carried = fresh(run.model)
+    done = 0
+    for row in sorted(set(rows)):
+        start = max(restart(run.prepared.samples.mode, row), done)
+        if start > done:
+            carried = fresh(run.model)
+        go(at, take(run.prepared.samples, slice(start, row + 1)), run.rules, carried)
+        done = row + 1
+        taken[row] = _profile(run, at, carried[0], row)
+    return tuple(taken[row] for row in rows)
+
+
+def _profile(run: Replay, at: Setting, memory: Memory, row: int) -> Profile:
+    """Read the profile that the memory holds, with the thresholds at it."""
+    hole, pipe = at.hole, at.pipe
+    bit = float(run.prepared.samples.bit[row])
+    scale = float(run.prepared.samples.scale[row])
+    top = int(np.searchsorted(pipe.x, bit) - 1)
+    rows = np.arange(max(min(top, len(pipe.x) - 2), 0) + 1)
+    middle = 0.5 * (memory.tension[rows] + memory.tension[rows + 1])
+    first = int(bit * hole.inv_step + 0.5)
+    index = np.maximum(first - ((pipe.node[rows] + pipe.node[rows + 1]) >> 1), 0)
+    levels = np.array(
+        [thresholds(at, int(j), int(i), float(t), scale) for j, i, t in zip(rows, index, middle, strict=True)]
+    )
+    levels[~np.isfinite(levels)] = np.nan
+    force = np.array(
+        [
+            contact(float(t), float(pipe.weight[j]) * scale, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i])
+            for j, i, t in zip(rows, index, middle, strict=True)
+        ]
+    )
+    gap = 0.5 * (hole.diameter[index] - pipe.clearance_od[rows])
+    helical = memory.state[rows] == 2
+    force[helical] += (gap * middle**2 / (4.0 * pipe.ei[rows]))[helical]
+    ends = np.minimum(pipe.x[rows + 1], bit)
+    return Profile(
+        row=row, time=float(run.log.time[row]), md=bit - 0.5 * (pipe.x[rows] + ends), tension=middle,
+        sinusoidal=levels[:, 1], helical=levels[:, 2], contact=force, state=memory.state[rows].copy(),
+    )
