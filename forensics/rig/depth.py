@@ -21,6 +21,7 @@ _NEAR = 1.0
 _LEAST_STRETCH_LOAD = 100e3
 # Kinds of pipe that are run into a hole already drilled.
 _RUN_IN = frozenset({"casing", "liner", "tubing"})
+_DRILLS = frozenset({"bit", "motor", "reamer"})
 
 
 @dataclass(frozen=True)
@@ -105,8 +106,9 @@ def _is_the_bit(hole: Floats, signals: Signals) -> bool:
 
 
 def _is_run_in(well: Well) -> bool:
-    lowest = [part.kind for part in well.string.components[:8]]
-    return any(kind in _RUN_IN for kind in lowest)
+    """Tell whether the string is pipe run into a hole already drilled, with nothing on it that drills."""
+    kinds = {part.kind for part in well.string.components}
+    return bool(kinds & _RUN_IN) and not kinds & _DRILLS
 
 
 def _usual_gap(raw: Floats, drilled: Bools) -> float:

@@ -81,7 +81,7 @@ def _turning(log: TimeLog, signals: Signals, slips: Bools) -> tuple[Bools, Bools
     turning = nothing if rpm is None else _spins(noise.fill(rpm))
     if not unknown.any():
         return turning, unknown, ()
-    gap = "no rotary speed in the log" if rpm is None else "rotary speed is missing for a time"
+    gap = "No rotary speed in the log" if rpm is None else "Rotary speed is missing for a time"
     if torque is None:
         return turning & ~unknown, unknown, (f"{gap} and no torque: rotation there can't be told.",)
     turning = np.where(unknown, _twists(torque, signals, slips), turning)
@@ -112,13 +112,13 @@ def _pumping(log: TimeLog, signals: Signals) -> tuple[Bools, Bools, float, tuple
         runs = noise.running_median(noise.fill(flow), noise.LEAST_SAMPLES) > PUMPING_SHARE * usual
     if not unknown.any():
         return runs, unknown, usual, ()
-    gap = "no flow in the log" if flow is None else "flow is missing for a time"
+    gap = "No flow in the log" if flow is None else "Flow is missing for a time"
     if pressure is None:
         return (
             runs & ~unknown,
             unknown,
             usual,
-            (f"{gap} and no standpipe pressure: pumping there can't be told.",),
+            (f"{gap} and no standpipe pressure: pumping there shows only by a bit on bottom.",),
         )
     level = usual_level(pressure, signals.noise.get("standpipe_pressure", 0.0))
     pressed = noise.running_median(noise.fill(pressure), noise.LEAST_SAMPLES) > _PRESSURE_SHARE * level

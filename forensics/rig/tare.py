@@ -6,6 +6,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from forensics.estimate import Estimate
 from forensics.logs.table import TimeLog
 from forensics.rig import noise
 from forensics.rig.noise import Bools, Floats
@@ -21,6 +22,8 @@ _PAIR_TIME = 3600.0
 _LEAST_PAIRS = 5
 # Fewer readings with pumps on than this, and those without serve as well.
 _LEAST_PUMPED = 3
+# Weights of pipe and mud are known to about this share (one standard deviation).
+_MODEL_SHARE = 0.007
 # Differential pressure: averaged over this [s]; load shows above this [Pa] and so many wanders of its zero.
 _ZERO_TIME = 9.0
 _LEAST_PRESSURE = 5e4
@@ -114,6 +117,27 @@ def build_reference(kind: str, steady: Steady, base: Floats, signals: Signals) -
     scatter = 1.4826 * float(np.median(np.abs(raw - offset))) if len(raw) >= 3 else 0.0
     carried = np.interp(signals.time, signals.time[middle], offset)
     return Reference(base + carried, chosen, offset, scatter)
+
+
+def modelled_reference(empty: Reference, base: Floats, block_weight: Estimate) -> Reference:
+    """Stand in for a rotating reference without readings: block weight and modelled string weight.
+
+    Parameters
+    ----------
+    empty : Reference
+        The reference without readings.
+    base : ndarray, shape (n,)
+        Modelled weight that follows depth and block height [N].
+    block_weight : Estimate
+        [N]
+
+    Returns
+    -------
+    Reference
+        Its scatter is what the weights of pipe and mud leave open.
+    """
+    weight = base + block_weight.value
+    return Reference(weight, empty.readings, empty.offset, _MODEL_SHARE * float(np.median(base)))
 
 
 def weight_on_bit(reference: Reference, hookload: Floats, rows: Bools) -> Floats:

@@ -2,70 +2,29 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from dataclasses import replace
 
 import numpy as np
-from numpy.typing import NDArray
 
 from forensics.case import Case
 from forensics.estimate import Estimate
 from forensics.logs.table import TimeLog
-from forensics.rig import noise
-from forensics.rig.activity import (
-    SMOOTHING,
-    Surface,
-    bottom_evidence,
-    classify,
-    on_bottom_from,
-    refine_activity,
-)
+from forensics.rig.activity import classify, on_bottom_from, refine_activity
 from forensics.rig.block import Slips, block_weight, fill_block, find_slips
-from forensics.rig.depth import DepthView, find_depths
-from forensics.rig.drives import Drives, find_drives
-from forensics.rig.noise import Bools, Floats
+from forensics.rig.depth import find_depths
+from forensics.rig.drives import find_drives
+from forensics.rig.judge import Facts, Judged, Moves, judge_bottom
+from forensics.rig.noise import Floats
 from forensics.rig.sheaves import hook_factor
 from forensics.rig.signals import Signals, block_speed, direction_of, read_signals
-from forensics.rig.steady import Motion, Steady, find_steady
-from forensics.rig.tare import (
-    Reference,
-    build_reference,
-    hanging_share,
-    list_tares,
-    rezero_pressure,
-    stand_spans,
-    weight_on_bit,
-)
+from forensics.rig.tare import list_tares, modelled_reference, stand_spans, weight_on_bit
 from forensics.rig.view import RigView
-from forensics.units import G
 from forensics.well.model import Well
 
 __all__ = ["refine_activity", "understand_rig"]
 
-_COMMON_RPM = 60.0
 # Spacing of the depths at which the string is weighed [m].
 _WEIGH_STEP = 5.0
-# Off bottom by at least this much, tried in turn until readings turn up, as shares of `near`.
-_CLEARANCES = (1.0, 0.4, 0.15)
-
-
-@dataclass(frozen=True)
-class _Moves:
-    """Block and hookload once slips are known; arrays of shape (n,)."""
-
-    hookload: Floats
-    speed: Floats
-    direction: NDArray[np.int8]
-    block: Floats
-    slips: Bools
-
-
-@dataclass(frozen=True)
-class _Judged:
-    """Where the bit was and the references that say so."""
-
-    vote: NDArray[np.int8]
-    steady: Steady
-    references: tuple[Reference, Reference, Reference]
 
 
 def understand_rig(log: TimeLog, well: Well, case: Case) -> RigView:
@@ -88,36 +47,22 @@ def understand_rig(log: TimeLog, well: Well, case: Case) -> RigView:
     signals = read_signals(log)
     below = weigh(well, signals.bit)
     slips = find_slips(log, signals, below)
-    moves = _moves(signals, slips, case)
-    drives = find_drives(log, signals, slips.rows)
-    depths = find_depths(log, signals, well, slips.rows)
-    judged = _judge(log, well, signals, moves, drives, depths)
-    weight = block_weight(slips, signals, moves.hookload, case.rig)
-    view = RigView(
-        block_weight=weight or _from_readings(judged, moves, below, depths),
-        hookload=np.where(np.isfinite(log.values["hookload"]), moves.hookload, np.nan),
-        slips=slips.rows,
-        turning=drives.turning,
-        pumping=drives.pumping,
-        on_bottom=on_bottom_from(judged.vote),
-        direction=moves.direction,
-        block=moves.block,
-        hole_depth=depths.hole,
-        activity=np.zeros(len(log), dtype=np.int8),
-        wob_surface=np.zeros(0),
-        wob_slack_off=np.zeros(0),
-        noise=signals.noise,
-        usual_flow=drives.usual_flow,
-        bottom_vote=judged.vote,
-        steady=judged.steady,
+    facts = Facts(
+        log=log,
+        well=well,
+        signals=signals,
+        moves=_moves(signals, slips, case),
+        drives=find_drives(log, signals, slips.rows),
+        depths=find_depths(log, signals, well, slips.rows),
+        below=below,
     )
-    unsure = (drives.turning_unknown, drives.pumping_unknown)
-    view = replace(view, activity=classify(view, signals.missing & ~slips.rows, unsure))
-    return _with_weights(view, log, judged, (below, slips, drives, depths))
+    weight = block_weight(slips, signals, facts.moves.hookload, case.rig)
+    judged = judge_bottom(facts, weight)
+    return _view(facts, judged, weight or _from_readings(judged, facts), slips)
 
 
 def weigh(well: Well, bit_depth: Floats) -> Floats:
-    """Hanging weight of the string without friction at every row, from a table over depth.
+    """Weigh the hanging string without friction at every row, from a table over depth.
 
     Parameters
     ----------
@@ -136,122 +81,77 @@ def weigh(well: Well, bit_depth: Floats) -> Floats:
     return np.interp(bit_depth, grid, well.rotating_weight(grid))
 
 
-def _moves(signals: Signals, slips: Slips, case: Case) -> _Moves:
+def _moves(signals: Signals, slips: Slips, case: Case) -> Moves:
     speed = block_speed(signals)
     direction = direction_of(speed, signals)
     hookload = signals.hookload * hook_factor(direction, signals, case.rig)
-    return _Moves(hookload, speed, direction, fill_block(signals, slips.rows), slips.rows)
+    return Moves(hookload, speed, direction, fill_block(signals, slips.rows), slips.rows)
 
 
-def _judge(
-    log: TimeLog, well: Well, signals: Signals, moves: _Moves, drives: Drives, depths: DepthView
-) -> _Judged:
-    """Take readings surely off bottom, references from them, and with these look at the bottom again."""
-    hanging = _hanging(well, log)
-    below = weigh(well, signals.bit)
-    steady = Steady()
-    for share in _CLEARANCES:
-        clear = (depths.gap > share * depths.near) | depths.run_in
-        steady = find_steady(_motion(moves, drives, clear), signals, below, depths.near)
-        if len(steady.of("rotating")) or len(steady.of("slack_off")):
-            break
-    base = below + hanging_share(steady, below, hanging) * hanging * np.nan_to_num(moves.block)
-    references = _references(steady, base, signals)
-    surface = _surface(log, well, signals, moves, drives, depths)
-    vote = bottom_evidence(surface, depths, references, signals)
-    # Once more: a bit known to be free close to bottom gives the references of that very place.
-    free = (noise.hold(vote, initial=-1) < 0) & ((depths.gap > 0.5) | depths.run_in)
-    steady = find_steady(_motion(moves, drives, free), signals, below, depths.near)
-    references = _references(steady, base, signals)
-    return _Judged(bottom_evidence(surface, depths, references, signals), steady, references)
-
-
-def _motion(moves: _Moves, drives: Drives, clear: Bools) -> Motion:
-    return Motion(
-        hookload=moves.hookload,
-        speed=moves.speed,
-        direction=moves.direction,
-        block=moves.block,
-        turning=drives.turning,
-        rpm=drives.rpm,
-        torque=drives.torque,
-        pumping=drives.pumping,
-        flow_steady=drives.flow_steady,
-        clear=clear & ~moves.slips,
-        slips=moves.slips,
-    )
-
-
-def _references(steady: Steady, base: Floats, signals: Signals) -> tuple[Reference, Reference, Reference]:
-    return (
-        build_reference("rotating", steady, base, signals),
-        build_reference("slack_off", steady, base, signals),
-        build_reference("pick_up", steady, base, signals),
-    )
-
-
-def _surface(
-    log: TimeLog, well: Well, signals: Signals, moves: _Moves, drives: Drives, depths: DepthView
-) -> Surface:
-    free = (depths.gap > depths.near) & drives.pumping & drives.flow_steady & ~moves.slips
-    pressure, level = rezero_pressure(log, signals, free)
-    pace = -noise.rate(moves.block, log.time, noise.window_seconds(SMOOTHING, signals.interval))
-    radius = 0.5 * well.string.components[-1].contact_diameter()
-    # A string known to turn only by its torque is taken to turn at a common speed.
-    rpm = noise.fill(drives.rpm) if np.isfinite(drives.rpm).any() else np.full(len(log), _COMMON_RPM)
-    spin = np.abs(rpm) * (2.0 * np.pi / 60.0) * radius
-    return Surface(
-        smooth=noise.running_mean(moves.hookload, signals.count(SMOOTHING)),
-        direction=moves.direction,
-        speed=moves.speed,
-        axial=np.nan_to_num(pace / np.hypot(pace, np.maximum(spin, 1e-3))),
-        turning=drives.turning,
-        pumping=drives.pumping,
-        slips=moves.slips,
-        differential=pressure,
-        differential_level=level,
-    )
-
-
-def _hanging(well: Well, log: TimeLog) -> float:
-    """Weight per length of the top pipe in air, full of mud [N/m]."""
-    top = well.string.components[-1]
-    fill = well.fluid.inside
-    if fill is None:
-        fill = float(well.fluid.outside_at(log.time[:1], 0.0)[0])
-    return top.weight + fill * G * top.inner_area
-
-
-def _from_readings(judged: _Judged, moves: _Moves, below: Floats, depths: DepthView) -> Estimate:
+def _from_readings(judged: Judged, facts: Facts) -> Estimate:
     """Block weight as measured less modelled weight, where no reading in slips shows it."""
-    steady = judged.steady
+    steady, below, moves = judged.steady, facts.below, facts.moves
     turned = steady.of("rotating")
     if len(turned):
-        left = turned.value - below[turned.start]
+        left = turned.value - judged.base[turned.start]
         words = "rotating weight less the model: no in-slips reading"
     elif len(steady):
-        left = steady.value - below[steady.start]
+        left = steady.value - judged.base[steady.start]
         words = "moving weights less the model without friction: no in-slips reading"
     else:
-        free = ~moves.slips & (depths.gap > 0)
-        rows = free if free.any() else ~moves.slips
-        left = (moves.hookload - below)[rows]
+        free = ~moves.slips & ~on_bottom_from(judged.vote)
+        rows = free if free.any() else np.ones(len(below), dtype=bool)
+        left = (moves.hookload - judged.base)[rows]
         words = "hookload less the model without friction: no in-slips reading"
-    value = float(np.median(left))
-    half = max(float(np.quantile(np.abs(left - value), 0.9)), 0.03 * float(np.median(below)), 5e3)
-    return Estimate(value, value - half, value + half, words, determined=False, samples=len(left))
+    left = left[np.isfinite(left)]
+    value = float(np.median(left)) if left.size else 0.0
+    spread = float(np.quantile(np.abs(left - value), 0.9)) if left.size else 0.0
+    half = max(spread, 0.03 * float(np.median(below)), 5e3)
+    return Estimate(value, value - half, value + half, words, determined=False, samples=int(left.size))
 
 
-def _with_weights(
-    view: RigView, log: TimeLog, judged: _Judged, parts: tuple[Floats, Slips, Drives, DepthView]
-) -> RigView:
-    """Add weight on bit, tares and what could not be told."""
-    below, slips, drives, depths = parts
+def _view(facts: Facts, judged: Judged, weight: Estimate, slips: Slips) -> RigView:
+    """Put together what was found."""
+    log, moves, drives = facts.log, facts.moves, facts.drives
+    on_bottom = on_bottom_from(judged.vote)
+    measured = np.isfinite(log.values["hookload"])
+    hookload = np.where(measured, moves.hookload, np.nan)
     rotating, slack, _ = judged.references
-    notes = list(drives.remarks)
+    if not np.isfinite(rotating.weight).any():
+        rotating = modelled_reference(rotating, judged.base, weight)
+    # Nobody drills without pumps: where nothing shows them, a bit on bottom does.
+    pumping = drives.pumping | (drives.pumping_unknown & on_bottom)
+    sliding = on_bottom & ~drives.turning & ~slips.rows
+    spans = stand_spans(slips.rows, log.time)
+    view = RigView(
+        block_weight=weight,
+        hookload=hookload,
+        slips=slips.rows,
+        turning=drives.turning,
+        pumping=pumping,
+        on_bottom=on_bottom,
+        direction=moves.direction,
+        block=moves.block,
+        hole_depth=facts.depths.hole,
+        activity=np.zeros(len(log), dtype=np.int8),
+        wob_surface=weight_on_bit(rotating, hookload, ~slips.rows),
+        wob_slack_off=weight_on_bit(slack, hookload, sliding),
+        noise=facts.signals.noise,
+        usual_flow=drives.usual_flow,
+        tares=list_tares((rotating, slack), ("rotating", "slack_off"), spans),
+        can_not_tell=_can_not_tell(facts, judged, weight, slips),
+        bottom_vote=judged.vote,
+        steady=judged.steady,
+    )
+    unsure = (drives.turning_unknown, drives.pumping_unknown)
+    return replace(view, activity=classify(view, facts.signals.missing & ~slips.rows, unsure))
+
+
+def _can_not_tell(facts: Facts, judged: Judged, weight: Estimate, slips: Slips) -> tuple[str, ...]:
+    """Say what the log could not show, in sentences."""
+    rotating, slack, _ = judged.references
+    notes = list(facts.drives.remarks)
     if not rotating.known:
-        weight = view.block_weight.value + below
-        rotating = replace(rotating, weight=weight)
         notes.append(
             "No steady rotating weight off bottom: weight on bit rests on the string's modelled weight."
         )
@@ -259,19 +159,10 @@ def _with_weights(
         notes.append("No steady slack-off weight off bottom: slides have no slack-off reference.")
     if slips.plateau is None:
         notes.append(
-            f"No reading in slips: the block weight can't be read off; it is {view.block_weight.source}."
+            f"No reading in slips: the block weight can't be read off; it is taken from {weight.source}."
         )
-    if log.get("block_position") is None:
+    if facts.log.get("block_position") is None:
         notes.append("No block position: motion is judged by the bit's depth, and in slips not at all.")
-    if not depths.logged:
+    if not facts.depths.logged:
         notes.append("No hole depth of its own: it is the largest bit depth so far.")
-    hookload = view.hookload
-    sliding = view.on_bottom & ~view.turning & ~view.slips
-    tares = list_tares((rotating, slack), ("rotating", "slack_off"), stand_spans(view.slips, log.time))
-    return replace(
-        view,
-        wob_surface=weight_on_bit(rotating, hookload, ~view.slips),
-        wob_slack_off=weight_on_bit(slack, hookload, sliding),
-        tares=tares,
-        can_not_tell=tuple(notes),
-    )
+    return tuple(notes)
