@@ -20,7 +20,16 @@ STRING_COLUMNS = (
     Column(
         "weight",
         "linear_weight",
-        ("linear weight", "unit weight", "weight in air", "wt", "mass", "air weight"),
+        (
+            "linear weight",
+            "unit weight",
+            "weight in air",
+            "wt",
+            "mass",
+            "air weight",
+            "mass per length",
+            "weight per length",
+        ),
     ),
     Column(
         "tool_joint_od",
@@ -89,7 +98,8 @@ def load_string(file: Path) -> tuple[String, tuple[str, ...]]:
 
 def _kind(table: Table, row: int, text: str) -> str:
     key = plain(text)
-    kind = key if key in KINDS else _ALIASES.get(key)
+    names = (key, key.removesuffix("s"))
+    kind = next((n if n in KINDS else _ALIASES[n] for n in names if n in KINDS or n in _ALIASES), None)
     if kind is None:
         raise table.error(f"is {text!r}; {nearest(text, KINDS)}", row, "kind")
     return kind
@@ -104,8 +114,11 @@ def _component(table: Table, row: int, kind: str, remarks: list[str]) -> Compone
     od, bore = number["od"], _bore(table, row, kind, number)
     density = _or(number["density"], STEEL_DENSITY)
     _check_sizes(table, row, number, bore)
+    if bore == 0.0 and _must_be_hollow(kind):
+        raise table.error(f"is 0; a {kind} has a bore", row, "id")
     weight = number["weight"]
-    if math.isnan(weight):
+    # Exports write 0 where they know no weight.
+    if math.isnan(weight) or weight == 0.0:
         weight = plain_weight(od, bore, density)
         joints = ", tool joints left out" if kind in PIPE else ""
         remarks.append(f"{table.file.name}: no weight for {name}; plain tube of its OD and ID taken{joints}")
@@ -136,6 +149,11 @@ def _bore(table: Table, row: int, kind: str, number: dict[str, float]) -> float:
     if kind == "bit":
         return 0.0
     raise table.error("is empty; the inner diameter is needed", row, "id")
+
+
+def _must_be_hollow(kind: str) -> bool:
+    """Tell which kinds have a bore in every tally; for a tool or a bit, 0 is a fair entry."""
+    return kind in PIPE or kind == "collar"
 
 
 def _check_sizes(table: Table, row: int, number: dict[str, float], bore: float) -> None:

@@ -73,6 +73,12 @@ def test_a_weight_left_blank_is_computed_and_remarked(load):
     assert any("no weight for Pipe" in r and "tool joints left out" in r for r in remarks)
 
 
+def test_a_weight_of_zero_counts_as_blank(load):
+    string, remarks = load(GOOD.replace(",33,", ",0,"))
+    assert string.components[3].weight == pytest.approx(plain_weight(0.127, 4.276 * 0.0254))
+    assert any("no weight for Pipe" in r for r in remarks)
+
+
 def test_a_missing_tool_joint_is_remarked(load):
     string, remarks = load(GOOD.replace("6.625", ""))
     assert string.components[3].contact_diameter() == string.components[3].od
@@ -112,6 +118,7 @@ def test_an_unlikely_weight_is_remarked(load):
         ("Heavy Weight Drill Pipe", "hwdp"),
         ("Drill Collar", "collar"),
         ("DP", "drillpipe"),
+        ("Jars", "jar"),
     ],
 )
 def test_kinds_have_their_trade_names(load, word, kind):
@@ -124,6 +131,7 @@ REFUSED = {
     "bore as wide as the body": ("x,collar,10,5,5,75,\n", ["line 2", "'id [in]'", "127 mm"]),
     "bore wider": ("x,collar,10,5,6,75,\n", ["line 2", "'id [in]'"]),
     "no bore": ("x,collar,10,5,,75,\n", ["line 2", "'id [in]'", "empty"]),
+    "solid pipe": ("x,dp,10,5,0,30,\n", ["line 2", "'id [in]'", "is 0; a drillpipe has a bore"]),
     "negative bore": ("x,collar,10,5,-1,75,\n", ["line 2", "'id [in]'"]),
     "no length": ("x,collar,0,5,3,75,\n", ["line 2", "'length [m]'", "0 m"]),
     "absurd length": ("x,collar,30000,5,3,75,\n", ["line 2", "'length [m]'", "30000 m"]),
