@@ -42,7 +42,7 @@ def write(findings: Findings, folder: Path, system: str, progress: Progress) -> 
         Times the stages "figures" and "exports".
     """
     with progress.stage("figures", "drawing the report"):
-        from forensics.report import render
+        from forensics.report.render import render
 
         (folder / "report.html").write_text(render(findings, system), encoding="utf-8", newline="\n")
     with progress.stage("exports", "writing the exports"):

@@ -114,7 +114,7 @@ SPOILED = {
     ),
     "hookload all null": (
         lambda c: column(c, "Hookload (kN)", lambda _n, _v: "-999.25"),
-        ["time.csv", "ookload", "null"],
+        ["time.csv", "Hookload (kN)", "every value", "missing"],
     ),
     "depth all null": (
         lambda c: column(c, "Bit Depth (m)", lambda _n, _v: ""),

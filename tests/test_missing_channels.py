@@ -34,7 +34,7 @@ def said(summary):
 @pytest.mark.parametrize(
     ("missing", "word"),
     [
-        ("RPM (rpm)", "rpm"),
+        ("RPM (rpm)", "rotary speed"),
         ("Torque (kN.m)", "torque"),
         ("Block Position (m)", "block"),
         ("Standpipe Pressure (bar)", "pressure"),
@@ -52,7 +52,7 @@ def test_runs_on_what_is_needed_alone(tmp_path):
     columns = cases.log_columns(JOB)
     needed = {name: columns[name] for name in ("Time", "Bit Depth (m)", "Hookload (kN)")}
     text = said(run(tmp_path, needed))
-    for word in ("rpm", "torque", "block"):
+    for word in ("rotary speed", "torque", "block"):
         assert word in text
 
 

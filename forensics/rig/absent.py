@@ -1,0 +1,30 @@
+"""What a run can't tell for want of a channel that nothing else stands in for."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+
+from forensics.logs.table import TimeLog
+
+# Channels that the reading of activity already speaks of (rpm, block, flow) are not named again here.
+COST: Mapping[str, str] = {
+    "torque": "No torque in the log: rotational friction, and episodes of high torque, can't be told.",
+    "standpipe_pressure": "No standpipe pressure in the log: what the bit felt can't be checked against it.",
+    "wob": "No weight on bit (WOB) by the rig in the log: how it was zeroed can't be told.",
+}
+
+
+def absent_channels(log: TimeLog) -> tuple[str, ...]:
+    """Say what is lost with each channel that the log lacks.
+
+    Parameters
+    ----------
+    log : TimeLog
+        The SI table of the run; a channel without any value counts as lacking.
+
+    Returns
+    -------
+    tuple of str
+        One sentence a channel.
+    """
+    return tuple(words for channel, words in COST.items() if log.get(channel) is None)

@@ -1,0 +1,153 @@
+"""The stages of the analysis, in order: from a case to everything its run has to tell."""
+
+from __future__ import annotations
+
+import hashlib
+from collections.abc import Mapping
+from dataclasses import dataclass, replace
+from pathlib import Path
+
+import numpy as np
+from numpy.typing import NDArray
+
+from forensics.case import Case
+from forensics.episodes.catalogue import Episode, Kind
+from forensics.episodes.find import find_episodes
+from forensics.episodes.material import Material
+from forensics.findings import Findings, Headline
+from forensics.friction.calibrate import calibrate
+from forensics.friction.readings import find_readings
+from forensics.logs.read import read_time_logs
+from forensics.logs.table import TimeLog
+from forensics.replay.draws import replay_draws
+from forensics.replay.lines import fan
+from forensics.replay.model import LoadModel, build_model
+from forensics.replay.moments import profiles
+from forensics.replay.run import Replay, block_zero, ready, replay
+from forensics.report.scene import main_episodes
+from forensics.rig.absent import absent_channels
+from forensics.rig.activity import refine_activity
+from forensics.rig.plausible import check_hookload
+from forensics.rig.understand import understand_rig
+from forensics.rig.view import RigView
+from forensics.well.model import Well, load_well
+from pipelines.progress import Progress
+
+# The fan of model weights starts here: shallower, friction tells nothing [m].
+SHALLOW = 100.0
+
+
+@dataclass(frozen=True)
+class Run:
+    """A run as read and understood, before its loads."""
+
+    case: Case
+    log: TimeLog
+    well: Well
+    rig: RigView
+
+
+def analyse(case: Case, progress: Progress) -> Findings:
+    """Run every stage of the analysis on a case.
+
+    Parameters
+    ----------
+    case : Case
+        One run of one string.
+    progress : Progress
+        Shows and times the stages.
+
+    Returns
+    -------
+    Findings
+        All that the run has to tell.
+
+    Raises
+    ------
+    InputError
+        If a log or a table can't be used, or they contradict one another.
+    """
+    run = _understand(case, progress)
+    with progress.stage("calibration", "calibrating friction"):
+        model = _model(run)
+        readings = find_readings(run.log, run.rig, run.well)
+        calibration = calibrate(readings, run.well, case, model.offbottom, run.rig)
+    with progress.stage("replay", "replaying the run"):
+        made = ready(run.log, run.well, run.rig, calibration, case, model)
+        loads = replay(made)
+        rig = refine_activity(run.rig, loads.bit_load, run.log)
+    material = Material(run.log, rig, loads, None, calibration, run.well, case)
+    return _tell(material, made, progress)
+
+
+def _understand(case: Case, progress: Progress) -> Run:
+    """Read logs and tables, check them against one another, and tell what the rig was doing."""
+    with progress.stage("reading", "reading the logs"):
+        log = read_time_logs(case)
+    with progress.stage("well", "reading the well"):
+        well = load_well(case)
+        well.check_reach(float(np.nanmax(log.values["bit_depth"])))
+        check_hookload(log, well)
+    with progress.stage("rig", "telling what the rig was doing"):
+        rig = understand_rig(log, well, case)
+        rig = replace(rig, can_not_tell=(*rig.can_not_tell, *absent_channels(log)))
+    return Run(case, log, well, rig)
+
+
+def _model(run: Run) -> LoadModel:
+    """Tabulate the well down to the deepest the bit got."""
+    deepest = float(np.nanmax(run.log.values["bit_depth"]))
+    return build_model(run.well, run.case, deepest, block_zero(run.rig))
+
+
+def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
+    """Find and weigh the episodes, and gather all that the run has to tell."""
+    with progress.stage("episodes", "finding episodes"):
+        first, _ = find_episodes(material)
+    with progress.stage("draws", "replaying under other friction"):
+        drawn = replay_draws(made, _wanted(first, len(material.log)))
+        material = replace(material, draws=drawn)
+    with progress.stage("episodes", "weighing episodes"):
+        episodes, dropped = find_episodes(material)
+        families = ()
+        headline = Headline(f"{len(episodes)} episodes were found.", "not weighed yet")
+    with progress.stage("profiles", "taking load profiles"):
+        mains = main_episodes(episodes)
+        taken = profiles(made, [episode.peak for episode in mains])
+    log, well = material.log, material.well
+    return Findings(
+        case=material.case,
+        log=log,
+        well=well,
+        rig=material.rig,
+        calibration=material.calibration,
+        loads=material.loads,
+        fan=fan(material.calibration, made.model, (SHALLOW, float(np.nanmax(log.values["bit_depth"])))),
+        episodes=episodes,
+        families=families,
+        profiles={episode.id: profile for episode, profile in zip(mains, taken, strict=True)},
+        headline=headline,
+        dropped=dropped,
+        inputs=_digests(material.case, log),
+        warnings=tuple(dict.fromkeys((*log.warnings, *well.warnings))),
+    )
+
+
+def _wanted(episodes: tuple[Episode, ...], rows: int) -> NDArray[np.bool_]:
+    """Mark the rows whose outcome under other friction is wanted: those of buckling and lockup."""
+    wanted = np.zeros(rows, dtype=bool)
+    for episode in episodes:
+        if episode.kind in (Kind.BUCKLING, Kind.LOCKUP):
+            wanted[episode.first : episode.last + 1] = True
+    return wanted
+
+
+def _digests(case: Case, log: TimeLog) -> Mapping[str, str]:
+    """Give the SHA-256 of every file that went into the run, by name."""
+    tables = (case.path, case.survey, case.hole, case.string, case.fluid.file)
+    digests = {path.name: _digest(path) for path in tables if path is not None}
+    return digests | {record.name: record.sha256 for record in log.files}
+
+
+def _digest(path: Path) -> str:
+    return hashlib.sha256(path.read_bytes()).hexdigest()

@@ -1,0 +1,21 @@
+"""A channel that is lacking, or holds nothing, is told with what it costs."""
+
+import numpy as np
+
+from forensics.logs.table import TimeLog
+from forensics.rig.absent import COST, absent_channels
+
+
+def make_log(**values):
+    ones = np.ones(3)
+    held = {"bit_depth": ones, "hookload": ones} | values
+    return TimeLog(np.arange(3.0), held, ones, ones > 0, np.zeros(3, np.int8), 1.0)
+
+
+def test_all_there_says_nothing():
+    assert absent_channels(make_log(**{name: np.ones(3) for name in COST})) == ()
+
+
+def test_lacking_and_empty_are_told():
+    told = absent_channels(make_log(torque=np.full(3, np.nan), wob=np.ones(3)))
+    assert told == (COST["torque"], COST["standpipe_pressure"])
