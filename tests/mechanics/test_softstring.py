@@ -1,0 +1,83 @@
+"""The compiled march against plain small steps, exact balances and limits."""
+
+from __future__ import annotations
+
+import math
+
+import numpy as np
+import pytest
+
+from forensics.mechanics.grid import hole_grid, pipe_grid
+from forensics.mechanics.offbottom import OffBottomModel
+from forensics.mechanics.softstring import tension_from_bit, torque_from_bit
+from tests.naive_string import tension_at_rotary
+from tests.wells import build_well, one_pipe_well
+
+
+@pytest.mark.parametrize("sigma", [-1.0, 0.0, 1.0])
+@pytest.mark.parametrize(("bit", "load"), [(800.0, 0.0), (1700.0, 40e3), (3300.0, 0.0)])
+def test_agrees_with_plain_small_steps(sigma, bit, load):
+    well = build_well(turn=0.3)
+    hole, pipe = hole_grid(well, 3400.0), pipe_grid(well, 3400.0)
+    friction = np.full(len(hole.cos_i), 0.27)
+    md, tension = tension_from_bit(hole, pipe, friction, bit, sigma, -load)
+    slow = tension_at_rotary(well, 0.27, bit, sigma, -load)
+    assert md[0] == bit
+    assert md[-1] == pytest.approx(0.0, abs=1e-9)
+    assert tension[-1] == pytest.approx(slow, rel=2e-3, abs=300.0)
+
+
+def test_free_of_friction_the_string_weighs_what_hangs():
+    well = build_well()
+    model = OffBottomModel(well, 3400.0)
+    bits = np.array([500.0, 1500.0, 3333.3])
+    hanging = well.rotating_weight(bits)
+    assert np.allclose(model.string_weight("rotating", bits, 0.3, 0.3), hanging, rtol=2e-3)
+
+
+def test_straight_hole_closed_form():
+    """W L (cos I +- mu sin I): exact, equilibrium of a straight string."""
+    inclination = math.radians(55)
+    well = one_pipe_well(inclination, 2000.0)
+    model = OffBottomModel(well, 2000.0)
+    weight = model.pipe.weight[0] * 2000.0
+    for kind, sign in (("pick_up", 1.0), ("slack_off", -1.0)):
+        exact = weight * (math.cos(inclination) + sign * 0.3 * math.sin(inclination))
+        assert model.string_weight(kind, 2000.0, 0.3, 0.3)[0] == pytest.approx(exact, rel=1e-6)
+
+
+def test_torque_of_a_horizontal_string_is_mu_w_l_r():
+    """Exact: contact is the weight, everywhere."""
+    well = one_pipe_well(math.pi / 2, 1500.0)
+    hole, pipe = hole_grid(well, 1500.0), pipe_grid(well, 1500.0)
+    friction = np.full(len(hole.cos_i), 0.22)
+    exact = 0.22 * pipe.weight[0] * 1500.0 * 0.084
+    assert torque_from_bit(hole, pipe, friction, 1500.0) == pytest.approx(exact, rel=1e-6)
+
+
+@pytest.mark.parametrize("azimuth", [0.0, 1.3, 3.0, 5.9])
+def test_azimuth_of_a_plane_well_does_not_matter(azimuth):
+    bits = np.array([1700.0, 3300.0])
+    one = OffBottomModel(build_well(azimuth), 3400.0).string_weight("pick_up", bits, 0.2, 0.3)
+    other = OffBottomModel(build_well(0.0), 3400.0).string_weight("pick_up", bits, 0.2, 0.3)
+    assert np.allclose(one, other, rtol=1e-9)
+
+
+def test_drag_grows_with_friction_and_rotation_takes_it_away():
+    model = OffBottomModel(build_well(), 3400.0)
+    factors = np.linspace(0.0, 0.5, 11)
+    up = [model.string_weight("pick_up", 3300.0, f, f)[0] for f in factors]
+    down = [model.string_weight("slack_off", 3300.0, f, f)[0] for f in factors]
+    turning = model.string_weight("rotating", 3300.0, 0.5, 0.5)[0]
+    assert np.all(np.diff(up) > 0)
+    assert np.all(np.diff(down) < 0)
+    assert down[1] < turning < up[1]
+
+
+def test_component_weights_survive_the_cut_into_stations():
+    well = build_well()
+    pipe = pipe_grid(well, 3400.0)
+    below = pipe.x <= 121.5
+    total = float(np.sum((pipe.weight * np.diff(pipe.x))[: int(below.sum()) - 1]))
+    exact = sum(w * c.length for w, c in zip(well.string.buoyed(1200.0), well.string.components[:-1], strict=False))
+    assert total == pytest.approx(exact, rel=1e-3)
