@@ -27,8 +27,10 @@ _FREE_SPEED = 0.05
 _TOUCH = 0.3
 # Differential pressure below this share of the level that counts is none: a locked-in load dies slowly.
 _NO_PRESSURE = 0.25
-# Second pass: bit load above this is on bottom (the contract's rule) [N].
+# Second pass: bit load above this is on bottom (the contract's rule) [N], and above so many times the noise:
+# a replayed load that dies away never quite ends.
 _REFINE_WEIGHT = 1e3
+_REFINE_NOISE = 2.0
 
 
 @dataclass(frozen=True)
@@ -90,6 +92,7 @@ def bottom_evidence(
     _vote_by_weight(vote, surface, depths, references, signals)
     freely = (surface.direction > 0) & (-surface.speed > _FREE_SPEED) & (depths.gap > _TOUCH)
     loaded = references[1].weight - surface.smooth > weight_limit(references[1], signals)
+    loaded &= signals.weighed
     _vote(vote, freely & (surface.turning | ~loaded), -2)
     _vote(vote, surface.slips, 0)
     _vote(vote, ~close, -2)
@@ -106,6 +109,7 @@ def _vote_by_weight(
     """Add what the hookload says against its references, turning and not turning."""
     rotating, slack, pick = references
     settled = _settled(surface.turning, signals.count(SMOOTHING))
+    settled &= signals.weighed
     turned, still = surface.turning & settled, ~surface.turning & settled
     limit = weight_limit(rotating, signals)
     load = turning_reference(references, surface.axial) - surface.smooth
@@ -214,7 +218,7 @@ def refine_activity(rig: RigView, bit_load: Floats, log: TimeLog) -> RigView:
     and no vote of depth or weight. Elsewhere a measured reference is the better witness.
     """
     signals = read_signals(log)
-    limit = max(_REFINE_WEIGHT, signals.smooth_noise(SMOOTHING))
+    limit = max(_REFINE_WEIGHT, _REFINE_NOISE * signals.hookload_noise)
     known = np.isfinite(bit_load)
     loaded = noise.running_median(np.where(known, bit_load, 0.0), signals.count(SMOOTHING)) > limit
     unsettled = np.ones(len(log), dtype=bool) if rig.bottom_vote is None else np.abs(rig.bottom_vote) < 2

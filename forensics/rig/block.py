@@ -18,6 +18,8 @@ _EVIDENCE_WINDOW = 20.0
 _EVIDENCE_TRAVEL = 0.5
 # The bit may wander this far in slips, as the slips take hold [m].
 _SLIP_WANDER = 0.4
+# ... or by this share of what the block travels meanwhile.
+_WANDER_SHARE = 0.05
 # A stretch in slips in which the block never moved must last this long [s].
 _LEAST_STILL = 20.0
 # Interruptions of a connection shorter than this are bridged: stabbing, make-up torque [s].
@@ -173,7 +175,7 @@ def _excursion(values: Floats, signals: Signals) -> Floats:
 
 def _bit_still(signals: Signals) -> Bools:
     limit = 0.1 * _EVIDENCE_TRAVEL + noise.NOISE_FACTOR * signals.bit_noise
-    return _excursion(signals.bit, signals) < limit
+    return _excursion(signals.path, signals) < limit
 
 
 def _plateau_of(held: Floats, signals: Signals) -> Plateau | None:
@@ -220,11 +222,10 @@ def _near_plateau(signals: Signals, plateau: Plateau, string_weight: Floats) -> 
     near &= ~signals.missing
     runs = _bridge(noise.runs_of(near), signals)
     wander = _SLIP_WANDER + noise.NOISE_FACTOR * signals.bit_noise
-    stays = noise.span_in(signals.bit, runs) < wander
+    gone = np.zeros(len(runs)) if signals.block is None else noise.span_in(signals.block, runs)
+    stays = noise.span_in(signals.path, runs) < np.maximum(wander, _WANDER_SHARE * gone)
     lasts = signals.time[runs.stop - 1] - signals.time[runs.start] >= _LEAST_STILL - signals.interval
-    travels = np.zeros(len(runs), dtype=bool)
-    if signals.block is not None:
-        travels = noise.span_in(signals.block, runs) > 1.0 + noise.NOISE_FACTOR * signals.block_noise
+    travels = gone > 1.0 + noise.NOISE_FACTOR * signals.block_noise
     kept = stays & (travels | lasts)
     return noise.rows_of(Runs(runs.start[kept], runs.stop[kept]), len(near))
 
@@ -237,7 +238,7 @@ def _bridge(runs: Runs, signals: Signals) -> Runs:
     wide = Runs(np.maximum(pause.start - 1, 0), np.minimum(pause.stop + 1, len(signals.bit)))
     limit = _SLIP_WANDER + noise.NOISE_FACTOR * signals.bit_noise
     short = signals.time[pause.stop] - signals.time[pause.start - 1] <= max(_BRIDGE, 3 * signals.interval)
-    joined = short & (noise.span_in(signals.bit, wide) < limit)
+    joined = short & (noise.span_in(signals.path, wide) < limit)
     return Runs(runs.start[np.append(True, ~joined)], runs.stop[np.append(~joined, True)])
 
 
@@ -251,7 +252,7 @@ def _believed_flags(log: TimeLog, signals: Signals) -> Bools | None:
         return None
     runs = noise.runs_of(inside)
     wander = _SLIP_WANDER + noise.NOISE_FACTOR * signals.bit_noise
-    stays = np.median(noise.span_in(signals.bit, runs)) < wander
+    stays = np.median(noise.span_in(signals.path, runs)) < wander
     lighter = np.median(signals.hookload[inside]) < np.quantile(signals.hookload[~inside], 0.1)
     return inside if stays and lighter else None
 

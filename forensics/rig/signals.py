@@ -14,11 +14,16 @@ from forensics.rig.noise import Bools, Floats
 # The contract's rule of motion: above 1 cm/s over 15 s.
 MOVING_SPEED = 0.01
 MOVING_WINDOW = 15.0
+# The bit can't move by more than the block did and this [m]; without a block, not faster than this [m/s].
+_STEP = 1.0
+_FASTEST = 3.0
 # A block noisier than this [m] is averaged over a few seconds before its speed is taken.
 _QUIET_BLOCK = 0.01
 _STEADYING = 5.0
-# A gap longer than this is missing data, not a dropout to be bridged.
+# A gap longer than this is missing data, not a dropout to be bridged; without a hookload the depth still
+# tells most of what goes on, so its gaps may be longer [s].
 LONGEST_BRIDGE = 60.0
+LONGEST_UNWEIGHED = 300.0
 _NOISY = ("hookload", "bit_depth", "block_position", "torque", "rpm", "wob", "standpipe_pressure",
           "flow_in", "differential_pressure")  # fmt: skip
 
@@ -35,12 +40,14 @@ class Signals:
         Usual sampling interval [s].
     bit, hookload : ndarray
         Bit depth [m] and hookload as read [N], gaps bridged.
+    path : ndarray
+        Bit depth without the steps that no block made: a stand counted on or off in slips [m].
     block : ndarray or None
         Block height [m], gaps bridged; None where the log has none.
-    bit_noise, hookload_noise, block_noise : float
-        One standard deviation [m], [N], [m].
     noise : mapping of str to float
-        The same for every channel the log has.
+        One standard deviation of every channel the log has.
+    weighed : ndarray of bool
+        Rows with a hookload read nearby, so that it may bear witness.
     missing : ndarray of bool
         Rows too far from any hookload or bit depth to know anything.
     """
@@ -48,9 +55,11 @@ class Signals:
     time: Floats
     interval: float
     bit: Floats
+    path: Floats
     hookload: Floats
     block: Floats | None
     noise: dict[str, float]
+    weighed: Bools
     missing: Bools
 
     @property
@@ -94,27 +103,42 @@ def read_signals(log: TimeLog) -> Signals:
     levels.setdefault("hookload", 0.0)
     levels.setdefault("bit_depth", 0.0)
     block = log.get("block_position")
+    block = None if block is None else noise.fill(block)
     bit = np.where(log.used, log.values["bit_depth"], np.nan)
+    bit = noise.fill(bit if np.isfinite(bit).any() else log.values["bit_depth"])
+    read = np.isfinite(log.values["hookload"]).astype(np.float64)
     return Signals(
         time=log.time,
         interval=log.interval,
-        bit=noise.fill(bit if np.isfinite(bit).any() else log.values["bit_depth"]),
+        bit=bit,
+        path=_path(bit, block, log.time),
         hookload=noise.fill(log.values["hookload"]),
-        block=None if block is None else noise.fill(block),
+        block=block,
         noise=levels,
-        missing=far_from_data(log, "hookload") | far_from_data(log, "bit_depth"),
+        weighed=noise.running_mean(read, noise.samples_in(10.0, log.interval)) > 0.5,
+        missing=far_from_data(log, "hookload", LONGEST_UNWEIGHED) | far_from_data(log, "bit_depth"),
     )
 
 
-def far_from_data(log: TimeLog, channel: str) -> Bools:
-    """Rows that lie inside a gap of a channel too long to bridge (all rows where it is absent)."""
+def _path(bit: Floats, block: Floats | None, time: Floats) -> Floats:
+    """Take out of the bit's depth the steps that no block made."""
+    step = np.diff(bit, prepend=bit[:1])
+    if block is None:
+        room = _FASTEST * np.diff(time, prepend=time[:1])
+    else:
+        room = np.abs(np.diff(block, prepend=block[:1]))
+    return bit[0] + np.cumsum(np.where(np.abs(step) > room + _STEP, 0.0, step)) if len(bit) else bit
+
+
+def far_from_data(log: TimeLog, channel: str, longest: float = LONGEST_BRIDGE) -> Bools:
+    """Mark rows that lie inside a gap of a channel too long to bridge (all rows where it is absent)."""
     values = log.get(channel)
     if values is None:
         return np.ones(len(log), dtype=bool)
     gaps = noise.runs_of(~np.isfinite(values))
     before = log.time[np.maximum(gaps.start - 1, 0)]
     after = log.time[np.minimum(gaps.stop, len(log) - 1)]
-    long = after - before > max(LONGEST_BRIDGE, noise.LEAST_SAMPLES * log.interval)
+    long = after - before > max(longest, noise.LEAST_SAMPLES * log.interval)
     return noise.rows_of(noise.Runs(gaps.start[long], gaps.stop[long]), len(log))
 
 

@@ -154,7 +154,7 @@ def _measure(code: int, rows: slice, motion: Motion, signals: Signals, string_we
     """One reading, or None where the moment isn't steady."""
     hookload = motion.hookload[rows]
     count = len(hookload)
-    if not motion.flow_steady[rows].all() or signals.missing[rows].any():
+    if not motion.flow_steady[rows].all() or not signals.weighed[rows].all():
         return None
     travel = abs(signals.bit[rows][-1] - signals.bit[rows][0])
     speed = motion.speed[rows]
