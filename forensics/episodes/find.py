@@ -172,16 +172,15 @@ def _chance(material: Material, found: Found) -> float:
 
 
 def _note(material: Material, episode: Episode, consequence: Consequence) -> str:
-    """Write what the columns leave out: the helical span, the size of a residual, revolutions while buckled."""
+    """Write what the columns leave out: helical span, size of a residual, revolutions while helical."""
     rows = slice(episode.first, episode.last + 1)
     loads, said = material.loads, []
     length = loads.helical_bottom[rows] - loads.helical_top[rows]
     if episode.state is State.HELICAL and np.isfinite(length).any():
         at = episode.first + int(np.nanargmax(length))
         time = float((loads.state[rows] == 2).sum() * material.log.interval)
-        said.append(
-            f"helical from {loads.helical_top[at]:.0f} to {loads.helical_bottom[at]:.0f} m, {time:.0f} s in all"
-        )
+        top, bottom = loads.helical_top[at], loads.helical_bottom[at]
+        said.append(f"helical from {top:.0f} to {bottom:.0f} m, {time:.0f} s in all")
     if episode.peak_residual is not None:
         unit = "kN" if episode.kind is Kind.DRAG else "kN.m"
         said.append(f"{episode.peak_residual.value / 1e3:+.1f} {unit} against the model")

@@ -61,6 +61,12 @@ class Material:
         """Lengthen a time window to at least three samples [s]."""
         return max(seconds, LEAST_SAMPLES * self.log.interval)
 
+    def rows_between(self, start: float, end: float) -> slice:
+        """Rows from one time to another [s since 1970 UTC], at least one row."""
+        first, stop = np.searchsorted(self.time, [start, end]).tolist()
+        first = min(first, len(self.time) - 1)
+        return slice(first, max(stop, first + 1))
+
     def noise(self, channel: str) -> float:
         """Short-term noise of a channel, zero where none was found [SI]."""
         value = float(self.rig.noise.get(channel, 0.0))

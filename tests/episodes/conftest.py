@@ -25,7 +25,10 @@ class PlainHole:
     """Cased to the shoe, open below."""
 
     shoe = SHOE
+    top = np.array([0.0, SHOE])
     bottom = np.array([SHOE, 5000.0])
+    kind = ("cased", "open")
+    friction = np.array([np.nan, np.nan])
 
     def is_open(self, md):
         """Below the shoe."""

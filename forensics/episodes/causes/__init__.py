@@ -1,0 +1,7 @@
+"""Causes of an episode, weighed by named evidence for and against each."""
+
+from __future__ import annotations
+
+from forensics.episodes.causes.weigh import UNTOLD, weigh
+
+__all__ = ["UNTOLD", "weigh"]
