@@ -12,6 +12,7 @@ import math
 import numba as nb
 
 from forensics.mechanics.eigen import COLUMNS, LENGTH_RANGE, LIMIT, LOG_N, OFFSET, ROWS, SHORTEST, Floats
+from forensics.mechanics.threshold import VERTICAL_HELICAL
 
 Table = tuple[Floats, float, float, float, float]
 """What `EigenTable.as_tuple` gives: values, first log n, its step, first length place, its step."""
@@ -20,9 +21,6 @@ _LOG_N_LOW, _LOG_N_HIGH = LOG_N
 _ROOT_N_LOW = math.exp(0.5 * LOG_N[0])
 _PLACE_LOW, _PLACE_HIGH = LENGTH_RANGE
 _LAST_ROW, _LAST_COLUMN = ROWS - 2, COLUMNS - 2
-
-VERTICAL_HELICAL = 5.55
-"""Helical onset in a vertical hole, in units of (EI w^2)^(1/3): Wu and Juvkam-Wold, from memory."""
 
 _LOG_100 = math.log(100.0)
 

@@ -21,8 +21,6 @@ VERTICAL_HELICAL = 5.55
 ENVELOPE_RELEASE = 1.370
 """Least load over F_DP at which a helix still touches the wall all round (the case's `envelope` release)."""
 
-SUPPORT_CLEARANCE = 0.002
-"""Below this radial clearance [m] a place (bit, stabiliser) is a support and is not judged."""
 
 
 def weight_cube(stiffness: ArrayLike, w_cos: ArrayLike) -> Floats:

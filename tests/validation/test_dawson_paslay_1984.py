@@ -19,6 +19,7 @@ from forensics.mechanics.critical import (
     mitchell_1997,
     wu_juvkam_wold_1993,
 )
+from forensics.mechanics.grid import wave_length
 
 CASES = {
     "B-S8": (DP5_WEIGHT, 1.75, 90, (37990.52, 53726.7, 69462.9, 107453.4)),
@@ -51,6 +52,12 @@ def test_b_s14_metric_pipe():
     assert weight == pytest.approx(241.08493, rel=1e-7)
     place = Place(206.8e9 * inertia, (0.2159 - 0.127) / 2, weight, np.radians([90.0, 60.0]))
     np.testing.assert_allclose(dawson_paslay_1984(place) / 1e3, [163.27386, 151.94344], rtol=1e-7)
+
+
+def test_b_s15_half_wave_of_the_sinusoid():
+    # pi (EI r / (w sin I))^(1/4), computed; contact is averaged over twice that
+    wave = wave_length(np.array([DP5_EI]), np.array([DP5_CLEARANCE]), np.array([DP5_WEIGHT]))
+    assert wave[0] / 2 / FOOT == pytest.approx(39.301, abs=6e-4)
 
 
 def test_b_s1_factors_in_course_notes():
