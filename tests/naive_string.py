@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from itertools import pairwise
+
 import numpy as np
 
 from forensics.well.model import Well
@@ -23,7 +25,7 @@ def tension_at_rotary(
     way = well.trajectory.at(bit - 0.5 * (edges[:-1] + edges[1:]))
     weights = [buoyed_weight(c, well.fluid.typical, well.fluid.inside) for c in well.string.components]
     tension = tension_bit
-    for k, (low, high) in enumerate(zip(edges[:-1], edges[1:], strict=True)):
+    for k, (low, high) in enumerate(pairwise(edges)):
         row = int(well.string.index_at(np.array([0.5 * (low + high)]))[0])
         force = lateral_load(tension, weights[row], way.tangent[k], way.curvature[k])
         tension += (weights[row] * way.tangent[k, 2] - sigma * friction * force) * (high - low)

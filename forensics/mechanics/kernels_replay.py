@@ -105,7 +105,8 @@ def judge(setting: Setting, run: Run, place: Place, t: int) -> None:
     best, best_md, best_load, worst = 0.0, np.nan, 0.0, 0
     top, bottom, helix_top, helix_bottom = np.nan, np.nan, np.nan, np.nan
     for j in range(place.top + 1):
-        tension = 0.5 * (memory.tension[j] + memory.tension[j + 1])
+        # the end pressed hardest: near vertical the critical load is the one at the foot of what buckles
+        tension = min(memory.tension[j], memory.tension[j + 1])
         if tension >= 0.0:
             memory.state[j] = 0
             continue
