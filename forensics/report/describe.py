@@ -54,7 +54,7 @@ def describe(findings: Findings, units: str = "metric") -> Report:
 
 
 def _facts(scene: Scene) -> tuple[tuple[str, str], ...]:
-    """The strip of facts under the title; what the case does not give is left out."""
+    """Give the strip of facts under the title; what the case does not give is left out."""
     case, log, show = scene.findings.case, scene.findings.log, scene.show
     period = ""
     if len(log):

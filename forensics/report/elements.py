@@ -60,10 +60,11 @@ class Number:
 
 @dataclass(frozen=True)
 class Numbers:
-    """A table of named numbers."""
+    """A table of named numbers; `worded` where the values are phrases rather than figures."""
 
     caption: str
     rows: tuple[Number, ...]
+    worded: bool = False
     form = "numbers"
 
 

@@ -11,7 +11,10 @@ from functools import cache
 from typing import TYPE_CHECKING
 
 import matplotlib as mpl
+import numpy as np
 from jinja2 import Environment, PackageLoader, StrictUndefined
+from matplotlib.backends.backend_agg import FigureCanvasAgg
+from PIL import Image
 
 from forensics.report.describe import describe
 from forensics.report.elements import Element, Part, Picture, Report, Section
@@ -27,7 +30,7 @@ _PIXELS_SHOWN = 0.8
 
 @dataclass(frozen=True)
 class Drawn:
-    """A figure as it stands in the page: number, PNG as base64, size shown [px], caption, alternative text."""
+    """A figure as it stands in the page: number, PNG as base64, size shown [px], its words."""
 
     number: int
     data: str
@@ -65,9 +68,24 @@ def render_report(report: Report) -> str:
 
 
 def png(figure: Figure) -> bytes:
-    """A figure as PNG without anything that changes from run to run."""
+    """Draw a figure to PNG bytes that hold nothing but the picture.
+
+    Notes
+    -----
+    Charts have few hues, so a palette of 256 loses nothing an eye can see and makes the file a third as big
+    and faster to write. Pillow comes with matplotlib.
+    """
+    canvas = FigureCanvasAgg(figure)
+    canvas.draw()
+    picture = Image.fromarray(np.asarray(canvas.buffer_rgba())).convert("RGB")
+    # The figure is a knot of cycles that lives until the collector comes by; its pixels need not.
+    del canvas.renderer
+    small = picture.quantize(256, method=Image.Quantize.FASTOCTREE, dither=Image.Dither.NONE)
+    # The octree rounds paper to 254; put pure white back.
+    palette = [255 if level >= 253 else level for level in small.getpalette() or []]
+    small.putpalette(palette)
     buffer = io.BytesIO()
-    figure.savefig(buffer, format="png", dpi=figure.dpi, metadata={"Software": None})
+    small.save(buffer, format="png", compress_level=6)
     return buffer.getvalue()
 
 
@@ -93,7 +111,6 @@ def _draw(picture: Picture, number: int) -> Drawn:
     figure = picture.draw()
     data = base64.b64encode(png(figure)).decode("ascii")
     width, height = (round(side * figure.dpi * _PIXELS_SHOWN) for side in figure.get_size_inches())
-    figure.clear()
     return Drawn(number, data, width, height, picture.caption, picture.alt)
 
 

@@ -56,7 +56,7 @@ def severity(episode: Episode) -> float:
 
 
 def main_episodes(episodes: tuple[Episode, ...], cap: int = MAIN_CAP) -> tuple[Episode, ...]:
-    """The episodes that get figures, in time order: at most `cap`, routine running left out.
+    """Choose the episodes that get figures, in time order: at most `cap`, routine running left out.
 
     Where every episode is routine, the one that came nearest to mattering stands in.
     """

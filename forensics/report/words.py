@@ -52,12 +52,12 @@ def zone_of(text: str) -> tzinfo:
 
 
 def plain(name: str) -> str:
-    """A closed-list word as a reader sees it: `drill_slide` becomes "drill slide"."""
+    """Put a closed-list word as a reader sees it: `drill_slide` becomes "drill slide"."""
     return str(name).replace("_", " ")
 
 
 def fixed(value: float, places: int) -> str:
-    """A number with `places` decimals, a true minus, and thin spaces between thousands.
+    """Write a number with `places` decimals, a true minus, and thin spaces between thousands.
 
     Examples
     --------
@@ -82,8 +82,13 @@ def places_for(value: float, digits: int = 3) -> int:
     return int(min(max(digits - 1 - math.floor(math.log10(abs(value))), 0), 4))
 
 
+def joined(number: str, unit: str) -> str:
+    """Put a number and its unit; degrees stand close."""
+    return f"{number}{unit}" if unit.startswith("°") or not unit else f"{number} {unit}"
+
+
 def duration(seconds: float) -> str:
-    """A length of time in words.
+    """Put a length of time in words.
 
     Examples
     --------
@@ -101,11 +106,12 @@ def duration(seconds: float) -> str:
     hours, minutes = divmod(round(seconds / 60), 60)
     if hours < 48:
         return f"{hours} h {minutes:02d} min"
-    return f"{hours // 24} d {hours % 24} h"
+    days, hours = divmod(round(seconds / 3600), 24)
+    return f"{days} d {hours} h"
 
 
 def count(number: int, one: str, many: str | None = None) -> str:
-    """A count with its noun: "1 row", "1,204 rows" (thin spaces between thousands)."""
+    """Put a count with its noun: "1 row", "1,204 rows" (thin spaces between thousands)."""
     return f"{fixed(number, 0)} {one if number == 1 else many or one + 's'}"
 
 
@@ -144,25 +150,25 @@ class Show:
         return _LABELS.get(label, label), scale
 
     def value(self, value: float, quantity: str, places: int | None = None) -> str:
-        """A value with its unit; `places` decimals, or as many as three figures need."""
+        """Write a value with its unit; `places` decimals, or as many as three figures need."""
         shown = float(self.scaled(value, quantity))
         if not math.isfinite(shown):
             return UNKNOWN
         text = fixed(shown, places_for(shown) if places is None else places)
-        return f"{text} {self.unit(quantity)}".rstrip()
+        return joined(text, self.unit(quantity))
 
     def range(self, low: float, high: float, quantity: str, places: int | None = None) -> str:
-        """An interval "low to high unit"; "none" where both ends are missing."""
+        """Write an interval "low to high unit"; "none" where both ends are missing."""
         ends = [float(self.scaled(end, quantity)) for end in (low, high)]
         if not all(math.isfinite(end) for end in ends):
             return UNKNOWN
         if places is None:
             places = _interval_places(ends[0], ends[1])
         low_text, high_text = (fixed(end, places) for end in ends)
-        return f"{low_text} to {high_text} {self.unit(quantity)}".rstrip()
+        return joined(f"{low_text} to {high_text}", self.unit(quantity))
 
     def depths(self, top: float, bottom: float) -> str:
-        """A depth span, to whole units of length."""
+        """Write a depth span, to whole units of length."""
         if not (math.isfinite(top) and math.isfinite(bottom)):
             return UNKNOWN
         return self.range(top, bottom, "length", 0)
@@ -182,25 +188,25 @@ class Show:
         )
 
     def with_interval(self, estimate: Estimate, quantity: str) -> str:
-        """An estimate on one line: "120 kN (105 to 131)"."""
+        """Write an estimate on one line: "120 kN (105 to 131)"."""
         value, interval = self.estimate(estimate, quantity)
         unit = self.unit(quantity)
         bare = interval.removesuffix(unit).strip() if unit else interval
         return f"{value} ({bare})" if interval not in {"", "no interval"} else value
 
     def moment(self, seconds: float) -> datetime:
-        """A moment in the report's zone."""
+        """Place a moment in the report's zone."""
         return datetime.fromtimestamp(seconds, tz=self.zone)
 
     def time(self, seconds: float) -> str:
-        """A moment as date and time of day in the report's zone."""
+        """Write a moment as date and time of day in the report's zone."""
         if not math.isfinite(seconds):
             return UNKNOWN
         moment = self.moment(round(seconds))
         return moment.strftime("%Y-%m-%d %H:%M:%S")
 
     def stamp(self, seconds: float) -> str:
-        """A moment with its offset from UTC."""
+        """Write a moment with its offset from UTC."""
         if not math.isfinite(seconds):
             return UNKNOWN
         offset = self.moment(seconds).strftime("%z")

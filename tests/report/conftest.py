@@ -137,14 +137,25 @@ def make_loads(log: TimeLog, activity: np.ndarray, bit: np.ndarray) -> LoadHisto
     nothing = np.full(n, np.nan)
     drag = np.where(activity == Activity.TRIP_OUT, rng.normal(0, 4e3, n), np.nan)
     return LoadHistory(
-        bit_load=bit, peak_ratio=ratio, peak_md=np.where(ratio > 0, 2800.0, np.nan), peak_compression=ratio * 90e3,
-        state=state, top=top, bottom=bottom, helical_top=np.where(state == 2, top + 40, np.nan),
-        helical_bottom=np.where(state == 2, bottom - 40, np.nan), reach=log.values["bit_depth"] - 600 * (ratio > 1.6),
-        basis=np.zeros(n, dtype=np.int8), drag_residual=drag, torque_residual=nothing.copy(),
-        model_hookload=np.where(activity == Activity.TRIP_OUT, 1205e3, np.nan), straight_drag=20e3 + 0 * ratio,
-        stretch=0.4 + 0 * ratio, ratio_map=RatioMap(edges, md_edges, values),
+        bit_load=bit,
+        peak_ratio=ratio,
+        peak_md=np.where(ratio > 0, 2800.0, np.nan),
+        peak_compression=ratio * 90e3,
+        state=state,
+        top=top,
+        bottom=bottom,
+        helical_top=np.where(state == 2, top + 40, np.nan),
+        helical_bottom=np.where(state == 2, bottom - 40, np.nan),
+        reach=log.values["bit_depth"] - 600 * (ratio > 1.6),
+        basis=np.zeros(n, dtype=np.int8),
+        drag_residual=drag,
+        torque_residual=nothing.copy(),
+        model_hookload=np.where(activity == Activity.TRIP_OUT, 1205e3, np.nan),
+        straight_drag=20e3 + 0 * ratio,
+        stretch=0.4 + 0 * ratio,
+        ratio_map=RatioMap(edges, md_edges, values),
         rate_law=RateLaw(1e-9, 1.0, determined=True, samples=2000, spread=0.1),
-    )  # fmt: skip
+    )
 
 
 def make_rig(log: TimeLog, activity: np.ndarray) -> RigView:
@@ -153,24 +164,42 @@ def make_rig(log: TimeLog, activity: np.ndarray) -> RigView:
     turning = log.values["rpm"] > 5
     return RigView(
         block_weight=estimate(BLOCK, 4e3, "in-slips plateau", samples=640),
-        hookload=log.values["hookload"], slips=activity == Activity.CONNECTION, turning=turning,
-        pumping=log.values["flow_in"] > 0.01, on_bottom=np.isin(activity, [2, 3]), direction=np.zeros(n, dtype=np.int8),
-        block=log.values["block_position"], hole_depth=log.values["hole_depth"], activity=activity,
-        wob_surface=surface, wob_slack_off=surface - 20e3, noise={"hookload": 3e3, "torque": 400.0},
-        usual_flow=0.035, tares=(Tare(START, START + CYCLE, 3300.0, "rotating", 740e3, -25e3, 90),),
+        hookload=log.values["hookload"],
+        slips=activity == Activity.CONNECTION,
+        turning=turning,
+        pumping=log.values["flow_in"] > 0.01,
+        on_bottom=np.isin(activity, [2, 3]),
+        direction=np.zeros(n, dtype=np.int8),
+        block=log.values["block_position"],
+        hole_depth=log.values["hole_depth"],
+        activity=activity,
+        wob_surface=surface,
+        wob_slack_off=surface - 20e3,
+        noise={"hookload": 3e3, "torque": 400.0},
+        usual_flow=0.035,
+        tares=(Tare(START, START + CYCLE, 3300.0, "rotating", 740e3, -25e3, 90),),
         can_not_tell=("The log has no differential pressure, so the bit load has no second witness.",),
-    )  # fmt: skip
+    )
 
 
 def make_calibration(readings: int) -> Calibration:
     rng = np.random.default_rng(5)
     base = {"pick_up": 1210e3, "rotating": 1050e3, "slack_off": 930e3}
     made = tuple(
-        Reading(kind, START + 60 * k, START + 60 * k + 20, 3250.0 + 3 * k, 12.0, base[kind] + rng.normal(0, 4e3), 2e3,
-                20, pumping=True)
+        Reading(
+            kind,
+            START + 60 * k,
+            START + 60 * k + 20,
+            3250.0 + 3 * k,
+            12.0,
+            base[kind] + rng.normal(0, 4e3),
+            2e3,
+            20,
+            pumping=True,
+        )
         for k in range(readings)
         for kind in base
-    )  # fmt: skip
+    )
     sections = (
         FrictionSection(
             "cased", 0.0, 2600.0, estimate(0.21, 0.018, "pick-up and slack-off in casing", samples=14)
@@ -178,11 +207,17 @@ def make_calibration(readings: int) -> Calibration:
         FrictionSection("open", 2600.0, 4300.0, Estimate(0.28, 0.2, 0.36, "case file", determined=False)),
     )
     return Calibration(
-        sections, estimate(BLOCK, 4e3, "in-slips plateau"), Estimate(0.0, 0.0, 0.0, "no block weight given"),
-        estimate(1.0, 0.2, "sawtooth over stands"), estimate(0.19, 0.03, "off-bottom torque", samples=22), made,
-        rng.normal(0, 4e3, len(made)), 4.1e3, np.zeros((8, 3)),
+        sections,
+        estimate(BLOCK, 4e3, "in-slips plateau"),
+        Estimate(0.0, 0.0, 0.0, "no block weight given"),
+        estimate(1.0, 0.2, "sawtooth over stands"),
+        estimate(0.19, 0.03, "off-bottom torque", samples=22),
+        made,
+        rng.normal(0, 4e3, len(made)),
+        4.1e3,
+        np.zeros((8, 3)),
         can_not_tell=("Open-hole friction could not be told from the readings; 0.28 was kept.",),
-    )  # fmt: skip
+    )
 
 
 def make_fan() -> Fan:
@@ -190,9 +225,15 @@ def make_fan() -> Fan:
     rotating = BLOCK + 250.0 * np.minimum(depth, 2900.0)
     drag = 50.0 * depth * (depth / 3400.0)
     return Fan(
-        depth, rotating + drag, rotating, rotating - 0.75 * drag, rotating + 0.9 * drag, rotating + 1.1 * drag,
-        rotating - 0.85 * drag, rotating - 0.66 * drag,
-    )  # fmt: skip
+        depth,
+        rotating + drag,
+        rotating,
+        rotating - 0.75 * drag,
+        rotating + 0.9 * drag,
+        rotating + 1.1 * drag,
+        rotating - 0.85 * drag,
+        rotating - 0.66 * drag,
+    )
 
 
 def make_profile(row: int, time: float, compression: float = 160e3) -> Profile:
@@ -216,20 +257,34 @@ def make_episode(k: int, log: TimeLog, **changes) -> Episode:
     first = min(int((k + 0.5) * n / 12) % n, n - 2)
     last = min(first + max(n // 40, 1), n - 1)
     settings = {
-        "id": f"E{k + 1:03d}", "kind": Kind.BUCKLING, "state": State.HELICAL, "start": float(log.time[first]),
-        "end": float(log.time[last]), "first": first, "last": last, "peak": (first + last) // 2,
-        "activity": "drill_slide", "top_md": 2650.0, "bottom_md": 2980.0, "peak_md": 2800.0,
+        "id": f"E{k + 1:03d}",
+        "kind": Kind.BUCKLING,
+        "state": State.HELICAL,
+        "start": float(log.time[first]),
+        "end": float(log.time[last]),
+        "first": first,
+        "last": last,
+        "peak": (first + last) // 2,
+        "activity": "drill_slide",
+        "top_md": 2650.0,
+        "bottom_md": 2980.0,
+        "peak_md": 2800.0,
         "peak_load_ratio": estimate(1.83, 0.22, "replay draws"),
         "peak_compression": estimate(162e3, 14e3, "replay draws"),
-        "lost_weight": estimate(118e3, 16e3, "replay draws"), "lost_to_buckling": estimate(71e3, 19e3, "replay draws"),
-        "probability": 0.97, "consequence": Consequence.WEIGHT_LOST, "family": "A", "cause": "helical_buckling",
-        "note": "helical from 2,690 to 2,940 m", "causes": make_causes(),
-    }  # fmt: skip
+        "lost_weight": estimate(118e3, 16e3, "replay draws"),
+        "lost_to_buckling": estimate(71e3, 19e3, "replay draws"),
+        "probability": 0.97,
+        "consequence": Consequence.WEIGHT_LOST,
+        "family": "A",
+        "cause": "helical_buckling",
+        "note": "helical from 2,690 to 2,940 m",
+        "causes": make_causes(),
+    }
     return Episode(**(settings | changes))
 
 
 def make_findings(n: int = 7200, episodes: int = 3, readings: int = 12, case: Case | None = None) -> Findings:
-    """A whole made-up run of n rows with so many episodes."""
+    """Make up a whole run of n rows with so many episodes."""
     log, activity, bit = make_log(n)
     kinds = (
         {}, {"kind": Kind.LOCKUP, "consequence": Consequence.LOCKED_UP, "state": State.NONE},
@@ -248,17 +303,28 @@ def make_findings(n: int = 7200, episodes: int = 3, readings: int = 12, case: Ca
         for name in sorted({e.family for e in found})
     )
     headline = Headline(
-        "While sliding from 10:27 the string buckled helically at 2,690 to 2,940 m and locked up; 118 kN of the "
-        "surface weight never reached the bit.",
+        "While sliding from 10:27 the string buckled helically at 2,690 to 2,940 m and locked up; 118 kN "
+        "of the surface weight never reached the bit.",
         "likely (0.97)",
         ("Wall contact of the helix explains 71 kN of it.", "Friction explains the rest."),
         ("Whether the hole was clean: no flow out in the log.",),
     )
     return Findings(
-        case or make_case(), log, make_well(), make_rig(log, activity), make_calibration(readings),
-        make_loads(log, activity, bit), make_fan(), found, families, profiles, headline,
-        dropped={"shorter than 20 s": 4}, inputs={"case.toml": "ef" * 32}, warnings=("One survey station only at TD.",),
-    )  # fmt: skip
+        case or make_case(),
+        log,
+        make_well(),
+        make_rig(log, activity),
+        make_calibration(readings),
+        make_loads(log, activity, bit),
+        make_fan(),
+        found,
+        families,
+        profiles,
+        headline,
+        dropped={"shorter than 20 s": 4},
+        inputs={"case.toml": "ef" * 32},
+        warnings=("One survey station only at TD.",),
+    )
 
 
 @pytest.fixture

@@ -1,0 +1,1 @@
+"""Figures of the report: functions that return a matplotlib Figure."""

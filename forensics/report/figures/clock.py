@@ -7,6 +7,7 @@ from datetime import timedelta
 import numpy as np
 from matplotlib.axes import Axes
 
+from forensics.report.figures import style
 from forensics.report.words import Show
 
 _STEPS = (
@@ -59,10 +60,17 @@ def time_axis(axes: list[Axes], start: float, end: float, show: Show) -> None:
     relative = [place - start for place in places]
     for ax in axes:
         ax.set_xlim(0.0, max(end - start, 1.0))
-        ax.set_xticks(relative)
-        ax.tick_params(axis="x", labelbottom=False, length=0)
-        ax.grid(visible=True, axis="x")
+        # One collection of lines is much cheaper to draw than an axis of ticks whose labels stay hidden.
+        ax.vlines(
+            relative,
+            0.0,
+            1.0,
+            transform=ax.get_xaxis_transform(),
+            color=style.GRID,
+            linewidth=0.6,
+            zorder=0.4,
+        )
+        ax.xaxis.set_visible(ax is axes[-1])
     last = axes[-1]
     last.set_xticks(relative, labels)
-    last.tick_params(axis="x", labelbottom=True, length=3)
     last.set_xlabel(f"time of day, {show.timezone}")

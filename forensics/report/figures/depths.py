@@ -37,8 +37,7 @@ def ratio_map(scene: Scene) -> Figure:
         ax.plot(
             *thin(time - start, show.scaled(bit, "length"), 5 * found.log.interval), color=style.INK, lw=0.9
         )
-    deepest = float(np.nanmax(show.scaled(grid.md_edges if grid.values.size else [1.0], "length")))
-    ax.set_ylim(deepest, 0.0)
+    ax.set_ylim(_deepest(scene), 0.0)
     _hole_marks(ax, scene)
     ax.set_ylabel(f"measured depth [{show.unit('length')}]")
     lanes.number_marks(ax, [(float(time[e.peak]) - start, e.id) for e in scene.mains], end - start)
@@ -50,6 +49,13 @@ def ratio_map(scene: Scene) -> Figure:
     _ratio_key(figure, (9.25, 0.62, 0.17, 2.9))
     time_axis([ax], start, end, show)
     return figure
+
+
+def _deepest(scene: Scene) -> float:
+    """Depth that map and bit both fit above, in the unit shown."""
+    edges, bit = scene.findings.loads.ratio_map.md_edges, scene.findings.log.get("bit_depth")
+    ends = [float(np.nanmax(values)) for values in (edges, bit) if values is not None and len(values)]
+    return float(scene.show.scaled(max([1.0, *ends]), "length"))
 
 
 def _ratio_key(figure: Figure, box: tuple[float, float, float, float]) -> None:
@@ -79,7 +85,7 @@ def _ratio_key(figure: Figure, box: tuple[float, float, float, float]) -> None:
 
 
 def _hole_marks(ax: Axes, scene: Scene) -> None:
-    """A line at each change of hole section, named at the right edge."""
+    """Draw a line at each change of hole section, named at the right edge."""
     hole = scene.findings.well.hole
     low, high = sorted(ax.get_ylim())
     for top, name in zip(np.asarray(hole.top)[1:], list(hole.name)[1:], strict=False):
@@ -87,9 +93,16 @@ def _hole_marks(ax: Axes, scene: Scene) -> None:
         if low < y < high:
             ax.axhline(y, color=style.MUTED, linewidth=0.8, linestyle=(0, (5, 2)))
             ax.text(
-                0.995, y, f"{name} below", transform=ax.get_yaxis_transform(), ha="right", va="bottom",
-                fontsize=7.2, color=style.MUTED, bbox={"fc": "white", "ec": "none", "pad": 0.6, "alpha": 0.75},
-            )  # fmt: skip
+                0.995,
+                y,
+                f"{name} below",
+                transform=ax.get_yaxis_transform(),
+                ha="right",
+                va="bottom",
+                fontsize=7.2,
+                color=style.MUTED,
+                bbox={"fc": "white", "ec": "none", "pad": 0.6, "alpha": 0.75},
+            )
 
 
 @style.styled

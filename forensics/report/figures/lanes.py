@@ -117,7 +117,7 @@ def mark_rows(axes: Sequence[Axes], spans: Sequence[tuple[float, float]]) -> Non
             low, high = 0.0, 1.0
             ax.broken_barh(
                 list(spans), (low, high - low), transform=ax.get_xaxis_transform(),
-                facecolor=style.SPAN, edgecolor="none", zorder=0,
+                facecolor=style.SPAN, edgecolor="none", zorder=0.2,
             )  # fmt: skip
 
 

@@ -77,7 +77,7 @@ P = ParamSpec("P")
 
 
 def house_settings() -> dict[str, object]:
-    """Settings for drawing: matplotlib's own defaults, whatever the user's file says, then the house style."""
+    """Give settings for drawing: matplotlib's defaults, whatever the user's file says, then our style."""
     defaults = {k: v for k, v in mpl.rcParamsDefault.items() if k not in _BACKEND_KEYS}
     return defaults | _STYLE
 
@@ -94,7 +94,7 @@ def styled(draw: Callable[P, Figure]) -> Callable[P, Figure]:
 
 
 def sheet(width: float, height: float) -> Figure:
-    """An empty figure on the Agg canvas, size in inches capped.
+    """Make an empty figure on the Agg canvas, size in inches capped.
 
     Raises
     ------

@@ -221,13 +221,13 @@ def _draw_track(ax: Axes, track: Track, base: tuple[Floats, float, float], scene
         x, y = thin(time - start, show.scaled(curve.values, track.quantity), 5 * interval, points)
         ax.plot(x, y, color=curve.colour, linewidth=curve.width, linestyle=curve.dash)
         drawn.append((curve, y))
-    floor = [np.array([0.0, 1.1])] if track.name == "load ratio" else []
-    _limits(ax, [y for _, y in drawn] + floor, track.depth)
+    _limits(ax, [y for _, y in drawn], track.depth)
     style.side_name(ax, track.name, show.unit(track.quantity))
     ax.yaxis.set_major_locator(MaxNLocator(4 if track.height > 0.7 else 3, steps=[1, 2, 2.5, 5, 10]))
     ax.grid(visible=True, axis="y")
     ax.spines["bottom"].set_visible(False)
     if track.name == "load ratio":
+        ax.set_ylim(0.0, max(ax.get_ylim()[1], 1.15))
         ax.axhline(1.0, color=style.INK, linewidth=0.8, linestyle=(0, (1, 1.5)))
         ax.text(
             1.008, 1.0, "sinusoidal\nthreshold", transform=ax.get_yaxis_transform(), va="center", fontsize=7

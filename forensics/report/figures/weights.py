@@ -48,9 +48,15 @@ def fan_chart(scene: Scene) -> Figure:
     for kind, (_, colour, marker) in KINDS.items():
         picked = [r for r in readings if r.kind == kind]
         ax.plot(
-            show.scaled([r.value for r in picked], "force"), show.scaled([r.bit_depth for r in picked], "length"),
-            linestyle="none", marker=marker, markersize=5, mfc="white", mec=colour, mew=1.2,
-        )  # fmt: skip
+            show.scaled([r.value for r in picked], "force"),
+            show.scaled([r.bit_depth for r in picked], "length"),
+            linestyle="none",
+            marker=marker,
+            markersize=5,
+            mfc="white",
+            mec=colour,
+            mew=1.2,
+        )
     if len(depth):
         _end_names(ax, depth, {k: show.scaled(v[0], "force") for k, v in lines.items()})
     else:
@@ -163,9 +169,16 @@ def _cloud(ax: Axes, x: Floats, y: Floats, top: float) -> None:
     """Density of points, the line of equal weights, and the median of y along x."""
     ax.plot([0, top], [0, top], color=style.INK, linewidth=0.9)
     ax.text(
-        0.66 * top, 0.68 * top, "all of it reaches the bit", fontsize=7.2, rotation=45, ha="center", va="bottom",
-        rotation_mode="anchor", transform_rotates_text=True,
-    )  # fmt: skip
+        0.66 * top,
+        0.68 * top,
+        "all of it reaches the bit",
+        fontsize=7.2,
+        rotation=45,
+        ha="center",
+        va="bottom",
+        rotation_mode="anchor",
+        transform_rotates_text=True,
+    )
     ax.set_xlim(-0.05 * top, top)
     ax.set_ylim(-0.05 * top, top)
     ax.grid(visible=True)

@@ -86,7 +86,7 @@ def gap_table(scene: Scene) -> Table:
 
 
 def step_table(scene: Scene) -> Table:
-    """What was done to the log, in order."""
+    """Tell what was done to the log, in order."""
     history = scene.findings.log.history
     columns = (
         Column("step"),
@@ -104,8 +104,12 @@ def step_table(scene: Scene) -> Table:
 def column_table(scene: Scene) -> Table:
     """Columns as found and what they were taken for; those used first."""
     columns = (
-        Column("file", "code"), Column("column", "code"), Column("unit"), Column("taken for", "code"), Column("why"),
-    )  # fmt: skip
+        Column("file", "code"),
+        Column("column", "code"),
+        Column("unit"),
+        Column("taken for", "code"),
+        Column("why"),
+    )
     found = [column for file in scene.findings.log.files for column in file.columns]
     ordered = sorted(found, key=lambda c: c.channel is None)
     rows = tuple(

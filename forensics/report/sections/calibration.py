@@ -24,8 +24,8 @@ def _fit_sentence(scene: Scene) -> str:
     counts = {kind: sum(1 for r in cal.readings if r.kind == kind) for kind in kinds}
     if not cal.readings:
         return (
-            "The log shows no steady off-bottom reading, so nothing was calibrated: the friction factors are the "
-            "assumed ones, and the reconstruction is worth no more than they are."
+            "The log shows no steady off-bottom reading, so nothing was calibrated: the friction factors "
+            "are the assumed ones, and the reconstruction is worth no more than they are."
         )
     parts = ", ".join(f"{fixed(n, 0)} {plain(kind)}" for kind, n in counts.items() if n)
     rms = scene.show.value(cal.residual_rms, "force")
@@ -36,29 +36,32 @@ def _fit_sentence(scene: Scene) -> str:
 
 def _fan(scene: Scene) -> Picture:
     caption = (
-        "Hookload against bit depth, block weight included: lines are the model at the calibrated friction, bands its "
-        "90 % friction interval, marks the steady readings (triangle up: pick-up; circle: rotating; triangle down: "
-        "slack-off). Marks along the lines: a good fit. All marks shifted alike: a tare. Marks that cross the band: "
-        "friction changed with depth."
+        "Hookload against bit depth, block weight included: lines are the model at the calibrated "
+        "friction, bands its 90 % friction interval, marks the steady readings (triangle up: pick-up; "
+        "circle: rotating; triangle down: slack-off). Marks along the lines: a good fit. All marks "
+        "shifted alike: a tare. Marks that cross the band: friction changed with depth."
     )
-    alt = f"Three model lines of hookload over bit depth with {count(len(scene.findings.calibration.readings), 'reading')}."
+    readings = count(len(scene.findings.calibration.readings), "reading")
+    alt = f"Three model lines of hookload over bit depth with {readings}."
     return Picture(lambda: weights.fan_chart(scene), caption, alt)
 
 
 def _residuals(scene: Scene) -> Picture:
     caption = (
-        "What the model leaves over, measured less modelled: positive means the hook carries, or the top drive turns "
-        "against, more than the model says. Left: each steady reading over depth. Right: each sample off bottom over "
-        "time, for hookload and torque. Look for a drift or a step; scatter about zero is noise."
+        "What the model leaves over, measured less modelled: positive means the hook carries, or the top "
+        "drive turns against, more than the model says. Left: each steady reading over depth. Right: each "
+        "sample off bottom over time, for hookload and torque. Look for a drift or a step; scatter about "
+        "zero is noise."
     )
     residuals = scene.findings.calibration.residuals
     worst = float(np.max(np.abs(residuals))) if len(residuals) else float("nan")
-    alt = f"Residuals of readings and samples; the largest reading residual is {scene.show.value(worst, 'force')}."
+    largest = scene.show.value(worst, "force")
+    alt = f"Residuals of readings and samples; the largest residual of a reading is {largest}."
     return Picture(lambda: weights.residual_chart(scene), caption, alt)
 
 
 def tare_table(scene: Scene) -> Table:
-    """Reference readings by stand."""
+    """List reference readings by stand."""
     show, tares = scene.show, scene.findings.rig.tares
     rows = tuple(
         (

@@ -74,7 +74,7 @@ def _part(scene: Scene, episode: Episode) -> Part:
 
 
 def summary(scene: Scene, episode: Episode) -> str:
-    """What happened, where, during what, and what it led to."""
+    """Say what happened, where, during what, and what it led to."""
     show = scene.show
     sentences = [
         f"{kind_words(episode).capitalize()} for {duration(episode.duration)} while {_doing(episode)}"
@@ -92,10 +92,17 @@ def summary(scene: Scene, episode: Episode) -> str:
 
 def _doing(episode: Episode) -> str:
     words = {
-        "connection": "in a connection", "drill_rotate": "drilling with rotation", "drill_slide": "sliding",
-        "ream_down": "reaming down", "ream_up": "reaming up", "rotate_off_bottom": "rotating off bottom",
-        "trip_in": "running in", "trip_out": "pulling out", "circulate": "circulating", "static": "standing still",
-    }  # fmt: skip
+        "connection": "in a connection",
+        "drill_rotate": "drilling with rotation",
+        "drill_slide": "sliding",
+        "ream_down": "reaming down",
+        "ream_up": "reaming up",
+        "rotate_off_bottom": "rotating off bottom",
+        "trip_in": "running in",
+        "trip_out": "pulling out",
+        "circulate": "circulating",
+        "static": "standing still",
+    }
     return words.get(episode.activity, "doing what the log does not tell")
 
 
@@ -111,7 +118,7 @@ def _consequence(scene: Scene, episode: Episode) -> str:
 
 
 def _numbers(scene: Scene, episode: Episode) -> tuple[Number, ...]:
-    """The episode's numbers, with those of its kind and its place."""
+    """List the episode's numbers, with those of its kind and its place."""
     show, loads = scene.show, scene.findings.loads
     rows = episode_numbers(episode, show)
     if math.isfinite(episode.peak_md):
@@ -133,25 +140,26 @@ def _profile_picture(scene: Scene, episode: Episode) -> Picture:
     profile = scene.findings.profiles[episode.id]
     show = scene.show
     caption = (
-        f"{episode.id}, load along the hole at {show.stamp(profile.time)}, near its peak. Effective tension is positive "
-        "to the right, compression negative to the left. Dashed: sinusoidal threshold; dotted: "
-        "helical threshold, both at the actual wall force. Where the load lies left of a threshold the string is past "
-        "it; bars at the left edge show the state the replay gave (light: sinusoidal; dark: helical)."
+        f"{episode.id}, load along the hole at {show.stamp(profile.time)}, near its peak. Effective "
+        "tension is positive to the right, compression negative to the left. Dashed: sinusoidal "
+        "threshold; dotted: helical threshold, both at the actual wall force. Where the load lies left of "
+        "a threshold the string is past it; bars at the left edge show the state the replay gave (light: "
+        "sinusoidal; dark: helical)."
     )
     compression = -float(profile.tension.min()) if len(profile.tension) else math.nan
     alt = (
-        f"Effective tension over measured depth with sinusoidal and helical thresholds; the largest compression is "
-        f"{show.value(compression, 'force')}."
+        "Effective tension over measured depth with sinusoidal and helical thresholds; the largest "
+        f"compression is {show.value(compression, 'force')}."
     )
     return Picture(lambda: depths.load_profile(scene, profile, episode), caption, alt)
 
 
 def _moment_picture(scene: Scene, episode: Episode) -> Picture:
     caption = (
-        f"{episode.id}, the strip around it: shaded while it lasts, dashed at its peak. The load ratio crosses the "
-        "dotted line where the sinusoidal threshold is passed. In the last depth track the pale line shows how far "
-        "down the motion at surface had been felt since the last reversal: short of the bit, the lower "
-        "end did not move."
+        f"{episode.id}, the strip around it: shaded while it lasts, dashed at its peak. The load ratio "
+        "crosses the dotted line where the sinusoidal threshold is passed. In the last depth track the "
+        "pale line shows how far down the motion at surface had been felt since the last reversal: short "
+        "of the bit, the lower end did not move."
     )
     alt = f"Strip chart of rig channels and reconstruction from before to after episode {episode.id}."
     return Picture(lambda: timeline.moment_strip(scene, episode), caption, alt)
@@ -167,7 +175,7 @@ def cause_table(episode: Episode) -> Table:
     )
     ranked = sorted(episode.causes, key=lambda c: -c.probability)
     rows = tuple((plain(c.cause), fixed(c.probability, 2), _side(c, 1), _side(c, -1)) for c in ranked)
-    note = "Probabilities weigh the causes against one another on this evidence. In brackets: where it comes from."
+    note = "Probabilities weigh the causes against one another on this evidence. In brackets: its origin."
     empty = "No cause was weighed for this episode."
     return Table(f"{episode.id}: causes weighed", columns, rows, note if rows else "", empty)
 
@@ -195,13 +203,24 @@ def episode_table(scene: Scene) -> Table:
     chosen = sorted(episodes, key=lambda e: (-severity(e), e.start, e.id))[:TABLE_ROWS]
     rows = tuple(_episode_row(scene, e) for e in sorted(chosen, key=lambda e: (e.start, e.id)))
     columns = (
-        Column("id", "code"), Column("kind"), Column(f"start ({show.timezone})"), Column("length", "number"),
-        Column("while"), Column(f"interval [{show.unit('length')}]", "number"), Column("load ratio", "number"),
-        Column(f"compression [{show.unit('force')}]", "number"), Column(f"lost weight [{show.unit('force')}]", "number"),
-        Column("prob.", "number"), Column("consequence"), Column("group"), Column("cause"),
-    )  # fmt: skip
-    note = "In brackets: 90 % interval. Lost weight is at the peak of load ratio; the second figure is the part lost to "
-    note += "buckling. Origin of all: the replay at the calibrated friction and its draws."
+        Column("id", "code"),
+        Column("kind"),
+        Column(f"start ({show.timezone})"),
+        Column("length", "number"),
+        Column("while"),
+        Column(f"interval [{show.unit('length')}]", "number"),
+        Column("load ratio", "number"),
+        Column(f"compression [{show.unit('force')}]", "number"),
+        Column(f"lost weight [{show.unit('force')}]", "number"),
+        Column("prob.", "number"),
+        Column("consequence"),
+        Column("group"),
+        Column("cause"),
+    )
+    note = (
+        "In brackets: 90 % interval. Lost weight is at the peak of load ratio; the second figure is the part "
+        "lost to buckling. Origin of all: the replay at the calibrated friction and its draws."
+    )
     if len(episodes) > TABLE_ROWS:
         note += (
             f" The {TABLE_ROWS} most severe of {len(episodes)} are listed here; episodes.csv has them all."
@@ -220,19 +239,31 @@ def _episode_row(scene: Scene, e: Episode) -> tuple[str | tuple[str, ...], ...]:
     lost = tuple(filter(None, (bare(e.lost_weight, "force"), bare(e.lost_to_buckling, "force"))))
     span = show.depths(e.top_md, e.bottom_md).removesuffix(f" {show.unit('length')}")
     return (
-        e.id, kind_words(e), show.time(e.start), duration(e.duration), plain(e.activity),
-        "" if span == "not known" else span, bare(e.peak_load_ratio, "dimensionless"),
-        bare(e.peak_compression, "force"), lost or "", fixed(e.probability, 2) if math.isfinite(e.probability) else "",
-        plain(e.consequence), e.family, plain(e.cause),
-    )  # fmt: skip
+        e.id,
+        kind_words(e),
+        show.time(e.start),
+        duration(e.duration),
+        plain(e.activity),
+        "" if span == "not known" else span,
+        bare(e.peak_load_ratio, "dimensionless"),
+        bare(e.peak_compression, "force"),
+        lost or "",
+        fixed(e.probability, 2) if math.isfinite(e.probability) else "",
+        plain(e.consequence),
+        e.family,
+        plain(e.cause),
+    )
 
 
 def family_table(scene: Scene) -> Table:
-    """Groups of like episodes."""
+    """List groups of like episodes."""
     columns = (
-        Column("group"), Column("what its members share"), Column("members", "number"), Column("episodes", "code"),
+        Column("group"),
+        Column("what its members share"),
+        Column("members", "number"),
+        Column("episodes", "code"),
         Column("stability", "number"),
-    )  # fmt: skip
+    )
     rows = []
     for family in scene.findings.families:
         listed = ", ".join(family.members[:MEMBERS])
@@ -240,7 +271,7 @@ def family_table(scene: Scene) -> Table:
         listed += f" and {more} more" if more > 0 else ""
         stable = fixed(family.stability, 2) if math.isfinite(family.stability) else "by rule"
         rows.append((family.name, family.description, fixed(len(family.members), 0), listed, stable))
-    note = "Stability: mean agreement of the group when the episodes are resampled, 0 to 1; by rule: not resampled."
+    note = "Stability: mean agreement of the group under resampling, 0 to 1; by rule: not resampled."
     return Table(
         "Groups of like episodes", columns, tuple(rows), note if rows else "", "No group was formed."
     )

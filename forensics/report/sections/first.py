@@ -40,7 +40,7 @@ def cannot_tell(scene: Scene) -> tuple[str, ...]:
 
 
 def number(name: str, estimate: Estimate, quantity: str, show: Show) -> Number:
-    """A row of a number table from an estimate."""
+    """Make a row of a number table from an estimate."""
     value, interval = show.estimate(estimate, quantity)
     origin = estimate.source
     if estimate.samples:
@@ -51,7 +51,7 @@ def number(name: str, estimate: Estimate, quantity: str, show: Show) -> Number:
 
 
 def key_numbers(scene: Scene) -> tuple[Number, ...]:
-    """The numbers a reader needs first."""
+    """List the numbers a reader needs first."""
     found, show = scene.findings, scene.show
     rows: list[Number] = []
     worst = worst_episode(scene)
@@ -96,13 +96,13 @@ def section_name(kind: str) -> str:
 
 
 def worst_episode(scene: Scene) -> Episode | None:
-    """The episode the key numbers speak of: the most severe main one that has a load ratio."""
+    """Find the episode the key numbers speak of: the most severe main one that has a load ratio."""
     judged = [e for e in scene.mains if math.isfinite(e.peak_load_ratio.value)]
     return max(judged, key=severity) if judged else None
 
 
 def episode_numbers(episode: Episode, show: Show, prefix: str = "") -> list[Number]:
-    """The numbers of one episode; those it does not have are left out."""
+    """List the numbers of one episode; those it does not have are left out."""
     pairs = [
         ("largest load ratio (compression over sinusoidal load)", episode.peak_load_ratio, "dimensionless"),
         ("compression at that place", episode.peak_compression, "force"),
@@ -118,7 +118,7 @@ def episode_numbers(episode: Episode, show: Show, prefix: str = "") -> list[Numb
 
 
 def rotation_notice(scene: Scene) -> list[Element]:
-    """A red notice where the string was turned while buckled."""
+    """Put up a red notice where the string was turned while buckled."""
     turned = [e for e in scene.findings.episodes if e.consequence is Consequence.ROTATED_BUCKLED]
     if not turned:
         return []
@@ -129,8 +129,8 @@ def rotation_notice(scene: Scene) -> list[Element]:
 
 
 FATIGUE = (
-    "Each turn of a bent pipe is a cycle of bending fatigue. Whether joints need inspection or retirement is for "
-    "the owner of the pipe to judge from its records; this report does not track cumulative damage."
+    "Each turn of a bent pipe is a cycle of bending fatigue. Whether joints need inspection or retirement "
+    "is for the owner of the pipe to judge from its records; this report does not track cumulative damage."
 )
 
 

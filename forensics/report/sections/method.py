@@ -9,10 +9,20 @@ from forensics.report.words import duration, fixed, plain
 
 # Quantity of each channel whose noise is shown.
 _NOISE = {
-    "hookload": "force", "wob": "force", "torque": "moment", "rpm": "rotation", "standpipe_pressure": "pressure",
-    "differential_pressure": "pressure", "flow_in": "flow", "flow_out": "flow", "block_position": "length",
-    "bit_depth": "length", "hole_depth": "length", "downhole_wob": "force", "downhole_torque": "moment",
-}  # fmt: skip
+    "hookload": "force",
+    "wob": "force",
+    "torque": "moment",
+    "rpm": "rotation",
+    "standpipe_pressure": "pressure",
+    "differential_pressure": "pressure",
+    "flow_in": "flow",
+    "flow_out": "flow",
+    "block_position": "length",
+    "bit_depth": "length",
+    "hole_depth": "length",
+    "downhole_wob": "force",
+    "downhole_torque": "moment",
+}
 
 
 def describe(scene: Scene) -> Section:
@@ -21,9 +31,10 @@ def describe(scene: Scene) -> Section:
         assumption_table(scene),
         noise_table(scene),
         Text(
-            "Signs: tension is positive and compression negative where loads along the hole are shown; weight on bit and "
-            "compression stated as such are positive; residuals are measured less modelled. Depths are measured along "
-            "the hole from the datum of the survey. Intervals are 90 % intervals."
+            "Signs: tension is positive and compression negative where loads along the hole are shown; "
+            "weight on bit and compression stated as such are positive; residuals are measured less "
+            "modelled. Depths are measured along the hole from the datum of the survey. Intervals are 90 "
+            "% intervals."
         ),
         Bullets(METHOD_LIMITS, "Limits of the method:"),
         Notice("Cautions", GENERAL),
@@ -32,7 +43,7 @@ def describe(scene: Scene) -> Section:
 
 
 def assumption_table(scene: Scene) -> Table:
-    """The choices the result rests on."""
+    """List the choices the result rests on."""
     case, found, show = scene.findings.case, scene.findings, scene.show
     rules = case.criteria
     given = case.friction

@@ -15,7 +15,7 @@ from forensics.report.words import count, duration, fixed
 def describe(scene: Scene) -> Section:
     """Describe what was run, in what hole, in what mud."""
     elements = (
-        Numbers("The run", run_numbers(scene)),
+        Numbers("Period, path and mud", run_numbers(scene), worded=True),
         hole_table(scene),
         string_table(scene),
         Numbers("Friction and weights, with what decided each", calibration_numbers(scene)),
@@ -40,7 +40,7 @@ def run_numbers(scene: Scene) -> tuple[Number, ...]:
 
 
 def survey_numbers(scene: Scene) -> list[Number]:
-    """What the survey amounts to."""
+    """Say what the survey amounts to."""
     show, path = scene.show, scene.findings.well.trajectory
     stations = len(path.md)
     rows = [
@@ -78,7 +78,7 @@ def mud_numbers(scene: Scene) -> list[Number]:
 
 
 def hole_table(scene: Scene) -> Table:
-    """The hole, top down."""
+    """List the hole, top down."""
     show, hole = scene.show, scene.findings.well.hole
     rows = tuple(
         (
@@ -87,7 +87,7 @@ def hole_table(scene: Scene) -> Table:
             show.value(float(hole.top[k]), "length", 0),
             show.value(float(hole.bottom[k]), "length", 0),
             show.value(float(hole.diameter[k]), "diameter"),
-            fixed(float(hole.friction[k]), 2) if math.isfinite(hole.friction[k]) else "",
+            fixed(float(hole.friction[k]), 2) if math.isfinite(hole.friction[k]) else "not given",
         )
         for k in range(len(hole.top))
     )
@@ -99,7 +99,7 @@ def hole_table(scene: Scene) -> Table:
 
 
 def string_table(scene: Scene) -> Table:
-    """The string, bit first."""
+    """List the string, bit first."""
     show, string = scene.show, scene.findings.well.string
     rows = tuple(
         (
@@ -139,7 +139,7 @@ def calibration_numbers(scene: Scene) -> tuple[Number, ...]:
     law = found.loads.rate_law
     if law.determined:
         origin = f"rotated footage; {count(law.samples, 'sample')}, spread {fixed(100 * law.spread, 0)} %"
-        text = f"rate grows with bit load to the power {fixed(law.exponent, 2)}"
+        text = f"(bit load)^{fixed(law.exponent, 2)}"
         rows.append(Number("drilling rate law", text, "", origin))
     else:
         origin = "no rotated footage taught it; the bit load while drilling off rests on less"
