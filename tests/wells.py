@@ -21,11 +21,13 @@ def one_pipe_well(
     No survey starts like that, so the trajectory is put together here.
     """
     md = np.array([0.0, 0.5 * length, 1.1 * length])
-    across, down = np.sin(inclination) * md, np.cos(inclination) * md
-    way = Trajectory(md, np.full(3, inclination), np.full(3, 0.7), across * np.cos(0.7), across * np.sin(0.7), down)
+    across, tvd = np.sin(inclination) * md, np.cos(inclination) * md
+    north, east = across * np.cos(0.7), across * np.sin(0.7)
     return Well(
-        trajectory=way,
-        hole=Hole(np.array([0.0]), np.array([2 * length]), np.array([diameter]), ("open",), ("",), np.array([np.nan])),
+        trajectory=Trajectory(md, np.full(3, inclination), np.full(3, 0.7), north, east, tvd),
+        hole=Hole(
+            np.zeros(1), np.array([2 * length]), np.array([diameter]), ("open",), ("",), np.full(1, np.nan)
+        ),
         string=String((pipe,)),
         fluid=Fluid(np.array([1200.0]), np.array([0.0])),
     )
@@ -39,8 +41,12 @@ def build_well(azimuth: float = 0.4, turn: float = 0.0) -> Well:
     return Well(
         trajectory=build_trajectory(md, inclination, bearing),
         hole=Hole(
-            np.array([0.0, 1500.0]), np.array([1500.0, 3600.0]), np.array([0.2205, 0.2159]), ("cased", "open"),
-            ("", ""), np.full(2, np.nan),
+            np.array([0.0, 1500.0]),
+            np.array([1500.0, 3600.0]),
+            np.array([0.2205, 0.2159]),
+            ("cased", "open"),
+            ("", ""),
+            np.full(2, np.nan),
         ),
         string=String(
             (

@@ -8,6 +8,7 @@ visited station, and the start-up of the help text. Nothing here passes or fails
 from __future__ import annotations
 
 import json
+import math
 import os
 import platform
 import subprocess
@@ -33,9 +34,10 @@ OTHER = ("imports", "figures", "exports")
 CHILD = """
 import json, sys, time
 began = time.perf_counter()
-from pipelines import incident
-import psutil
+from pipelines import analysis, incident, results
 import forensics.replay.run as module
+imports = time.perf_counter() - began
+import psutil
 spent = []
 kernel = module.replay_rows
 def timed(*arguments):
@@ -45,6 +47,8 @@ def timed(*arguments):
     return visits
 module.replay_rows = timed
 result = incident.run(sys.argv[1], sys.argv[2], "metric", True)
+timings = dict(result.timings)
+timings["imports"] += imports
 whole = time.perf_counter() - began
 info = psutil.Process().memory_info()
 try:
@@ -54,7 +58,7 @@ except ImportError:
     peak = getattr(info, "peak_wset", info.rss)
 seconds, visits = max(spent, key=lambda pair: pair[1])
 print(json.dumps({
-    "whole": whole, "peak": peak, "kernel": seconds, "visits": visits, "timings": dict(result.timings),
+    "whole": whole, "peak": peak, "kernel": seconds, "visits": visits, "timings": timings,
     "rows": len(result.findings.log), "episodes": len(result.findings.episodes),
 }))
 """
@@ -94,8 +98,14 @@ def twenty_channels(columns: dict[str, np.ndarray]) -> dict[str, np.ndarray]:
 
 
 def make_well(folder: Path, hours: float) -> Path:
-    """Write the case: 62 deg tangent, bit from 3.3 km to 5 km in 48 h."""
-    job = cases.Job(start_depth=3300.0, duration=hours * 3600.0, rop=0.014)
+    """Write the case: a lateral, bit from 3.3 km to 5 km in 48 h, slid with enough weight to buckle."""
+    job = cases.Job(
+        start_depth=3300.0,
+        duration=hours * 3600.0,
+        rop=0.014,
+        hold=math.radians(86.0),
+        slide_weight=150e3,
+    )
     path = cases.make_case(folder, replace(job, duration=60.0))
     cases.write_well(job, folder)
     table = pd.DataFrame(twenty_channels(cases.log_columns(job)))

@@ -33,7 +33,7 @@ def case_for() -> Case:
 
 @pytest.fixture(scope="module")
 def bar():
-    """A horizontal bar 3 km long, and what the kernels need."""
+    """Lay out a horizontal bar 3 km long, and what the kernels need."""
     well = one_pipe_well(math.pi / 2, 3000.0, STIFF)
     model = build_model(well, case_for(), 3000.0)
     at = setting(model, MU, MU)
@@ -117,9 +117,7 @@ def test_small_readings_do_not_ratchet(bar):
 
 @pytest.mark.parametrize("drilled", [0.01, 0.04])
 def test_bit_unloads_a_pushed_bar_by_the_length_it_drills(bar, drilled):
-    """The bar is loaded evenly (turned on bottom); sliding out from the bit by u lowers the load by
-    sqrt(2 u EA mu w) there, over a length of that over mu w.
-    """
+    """Exact: an evenly loaded bar sliding out by u loses sqrt(2 u EA mu w) of load at that end."""
     at, model, weight = bar
     memory, now = fresh(model)
     load = 300e3
@@ -127,7 +125,8 @@ def test_bit_unloads_a_pushed_bar_by_the_length_it_drills(bar, drilled):
     go(at, start, NEVER, (memory, now))
     steps = 200
     rules = NEVER._replace(rate=drilled / steps, exponent=0.0, band=1e9)
-    found = go(at, rows(np.full(steps, -load), np.zeros(steps), drilling=np.ones(steps, bool)), rules, (memory, now))
+    samples = rows(np.full(steps, -load), np.zeros(steps), drilling=np.ones(steps, bool))
+    found = go(at, samples, rules, (memory, now))
     drop = math.sqrt(2 * drilled * at.pipe.ea[0] * MU * weight)
     assert found.bit_load[0] < load
     assert load - found.bit_load[-1] == pytest.approx(drop, rel=0.02)
@@ -140,7 +139,8 @@ def test_once_through_the_string_follows_the_hookload_both_ways():
     at = setting(model, 0.2, 0.25)
     slack = float(model.offbottom.string_weight("slack_off", 2400.0, 0.2, 0.25)[0])
     memory, now = fresh(model)
-    top = np.concatenate([[slack + 5e3], np.linspace(slack, slack - 60e3, 30), np.linspace(slack - 60e3, slack, 30)])
+    feed = np.linspace(slack, slack - 60e3, 30)
+    top = np.concatenate([[slack + 5e3], feed, feed[::-1]])
     samples = rows(top, np.ones(len(top)), bit=np.full(len(top), 2400.0))
     found = go(at, samples, NEVER, (memory, now))
     assert found.full[-1] == 1
