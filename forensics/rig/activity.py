@@ -11,7 +11,7 @@ from forensics.logs.table import TimeLog
 from forensics.rig import noise
 from forensics.rig.depth import DepthView
 from forensics.rig.noise import Bools, Floats
-from forensics.rig.signals import Signals, read_signals
+from forensics.rig.signals import MOVING_WINDOW, Signals, read_signals
 from forensics.rig.tare import Reference
 from forensics.rig.view import Activity, RigView
 
@@ -91,9 +91,7 @@ def bottom_evidence(
     _vote(vote, surface.pumping & (surface.differential < _NO_PRESSURE * level), -1)
     _vote_by_weight(vote, surface, depths, references, signals)
     freely = (surface.direction > 0) & (-surface.speed > _FREE_SPEED) & (depths.gap > _TOUCH)
-    loaded = references[1].weight - surface.smooth > weight_limit(references[1], signals)
-    loaded &= signals.weighed
-    _vote(vote, freely & (surface.turning | ~loaded), -2)
+    _vote(vote, freely, -2)
     _vote(vote, surface.slips, 0)
     _vote(vote, ~close, -2)
     return vote
@@ -115,12 +113,58 @@ def _vote_by_weight(
     load = turning_reference(references, surface.axial) - surface.smooth
     _vote(vote, turned & (load > limit), 2)
     _vote(vote, turned & (load < 0.5 * limit), -2)
-    _vote(vote, still & (slack.weight - surface.smooth > weight_limit(slack, signals)), 2)
+    limit = weight_limit(slack, signals)
+    load = local_slack_off(surface, depths, slack, signals) - surface.smooth
+    _vote(vote, still & (load > limit), 2)
+    calm = np.abs(noise.rate(surface.smooth, signals.time, MOVING_WINDOW)) * MOVING_WINDOW < limit
+    _vote(vote, still & calm & (surface.direction > 0) & (np.abs(load) < 0.5 * limit), -2)
     lifted = noise.hold(surface.direction) < 0
     high = surface.smooth > pick.weight - weight_limit(pick, signals)
     _vote(vote, still & lifted & high & (depths.gap > _TOUCH), -2)
     far = (surface.direction < 0) & (depths.gap > 0.5 * depths.near)
     _vote(vote, still & far & ~np.isfinite(pick.weight), -2)
+
+
+def local_slack_off(surface: Surface, depths: DepthView, slack: Reference, signals: Signals) -> Floats:
+    """Give the slack-off weight as last seen while the string was lowered off bottom in the same stand.
+
+    Parameters
+    ----------
+    surface : Surface
+        Hookload and motion.
+    depths : DepthView
+        The gap.
+    slack : Reference
+        The slack-off weight carried from steady readings, which serves where the stand shows no lowering.
+    signals : Signals
+        Noise and sampling.
+
+    Returns
+    -------
+    ndarray, shape (n,)
+        [N]; NaN where nothing tells it.
+
+    Notes
+    -----
+    Drag can grow between readings: cuttings do it in an hour. A hookload that was as low while the bit was
+    still coming down is no weight on bottom.
+    """
+    lowered = (surface.direction > 0) & (-surface.speed > _FREE_SPEED) & (depths.gap > _TOUCH)
+    lowered &= ~surface.turning & ~surface.slips & signals.weighed
+    spent = noise.travel_since(lowered, signals.bit) > 0.5 * depths.near
+    window = noise.window_seconds(SMOOTHING, signals.interval)
+    calm = np.abs(noise.rate(surface.smooth, signals.time, window)) * window < 2 * weight_limit(
+        slack, signals
+    )
+    seen = np.flatnonzero(lowered & spent & calm)
+    if not seen.size or not slack.known:
+        return slack.weight
+    rows = np.arange(len(slack.weight))
+    last = np.searchsorted(seen, rows, side="right") - 1
+    source = seen[np.maximum(last, 0)]
+    stand = np.cumsum(np.diff(surface.slips.astype(np.int8), prepend=0) == 1)
+    held = (last >= 0) & (stand[source] == stand)
+    return slack.weight + np.where(held, (surface.smooth - slack.weight)[source], 0.0)
 
 
 def turning_reference(references: tuple[Reference, Reference, Reference], axial: Floats) -> Floats:

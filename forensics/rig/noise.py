@@ -179,6 +179,13 @@ def span_in(values: Floats, runs: Runs) -> Floats:
     return high - low
 
 
+def travel_since(mask: Bools, values: Floats) -> Floats:
+    """Change of a channel since the stretch of True rows began, zero outside stretches, shape (n,)."""
+    begins = mask & ~np.concatenate(([False], mask[:-1]))
+    rows = np.maximum.accumulate(np.where(begins, np.arange(len(mask)), 0))
+    return np.where(mask, np.abs(values - values[rows]), 0.0)
+
+
 def hold(values: NDArray[np.int8], initial: int = 0) -> NDArray[np.int8]:
     """Last non-zero value at each row; `initial` before the first."""
     rows = np.where(values != 0, np.arange(len(values)), -1)
