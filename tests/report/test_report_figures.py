@@ -23,10 +23,15 @@ def all_figures(scene):
     episode = scene.mains[0]
     profile = scene.findings.profiles[episode.id]
     return [
-        timeline.run_strip(scene), timeline.moment_strip(scene, episode), path.hole_path(scene), depths.ratio_map(scene),
-        depths.load_profile(scene, profile, episode), weights.fan_chart(scene), weights.residual_chart(scene),
+        timeline.run_strip(scene),
+        timeline.moment_strip(scene, episode),
+        path.hole_path(scene),
+        depths.ratio_map(scene),
+        depths.load_profile(scene, profile, episode),
+        weights.fan_chart(scene),
+        weights.residual_chart(scene),
         weights.transfer_chart(scene),
-    ]  # fmt: skip
+    ]
 
 
 def words_of(figure: Figure) -> str:

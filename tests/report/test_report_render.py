@@ -27,6 +27,7 @@ class Outline(HTMLParser):
         assert self.open == []
 
     def handle_starttag(self, tag, attrs):
+        """Note tag, headings, images and ids."""
         self.tags.append((tag, dict(attrs)))
         self.ids += [value for name, value in attrs if name == "id"]
         if re.fullmatch("h[1-6]", tag):
@@ -37,10 +38,12 @@ class Outline(HTMLParser):
             self.open.append(tag)
 
     def handle_endtag(self, tag):
+        """Insist that it closes the tag opened last."""
         assert self.open, tag
         assert self.open.pop() == tag
 
     def count(self, tag):
+        """How often a tag opens."""
         return sum(1 for name, _ in self.tags if name == tag)
 
 
@@ -205,8 +208,8 @@ def test_nothing_calibrated(build):
     made = build(n=1200, episodes=1, readings=0)
     cal = made.calibration
     bare = Calibration(
-        cal.sections, cal.block_weight, cal.hookload_bias, cal.pipe_above_rotary, None, (), np.empty(0), float("nan"),
-        cal.draws,
+        cal.sections, cal.block_weight, cal.hookload_bias, cal.pipe_above_rotary, None, (), np.empty(0),
+        float("nan"), cal.draws,
     )  # fmt: skip
     text = render(dataclasses.replace(made, calibration=bare))
     assert "no steady off-bottom reading" in text
