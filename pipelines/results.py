@@ -39,11 +39,11 @@ def write(findings: Findings, folder: Path, system: str, progress: Progress) -> 
     system : str
         "metric" or "field": what the report shows.
     progress : Progress
-        Times the stages "figures" and "exports".
+        Times the stages "imports", "figures" and "exports".
     """
-    with progress.stage("figures", "drawing the report"):
+    with progress.stage("imports", "loading the report"):
         from forensics.report.render import render
-
+    with progress.stage("figures", "drawing the report"):
         (folder / "report.html").write_text(render(findings, system), encoding="utf-8", newline="\n")
     with progress.stage("exports", "writing the exports"):
         for name, export in EXPORTS.items():
