@@ -6,22 +6,12 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 
 from forensics.case import Case
-from forensics.episodes.catalogue import Episode, Family
+from forensics.episodes.catalogue import Episode, Family, Headline
 from forensics.friction.result import Calibration
 from forensics.loads import Fan, LoadHistory, Profile
 from forensics.logs.table import TimeLog
 from forensics.rig.view import RigView
 from forensics.well.model import Well
-
-
-@dataclass(frozen=True)
-class Headline:
-    """The finding in words: one sentence, its support, what the data can't tell."""
-
-    sentence: str
-    confidence: str
-    details: tuple[str, ...] = ()
-    can_not_tell: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)

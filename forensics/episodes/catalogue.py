@@ -104,3 +104,13 @@ class Family:
     description: str
     members: tuple[str, ...]
     stability: float
+
+
+@dataclass(frozen=True)
+class Headline:
+    """The finding in words: one sentence, its support, what the data can't tell."""
+
+    sentence: str
+    confidence: str
+    details: tuple[str, ...] = ()
+    can_not_tell: tuple[str, ...] = ()

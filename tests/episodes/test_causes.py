@@ -61,7 +61,9 @@ SIGNATURES = (
         "up": 2.0, "down": 1.8, "onset": 0.5, "length": 5.0, "pressure": 4.0, "still": 0.0, "ratio": 0.0,
         "elsewhere": 0.0, "shoe": 900.0, "torque": 1.5,
     }),
-    (Kind.DRAG, Cause.SENSOR, {"up": 1.2, "down": -1.1, "shift": 1.1, "turning": 1.0, "slips": 2.0, "ratio": 0.0}),
+    (Kind.DRAG, Cause.SENSOR, {
+        "up": 1.2, "down": -1.1, "shift": 1.1, "turning": 1.0, "slips": 2.0, "ratio": 0.0,
+    }),
 )  # fmt: skip
 
 

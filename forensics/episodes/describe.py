@@ -1,0 +1,53 @@
+"""The whole way from loads to finding: episodes, causes, groups, headline."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, replace
+
+from forensics.episodes.catalogue import Episode, Family, Headline
+from forensics.episodes.causes import weigh
+from forensics.episodes.causes.signals import Signals
+from forensics.episodes.find import find_episodes
+from forensics.episodes.groups import group, is_routine
+from forensics.episodes.headline import headline
+from forensics.episodes.material import Material
+
+__all__ = ["Described", "Material", "describe"]
+
+
+@dataclass(frozen=True)
+class Described:
+    """What a run's loads came to: catalogue, groups, finding, and what the rules dropped by reason."""
+
+    episodes: tuple[Episode, ...]
+    families: tuple[Family, ...]
+    headline: Headline
+    dropped: Mapping[str, int]
+
+
+def describe(material: Material, system: str = "metric") -> Described:
+    """Find episodes, weigh their causes, group them and put the finding in words.
+
+    Parameters
+    ----------
+    material : Material
+        One run's log, rig view, loads, draws, calibration, well and case.
+    system : str
+        "metric" or "field": units of the finding's sentences.
+
+    Returns
+    -------
+    Described
+    """
+    episodes, dropped = find_episodes(material)
+    signals = Signals(material)
+    weighed = []
+    for episode in episodes:
+        if is_routine(episode):  # it cost nothing: there is no cause to look for
+            weighed.append(episode)
+            continue
+        cause, views = weigh(material, signals, episode)
+        weighed.append(replace(episode, cause=cause, causes=views))
+    grouped, families = group(material, tuple(weighed))
+    return Described(grouped, families, headline(material, grouped, system), dropped)

@@ -1,0 +1,270 @@
+"""The finding in words: what happened, when, where, how, what it cost, and how sure that is."""
+
+from __future__ import annotations
+
+from collections import Counter
+
+import numpy as np
+
+from forensics.episodes import wording
+from forensics.episodes.catalogue import Consequence, Episode, Headline, Kind, State
+from forensics.episodes.causes.names import Cause
+from forensics.episodes.causes.weigh import UNTOLD
+from forensics.episodes.groups import DOING, is_routine, rule_label
+from forensics.episodes.material import Material
+
+#: Episodes told one by one below the sentence.
+TOLD = 6
+
+#: Chance that the rule holds from which a finding is called sure, and likely.
+SURE, LIKELY = 0.9, 0.6
+
+#: Torque left in a string that does not turn counts from this part of the usual rotating torque.
+TRAPPED = 0.3
+
+GRAVITY = {
+    Consequence.LOCKED_UP: 4,
+    Consequence.ROTATED_BUCKLED: 3,
+    Consequence.WEIGHT_LOST: 2,
+    Consequence.NONE: 0,
+}
+
+
+def headline(material: Material, episodes: tuple[Episode, ...], system: str = "metric") -> Headline:
+    """Put the finding in words.
+
+    Parameters
+    ----------
+    material : Material
+    episodes : tuple of Episode
+        With causes.
+    system : str
+        "metric" or "field": units of the sentences.
+
+    Returns
+    -------
+    Headline
+        One sentence, its confidence, the main episodes, and what the data can't tell. Routine running is
+        counted in the details and kept out of the sentence.
+    """
+    main = sorted((e for e in episodes if not is_routine(e)), key=gravity, reverse=True)
+    loaded = [e for e in main if e.kind in (Kind.BUCKLING, Kind.LOCKUP)]
+    if loaded:
+        sentence = _loaded(material, loaded[0], system)
+    elif main:
+        sentence = _dragging(material, main, system)
+    else:
+        sentence = (
+            "Nothing passed a threshold that matters: no helical buckling, no lockup, no drag or torque beyond "
+            "the model."
+        )
+    return Headline(
+        sentence=sentence,
+        confidence=_confidence(material, main),
+        details=_details(material, episodes, main, system),
+        can_not_tell=_unknown(material, main),
+    )
+
+
+def gravity(episode: Episode) -> tuple[float, ...]:
+    """Order of episodes by how much they matter, gravest last."""
+    lost = episode.lost_weight.value
+    return (
+        float(GRAVITY[episode.consequence]),
+        float(episode.state is State.HELICAL),
+        float(episode.kind is Kind.BUCKLING),
+        lost if np.isfinite(lost) else 0.0,
+        float(np.nan_to_num(episode.probability)),
+        episode.duration,
+    )
+
+
+def _loaded(material: Material, episode: Episode, system: str) -> str:
+    """Tell of buckling or lockup."""
+    doing = DOING.get(episode.activity, DOING["unknown"])
+    bit = float(material.bit[episode.peak])
+    when = wording.period(episode.start, episode.end, material.log.timezone)
+    what = _what(episode, system)
+    text = f"{_capital(doing)} with the bit at {wording.depth(bit, system)}, {when}, the string {what}"
+    text += _cost(episode, system)
+    if episode.cause:
+        text += f" {_cause(episode)}"
+    return text
+
+
+def _what(episode: Episode, system: str) -> str:
+    """Say what the string did and where."""
+    where = ""
+    if np.isfinite(episode.top_md) and np.isfinite(episode.bottom_md):
+        where = f" from {wording.depths(episode.top_md, episode.bottom_md, system)}"
+    if episode.state is State.HELICAL:
+        buckled = f"buckled into a helix{where}"
+    elif episode.state is State.SINUSOIDAL:
+        buckled = f"buckled sinusoidally{where}"
+    else:
+        buckled = ""
+    if episode.consequence is Consequence.LOCKED_UP:
+        return f"{buckled} and locked up" if buckled else f"locked up{where} without buckling"
+    if episode.consequence is Consequence.ROTATED_BUCKLED:
+        return f"{buckled} and was turned in that state"
+    return buckled or "was under load"
+
+
+def _cost(episode: Episode, system: str) -> str:
+    """Say how much weight was lost."""
+    lost, helical = episode.lost_weight, episode.lost_to_buckling
+    if not (np.isfinite(lost.value) and lost.value > 0.0):
+        return "."
+    text = f": at its worst {wording.size(lost, 'force', system)} of the surface weight did not reach the bit"
+    if np.isfinite(helical.value) and helical.value > 0.0:
+        text += f", {wording.size(helical, 'force', system)} of it beyond ordinary sliding drag"
+    return text + "."
+
+
+def _cause(episode: Episode) -> str:
+    if episode.cause.startswith(UNTOLD):
+        return f"The causes {episode.cause.removeprefix(UNTOLD + ': ').replace(' or ', ' and ', 1)} {UNTOLD}."
+    if episode.cause == Cause.NO_DATA.value:
+        return "The log does not show enough to name a cause."
+    return f"Best-supported cause: {episode.cause}{_chance_of(episode)}."
+
+
+def _chance_of(episode: Episode) -> str:
+    leading = episode.causes[0] if episode.causes else None
+    if leading is None or not episode.cause.startswith(leading.cause):
+        return ""
+    return f" ({100.0 * leading.probability:.0f} %)"
+
+
+def _dragging(material: Material, main: list[Episode], system: str) -> str:
+    """Tell of drag and torque where nothing buckled."""
+    worst = max(main, key=lambda e: abs(e.peak_residual.value) if e.peak_residual else 0.0)
+    counts = Counter(e.kind for e in main)
+    told = " and ".join(
+        wording.times(counts[k], f"{k.value} episode") for k in (Kind.DRAG, Kind.TORQUE) if counts[k]
+    )
+    quantity = "force" if worst.kind is Kind.DRAG else "moment"
+    peak = worst.peak_residual
+    text = f"No buckling or lockup that mattered, but {told}"
+    if peak is not None:
+        what = "hookload" if worst.kind is Kind.DRAG else "torque"
+        doing = DOING.get(worst.activity, DOING["unknown"])
+        text += (
+            f": at the largest, {doing} with the bit at {wording.depth(worst.peak_md, system)}, "
+            f"{wording.period(worst.start, worst.end, material.log.timezone)}, the {what} was "
+            f"{wording.size(peak, quantity, system)} against the model"
+        )
+    causes = Counter(e.cause for e in main if e.cause)
+    text += "."
+    if causes:
+        leading, number = causes.most_common(1)[0]
+        if leading == worst.cause:
+            text += f" {_cause(worst)}"
+        elif leading != Cause.NO_DATA.value and not leading.startswith(UNTOLD):
+            text += f" Most often best supported: {leading} ({number} of {len(main)})."
+    return text
+
+
+def _confidence(material: Material, main: list[Episode]) -> str:
+    """Grade the finding, and say on what."""
+    sections = material.calibration.sections
+    assumed = [s.kind for s in sections if not s.factor.determined and s.bottom > s.top]
+    friction = (
+        f"the {' and '.join(assumed)}-hole friction is assumed, not determined"
+        if assumed
+        else "friction was determined from this run's own weights"
+    )
+    if not main:
+        return f"{'moderate' if assumed else 'high'}: {friction}"
+    chance = main[0].probability
+    if not np.isfinite(chance):
+        return f"low: the spread over friction draws was not reckoned; {friction}"
+    grade = "high" if chance >= SURE and not assumed else "moderate" if chance >= LIKELY else "low"
+    return (
+        f"{grade}: its rule holds in {100.0 * chance:.0f} % of the draws of friction and weight; {friction}"
+    )
+
+
+def _details(
+    material: Material, episodes: tuple[Episode, ...], main: list[Episode], system: str
+) -> tuple[str, ...]:
+    """Tell the main episodes one by one, and count the rest."""
+    said = []
+    for episode in main[:TOLD]:
+        when = wording.period(episode.start, episode.end, material.log.timezone)
+        line = f"{episode.id}: {rule_label(episode)}, {when}"
+        if np.isfinite(episode.lost_weight.value):
+            line += f", lost weight {wording.size(episode.lost_weight, 'force', system)}"
+        if episode.peak_residual is not None:
+            quantity = "force" if episode.kind is Kind.DRAG else "moment"
+            line += f", {wording.size(episode.peak_residual, quantity, system)} against the model"
+        if np.isfinite(episode.probability):
+            line += f", probability {episode.probability:.2f}"
+        if episode.cause:
+            line += f"; {episode.cause}"
+        said.append(line + ".")
+    if len(main) > TOLD:
+        said.append(f"{wording.times(len(main) - TOLD, 'more episode')} in the table.")
+    routine = [e for e in episodes if is_routine(e)]
+    if routine:
+        hours = sum(e.duration for e in routine) / 3600.0
+        said.append(
+            f"{wording.times(len(routine), 'episode')} of routine sinusoidal running, {hours:.1f} h in all, "
+            "cost no weight: kept out of the finding."
+        )
+    return tuple(said)
+
+
+def _unknown(material: Material, main: list[Episode]) -> tuple[str, ...]:
+    """Say what the finding can't tell."""
+    said = []
+    untold = [e.id for e in main if e.cause.startswith(UNTOLD)]
+    if untold:
+        said.append(f"Causes of {_listed(untold)} {UNTOLD} with these data.")
+    bare = [e.id for e in main if e.cause == Cause.NO_DATA.value]
+    if bare:
+        said.append(f"The log does not show enough to name a cause of {_listed(bare)}.")
+    loaded = [e for e in main if e.kind in (Kind.BUCKLING, Kind.LOCKUP)]
+    unknown = [e.id for e in loaded if not np.isfinite(e.lost_weight.value)]
+    if unknown:
+        said.append(f"How much weight was lost in {_listed(unknown)}: no reference weight was read near it.")
+    trapped = [e.id for e in loaded if trapped_torque(material, e)]
+    if trapped:
+        said.append(
+            f"Torque stayed in the string while it did not turn in {_listed(trapped)}: part of the friction "
+            "was spent on twist, and more weight may have reached the bit than reconstructed."
+        )
+    return tuple(said)
+
+
+def trapped_torque(material: Material, episode: Episode) -> bool:
+    """Whether torque stayed up while the string did not turn.
+
+    Parameters
+    ----------
+    material : Material
+    episode : Episode
+
+    Returns
+    -------
+    bool
+        False where there is no torque channel.
+    """
+    torque = material.log.get("torque")
+    turning = material.rig.turning
+    if torque is None or not turning.any():
+        return False
+    usual = float(np.nanmedian(torque[turning]))
+    rows = slice(episode.first, episode.last + 1)
+    still = torque[rows][~turning[rows] & ~material.rig.slips[rows]]
+    still = still[np.isfinite(still)]
+    return bool(len(still) and usual > 0.0 and np.median(still) > TRAPPED * usual)
+
+
+def _listed(ids: list[str]) -> str:
+    shown = ", ".join(ids[:8])
+    return f"{shown} and {len(ids) - 8} more" if len(ids) > 8 else shown
+
+
+def _capital(text: str) -> str:
+    return text[0].upper() + text[1:]

@@ -1,0 +1,73 @@
+"""Numbers and times in the sentences of the finding."""
+
+from __future__ import annotations
+
+import datetime as dt
+import re
+import zoneinfo
+
+import numpy as np
+
+from forensics import units
+from forensics.estimate import Estimate
+
+_OFFSET = re.compile(r"^(?:UTC|GMT)?\s*([+-])(\d{1,2}):?(\d{2})?$")
+
+
+def zone(name: str) -> dt.tzinfo:
+    """Find a time zone by IANA name or offset; UTC where the name says nothing."""
+    text = name.strip()
+    offset = _OFFSET.match(text.upper())
+    if offset:
+        sign = -1 if offset[1] == "-" else 1
+        return dt.timezone(sign * dt.timedelta(hours=int(offset[2]), minutes=int(offset[3] or 0)))
+    try:
+        return zoneinfo.ZoneInfo(text or "UTC")
+    except (zoneinfo.ZoneInfoNotFoundError, ValueError):
+        return dt.UTC
+
+
+def period(start: float, end: float, timezone: str) -> str:
+    """Write a period as the reader's clock has it: day, from, to.
+
+    Parameters
+    ----------
+    start, end : float
+        [s since 1970 UTC]
+    timezone : str
+
+    Returns
+    -------
+    str
+    """
+    tz = zone(timezone)
+    first, last = dt.datetime.fromtimestamp(start, tz), dt.datetime.fromtimestamp(end, tz)
+    if first.date() == last.date():
+        return f"on {first:%Y-%m-%d} from {first:%H:%M:%S} to {last:%H:%M:%S}"
+    return f"from {first:%Y-%m-%d %H:%M:%S} to {last:%Y-%m-%d %H:%M:%S}"
+
+
+def size(estimate: Estimate, quantity: str, system: str) -> str:
+    """Write an estimate with its interval, unit once."""
+    value = units.show(estimate.value, quantity, system)
+    if not (np.isfinite(estimate.low) and np.isfinite(estimate.high)) or estimate.low == estimate.high:
+        return value
+    low, high = (units.show(v, quantity, system) for v in (estimate.low, estimate.high))
+    return f"{value} ({low} to {high})"
+
+
+def depth(value: float, system: str) -> str:
+    """Write a depth to the metre or foot."""
+    label, scale = units.display_unit("length", system)
+    return f"{value / scale:.0f} {label}"
+
+
+def depths(top: float, bottom: float, system: str) -> str:
+    """Write a depth interval, unit once."""
+    label, scale = units.display_unit("length", system)
+    return f"{top / scale:.0f} to {bottom / scale:.0f} {label}"
+
+
+def times(number: int, word: str) -> str:
+    """Write a count with its word, plural where due."""
+    return f"{number} {word}" if number == 1 else f"{number} {word}s"

@@ -1,0 +1,94 @@
+"""The finding in words."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+
+import numpy as np
+import pytest
+
+from forensics.episodes.describe import describe
+from forensics.episodes.wording import period, zone
+from forensics.rig.view import Activity
+
+
+def stacked(make_run):
+    run = make_run().buckle(slice(1000, 1300), ratio=2.0, helical=slice(1020, 1280))
+    run.rig["wob_surface"][1000:1300] = 150.0e3
+    run.loads["bit_load"][1000:1300] = 40.0e3
+    run.loads["straight_drag"][1000:1300] = 50.0e3
+    run.rig["turning"][1300:1400] = True
+    return run.buckle(slice(2000, 2500)).with_draws()
+
+
+def test_quiet_run(make_run):
+    found = describe(make_run().material())
+    assert found.headline.sentence.startswith("Nothing passed a threshold that matters")
+    assert found.headline.confidence.startswith("high")
+    assert found.episodes == ()
+    assert found.families == ()
+
+
+def test_buckling_is_told_with_when_where_how_much_and_why(make_run):
+    found = describe(stacked(make_run).material())
+    text = found.headline.sentence
+    assert text.startswith("While sliding with the bit at 4000 m, on 2023-11-14 from 22:30:00 to 22:35:00")
+    assert "buckled into a helix from 2300 to 2600 m" in text
+    assert "110.0 kN" in text
+    assert "60.0 kN" in text
+    assert "beyond ordinary sliding drag" in text
+    assert "Best-supported cause: buckling" in text
+    assert found.headline.confidence.startswith("high")
+    assert any("1 episode of routine sinusoidal running" in line for line in found.headline.details)
+    assert "E002" not in text
+
+
+def test_field_units(make_run):
+    text = describe(stacked(make_run).material(), "field").headline.sentence
+    assert "klbf" in text
+    assert "ft" in text
+    assert "kN" not in text
+
+
+def test_drag_without_buckling(make_run):
+    run = make_run().trip("out", slice(500, 900), extra=60.0e3)
+    text = describe(run.material()).headline.sentence
+    assert "1 drag episode" in text
+    assert "pulling out" in text
+    assert "60.0 kN" in text
+
+
+def test_assumed_friction_lowers_the_confidence(make_run):
+    run = stacked(make_run)
+    sections = tuple(replace(s, factor=replace(s.factor, determined=False)) for s in run.calibration.sections)
+    run.calibration = replace(run.calibration, sections=sections)
+    confidence = describe(run.material()).headline.confidence
+    assert not confidence.startswith("high")
+    assert "assumed" in confidence
+
+
+def test_without_draws_the_spread_is_said_to_be_unknown(make_run):
+    run = stacked(make_run)
+    run.draws = None
+    assert "not reckoned" in describe(run.material()).headline.confidence
+
+
+def test_missing_reference_and_trapped_torque_are_said(make_run):
+    run = stacked(make_run)
+    run.rig["wob_surface"][:] = np.nan
+    run.values["torque"][:] = 9.0e3
+    run.rig["activity"][1300:1400] = Activity.ROTATE_OFF_BOTTOM
+    unknown = " ".join(describe(run.material()).headline.can_not_tell)
+    assert "no reference weight" in unknown
+    assert "did not turn" in unknown
+
+
+def test_periods_are_on_the_readers_clock():
+    assert period(1.7e9, 1.7e9 + 60, "+02:00") == "on 2023-11-15 from 00:13:20 to 00:14:20"
+    assert period(1.7e9, 1.7e9 + 7200, "UTC") == "from 2023-11-14 22:13:20 to 2023-11-15 00:13:20"
+    assert str(zone("no such place")) == "UTC"
+
+
+@pytest.mark.parametrize("n", [1, 2, 5])
+def test_tiny_logs_are_survived(make_run, n):
+    assert describe(make_run(n=n).buckle(slice(0, n)).material()).dropped
