@@ -57,9 +57,11 @@ def write_history(findings: Findings, path: Path) -> None:
     """
     import pyarrow.parquet as pq
 
-    pq.write_table(history_table(findings), path, compression="zstd")
+    # Measured numbers hardly repeat: looking for repeats in them takes time and makes the file larger.
+    pq.write_table(history_table(findings), path, compression="zstd", use_dictionary=list(WORDS))
 
 
+WORDS = ("activity", "state", "basis", "reason")
 COLUMNS = (
     "time",
     "bit_depth_m",
