@@ -152,7 +152,7 @@ def read(values: Floats, unit: str | None, name: str) -> NumberClock | None:
     for low, scale, word in ((1e8, 1.0, "s"), (1e11, 1e-3, "ms"), (1e14, 1e-6, "us"), (1e17, 1e-9, "ns")):
         if low < known.min() and known.max() < 30 * low:
             return NumberClock(values * scale, True, True, f"epoch in {word}")
-    serial = 20000.0 < known.min() and known.max() < 80000.0 and 0 < _typical_step(values) < 0.5
+    serial = known.min() > 20000.0 and known.max() < 80000.0 and 0 < _typical_step(values) < 0.5
     if serial and key in {"", "d", "day", "days", "excel", "serial", "unitless", "none"}:
         return NumberClock((values - SERIAL_EPOCH) * DAY, True, False, "serial days")
     packed = "hhmmss" in key or normalise(name) == "hhmmss"

@@ -6,6 +6,7 @@ import datetime as dt
 import re
 from collections.abc import Iterable
 from dataclasses import dataclass
+from itertools import pairwise
 
 _EPOCH = dt.date(1970, 1, 1).toordinal()
 # English names, and those of a few other languages where they differ in the first three letters.
@@ -102,12 +103,8 @@ def date_fields(text: str) -> tuple[int, int, int] | tuple[str, int, int, int] |
         year, day = numbers if year_first else reversed(numbers)
         return _year(year), months[-1], day
     digits = [word for word in words if word.isdigit()]
-    if len(digits) == 1 and len(digits[0]) == 8:
-        word = digits[0]
-        return int(word[:4]), int(word[4:6]), int(word[6:])
-    if len(digits) == 1 and len(digits[0]) in {5, 6}:
-        word = digits[0].zfill(6)
-        return _year(int(word[:2])), int(word[2:4]), int(word[4:])
+    if len(digits) == 1:
+        return _packed(digits[0])
     if len(numbers) != 3 or months:
         return None
     if len(digits[0]) == 4 or numbers[0] > 31:
@@ -116,6 +113,16 @@ def date_fields(text: str) -> tuple[int, int, int] | tuple[str, int, int, int] |
         # Points between day, month and year are written only where the day comes first.
         return _year(numbers[2]), numbers[1], numbers[0]
     return ("open", numbers[0], numbers[1], _year(numbers[2]))
+
+
+def _packed(word: str) -> tuple[int, int, int] | None:
+    """Part YYYYMMDD, or YYMMDD that may have lost its leading zero."""
+    if len(word) == 8:
+        return int(word[:4]), int(word[4:6]), int(word[6:])
+    if len(word) not in {5, 6}:
+        return None
+    word = word.zfill(6)
+    return _year(int(word[:2])), int(word[2:4]), int(word[4:])
 
 
 def _year(number: int) -> int:
@@ -202,4 +209,4 @@ def find_order(dates: Iterable[str]) -> str | None:
 
 def _steps(days: list[int | None]) -> list[int]:
     known = [day for day in days if day is not None]
-    return [after - before for before, after in zip(known, known[1:], strict=False)]
+    return [after - before for before, after in pairwise(known)]

@@ -15,6 +15,8 @@ from forensics.errors import LogError
 from forensics.logs.nulls import WORDS
 from forensics.units import is_blank, quantities_of
 
+# Headers end within this many lines.
+HEADER_LINES = 120
 DELIMITERS = (",", ";", "\t", "|", " ")
 _NUMBER = re.compile(r"[+-]?(?:\d+[.,]?\d*|[.,]\d+)(?:[eE][+-]?\d+)?")
 _STAMP = re.compile(r".*\d[/:.\- T]+(?:\d|[A-Za-z]{3}).*\d.*|\d{2}-[A-Za-z]{3,9}-\d{2,4}.*")
@@ -42,6 +44,8 @@ class Dialect:
         Column names and the unit the file gives each, or None.
     skip : int
         Lines above the first row of data.
+    padded : bool
+        True where blanks follow delimiters.
     notes : tuple of str
         Remarks for the report.
     """
@@ -52,6 +56,7 @@ class Dialect:
     names: tuple[str, ...]
     units: tuple[str | None, ...]
     skip: int
+    padded: bool = False
     notes: tuple[str, ...] = ()
 
 
@@ -114,7 +119,7 @@ def _find_delimiter(lines: Sequence[str]) -> tuple[str, int]:
             continue
         same = [row for row in rows if len(row) == width and _looks_like_data(row)]
         readable = sum(_is_value(f) or f.casefold() in WORDS for row in same for f in row) / max(len(same), 1)
-        # A blank also splits "2024-01-01 00:00:00", and a comma also splits decimal commas: prefer the others.
+        # A blank also splits "2024-01-01 00:00:00", and a comma decimal commas: prefer others.
         score = (
             readable
             * agreeing
@@ -182,25 +187,28 @@ def find_dialect(head: bytes, path: Path) -> Dialect:
     encoding = find_encoding(head)
     text = head.decode(encoding, errors="replace").lstrip("\ufeff")
     # The last line may be cut by the end of the head.
-    lines = text.splitlines()[: 400 if len(head) < 2**18 else -1][:400]
+    lines = text.splitlines()[:-1] if len(head) >= 2**18 else text.splitlines()
     filled = [line for line in lines if line.strip()]
     if not filled:
         raise LogError("the file is empty; expected a header and rows of data", file=path)
     if "\x00" in text[:2000]:
         raise LogError("the file is not text; export the log as CSV or LAS", file=path)
-    delimiter, width = _find_delimiter(filled[-60:])
+    # Lines spread over the head: its first ones are header, and any one stretch may be odd.
+    delimiter, width = _find_delimiter(filled[len(filled) // 3 :: max(1, len(filled) // 45)])
     if not delimiter:
         raise LogError(
             "found no columns; expected rows of data split by comma, semicolon, tab or blanks", file=path
         )
-    return _finish(lines, (encoding, delimiter, width), path)
+    return _finish(lines[:HEADER_LINES], (encoding, delimiter, width), path)
 
 
 def _finish(lines: Sequence[str], found: tuple[str, str, int], path: Path) -> Dialect:
     encoding, delimiter, width = found
     rows = [split_line(line, delimiter) for line in lines]
     counted = [str(number) for number in range(width)]
-    starts = [i for i, row in enumerate(rows) if len(row) >= max(2, width // 2) and _looks_like_data(row)]
+    starts = [i for i, row in enumerate(rows) if len(row) >= max(2, width // 2) and _looks_like_data(row)][
+        :60
+    ]
     starts = [i for i in starts if rows[i] not in (counted, [str(int(n) + 1) for n in counted])]
     if not starts:
         raise LogError(
@@ -213,5 +221,6 @@ def _finish(lines: Sequence[str], found: tuple[str, str, int], path: Path) -> Di
     usable = above if any(len(row) >= max(2, width // 2) for row in above) else commented
     names, units = _header(usable, width)
     notes = () if usable else ("no header: columns go by their number, from 1",)
-    decimal = _decimal([rows[i] for i in starts[:60]])
-    return Dialect(encoding, delimiter, decimal, names, units, starts[0], notes)
+    decimal = _decimal([rows[i] for i in starts])
+    padded = delimiter != " " and any(f"{delimiter} " in lines[i] for i in starts)
+    return Dialect(encoding, delimiter, decimal, names, units, starts[0], padded, notes)

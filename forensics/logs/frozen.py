@@ -59,6 +59,14 @@ def _travel(values: Floats | None, start: int, end: int) -> float:
     return float(np.abs(np.diff(part[np.isfinite(part)])).sum())
 
 
+def _while_carried(block: Floats | None, hook: Floats | None) -> Floats | None:
+    """Block position while the hook plainly carries more than in slips, where the bit may stand for hours."""
+    if block is None or hook is None or not np.isfinite(hook).any():
+        return None
+    low, middle = np.nanpercentile(hook, [1, 50])
+    return np.where(hook > low + 0.4 * (middle - low), block, np.nan)
+
+
 def find_frozen(channel: str, values: Mapping[str, Floats], interval: float) -> Bools:
     """Find where a channel stopped.
 
@@ -79,7 +87,8 @@ def find_frozen(channel: str, values: Mapping[str, Floats], interval: float) -> 
     Notes
     -----
     Hookload: the bit moved by 0.3 m (3 m where the channel is coarse) in a minute or more of one value;
-    in slips the bit stands. Bit depth: the block ran more than three times its height. Block: the bit
+    in slips the bit stands. Bit depth: the block, with the string on it, ran more
+    than three times its height. Block: the bit
     moved by 3 m. Torque, pressure and WOB: five minutes of one value other than zero in a lively channel
     while the hookload kept changing.
     """
@@ -88,12 +97,13 @@ def find_frozen(channel: str, values: Mapping[str, Floats], interval: float) -> 
     minute = max(SHORTEST, int(np.ceil(60.0 / interval)) if interval > 0 else SHORTEST)
     lively = is_lively(data)
     bit, block, hook = values.get("bit_depth"), values.get("block_position"), values.get("hookload")
+    carried = _while_carried(block, hook)
     shortest = minute if channel in {"hookload", "bit_depth", "block_position"} else max(30, 5 * minute)
     for start, end in runs_of(data, shortest):
         if channel == "hookload":
             stopped = _reach(bit, start, end) >= (0.3 if lively else 3.0)
         elif channel == "bit_depth":
-            stopped = _travel(block, start, end) > 3.5 * max(_reach(block, 0, len(data)), 20.0)
+            stopped = _travel(carried, start, end) > 3.5 * max(_reach(block, 0, len(data)), 20.0)
         elif channel == "block_position":
             stopped = _reach(bit, start, end) >= 3.0
         else:

@@ -76,7 +76,7 @@ def check_direction(piece: Piece) -> int:
     line = int(piece.line[back[0] + 1])
     if len(back) > 0.5 * len(steps[steps != 0]):
         raise LogError(
-            f"time runs backwards: {len(back)} of {len(steps)} steps go back, the first here; sort the file by time",
+            f"time runs backwards: {len(back)} of {len(steps)} steps go back, the first here; sort the file",
             file=piece.path,
             line=line,
         )
@@ -89,7 +89,7 @@ def check_direction(piece: Piece) -> int:
         first = int(lost[0])
         fall = highest[first - 1] - time[first]
         raise LogError(
-            f"time falls back by {fall:.0f} s and does not recover over the {len(time) - first} rows that follow; "
+            f"time falls back by {fall:.0f} s and does not recover in the {len(time) - first} rows after it; "
             "split the file there, or mend its clock",
             file=piece.path,
             line=int(piece.line[first]),
@@ -110,7 +110,7 @@ def _check_overlap(piece: Piece, back: NDArray[np.int64]) -> None:
         clash = _share_different(piece.values, first, second + int(turn) + 1)
         if clash > CLASH:
             raise LogError(
-                f"time falls back by {-steps[turn]:.0f} s and {len(first)} stamps come twice with different values; "
+                f"time falls back by {-steps[turn]:.0f} s and {len(first)} stamps come twice, not alike; "
                 "split the file there, or mend its clock",
                 file=piece.path,
                 line=int(piece.line[turn + 1]),

@@ -25,9 +25,11 @@ if TYPE_CHECKING:
 
 _SECTION = re.compile(r"^\s*~", re.MULTILINE)
 # Header items that may hold a date, a time of day, or both; the first filled one wins.
-_START_DATE = ("STRT_DATETIME", "START_DATETIME", "STARTDATETIME", "SDATETIME", "DATETIME", "START_TIME", "START",
-               "STDT", "SDAT", "SDATE", "STARTDATE", "START_DATE", "STRT_DATE", "STRTDATE", "DATE0", "T0", "DATE",
-               "LOGDATE", "LDATE")  # fmt: skip
+_START_DATE = (
+    *("STRT_DATETIME", "START_DATETIME", "STARTDATETIME", "SDATETIME", "DATETIME", "START_TIME", "STARTTIME"),
+    *("STIM", "STIME", "START", "TSTART", "STDT", "SDAT", "SDATE", "STARTDATE", "START_DATE", "STRT_DATE"),
+    *("STRTDATE", "DATE0", "T0", "DATE", "LOGDATE", "LDATE"),
+)
 _START_CLOCK = ("STIM", "STIME", "STARTTIME", "START_TIME", "STRT_TIME", "STRTTIME", "TIME", "TSTART", "TIM")
 
 

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 
 import numpy as np
@@ -148,7 +148,7 @@ def map_columns(raw: RawLog, choices: Choices, time_columns: tuple[str, ...]) ->
     for candidate in candidates:
         if candidate not in filled:
             say(candidate.place, None, "every value is missing")
-    picked = _pick(_settle_depth(filled, say), say)
+    picked = _pick(_settle_depth(filled), say)
     return _finish(raw, picked, numbers, account)
 
 
@@ -157,10 +157,10 @@ def _candidate(raw: RawLog, place: int, choices: Choices) -> Candidate | None:
     if place not in raw.table:
         return None
     for channel, choice in choices.items():
-        if channel != "time" and choice.column == name or (
-            channel != "time" and channels.normalise(choice.column) == channels.normalise(name)
-            and choice.column not in raw.names
-        ):  # fmt: skip
+        loosely = choice.column not in raw.names and channels.normalise(choice.column) == channels.normalise(
+            name
+        )
+        if channel != "time" and (choice.column == name or loosely):
             unit = choice.unit or raw.units[place] or split_name(name)[1]
             return Candidate(place, name, channel, unit, "named in the case file", chosen=True)
     stem, glued = split_name(name)
@@ -175,9 +175,8 @@ def _candidate(raw: RawLog, place: int, choices: Choices) -> Candidate | None:
     return Candidate(place, stem, channel, unit, why)
 
 
-def _settle_depth(found: list[Candidate], say: object) -> list[Candidate]:
+def _settle_depth(found: list[Candidate]) -> list[Candidate]:
     """Give a lone depth to the bit: a time log that has one depth follows the bit with it."""
-    del say
     if any(c.channel == "bit_depth" for c in found):
         return found
     depths = [c for c in found if channels.normalise(c.name) in GENERIC_DEPTH and not c.chosen]
@@ -189,7 +188,7 @@ def _settle_depth(found: list[Candidate], say: object) -> list[Candidate]:
     return [bit if c is lone else c for c in found]
 
 
-def _pick(found: list[Candidate], say: object) -> list[Candidate]:
+def _pick(found: list[Candidate], say: Callable[[int, str | None, str], None]) -> list[Candidate]:
     """Take the best column for each channel."""
     picked = []
     for channel in dict.fromkeys(c.channel for c in found):
@@ -200,7 +199,7 @@ def _pick(found: list[Candidate], say: object) -> list[Candidate]:
         why = f"{best.why}; preferred to {others}" if others else best.why
         picked.append(Candidate(best.place, best.name, channel, best.unit, why, best.chosen))
         for rival in rivals[1:]:
-            say(rival.place, None, f"{channel} is taken from {best.name!r}")  # type: ignore[operator]
+            say(rival.place, None, f"{channel} is taken from {best.name!r}")
     return picked
 
 

@@ -128,8 +128,9 @@ def to_numbers(column: pd.Series) -> tuple[Floats, int]:
     import pandas as pd
 
     if pd.api.types.is_bool_dtype(column) or pd.api.types.is_numeric_dtype(column):
-        values = column.to_numpy(dtype=np.float64, na_value=np.nan, copy=True)
-        return np.where(np.isinf(values), np.nan, values), 0
+        values = column.to_numpy(dtype=np.float64, na_value=np.nan)
+        endless = np.isinf(values)
+        return (np.where(endless, np.nan, values) if endless.any() else values), 0
     codes, uniques = pd.factorize(column)
     table = np.full(len(uniques) + 1, np.nan)
     bad = np.zeros(len(uniques) + 1, dtype=bool)
@@ -159,10 +160,11 @@ def find_codes(values: Floats, declared: Iterable[float] = ()) -> NDArray[np.boo
         that lies beyond twice the reach of the rest of the column.
     """
     found = np.zeros(len(values), dtype=bool)
-    finite = np.isfinite(values)
-    if not finite.any():
+    if len(values) == 0:
         return found
-    low, high = float(np.min(values[finite])), float(np.max(values[finite]))
+    low, high = float(np.fmin.reduce(values)), float(np.fmax.reduce(values))
+    if not np.isfinite(low):
+        return found
     for code in (*CODES, *declared):
         # Comparing a whole column costs; most codes lie outside its reach altogether.
         if low <= code + 1e-6 * abs(code) and high >= code - 1e-6 * abs(code):
@@ -172,7 +174,7 @@ def find_codes(values: Floats, declared: Iterable[float] = ()) -> NDArray[np.boo
         if low <= code <= high:
             maybe |= values == code
     if maybe.any():
-        rest = np.abs(values[finite & ~found & ~maybe])
+        rest = np.abs(values[np.isfinite(values) & ~found & ~maybe])
         reach = 2.0 * float(np.max(rest)) if len(rest) else np.inf
         found |= maybe & (np.abs(values) > reach)
     return found

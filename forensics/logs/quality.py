@@ -26,8 +26,19 @@ SPIKY = (
 )
 # Channels for which nothing but zeros means that nobody measured them.
 ZERO_IS_MISSING = frozenset(
-    ["hole_depth", "block_position", "hookload_max", "flow_out", "mud_density", "pit_volume", "rop", "slips"]
-    + ["differential_pressure", "toolface", "downhole_wob", "downhole_torque"]
+    [
+        *(
+            "hole_depth",
+            "block_position",
+            "hookload_max",
+            "flow_out",
+            "mud_density",
+            "pit_volume",
+            "rop",
+            "slips",
+        ),
+        *("differential_pressure", "toolface", "downhole_wob", "downhole_torque"),
+    ]
 )
 # Zeros here are missing only if the other channel shows that there was something to measure.
 ZERO_CONTRADICTED = {

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from concurrent.futures import ThreadPoolExecutor
 from dataclasses import replace
 
 import numpy as np
@@ -18,7 +19,7 @@ from forensics.logs.mapping import Mapped, keep, likely_unit, map_columns, missi
 from forensics.logs.nulls import find_codes
 from forensics.logs.quality import clean
 from forensics.logs.raw import RawLog
-from forensics.logs.registry import digest, read_raw
+from forensics.logs.registry import digest, read_raw, require
 from forensics.logs.smear import find_smeared
 from forensics.logs.table import FileRecord, Reason, Step, TimeLog
 
@@ -51,17 +52,22 @@ def read_time_logs(case: Case) -> TimeLog:
     if not settings.time:
         raise LogError("no time log is named; [logs] time needs at least one file", file=case.path)
     names = wanted(settings.channels)
-    raws = [read_raw(path, lambda name: keep(name, names)) for path in settings.time]
+    for path in settings.time:
+        require(path)
+    with ThreadPoolExecutor(max_workers=1) as side:
+        # Hashing needs no lock that parsing needs.
+        digests = [side.submit(digest, path) for path in settings.time]
+        raws = [read_raw(path, lambda name: keep(name, names)) for path in settings.time]
     _check_choices(case, raws)
     clocks = _read_clocks(case, raws)
     pieces, records, steps, warnings = [], [], [], []
-    for raw, clock in zip(raws, clocks, strict=True):
+    for raw, clock, hashed in zip(raws, clocks, digests, strict=True):
         mapped = map_columns(raw, settings.channels, clock.columns)
         piece, account = _to_piece(raw, clock, mapped, case.rig.hookload_includes_block)
         pieces.append(piece)
         steps.extend(account)
         warnings.extend((*clock.warnings, *mapped.warnings))
-        records.append(_record(raw, clock, mapped, piece))
+        records.append(_record(raw, clock, mapped, piece, hashed.result()))
     for channel in NEEDED:
         if not any(channel in piece.values for piece in pieces):
             raise missing_channel(channel, raws)
@@ -118,7 +124,7 @@ def _check_choices(case: Case, raws: Sequence[RawLog]) -> None:
             )
         if choice.column not in seen and channels.normalise(choice.column) not in keys:
             raise LogError(
-                f"no log has a column {choice.column!r}, named for {channel} in the case; {nearest(choice.column, seen)}",
+                f"no log has a column {choice.column!r}, named for {channel}; {nearest(choice.column, seen)}",
                 file=raws[0].path,
                 column=choice.column,
             )
@@ -168,9 +174,10 @@ def _date_the_undated(clocks: list[Clock], raws: Sequence[RawLog]) -> list[Clock
 def _to_piece(raw: RawLog, clock: Clock, mapped: Mapped, with_block: bool) -> tuple[Piece, list[Step]]:
     """Bring one file's channels to SI and leave out rows without a stamp."""
     stamped = np.isfinite(clock.time)
-    blank = raw.table.isna().all(axis=1).to_numpy()
     steps = []
-    lost = int((~stamped & ~blank).sum()) + raw.dropped
+    lost = raw.dropped
+    if not stamped.all():
+        lost += int((~stamped & raw.table.notna().any(axis=1).to_numpy()).sum())
     if lost:
         steps.append(
             Step("unreadable row", lost, detail=f"{raw.path.name}: no stamp, or not split into columns")
@@ -186,13 +193,15 @@ def _to_piece(raw: RawLog, clock: Clock, mapped: Mapped, with_block: bool) -> tu
         for name, where in (("null code", codes), ("smeared null", smeared)):
             if where.any():
                 steps.append(Step(name, int(where.sum()), channel, raw.path.name))
-        kept = np.where(codes | smeared, np.nan, data)
+        gone = codes | smeared
+        kept = np.where(gone, np.nan, data) if gone.any() else data
         if channel in NEEDED:
             _check_size(raw, channel, kept, mapped, with_block)
         quantity = BY_NAME[channel].quantity
         unit = mapped.units[channel] if quantity != "dimensionless" else "1"
-        converted = units.to_si(kept, unit, quantity)[stamped]
-        missing = int((~np.isfinite(converted)).sum()) - int((codes | smeared)[stamped].sum())
+        converted = units.to_si(kept, unit, quantity)
+        converted = converted if stamped.all() else converted[stamped]
+        missing = int(np.isnan(converted).sum()) - int(gone[stamped].sum())
         if missing > 0:
             steps.append(Step("no value", missing, channel, raw.path.name))
         values[channel] = converted
@@ -216,15 +225,15 @@ def _check_size(raw: RawLog, channel: str, data: Floats, mapped: Mapped, with_bl
         typical = float(np.percentile(known, 95))
         raise LogError(
             f"{channel} near {typical:g} {unit} can't be; {likely_unit(channel, data)}"
-            f"give the right unit under [logs.channels]: {channel} = {{ column = \"{column}\", unit = \"...\" }}",
+            f"give the unit under [logs.channels]: {channel} = {{ column = \"{column}\", unit = \"...\" }}",
             file=raw.path, column=column,
         )  # fmt: skip
 
 
-def _record(raw: RawLog, clock: Clock, mapped: Mapped, piece: Piece) -> FileRecord:
+def _record(raw: RawLog, clock: Clock, mapped: Mapped, piece: Piece, sha256: str) -> FileRecord:
     return FileRecord(
         name=raw.path.name,
-        sha256=digest(raw.path),
+        sha256=sha256,
         format=raw.format,
         rows=len(piece.time),
         start=float(piece.time.min()),

@@ -29,6 +29,20 @@ READERS: tuple[Reader, ...] = (
 )
 
 
+def require(path: Path) -> None:
+    """Refuse a path that is no file.
+
+    Raises
+    ------
+    LogError
+        If the file is missing or is a folder.
+    """
+    if not path.exists():
+        raise LogError("the file does not exist; check the path in [logs]", file=path)
+    if path.is_dir():
+        raise LogError("this is a folder; [logs] names files", file=path)
+
+
 def read_head(path: Path, size: int = csv_log.HEAD) -> bytes:
     """Read the first bytes of a file, unpacked.
 
@@ -37,10 +51,7 @@ def read_head(path: Path, size: int = csv_log.HEAD) -> bytes:
     LogError
         If the file is missing, a folder, unreadable or empty.
     """
-    if not path.exists():
-        raise LogError("the file does not exist; check the path in [logs]", file=path)
-    if path.is_dir():
-        raise LogError("this is a folder; [logs] names files", file=path)
+    require(path)
     try:
         with gzip.open(path) if csv_log.is_packed(path) else path.open("rb") as file:
             head = file.read(size)

@@ -26,6 +26,8 @@ def find_smeared(values: Floats, codes: NDArray[np.bool_]) -> NDArray[np.bool_]:
         1st percentile by more than half the span from there to the 99th.
     """
     found = np.zeros(len(values), dtype=bool)
+    if not codes.any():
+        return found
     negative = codes & (values < 0)
     good = values[np.isfinite(values) & ~codes]
     if not negative.any() or len(good) < 10:
