@@ -8,22 +8,21 @@ import numpy as np
 from numba import njit
 
 from forensics.mechanics.eigen import LIMIT
-from forensics.mechanics.kernels_critical import VERTICAL_HELICAL, c_scalar
+from forensics.mechanics.kernels_critical import helical_prepared, length_place, sinusoidal_prepared
 from forensics.mechanics.kernels_march import Array, Hole, Pipe, contact
 
 ENVELOPE = 1.370  # times Dawson-Paslay: least load a helix keeps its shape at, from its own equations
 FAR_FROM_VERTICAL = 200.0  # local load in units of the near-vertical one; beyond, c is its limit to 0.1 %
-LOG_100 = np.log(100.0)
 
 
 class Criteria(NamedTuple):
     """What a place is judged by; tables have shape (kinds of pipe, depths), `kind` picks the row.
 
     `a`, `b`, `c` give the lateral load averaged over a sine wave; `root` is 2 √(EI / r), the local load per
-    root of contact (infinite on a support); `cube` is (EI w² cos² I)^⅓, zero where cos I <= 0; `log_unit` the
-    logarithm of Lubinski's length. `log_run` (elements) is the logarithm of the length of like stiffness that
-    holds a place near vertical; `onset` multiplies the Dawson-Paslay load for the helix; `envelope` is 1
-    where a helix lasts until its own unloading limit; `table` holds the near-vertical coefficients.
+    root of contact (infinite on a support); `cube` is (EI w² cos² I)^⅓, zero where cos I <= 0.
+    `stiff_run` (elements) is the length of like stiffness that holds a place near vertical [m]; `onset`
+    multiplies the Dawson-Paslay load for the helix; `envelope` is 1 where a helix lasts until its own
+    unloading limit; `table` holds the near-vertical coefficients.
     """
 
     kind: Array
@@ -32,8 +31,7 @@ class Criteria(NamedTuple):
     c: Array
     root: Array
     cube: Array
-    log_unit: Array
-    log_run: Array
+    stiff_run: Array
     onset: float
     envelope: int
     table: tuple[Array, float, float, float, float]
@@ -49,13 +47,12 @@ class Setting(NamedTuple):
 
 
 @njit(cache=True, error_model="numpy", inline="always")
-def local_load(setting: Setting, j: int, i: int, tension: float, scale: float) -> float:
-    """Dawson-Paslay load of element `j` at depth index `i`, at the contact that is there [N]."""
+def averaged_contact(setting: Setting, j: int, i: int, tension: float, scale: float) -> float:
+    """Contact per length of element `j` at depth index `i`, averaged over a sine wave [N/m]."""
     criteria = setting.criteria
     row = criteria.kind[j]
     weight = setting.pipe.weight[j] * scale
-    force = contact(tension, weight, criteria.a[row, i], criteria.b[row, i], criteria.c[row, i])
-    return criteria.root[row, i] * np.sqrt(force)
+    return contact(tension, weight, criteria.a[row, i], criteria.b[row, i], criteria.c[row, i])
 
 
 @njit(cache=True, error_model="numpy")
@@ -65,27 +62,29 @@ def thresholds(setting: Setting, j: int, i: int, tension: float, scale: float) -
     All are infinite on a support.
     """
     criteria = setting.criteria
-    local = local_load(setting, j, i, tension, scale)
-    cube = criteria.cube[criteria.kind[j], i]
-    if cube <= 0.0:
-        return local, local, criteria.onset * local
-    if scale != 1.0:
-        cube *= scale ** (2.0 / 3.0)
+    row = criteria.kind[j]
+    force = averaged_contact(setting, j, i, tension, scale)
+    root, cube = criteria.root[row, i], criteria.cube[row, i]
+    local = root * np.sqrt(force)
+    if np.isinf(root):
+        return np.inf, np.inf, np.inf
     if local > FAR_FROM_VERTICAL * cube:
         return local, local + LIMIT * cube, criteria.onset * (local + LIMIT * cube)
-    log_n = 2.0 * np.log(max(0.5 * local / cube, 1e-4))
-    log_length = criteria.log_run[j] - criteria.log_unit[criteria.kind[j], i]
-    low = local + c_scalar(log_n, log_length, criteria.table) * cube
-    blend = min(max(log_n / LOG_100, 0.0), 1.0)
-    high = VERTICAL_HELICAL + blend * (LIMIT * criteria.onset - VERTICAL_HELICAL)
-    return local, low, criteria.onset * local + high * cube
+    if scale != 1.0:
+        cube *= scale ** (2.0 / 3.0)
+    w_cos = setting.pipe.weight[j] * scale * setting.hole.cos_i[i]
+    place = length_place(criteria.stiff_run[j], w_cos, cube)
+    low, local, log_n = sinusoidal_prepared(root, force, cube, place, criteria.table)
+    return local, low, helical_prepared(local, cube, log_n, criteria.onset)
 
 
 @njit(cache=True, error_model="numpy")
 def latch(setting: Setting, j: int, i: int, tension: float, scale: float) -> bool:
     """Whether element `j`, not yet helical, turns helical at this tension."""
     # the near-vertical term only raises the threshold, so most places end here
-    if -tension < setting.criteria.onset * local_load(setting, j, i, tension, scale):
+    criteria = setting.criteria
+    root = criteria.root[criteria.kind[j], i]
+    if -tension < criteria.onset * root * np.sqrt(averaged_contact(setting, j, i, tension, scale)):
         return False
     return -tension >= thresholds(setting, j, i, tension, scale)[2]
 

@@ -54,8 +54,6 @@ def _criteria(well: Well, model: OffBottomModel, settings: CriteriaSettings) -> 
     along = pipe.weight[first][:, None] * np.maximum(hole.cos_i, 0.0)
     free = gap >= MIN_CLEARANCE
     root = np.where(free, 2.0 * np.sqrt(pipe.ei[first][:, None] / np.where(free, gap, 1.0)), np.inf)
-    with np.errstate(divide="ignore"):
-        log_unit = np.log(pipe.ei[first][:, None] / along) / 3.0
     return Criteria(
         kind=kind.astype(np.int64),
         a=a,
@@ -63,8 +61,7 @@ def _criteria(well: Well, model: OffBottomModel, settings: CriteriaSettings) -> 
         c=c,
         root=root,
         cube=np.cbrt(pipe.ei[first][:, None] * along**2),
-        log_unit=log_unit,
-        log_run=np.log(pipe.stiff_run),
+        stiff_run=pipe.stiff_run,
         onset=float(HELICAL_ONSETS[settings.helical_onset].factor),
         envelope=int(settings.helical_release == "envelope"),
         table=load_table().as_tuple(),

@@ -1,0 +1,48 @@
+"""The replay's thresholds against the criteria as published, place by place."""
+
+from __future__ import annotations
+
+import math
+
+import pytest
+
+from forensics.mechanics.kernels_judge import latch, next_state, thresholds
+from forensics.mechanics.threshold import helical_load, sinusoidal_load
+from forensics.replay.model import build_model
+from forensics.replay.room import setting
+from tests.replay.test_memory import case_for
+from tests.wells import build_well, one_pipe_well
+
+
+@pytest.mark.parametrize("inclination", [0.5, 3.0, 20.0, 60.0, 89.5])
+@pytest.mark.parametrize("scale", [1.0, 0.97])
+def test_straight_hole_gives_the_published_loads(inclination, scale):
+    angle = math.radians(inclination)
+    at = setting(build_model(one_pipe_well(angle, 2000.0), case_for(), 2000.0), 0.2, 0.2)
+    weight = at.pipe.weight[5] * scale
+    ei, gap, run = at.pipe.ei[5], 0.5 * (0.2159 - 0.168), at.criteria.stiff_run[5]
+    local, low, high = thresholds(at, 5, 2000, -50e3, scale)
+    w_cos = weight * math.cos(angle)
+    assert local == pytest.approx(2.0 * math.sqrt(ei * weight * math.sin(angle) / gap), rel=1e-9)
+    published = sinusoidal_load(ei, weight * math.sin(angle), gap, w_cos, run)
+    assert low == pytest.approx(float(published), rel=1e-3)
+    assert high == pytest.approx(float(helical_load(ei, local, w_cos, math.sqrt(2.0))), rel=1e-3)
+    assert latch(at, 5, 2000, -1.001 * high, scale)
+    assert not latch(at, 5, 2000, -0.999 * high, scale)
+
+
+def test_a_support_is_not_judged():
+    at = setting(build_model(build_well(), case_for(), 2000.0), 0.2, 0.2)
+    assert thresholds(at, 0, 3900, -500e3, 1.0) == (math.inf,) * 3
+
+
+def test_states_remember():
+    """None to helical and back: the helix lasts to the sinusoidal load, or to its own limit."""
+    levels = (100.0, 110.0, 160.0)
+    assert next_state(0, 109.0, levels, 0) == 0
+    assert next_state(0, 111.0, levels, 0) == 1
+    assert next_state(1, 161.0, levels, 0) == 2
+    assert next_state(2, 111.0, levels, 0) == 2
+    assert next_state(2, 109.0, levels, 0) == 0
+    assert next_state(2, 136.0, levels, 1) == 1
+    assert next_state(2, 138.0, levels, 1) == 2
