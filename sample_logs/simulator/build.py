@@ -6,9 +6,7 @@ import tomllib
 from pathlib import Path
 
 import numpy as np
-import pandas as pd
 
-from . import elements as el
 from .deliver import write_case, write_csv, write_las, write_tables, write_truth
 from .driller import Driller
 from .hole import FIRST, STEP, build_hole, delivered_survey
@@ -47,19 +45,12 @@ def simulate(settings: dict) -> tuple[Rig, Driller, dict]:
     return rig, driller, delivered_survey(settings, hole, for_survey)
 
 
-def stretches(true: pd.DataFrame, rig: Rig) -> np.ndarray:
-    """Find the block travel between full pick-up and full slack-off, which moves no bit."""
-    control = rig.control()
-    per = el.slack(rig.x, rig.elements, rig.hole.table, control)
-    return np.full(len(true), per)
-
-
 def build(path: Path, target: Path) -> dict:
     """Make a case folder from a settings file; returns the truth of the run."""
     settings = load_settings(path)
     rig, driller, survey = simulate(settings)
     true = true_frame(rig)
-    truth = truth_frame(true, settings, stretches(true, rig))
+    truth = truth_frame(true, settings)
     facts = summary(truth, true, rig.hole, settings)
     facts["checks"] = len(driller.checks)
     rng = np.random.default_rng(settings["seed"] + 1)

@@ -43,6 +43,9 @@ class Driller:
                 break
             wanted = min(speed, 0.02 + 0.25 * left) * (1.0 + 0.02 * self.rng.normal())
             self.rig.advance(Demand(sign * wanted, rpm, pump))
+            if sign > 0 and self.rig.found[0] > 10 * KN:
+                self.rig.speed = 0.0  # he has run into bottom
+                break
         while self.rig.speed:
             self.rig.advance(Demand(0.0, rpm, pump))
 

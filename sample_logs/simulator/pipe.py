@@ -58,10 +58,11 @@ def build_elements(settings: dict, length: float) -> Floats:
     size = stand / settings["rig"].get("elements_per_stand", 1)
     used = 0.0
     for k, component in enumerate(components):
-        span = length - used if k == len(components) - 1 else min(component["length"], length - used)
+        last = k == len(components) - 1
+        span = length - used if last else min(component["length"], length - used)
         if span <= 1e-6:
             continue
-        if k == len(components) - 1:
+        if last or component["length"] > length - used:
             full = int(span / size + 1e-9)
             first = span - full * size
             spans = ([first] if first > 1e-6 else []) + [size] * full
@@ -75,12 +76,13 @@ def build_elements(settings: dict, length: float) -> Floats:
     return rows
 
 
-def stand_elements(settings: dict, used: float) -> Floats:
-    """Elements of one more stand on a string of length `used`, of the component the tally has there."""
+def stand_elements(settings: dict, length_now: float) -> Floats:
+    """Elements of one more stand: of the component the tally has at that place above the bit."""
+    span = settings["rig"]["stand"]
     count = settings["rig"].get("elements_per_stand", 1)
-    span = settings["rig"]["stand"] / count
-    components = settings["string"]["components"]
-    ends = np.cumsum([component["length"] for component in components])
-    middles = used + (np.arange(count) + 0.5) * span
-    rows = np.minimum(np.searchsorted(ends, middles), len(components) - 1)
-    return np.array([element_row(components[row], span, settings) for row in rows])
+    top = 0.0
+    for component in settings["string"]["components"]:
+        top += component["length"]
+        if top > length_now + 0.5 * span:
+            break
+    return np.array([element_row(component, span / count, settings) for _ in range(count)])

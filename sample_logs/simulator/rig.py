@@ -166,6 +166,12 @@ class Rig:
         usual = el.steady(self.x, self.elements, self.hole.table, self.control(), sign)
         return float(self.string_weight - usual)
 
+    def slack(self) -> float:
+        """Find the block travel that only turns a full pick-up into a full slack-off, moving no bit [m]."""
+        if self.slips or self.rpm > 5.0:
+            return 0.0
+        return float(el.slack(self.x, self.elements, self.table, self.control()))
+
     def _feel(self, block_move: float, before: Floats) -> None:
         """Keep track of how deep the last surface motion has been felt."""
         if self.slips:
@@ -219,7 +225,7 @@ class Rig:
                 self.string_weight, bit, self.found[el.FRICTION_TORQUE] + bit_torque, self.rpm, self.pump,
                 float(self.slips), loads[3], loads[0], loads[1], loads[2], float(self.latched.max()),
                 *spans, self.reach, self.found[el.RESIDUAL], self.zero, self.length,
-                self.plain_drag(), self.bed,
+                self.plain_drag(), self.bed, self.slack(),
             )
         )  # fmt: skip
         self.tags.append(self.tag)
@@ -262,5 +268,6 @@ class Rig:
 COLUMNS = (
     "time", "block", "tally_depth", "bit_true", "bottom_true", "hookload", "string_weight", "bit_load",
     "torque", "rpm", "pump", "slips", "hanging", "ratio", "ratio_md", "compression", "state",
-    "top", "bottom", "helical_top", "helical_bottom", "reach", "residual", "zero", "tally", "drag", "bed",
+    "top", "bottom", "helical_top", "helical_bottom", "reach", "residual", "zero", "tally", 
+    "drag", "bed", "slack",
 )  # fmt: skip

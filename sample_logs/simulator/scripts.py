@@ -65,6 +65,8 @@ def drill_stand(driller: Driller, stand: dict) -> None:
             driller.rotary(part["rotary"], part.get("wob", 80.0) * KN)
         elif "ream" in part:
             ream(driller, part["ream"], part.get("times", 1))
+        elif "wiper" in part:
+            wipe(driller, part["wiper"], part.get("times", 1))
         elif "circulate" in part:
             driller.move(-part.get("pick", 4.0), driller.check_speed)
             driller.hold(part["circulate"], rpm=part.get("rpm", 0.0))
@@ -74,6 +76,18 @@ def drill_stand(driller: Driller, stand: dict) -> None:
             driller.slide(part["slide"], part["plan"], part.get("patience", 2400.0))
             driller.move(-5.0, driller.check_speed)
             driller.hold(15)
+
+
+def wipe(driller: Driller, length: float, times: int = 1) -> None:
+    """Work the pipe up and down without rotation, as far as the derrick lets it."""
+    driller.rig.tag = "wiper"
+    for _ in range(times):
+        up = min(length, driller.rig.settings["rig"]["stand"] + 1.0 - driller.rig.height)
+        driller.move(-up, 0.2)
+        driller.hold(15)
+        driller.move(up - 2.5, 0.2)
+        driller.hold(15)
+    driller.rig.tag = ""
 
 
 def ream(driller: Driller, length: float, times: int = 1) -> None:
@@ -127,11 +141,10 @@ def push_down(driller: Driller, goal: float, floor: float, speed: float) -> bool
     rig = driller.rig
     while rig.height > goal:
         left = rig.height - goal
-        near = max((rig.string_weight - floor) / (60.0 * KN), 0.1)
+        near = max((rig.string_weight - floor) / (250.0 * KN), 0.08)
         rig.advance(Demand(min(speed, 0.03 + 0.25 * left, speed * near), 0.0, 0.0))
-        if rig.string_weight < floor:
-            while rig.speed:
-                rig.advance(Demand(0.0, 0.0, 0.0))
+        if rig.string_weight < floor or rig.found[0] > 60.0 * KN:
+            rig.speed = 0.0  # he is on the brake
             return False
     while rig.speed:
         rig.advance(Demand(0.0, 0.0, 0.0))
@@ -153,19 +166,19 @@ def liner(rig: Rig, driller: Driller, script: dict) -> None:
         if push_down(driller, 1.2, floor, driller.trip_speed):
             driller.hold(5, pump=0.0)
             continue
-        stuck(driller, script, floor)
+        stuck(driller, script)
         break
     rig.tag = ""
 
 
-def stuck(driller: Driller, script: dict, floor: float) -> None:
+def stuck(driller: Driller, script: dict) -> None:
     """Try again and again where the liner went no further, then come up and wait."""
     driller.rig.tag = "stuck"
     for attempt in script["attempts"]:
         driller.hold(attempt.get("wait", 60), pump=0.0)
         driller.move(-attempt["pick"], driller.check_speed, pump=0.0)
         driller.hold(20, pump=attempt.get("pump", 0.0))
-        push_down(driller, 1.2, floor, attempt.get("speed", 0.15))
+        push_down(driller, 1.2, attempt["floor_kN"] * KN, attempt.get("speed", 0.15))
     driller.hold(240, pump=0.0)
     driller.move(-min(20.0, 29.0 - driller.rig.height), driller.check_speed, pump=0.0)
     driller.hold(120, pump=0.0)

@@ -9,6 +9,7 @@ from numpy.typing import NDArray
 from .hole import Hole
 
 Floats = NDArray[np.float64]
+WINDOW = 30
 STATES = np.array(["none", "sinusoidal", "helical"])
 
 
@@ -35,35 +36,38 @@ def activities(true: pd.DataFrame, least_load: float) -> NDArray:
     return np.select([r for r, _ in rules], [w for _, w in rules], default="static")
 
 
-def lockups(true: pd.DataFrame, noise: float, stretch: Floats) -> NDArray[np.bool_]:
+def lockups(true: pd.DataFrame, noise: float) -> NDArray[np.bool_]:
     """Seconds in lockup: the block goes down, the hook loses weight, and the bit sees none of it."""
-    window = 30
     depth, weight = true["tally_depth"].to_numpy(), true["string_weight"].to_numpy()
     bit, place = true["bit_load"].to_numpy(), true["bit_true"].to_numpy()
     still = (true["rpm"].to_numpy() <= 5.0) & (true["slips"].to_numpy() == 0)
+    slack = true["slack"].to_numpy()
     out = np.zeros(len(depth), dtype=bool)
-    lowest, turned = np.inf, 0
-    least = max(1e4, 6.0 * noise)
+    lowest, highest, deepest, turned = np.inf, np.inf, -np.inf, 0
     for i in range(len(depth)):
         if not still[i]:
-            lowest, turned = np.inf, i
+            lowest, highest, deepest, turned = np.inf, depth[i], depth[i], i
             continue
-        if depth[i] < depth[turned]:
-            turned = i
-        fresh = weight[i] <= lowest + 100.0
+        deepest = max(deepest, depth[i])
+        if depth[i] < deepest - 0.01:  # going up: the next way down starts from here
+            highest, deepest, turned = depth[i], depth[i], i
+        fresh = weight[i] <= lowest + noise
         lowest = min(lowest, weight[i])
-        start = max(i - window, 0)
-        if not still[start : i + 1].all() or not fresh:
+        first = max(i - WINDOW, 0)
+        window = slice(first, i + 1)
+        if not still[window].all() or not fresh:
             continue
-        k = start + int(np.argmax(weight[start : i + 1]))
-        lowered, drop = depth[i] - depth[k], weight[k] - weight[i]
-        if lowered < 0.08 or drop < least:
-            continue
+        lowered, drop = depth[i] - depth[window], weight[window] - weight[i]
+        enough = (lowered >= 0.08) & (drop >= max(1e4, 6.0 * noise))
         if bit[i] > 1e3:
-            out[i] = bit[i] - bit[k] < 0.2 * drop
-        else:
-            gone = depth[i] - depth[turned]
-            out[i] = gone > 1.3 * stretch[i] + 0.15 and place[i] - place[k] < 0.2 * lowered
+            k = int(np.argmax(drop))
+            out[i] = enough[k] and bit[i] - bit[window][k] < 0.2 * drop[k]
+        elif depth[i] - highest > slack[i]:
+            window = slice(max(first, turned), i + 1)
+            lowered, drop = depth[i] - depth[window], weight[window] - weight[i]
+            enough = (lowered >= 0.08) & (drop >= max(1e4, 6.0 * noise))
+            past = depth[window] - highest > 1.05 * slack[i] + 0.05
+            out[i] = bool((past & enough & (place[i] - place[window] < 0.2 * lowered)).any())
     return out
 
 
@@ -79,7 +83,7 @@ def spans(flag: NDArray[np.bool_], time: Floats, bridge: float, least: float) ->
     return [(a, b) for a, b in found if b - a >= least]
 
 
-def truth_frame(true: pd.DataFrame, settings: dict, stretch: Floats) -> pd.DataFrame:
+def truth_frame(true: pd.DataFrame, settings: dict) -> pd.DataFrame:
     """Truth by second, in the units its column names give."""
     noise = settings["instrument"].get("hookload_noise_kN", 0.8) * 1e3
     surface = true["hanging"] - true["string_weight"]
@@ -101,7 +105,7 @@ def truth_frame(true: pd.DataFrame, settings: dict, stretch: Floats) -> pd.DataF
             "hole_md_m": true["bottom_true"].round(3),
             "string_weight_kN": (true["string_weight"] / 1e3).round(2),
             "surface_torque_kNm": (true["torque"] / 1e3).round(2),
-            "lockup": lockups(true, noise, stretch).astype(int),
+            "lockup": lockups(true, noise).astype(int),
             "drag_residual_kN": (true["drag"] / 1e3).round(2),
             "cuttings_level": true["bed"].round(3),
             "residual_kN": (true["residual"] / 1e3).round(3),
