@@ -9,7 +9,7 @@ from forensics.episodes.material import NOISE_MULTIPLE, Material
 from forensics.episodes.spans import Span
 
 #: Weight lost to buckling counts from this [N], or from this part of the surface weight.
-LOST = (5.0e3, 0.10)
+LOST = (5.0e3, 0.05)
 
 
 def consequence_of(material: Material, episode: Episode, lockups: list[Span]) -> Consequence:

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from dataclasses import dataclass, replace
 
 import numpy as np
@@ -20,13 +19,6 @@ Bools = NDArray[np.bool_]
 
 STATES = (State.NONE, State.SINUSOIDAL, State.HELICAL)
 
-FLAGS: dict[Kind, Callable[[Material], Bools]] = {
-    Kind.BUCKLING: rules.buckled,
-    Kind.LOCKUP: rules.locked_up,
-    Kind.DRAG: rules.dragging,
-    Kind.TORQUE: rules.hard_to_turn,
-}
-
 
 @dataclass(frozen=True)
 class Found:
@@ -36,6 +28,7 @@ class Found:
     span: Span
     flags: Bools
     least: float
+    signs: rules.LockupSigns
 
 
 def find_episodes(material: Material) -> tuple[tuple[Episode, ...], dict[str, int]]:
@@ -58,14 +51,19 @@ def find_episodes(material: Material) -> tuple[tuple[Episode, ...], dict[str, in
     gap = material.window(criteria.bridge_gap)
     found: list[Found] = []
     dropped: dict[str, int] = {}
-    for kind, flag in FLAGS.items():
-        flags = np.asarray(flag(material), dtype=bool) & np.asarray(material.log.used, dtype=bool)
-        if kind is Kind.BUCKLING:
-            flags = np.asarray(flag(material), dtype=bool)  # states stand while rows are set aside
+    signs = rules.lockup_signs(material)
+    used = np.asarray(material.log.used, dtype=bool)
+    flagged = {
+        Kind.BUCKLING: rules.buckled(material),  # states stand while rows are set aside
+        Kind.LOCKUP: rules.locked_up(material, signs, material.loads.bit_load) & used,
+        Kind.DRAG: rules.dragging(material) & used,
+        Kind.TORQUE: rules.hard_to_turn(material) & used,
+    }
+    for kind, flags in flagged.items():
         exact = kind in (Kind.DRAG, Kind.TORQUE)
         rule = SpanRule(gap, least, material.log.interval, flagged=exact)
         spans, short = find_spans(flags, material.time, rule)
-        found += [Found(kind, span, flags, least) for span in spans]
+        found += [Found(kind, span, flags, least, signs) for span in spans]
         if short:
             dropped[f"{kind.value}: shorter than {least:g} s"] = short
     lockups = [f.span for f in found if f.kind is Kind.LOCKUP]
@@ -165,7 +163,7 @@ def _chance(material: Material, found: Found) -> float:
     if found.kind is Kind.BUCKLING:
         return measure.buckling_chance(material, span, least)
     if found.kind is Kind.LOCKUP:
-        return measure.lockup_chance(material, span, found.flags)
+        return measure.lockup_chance(material, span, found.flags, found.signs)
     if found.kind is Kind.DRAG:
         return measure.drag_chance(material, span, least)
     return measure.torque_chance(material, span, least)
@@ -174,12 +172,10 @@ def _chance(material: Material, found: Found) -> float:
 def _note(material: Material, episode: Episode, consequence: Consequence) -> str:
     """Write what the columns leave out: helical span, size of a residual, revolutions while helical."""
     rows = slice(episode.first, episode.last + 1)
-    loads, said = material.loads, []
-    length = loads.helical_bottom[rows] - loads.helical_top[rows]
-    if episode.state is State.HELICAL and np.isfinite(length).any():
-        at = episode.first + int(np.nanargmax(length))
-        time = float((loads.state[rows] == 2).sum() * material.log.interval)
-        top, bottom = loads.helical_top[at], loads.helical_bottom[at]
+    said = []
+    top, bottom = measure.helical_span(material, Span(episode.first, episode.last))
+    if np.isfinite(bottom - top):
+        time = float((material.loads.state[rows] == 2).sum() * material.log.interval)
         said.append(f"helical from {top:.0f} to {bottom:.0f} m, {time:.0f} s in all")
     if episode.peak_residual is not None:
         unit = "kN" if episode.kind is Kind.DRAG else "kN.m"

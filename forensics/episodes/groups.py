@@ -207,30 +207,35 @@ def _features(material: Material, episodes: list[Episode]) -> Features:
 
 def _cluster(points: Floats) -> tuple[Ints, dict[int, float]]:
     """Cluster with the number of groups that stand apart best; stability of each under resampling."""
-    from sklearn.cluster import KMeans
     from sklearn.metrics import silhouette_score
-
-    def fit(rows: Floats, k: int) -> KMeans:
-        return KMeans(n_clusters=k, n_init=4, random_state=SEED).fit(rows)
 
     distinct = len(np.unique(points.round(9), axis=0))
     most = min(GROUPS[1], distinct - 1, len(points) // FEWEST)
     if most < GROUPS[0]:
         return np.zeros(len(points), dtype=np.int64), {0: 1.0}
-    tried = {k: fit(points, k) for k in range(GROUPS[0], most + 1)}
-    scores = {k: silhouette_score(points, model.labels_) for k, model in tried.items()}
+    tried = {k: _merge(points, k) for k in range(GROUPS[0], most + 1)}
+    scores = {k: silhouette_score(points, labels) for k, labels in tried.items()}
     best = max(scores, key=lambda k: (round(scores[k], 3), -k))
-    labels = tried[best].labels_.astype(np.int64)
+    labels = tried[best]
     rng = np.random.default_rng(SEED)
     agreement: dict[int, list[float]] = {k: [] for k in range(best)}
     for _ in range(RESAMPLES):
         rows = np.unique(rng.integers(0, len(points), len(points)))
-        if len(np.unique(points[rows].round(9), axis=0)) <= best:
+        if len(rows) <= best:
             continue
-        again = fit(points[rows], best).predict(points)
+        sampled = _merge(points[rows], best)
+        centres = np.array([points[rows][sampled == k].mean(axis=0) for k in range(best)])
+        again = np.argmin(((points[:, None, :] - centres[None]) ** 2).sum(axis=2), axis=1)
         for k, value in _agreements(labels, again).items():
             agreement[k].append(value)
     return labels, {k: float(np.mean(v)) if v else float("nan") for k, v in agreement.items()}
+
+
+def _merge(points: Floats, k: int) -> Ints:
+    """Group by merging the nearest, least variance within groups first (Ward 1963)."""
+    from sklearn.cluster import AgglomerativeClustering
+
+    return AgglomerativeClustering(n_clusters=k, linkage="ward").fit_predict(points).astype(np.int64)
 
 
 def _agreements(labels: Ints, again: Ints) -> dict[int, float]:

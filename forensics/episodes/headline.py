@@ -55,8 +55,8 @@ def headline(material: Material, episodes: tuple[Episode, ...], system: str = "m
         sentence = _dragging(material, main, system)
     else:
         sentence = (
-            "Nothing passed a threshold that matters: no helical buckling, no lockup, no drag or torque beyond "
-            "the model."
+            "Nothing passed a threshold that matters: no helical buckling, no lockup, no drag or torque "
+            "beyond the model."
         )
     return Headline(
         sentence=sentence,
@@ -84,7 +84,7 @@ def _loaded(material: Material, episode: Episode, system: str) -> str:
     doing = DOING.get(episode.activity, DOING["unknown"])
     bit = float(material.bit[episode.peak])
     when = wording.period(episode.start, episode.end, material.log.timezone)
-    what = _what(episode, system)
+    what = _what(material, episode, system)
     text = f"{_capital(doing)} with the bit at {wording.depth(bit, system)}, {when}, the string {what}"
     text += _cost(episode, system)
     if episode.cause:
@@ -92,13 +92,14 @@ def _loaded(material: Material, episode: Episode, system: str) -> str:
     return text
 
 
-def _what(episode: Episode, system: str) -> str:
+def _what(material: Material, episode: Episode, system: str) -> str:
     """Say what the string did and where."""
     where = ""
     if np.isfinite(episode.top_md) and np.isfinite(episode.bottom_md):
         where = f" from {wording.depths(episode.top_md, episode.bottom_md, system)}"
     if episode.state is State.HELICAL:
-        buckled = f"buckled into a helix{where}"
+        top, bottom = helical_span(material, Span(episode.first, episode.last))
+        buckled = f"buckled into a helix from {wording.depths(top, bottom, system)}"
     elif episode.state is State.SINUSOIDAL:
         buckled = f"buckled sinusoidally{where}"
     else:

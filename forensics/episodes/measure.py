@@ -8,7 +8,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics.episodes.material import Material
-from forensics.episodes.rules import LOCKUP_PART, lockup_part
+from forensics.episodes.rules import LockupSigns, locked_up
 from forensics.episodes.spans import Span
 from forensics.estimate import Estimate
 
@@ -108,6 +108,25 @@ def lost_weight(material: Material, peak: int) -> Lost:
     )
 
 
+def helical_span(material: Material, span: Span) -> tuple[float, float]:
+    """Depths of the helical places at their largest extent within a span [m]; NaN where there are none.
+
+    Parameters
+    ----------
+    material : Material
+    span : Span
+
+    Returns
+    -------
+    top, bottom : float
+    """
+    top, bottom = material.loads.helical_top[span.rows], material.loads.helical_bottom[span.rows]
+    if not np.isfinite(bottom - top).any():
+        return float("nan"), float("nan")
+    at = int(np.nanargmax(bottom - top))
+    return float(top[at]), float(bottom[at])
+
+
 def around(value: float, samples: Floats, weights: Floats, source: str) -> Estimate:
     """Estimate with the 90 % interval of weighted samples, widened to hold the value.
 
@@ -139,14 +158,14 @@ def buckling_chance(material: Material, span: Span, least: float, state: int = 1
     return _chance(held, draws.weights)
 
 
-def lockup_chance(material: Material, span: Span, flags: NDArray[np.bool_]) -> float:
+def lockup_chance(material: Material, span: Span, flags: NDArray[np.bool_], signs: LockupSigns) -> float:
     """Chance that the lockup rule holds on most of the rows flagged in the span."""
     draws = material.draws
     rows = np.flatnonzero(flags[span.rows]) + span.first
     if draws is None or not draws.rows[rows].all():
         return float("nan")
     held = [
-        float(np.mean(lockup_part(material, load.astype(float))[rows] < LOCKUP_PART)) >= MOST
+        float(np.mean(locked_up(material, signs, load.astype(float))[rows])) >= MOST
         for load in draws.bit_load
     ]
     return _chance(np.array(held), draws.weights)

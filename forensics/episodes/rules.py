@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+from dataclasses import dataclass
+
 import numpy as np
 from numpy.typing import NDArray
 
 from forensics.episodes.material import NOISE_MULTIPLE, Material
-from forensics.episodes.spans import running_extreme, since_reset, window_extreme
+from forensics.episodes.spans import running_extreme, window_extreme
 
 Floats = NDArray[np.float64]
 Bools = NDArray[np.bool_]
@@ -19,6 +21,9 @@ LOCKUP_PART = 0.2
 
 #: The reach stays short of the bit by at least this, off bottom [m]: a tenth of a stand is within its error.
 SHORT_OF_BIT = 3.0
+
+#: After slips the hookload is not the string's until this has passed [s].
+SETTLED = 5.0
 
 #: Readings are smoothed by a median over this many samples before the lockup rule looks at them.
 SMOOTH = 5
@@ -41,24 +46,31 @@ def hard_to_turn(material: Material) -> Bools:
         return material.loads.torque_residual > material.torque_threshold
 
 
-def locked_up(material: Material) -> Bools:
-    """Flag rows on which lowering the block adds next to nothing to the bit load, shape (n,)."""
-    return lockup_part(material, material.loads.bit_load) < LOCKUP_PART
+@dataclass(frozen=True)
+class LockupSigns:
+    """What the surface shows of lockup; arrays of shape (n,).
+
+    `there` where block, hookload and rotation leave lockup open; `drop` how far the hookload came down
+    within the window [N], from row `since`; `held` where, off bottom, the block went further than the
+    string's stretch and the motion still has not reached the bit.
+    """
+
+    there: Bools
+    drop: Floats
+    since: NDArray[np.int64]
+    held: Bools
 
 
-def lockup_part(material: Material, bit_load: Floats) -> Floats:
-    """Part of a hookload drop that reaches the bit, where the surface signs of lockup are there.
+def lockup_signs(material: Material) -> LockupSigns:
+    """Read the surface signs of lockup.
 
     Parameters
     ----------
     material : Material
-    bit_load : ndarray, shape (n,)
-        Of the calibrated replay or of a draw [N].
 
     Returns
     -------
-    ndarray, shape (n,)
-        Infinite where the block, the hookload or rotation say that this is no lockup at all.
+    LockupSigns
 
     Notes
     -----
@@ -66,19 +78,36 @@ def lockup_part(material: Material, bit_load: Floats) -> Floats:
     ordinary drag, and nothing can have arrived at the bit yet: such rows are in transit, not locked up.
     """
     rig = material.rig
-    drop, row = _hookload_drop(material)
+    hookload = _free_hookload(material)
+    drop, since = _hookload_drop(material, hookload)
     least = max(LOCKUP_DROP, NOISE_MULTIPLE * material.noise("hookload"))
     with np.errstate(invalid="ignore"):
-        signs = (_block_lowered(material) >= LOCKUP_TRAVEL) & (drop >= least) & ~rig.turning & ~rig.slips
-        signs &= _at_lowest(material)
+        there = (_block_lowered(material) >= LOCKUP_TRAVEL) & (drop >= least) & ~_loose(material)
+        there &= _at_lowest(material, hookload)
         below = rig.wob_slack_off
-        signs &= ~(rig.on_bottom & np.isfinite(below) & (below < least))
-        arrived = (bit_load - bit_load[row]) / np.where(drop > 0.0, drop, np.nan)
-        off = ~rig.on_bottom
+        there &= ~(rig.on_bottom & np.isfinite(below) & (below < least))
         short = material.loads.reach < material.bit - SHORT_OF_BIT
         held = short & (_travel_down(material) > material.loads.stretch)
-    part = np.where(off, np.where(held, 0.0, np.inf), arrived)
-    return np.where(signs & np.isfinite(part), part, np.inf)
+    return LockupSigns(there, drop, since, held)
+
+
+def locked_up(material: Material, signs: LockupSigns, bit_load: Floats) -> Bools:
+    """Flag rows on which lowering the block adds next to nothing to the bit load.
+
+    Parameters
+    ----------
+    material : Material
+    signs : LockupSigns
+    bit_load : ndarray, shape (n,)
+        Of the calibrated replay or of a draw [N].
+
+    Returns
+    -------
+    ndarray of bool, shape (n,)
+    """
+    with np.errstate(invalid="ignore"):
+        little = bit_load - bit_load[signs.since] < LOCKUP_PART * signs.drop
+    return signs.there & np.where(material.rig.on_bottom, little, signs.held)
 
 
 def _smoothed(values: Floats) -> Floats:
@@ -99,12 +128,19 @@ def _loose(material: Material) -> Bools:
     return material.rig.slips | material.rig.turning
 
 
-def _hookload_drop(material: Material) -> tuple[Floats, NDArray[np.int64]]:
+def _free_hookload(material: Material) -> Floats:
+    """Smoothed hookload, NaN while held in slips, turning, or just taken from the slips [N]."""
+    from scipy.ndimage import binary_dilation
+
+    edge = max(round(SETTLED / material.log.interval), 1)
+    taken = binary_dilation(material.rig.slips, iterations=edge)
+    return np.where(taken | material.rig.turning, np.nan, _smoothed(material.rig.hookload))
+
+
+def _hookload_drop(material: Material, hookload: Floats) -> tuple[Floats, NDArray[np.int64]]:
     """How far the hookload has come down within the window [N], and from which row."""
-    hookload = np.where(_loose(material), np.nan, _smoothed(material.rig.hookload))
     window = material.window(LOCKUP_WINDOW)
     highest, row = window_extreme(hookload, material.time, window, material.log.interval)
-    row = np.maximum(row, since_reset(_loose(material)))
     return highest - hookload, row
 
 
@@ -115,9 +151,8 @@ def _block_lowered(material: Material) -> Floats:
     return window_extreme(block, material.time, window, material.log.interval)[0] - block
 
 
-def _at_lowest(material: Material) -> Bools:
+def _at_lowest(material: Material, hookload: Floats) -> Bools:
     """Rows at the lowest hookload since slips or rotation, within the noise."""
-    hookload = _smoothed(material.rig.hookload)
     lowest = running_extreme(hookload, _loose(material), largest=False)
     return hookload <= lowest + 1.5 * material.noise("hookload") + 1.0
 

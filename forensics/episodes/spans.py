@@ -76,14 +76,8 @@ def find_spans(flags: Bools, time: Floats, rule: SpanRule) -> tuple[list[Span], 
     return spans, dropped
 
 
-def since_reset(resets: Bools) -> NDArray[np.int64]:
-    """Row of the last reset at or before each row (0 where there was none), shape (n,)."""
-    rows = np.arange(len(resets))
-    return np.maximum.accumulate(np.where(resets, rows, 0))
-
-
 def running_extreme(values: Floats, resets: Bools, largest: bool) -> Floats:
-    """Carry the largest (or smallest) value on, anew from each reset row; NaN is passed over.
+    """Carry the largest (or smallest) value on, anew from the last of each run of resets; NaN is passed over.
 
     Parameters
     ----------
@@ -98,7 +92,9 @@ def running_extreme(values: Floats, resets: Bools, largest: bool) -> Floats:
     sign = 1.0 if largest else -1.0
     filled = np.where(np.isnan(values), -np.inf, sign * values)
     out = np.empty(len(filled))
-    starts = np.flatnonzero(np.concatenate([[True], np.asarray(resets, dtype=bool)[1:]]))
+    resets = np.asarray(resets, dtype=bool)
+    last = resets & ~np.append(resets[1:], False)  # of several resets in a row only the last one counts
+    starts = np.unique(np.append(0, np.flatnonzero(last)))
     ends = np.append(starts[1:], len(filled))
     for a, b in zip(starts.tolist(), ends.tolist(), strict=True):
         np.maximum.accumulate(filled[a:b], out=out[a:b])

@@ -48,12 +48,26 @@ def period(start: float, end: float, timezone: str) -> str:
 
 
 def size(estimate: Estimate, quantity: str, system: str) -> str:
-    """Write an estimate with its interval, unit once."""
-    value = units.show(estimate.value, quantity, system)
-    if not (np.isfinite(estimate.low) and np.isfinite(estimate.high)) or estimate.low == estimate.high:
-        return value
-    low, high = (units.show(v, quantity, system) for v in (estimate.low, estimate.high))
-    return f"{value} ({low} to {high})"
+    """Write an estimate with its interval, unit once.
+
+    Parameters
+    ----------
+    estimate : Estimate
+        [SI]
+    quantity, system : str
+        As `forensics.units.show` takes them.
+
+    Returns
+    -------
+    str
+        "258 kN (255 to 263)"; without brackets where there is no interval.
+    """
+    label, scale = units.display_unit(quantity, system)
+    places = 0 if abs(estimate.value / scale) >= 100.0 else 1
+    value, low, high = (f"{v / scale:.{places}f}" for v in (estimate.value, estimate.low, estimate.high))
+    if not (np.isfinite(estimate.low) and np.isfinite(estimate.high)) or low == high:
+        return f"{value} {label}"
+    return f"{value} {label} ({low} to {high})"
 
 
 def depth(value: float, system: str) -> str:
