@@ -12,9 +12,10 @@ from numpy.typing import NDArray
 
 from forensics.case import Case
 from forensics.episodes.catalogue import Episode, Kind
+from forensics.episodes.describe import describe
 from forensics.episodes.find import find_episodes
 from forensics.episodes.material import Material
-from forensics.findings import Findings, Headline
+from forensics.findings import Findings
 from forensics.friction.calibrate import calibrate
 from forensics.friction.readings import find_readings
 from forensics.logs.read import read_time_logs
@@ -47,7 +48,7 @@ class Run:
     rig: RigView
 
 
-def analyse(case: Case, progress: Progress) -> Findings:
+def analyse(case: Case, progress: Progress, units: str = "metric") -> Findings:
     """Run every stage of the analysis on a case.
 
     Parameters
@@ -56,6 +57,8 @@ def analyse(case: Case, progress: Progress) -> Findings:
         One run of one string.
     progress : Progress
         Shows and times the stages.
+    units : str
+        "metric" or "field": units of the finding's sentences.
 
     Returns
     -------
@@ -77,7 +80,7 @@ def analyse(case: Case, progress: Progress) -> Findings:
         loads = replay(made)
         rig = refine_activity(run.rig, loads.bit_load, run.log)
     material = Material(run.log, rig, loads, None, calibration, run.well, case)
-    return _tell(material, made, progress)
+    return _tell(material, made, progress, units)
 
 
 def _understand(case: Case, progress: Progress) -> Run:
@@ -100,7 +103,7 @@ def _model(run: Run) -> LoadModel:
     return build_model(run.well, run.case, deepest, block_zero(run.rig))
 
 
-def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
+def _tell(material: Material, made: Replay, progress: Progress, units: str) -> Findings:
     """Find and weigh the episodes, and gather all that the run has to tell."""
     with progress.stage("episodes", "finding episodes"):
         first, _ = find_episodes(material)
@@ -108,11 +111,9 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
         drawn = replay_draws(made, _wanted(first, len(material.log)))
         material = replace(material, draws=drawn)
     with progress.stage("episodes", "weighing episodes"):
-        episodes, dropped = find_episodes(material)
-        families = ()
-        headline = Headline(f"{len(episodes)} episodes were found.", "not weighed yet")
+        told = describe(material, units)
     with progress.stage("profiles", "taking load profiles"):
-        mains = main_episodes(episodes)
+        mains = main_episodes(told.episodes)
         taken = profiles(made, [episode.peak for episode in mains])
     log, well = material.log, material.well
     return Findings(
@@ -123,11 +124,11 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
         calibration=material.calibration,
         loads=material.loads,
         fan=fan(material.calibration, made.model, (SHALLOW, float(np.nanmax(log.values["bit_depth"])))),
-        episodes=episodes,
-        families=families,
+        episodes=told.episodes,
+        families=told.families,
         profiles={episode.id: profile for episode, profile in zip(mains, taken, strict=True)},
-        headline=headline,
-        dropped=dropped,
+        headline=told.headline,
+        dropped=told.dropped,
         inputs=_digests(material.case, log),
         warnings=tuple(dict.fromkeys((*log.warnings, *well.warnings))),
     )

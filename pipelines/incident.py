@@ -26,8 +26,8 @@ class IncidentResult:
     folder : Path
         Where the results are.
     timings : mapping of str to float
-        Seconds spent by stage: imports, reading, well, rig, calibration, replay, draws, episodes, figures,
-        exports.
+        Seconds spent by stage: imports, reading, well, rig, calibration, replay, draws, episodes, profiles,
+        figures, exports.
     lines : tuple of str
         The result in a few lines, for the terminal.
     """
@@ -77,7 +77,7 @@ def run(
     case = load_case(Path(case_path))
     folder = Path(out) if out is not None else Path("reports") / case.id
     check_target(folder)
-    findings = analysis.analyse(case, progress)
+    findings = analysis.analyse(case, progress, units)
     with whole_folder(folder) as fresh:
         results.write(findings, fresh, units, progress)
     return IncidentResult(findings, folder, progress.timings, results.lines(findings, folder, units))
