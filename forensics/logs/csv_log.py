@@ -48,7 +48,8 @@ def read(path: Path, head: bytes, keep: Keep) -> RawLog:
         If the file is empty, has no rows of data or can't be unpacked.
     """
     dialect = find_dialect(head, path)
-    wanted = [number for number, name in enumerate(dialect.names) if keep(name)]
+    # The first two columns may hold the stamps whatever they are called.
+    wanted = [number for number, name in enumerate(dialect.names) if number < 2 or keep(name)]
     notes = list(dialect.notes)
     table = _fast(path, dialect, wanted)
     dropped = 0
@@ -73,6 +74,7 @@ def read(path: Path, head: bytes, keep: Keep) -> RawLog:
         first_line=dialect.skip + 1,
         date_hint=" ".join(filter(None, (*dialect.names, *dialect.units))),
         notes=tuple(notes),
+        grouped=dialect.delimiter == ",",
         dropped=dropped,
     )
 

@@ -12,6 +12,7 @@ from pathlib import Path
 
 from forensics import channels
 from forensics.errors import LogError
+from forensics.logs.clock_text import looks_like_clock, looks_like_date
 from forensics.logs.nulls import WORDS
 from forensics.units import is_blank, quantities_of
 
@@ -65,7 +66,7 @@ def find_encoding(head: bytes) -> str:
 
     Examples
     --------
-    >>> find_encoding("caf\u00e9".encode("cp1252"))
+    >>> find_encoding("caf\u00e9 noir".encode("cp1252"))
     'cp1252'
     """
     for mark, name in (
@@ -132,9 +133,13 @@ def _find_delimiter(lines: Sequence[str]) -> tuple[str, int]:
     return best
 
 
-def _decimal(rows: Sequence[Sequence[str]]) -> str:
+def _decimal(rows: Sequence[Sequence[str]], delimiter: str) -> str:
     fields = [field for row in rows for field in row]
     commas = sum(bool(re.fullmatch(r"[+-]?\d+,\d+", field)) for field in fields)
+    # "276,492": thousands are set apart by a comma where every group has three digits.
+    grouped = sum(bool(re.fullmatch(r"[+-]?\d{1,3}(,\d{3})+", field)) for field in fields)
+    if delimiter == "," and commas == grouped:
+        return "."
     points = sum(bool(re.fullmatch(r"[+-]?\d*\.\d+", field)) for field in fields)
     return "," if commas > points else "."
 
@@ -162,6 +167,20 @@ def _header(rows: Sequence[Sequence[str]], width: int) -> tuple[tuple[str, ...],
             units = pad.pop(best)
     names = max(reversed(pad), key=_name_score)
     return names, tuple(unit.strip("[](){} ") or None for unit in units)
+
+
+def _part_stamp(
+    names: tuple[str, ...], units: tuple[str | None, ...], row: Sequence[str]
+) -> tuple[tuple[str, ...], tuple[str | None, ...]]:
+    """Give date and clock a column each where one name stands over both and blanks part the columns."""
+    for i in range(len(row) - 1):
+        if looks_like_date(row[i]) and looks_like_clock(row[i + 1]):
+            return (*names[:i], "DATE", "TIME", *names[i + 1 : -1]), (
+                *units[: i + 1],
+                None,
+                *units[i + 1 : -1],
+            )
+    return names, units
 
 
 def find_dialect(head: bytes, path: Path) -> Dialect:
@@ -197,7 +216,9 @@ def find_dialect(head: bytes, path: Path) -> Dialect:
     delimiter, width = _find_delimiter(filled[len(filled) // 3 :: max(1, len(filled) // 45)])
     if not delimiter:
         raise LogError(
-            "found no columns; expected rows of data split by comma, semicolon, tab or blanks", file=path
+            f"found no rows of data; it begins {filled[0][:80]!r}; expected a header and rows split by comma, "
+            "semicolon, tab or blanks",
+            file=path,
         )
     return _finish(lines[:HEADER_LINES], (encoding, delimiter, width), path)
 
@@ -206,14 +227,12 @@ def _finish(lines: Sequence[str], found: tuple[str, str, int], path: Path) -> Di
     encoding, delimiter, width = found
     rows = [split_line(line, delimiter) for line in lines]
     counted = [str(number) for number in range(width)]
-    starts = [i for i, row in enumerate(rows) if len(row) >= max(2, width // 2) and _looks_like_data(row)][
-        :60
-    ]
-    starts = [i for i in starts if rows[i] not in (counted, [str(int(n) + 1) for n in counted])]
+    numbered = (counted, [str(int(number) + 1) for number in counted])
+    fit = [i for i, row in enumerate(rows) if len(row) >= max(2, width // 2) and row not in numbered]
+    starts = [i for i in fit if _looks_like_data(rows[i])][:60]
     if not starts:
-        raise LogError(
-            f"found a header but no rows of data; it begins {lines[0][:80]!r}", file=path, line=len(lines)
-        )
+        message = f"found a header but no rows of data; it begins {lines[0][:80]!r}"
+        raise LogError(message, file=path, line=len(lines))
     above = [row for row in rows[: starts[0]] if row and not row[0].startswith("#")]
     commented = [
         [row[0].lstrip("# "), *row[1:]] for row in rows[: starts[0]] if row and row[0].startswith("#")
@@ -221,6 +240,8 @@ def _finish(lines: Sequence[str], found: tuple[str, str, int], path: Path) -> Di
     usable = above if any(len(row) >= max(2, width // 2) for row in above) else commented
     names, units = _header(usable, width)
     notes = () if usable else ("no header: columns go by their number, from 1",)
-    decimal = _decimal([rows[i] for i in starts])
+    if delimiter == " " and usable and not any(len(row) >= width for row in usable):
+        names, units = _part_stamp(names, units, rows[starts[0]])
+    decimal = _decimal([rows[i] for i in starts], delimiter)
     padded = delimiter != " " and any(f"{delimiter} " in lines[i] for i in starts)
     return Dialect(encoding, delimiter, decimal, names, units, starts[0], padded, notes)

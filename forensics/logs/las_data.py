@@ -63,11 +63,11 @@ def read_data(body: str, header: _Header, keep: Keep, path: Path) -> Table:
     delimiter = header.delimiter or _delimiter(head)
     if header.wrap:
         table, names, units, dropped = _wrapped(body, header)
-        wanted = [number for number, name in enumerate(names) if keep(name)]
+        wanted = [number for number, name in enumerate(names) if number == 0 or keep(name)]
         return table[wanted], names, units, dropped, ["wrapped lines were joined"]
     width = Counter(len(_split(line, delimiter)) for line in head).most_common(1)[0][0]
     names, units = _mend(header, width, _split(head[len(head) // 2], delimiter), notes)
-    wanted = [number for number, name in enumerate(names) if keep(name)]
+    wanted = [number for number, name in enumerate(names) if number == 0 or keep(name)]
     table = _fast(body, delimiter, len(names), wanted)
     dropped = 0
     if table is None or _ragged(table):

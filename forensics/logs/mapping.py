@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import re
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -59,6 +59,10 @@ class Mapped:
         Entries of a channel that were text no number could be read from.
     warnings : tuple of str
         Channels set aside, and why.
+    aside : mapping of str to int
+        Samples of each channel set aside.
+    empty : mapping of str to str
+        Channels whose only columns hold no value, with such a column.
     """
 
     values: Mapping[str, Floats]
@@ -66,6 +70,8 @@ class Mapped:
     columns: tuple[SourceColumn, ...]
     garbled: Mapping[str, int]
     warnings: tuple[str, ...]
+    aside: Mapping[str, int]
+    empty: Mapping[str, str]
 
 
 def split_name(name: str) -> tuple[str, str | None]:
@@ -142,14 +148,17 @@ def map_columns(raw: RawLog, choices: Choices, time_columns: tuple[str, ...]) ->
         elif (found := _candidate(raw, place, choices)) is None:
             say(place, None, channels.match(split_name(name)[0])[1])
         else:
-            numbers[place] = to_numbers(raw.table[place])
+            numbers[place] = to_numbers(raw.table[place], raw.grouped)
             candidates.append(found)
     filled = [c for c in candidates if np.isfinite(numbers[c.place][0]).any()]
     for candidate in candidates:
         if candidate not in filled:
             say(candidate.place, None, "every value is missing")
     picked = _pick(_settle_depth(filled), say)
-    return _finish(raw, picked, numbers, account)
+    mapped = _finish(raw, picked, numbers, account)
+    found = {c.channel for c in picked}
+    empty = {c.channel: raw.names[c.place] for c in candidates if c not in filled and c.channel not in found}
+    return replace(mapped, empty=empty)
 
 
 def _candidate(raw: RawLog, place: int, choices: Choices) -> Candidate | None:
@@ -212,6 +221,7 @@ def _finish(
     values: dict[str, Floats] = {}
     used_units: dict[str, str] = {}
     warnings: list[str] = []
+    aside: dict[str, int] = {}
     file = raw.path.name
     for c in picked:
         data, _ = numbers[c.place]
@@ -224,9 +234,12 @@ def _finish(
         if BY_NAME[c.channel].need is Need.NEEDED:
             raise LogError(fault, file=raw.path, column=raw.names[c.place])
         account[c.place] = SourceColumn(file, raw.names[c.place], c.unit, None, f"set aside: {fault}")
+        aside[c.channel] = int(np.isfinite(data).sum())
         warnings.append(f"{file}, column {raw.names[c.place]!r}: {c.channel} set aside; {fault}")
     garbled = {c.channel: numbers[c.place][1] for c in picked if numbers[c.place][1] and c.channel in values}
-    return Mapped(values, used_units, tuple(account[i] for i in sorted(account)), garbled, tuple(warnings))
+    return Mapped(
+        values, used_units, tuple(account[i] for i in sorted(account)), garbled, tuple(warnings), aside, {}
+    )
 
 
 def _unit_fault(candidate: Candidate, data: Floats) -> str | None:

@@ -93,24 +93,26 @@ def words_for_pandas() -> list[str]:
     return sorted({form for word in WORDS for form in (word, word.upper(), word.capitalize())} - {""})
 
 
-def _one(text: str) -> float:
+def _one(text: str, grouped: bool) -> float:
     word = text.strip().casefold()
     if word in WORDS or _STARS.fullmatch(word):
         return np.nan
     if word in _SWITCH:
         return _SWITCH[word]
-    if _THOUSANDS.fullmatch(word) and ("." in word or word.count(",") > 1):
+    if _THOUSANDS.fullmatch(word) and (grouped or "." in word or word.count(",") > 1):
         word = word.replace(",", "")
     return float(word.replace(",", "."))
 
 
-def to_numbers(column: pd.Series) -> tuple[Floats, int]:
+def to_numbers(column: pd.Series, grouped: bool = False) -> tuple[Floats, int]:
     """Turn a column into numbers.
 
     Parameters
     ----------
     column : pandas.Series, shape (n,)
         Numbers, booleans or text.
+    grouped : bool
+        True where a comma before three digits sets thousands apart.
 
     Returns
     -------
@@ -136,7 +138,7 @@ def to_numbers(column: pd.Series) -> tuple[Floats, int]:
     bad = np.zeros(len(uniques) + 1, dtype=bool)
     for place, text in enumerate(uniques):
         try:
-            table[place] = _one(str(text))
+            table[place] = _one(str(text), grouped)
         except ValueError:
             bad[place] = True
     table[~np.isfinite(table)] = np.nan

@@ -9,7 +9,7 @@ from numpy.typing import NDArray
 
 from forensics.channels import BY_NAME
 from forensics.logs.frozen import FREEZABLE, find_frozen
-from forensics.logs.spikes import find_jumps, find_spikes, rule_for
+from forensics.logs.spikes import COARSE, find_jumps, find_spikes, rule_for
 from forensics.logs.table import Reason, Step
 
 Floats = NDArray[np.float64]
@@ -24,6 +24,8 @@ SPIKY = (
     "differential_pressure",
     "flow_in",
 )
+# A pump or a pressure may well be off for one coarse sample.
+SPIKY_COARSE = ("hookload", "hookload_max", "wob", "torque")
 # Channels for which nothing but zeros means that nobody measured them.
 ZERO_IS_MISSING = frozenset(
     [
@@ -117,7 +119,7 @@ def clean(time: Floats, values: dict[str, Floats], interval: float) -> Cleaning:
         if channel in work.values:
             jumps = find_jumps(work.values[channel], time)
             work.set_aside(channel, jumps, Reason.SPIKE_DEPTH, "spike", "jumps away and back")
-    for channel in SPIKY:
+    for channel in SPIKY if interval < COARSE else SPIKY_COARSE:
         if channel in work.values:
             spikes = find_spikes(work.values[channel], rule_for(channel, interval))
             reason = _CAUSES.get(channel, Reason.SPIKE_HOOKLOAD)

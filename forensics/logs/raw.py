@@ -40,6 +40,8 @@ class RawLog:
         What the file says about the order of day and month ("dd/mm" and so on), never more than a hint.
     notes : tuple of str
         What the reader had to put up with, for the report.
+    grouped : bool
+        True where a comma before three digits sets thousands apart.
     dropped : int
         Rows the reader could not split into columns.
     """
@@ -55,4 +57,5 @@ class RawLog:
     start_is_first_row: bool = False
     date_hint: str = ""
     notes: tuple[str, ...] = field(default=())
+    grouped: bool = False
     dropped: int = 0

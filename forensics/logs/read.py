@@ -61,16 +61,22 @@ def read_time_logs(case: Case) -> TimeLog:
     _check_choices(case, raws)
     clocks = _read_clocks(case, raws)
     pieces, records, steps, warnings = [], [], [], []
+    empty: dict[str, tuple[RawLog, str]] = {}
     for raw, clock, hashed in zip(raws, clocks, digests, strict=True):
         mapped = map_columns(raw, settings.channels, clock.columns)
         piece, account = _to_piece(raw, clock, mapped, case.rig.hookload_includes_block)
         pieces.append(piece)
         steps.extend(account)
         warnings.extend((*clock.warnings, *mapped.warnings))
+        empty.update({channel: (raw, column) for channel, column in mapped.empty.items()})
         records.append(_record(raw, clock, mapped, piece, hashed.result()))
     for channel in NEEDED:
-        if not any(channel in piece.values for piece in pieces):
-            raise missing_channel(channel, raws)
+        if any(channel in piece.values for piece in pieces):
+            continue
+        if channel in empty:
+            raw, column = empty[channel]
+            raise LogError(f"every value of {channel} is missing", file=raw.path, column=column)
+        raise missing_channel(channel, raws)
     del raws
     return _assemble(case, pieces, tuple(records), steps, warnings)
 
@@ -184,6 +190,8 @@ def _to_piece(raw: RawLog, clock: Clock, mapped: Mapped, with_block: bool) -> tu
         )
     if not stamped.any():
         raise LogError("no row has a readable stamp", file=raw.path, column=clock.columns[0])
+    for channel, count in mapped.aside.items():
+        steps.append(Step("unit missing or unknown", count, channel, raw.path.name))
     values: dict[str, Floats] = {}
     for channel, data in mapped.values.items():
         if mapped.garbled.get(channel):

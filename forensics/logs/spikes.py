@@ -16,6 +16,8 @@ Floats = NDArray[np.float64]
 Bools = NDArray[np.bool_]
 BLOCK = 64
 MAD = 1.4826
+# From this sampling interval on a single sample can be an event of its own [s].
+COARSE = 5.0
 # Nothing on a rig moves the bit or the block faster [m/s].
 TOP_SPEED = 5.0
 # Excursions too small to matter, whatever the noise [SI].
@@ -59,7 +61,7 @@ def rule_for(channel: str, interval: float) -> SpikeRule:
         "torque": 1.0e3,
         "standpipe_pressure": 5e5,
     }.get(channel, 0.0)
-    if interval >= 5.0:
+    if interval >= COARSE:
         return SpikeRule(longest=1, noise=15.0, share=0.5, floor=floor)
     return SpikeRule(share=0.04 if channel == "hookload" else 0.1, floor=floor)
 

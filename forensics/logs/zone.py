@@ -43,7 +43,7 @@ def zone_of(name: str) -> ZoneInfo | float:
 
 
 def to_utc(local: Floats, zone: ZoneInfo | float) -> Floats:
-    """Shift local seconds to UTC; in the hour that comes twice the stamps' order decides if it can."""
+    """Shift local seconds to UTC: in the hour told twice, by their order."""
     if isinstance(zone, float):
         return local - zone
     import pandas as pd
