@@ -1,0 +1,120 @@
+"""The incident job from end to end, on a small invented run."""
+
+import json
+
+import jsonschema
+import numpy as np
+import pandas as pd
+import pytest
+
+import cases
+from forensics.errors import InputError
+from forensics.exports.summary import summary_schema
+from pipelines import cli, incident
+from pipelines.output import RESULTS
+
+JOB = cases.Job(duration=3700.0)
+STAGES = {
+    "imports", "reading", "well", "rig", "calibration", "replay", "draws", "episodes", "profiles", "figures",
+    "exports",
+}  # fmt: skip
+
+
+@pytest.fixture(scope="module")
+def case(tmp_path_factory):
+    return cases.make_case(tmp_path_factory.mktemp("job"), JOB)
+
+
+@pytest.fixture(scope="module")
+def result(case):
+    return incident.run(case, case.parent / "out", quiet=True)
+
+
+def test_writes_every_result(result):
+    assert {path.name for path in result.folder.iterdir()} == RESULTS - {"report.pdf"}
+
+
+def test_summary_keeps_to_the_schema(result):
+    summary = json.loads((result.folder / "summary.json").read_text())
+    jsonschema.Draft202012Validator(summary_schema()).validate(summary)
+    assert {entry["file"] for entry in summary["inputs"]} == {
+        "case.toml", "time.csv", "survey.csv", "hole.csv", "string.csv",
+    }  # fmt: skip
+
+
+def test_history_has_a_row_a_stamp(result, case):
+    history = pd.read_parquet(result.folder / "history.parquet")
+    log = pd.read_csv(case.parent / "time.csv")
+    assert len(history) == len(log)
+    np.testing.assert_allclose(history["hookload_logged_kN"], log["Hookload (kN)"], atol=1e-9)
+    np.testing.assert_allclose(history["bit_depth_m"], log["Bit Depth (m)"], atol=1e-9)
+
+
+def test_friction_of_the_invented_run_is_recovered(result):
+    friction = json.loads((result.folder / "friction.json").read_text())
+    found = {section["kind"]: section for section in friction["sections"]}
+    assert found["cased"]["friction_factor"] == pytest.approx(JOB.cased, abs=0.02)
+    assert found["open"]["friction_factor"] == pytest.approx(JOB.open, abs=0.02)
+    assert friction["block_weight_kN"] == pytest.approx(cases.BLOCK / 1e3, abs=2.0)
+
+
+def test_quiet_run_buckles_nowhere(result):
+    history = pd.read_parquet(result.folder / "history.parquet")
+    assert set(history["state"]) == {"none"}
+    assert not any(e.kind == "buckling" for e in result.findings.episodes)
+
+
+def test_weight_of_the_invented_run_reaches_the_bit(result):
+    history = pd.read_parquet(result.folder / "history.parquet")
+    turned = history.loc[history["activity"] == "drill_rotate", "wob_bit_kN"]
+    slid = history.loc[history["activity"] == "drill_slide", "wob_bit_kN"]
+    # 5 kN: the weight readings of an hour leave the weight of the pipe above the rotary uncertain.
+    assert turned.median() == pytest.approx(JOB.weight / 1e3, abs=5.0)
+    assert slid.median() == pytest.approx(JOB.slide_weight / 1e3, abs=5.0)
+
+
+def test_result_is_told_in_ten_lines_at_most(result):
+    assert 8 <= len(result.lines) <= 10
+    assert result.lines[0].startswith("heron-1-run-2: ")
+    assert result.lines[-1] == f"Report: {result.folder / 'report.html'}"
+    assert all("\n" not in line for line in result.lines)
+
+
+def test_every_stage_is_timed(result):
+    assert set(result.timings) == STAGES
+    assert min(result.timings.values()) >= 0.0
+
+
+def test_same_input_gives_the_same_bytes(result, case, tmp_path):
+    again = incident.run(case, tmp_path / "again", quiet=True)
+    for path in result.folder.iterdir():
+        assert path.read_bytes() == (again.folder / path.name).read_bytes(), path.name
+
+
+def test_results_go_to_reports_by_default(case, tmp_path, monkeypatch, capsys):
+    monkeypatch.chdir(tmp_path)
+    assert cli.main(["incident", str(case), "--units", "field"]) == 0
+    captured = capsys.readouterr()
+    assert (tmp_path / "reports" / "heron-1-run-2" / "report.html").is_file()
+    assert "klbf" in captured.out
+    assert captured.err == "", "no progress where nobody watches"
+
+
+def test_unknown_units_are_refused(case):
+    with pytest.raises(InputError, match="units are 'cubits'; expected 'metric' or 'field'"):
+        incident.run(case, units="cubits")
+
+
+def test_fault_in_the_report_leaves_earlier_results(case, tmp_path, monkeypatch):
+    out = tmp_path / "out"
+    out.mkdir()
+    (out / "summary.json").write_text("earlier")
+
+    def fail(*_):
+        raise RuntimeError("no ink")
+
+    monkeypatch.setattr("pipelines.results.EXPORTS", {"friction.json": fail})
+    with pytest.raises(RuntimeError, match="no ink"):
+        incident.run(case, out, quiet=True)
+    assert [(p.name, p.read_text()) for p in out.iterdir()] == [("summary.json", "earlier")]
+    assert [p.name for p in tmp_path.iterdir()] == ["out"]
