@@ -12,6 +12,8 @@ from forensics.episodes.causes.names import Cause
 from forensics.episodes.causes.weigh import UNTOLD
 from forensics.episodes.groups import DOING, is_routine, rule_label
 from forensics.episodes.material import Material
+from forensics.episodes.measure import CERTAIN, helical_span
+from forensics.episodes.spans import Span
 
 #: Episodes told one by one below the sentence.
 TOLD = 6
