@@ -22,6 +22,17 @@ FACTOR_RANGE = (0.6, 1.6)
 LEAST_DRAG = 10e3  # N; below this the drag is too small to say anything about friction
 
 
+SLIDING = ("slack_off", "pick_up")
+
+
+@dataclass(frozen=True)
+class Series:
+    """Values read at moments, both of shape (k,) [s since 1970 UTC]."""
+
+    at: Floats
+    values: Floats
+
+
 @dataclass(frozen=True)
 class LocalMatch:
     """Weight shift [N] and friction multiples downwards and upwards, each of shape (n,)."""
@@ -43,18 +54,19 @@ def match_locally(time: Floats, calibration: Calibration, model: LoadModel) -> L
     model : LoadModel
         The well as the kernels take it.
     """
-    weights = [r for r in calibration.readings if r.kind in ("rotating", "slack_off", "pick_up")]
-    turning = [r for r in weights if r.kind == "rotating"]
-    shift_at, shifts = _shifts(turning, calibration, model)
-    shift = _carry(time, shift_at, shifts, 0.0)
-    result = {}
-    for kind in ("slack_off", "pick_up"):
-        chosen = [r for r in weights if r.kind == kind]
-        at = np.array([r.end for r in chosen])
-        beyond = np.array([_carry(np.array([r.end]), shift_at, shifts, 0.0)[0] for r in chosen])
-        multiples = _multiples(chosen, beyond, kind, calibration, model)
-        result[kind] = _carry(time, at[np.isfinite(multiples)], multiples[np.isfinite(multiples)], 1.0)
-    return LocalMatch(shift, result["slack_off"], result["pick_up"])
+    weights = {kind: [r for r in calibration.readings if r.kind == kind] for kind in SLIDING}
+    turning = [r for r in calibration.readings if r.kind == "rotating"]
+    shifts = _shifts(turning, calibration, model)
+    multiples = {kind: _multiples(weights[kind], shifts, kind, calibration, model) for kind in SLIDING}
+    usual = {kind: float(np.median(m.values)) if len(m.values) else 1.0 for kind, m in multiples.items()}
+    # what rubs going up rubs going down: either reading tells how friction stands at its moment
+    both = Series(
+        np.concatenate([multiples[kind].at for kind in SLIDING]),
+        np.concatenate([multiples[kind].values / usual[kind] for kind in SLIDING]),
+    )
+    beyond = _carry(time, both, 1.0)
+    down, up = (np.clip(beyond * usual[kind], *FACTOR_RANGE) for kind in SLIDING)
+    return LocalMatch(_carry(time, shifts, 0.0), down, up)
 
 
 def string_part(readings: list[Reading], calibration: Calibration, model: LoadModel) -> Floats:
@@ -65,44 +77,37 @@ def string_part(readings: list[Reading], calibration: Calibration, model: LoadMo
     return value - calibration.block_weight.value - calibration.hookload_bias.value - above
 
 
-def _shifts(
-    readings: list[Reading], calibration: Calibration, model: LoadModel
-) -> tuple[Floats, Floats]:
-    """Find times and weight shifts of the rotating readings."""
+def _shifts(readings: list[Reading], calibration: Calibration, model: LoadModel) -> Series:
+    """Find the weight shifts of the rotating readings."""
     if not readings:
-        return np.empty(0), np.empty(0)
+        return Series(np.empty(0), np.empty(0))
     depth = np.array([r.bit_depth for r in readings])
     weight = model.offbottom.string_weight("rotating", depth, 0.0, 0.0, calibration.weight_scale.value)
     shift = string_part(readings, calibration, model) - weight
     limit = MAX_SHIFT * np.abs(weight)
-    return np.array([r.end for r in readings]), np.clip(shift, -limit, limit)
+    return Series(np.array([r.end for r in readings]), np.clip(shift, -limit, limit))
 
 
 def _multiples(
-    readings: list[Reading], shift: Floats, kind: str, calibration: Calibration, model: LoadModel
-) -> Floats:
-    """Friction multiple of each sliding reading, NaN where the drag is too small to tell."""
+    readings: list[Reading], shifts: Series, kind: str, calibration: Calibration, model: LoadModel
+) -> Series:
+    """Find the friction multiple of each sliding reading whose drag is large enough to tell."""
     if not readings:
-        return np.empty(0)
+        return Series(np.empty(0), np.empty(0))
     cased, open_hole = factors(calibration)
     depth = np.array([r.bit_depth for r in readings])
+    at = np.array([r.end for r in readings])
     scale = calibration.weight_scale.value
     still = model.offbottom.string_weight("rotating", depth, 0.0, 0.0, scale)
-    moving = model.offbottom.string_weight(kind, depth, cased, open_hole, scale)
-    found = string_part(readings, calibration, model) - shift - still
-    expected = moving - still
+    expected = model.offbottom.string_weight(kind, depth, cased, open_hole, scale) - still
+    found = string_part(readings, calibration, model) - _carry(at, shifts, 0.0) - still
     told = np.abs(expected) > LEAST_DRAG
-    multiple = np.divide(found, expected, out=np.full(len(found), np.nan), where=told)
-    return np.clip(multiple, *FACTOR_RANGE)
+    return Series(at[told], np.clip(found[told] / expected[told], *FACTOR_RANGE))
 
 
-def _carry(time: Floats, at: Floats, values: Floats, default: float) -> Floats:
-    """Carry readings along time, lightly smoothed by a running median of three."""
-    if len(at) == 0:
+def _carry(time: Floats, series: Series, default: float) -> Floats:
+    """Carry readings along time: between two a straight line, before and after the nearest one."""
+    if len(series.at) == 0:
         return np.full(len(time), default)
-    order = np.argsort(at, kind="stable")
-    at, values = at[order], values[order]
-    if len(values) >= 5:
-        padded = np.concatenate([values[:1], values, values[-1:]])
-        values = np.median(np.stack([padded[:-2], padded[1:-1], padded[2:]]), axis=0)
-    return np.interp(time, at, values)
+    order = np.argsort(series.at, kind="stable")
+    return np.interp(time, series.at[order], series.values[order])
