@@ -216,8 +216,8 @@ def find_dialect(head: bytes, path: Path) -> Dialect:
     delimiter, width = _find_delimiter(filled[len(filled) // 3 :: max(1, len(filled) // 45)])
     if not delimiter:
         raise LogError(
-            f"found no rows of data; it begins {filled[0][:80]!r}; expected a header and rows split by comma, "
-            "semicolon, tab or blanks",
+            f"found no rows of data; it begins {filled[0][:80]!r}; expected a header and rows, split by "
+            "comma, semicolon, tab or blanks",
             file=path,
         )
     return _finish(lines[:HEADER_LINES], (encoding, delimiter, width), path)

@@ -100,7 +100,7 @@ class TimeLog:
     warnings: tuple[str, ...] = field(default=())
 
     def __len__(self) -> int:
-        """Number of rows."""
+        """Count the rows."""
         return len(self.time)
 
     def get(self, channel: str) -> Floats | None:

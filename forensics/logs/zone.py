@@ -37,7 +37,7 @@ def zone_of(name: str) -> ZoneInfo | float:
         return ZoneInfo(bare)
     except (KeyError, ValueError, OSError) as error:
         raise CaseError(
-            f"unknown time zone {name!r}; use an IANA name such as 'Europe/Oslo' or an offset such as '+01:00'",
+            f"unknown time zone {name!r}; use an IANA name ('Europe/Oslo') or an offset ('+01:00')",
             column="logs.timezone",
         ) from error
 
