@@ -224,6 +224,7 @@ def classify(view: RigView, unknown: Bools, unsure: tuple[Bools, Bools]) -> NDAr
         (view.slips, Activity.CONNECTION),
         # Without rotary speed a slide can't be told from rotary drilling; dry trips hardly ever turn.
         (no_turn & (pumping | no_pump), Activity.UNKNOWN),
+        (no_pump & view.on_bottom, Activity.UNKNOWN),
         (view.on_bottom & pumping & turning, Activity.DRILL_ROTATE),
         (view.on_bottom & pumping, Activity.DRILL_SLIDE),
         (turning & down, Activity.REAM_DOWN),

@@ -24,22 +24,27 @@ _WANDER_SHARE = 0.05
 _LEAST_STILL = 20.0
 # Interruptions of a connection shorter than this are bridged: stabbing, make-up torque [s].
 _BRIDGE = 20.0
-# In slips the hookload lies within this of its plateau: a share of it, or a stand of heavy pipe [N].
+# Where fewer moments than this show the plateau, readings may lie off it by this share.
+_PLENTY = 60
 _PLATEAU_SHARE = 0.05
-_STAND_WEIGHT = 22e3
 # ... but never more than this share of the string's own weight, which it must stay away from.
 _STRING_SHARE = 0.3
-# Two plateaus are told apart when this far from each other at least [N].
-_LEAST_SPLIT = 3e3
+# Two plateaus are told apart when this far from each other at least [N], each with this share of readings.
+_LEAST_SPLIT = 1e3
+_LEAST_SHARE = 0.05
+_FIT_ROUNDS = 60
+# So many readings show the peaks as well as more would.
+_ENOUGH = 2000
 _Z90 = 1.645
 
 
 @dataclass(frozen=True)
 class Plateau:
-    """Hookload in slips: `level` [N], half-width that holds nearly all of it [N], readings behind it."""
+    """Hookload in slips: `level` [N], how far readings lie `below` and `above` it [N], readings behind it."""
 
     level: float
-    width: float
+    below: float
+    above: float
     samples: int
 
 
@@ -52,7 +57,7 @@ class Slips:
     source: str
 
 
-def find_slips(log: TimeLog, signals: Signals, string_weight: Floats) -> Slips:
+def find_slips(log: TimeLog, signals: Signals, string_weight: Floats, stand_weight: float) -> Slips:
     """Decide for each row whether the string hung in slips.
 
     A `slips` channel is believed where it agrees with physics. Otherwise the plateau is learned from
@@ -67,6 +72,8 @@ def find_slips(log: TimeLog, signals: Signals, string_weight: Floats) -> Slips:
         Filled channels.
     string_weight : ndarray, shape (n,)
         Modelled hanging weight of the string, without friction [N].
+    stand_weight : float
+        Weight in air of a stand of the top pipe, which may hang from the block in slips [N].
 
     Returns
     -------
@@ -75,14 +82,15 @@ def find_slips(log: TimeLog, signals: Signals, string_weight: Floats) -> Slips:
     """
     flagged = _believed_flags(log, signals)
     if flagged is not None:
-        return Slips(flagged, _plateau_of(signals.hookload[_inner(flagged)], signals), "slips channel")
-    plateau = learn_plateau(signals, string_weight)
+        held = signals.hookload[_inner(flagged)]
+        return Slips(flagged, _plateau_of(held, signals, stand_weight), "slips channel")
+    plateau = learn_plateau(signals, string_weight, stand_weight)
     if plateau is None:
         return Slips(np.zeros(len(signals.time), dtype=bool), None, "no in-slips reading")
     return Slips(_near_plateau(signals, plateau, string_weight), plateau, "in-slips plateau")
 
 
-def learn_plateau(signals: Signals, string_weight: Floats) -> Plateau | None:
+def learn_plateau(signals: Signals, string_weight: Floats, stand_weight: float) -> Plateau | None:
     """Learn the hookload in slips from moments at which the block moved and the bit did not.
 
     Parameters
@@ -91,6 +99,8 @@ def learn_plateau(signals: Signals, string_weight: Floats) -> Plateau | None:
         Filled channels; without a block channel the low one of two hookload levels at rest is taken.
     string_weight : ndarray, shape (n,)
         Modelled hanging weight of the string [N].
+    stand_weight : float
+        Weight in air of a stand of the top pipe [N].
 
     Returns
     -------
@@ -99,16 +109,15 @@ def learn_plateau(signals: Signals, string_weight: Floats) -> Plateau | None:
     """
     still = _bit_still(signals)
     if signals.block is None:
-        return _low_level(signals, still, string_weight)
-    moved = _excursion(signals.block, signals) > _EVIDENCE_TRAVEL + noise.NOISE_FACTOR * signals.block_noise
-    evidence = moved & still & ~signals.missing
+        return _low_level(signals, still, string_weight, stand_weight)
+    evidence = _block_alone(signals) & signals.weighed
     if evidence.sum() < noise.LEAST_SAMPLES:
-        return _low_level(signals, still, string_weight)
+        return _low_level(signals, still, string_weight, stand_weight)
     held = signals.hookload[evidence]
     # The string can be stuck while the block stretches it: such readings stand high, slips stand low.
     weight = float(np.median(string_weight[evidence]))
     low = held[held < np.quantile(held, 0.1) + 0.5 * weight]
-    return _plateau_of(low, signals)
+    return _plateau_of(low, signals, stand_weight)
 
 
 def block_weight(slips: Slips, signals: Signals, hookload: Floats, rig: RigSettings) -> Estimate | None:
@@ -145,13 +154,14 @@ def block_weight(slips: Slips, signals: Signals, hookload: Floats, rig: RigSetti
         return None
     levels = _run_levels(hookload, inner)
     held = hookload[inner]
-    cut = _split(held, signals.hookload_noise)
-    chosen = held if cut is None else held[held < cut]
-    value = float(np.median(chosen))
-    scatter = float(np.median(np.abs(chosen - value))) * 1.4826
-    drift = float(np.median(np.abs(levels - np.median(levels)))) * 1.4826 if cut is None else scatter
-    half = max(_Z90 * max(scatter, drift) / max(len(levels), 1) ** 0.5, 2 * signals.smooth_noise(60.0), 5e2)
-    words = "in-slips plateau" if cut is None else "lower of two in-slips plateaus"
+    lower = _split(held, signals.hookload_noise)
+    if lower is None:
+        value = float(np.median(held))
+        scatter = _robust_sigma(np.concatenate((held - value, levels - np.median(levels))))
+    else:
+        value, scatter = lower
+    half = max(_Z90 * scatter / max(len(levels), 1) ** 0.5, 2 * signals.smooth_noise(60.0), 5e2)
+    words = "in-slips plateau" if lower is None else "lower of two in-slips plateaus"
     return Estimate(value, value - half, value + half, words, samples=int(inner.sum()))
 
 
@@ -173,25 +183,38 @@ def _excursion(values: Floats, signals: Signals) -> Floats:
     return np.abs(noise.rate(values, signals.time, window)) * window
 
 
+def _block_alone(signals: Signals) -> Bools:
+    """Mark rows at which the block moves and the bit does not."""
+    moved = _excursion(signals.block, signals) > _EVIDENCE_TRAVEL + noise.NOISE_FACTOR * signals.block_noise
+    return moved & _bit_still(signals)
+
+
 def _bit_still(signals: Signals) -> Bools:
     limit = 0.1 * _EVIDENCE_TRAVEL + noise.NOISE_FACTOR * signals.bit_noise
     return _excursion(signals.path, signals) < limit
 
 
-def _plateau_of(held: Floats, signals: Signals) -> Plateau | None:
+def _plateau_of(held: Floats, signals: Signals, stand_weight: float) -> Plateau | None:
+    """Plateau and its reach: what was seen in slips, and a stand on the block; more where little was seen."""
     if held.size < noise.LEAST_SAMPLES:
         return None
     level = float(np.median(held))
-    scatter = float(np.median(np.abs(held - level))) * 1.4826
-    width = max(
-        _PLATEAU_SHARE * abs(level),
-        _STAND_WEIGHT,
-        noise.NOISE_FACTOR * max(signals.hookload_noise, scatter / 2),
+    low, high = np.quantile(held, (0.02, 0.98))
+    reach = _PLATEAU_SHARE * abs(level) if held.size < _PLENTY else 0.0
+    margin = noise.NOISE_FACTOR * signals.hookload_noise / noise.LEAST_SAMPLES**0.5
+    return Plateau(
+        level=level,
+        below=max(level - float(low), reach, stand_weight) + margin,
+        above=max(float(high) - level, reach, stand_weight) + margin,
+        samples=int(held.size),
     )
-    return Plateau(level, width, int(held.size))
 
 
-def _low_level(signals: Signals, still: Bools, string_weight: Floats) -> Plateau | None:
+def _robust_sigma(deviation: Floats) -> float:
+    return 1.4826 * float(np.median(np.abs(deviation)))
+
+
+def _low_level(signals: Signals, still: Bools, string_weight: Floats, stand_weight: float) -> Plateau | None:
     """Find the lower of two levels at rest, if what lies between is about the string's weight."""
     rest = signals.hookload[still & ~signals.missing]
     if rest.size < 4 * noise.LEAST_SAMPLES:
@@ -210,15 +233,18 @@ def _low_level(signals: Signals, still: Bools, string_weight: Floats) -> Plateau
     apart = float(np.median(high) - np.median(low))
     if not 0.4 * weight < apart < 2.0 * weight:
         return None
-    return _plateau_of(low, signals)
+    return _plateau_of(low, signals, stand_weight)
 
 
 def _near_plateau(signals: Signals, plateau: Plateau, string_weight: Floats) -> Bools:
     """Find rows near the plateau, in stretches through which the bit stayed where it was."""
     room = np.maximum(_STRING_SHARE * string_weight, 3 * signals.hookload_noise)
-    width = np.minimum(plateau.width, room)
-    # Below the plateau nothing can pull but the hand that pushes: allow it twice the width.
-    near = (signals.hookload < plateau.level + width) & (signals.hookload > plateau.level - 2 * width)
+    smooth = noise.running_median(signals.hookload, noise.LEAST_SAMPLES)
+    near = smooth - plateau.level < np.minimum(plateau.above, room)
+    near &= plateau.level - smooth < plateau.below
+    if signals.block is not None:
+        # Where no hookload was read, a block that moves without the bit is as good.
+        near = np.where(signals.weighed, near, _block_alone(signals))
     near &= ~signals.missing
     runs = _bridge(noise.runs_of(near), signals)
     wander = _SLIP_WANDER + noise.NOISE_FACTOR * signals.bit_noise
@@ -271,21 +297,32 @@ def _run_levels(hookload: Floats, rows: Bools) -> Floats:
     return np.array([np.median(hookload[a:b]) for a, b in zip(runs.start, runs.stop, strict=True)])
 
 
-def _split(held: Floats, level: float) -> float | None:
-    """Find the hookload between two plateaus, None where there is one."""
+def _split(held: Floats, level: float) -> tuple[float, float] | None:
+    """Find the lower of two plateaus and its scatter, None where there is one.
+
+    Two normal peaks of one width, no narrower than the noise, are fitted by expectation and maximisation;
+    they count as two when that fits the readings clearly better than one peak does.
+    """
     order = np.sort(held)
     trimmed = order[len(order) // 50 : len(order) - len(order) // 50]
+    trimmed = trimmed[:: max(1, trimmed.size // _ENOUGH)]
     if trimmed.size < 20:
         return None
-    total = np.cumsum(trimmed)
-    count = np.arange(1, trimmed.size)
-    left = total[:-1] / count
-    right = (total[-1] - total[:-1]) / (trimmed.size - count)
-    between = count * (trimmed.size - count) * (right - left) ** 2
-    k = int(np.argmax(between))
-    apart = right[k] - left[k]
-    spread = max(float(np.std(trimmed[: k + 1])), float(np.std(trimmed[k + 1 :])))
-    share = min(k + 1, trimmed.size - k - 1) / trimmed.size
-    if apart < max(_LEAST_SPLIT, noise.NOISE_FACTOR * level) or apart < 4 * spread or share < 0.05:
-        return None
-    return float(0.5 * (left[k] + right[k]))
+    width = float(np.std(trimmed))
+    least = max(level, 1.0)
+    low, high = (float(q) for q in np.quantile(trimmed, (0.15, 0.85)))
+    share, spread = 0.5, max(0.5 * width, least)
+    for _ in range(_FIT_ROUNDS):
+        near_low = share * np.exp(-0.5 * ((trimmed - low) / spread) ** 2)
+        near_high = (1.0 - share) * np.exp(-0.5 * ((trimmed - high) / spread) ** 2)
+        belongs = near_low / np.maximum(near_low + near_high, 1e-300)
+        share = float(np.clip(np.mean(belongs), 0.01, 0.99))
+        low = float(np.average(trimmed, weights=belongs + 1e-12))
+        high = float(np.average(trimmed, weights=1.0 - belongs + 1e-12))
+        apart = belongs * (trimmed - low) ** 2 + (1.0 - belongs) * (trimmed - high) ** 2
+        spread = max(float(np.mean(apart)) ** 0.5, least)
+    gain = float(np.sum(np.log(np.maximum(near_low + near_high, 1e-300) / spread)))
+    single = max(width, least)
+    gain -= float(np.sum(-0.5 * ((trimmed - trimmed.mean()) / single) ** 2 - np.log(single)))
+    clear = high - low > max(_LEAST_SPLIT, 1.5 * spread) and gain > 0.02 * trimmed.size + 5.0
+    return (low, spread) if clear and min(share, 1.0 - share) > _LEAST_SHARE else None

@@ -118,7 +118,7 @@ def _pumping(log: TimeLog, signals: Signals) -> tuple[Bools, Bools, float, tuple
             runs & ~unknown,
             unknown,
             usual,
-            (f"{gap} and no standpipe pressure: pumping there shows only by a bit on bottom.",),
+            (f"{gap} and no standpipe pressure: pumping there shows only by a hole that deepens.",),
         )
     level = usual_level(pressure, signals.noise.get("standpipe_pressure", 0.0))
     pressed = noise.running_median(noise.fill(pressure), noise.LEAST_SAMPLES) > _PRESSURE_SHARE * level

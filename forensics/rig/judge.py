@@ -31,6 +31,8 @@ _CLEARANCES = (1.0, 0.4, 0.15)
 # Second look: a bit judged free gives readings from this far off bottom on [m].
 _FREE_GAP = 0.5
 _COMMON_RPM = 60.0
+# Travel after a reversal before a weight is steady, as a share of `near`; its drift shows the rest.
+_SETTLE_SHARE = 0.5
 
 
 @dataclass(frozen=True)
@@ -125,7 +127,7 @@ def _steady(facts: Facts, clear: Bools) -> Steady:
         clear=clear & ~moves.slips,
         slips=moves.slips,
     )
-    return find_steady(motion, facts.signals, facts.below, facts.depths.near)
+    return find_steady(motion, facts.signals, facts.below, _SETTLE_SHARE * facts.depths.near)
 
 
 def _references(

@@ -9,12 +9,14 @@ import numpy as np
 from forensics.case import Case
 from forensics.estimate import Estimate
 from forensics.logs.table import TimeLog
+from forensics.rig import noise
 from forensics.rig.activity import classify, on_bottom_from, refine_activity
 from forensics.rig.block import Slips, block_weight, fill_block, find_slips
 from forensics.rig.depth import find_depths
 from forensics.rig.drives import find_drives
 from forensics.rig.judge import Facts, Judged, Moves, judge_bottom
-from forensics.rig.noise import Floats
+from forensics.rig.noise import Bools, Floats
+from forensics.rig.pumps import pump_shift
 from forensics.rig.sheaves import hook_factor
 from forensics.rig.signals import Signals, block_speed, direction_of, read_signals
 from forensics.rig.tare import list_tares, modelled_reference, stand_spans, weight_on_bit
@@ -25,6 +27,8 @@ __all__ = ["refine_activity", "understand_rig"]
 
 # Spacing of the depths at which the string is weighed [m].
 _WEIGH_STEP = 5.0
+# Length of the longest common stand [m].
+_STAND = 30.0
 
 
 def understand_rig(log: TimeLog, well: Well, case: Case) -> RigView:
@@ -46,7 +50,7 @@ def understand_rig(log: TimeLog, well: Well, case: Case) -> RigView:
     """
     signals = read_signals(log)
     below = weigh(well, signals.bit)
-    slips = find_slips(log, signals, below)
+    slips = find_slips(log, signals, below, _STAND * well.string.components[-1].weight)
     facts = Facts(
         log=log,
         well=well,
@@ -58,7 +62,13 @@ def understand_rig(log: TimeLog, well: Well, case: Case) -> RigView:
     )
     weight = block_weight(slips, signals, facts.moves.hookload, case.rig)
     judged = judge_bottom(facts, weight)
-    return _view(facts, judged, weight or _from_readings(judged, facts), slips)
+    shift = pump_shift(facts, judged)
+    if shift is not None:
+        level = facts.moves.hookload - shift.value * facts.drives.pumping
+        facts = replace(facts, moves=replace(facts.moves, hookload=level))
+        judged = judge_bottom(facts, weight)
+    view = _view(facts, judged, weight or _from_readings(judged, facts), slips)
+    return replace(view, pump_shift=shift)
 
 
 def weigh(well: Well, bit_depth: Floats) -> Floats:
@@ -119,8 +129,8 @@ def _view(facts: Facts, judged: Judged, weight: Estimate, slips: Slips) -> RigVi
     rotating, slack, _ = judged.references
     if not np.isfinite(rotating.weight).any():
         rotating = modelled_reference(rotating, judged.base, weight)
-    # Nobody drills without pumps: where nothing shows them, a bit on bottom does.
-    pumping = drives.pumping | (drives.pumping_unknown & on_bottom)
+    # Nobody drills without pumps: where nothing shows them, a hole that deepens does.
+    pumping = drives.pumping | _drilled(drives.pumping_unknown & on_bottom, facts.depths.advancing)
     sliding = on_bottom & ~drives.turning & ~slips.rows
     spans = stand_spans(slips.rows, log.time)
     view = RigView(
@@ -143,8 +153,16 @@ def _view(facts: Facts, judged: Judged, weight: Estimate, slips: Slips) -> RigVi
         bottom_vote=judged.vote,
         steady=judged.steady,
     )
-    unsure = (drives.turning_unknown, drives.pumping_unknown)
+    unsure = (drives.turning_unknown, drives.pumping_unknown & ~pumping)
     return replace(view, activity=classify(view, facts.signals.missing & ~slips.rows, unsure))
+
+
+def _drilled(rows: Bools, advancing: Bools) -> Bools:
+    """Keep the stretches in which the hole deepens."""
+    runs = noise.runs_of(rows)
+    gained = np.concatenate(([0], np.cumsum(advancing)))
+    kept = gained[runs.stop] > gained[runs.start]
+    return noise.rows_of(noise.Runs(runs.start[kept], runs.stop[kept]), len(rows))
 
 
 def _can_not_tell(facts: Facts, judged: Judged, weight: Estimate, slips: Slips) -> tuple[str, ...]:

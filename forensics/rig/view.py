@@ -66,7 +66,7 @@ class RigView:
     block_weight : Estimate
         Everything that hangs from the sensor but is not the string [N].
     hookload : ndarray
-        String tension at the hook: cleaned and corrected for sheaves, block weight still in [N].
+        String tension at the hook: cleaned, corrected for sheaves and pumps, block weight still in [N].
     slips, turning, pumping, on_bottom : ndarray of bool
         In slips; above 5 rpm; pumps on; bit on bottom.
     direction : ndarray of int8
@@ -91,6 +91,8 @@ class RigView:
         What each row alone says about the bit: +1 on bottom, -1 off, 0 nothing (the state was held).
     steady : Steady or None
         The steady moments off bottom that the references rest on.
+    pump_shift : Estimate or None
+        What the pumps added to the reading, already taken out of `hookload` [N]; None where it didn't show.
     """
 
     block_weight: Estimate
@@ -111,3 +113,4 @@ class RigView:
     can_not_tell: tuple[str, ...] = ()
     bottom_vote: NDArray[np.int8] | None = None
     steady: Steady | None = None
+    pump_shift: Estimate | None = None
