@@ -45,6 +45,7 @@ class Header:
     start_is_first_row: bool = False
     names: list[str] = field(default_factory=list)
     units: list[str] = field(default_factory=list)
+    about: dict[str, str] = field(default_factory=dict)
     hints: str = ""
     notes: list[str] = field(default_factory=list)
 
@@ -87,7 +88,11 @@ def read(path: Path, head: bytes, keep: Keep) -> RawLog:
     header = _read_header(above)
     if not header.names:
         raise LogError("the LAS header names no curves; expected a ~Curve section", file=path)
-    table, names, units, dropped, notes = read_data(body, header, keep, path)
+
+    def wanted(name: str) -> bool:
+        return keep(name) or keep(header.about.get(name, ""))
+
+    table, names, units, dropped, notes = read_data(body, header, wanted, path)
     return RawLog(
         path=path,
         format=f"LAS {header.version}",
@@ -101,6 +106,7 @@ def read(path: Path, head: bytes, keep: Keep) -> RawLog:
         date_hint=header.hints,
         notes=(*header.notes, *notes),
         dropped=dropped,
+        about=header.about,
     )
 
 
@@ -131,8 +137,9 @@ def _read_header(above: str) -> Header:
     parsed = _through_lasio(above)
     items = _by_grammar(above)
     header = Header()
-    values = {name: value for section, name, _, value in items if section in "VWPO"}
-    curves = [(name, unit) for section, name, unit, _ in items if section == "C"]
+    values = {name: value for section, name, _, value, _ in items if section in "VWPO"}
+    curves = [(name, unit) for section, name, unit, _, _ in items if section == "C"]
+    header.about = {name: about for section, name, _, _, about in items if section == "C"}
     if parsed is not None and len(parsed.curves) >= len(curves):
         curves = [(str(c.original_mnemonic), str(c.unit or "")) for c in parsed.curves]
     else:
@@ -142,7 +149,7 @@ def _read_header(above: str) -> Header:
     header.wrap = values.get("WRAP", "NO").strip().upper().startswith("Y")
     header.delimiter = {"COMMA": ",", "TAB": "\t"}.get(values.get("DLM", "").strip().upper(), "")
     header.nulls = tuple(_numbers(values.get("NULL", "")))
-    header.hints = " ".join(f"{unit} {name}" for _, name, unit, _ in items) + " ".join(
+    header.hints = " ".join(f"{unit} {name}" for _, name, unit, _, _ in items) + " ".join(
         re.findall(r"\{[^}]*\}", above)
     )
     _find_start(header, values)
@@ -172,9 +179,12 @@ def _through_lasio(above: str) -> lasio.LASFile | None:
         return None
 
 
-def _by_grammar(above: str) -> list[tuple[str, str, str, str]]:
-    """Split header lines at the first dot, the first blank after it and the last colon."""
-    items: list[tuple[str, str, str, str]] = []
+def _by_grammar(above: str) -> list[tuple[str, str, str, str, str]]:
+    """Split header lines at the first dot, the first blank after it and the last colon.
+
+    An item is its section, name, unit, value and description.
+    """
+    items: list[tuple[str, str, str, str, str]] = []
     section = ""
     for line in above.splitlines():
         bare = line.strip()
@@ -190,7 +200,8 @@ def _by_grammar(above: str) -> list[tuple[str, str, str, str]]:
         value = value.strip() if colon else rest.strip()
         if not value and section == "V":
             value = about.strip()
-        items.append((section, name.strip(), unit.rstrip(":"), value))
+        about = about.strip() if colon else ""
+        items.append((section, name.strip(), unit.rstrip(":"), value, about))
     return items
 
 

@@ -175,6 +175,10 @@ def _candidate(raw: RawLog, place: int, choices: Choices) -> Candidate | None:
     stem, glued = split_name(name)
     unit = raw.units[place] if not units.is_blank(raw.units[place]) else glued
     channel, why = channels.match(stem, unit)
+    about = raw.about.get(name, "")
+    if channel is None and about:
+        channel, _ = channels.match(about, unit)
+        why = f"{name!r} is described as {about!r}"
     if channel in {None, "time"} or channel is None:
         return None
     if units.is_blank(unit):

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field
 from pathlib import Path
 from typing import TYPE_CHECKING
@@ -44,6 +44,8 @@ class RawLog:
         True where a comma before three digits sets thousands apart.
     dropped : int
         Rows the reader could not split into columns.
+    about : mapping of str to str
+        What the file says of a column beside its name.
     """
 
     path: Path
@@ -59,3 +61,4 @@ class RawLog:
     notes: tuple[str, ...] = field(default=())
     grouped: bool = False
     dropped: int = 0
+    about: Mapping[str, str] = field(default_factory=dict)
