@@ -68,7 +68,7 @@ class UnitError(InputError):
 
 
 def nearest(word: str, known: Iterable[str]) -> str:
-    """A clause naming the known word nearest to `word`, or all of them where none is near."""
+    """Name, as a clause, the known word nearest to `word`, or all of them where none is near."""
     names = list(known)
     close = difflib.get_close_matches(word, names, n=1, cutoff=0.6)
     if close:
