@@ -12,7 +12,6 @@ from forensics.episodes.catalogue import Consequence, Episode, Kind, State
 from forensics.episodes.consequence import consequence_of
 from forensics.episodes.material import Material
 from forensics.episodes.spans import Span, SpanRule, find_spans
-from forensics.estimate import Estimate
 
 Floats = NDArray[np.float64]
 Bools = NDArray[np.bool_]
@@ -102,7 +101,7 @@ def _episode(material: Material, found: Found, lockups: list[Span]) -> Episode:
         lost_to_buckling=lost.to_buckling,
         probability=_chance(material, found),
         consequence=Consequence.NONE,
-        peak_residual=_residual(material, kind, peak),
+        peak_residual=measure.peak_residual(material, kind, peak),
     )
     consequence = consequence_of(material, episode, lockups)
     return replace(episode, consequence=consequence, note=_note(material, episode, consequence))
@@ -145,17 +144,6 @@ def _peak_depth(material: Material, kind: Kind, peak: int) -> float:
     if kind in (Kind.DRAG, Kind.TORQUE):
         return float(material.bit[peak])
     return float(material.loads.peak_md[peak])
-
-
-def _residual(material: Material, kind: Kind, peak: int) -> Estimate | None:
-    """Residual at the peak of a drag or torque episode [N or N.m], with the noise as its interval."""
-    if kind not in (Kind.DRAG, Kind.TORQUE):
-        return None
-    channel = "hookload" if kind is Kind.DRAG else "torque"
-    values = material.loads.drag_residual if kind is Kind.DRAG else material.loads.torque_residual
-    half = measure.Z90 * material.noise(channel)
-    value = float(values[peak])
-    return Estimate(value, value - half, value + half, "measured less modelled")
 
 
 def _chance(material: Material, found: Found) -> float:

@@ -21,6 +21,12 @@ SINGLY = 10
 GROUPS = (2, 8)
 FEWEST = 2
 
+#: Weight of how big an episode was, and of what it was: unlike kinds are not to be mixed for like sizes.
+SIZE, KIND = 0.7, 4.0
+
+#: Fewer groups are preferred where more stand apart no better than by this.
+CLOSE = 0.05
+
 RESAMPLES = 24
 SEED = 20240229
 
@@ -202,7 +208,7 @@ def _features(material: Material, episodes: list[Episode]) -> Features:
     kinds = [rule_label(e) for e in episodes]
     labels = sorted(set(kinds))
     flags = np.array([[kind == label for label in labels] for kind in kinds], dtype=float)
-    return Features(names + tuple(labels), np.hstack([raw, flags]), np.hstack([scaled, 2.0 * flags]))
+    return Features(names + tuple(labels), np.hstack([raw, flags]), np.hstack([SIZE * scaled, KIND * flags]))
 
 
 def _cluster(points: Floats) -> tuple[Ints, dict[int, float]]:
@@ -215,7 +221,7 @@ def _cluster(points: Floats) -> tuple[Ints, dict[int, float]]:
         return np.zeros(len(points), dtype=np.int64), {0: 1.0}
     tried = {k: _merge(points, k) for k in range(GROUPS[0], most + 1)}
     scores = {k: silhouette_score(points, labels) for k, labels in tried.items()}
-    best = max(scores, key=lambda k: (round(scores[k], 3), -k))
+    best = min(k for k in scores if scores[k] >= max(scores.values()) - CLOSE)
     labels = tried[best]
     rng = np.random.default_rng(SEED)
     agreement: dict[int, list[float]] = {k: [] for k in range(best)}

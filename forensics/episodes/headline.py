@@ -50,9 +50,8 @@ def headline(material: Material, episodes: tuple[Episode, ...], system: str = "m
         counted in the details and kept out of the sentence.
     """
     main = sorted((e for e in episodes if not is_routine(e)), key=gravity, reverse=True)
-    loaded = [e for e in main if e.kind in (Kind.BUCKLING, Kind.LOCKUP)]
-    if loaded:
-        sentence = _loaded(material, loaded[0], system)
+    if main and main[0].kind in (Kind.BUCKLING, Kind.LOCKUP):
+        sentence = _loaded(material, main[0], system)
     elif main:
         sentence = _dragging(material, main, system)
     else:
@@ -71,11 +70,15 @@ def headline(material: Material, episodes: tuple[Episode, ...], system: str = "m
 def gravity(episode: Episode) -> tuple[float, ...]:
     """Order of episodes by how much they matter, gravest last."""
     lost = episode.lost_weight.value
+    beyond = abs(episode.peak_residual.value) if episode.peak_residual is not None else 0.0
     return (
         float(GRAVITY[episode.consequence]),
+        float(episode.kind in (Kind.BUCKLING, Kind.LOCKUP)),
         float(episode.state is State.HELICAL),
         float(episode.kind is Kind.BUCKLING),
         lost if np.isfinite(lost) else 0.0,
+        float(episode.kind is Kind.DRAG),
+        beyond,
         float(np.nan_to_num(episode.probability)),
         episode.duration,
     )
@@ -141,7 +144,7 @@ def _chance_of(episode: Episode) -> str:
 
 def _dragging(material: Material, main: list[Episode], system: str) -> str:
     """Tell of drag and torque where nothing buckled."""
-    worst = max(main, key=lambda e: abs(e.peak_residual.value) if e.peak_residual else 0.0)
+    worst = main[0]
     counts = Counter(e.kind for e in main)
     told = " and ".join(
         wording.times(counts[k], f"{k.value} episode") for k in (Kind.DRAG, Kind.TORQUE) if counts[k]
@@ -183,9 +186,8 @@ def _confidence(material: Material, main: list[Episode]) -> str:
     if not np.isfinite(chance):
         return f"low: the spread over friction draws was not reckoned; {friction}"
     grade = "high" if chance >= SURE and not assumed else "moderate" if chance >= LIKELY else "low"
-    return (
-        f"{grade}: its rule holds in {100.0 * chance:.0f} % of the draws of friction and weight; {friction}"
-    )
+    share = "every draw" if chance >= CERTAIN else f"{100.0 * chance:.0f} % of the draws"
+    return f"{grade}: its rule holds in {share} of friction and weight; {friction}"
 
 
 def _details(

@@ -7,6 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from forensics.episodes.catalogue import Kind
 from forensics.episodes.material import Material
 from forensics.episodes.rules import LockupSigns, locked_up
 from forensics.episodes.spans import Span
@@ -191,14 +192,69 @@ def drag_chance(material: Material, span: Span, least: float) -> float:
     if len(draws) == 0 or len(rows) == 0:
         return float("nan")
     sign = material.friction_sign[rows]
-    base = material.calibration.block_weight.value
-    moved = material.loads.model_hookload[rows] - base - material.rotating_weight[rows]
-    extra = material.friction_multiple(rows, draws[:, 0], draws[:, 1]) - 1.0
-    shift = extra * np.where(sign == 0, 0.0, moved) + (draws[:, 2] - base)[:, None]
-    residual = material.loads.drag_residual[rows] - shift
+    residual = drag_draws(material, rows)
     drag = np.where(sign == 0, np.abs(residual), residual * sign)
     time = (drag > material.drag_threshold[rows]).sum(axis=1) * material.log.interval
     return _chance(time >= least * (1.0 - 1e-9), np.full(len(draws), 1.0 / len(draws)))
+
+
+def drag_draws(material: Material, rows: NDArray[np.int64]) -> Floats:
+    """Hookload residuals at the calibration's draws, shape (k, m) [N].
+
+    Parameters
+    ----------
+    material : Material
+    rows : ndarray of int, shape (m,)
+
+    Returns
+    -------
+    ndarray, shape (k, m)
+    """
+    draws = material.calibration.draws
+    base = material.calibration.block_weight.value
+    moved = material.loads.model_hookload[rows] - base - material.rotating_weight[rows]
+    extra = material.friction_multiple(rows, draws[:, 0], draws[:, 1]) - 1.0
+    shift = extra * np.where(material.friction_sign[rows] == 0, 0.0, moved) + (draws[:, 2] - base)[:, None]
+    return material.loads.drag_residual[rows] - shift
+
+
+def peak_residual(material: Material, kind: Kind, peak: int) -> Estimate | None:
+    """Residual at the peak of a drag or torque episode, with noise and calibration in its interval.
+
+    Parameters
+    ----------
+    material : Material
+    kind : Kind
+    peak : int
+        Row of the peak.
+
+    Returns
+    -------
+    Estimate or None
+        [N or N.m]; None for other kinds.
+    """
+    if kind is Kind.DRAG:
+        value = float(material.loads.drag_residual[peak])
+        spread = (
+            float(np.std(drag_draws(material, np.array([peak])))) if len(material.calibration.draws) else 0.0
+        )
+        half = np.hypot(material.noise("hookload"), spread if np.isfinite(spread) else 0.0)
+    elif kind is Kind.TORQUE:
+        value = float(material.loads.torque_residual[peak])
+        half = np.hypot(
+            material.noise("torque"), rotational_spread(material) * abs(material.model_torque[peak])
+        )
+    else:
+        return None
+    return Estimate(value, value - Z90 * float(half), value + Z90 * float(half), "measured less modelled")
+
+
+def rotational_spread(material: Material) -> float:
+    """One sigma of the rotational factor over its value; zero where there is none."""
+    factor = material.calibration.rotational
+    if factor is None or factor.value <= 0.0:
+        return 0.0
+    return (factor.high - factor.low) / (2.0 * Z90 * factor.value)
 
 
 def torque_chance(material: Material, span: Span, least: float) -> float:
@@ -208,7 +264,7 @@ def torque_chance(material: Material, span: Span, least: float) -> float:
     rows = rows[np.isfinite(material.loads.torque_residual[rows])]
     if factor is None or factor.value <= 0.0 or len(rows) == 0:
         return float("nan")
-    sigma = (factor.high - factor.low) / (2.0 * Z90 * factor.value)
+    sigma = rotational_spread(material)
     quantiles = np.array([-1.645, -1.036, -0.674, -0.385, -0.126, 0.126, 0.385, 0.674, 1.036, 1.645])
     shift = np.outer(sigma * quantiles, material.model_torque[rows])
     residual = material.loads.torque_residual[rows] - shift

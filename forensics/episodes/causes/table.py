@@ -43,6 +43,8 @@ def graded(value: float, none: float, full: float) -> float:
 
 
 def _both_ways(t: Tells) -> float:
+    if not (np.isfinite(t.up) and np.isfinite(t.down)):
+        return float("nan")
     return graded(min(t.up, t.down), 0.2, 0.8) if max(t.up, t.down) > 0.5 else float("nan")
 
 
@@ -156,8 +158,8 @@ SIGNS: tuple[Sign, ...] = (
     ),
     Sign(
         "drag with the torque",
-        lambda t: graded(max(t.up, t.down) if np.isfinite(t.up) and np.isfinite(t.down) else t.up, 0.2, 0.8),
-        lambda t: f"drag beyond the model at {t.up:.1f} of the threshold going up",
+        lambda t: graded(float(np.fmax(t.up, t.down)), 0.2, 0.8),
+        lambda t: f"drag near it, up or down, at {np.fmax(t.up, t.down):.1f} of its threshold",
         {C.FRICTION: 0.7, C.CLEANING: 0.7, C.TORTUOSITY: 0.7, C.SENSOR: -1.0},
         {C.FRICTION: -0.6, C.CLEANING: -0.4, C.TORTUOSITY: -0.4, C.SENSOR: 0.4},
         (Kind.TORQUE,),
@@ -180,7 +182,7 @@ SIGNS: tuple[Sign, ...] = (
     Sign(
         "same depth on other passes",
         lambda t: graded(t.elsewhere, 0.3, 0.8),
-        lambda t: f"other passes of this depth show {t.elsewhere:.1f} of the threshold",
+        lambda t: f"the easiest other pass of this depth shows {t.elsewhere:.1f} of the threshold",
         {C.TORTUOSITY: 1.5, C.HANG_UP: 0.8, C.CLEANING: -0.5, C.STICKING: -1.0, C.PACK_OFF: -0.7},
         {
             C.TORTUOSITY: -1.5,

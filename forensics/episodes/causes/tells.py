@@ -14,6 +14,7 @@ from numpy.typing import NDArray
 from forensics.episodes.catalogue import Episode, Kind
 from forensics.episodes.causes.signals import Signals
 from forensics.episodes.material import Material
+from forensics.rig.view import Activity
 
 Floats = NDArray[np.float64]
 
@@ -25,6 +26,13 @@ NEAR = 900.0
 #: Passes of the same depth lie within this [m], and apart in time by at least this [s].
 SAME_DEPTH = 15.0
 NEW_PASS = 900.0
+
+#: Like drag is looked for this far in time [s]; it ends where this much bit travel [m] shows less than
+#: this share of the threshold, and comes up from under that one.
+STRETCH = 3.0 * 3600.0
+GAP = 6.0
+LIKE = 0.5
+SLACK = 0.33
 
 #: A band of hole where cuttings settle into beds that slide back [rad] (trade rule, from memory).
 BED = (np.radians(40.0), np.radians(65.0))
@@ -53,7 +61,7 @@ class Tells:
     still : float
         Time the string had stood still before [s].
     elsewhere : float
-        Median drag at the same depth on other passes, over the threshold.
+        Drag at the same depth on the easiest of the other passes, over the threshold.
     cleaned : float
         Drag on the next pass less this one's, over the threshold, where the hole was circulated between.
     growth : float
@@ -61,7 +69,7 @@ class Tells:
     onset : float
         Bit travel over which the drag came up [m].
     length : float
-        Bit travel of the episode [m].
+        Bit travel with like drag in the same direction, across connections [m].
     shoe, dogleg : float
         Distance of the bit from the shoe [m]; largest curvature near the bit [rad/m].
     ratio : float
@@ -125,8 +133,7 @@ def measure_tells(material: Material, signals: Signals, episode: Episode) -> Tel
         still=_still_before(material, episode),
         **_other_passes(material, episode),
         growth=_growth(material, episode),
-        onset=_onset(material, episode),
-        length=_span(material.bit[rows]),
+        **_stretch(material, episode),
         shoe=abs(place - float(material.well.hole.shoe)),
         dogleg=_dogleg(material, place),
         ratio=episode.peak_load_ratio.value,
@@ -165,9 +172,9 @@ def _still_before(material: Material, episode: Episode) -> float:
     before = material.rows_between(episode.start - 4.0 * 3600.0, episode.start)
     if material.log.get("block_position") is None or before.stop - before.start < FEWEST:
         return NAN
-    moving = (material.rig.direction[before] != 0) & ~material.rig.slips[before] | material.rig.turning[
-        before
-    ]
+    rig = material.rig
+    drilling = np.isin(rig.activity[before], (Activity.DRILL_SLIDE, Activity.DRILL_ROTATE))
+    moving = ((rig.direction[before] != 0) & ~rig.slips[before]) | rig.turning[before] | drilling
     time = material.time[before]
     moved = time[moving & (time < episode.start - 120.0)]
     rested = time[~moving]
@@ -197,7 +204,10 @@ def _other_passes(material: Material, episode: Episode) -> dict[str, float]:
         pumped = float(material.rig.pumping[between].sum() * material.log.interval)
         if pumped > 1800.0:
             cleaned = _median(values[later]) - _median(values[episode.first : episode.last + 1], 1)
-    return {"elsewhere": _median(values[other]), "cleaned": cleaned}
+    rows = np.flatnonzero(other)
+    passes = np.split(rows, np.flatnonzero(np.diff(time[rows]) > NEW_PASS) + 1) if len(rows) else []
+    easiest = [_median(values[one]) for one in passes]
+    return {"elsewhere": float(np.nanmin(easiest)) if np.isfinite(easiest).any() else NAN, "cleaned": cleaned}
 
 
 def _growth(material: Material, episode: Episode) -> float:
@@ -215,17 +225,34 @@ def _growth(material: Material, episode: Episode) -> float:
     return float(np.corrcoef(ranks, np.arange(len(at)))[0, 1])
 
 
-def _onset(material: Material, episode: Episode) -> float:
-    """Bit travel between the last row at under a third of the threshold and the first beyond it [m]."""
-    if episode.kind is not Kind.DRAG:
-        return NAN
-    before = slice(max(episode.first - 600, 0), episode.first + 1)
-    share = material.drag[before] / material.drag_threshold[before]
-    low = np.flatnonzero(share < 0.33)
-    if len(low) == 0:
-        return NAN
-    start = before.start + int(low[-1])
-    return abs(float(material.bit[episode.first] - material.bit[start]))
+def _stretch(material: Material, episode: Episode) -> dict[str, float]:
+    """Length of hole with like drag, across connections, and the bit travel over which it came up [m]."""
+    rows = slice(episode.first, episode.last + 1)
+    sign = material.friction_sign[episode.peak]
+    if episode.kind is not Kind.DRAG or sign == 0:
+        return {"length": _span(material.bit[rows])}
+    near = material.rows_between(episode.start - STRETCH, episode.end + STRETCH)
+    share = material.drag[near] / material.drag_threshold[near]
+    told = np.flatnonzero((material.friction_sign[near] == sign) & np.isfinite(share))
+    at = int(np.searchsorted(told, episode.peak - near.start))
+    bit = material.bit[near][told]
+    low = _lasting(share[told] < LIKE, bit)
+    before, after = low[low < at], low[low > at]
+    first = int(before[-1]) + 1 if len(before) else 0
+    last = int(after[0]) if len(after) else len(told)
+    length = _span(bit[first:last])
+    slack = np.flatnonzero(share[told[:first]] < SLACK)
+    beyond = first + np.flatnonzero(share[told[first:last]] > 1.0)
+    if len(slack) == 0 or len(beyond) == 0:
+        return {"length": length}
+    return {"length": length, "onset": abs(float(bit[beyond[0]] - bit[slack[-1]]))}
+
+
+def _lasting(flags: NDArray[np.bool_], bit: Floats) -> NDArray[np.int64]:
+    """Rows of flagged runs that last over some bit travel: each stand starts slack, and that is no gap."""
+    edges = np.flatnonzero(np.diff(np.concatenate([[0], flags.astype(np.int8), [0]]))).reshape(-1, 2)
+    kept = [np.arange(a, b) for a, b in edges.tolist() if _span(bit[a:b]) >= GAP]
+    return np.concatenate(kept) if kept else np.zeros(0, dtype=np.int64)
 
 
 def _dogleg(material: Material, place: float) -> float:
