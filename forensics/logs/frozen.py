@@ -17,6 +17,8 @@ Bools = NDArray[np.bool_]
 SHORTEST = 12
 # A channel that repeats its last value less often than this is lively.
 LIVELY = 0.3
+# A log whose hookload stands still more often than this has no noise to know a stopped sensor by.
+RESTLESS = 0.05
 
 
 def runs_of(values: Floats, shortest: int = SHORTEST) -> list[tuple[int, int]]:
@@ -63,8 +65,7 @@ def _while_carried(block: Floats | None, hook: Floats | None) -> Floats | None:
     """Block position while the hook plainly carries more than in slips, where the bit may stand for hours."""
     if block is None or hook is None or not np.isfinite(hook).any():
         return None
-    low, middle = np.nanpercentile(hook, [1, 50])
-    return np.where(hook > low + 0.4 * (middle - low), block, np.nan)
+    return np.where(hook > slips_level(hook), block, np.nan)
 
 
 def find_frozen(channel: str, values: Mapping[str, Floats], interval: float) -> Bools:
@@ -73,7 +74,7 @@ def find_frozen(channel: str, values: Mapping[str, Floats], interval: float) -> 
     Parameters
     ----------
     channel : str
-        One of hookload, bit_depth, block_position, torque, standpipe_pressure, wob; others never count.
+        One of `FREEZABLE`; others never count.
     values : mapping of str to ndarray, shape (n,)
         All channels [SI].
     interval : float
@@ -86,32 +87,50 @@ def find_frozen(channel: str, values: Mapping[str, Floats], interval: float) -> 
 
     Notes
     -----
-    Hookload: the bit moved by 0.3 m (3 m where the channel is coarse) in a minute or more of one value;
-    in slips the bit stands. Bit depth: the block, with the string on it, ran more
-    than three times its height. Block: the bit
-    moved by 3 m. Torque, pressure and WOB: five minutes of one value other than zero in a lively channel
-    while the hookload kept changing.
+    Hookload: the bit moved by 0.3 m (3 m where the channel is coarse) during one value; or, in a channel
+    whose noise never lets a value stand, twelve equal ones above the level of slips. Bit depth: the block,
+    with the string on it, ran more than three times its height. Block: the bit moved by 3 m. Torque,
+    pressure and WOB: five minutes of one value other than zero while the hookload kept changing.
     """
     data = values[channel]
     found = np.zeros(len(data), dtype=bool)
     minute = max(SHORTEST, int(np.ceil(60.0 / interval)) if interval > 0 else SHORTEST)
-    lively = is_lively(data)
     bit, block, hook = values.get("bit_depth"), values.get("block_position"), values.get("hookload")
+    lively = is_lively(data)
+    restless = channel == "hookload" and lively and _share_still(data) < RESTLESS
     carried = _while_carried(block, hook)
-    shortest = minute if channel in {"hookload", "bit_depth", "block_position"} else max(30, 5 * minute)
+    slow = max(30, 5 * minute)
+    shortest = (
+        SHORTEST if restless else {"hookload": minute, **dict.fromkeys(MOVERS, minute)}.get(channel, slow)
+    )
     for start, end in runs_of(data, shortest):
         if channel == "hookload":
-            stopped = _reach(bit, start, end) >= (0.3 if lively else 3.0)
+            moved = _reach(bit, start, end) >= (0.3 if lively else 3.0)
+            stopped = moved or (restless and data[start] > slips_level(data))
         elif channel == "bit_depth":
             stopped = _travel(carried, start, end) > 3.5 * max(_reach(block, 0, len(data)), 20.0)
         elif channel == "block_position":
             stopped = _reach(bit, start, end) >= 3.0
         else:
-            moved = hook is not None and len(np.unique(hook[start:end])) > 0.5 * (end - start)
-            stopped = lively and data[start] != 0.0 and moved
+            changing = hook is not None and len(np.unique(hook[start:end])) > 0.5 * (end - start)
+            stopped = lively and data[start] != 0.0 and changing
         if stopped:
             found[start:end] = True
     return found
 
 
+def slips_level(hook: Floats) -> float:
+    """Give a hookload [N] plainly above what the hook shows in slips."""
+    low, middle = np.nanpercentile(hook, [1, 50])
+    return float(low + 0.4 * (middle - low))
+
+
+def _share_still(hook: Floats) -> float:
+    """Share of the samples above the level of slips that stand in long constant stretches."""
+    above = hook > slips_level(hook)
+    still = sum(end - start for start, end in runs_of(hook) if above[start])
+    return still / max(1, int(above.sum()))
+
+
+MOVERS = ("bit_depth", "block_position")
 FREEZABLE = ("hookload", "bit_depth", "block_position", "torque", "standpipe_pressure", "wob")

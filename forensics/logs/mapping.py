@@ -85,7 +85,7 @@ def split_name(name: str) -> tuple[str, str | None]:
     found = _BRACKETED.match(name)
     if found and found.group(1) and (not found.group(2) or units.quantities_of(found.group(2))):
         return found.group(1), found.group(2) or None
-    if channels.match(name)[0] is not None or channels.normalise(name) in channels.LOOKALIKES:
+    if channels.is_listed(name):
         return name, None
     words = [word for word in re.split(r"[\s_,;:/]+", name) if word]
     for count in (1, 2, 3):
@@ -174,7 +174,7 @@ def _candidate(raw: RawLog, place: int, choices: Choices) -> Candidate | None:
             return Candidate(place, name, channel, unit, "named in the case file", chosen=True)
     stem, glued = split_name(name)
     unit = raw.units[place] if not units.is_blank(raw.units[place]) else glued
-    channel, why = channels.match(stem, unit)
+    channel, why = channels.match(stem, unit or "")
     about = raw.about.get(name, "")
     if channel is None and about:
         channel, _ = channels.match(about, unit)

@@ -38,12 +38,15 @@ class SpikeRule:
         Share of the channel's own range (1st to 99th percentile) it must exceed.
     floor : float
         Size below which nothing is a spike [SI].
+    bottomless : float
+        Share of the range below the 1st percentile beyond which a low value counts as well; 0 for never.
     """
 
     longest: int = 2
     noise: float = 8.0
     share: float = 0.04
     floor: float = 0.0
+    bottomless: float = 0.0
 
 
 def rule_for(channel: str, interval: float) -> SpikeRule:
@@ -62,7 +65,8 @@ def rule_for(channel: str, interval: float) -> SpikeRule:
         "standpipe_pressure": 5e5,
     }.get(channel, 0.0)
     if interval >= COARSE:
-        return SpikeRule(longest=1, noise=15.0, share=0.5, floor=floor)
+        low = 0.1 if channel == "hookload" else 0.0
+        return SpikeRule(longest=1, noise=15.0, share=0.5, floor=floor, bottomless=low)
     return SpikeRule(share=0.04 if channel == "hookload" else 0.1, floor=floor)
 
 
@@ -94,8 +98,12 @@ def find_spikes(values: Floats, rule: SpikeRule) -> Bools:
     away = x - median_of_five(x)
     # The range is that of some twenty thousand samples: enough, and it costs a tenth.
     low, high = np.percentile(x[:: max(1, len(x) // 20000)], [1, 99])
-    limit = np.maximum(rule.noise * _local_noise(away), max(rule.floor, rule.share * float(high - low)))
-    out = np.abs(away) > limit
+    noise, span = rule.noise * _local_noise(away), float(high - low)
+    out = np.abs(away) > np.maximum(noise, max(rule.floor, rule.share * span))
+    if rule.bottomless > 0.0:
+        # Less than the block weighs: no moment of the run can show that.
+        depth = max(rule.floor, rule.bottomless * span)
+        out |= (x < low - depth) & (-away > np.maximum(noise, depth))
     if not out.any():
         return found
     starts = np.flatnonzero(out & ~np.concatenate(([False], out[:-1])))
