@@ -141,6 +141,10 @@ SPOILED = {
         lambda c: swap(c, "survey.csv", "\n1200.00,30.000,45.00", "\n1200.00,thirty,45.00"),
         ["survey.csv", "line 42", "inclination", "thirty"],
     ),
+    "survey with a number out of bounds": (
+        lambda c: swap(c, "survey.csv", "\n1200.00,30.000,45.00", "\n1200.00,1e400,45.00"),
+        ["survey.csv", "line 42", "inclination", "1e400"],
+    ),
     "survey without unit": (
         lambda c: swap(c, "survey.csv", "md [m]", "md"),
         ["survey.csv", "md", "unit"],

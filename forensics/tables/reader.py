@@ -197,7 +197,8 @@ def _numbers(rows: Rows, f: Found, comma: bool) -> Floats:
                 raise _bad_cell(rows, row, f, f"is empty ({text!r}); a number is needed here")
             continue
         number = _plain_number(text, comma)
-        if not NUMBER.fullmatch(number):
+        # "1e400" reads as a number and is none: it overflows to infinity.
+        if not NUMBER.fullmatch(number) or not np.isfinite(float(number)):
             raise _bad_cell(rows, row, f, f"holds {text!r}; a number is needed here")
         values[row] = float(number)
     unit = f.unit or f.column.default_unit
