@@ -40,7 +40,7 @@ def converted(rows: pd.DataFrame, names: dict, channels: list[str]) -> pd.DataFr
     out = {}
     for channel in channels:
         name, _, scale, decimals = names[channel]
-        out[name] = (rows[channel] / scale).round(decimals)
+        out[name] = (rows[channel] / scale).round(decimals) + 0.0  # no minus nought
     return pd.DataFrame(out)
 
 

@@ -185,6 +185,7 @@ class Driller:
         rig = self.rig
         rig.tag = "slide"
         goal, end = rig.bottom + length, rig.time + patience
+        more = rig.settings["script"].get("drop_shift_kN", 0.0)
         k = 0
         while rig.bottom < goal and rig.time < end and rig.height > 1.5:
             act = plan[k % len(plan)]
@@ -192,9 +193,9 @@ class Driller:
             if "pick" in act:
                 self.move(-act["pick"], act.get("speed", 0.05))
             elif "feed" in act:
-                self.feed(act["feed"] * KN, act["seconds"])
+                self.feed((act["feed"] + more) * KN, act["seconds"])
             else:
-                self.stack(act["drop"] * KN, act.get("speed", 0.02), act.get("limit", 4.0))
+                self.stack((act["drop"] + more) * KN, act.get("speed", 0.02), act.get("limit", 4.0))
             self.hold(act.get("hold", 30.0))
         rig.tag = ""
 
