@@ -19,6 +19,12 @@ LEAST_SAMPLES = 3
 _MAD_TO_SIGMA = 1.4826
 # Standard deviation of x[i-1] - 2 x[i] + x[i+1] for white noise of unit standard deviation.
 _SECOND_DIFFERENCE = 6.0**0.5
+# A value held over more samples than this is a step, not a slow sensor.
+_LONGEST_HELD = 5
+# A rounded channel shows changes of this many steps somewhere.
+_LEAST_LEVELS = 5
+# Pieces in which a channel is looked at for rest [samples].
+_PIECE = 25
 # Standard deviation of a rounding error, in rounding steps.
 _ROUNDING = 12.0**-0.5
 
@@ -52,6 +58,9 @@ def resolution(values: Floats) -> float:
     if change.size < 8:
         return 0.0
     step = float(np.quantile(change, 0.02))
+    # On and off is no rounding.
+    if float(change.max()) < _LEAST_LEVELS * step:
+        return 0.0
     off = np.abs(change / step - np.round(change / step))
     return step if float(np.quantile(off, 0.9)) < 0.1 else 0.0
 
@@ -61,31 +70,48 @@ def _nothing(values: Floats) -> float:
     return 1e-9 * float(np.max(np.abs(values), initial=0.0, where=np.isfinite(values)))
 
 
-def short_noise(values: Floats) -> float:
+def short_noise(values: Floats, at_rest: bool = False) -> float:
     """Short-term noise of a channel, one standard deviation, from its second differences.
 
-    Second differences are blind to slow change, and their median to steps. Rows that repeat both
-    neighbours are left out (a held value shows no noise); rounding sets a floor.
+    Second differences are blind to slow change, and their median to steps. A sensor slower than the log
+    repeats its readings, which are then counted once; a channel that holds each for long merely steps, and
+    shows no noise but its rounding.
 
     Parameters
     ----------
     values : ndarray, shape (n,)
         Samples in time order; NaN allowed.
+    at_rest : bool
+        Judge by the quieter quarter of the record: of a block or a bit, speeding up is not noise.
 
     Returns
     -------
     float
         Standard deviation, in the channel's unit; zero for fewer than three usable samples.
     """
-    second = np.abs(values[2:] - 2.0 * values[1:-1] + values[:-2])
-    second = second[np.isfinite(second)]
-    moved = second[second > _nothing(values)]
     floor = resolution(values) * _ROUNDING
-    if moved.size < 8:
+    good = values[np.isfinite(values)]
+    tiny = _nothing(values)
+    fresh = np.flatnonzero(np.abs(np.diff(good)) > tiny)
+    if fresh.size < 8:
         return floor
-    # Held rows count as silence only where most rows move: a channel that rests at zero is not quiet.
+    held = float(np.median(np.diff(fresh)))
+    if held > _LONGEST_HELD:
+        return floor
+    told = good if held <= 1.0 else good[np.append(fresh, fresh[-1] + 1)]
+    second = np.abs(told[2:] - 2.0 * told[1:-1] + told[:-2])
+    moved = second[second > tiny]
+    # Rows that repeat both neighbours count as silence only where most rows move.
     kept = second if moved.size > 0.5 * second.size else moved
-    return max(float(np.median(kept)) * _MAD_TO_SIGMA / _SECOND_DIFFERENCE, floor)
+    return max(_typical(kept, at_rest) * _MAD_TO_SIGMA / _SECOND_DIFFERENCE, floor)
+
+
+def _typical(sizes: Floats, at_rest: bool) -> float:
+    """Median of all, or the lower quartile of the medians of short pieces."""
+    if not at_rest or sizes.size < 4 * _PIECE:
+        return float(np.median(sizes)) if sizes.size else 0.0
+    pieces = sizes[: sizes.size // _PIECE * _PIECE].reshape(-1, _PIECE)
+    return float(np.quantile(np.median(pieces, axis=1), 0.25))
 
 
 def samples_in(seconds: float, interval: float) -> int:

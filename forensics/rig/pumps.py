@@ -43,9 +43,9 @@ def pump_shift(facts: Facts, judged: Judged) -> Estimate | None:
     friction holds, and only the pumps move the reading.
     """
     signals, moves, drives = facts.signals, facts.moves, facts.drives
-    quiet = (
-        (moves.direction == 0) & ~moves.slips & (noise.hold(judged.vote, initial=-1) < 0) & signals.weighed
-    )
+    step = np.abs(np.diff(moves.block, prepend=moves.block[:1]))
+    still = step < _STILL_STEP + noise.NOISE_FACTOR * signals.block_noise
+    quiet = still & ~moves.slips & (noise.hold(judged.vote, initial=-1) < 0) & signals.weighed
     # A change of rotation ends a quiet stretch.
     quiet[1:] &= drives.turning[1:] == drives.turning[:-1]
     runs = noise.runs_of(quiet)

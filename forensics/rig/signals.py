@@ -26,6 +26,7 @@ LONGEST_BRIDGE = 60.0
 LONGEST_UNWEIGHED = 300.0
 _NOISY = ("hookload", "bit_depth", "block_position", "torque", "rpm", "wob", "standpipe_pressure",
           "flow_in", "differential_pressure")  # fmt: skip
+_MOVING = ("bit_depth", "block_position")
 
 
 @dataclass(frozen=True)
@@ -99,7 +100,11 @@ def read_signals(log: TimeLog) -> Signals:
     Signals
         Filled channels, noise, and the rows where too much is missing.
     """
-    levels = {name: noise.short_noise(v) for name in _NOISY if (v := log.get(name)) is not None}
+    levels = {
+        name: noise.short_noise(values, at_rest=name in _MOVING)
+        for name in _NOISY
+        if (values := log.get(name)) is not None
+    }
     levels.setdefault("hookload", 0.0)
     levels.setdefault("bit_depth", 0.0)
     block = log.get("block_position")

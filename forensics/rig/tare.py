@@ -175,7 +175,7 @@ def rezero_pressure(log: TimeLog, signals: Signals, free: Bools) -> tuple[Floats
     zeros = np.array([np.median(smooth[a:b]) for a, b in zip(runs.start, runs.stop, strict=True)])
     zero = np.interp(log.time, log.time[(runs.start + runs.stop) // 2], zeros)
     wander = 1.4826 * float(np.median(np.abs(np.diff(zeros)))) if len(zeros) > 1 else 0.0
-    level = noise.NOISE_FACTOR * signals.noise["differential_pressure"] / count**0.5
+    level = noise.NOISE_FACTOR * noise.short_noise(channel[free]) / count**0.5
     return smooth - zero, max(level, _WANDERS * wander, _LEAST_PRESSURE)
 
 
