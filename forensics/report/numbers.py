@@ -13,6 +13,7 @@ from forensics.episodes.catalogue import Episode
 
 if TYPE_CHECKING:
     from forensics.findings import Findings
+    from forensics.loads import Profile
 
 Floats = NDArray[np.float64]
 
@@ -97,6 +98,52 @@ def helix_bending_stress(findings: Findings, episode: Episode, compression: floa
     contact = part.contact_diameter(findings.case.criteria.clearance)
     clearance = max((diameter - contact) / 2.0, 0.0)
     return part.od * clearance * compression / (4.0 * part.inertia)
+
+
+def other_clearance(findings: Findings) -> str:
+    """Name the diameter the clearance is not measured at in this case, in words."""
+    return "tool joint" if findings.case.criteria.clearance == "body" else "pipe body"
+
+
+def other_threshold(findings: Findings, profile: Profile) -> Floats:
+    """Sinusoidal threshold along a profile if the clearance were taken at the other diameter.
+
+    Parameters
+    ----------
+    findings : Findings
+        Gives hole, string, and which diameter the case chose.
+    profile : Profile
+        Shape (k,).
+
+    Returns
+    -------
+    ndarray, shape (k,)
+        [N], NaN where the profile has no threshold.
+
+    Notes
+    -----
+    Only the local term 2 sqrt(EI w_c / r) follows the clearance; the term for near-vertical hole stays.
+    The wall force of a helix, r F^2 / (4 EI), is not part of w_c.
+
+    References
+    ----------
+    Dawson, R. and Paslay, P. R. (1984), Drillpipe buckling in inclined holes.
+    """
+    well = findings.well
+    above_bit = np.clip(float(np.nanmax(profile.md)) - profile.md, 0.0, None)
+    index = well.string.index_at(above_bit)
+    chosen = findings.case.criteria.clearance
+    other = "tool_joint" if chosen == "body" else "body"
+    hole = well.hole.diameter_at(profile.md)
+    radii = []
+    for kind in (chosen, other):
+        contact = np.array([part.contact_diameter(kind) for part in well.string.components])
+        radii.append(np.maximum((hole - contact[index]) / 2.0, 1e-3))
+    stiffness = well.string.values("stiffness")[index]
+    compression = np.clip(-profile.tension, 0.0, None)
+    helix = np.where(profile.state == 2, radii[0] * compression**2 / (4.0 * stiffness), 0.0)
+    local = 2.0 * np.sqrt(stiffness * np.clip(profile.contact - helix, 0.0, None) / radii[0])
+    return profile.sinusoidal + local * (np.sqrt(radii[0] / radii[1]) - 1.0)
 
 
 def margins(findings: Findings) -> tuple[Margin, ...]:

@@ -214,8 +214,10 @@ class Show:
 
 
 def _interval_places(low: float, high: float) -> int:
-    """Decimals so that half the interval keeps two figures."""
+    """Decimals so that half the interval keeps one figure, or two where the first is a 1 or a 2."""
     half = abs(high - low) / 2.0
     if not math.isfinite(half) or half == 0.0:
         return places_for(high)
-    return int(min(max(1 - math.floor(math.log10(half)), 0), 4))
+    power = math.floor(math.log10(half))
+    figures = 2 if half / 10.0**power < 3.0 else 1
+    return int(min(max(figures - 1 - power, 0), 4))

@@ -9,6 +9,7 @@ from numpy.typing import NDArray
 
 from forensics.episodes.catalogue import Episode
 from forensics.loads import Profile
+from forensics.report import numbers
 from forensics.report.figures import lanes, style
 from forensics.report.figures.clock import time_axis
 from forensics.report.figures.decimate import runs, thin
@@ -26,7 +27,8 @@ def ratio_map(scene: Scene) -> Figure:
     time = found.log.time
     start, end = (float(time[0]), float(time[-1])) if len(time) else (0.0, 1.0)
     grid = found.loads.ratio_map
-    colours, norm = style.ratio_colours()
+    criterion = found.case.criteria.helical_onset
+    colours, norm = style.ratio_colours(criterion)
     if grid.values.size:
         x = grid.time_edges - start
         y = show.scaled(grid.md_edges, "length")
@@ -46,7 +48,7 @@ def ratio_map(scene: Scene) -> Figure:
             float(time[episode.peak]) - start, show.scaled(episode.peak_md, "length"),
             marker="o", markersize=5, mfc="none", mec=style.INK, mew=1.1,
         )  # fmt: skip
-    _ratio_key(figure, (9.25, 0.62, 0.17, 2.9))
+    _ratio_key(figure, criterion)
     time_axis([ax], start, end, show)
     return figure
 
@@ -58,16 +60,19 @@ def _deepest(scene: Scene) -> float:
     return float(scene.show.scaled(max([1.0, *ends]), "length"))
 
 
-def _ratio_key(figure: Figure, box: tuple[float, float, float, float]) -> None:
+def _ratio_key(figure: Figure, criterion: str) -> None:
     """Colour key of the load ratio, with the thresholds named beside their step."""
     width, height = figure.get_size_inches()
-    left, bottom, wide, tall = box
+    left, bottom, wide, tall = (9.25, 0.62, 0.17, 2.9)
     ax = figure.add_axes((left / width, bottom / height, wide / width, tall / height))
-    colours, _ = style.ratio_colours()
-    edges = style.RATIO_EDGES
+    colours, _ = style.ratio_colours(criterion)
+    edges = style.ratio_edges(criterion)
     steps = len(edges)
     bars = ax.barh(
-        np.arange(steps) + 0.5, 1.0, height=1.0, color=[colours(k) for k in range(steps - 1)] + ["#3d0f2b"]
+        np.arange(steps) + 0.5,
+        1.0,
+        height=1.0,
+        color=[colours(k) for k in range(steps - 1)] + [style.RATIO_OVER],
     )
     for bar in bars:
         bar.set_edgecolor(style.FAINT)
@@ -75,7 +80,7 @@ def _ratio_key(figure: Figure, box: tuple[float, float, float, float]) -> None:
     ax.set_xlim(0, 1)
     ax.set_ylim(0, steps)
     ax.set_xticks([])
-    names = {1.0: "1   sinusoidal", 1.41: "1.41   usual\n         helical onset"}
+    names = {1.0: "1  sinusoidal", edges[5]: f"{edges[5]:g}  helical,\nabout ({criterion})"}
     ax.yaxis.tick_right()
     ax.set_yticks(range(steps), [names.get(edge, f"{edge:g}") for edge in edges])
     ax.tick_params(axis="y", length=0, labelcolor=style.INK)
@@ -95,7 +100,7 @@ def _hole_marks(ax: Axes, scene: Scene) -> None:
             ax.text(
                 0.995,
                 y,
-                f"{name} below",
+                f"below: {name}",
                 transform=ax.get_yaxis_transform(),
                 ha="right",
                 va="bottom",
@@ -132,14 +137,29 @@ def load_profile(scene: Scene, profile: Profile, episode: Episode) -> Figure:
 
 
 def _near(profile: Profile, episode: Episode) -> tuple[float, float]:
-    """Depth span to enlarge: the buckled or affected interval with a margin, inside the string."""
+    """Depth span to enlarge: the place in trouble with a margin, at most a third of the string, inside it."""
     deepest = float(np.nanmax(profile.md))
-    top, bottom = episode.top_md, episode.bottom_md
-    if not (np.isfinite(top) and np.isfinite(bottom)) or bottom <= top:
-        centre = episode.peak_md if np.isfinite(episode.peak_md) else deepest
-        top, bottom = centre - 150.0, centre + 150.0
+    top, bottom = _trouble(profile, episode, deepest)
     margin = max(0.35 * (bottom - top), 100.0)
-    return max(top - margin, 0.0), min(bottom + margin, deepest)
+    top, bottom = max(top - margin, 0.0), min(bottom + margin, deepest)
+    if bottom - top > deepest / 3.0 and np.isfinite(episode.peak_md):
+        half = deepest / 6.0
+        centre = float(np.clip(episode.peak_md, top + half, bottom - half))
+        top, bottom = centre - half, centre + half
+    return top, bottom
+
+
+def _trouble(profile: Profile, episode: Episode, deepest: float) -> tuple[float, float]:
+    """Top and bottom of the helical run nearest the peak, else of the episode's interval."""
+    spans = [sorted((profile.md[a], profile.md[b - 1])) for a, b in runs(profile.state == 2)]
+    if spans and np.isfinite(episode.peak_md):
+        top, bottom = min(spans, key=lambda s: abs(float(np.clip(episode.peak_md, *s)) - episode.peak_md))
+        return float(top), float(bottom)
+    top, bottom = episode.top_md, episode.bottom_md
+    if np.isfinite(top) and np.isfinite(bottom) and bottom > top:
+        return top, bottom
+    centre = episode.peak_md if np.isfinite(episode.peak_md) else deepest
+    return centre - 150.0, centre + 150.0
 
 
 def _draw_load(ax: Axes, profile: Profile, scene: Scene, span: tuple[float, float]) -> None:
@@ -150,7 +170,9 @@ def _draw_load(ax: Axes, profile: Profile, scene: Scene, span: tuple[float, floa
     sinusoidal = -show.scaled(profile.sinusoidal, "force")
     helical = -show.scaled(profile.helical, "force")
     inside = (profile.md >= span[0]) & (profile.md <= span[1])
+    other = -show.scaled(numbers.other_threshold(scene.findings, profile), "force")
     ax.axvline(0.0, color=style.MUTED, linewidth=0.7)
+    ax.fill_betweenx(depth, sinusoidal, other, color=style.SINUSOIDAL, alpha=0.3, linewidth=0, zorder=0.8)
     ax.plot(sinusoidal, depth, color=style.MODEL, linewidth=1.2, linestyle=(0, (4, 1.5)))
     ax.plot(helical, depth, color=style.HELICAL, linewidth=1.2, linestyle=(0, (1, 1.2)))
     ax.plot(load, depth, color=style.INK, linewidth=1.6)
@@ -198,10 +220,18 @@ def _name_curves(ax: Axes, depth: Floats, curves: dict[str, Floats], inside: NDA
             continue
         order = seen[np.argsort(depth[seen])]
         row = order[int(share * (len(order) - 1))]
+        side = _free_side(values[row], [other[row] for key, other in curves.items() if key != name])
         ax.annotate(
-            name, (values[row], depth[row]), xytext=(6, 0), textcoords="offset points", va="center",
-            fontsize=7.4, color=colours[name], bbox={"fc": "white", "ec": "none", "pad": 0.5, "alpha": 0.8},
+            name, (values[row], depth[row]), xytext=(6 * side, 0), textcoords="offset points", va="center",
+            ha="right" if side < 0 else "left", fontsize=7.4, color=colours[name],
+            bbox={"fc": "white", "ec": "none", "pad": 0.5, "alpha": 0.8},
         )  # fmt: skip
+
+
+def _free_side(value: float, others: list[float]) -> int:
+    """Side of a curve away from its nearest neighbour: 1 right, -1 left."""
+    steps = [other - value for other in others if np.isfinite(other)]
+    return -1 if steps and min(steps, key=abs) > 0 else 1
 
 
 def _draw_contact(ax: Axes, profile: Profile, scene: Scene, span: tuple[float, float]) -> None:

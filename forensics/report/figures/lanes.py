@@ -122,11 +122,11 @@ def mark_rows(axes: Sequence[Axes], spans: Sequence[tuple[float, float]]) -> Non
 
 
 def number_marks(axes: Axes, marks: Sequence[tuple[float, str]], span: float) -> None:
-    """Write episode names above an axis at their x, on two levels; those that still collide are left out."""
-    last = [-np.inf, -np.inf]
+    """Write episode names above an axis at their x, on three levels; those that collide are left out."""
+    last = [-np.inf] * 3
     for x, text in sorted(marks):
         width = span * (0.008 * len(text) + 0.006)
-        level = next((k for k in (0, 1) if x - last[k] > width), None)
+        level = next((k for k in range(3) if x - last[k] > width), None)
         if level is None:
             continue
         last[level] = x

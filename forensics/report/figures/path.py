@@ -71,6 +71,7 @@ def _draw_section(ax: Axes, scene: Scene, md: Floats) -> None:
         )
     for rank, episode in enumerate(scene.mains):
         _mark_interval(ax, scene, episode, rank)
+    ax.margins(0.08, 0.12)
     ax.set_aspect("equal", adjustable="datalim")
     ax.invert_yaxis()
     ax.grid(visible=True)
@@ -92,9 +93,13 @@ def _mark_interval(ax: Axes, scene: Scene, episode: Episode, rank: int) -> None:
     scale = _units_per_point(ax, scene)
     x, y = out + offset * scale * dy / size, down - offset * scale * dx / size
     ax.plot(x, y, color=dict(EPISODE_LANES)[lane_of(episode)], linewidth=3.2, solid_capstyle="butt")
+    # The name goes on where the bar ends, in its direction, so that names of neighbours stay apart.
+    slope = np.degrees(np.arctan2(-(y[-1] - y[-2]), x[-1] - x[-2]))
     ax.annotate(
-        episode.id, (x[-1], y[-1]), xytext=(4, 0), textcoords="offset points", va="center", fontsize=6.8
-    )
+        episode.id, (x[-1], y[-1]), xytext=(4 * np.cos(np.radians(slope)), 4 * np.sin(np.radians(slope))),
+        textcoords="offset points", ha="left", va="center", rotation=slope, rotation_mode="anchor",
+        fontsize=6.4,
+    )  # fmt: skip
 
 
 def _units_per_point(ax: Axes, scene: Scene) -> float:

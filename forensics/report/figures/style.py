@@ -34,10 +34,11 @@ PICK_UP = "#2b7bb0"
 SLACK_OFF = "#c77f0a"
 ROTATING = INK
 
-# Load ratio classes: each step darker than the last, the first colour change at the threshold itself.
-RATIO_EDGES = (0.0, 0.25, 0.5, 0.75, 1.0, 1.41, 2.0, 3.0)
+# Load ratio classes: each step darker than the last; colour begins at the threshold itself.
+# The helical onset, as a multiple of the local sinusoidal load, follows the criterion of the case.
+ONSETS = {"chen": 1.41, "wu": 1.83, "mitchell": 2.83}
 _RATIO_COLOURS = ("#ffffff", "#eef1f2", "#dbe1e4", "#bcc7cd", "#f0b93a", "#d0662a", "#8e2443")
-_RATIO_OVER = "#3d0f2b"
+RATIO_OVER = "#3d0f2b"
 
 _STYLE = {
     "font.family": ["DejaVu Sans"],
@@ -142,10 +143,16 @@ def stack_height(heights: Sequence[float], edges: tuple[float, float, float, flo
     return sum(heights) + 0.09 * (len(heights) - 1) + edges[2] + edges[3]
 
 
-def ratio_colours() -> tuple[ListedColormap, BoundaryNorm]:
+def ratio_edges(criterion: str) -> tuple[float, ...]:
+    """Edges of the load ratio classes for a helical criterion."""
+    onset = ONSETS.get(criterion, ONSETS["chen"])
+    return (0.0, 0.25, 0.5, 0.75, 1.0, onset, round(1.5 * onset, 1), round(2.0 * onset, 1))
+
+
+def ratio_colours(criterion: str) -> tuple[ListedColormap, BoundaryNorm]:
     """Colour steps of the load ratio."""
-    colours = ListedColormap(list(_RATIO_COLOURS)).with_extremes(over=_RATIO_OVER, bad="#ffffff")
-    return colours, BoundaryNorm(list(RATIO_EDGES), colours.N)
+    colours = ListedColormap(list(_RATIO_COLOURS)).with_extremes(over=RATIO_OVER, bad="#ffffff")
+    return colours, BoundaryNorm(list(ratio_edges(criterion)), colours.N)
 
 
 def side_name(axes: Axes, name: str, unit: str = "") -> None:

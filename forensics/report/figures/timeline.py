@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from matplotlib.axes import Axes
@@ -19,18 +19,19 @@ from forensics.report.scene import Scene
 
 Floats = NDArray[np.float64]
 
-_EDGES = (1.65, 0.95, 0.42, 0.55)
+_EDGES = (1.65, 0.95, 0.55, 0.55)
 
 
 @dataclass(frozen=True)
 class Curve:
-    """One line of a track: values [SI], its label and how it is drawn."""
+    """One line of a track: values [SI], its label, how it is drawn, whether it sets the scale."""
 
     values: Floats | None
     label: str
     colour: str
     width: float = 0.9
     dash: str = "-"
+    scales: bool = True
 
 
 @dataclass(frozen=True)
@@ -70,7 +71,8 @@ def weight_track(scene: Scene) -> Track:
         "weight on bit",
         "force",
         (
-            Curve(found.log.get("wob"), "as logged", style.LOGGED, 0.9),
+            # In slips a rig's indicator shows the whole string's weight: too much to scale by.
+            Curve(found.log.get("wob"), "as logged", style.LOGGED, 0.9, scales=False),
             Curve(found.rig.wob_surface, "re-zeroed", style.SURFACE, 0.9),
             Curve(found.loads.bit_load, "at the bit", style.BIT, 1.5),
         ),
@@ -195,10 +197,7 @@ def _moment_tracks(scene: Scene) -> list[Track]:
 
 
 def _cut(track: Track, rows: slice) -> Track:
-    curves = tuple(
-        Curve(c.values[rows] if c.values is not None else None, c.label, c.colour, c.width, c.dash)
-        for c in track.curves
-    )
+    curves = tuple(replace(c, values=c.values[rows] if c.values is not None else None) for c in track.curves)
     return Track(track.name, track.quantity, curves, track.height, track.depth)
 
 
@@ -221,7 +220,7 @@ def _draw_track(ax: Axes, track: Track, base: tuple[Floats, float, float], scene
         x, y = thin(time - start, show.scaled(curve.values, track.quantity), 5 * interval, points)
         ax.plot(x, y, color=curve.colour, linewidth=curve.width, linestyle=curve.dash)
         drawn.append((curve, y))
-    _limits(ax, [y for _, y in drawn], track.depth)
+    _limits(ax, [y for c, y in drawn if c.scales] or [y for _, y in drawn], track.depth)
     style.side_name(ax, track.name, show.unit(track.quantity))
     ax.yaxis.set_major_locator(MaxNLocator(4 if track.height > 0.7 else 3, steps=[1, 2, 2.5, 5, 10]))
     ax.grid(visible=True, axis="y")
@@ -239,8 +238,8 @@ def _limits(ax: Axes, series: Sequence[Floats], down: bool) -> None:
     """Span of the values with a margin; a few stray samples do not set it."""
     values = np.concatenate([y[np.isfinite(y)] for y in series]) if series else np.zeros(1)
     low, high = np.quantile(values, [0.002, 0.998]) if len(values) > 500 else (values.min(), values.max())
-    margin = 0.08 * (high - low) or max(abs(high) * 0.05, 0.5)
-    low, high = low - margin, high + margin
+    margin = 0.08 * (high - low) or abs(high) * 0.05
+    low, high = (low - margin, high + margin) if margin else (-0.1, 1.0)
     ax.set_ylim((high, low) if down else (low, high))
 
 

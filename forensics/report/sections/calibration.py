@@ -7,9 +7,11 @@ import numpy as np
 from forensics.report.elements import Column, Element, Picture, Section, Table, Text
 from forensics.report.figures import weights
 from forensics.report.scene import Scene
-from forensics.report.words import count, fixed, plain
+from forensics.report.words import count, fixed
 
 TARE_ROWS = 60
+
+NAMES = {"pick_up": "pick-up", "slack_off": "slack-off", "rotating": "rotating", "torque": "torque"}
 
 
 def describe(scene: Scene) -> Section:
@@ -27,7 +29,7 @@ def _fit_sentence(scene: Scene) -> str:
             "The log shows no steady off-bottom reading, so nothing was calibrated: the friction factors "
             "are the assumed ones, and the reconstruction is worth no more than they are."
         )
-    parts = ", ".join(f"{fixed(n, 0)} {plain(kind)}" for kind, n in counts.items() if n)
+    parts = ", ".join(f"{fixed(n, 0)} {NAMES[kind]}" for kind, n in counts.items() if n)
     rms = scene.show.value(cal.residual_rms, "force")
     return (
         f"Calibrated on steady off-bottom readings: {parts}. Hookload readings miss the model by {rms} (rms)."
@@ -67,7 +69,7 @@ def tare_table(scene: Scene) -> Table:
         (
             show.time(tare.start),
             show.value(tare.bit_depth, "length", 0),
-            plain(tare.kind),
+            NAMES.get(tare.kind, tare.kind),
             show.value(tare.weight, "force"),
             show.value(tare.offset, "force"),
             fixed(tare.samples, 0),
@@ -78,7 +80,10 @@ def tare_table(scene: Scene) -> Table:
         Column(f"stand from ({show.timezone})"), Column("bit depth", "number"), Column("reference"),
         Column("reading", "number"), Column("offset from model", "number"), Column("samples", "number"),
     )  # fmt: skip
-    note = "Offset: the reading less the model's or interpolated reference weight."
+    note = (
+        "Offset: the reading less the model's frictionless weight of the string alone, so a rotating one "
+        "shows what else hangs from the sensor."
+    )
     if len(tares) > TARE_ROWS:
         note += f" The first {TARE_ROWS} of {len(tares)} are listed."
     empty = "No off-bottom reference reading was found; surface weight rests on the model's rotating weight."

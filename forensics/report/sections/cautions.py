@@ -67,7 +67,10 @@ METHOD_LIMITS = (
         "Thresholds are published ones with their own scatter; the helical one marks an onset, and a full "
         "helix forms over a range of load above it."
     ),
-    "Tool-joint and body clearance give different thresholds; the choice is stated below.",
+    (
+        "Tool-joint and body clearance give different thresholds; the choice is stated above, its effect with "
+        "each episode."
+    ),
 )
 
 

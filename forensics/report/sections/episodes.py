@@ -4,7 +4,12 @@ from __future__ import annotations
 
 import math
 
+import numpy as np
+
 from forensics.episodes.catalogue import CauseView, Consequence, Episode, Evidence, Kind, State
+from forensics.episodes.groups import is_routine
+from forensics.episodes.headline import gravity
+from forensics.report import numbers
 from forensics.report.elements import (
     Column,
     Element,
@@ -18,13 +23,26 @@ from forensics.report.elements import (
     Text,
 )
 from forensics.report.figures import depths, timeline
-from forensics.report.scene import MAIN_CAP, Scene, is_routine, severity
+from forensics.report.scene import MAIN_CAP, Scene
 from forensics.report.sections.cautions import for_episode
-from forensics.report.sections.first import episode_numbers, rotation_sentence
+from forensics.report.sections.first import RESIDUALS, episode_numbers, rotation_sentence
 from forensics.report.words import count, duration, fixed, plain
 
 TABLE_ROWS = 200
 MEMBERS = 12
+
+DOING = {
+    "connection": "in a connection",
+    "drill_rotate": "drilling with rotation",
+    "drill_slide": "sliding",
+    "ream_down": "reaming down",
+    "ream_up": "reaming up",
+    "rotate_off_bottom": "rotating off bottom",
+    "trip_in": "running in",
+    "trip_out": "pulling out",
+    "circulate": "circulating",
+    "static": "standing still",
+}
 
 
 def describe(scene: Scene) -> Section:
@@ -41,7 +59,7 @@ def describe(scene: Scene) -> Section:
         )
     elif total > len(scene.mains):
         lead += (
-            f" At most {MAIN_CAP} are, chosen by consequence, then state, probability and lost weight; "
+            f" At most {MAIN_CAP} are, the gravest: by consequence, then state, lost weight and size; "
             "routine sinusoidal running is left out. The table below lists the rest."
         )
     parts = tuple(_part(scene, episode) for episode in scene.mains)
@@ -91,19 +109,7 @@ def summary(scene: Scene, episode: Episode) -> str:
 
 
 def _doing(episode: Episode) -> str:
-    words = {
-        "connection": "in a connection",
-        "drill_rotate": "drilling with rotation",
-        "drill_slide": "sliding",
-        "ream_down": "reaming down",
-        "ream_up": "reaming up",
-        "rotate_off_bottom": "rotating off bottom",
-        "trip_in": "running in",
-        "trip_out": "pulling out",
-        "circulate": "circulating",
-        "static": "standing still",
-    }
-    return words.get(episode.activity, "doing what the log does not tell")
+    return DOING.get(episode.activity, "doing what the log does not tell")
 
 
 def _consequence(scene: Scene, episode: Episode) -> str:
@@ -125,15 +131,25 @@ def _numbers(scene: Scene, episode: Episode) -> tuple[Number, ...]:
         rows.insert(0, Number("depth of the peak", show.value(episode.peak_md, "length", 0), "", "replay"))
     when = show.stamp(float(scene.findings.log.time[episode.peak]))
     rows.insert(0, Number("moment of the peak", when, "", "time log"))
-    residuals = {
-        Kind.DRAG: (loads.drag_residual, "force", "hookload less model at the peak"),
-        Kind.TORQUE: (loads.torque_residual, "moment", "torque less model at the peak"),
-    }
-    if episode.kind in residuals:
-        values, quantity, name = residuals[episode.kind]
+    if episode.kind in RESIDUALS and episode.peak_residual is None:
+        name, quantity = RESIDUALS[episode.kind]
+        values = loads.drag_residual if episode.kind is Kind.DRAG else loads.torque_residual
         value = show.value(float(values[episode.peak]), quantity)
         rows.append(Number(name, value, "", "measured less modelled at the calibrated friction"))
+    rows += _clearance_row(scene, episode)
     return tuple(rows)
+
+
+def _clearance_row(scene: Scene, episode: Episode) -> list[Number]:
+    """Say what the load ratio becomes where the clearance is taken at the other diameter."""
+    profile = scene.findings.profiles.get(episode.id)
+    if profile is None or not episode.peak_load_ratio.value > 0.0:
+        return []
+    ratio = -profile.tension / numbers.other_threshold(scene.findings, profile)
+    if not np.isfinite(ratio).any() or np.nanmax(ratio) <= 0.0:
+        return []
+    name = f"largest load ratio if the clearance is taken at the {numbers.other_clearance(scene.findings)}"
+    return [Number(name, fixed(float(np.nanmax(ratio)), 2), "", "load profile at the peak, approximate")]
 
 
 def _profile_picture(scene: Scene, episode: Episode) -> Picture:
@@ -142,9 +158,10 @@ def _profile_picture(scene: Scene, episode: Episode) -> Picture:
     caption = (
         f"{episode.id}, load along the hole at {show.stamp(profile.time)}, near its peak. Effective "
         "tension is positive to the right, compression negative to the left. Dashed: sinusoidal "
-        "threshold; dotted: helical threshold, both at the actual wall force. Where the load lies left of "
-        "a threshold the string is past it; bars at the left edge show the state the replay gave (light: "
-        "sinusoidal; dark: helical)."
+        "threshold; dotted: helical threshold, both at the actual wall force; pale band: how far the "
+        "sinusoidal one moves if the clearance is taken at the "
+        f"{numbers.other_clearance(scene.findings)}. Where the load lies left of a threshold the string is "
+        "past it; bars at the left edge show the state the replay gave (light: sinusoidal; dark: helical)."
     )
     compression = -float(profile.tension.min()) if len(profile.tension) else math.nan
     alt = (
@@ -200,7 +217,7 @@ def describe_tables(scene: Scene) -> Section:
 def episode_table(scene: Scene) -> Table:
     """All episodes in order of time, up to a cap."""
     show, episodes = scene.show, scene.findings.episodes
-    chosen = sorted(episodes, key=lambda e: (-severity(e), e.start, e.id))[:TABLE_ROWS]
+    chosen = sorted(episodes, key=gravity, reverse=True)[:TABLE_ROWS]
     rows = tuple(_episode_row(scene, e) for e in sorted(chosen, key=lambda e: (e.start, e.id)))
     columns = (
         Column("id", "code"),
@@ -234,7 +251,8 @@ def _episode_row(scene: Scene, e: Episode) -> tuple[str | tuple[str, ...], ...]:
 
     def bare(estimate: object, quantity: str) -> str:
         text = show.with_interval(estimate, quantity)  # type: ignore[arg-type]
-        return "" if text == "not known" else text.replace(f" {show.unit(quantity)}", "", 1)
+        unit = show.unit(quantity)
+        return "" if text == "not known" else text.replace(f" {unit}", "", 1) if unit else text
 
     lost = tuple(filter(None, (bare(e.lost_weight, "force"), bare(e.lost_to_buckling, "force"))))
     span = show.depths(e.top_md, e.bottom_md).removesuffix(f" {show.unit('length')}")
@@ -243,7 +261,7 @@ def _episode_row(scene: Scene, e: Episode) -> tuple[str | tuple[str, ...], ...]:
         kind_words(e),
         show.time(e.start),
         duration(e.duration),
-        plain(e.activity),
+        DOING.get(e.activity, "not known"),
         "" if span == "not known" else span,
         bare(e.peak_load_ratio, "dimensionless"),
         bare(e.peak_compression, "force"),

@@ -5,13 +5,21 @@ from __future__ import annotations
 import math
 
 from forensics.episodes.catalogue import Consequence, Episode, Kind
+from forensics.episodes.groups import is_routine
+from forensics.episodes.headline import gravity
 from forensics.estimate import Estimate
 from forensics.report import numbers
 from forensics.report.elements import Column, Element, Finding, Notice, Number, Numbers, Section, Table, Text
-from forensics.report.scene import Scene, is_routine, severity
+from forensics.report.scene import Scene
 from forensics.report.words import Show, count, duration, fixed
 
 REPLAY = "replay at the calibrated friction"
+
+# What the residual of a drag or torque episode is called, and its quantity.
+RESIDUALS = {
+    Kind.DRAG: ("hookload less model at the peak", "force"),
+    Kind.TORQUE: ("torque less model at the peak", "moment"),
+}
 
 
 def describe(scene: Scene) -> Section:
@@ -39,12 +47,12 @@ def cannot_tell(scene: Scene) -> tuple[str, ...]:
     return tuple(dict.fromkeys(said))
 
 
-def number(name: str, estimate: Estimate, quantity: str, show: Show) -> Number:
-    """Make a row of a number table from an estimate."""
+def number(name: str, estimate: Estimate, quantity: str, show: Show, noun: str = "reading") -> Number:
+    """Make a row of a number table from an estimate; `noun` is what its samples are."""
     value, interval = show.estimate(estimate, quantity)
     origin = estimate.source
     if estimate.samples:
-        origin = f"{origin}; {count(estimate.samples, 'reading')}"
+        origin = f"{origin}; {count(estimate.samples, noun)}"
     if not estimate.determined:
         origin = f"assumed, not determined by the data; {origin}"
     return Number(name, value, interval, origin, estimate.determined)
@@ -96,9 +104,8 @@ def section_name(kind: str) -> str:
 
 
 def worst_episode(scene: Scene) -> Episode | None:
-    """Find the episode the key numbers speak of: the most severe main one that has a load ratio."""
-    judged = [e for e in scene.mains if math.isfinite(e.peak_load_ratio.value)]
-    return max(judged, key=severity) if judged else None
+    """Find the episode the key numbers speak of: the gravest, which the headline speaks of too."""
+    return max(scene.mains, key=gravity, default=None)
 
 
 def episode_numbers(episode: Episode, show: Show, prefix: str = "") -> list[Number]:
@@ -109,10 +116,16 @@ def episode_numbers(episode: Episode, show: Show, prefix: str = "") -> list[Numb
         ("surface weight that did not reach the bit", episode.lost_weight, "force"),
         ("of it, lost to buckling rather than to ordinary drag", episode.lost_to_buckling, "force"),
     ]
-    rows = [number(prefix + name, e, q, show) for name, e, q in pairs if math.isfinite(e.value)]
+    loaded = episode.kind in {Kind.BUCKLING, Kind.LOCKUP} or episode.peak_load_ratio.value > 0.0
+    rows = [
+        number(prefix + name, e, q, show, "draw") for name, e, q in pairs if loaded and math.isfinite(e.value)
+    ]
+    if episode.peak_residual is not None and episode.kind in RESIDUALS:
+        name, quantity = RESIDUALS[episode.kind]
+        rows.insert(0, number(prefix + name, episode.peak_residual, quantity, show, "draw"))
     if math.isfinite(episode.probability):
-        origin = "share of the draws of friction, block weight and the like in which the rule held"
-        name = f"{prefix}probability that it happened"
+        origin = "share of the draws of friction, block weight and the like"
+        name = f"{prefix}probability that its rule held"
         rows.append(Number(name, fixed(episode.probability, 2), "", origin))
     return rows
 

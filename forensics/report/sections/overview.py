@@ -8,6 +8,7 @@ from forensics.report.elements import Element, Picture, Section, Text
 from forensics.report.figures import depths, path, timeline, weights
 from forensics.report.scene import Scene
 from forensics.report.words import count
+from forensics.rig.view import Activity
 
 
 def describe(scene: Scene) -> Section:
@@ -24,7 +25,8 @@ def _strip(scene: Scene) -> Picture:
     caption = (
         "The whole run. Top: episodes, one lane a kind. Middle: what the rig recorded; the weight on bit "
         "three ways, as the rig logged it, re-zeroed on the rotating off-bottom weight, and as "
-        "reconstructed at the bit: where the last falls away from the others, weight is being lost. "
+        "reconstructed at the bit: where the last falls away from the others, weight is being "
+        "lost (what the rig logged in slips may run off the scale). "
         f"Bottom: what the rig was doing. Shaded spans are the episodes shown in detail below ({ids}). "
         "Lines break where the log has a gap; spikes narrower than the line keep their highest and lowest "
         f"sample.{lacking}"
@@ -66,7 +68,10 @@ def _map(scene: Scene) -> list[Element]:
     return [Picture(lambda: depths.ratio_map(scene), caption, alt)]
 
 
-def _transfer(scene: Scene) -> Picture:
+def _transfer(scene: Scene) -> Element:
+    drilled = np.isin(scene.findings.rig.activity, [int(Activity.DRILL_ROTATE), int(Activity.DRILL_SLIDE)])
+    if not drilled.any():
+        return Text("The bit did not drill in this log: there is no surface weight to hold against bit load.")
     caption = (
         "Reconstructed bit load against re-zeroed surface weight, sample by sample; darker cells hold "
         "more samples. On the line all the surface weight reaches the bit; the drop below it is what the "
