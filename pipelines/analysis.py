@@ -20,9 +20,10 @@ from forensics.friction.calibrate import calibrate
 from forensics.friction.readings import find_readings
 from forensics.logs.read import read_time_logs
 from forensics.logs.table import TimeLog
+from forensics.mechanics.offbottom import OffBottomModel
 from forensics.replay.draws import replay_draws
 from forensics.replay.lines import fan
-from forensics.replay.model import LoadModel, build_model
+from forensics.replay.model import build_model
 from forensics.replay.moments import profiles
 from forensics.replay.run import Replay, block_zero, ready, replay
 from forensics.report.scene import main_episodes
@@ -74,7 +75,7 @@ def analyse(case: Case, progress: Progress, units: str = "metric") -> Findings:
     with progress.stage("calibration", "calibrating friction"):
         model = _model(run)
         readings = find_readings(run.log, run.rig, run.well)
-        calibration = calibrate(readings, run.well, case, model.offbottom, run.rig)
+        calibration = calibrate(readings, run.well, case, model, run.rig)
     with progress.stage("replay", "replaying the run"):
         made = ready(run.log, run.well, run.rig, calibration, case, model)
         loads = replay(made)
@@ -97,7 +98,7 @@ def _understand(case: Case, progress: Progress) -> Run:
     return Run(case, log, well, rig)
 
 
-def _model(run: Run) -> LoadModel:
+def _model(run: Run) -> OffBottomModel:
     """Tabulate the well down to the deepest the bit got."""
     deepest = float(np.nanmax(run.log.values["bit_depth"]))
     return build_model(run.well, run.case, deepest, block_zero(run.rig))

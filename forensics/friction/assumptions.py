@@ -20,16 +20,20 @@ KINDS = ("cased", "open")
 DEFAULT_FACTOR = {"cased": 0.20, "open": 0.28}
 
 #: One sigma of the weak prior: the spread of usual factors over muds (trade values, from memory).
-FACTOR_SIGMA = {"cased": 0.07, "open": 0.08}
+FACTOR_SIGMA = {"cased": 0.08, "open": 0.10}
 
 #: One sigma of the string's weight per length: tolerance, wear and mud density together.
 SCALE_SIGMA = 0.02
+
+#: One sigma of how that scale drifts from the middle of the readings' depths to their ends: a component,
+#: the survey's vertical depth or the mud of the moment is a little off.
+DRIFT_SIGMA = 0.003
 
 #: One sigma of the share of the pipe above the rotary that the sensor carries.
 SHARE_SIGMA = 0.3
 
 #: A hookload sensor's zero is trusted no better than this [N], whatever the plateau's scatter says.
-BLOCK_SIGMA_FLOOR = 2.0e3
+BLOCK_SIGMA_FLOOR = 1.0e3
 
 #: One sigma of the block weight where nothing was seen of it [N].
 BLOCK_SIGMA_UNKNOWN = 50.0e3
@@ -39,8 +43,8 @@ BIAS_SIGMA = (10.0e3, 0.03)
 
 Z90 = 1.6448536269514722
 
-LOWEST = np.array([-np.inf, 0.0, 0.9, 0.01, 0.01])
-HIGHEST = np.array([np.inf, 1.2, 1.1, 0.6, 0.6])
+LOWEST = np.array([-np.inf, 0.0, 0.9, 0.01, 0.01, -0.02])
+HIGHEST = np.array([np.inf, 1.2, 1.1, 0.6, 0.6, 0.02])
 
 
 @dataclass(frozen=True)
@@ -53,7 +57,7 @@ class Assumed:
 
 @dataclass(frozen=True)
 class Prior:
-    """Prior centres and sigmas of (block or block + bias [N], share, scale, cased, open).
+    """Prior centres and sigmas of (block or block + bias [N], share, scale, cased, open, drift of the scale).
 
     `given_block` is the block weight of the case file [N], None where it is to be learned.
     """
@@ -118,8 +122,10 @@ def build_prior(case: Case, well: Well, rig: RigView) -> Prior:
         sigma = width / (2.0 * Z90) if np.isfinite(width) else BLOCK_SIGMA_UNKNOWN
         sigma = max(sigma, BLOCK_SIGMA_FLOOR if seen.determined else BLOCK_SIGMA_UNKNOWN)
     return Prior(
-        centre=np.array([block, 1.0, 1.0, cased.value, open_.value]),
-        sigma=np.array([sigma, SHARE_SIGMA, SCALE_SIGMA, FACTOR_SIGMA["cased"], FACTOR_SIGMA["open"]]),
+        centre=np.array([block, 1.0, 1.0, cased.value, open_.value, 0.0]),
+        sigma=np.array(
+            [sigma, SHARE_SIGMA, SCALE_SIGMA, FACTOR_SIGMA["cased"], FACTOR_SIGMA["open"], DRIFT_SIGMA]
+        ),
         cased=cased,
         open=open_,
         given_block=given,

@@ -7,7 +7,7 @@ assumed to be, and is said to.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -19,7 +19,7 @@ from forensics.friction.assumptions import KINDS, Z90, Assumed, Prior, build_pri
 from forensics.friction.result import Calibration, FrictionSection, Reading
 from forensics.friction.robust import Fit, Problem, fit
 from forensics.friction.rotational import Rotational, fit_rotational
-from forensics.friction.spread import covariance, draw
+from forensics.friction.spread import STAND, covariance, draw
 from forensics.friction.surface import OffBottom, build_surface
 
 if TYPE_CHECKING:
@@ -34,6 +34,9 @@ SIGNS = {"pick_up": 1.0, "slack_off": -1.0, "rotating": 0.0}
 
 #: Readings fitted at most, of each kind: more of one run add nothing but time.
 MOST = 80
+
+#: Load ratio from which a slack-off weight says more of buckling than of friction.
+NEAR_BUCKLING = 0.8
 
 #: A reading is trusted no better than this [N], or this part of its value: settling, speed, pumps.
 SIGMA_FLOOR = (500.0, 0.0015)
@@ -74,7 +77,8 @@ def calibrate(
     Notes
     -----
     Model: reading = block weight + bias + share * pipe above the rotary + scale * string weight. The
-    soft string is of first degree in weight, so one scale serves weight and drag. Lopsided biweight
+    soft string is of first degree in weight, so one scale serves weight and drag; it may drift a little
+    with depth, so that a small error of weight does not move the block weight. Lopsided biweight
     loss (see `robust`); intervals are 90 %.
 
     References
@@ -82,14 +86,40 @@ def calibrate(
     Johancsik et al. (1984), J. Pet. Technol. 36(6) (the friction model); Beaton and Tukey (1974),
     Technometrics 16(2) (the biweight).
     """
-    weights = _thin(tuple(r for r in readings if r.kind in SIGNS and _sound(r)))
+    weights = tuple(r for r in readings if r.kind in SIGNS and _sound(r))
     torques = _thin(tuple(r for r in readings if r.kind == "torque" and _sound(r)))
     prior = build_prior(case, well, rig)
-    problem = _problem(weights, model, prior)
-    solved = _solve(problem, weights, model, case.friction.fixed)
-    rotational = fit_rotational(torques, model, float(solved.fit.p[3:].mean()))
+    weights, problem, solved, buckled = _solve_unbuckled(weights, model, prior, case.friction.fixed)
+    solved = replace(solved, sentences=solved.sentences + buckled)
+    rotational = fit_rotational(torques, model, float(solved.fit.p[3:5].mean()))
     inputs = _Inputs(weights, torques, well, rig, rotational, model)
     return _result(solved, problem, case.friction.fixed, inputs)
+
+
+def _solve_unbuckled(
+    weights: tuple[Reading, ...], model: OffBottom, prior: Prior, fixed: bool
+) -> tuple[tuple[Reading, ...], Problem, Solved, tuple[str, ...]]:
+    """Fit without the slack-off weights of a string that nears buckling: they show the helix, not friction."""
+    everything, kept = weights, weights
+    for _ in range(3):
+        weights = _thin(kept)
+        problem = _problem(weights, model, prior)
+        solved = _solve(problem, weights, model, fixed)
+        cased, open_ = solved.fit.p[3:5]
+        down = [r for r in everything if r.kind == "slack_off"]
+        ratio = model.slack_off_ratio(np.array([r.bit_depth for r in down]), float(cased), float(open_))
+        pressed = {id(r) for r, size in zip(down, ratio, strict=True) if size > NEAR_BUCKLING}
+        before, kept = kept, tuple(r for r in everything if id(r) not in pressed)
+        if kept == before:
+            break
+    gone = len(everything) - len(kept)
+    if gone == 0:
+        return weights, problem, solved, ()
+    said = (
+        f"{gone} slack-off weights were left out of the friction: at them the string would be near or past its "
+        "buckling load."
+    )
+    return weights, problem, solved, (said,)
 
 
 @dataclass(frozen=True)
@@ -132,23 +162,31 @@ def _problem(weights: tuple[Reading, ...], model: OffBottom, prior: Prior) -> Pr
         above=above,
         sign=np.array([SIGNS[k] for k in kinds], dtype=float),
         sigma=np.hypot(own, np.maximum(SIGMA_FLOOR[0], SIGMA_FLOOR[1] * np.abs(value))),
+        place=_place(depth),
         surface=build_surface(model, kinds, depth),
         prior=prior,
     )
 
 
+def _place(depth: Floats) -> Floats:
+    """Where each reading lies among the depths, from -1 to 1; zero where they are all one."""
+    if len(depth) == 0 or np.ptp(depth) < STAND:
+        return np.zeros(len(depth))
+    return 2.0 * (depth - depth.min()) / np.ptp(depth) - 1.0
+
+
 def _solve(problem: Problem, weights: tuple[Reading, ...], model: OffBottom, fixed: bool) -> Solved:
     """Fit all; hold what the readings can't tell; fit the rest again."""
     depth = np.array([r.bit_depth for r in weights], dtype=float)
-    free = np.array([True, True, True, not fixed, not fixed])
+    free = np.array([True, True, True, not fixed, not fixed, True])
     start = problem.prior.centre
     first = fit(problem, start, free)
     cov = covariance(problem, first, depth, free)
     if fixed:
-        return Solved(first, cov, np.array([False, False, False, True, True]), ())
+        return Solved(first, cov, np.array([False, False, False, True, True, False]), ())
     if not weights:
         said = "No steady pick-up, slack-off or rotating weight was found: the friction factors are assumed."
-        return Solved(first, cov, np.array([False, False, False, True, True]), (said,))
+        return Solved(first, cov, np.array([False, False, False, True, True, False]), (said,))
     drags = problem.sign != 0.0
     open_ = np.asarray(model.open_length(depth), dtype=float) > 1.0
     verdict = identifiability.judge(cov, problem.prior, (bool(drags.any()), bool((drags & open_).any())))

@@ -17,14 +17,21 @@ DETERMINED = 0.5
 #: Two parameters whose errors are tied more closely than this hide behind each other.
 TIED = 0.8
 
-NAMES = ("block weight", "pipe above the rotary", "weight per length", "cased factor", "open factor")
+NAMES = (
+    "block weight",
+    "pipe above the rotary",
+    "weight per length",
+    "cased factor",
+    "open factor",
+    "drift of weight",
+)
 
 
 @dataclass(frozen=True)
 class Verdict:
     """What to hold at its assumed value, and why, in sentences.
 
-    `held` has shape (5,): True for factors the readings can't tell.
+    `held` has shape (6,): True for factors the readings can't tell.
     """
 
     held: NDArray[np.bool_]
@@ -39,8 +46,8 @@ def judge(cov: Floats, prior: Prior, bears: tuple[bool, bool]) -> Verdict:
 
     Parameters
     ----------
-    cov : ndarray, shape (5, 5)
-        Posterior covariance of (block, share, scale, cased, open).
+    cov : ndarray, shape (6, 6)
+        Posterior covariance of (block, share, scale, cased, open, drift).
     prior : Prior
     bears : tuple of bool
         Whether any reading bears on the cased, and on the open, factor at all.
@@ -49,13 +56,13 @@ def judge(cov: Floats, prior: Prior, bears: tuple[bool, bool]) -> Verdict:
     -------
     Verdict
     """
-    held = np.zeros(5, dtype=bool)
+    held = np.zeros(len(prior.sigma), dtype=bool)
     sentences: list[str] = []
     current = cov.copy()
     for _ in KINDS:
         ratio = np.sqrt(np.diag(current)) / prior.sigma
         ratio[held] = 0.0
-        worst = 3 + int(np.argmax(ratio[3:]))
+        worst = 3 + int(np.argmax(ratio[3:5]))
         if ratio[worst] <= DETERMINED:
             break
         sentences.append(_why(worst, cov, bears[worst - 3], prior))
@@ -70,12 +77,12 @@ def open_directions(cov: Floats, prior: Prior) -> list[tuple[float, Floats]]:
 
     Parameters
     ----------
-    cov : ndarray, shape (5, 5)
+    cov : ndarray, shape (6, 6)
     prior : Prior
 
     Returns
     -------
-    list of (float, ndarray of shape (5,))
+    list of (float, ndarray of shape (6,))
         Posterior over prior sigma along the direction, and the direction in prior sigmas.
     """
     scaled = cov / np.outer(prior.sigma, prior.sigma)

@@ -25,10 +25,10 @@ LET_GO = (4.0, 6.0)
 ENVELOPE = 0.35
 
 #: Where factors start at most; block, share and scale are not held by it.
-GENTLE = np.array([np.inf, np.inf, np.inf, 0.15, 0.15])
+GENTLE = np.array([np.inf, np.inf, np.inf, 0.15, 0.15, np.inf])
 
 #: A factor moves at most this far in one step.
-STRIDE = np.array([np.inf, np.inf, np.inf, 0.05, 0.05])
+STRIDE = np.array([np.inf, np.inf, np.inf, 0.05, 0.05, np.inf])
 
 #: A robust sigma is never taken smaller than this part of the reading's own.
 SIGMA_FLOOR = 1.0
@@ -39,29 +39,32 @@ class Problem:
     """Weight readings, ready to fit; arrays of shape (n,).
 
     `sign` is +1 where more friction lifts the reading (pick-up), -1 where it lowers it (slack-off),
-    0 where it does not matter. `sigma` is each reading's own uncertainty [N].
+    0 where it does not matter. `sigma` is each reading's own uncertainty [N]; `place` runs from -1 to 1 over
+    the readings' depths.
     """
 
     value: Floats
     above: Floats
     sign: Floats
     sigma: Floats
+    place: Floats
     surface: ResponseSurface
     prior: Prior
 
     def model(self, p: Floats) -> tuple[Floats, Floats]:
-        """Modelled readings [N], shape (n,), and their Jacobian, shape (n, 5)."""
+        """Modelled readings [N], shape (n,), and their Jacobian, shape (n, 6)."""
         weight, slope_cased, slope_open = self.surface.at(p[3], p[4])
-        scale = p[2]
+        scale = p[2] + p[5] * self.place
+        ones = np.ones_like(weight)
         jacobian = np.column_stack(
-            [np.ones_like(weight), self.above, weight, scale * slope_cased, scale * slope_open]
+            [ones, self.above, weight, scale * slope_cased, scale * slope_open, weight * self.place]
         )
         return p[0] + p[1] * self.above + scale * weight, jacobian
 
 
 @dataclass(frozen=True)
 class Fit:
-    """Parameters (block, share, scale, cased, open), robust weights and the inflation of sigma."""
+    """Parameters (block, share, scale, cased, open, drift), robust weights and the inflation of sigma."""
 
     p: Floats
     weights: Floats
@@ -77,9 +80,9 @@ def fit(problem: Problem, start: Floats, active: Bools) -> Fit:
     ----------
     problem : Problem
         Readings in time order.
-    start : ndarray, shape (5,)
+    start : ndarray, shape (6,)
         Where to begin; inactive parameters stay there.
-    active : ndarray of bool, shape (5,)
+    active : ndarray of bool, shape (6,)
 
     Returns
     -------

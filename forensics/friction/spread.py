@@ -26,7 +26,7 @@ DRAWS = 64
 
 
 def covariance(problem: Problem, fit: Fit, bit_depth: Floats, free: NDArray[np.bool_]) -> Floats:
-    """Posterior covariance of the five parameters.
+    """Posterior covariance of the parameters.
 
     The Gauss-Newton posterior with sigma inflated to the residuals, each parameter widened where the
     scores summed by stand (readings of one stand share their error) say that is too narrow. For more
@@ -38,12 +38,12 @@ def covariance(problem: Problem, fit: Fit, bit_depth: Floats, free: NDArray[np.b
     fit : Fit
     bit_depth : ndarray, shape (n,)
         Of the readings [m].
-    free : ndarray of bool, shape (5,)
+    free : ndarray of bool, shape (6,)
         Parameters that are uncertain at all.
 
     Returns
     -------
-    ndarray, shape (5, 5)
+    ndarray, shape (6, 6)
         In SI units; zero rows where not free.
 
     References
@@ -67,7 +67,7 @@ def covariance(problem: Problem, fit: Fit, bit_depth: Floats, free: NDArray[np.b
         widen = np.maximum(1.0, np.sqrt(np.diag(sandwich) / np.diag(inverse)))
     small = inverse * np.outer(widen, widen)
     moved = inverse @ a.T @ (fit.weights[:, None] * _model_errors(problem, fit) / sigma[:, None])
-    full = np.zeros((5, 5))
+    full = np.zeros_like(np.outer(unit, unit))
     full[np.ix_(free, free)] = small + moved @ moved.T
     return full * np.outer(unit, unit)
 
@@ -106,8 +106,8 @@ def draw(p: Floats, cov: Floats, levers: tuple[float, float]) -> Floats:
 
     Parameters
     ----------
-    p : ndarray, shape (5,)
-    cov : ndarray, shape (5, 5)
+    p : ndarray, shape (6,)
+    cov : ndarray, shape (6, 6)
     levers : tuple of float
         Usual weight above the rotary and usual string weight [N].
 

@@ -30,6 +30,9 @@ class OffBottom(Protocol):
     def string_weight(self, kind: str, bit_depth: Floats, mu_cased: float, mu_open: float) -> Floats:
         """Hookload of the string alone at the rotary [N]."""
 
+    def slack_off_ratio(self, bit_depth: Floats, mu_cased: float, mu_open: float) -> Floats:
+        """Largest load ratio while slacking off, bit free [-]."""
+
     def torque(self, bit_depth: Floats, mu: float) -> Floats:
         """Torque to turn the string off bottom [N.m]."""
 

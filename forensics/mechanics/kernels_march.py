@@ -42,14 +42,12 @@ class Pipe(NamedTuple):
 class Ask(NamedTuple):
     """One string to march up: bit depth [m], +1 going down or -1 up, tension at the bit [N].
 
-    `helical` is the multiple of the Dawson-Paslay load above which an element carries the contact of a
-    helix (infinite: never); `scale` multiplies all weights, where the mud has changed.
+    `scale` multiplies all weights, where the mud has changed.
     """
 
     bit: float
     sigma: float
     tension_bit: float
-    helical: float
     scale: float
 
 
@@ -68,8 +66,8 @@ def top_element(x: Array, bit: float) -> int:
 
 @njit(cache=True, error_model="numpy")
 def march_up(hole: Hole, pipe: Pipe, mu: Array, ask: Ask, out: Array) -> float:
-    """Tension at the rotary from the tension at the bit; fills `out` with tension at the nodes [N]."""
-    bit, helical = ask.bit, ask.helical
+    """Tension at the rotary from that at the bit, no helix; fills `out` with tension at the nodes [N]."""
+    bit = ask.bit
     top = top_element(pipe.x, bit)
     first = int(bit * hole.inv_step + 0.5)
     tension = ask.tension_bit
@@ -81,10 +79,6 @@ def march_up(hole: Hole, pipe: Pipe, mu: Array, ask: Ask, out: Array) -> float:
         weight = pipe.weight[j] * ask.scale
         middle = tension + 0.5 * length * slope
         force = contact(middle, weight, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i])
-        if middle < 0.0 and helical < 1e9:
-            gap = max(0.5 * (hole.diameter[i] - pipe.clearance_od[j]), 2e-3)
-            if middle * middle > helical * helical * 4.0 * pipe.ei[j] * force / gap:
-                force += gap * middle * middle / (4.0 * pipe.ei[j])
         slope = weight * hole.cos_i[i] - ask.sigma * mu[i] * force
         tension += slope * length
         out[j + 1] = tension
@@ -111,21 +105,6 @@ def torque_up(
         tension += slope * length
         torque += mu[i] * force * pipe.radius[j] * length
     return torque
-
-
-@njit(cache=True)
-def march_up_many(
-    hole: Hole, pipe: Pipe, mu: Array, bits: Array, scale: Array, motion: tuple[float, float]
-) -> Array:
-    """Weigh the string at the rotary for many bit depths, bit free [N].
-
-    `motion` holds sigma and the helical multiple.
-    """
-    result = np.empty(len(bits))
-    work = np.empty(len(pipe.x))
-    for k in range(len(bits)):
-        result[k] = march_up(hole, pipe, mu, Ask(bits[k], motion[0], 0.0, motion[1], scale[k]), work)
-    return result
 
 
 @njit(cache=True)

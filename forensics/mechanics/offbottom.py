@@ -5,8 +5,12 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-from forensics.mechanics import kernels_march as kernels
+from forensics.case import CriteriaSettings
 from forensics.mechanics.grid import HoleGrid, PipeGrid, hole_grid, pipe_grid
+from forensics.mechanics.kernels_judge import Setting
+from forensics.mechanics.kernels_march import torque_up_many
+from forensics.mechanics.kernels_offbottom import press_many, weigh_many
+from forensics.mechanics.limits import tabulate
 from forensics.mechanics.softstring import hole_arrays, pipe_arrays
 from forensics.well.model import Well
 
@@ -24,10 +28,8 @@ class OffBottomModel:
         Trajectory, hole, string and fluid.
     depth : float
         Deepest bit depth that will be asked for [m].
-    clearance : str
-        "tool_joint" or "body": the diameter clearance is taken from.
-    helical_multiple : float
-        Multiple of the Dawson-Paslay load from which sliding pipe carries helical contact.
+    criteria : CriteriaSettings
+        From which loads sliding pipe carries the contact of a helix, and at which clearance.
     block_zero : float
         Block height at which no pipe stands above the rotary [m]; what hangs there always is part of the
         block weight.
@@ -37,17 +39,21 @@ class OffBottomModel:
         self,
         well: Well,
         depth: float,
-        clearance: str = "tool_joint",
-        helical_multiple: float = np.sqrt(2.0),
+        criteria: CriteriaSettings | None = None,
         block_zero: float = 0.0,
     ) -> None:
         self.well = well
         self.block_zero = block_zero
         self.hole: HoleGrid = hole_grid(well, depth)
-        self.pipe: PipeGrid = pipe_grid(well, depth, clearance)
-        self.helical_multiple = helical_multiple
+        settings = CriteriaSettings() if criteria is None else criteria
+        self.pipe: PipeGrid = pipe_grid(well, depth, settings.clearance)
         self.hole_arrays = hole_arrays(self.hole)
         self.pipe_arrays = pipe_arrays(self.pipe)
+        self.criteria = tabulate(well, self.hole, self.pipe, settings)
+
+    def setting(self, cased: float, open_hole: float) -> Setting:
+        """Put the well, the string and the criteria at the given friction as the kernels take them."""
+        return Setting(self.hole_arrays, self.pipe_arrays, self.criteria, self.friction(cased, open_hole))
 
     def friction(self, cased: float, open_hole: float) -> Floats:
         """Friction factor at each depth of the hole grid, shape (n,)."""
@@ -71,17 +77,19 @@ class OffBottomModel:
         """
         bits = np.atleast_1d(np.asarray(bit_depth, dtype=float))
         scales = np.broadcast_to(np.asarray(scale, dtype=float), bits.shape).copy()
-        mu = self.friction(cased, open_hole)
-        return kernels.march_up_many(
-            self.hole_arrays, self.pipe_arrays, mu, bits, scales, (SIGMA[kind], float(self.helical_multiple))
-        )
+        return weigh_many(self.setting(cased, open_hole), bits, scales, SIGMA[kind])
+
+    def slack_off_ratio(self, bit_depth: ArrayLike, cased: float, open_hole: float) -> Floats:
+        """Largest load ratio anywhere while slacking off with the bit free, shape (k,)."""
+        bits = np.atleast_1d(np.asarray(bit_depth, dtype=float))
+        return press_many(self.setting(cased, open_hole), bits)
 
     def torque(self, bit_depth: ArrayLike, factor: float, scale: ArrayLike = 1.0) -> Floats:
         """Torque that turns the string off bottom at rotational friction `factor` [N.m], shape (k,)."""
         bits = np.atleast_1d(np.asarray(bit_depth, dtype=float))
         scales = np.broadcast_to(np.asarray(scale, dtype=float), bits.shape).copy()
         mu = np.full(len(self.hole.cos_i), factor)
-        return kernels.torque_up_many(self.hole_arrays, self.pipe_arrays, mu, bits, scales)
+        return torque_up_many(self.hole_arrays, self.pipe_arrays, mu, bits, scales)
 
     def open_length(self, bit_depth: ArrayLike) -> Floats:
         """Length of string in open hole [m], shape (k,)."""

@@ -54,7 +54,7 @@ def tension_from_bit(
     """
     out = np.empty(len(pipe.x))
     mu = np.ascontiguousarray(friction, dtype=float)
-    ask = Ask(float(bit_depth), float(sigma), float(tension_bit), np.inf, 1.0)
+    ask = Ask(float(bit_depth), float(sigma), float(tension_bit), 1.0)
     march_up(hole_arrays(hole), pipe_arrays(pipe), mu, ask, out)
     nodes = int(np.searchsorted(pipe.x, bit_depth)) + 1
     return np.maximum(bit_depth - pipe.x[:nodes], 0.0), out[:nodes]

@@ -6,7 +6,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics.loads import DrawHistory
-from forensics.replay.room import fresh, go, restart, setting, take
+from forensics.replay.room import fresh, go, restart, take
 from forensics.replay.run import Replay
 
 
@@ -35,7 +35,7 @@ def replay_draws(run: Replay, rows: NDArray[np.bool_], count: int = 7) -> DrawHi
     for start, stop in blocks:
         covered[start:stop] = True
     for k, (cased, open_hole, block) in enumerate(chosen):
-        at = setting(run.model, cased, open_hole)
+        at = run.model.setting(cased, open_hole)
         shift = block - run.calibration.block_weight.value
         for start, stop in blocks:
             part = take(run.prepared.samples, slice(start, stop))

@@ -8,7 +8,8 @@ from numpy.typing import NDArray
 from forensics.friction.result import Calibration
 from forensics.loads import Fan
 from forensics.logs.table import TimeLog
-from forensics.replay.model import LoadModel, factors
+from forensics.mechanics.offbottom import OffBottomModel
+from forensics.replay.model import factors
 from forensics.replay.samples import Prepared
 from forensics.rig.view import Activity, RigView
 
@@ -17,7 +18,7 @@ Floats = NDArray[np.float64]
 FAN_POINTS = 160
 
 
-def fan(calibration: Calibration, model: LoadModel, depths: tuple[float, float]) -> Fan:
+def fan(calibration: Calibration, model: OffBottomModel, depths: tuple[float, float]) -> Fan:
     """Hookload against bit depth for pick-up, rotating and slack-off, with the band of the friction draws.
 
     Block weight and bias are in; pipe above the rotary is not.
@@ -33,14 +34,14 @@ def fan(calibration: Calibration, model: LoadModel, depths: tuple[float, float])
     )
 
 
-def _line(kind: str, depth: Floats, calibration: Calibration, model: LoadModel) -> Floats:
+def _line(kind: str, depth: Floats, calibration: Calibration, model: OffBottomModel) -> Floats:
     cased, open_hole = factors(calibration)
     base = calibration.block_weight.value + calibration.hookload_bias.value
     scale = calibration.weight_scale.value
-    return base + model.offbottom.string_weight(kind, depth, cased, open_hole, scale)
+    return base + model.string_weight(kind, depth, cased, open_hole, scale)
 
 
-def _band(kind: str, depth: Floats, calibration: Calibration, model: LoadModel) -> tuple[Floats, Floats]:
+def _band(kind: str, depth: Floats, calibration: Calibration, model: OffBottomModel) -> tuple[Floats, Floats]:
     """Fifth and ninety-fifth percentile of the line over the calibration's draws."""
     draws = calibration.draws[:32]
     if len(draws) == 0:
@@ -49,7 +50,7 @@ def _band(kind: str, depth: Floats, calibration: Calibration, model: LoadModel) 
     bias = calibration.hookload_bias.value
     scale = calibration.weight_scale.value
     lines = [
-        block + bias + model.offbottom.string_weight(kind, depth, cased, open_hole, scale)
+        block + bias + model.string_weight(kind, depth, cased, open_hole, scale)
         for cased, open_hole, block in draws
     ]
     low, high = np.percentile(lines, [5.0, 95.0], axis=0)
@@ -57,7 +58,11 @@ def _band(kind: str, depth: Floats, calibration: Calibration, model: LoadModel) 
 
 
 def drag_lines(
-    prepared: Prepared, rig: RigView, calibration: Calibration, model: LoadModel, moving: NDArray[np.int8]
+    prepared: Prepared,
+    rig: RigView,
+    calibration: Calibration,
+    model: OffBottomModel,
+    moving: NDArray[np.int8],
 ) -> tuple[Floats, Floats]:
     """Give the hookload expected off bottom and measured less expected [N]; NaN where no line applies.
 
@@ -82,7 +87,7 @@ def drag_lines(
     cased, open_hole = factors(calibration)
     for kind, rows in kinds.items():
         if rows.any():
-            line = model.offbottom.string_weight(kind, grid, cased, open_hole)
+            line = model.string_weight(kind, grid, cased, open_hole)
             weight = np.interp(samples.bit[rows], grid, line) * samples.scale[rows]
             expected[rows] = weight + prepared.hanging[rows]
     return expected, prepared.hookload - expected
@@ -93,7 +98,7 @@ def torque_lines(
     prepared: Prepared,
     rig: RigView,
     calibration: Calibration,
-    model: LoadModel,
+    model: OffBottomModel,
     bit_load: Floats,
 ) -> Floats:
     """Surface torque measured less expected [N.m], while turning; NaN elsewhere.
@@ -107,7 +112,7 @@ def torque_lines(
         return residual
     samples = prepared.samples
     grid = np.linspace(np.min(samples.bit), np.max(samples.bit) + 1.0, 2 * FAN_POINTS)
-    line = model.offbottom.torque(grid, calibration.rotational.value)
+    line = model.torque(grid, calibration.rotational.value)
     loss = calibration.torque_loss.value if calibration.torque_loss else 0.0
     expected = np.interp(samples.bit, grid, line) * samples.scale + loss
     beyond = torque - expected

@@ -13,7 +13,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics.friction.result import Calibration, Reading
-from forensics.replay.model import LoadModel, factors
+from forensics.mechanics.offbottom import OffBottomModel
+from forensics.replay.model import factors
 
 Floats = NDArray[np.float64]
 
@@ -42,7 +43,7 @@ class LocalMatch:
     up: Floats
 
 
-def match_locally(time: Floats, calibration: Calibration, model: LoadModel) -> LocalMatch:
+def match_locally(time: Floats, calibration: Calibration, model: OffBottomModel) -> LocalMatch:
     """Interpolate what the readings say beyond the model to the log's rows.
 
     Parameters
@@ -51,7 +52,7 @@ def match_locally(time: Floats, calibration: Calibration, model: LoadModel) -> L
         [s since 1970 UTC]
     calibration : Calibration
         With its readings.
-    model : LoadModel
+    model : OffBottomModel
         The well as the kernels take it.
     """
     weights = {kind: [r for r in calibration.readings if r.kind == kind] for kind in SLIDING}
@@ -69,27 +70,27 @@ def match_locally(time: Floats, calibration: Calibration, model: LoadModel) -> L
     return LocalMatch(_carry(time, shifts, 0.0), down, up)
 
 
-def string_part(readings: list[Reading], calibration: Calibration, model: LoadModel) -> Floats:
+def string_part(readings: list[Reading], calibration: Calibration, model: OffBottomModel) -> Floats:
     """Hookload of the readings with block, bias and pipe above the rotary taken off [N], shape (k,)."""
     block = np.array([r.block for r in readings])
     value = np.array([r.value for r in readings])
-    above = model.offbottom.above_rotary(block) * calibration.pipe_above_rotary.value
+    above = model.above_rotary(block) * calibration.pipe_above_rotary.value
     return value - calibration.block_weight.value - calibration.hookload_bias.value - above
 
 
-def _shifts(readings: list[Reading], calibration: Calibration, model: LoadModel) -> Series:
+def _shifts(readings: list[Reading], calibration: Calibration, model: OffBottomModel) -> Series:
     """Find the weight shifts of the rotating readings."""
     if not readings:
         return Series(np.empty(0), np.empty(0))
     depth = np.array([r.bit_depth for r in readings])
-    weight = model.offbottom.string_weight("rotating", depth, 0.0, 0.0, calibration.weight_scale.value)
+    weight = model.string_weight("rotating", depth, 0.0, 0.0, calibration.weight_scale.value)
     shift = string_part(readings, calibration, model) - weight
     limit = MAX_SHIFT * np.abs(weight)
     return Series(np.array([r.end for r in readings]), np.clip(shift, -limit, limit))
 
 
 def _multiples(
-    readings: list[Reading], shifts: Series, kind: str, calibration: Calibration, model: LoadModel
+    readings: list[Reading], shifts: Series, kind: str, calibration: Calibration, model: OffBottomModel
 ) -> Series:
     """Find the friction multiple of each sliding reading whose drag is large enough to tell."""
     if not readings:
@@ -98,8 +99,8 @@ def _multiples(
     depth = np.array([r.bit_depth for r in readings])
     at = np.array([r.end for r in readings])
     scale = calibration.weight_scale.value
-    still = model.offbottom.string_weight("rotating", depth, 0.0, 0.0, scale)
-    expected = model.offbottom.string_weight(kind, depth, cased, open_hole, scale) - still
+    still = model.string_weight("rotating", depth, 0.0, 0.0, scale)
+    expected = model.string_weight(kind, depth, cased, open_hole, scale) - still
     found = string_part(readings, calibration, model) - _carry(at, shifts, 0.0) - still
     told = np.abs(expected) > LEAST_DRAG
     return Series(at[told], np.clip(found[told] / expected[told], *FACTOR_RANGE))

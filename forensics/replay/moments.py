@@ -11,14 +11,14 @@ from forensics.mechanics.kernels_judge import Setting, thresholds
 from forensics.mechanics.kernels_march import contact
 from forensics.mechanics.kernels_memory import Memory
 from forensics.replay.model import factors
-from forensics.replay.room import fresh, go, restart, setting, take
+from forensics.replay.room import fresh, go, restart, take
 from forensics.replay.run import Replay
 
 
 def profiles(run: Replay, rows: Sequence[int]) -> tuple[Profile, ...]:
     """Axial load along the hole at the given rows of the log, in the order given."""
     cased, open_hole = factors(run.calibration)
-    at = setting(run.model, cased, open_hole)
+    at = run.model.setting(cased, open_hole)
     taken: dict[int, Profile] = {}
     carried = fresh(run.model)
     done = 0

@@ -8,18 +8,11 @@ from numpy.typing import NDArray
 from forensics.mechanics.kernels_judge import Setting
 from forensics.mechanics.kernels_memory import Memory
 from forensics.mechanics.kernels_replay import TURN, Found, Rules, Run, Samples, replay_rows
-from forensics.replay.model import LoadModel
+from forensics.mechanics.offbottom import OffBottomModel
 
 Floats = NDArray[np.float64]
 
 LEAD = 30  # rows of turning replayed before the memory counts as right
-
-
-def setting(model: LoadModel, cased: float, open_hole: float) -> Setting:
-    """Put the well, the string and the criteria at the given friction as the kernels take them."""
-    offbottom = model.offbottom
-    mu = model.friction(cased, open_hole)
-    return Setting(offbottom.hole_arrays, offbottom.pipe_arrays, model.criteria, mu)
 
 
 def go(at: Setting, samples: Samples, rules: Rules, carried: tuple[Memory, Floats]) -> Found:
@@ -29,9 +22,9 @@ def go(at: Setting, samples: Samples, rules: Rules, carried: tuple[Memory, Float
     return found
 
 
-def fresh(model: LoadModel) -> tuple[Memory, Floats]:
+def fresh(model: OffBottomModel) -> tuple[Memory, Floats]:
     """Start with a string that remembers nothing."""
-    nodes = len(model.offbottom.pipe.x)
+    nodes = len(model.pipe.x)
     arrays = [np.zeros(nodes + 1) for _ in range(4)]
     return Memory(*arrays, np.zeros(nodes, dtype=np.int8)), np.array([0.0, 0.0, 0.0, 0.0, -1.0, -1.0])
 

@@ -12,11 +12,12 @@ from forensics.friction.result import Calibration
 from forensics.loads import LoadHistory, RateLaw, RatioMap
 from forensics.logs.table import TimeLog
 from forensics.mechanics.kernels_replay import TURN, Rules, Run, replay_rows
+from forensics.mechanics.offbottom import OffBottomModel
 from forensics.replay.lines import drag_lines, torque_lines
 from forensics.replay.local import match_locally
-from forensics.replay.model import LoadModel, build_model, factors
+from forensics.replay.model import build_model, factors
 from forensics.replay.rate import learn_rate
-from forensics.replay.room import fresh, room, setting
+from forensics.replay.room import fresh, room
 from forensics.replay.samples import Prepared, prepare
 from forensics.replay.slide import straight_drag
 from forensics.rig.view import RigView
@@ -37,7 +38,7 @@ class Replay:
     well: Well
     rig: RigView
     calibration: Calibration
-    model: LoadModel
+    model: OffBottomModel
     prepared: Prepared
     rules: Rules
     rate_law: RateLaw
@@ -55,7 +56,7 @@ def ready(
     rig: RigView,
     calibration: Calibration,
     case: Case,
-    model: LoadModel | None = None,
+    model: OffBottomModel | None = None,
 ) -> Replay:
     """Make a run ready for replay: tables, samples, local match, rate law."""
     if model is None:
@@ -89,7 +90,7 @@ def replay(run: Replay) -> LoadHistory:
     found = room(len(run.log), MAP_TIMES, MAP_DEPTHS)
     found.chart_row[:] = np.clip(np.searchsorted(times, run.log.time, side="right") - 1, 0, MAP_TIMES - 1)
     kernel = Run(samples, run.rules, found, *fresh(run.model), depths[1])
-    visits = replay_rows(setting(run.model, cased, open_hole), kernel)
+    visits = replay_rows(run.model.setting(cased, open_hole), kernel)
     expected, drag = drag_lines(run.prepared, run.rig, run.calibration, run.model, found.full)
     lost = run.rig.wob_surface - found.bit_load
     return LoadHistory(
@@ -109,9 +110,9 @@ def replay(run: Replay) -> LoadHistory:
     )
 
 
-def _turning_load(prepared: Prepared, model: LoadModel) -> Floats:
+def _turning_load(prepared: Prepared, model: OffBottomModel) -> Floats:
     """Bit load while turning on bottom: rotating weight less hookload [N]."""
     samples = prepared.samples
     grid = np.linspace(np.min(samples.bit), np.max(samples.bit) + 1.0, 400)
-    weight = np.interp(samples.bit, grid, model.offbottom.string_weight("rotating", grid, 0.0, 0.0))
+    weight = np.interp(samples.bit, grid, model.string_weight("rotating", grid, 0.0, 0.0))
     return np.where(samples.mode == TURN, weight * samples.scale - samples.top, np.nan)

@@ -12,8 +12,8 @@ from scipy import ndimage
 from forensics.friction.result import Calibration
 from forensics.logs.table import TimeLog
 from forensics.mechanics.kernels_replay import HOLD, SLIDE, TURN, Samples
+from forensics.mechanics.offbottom import OffBottomModel
 from forensics.replay.local import LocalMatch
-from forensics.replay.model import LoadModel
 from forensics.rig.view import Activity, RigView
 from forensics.well.model import Well
 
@@ -35,12 +35,12 @@ class Prepared:
 
 
 def prepare(
-    log: TimeLog, well: Well, rig: RigView, calibration: Calibration, model: LoadModel, local: LocalMatch
+    log: TimeLog, well: Well, rig: RigView, calibration: Calibration, model: OffBottomModel, local: LocalMatch
 ) -> Prepared:
     """Make the replay's samples from the log and the rig view, one a row."""
     mode = _mode(log, rig)
     hookload = _smooth(rig.hookload, mode != HOLD, log.interval)
-    above = model.offbottom.above_rotary(rig.block) * calibration.pipe_above_rotary.value
+    above = model.above_rotary(rig.block) * calibration.pipe_above_rotary.value
     hanging = calibration.block_weight.value + calibration.hookload_bias.value + above
     bit = np.maximum(_filled(log.values["bit_depth"]), 1.0)
     height = _filled(rig.block) if np.isfinite(rig.block).any() else -bit
@@ -117,14 +117,14 @@ def _filled(values: Floats) -> Floats:
     return values[at]
 
 
-def _share(log: TimeLog, height: Floats, model: LoadModel) -> Floats:
+def _share(log: TimeLog, height: Floats, model: OffBottomModel) -> Floats:
     """Axial share of friction while turning, |v| / sqrt(v² + (ωR)²), signed + going down."""
     rpm = log.get("rpm")
     if rpm is None:
         return np.zeros(len(log))
     window = max(3, round(15.0 / log.interval))
     speed = -ndimage.uniform_filter1d(np.gradient(height, log.time), window)
-    radius = float(np.median(model.offbottom.pipe.radius))
+    radius = float(np.median(model.pipe.radius))
     rim = np.maximum(np.nan_to_num(rpm), 5.0) * 2.0 * np.pi / 60.0 * radius
     return speed / np.hypot(speed, rim)
 

@@ -8,7 +8,7 @@ from numpy.typing import NDArray
 
 from forensics.mechanics.kernels_march import Array, Ask, Hole, Pipe, march_up
 from forensics.mechanics.kernels_replay import SLIDE, Found
-from forensics.replay.model import LoadModel
+from forensics.mechanics.offbottom import OffBottomModel
 from forensics.replay.samples import Prepared
 
 Floats = NDArray[np.float64]
@@ -21,12 +21,12 @@ def _top_many(hole: Hole, pipe: Pipe, mu: Array, rows: tuple[Array, Array, Array
     result = np.empty(len(bits))
     work = np.empty(len(pipe.x))
     for k in range(len(bits)):
-        result[k] = march_up(hole, pipe, mu * factor[k], Ask(bits[k], 1.0, -loads[k], np.inf, scale[k]), work)
+        result[k] = march_up(hole, pipe, mu * factor[k], Ask(bits[k], 1.0, -loads[k], scale[k]), work)
     return result
 
 
 def straight_drag(
-    model: LoadModel, prepared: Prepared, factors: tuple[float, float], found: Found, lost: Floats
+    model: OffBottomModel, prepared: Prepared, factors: tuple[float, float], found: Found, lost: Floats
 ) -> Floats:
     """Ordinary sliding drag between surface and bit at each row, helical contact left out [N].
 
@@ -37,7 +37,7 @@ def straight_drag(
     rows = np.flatnonzero((found.state == 2) & (samples.mode == SLIDE) & np.isfinite(lost))
     if len(rows) == 0:
         return ordinary
-    hole, pipe = model.offbottom.hole_arrays, model.offbottom.pipe_arrays
+    hole, pipe = model.hole_arrays, model.pipe_arrays
     chosen = (samples.bit[rows], found.bit_load[rows], samples.down[rows], samples.scale[rows])
     sliding = _top_many(hole, pipe, model.friction(*factors), chosen)
     still = _top_many(hole, pipe, np.zeros(len(hole.cos_i)), chosen)

@@ -24,7 +24,7 @@ class PlainString:
 
     w: float = 260.0
     vary: float = 0.0
-    step: float = 30.0
+    step: float = 60.0
 
     def string_weight(self, kind, bit_depth, mu_cased, mu_open):
         """March from the bit up, every reading at once [N]."""
@@ -49,9 +49,18 @@ class PlainString:
         side = np.interp(bit, [0.0, KICK_OFF, BUILT, 9000.0], [0.0, 0.0, 4.0e5, 4.0e5 + 6900.0 * self.w])
         return mu * 0.08 * side
 
+    def slack_off_ratio(self, bit_depth, mu_cased, mu_open):
+        """Load ratio: nothing nears buckling here."""
+        return np.zeros(len(bit_depth))
+
     def open_length(self, bit_depth):
         """Pipe below the shoe [m]."""
         return np.maximum(np.asarray(bit_depth) - SHOE, 0.0)
+
+    def slack_off_ratio(self, bit_depth, cased, open_):
+        """Nothing buckles here [-]."""
+        del cased, open_
+        return np.zeros(len(np.atleast_1d(bit_depth)))
 
     def above_rotary(self, block):
         """Pipe in the derrick [N]."""
@@ -154,6 +163,7 @@ def test_slant_well_against_closed_form():
             return w * (bit_depth * np.cos(angle) + sign * felt * np.sin(angle))
 
         open_length, above_rotary, torque = PlainString().open_length, PlainString().above_rotary, None
+        slack_off_ratio = PlainString().slack_off_ratio
 
     found = calibrate(
         make_readings(Slant(), RUN, TRUTH, noise=0.0), make_well(), make_case(), Slant(), make_rig()
@@ -312,6 +322,7 @@ def test_cost_stays_small_for_many_readings(plain):
         torque=plain.torque,
         open_length=plain.open_length,
         above_rotary=plain.above_rotary,
+        slack_off_ratio=plain.slack_off_ratio,
     )
     readings = make_readings(plain, np.linspace(1000.0, 4500.0, 400), TRUTH)
     check(calibrate(readings, make_well(), make_case(), model, make_rig()))

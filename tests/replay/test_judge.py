@@ -9,7 +9,6 @@ import pytest
 from forensics.mechanics.kernels_judge import latch, next_state, thresholds
 from forensics.mechanics.threshold import helical_load, sinusoidal_load
 from forensics.replay.model import build_model
-from forensics.replay.room import setting
 from tests.replay.test_memory import case_for
 from tests.wells import build_well, one_pipe_well
 
@@ -18,7 +17,7 @@ from tests.wells import build_well, one_pipe_well
 @pytest.mark.parametrize("scale", [1.0, 0.97])
 def test_straight_hole_gives_the_published_loads(inclination, scale):
     angle = math.radians(inclination)
-    at = setting(build_model(one_pipe_well(angle, 2000.0), case_for(), 2000.0), 0.2, 0.2)
+    at = build_model(one_pipe_well(angle, 2000.0), case_for(), 2000.0).setting(0.2, 0.2)
     weight = at.pipe.weight[5] * scale
     ei, gap, run = at.pipe.ei[5], 0.5 * (0.2159 - 0.168), at.criteria.stiff_run[5]
     local, low, high = thresholds(at, 5, 2000, -50e3, scale)
@@ -32,7 +31,7 @@ def test_straight_hole_gives_the_published_loads(inclination, scale):
 
 
 def test_a_support_is_not_judged():
-    at = setting(build_model(build_well(), case_for(), 2000.0), 0.2, 0.2)
+    at = build_model(build_well(), case_for(), 2000.0).setting(0.2, 0.2)
     assert thresholds(at, 0, 3900, -500e3, 1.0) == (math.inf,) * 3
 
 

@@ -16,7 +16,7 @@ import pytest
 from forensics.case import Case, FluidSettings, LogSettings
 from forensics.mechanics.kernels_replay import HOLD, REACH, SLIDE, TURN, Rules, Samples
 from forensics.replay.model import build_model
-from forensics.replay.room import fresh, go, setting
+from forensics.replay.room import fresh, go
 from forensics.well.string import Component
 from tests.wells import build_well, one_pipe_well
 
@@ -36,7 +36,7 @@ def bar():
     """Lay out a horizontal bar 3 km long, and what the kernels need."""
     well = one_pipe_well(math.pi / 2, 3000.0, STIFF)
     model = build_model(well, case_for(), 3000.0)
-    at = setting(model, MU, MU)
+    at = model.setting(MU, MU)
     weight = float(at.pipe.weight[0])
     return at, model, weight
 
@@ -136,8 +136,8 @@ def test_once_through_the_string_follows_the_hookload_both_ways():
     """Drilling off with the block still: the hookload rises and the bit load falls with it."""
     well = build_well()
     model = build_model(well, case_for(), 2400.0)
-    at = setting(model, 0.2, 0.25)
-    slack = float(model.offbottom.string_weight("slack_off", 2400.0, 0.2, 0.25)[0])
+    at = model.setting(0.2, 0.25)
+    slack = float(model.string_weight("slack_off", 2400.0, 0.2, 0.25)[0])
     memory, now = fresh(model)
     feed = np.linspace(slack, slack - 60e3, 30)
     top = np.concatenate([[slack + 5e3], feed, feed[::-1]])
@@ -151,8 +151,8 @@ def test_once_through_the_string_follows_the_hookload_both_ways():
 def test_a_partial_pick_up_keeps_what_is_locked_in_below():
     well = build_well()
     model = build_model(well, case_for(), 3400.0)
-    at = setting(model, 0.2, 0.25)
-    slack = float(model.offbottom.string_weight("slack_off", 3400.0, 0.2, 0.25)[0])
+    at = model.setting(0.2, 0.25)
+    slack = float(model.string_weight("slack_off", 3400.0, 0.2, 0.25)[0])
     memory, now = fresh(model)
     down = np.linspace(slack + 60e3, slack - 80e3, 60)
     up = np.linspace(slack - 80e3, slack - 20e3, 20)

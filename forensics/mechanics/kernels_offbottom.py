@@ -1,0 +1,53 @@
+"""Compiled weights off bottom: the march from a free bit, helices where the string is pressed into them."""
+
+from __future__ import annotations
+
+import numpy as np
+from numba import njit
+
+from forensics.mechanics.kernels_judge import Setting, latch, thresholds
+from forensics.mechanics.kernels_march import Array, Ask, contact, top_element
+
+
+@njit(cache=True, error_model="numpy")
+def weigh(setting: Setting, ask: Ask, judged: bool) -> tuple[float, float]:
+    """Tension at the rotary of a string that slides off bottom, helical contact where it has latched [N].
+
+    Beside it, where `judged`, the largest load ratio anywhere (else 0).
+    """
+    hole, pipe, criteria = setting.hole, setting.pipe, setting.criteria
+    first = int(ask.bit * hole.inv_step + 0.5)
+    tension = ask.tension_bit
+    slope = 0.0
+    ratio = 0.0
+    for j in range(top_element(pipe.x, ask.bit) + 1):
+        length = min(pipe.x[j + 1], ask.bit) - pipe.x[j]
+        i = max(first - ((pipe.node[j] + pipe.node[j + 1]) >> 1), 0)
+        weight = pipe.weight[j] * ask.scale
+        middle = tension + 0.5 * length * slope
+        force = contact(middle, weight, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i])
+        if middle < 0.0 and latch(setting, j, i, middle, ask.scale):
+            force += (middle / criteria.root[criteria.kind[j], i]) ** 2
+        if judged and middle < 0.0:
+            ratio = max(ratio, -middle / thresholds(setting, j, i, middle, ask.scale)[1])
+        slope = weight * hole.cos_i[i] - ask.sigma * setting.mu[i] * force
+        tension += slope * length
+    return tension, ratio
+
+
+@njit(cache=True)
+def weigh_many(setting: Setting, bits: Array, scale: Array, sigma: float) -> Array:
+    """Weigh the string at the rotary for many bit depths, bit free [N]."""
+    result = np.empty(len(bits))
+    for k in range(len(bits)):
+        result[k] = weigh(setting, Ask(bits[k], sigma, 0.0, scale[k]), False)[0]
+    return result
+
+
+@njit(cache=True)
+def press_many(setting: Setting, bits: Array) -> Array:
+    """Largest load ratio of strings that slide down off bottom, for many bit depths."""
+    result = np.empty(len(bits))
+    for k in range(len(bits)):
+        result[k] = weigh(setting, Ask(bits[k], 1.0, 0.0, 1.0), True)[1]
+    return result
