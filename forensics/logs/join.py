@@ -18,6 +18,8 @@ LATE_ROWS = 20
 LATE_INTERVALS = 20.0
 # Above this share of stamps told twice with different values, two recordings clash.
 CLASH = 0.5
+# Values this near, relative to the channel's largest, are one reading rounded in two unit systems.
+SAME = 3e-3
 
 
 @dataclass(frozen=True)
@@ -125,7 +127,7 @@ def _share_different(values: Mapping[str, Floats], one: NDArray[np.int64], two: 
             known = np.isfinite(a) & np.isfinite(b)
             if known.any():
                 scale = np.abs(a[known]).max() + 1e-12
-                shares.append(float((np.abs(a[known] - b[known]) > 1e-6 * scale).mean()))
+                shares.append(float((np.abs(a[known] - b[known]) > SAME * scale).mean()))
     return max(shares, default=0.0)
 
 

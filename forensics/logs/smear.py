@@ -7,6 +7,8 @@ from numpy.typing import NDArray
 
 Floats = NDArray[np.float64]
 REACH = 3
+# Share of the way from zero to the code: less could be an offset of the sensor.
+FALLEN = 0.02
 
 
 def find_smeared(values: Floats, codes: NDArray[np.bool_]) -> NDArray[np.bool_]:
@@ -22,8 +24,8 @@ def find_smeared(values: Floats, codes: NDArray[np.bool_]) -> NDArray[np.bool_]:
     Returns
     -------
     ndarray of bool, shape (n,)
-        True within three rows of a negative code, where the value is negative and below the channel's
-        1st percentile by more than half the span from there to the 99th.
+        True within three rows of a negative code, where the value has fallen some way to the code and
+        below the channel's 1st percentile by more than half the span from there to the 99th.
     """
     found = np.zeros(len(values), dtype=bool)
     if not codes.any():
@@ -35,5 +37,6 @@ def find_smeared(values: Floats, codes: NDArray[np.bool_]) -> NDArray[np.bool_]:
     low, high = np.percentile(good, [1, 99])
     # Smeared values would pull a percentile down where they are many: the range is that of their betters.
     low = max(low, float(np.percentile(good, 25)) - (high - float(np.percentile(good, 25))))
+    least = float(np.abs(values[negative]).min())
     near = np.convolve(negative, np.ones(2 * REACH + 1), mode="same") > 0
-    return near & ~codes & (values < min(0.0, low - 0.5 * (high - low)))
+    return near & ~codes & (values < min(-FALLEN * least, low - 0.5 * (high - low)))

@@ -1,0 +1,4 @@
+~Version
+ VERS. 2.0 : v
+~Curve
+ TIME.S : t
