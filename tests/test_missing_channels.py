@@ -69,3 +69,10 @@ def test_constant_channel_counts_as_missing(tmp_path):
     columns = cases.log_columns(JOB)
     columns["Torque (kN.m)"] = np.full(len(columns["Time"]), -999.25)
     assert "torque" in said(run(tmp_path, columns))
+
+
+def test_zero_torque_beside_empty_rotary_speed(tmp_path):
+    columns = cases.log_columns(JOB)
+    columns["Torque (kN.m)"] = np.zeros(len(columns["Time"]))
+    columns["RPM (rpm)"] = np.full(len(columns["Time"]), -999.25)
+    assert "rotary speed" in said(run(tmp_path, columns))

@@ -143,7 +143,8 @@ def _silent_channels(work: Cleaning) -> None:
         if not known.any():
             other, level = ZERO_CONTRADICTED.get(channel, ("", 0.0))
             against = work.values.get(other)
-            contradicted = against is not None and bool(np.nanpercentile(np.abs(against), 95) > level)
+            said = np.zeros(0) if against is None else np.abs(against[np.isfinite(against)])
+            contradicted = said.size > 0 and bool(np.percentile(said, 95) > level)
             if channel in ZERO_IS_MISSING or contradicted:
                 work.drop(channel, "all zero", "zero in every row, as where nothing is connected")
         elif channel in CONSTANT_IS_FAULT and len(known) >= 60 and known.min() == known.max():
