@@ -214,7 +214,7 @@ def drag_draws(material: Material, rows: NDArray[np.int64]) -> Floats:
     base = material.calibration.block_weight.value
     moved = material.loads.model_hookload[rows] - base - material.rotating_weight[rows]
     extra = material.friction_multiple(rows, draws[:, 0], draws[:, 1]) - 1.0
-    shift = extra * np.where(material.friction_sign[rows] == 0, 0.0, moved) + (draws[:, 2] - base)[:, None]
+    shift = extra * moved + (draws[:, 2] - base)[:, None]
     return material.loads.drag_residual[rows] - shift
 
 

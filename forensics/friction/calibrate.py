@@ -99,7 +99,7 @@ def calibrate(
 def _solve_unbuckled(
     weights: tuple[Reading, ...], model: OffBottom, prior: Prior, fixed: bool
 ) -> tuple[tuple[Reading, ...], Problem, Solved, tuple[str, ...]]:
-    """Fit without the slack-off weights of a string that nears buckling: they show the helix, not friction."""
+    """Fit without the slack-off weights of a string that nears buckling: they show the helix."""
     everything, kept = weights, weights
     for _ in range(3):
         weights = _thin(kept)
@@ -116,8 +116,8 @@ def _solve_unbuckled(
     if gone == 0:
         return weights, problem, solved, ()
     said = (
-        f"{gone} slack-off weights were left out of the friction: at them the string would be near or past its "
-        "buckling load."
+        f"{gone} slack-off weights were left out of the friction: at them the string would be near or past "
+        "its buckling load."
     )
     return weights, problem, solved, (said,)
 

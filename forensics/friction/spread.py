@@ -119,8 +119,10 @@ def draw(p: Floats, cov: Floats, levers: tuple[float, float]) -> Floats:
     rng = np.random.default_rng(20240229)
     z = rng.standard_normal((DRAWS // 2, len(p)))
     z = np.vstack([z, -z])  # mirrored pairs keep the mean exact
-    root = np.linalg.svd(cov, hermitian=True)
-    samples = p + z @ (root.U * np.sqrt(np.maximum(root.S, 0.0))).T
+    sd = np.sqrt(np.diag(cov))
+    unit = np.where(sd > 0.0, sd, 1.0)
+    values, vectors = np.linalg.eigh(cov / np.outer(unit, unit))
+    samples = p + z @ (vectors * np.sqrt(np.maximum(values, 0.0))).T * sd
     samples = np.clip(samples, LOWEST, HIGHEST)
     block = samples[:, 0] + (samples[:, 1] - p[1]) * levers[0] + (samples[:, 2] - p[2]) * levers[1]
     return np.column_stack([samples[:, 3], samples[:, 4], block])

@@ -49,10 +49,6 @@ class PlainString:
         side = np.interp(bit, [0.0, KICK_OFF, BUILT, 9000.0], [0.0, 0.0, 4.0e5, 4.0e5 + 6900.0 * self.w])
         return mu * 0.08 * side
 
-    def slack_off_ratio(self, bit_depth, mu_cased, mu_open):
-        """Load ratio: nothing nears buckling here."""
-        return np.zeros(len(bit_depth))
-
     def open_length(self, bit_depth):
         """Pipe below the shoe [m]."""
         return np.maximum(np.asarray(bit_depth) - SHOE, 0.0)
