@@ -173,7 +173,13 @@ def write_truth(folder: Path, truth: pd.DataFrame, facts: dict, settings: dict) 
     def clock(pairs: list[list[float]]) -> list[list[str]]:
         return [[f"{first + timedelta(seconds=s):%Y-%m-%dT%H:%M:%SZ}" for s in pair] for pair in pairs]
 
-    for key in ("buckling_episodes", "helical_episodes", "lockup_intervals", "drag_episodes", "logged"):
+    for key in (
+        "buckling_episodes",
+        "helical_episodes",
+        "lockup_intervals",
+        "drag_episodes",
+        "torque_episodes",
+    ):
         if key in facts:
             facts[key] = clock(facts[key])
     (folder / "truth.json").write_text(json.dumps(facts, indent=1) + "\n", encoding="utf-8")

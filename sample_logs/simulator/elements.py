@@ -247,3 +247,13 @@ def slack(x: Floats, elements: Floats, table: Floats, control: Floats) -> float:
         down += pull - g[j, E_MU] * side_force(down, g, j)
         travel += (up - down) * elements[j, COMPLIANCE]
     return travel
+
+
+@njit(cache=True)
+def turning_torque(x: Floats, tension: Floats, elements: Floats, table: Floats, control: Floats) -> float:
+    """Torque of a string that turns without moving along, at the friction of a table [N.m]."""
+    g = geometry(x, elements, table, control[MD_FIRST], control[MD_STEP])
+    total = 0.0
+    for j in range(elements.shape[0]):
+        total += g[j, E_MU] * side_force(tension[j], g, j) * 0.5 * elements[j, CONTACT_OD]
+    return total

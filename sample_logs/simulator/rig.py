@@ -166,6 +166,13 @@ class Rig:
         usual = el.steady(self.x, self.elements, self.hole.table, self.control(), sign)
         return float(self.string_weight - usual)
 
+    def usual_torque(self) -> float:
+        """Friction torque that everyday friction would take now, while turning without travel [N.m]."""
+        if self.slips or self.rpm < 30.0 or abs(self.speed) > 0.02 or self.latched.max() == 2:
+            return float("nan")
+        table = self.hole.table
+        return float(el.turning_torque(self.x, self.tension, self.elements, table, self.control()))
+
     def slack(self) -> float:
         """Find the block travel that only turns a full pick-up into a full slack-off, moving no bit [m]."""
         if self.slips or self.rpm > 5.0:
@@ -225,7 +232,8 @@ class Rig:
                 self.string_weight, bit, self.found[el.FRICTION_TORQUE] + bit_torque, self.rpm, self.pump,
                 float(self.slips), loads[3], loads[0], loads[1], loads[2], float(self.latched.max()),
                 *spans, self.reach, self.found[el.RESIDUAL], self.zero, self.length,
-                self.plain_drag(), self.bed, self.slack(),
+                self.plain_drag(),
+                self.usual_torque(), self.found[el.FRICTION_TORQUE], self.bed, self.slack(),
             )
         )  # fmt: skip
         self.tags.append(self.tag)
@@ -269,5 +277,5 @@ COLUMNS = (
     "time", "block", "tally_depth", "bit_true", "bottom_true", "hookload", "string_weight", "bit_load",
     "torque", "rpm", "pump", "slips", "hanging", "ratio", "ratio_md", "compression", "state",
     "top", "bottom", "helical_top", "helical_bottom", "reach", "residual", "zero", "tally", 
-    "drag", "bed", "slack",
+    "drag", "usual_torque", "friction_torque", "bed", "slack",
 )  # fmt: skip

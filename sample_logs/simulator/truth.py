@@ -107,6 +107,7 @@ def truth_frame(true: pd.DataFrame, settings: dict) -> pd.DataFrame:
             "surface_torque_kNm": (true["torque"] / 1e3).round(2),
             "lockup": lockups(true, noise).astype(int),
             "drag_residual_kN": (true["drag"] / 1e3).round(2),
+            "torque_residual_kNm": ((true["friction_torque"] - true["usual_torque"]) / 1e3).round(2),
             "cuttings_level": true["bed"].round(3),
             "residual_kN": (true["residual"] / 1e3).round(3),
         }
@@ -123,6 +124,8 @@ def summary(truth: pd.DataFrame, true: pd.DataFrame, hole: Hole, settings: dict)
     noise = settings["instrument"].get("hookload_noise_kN", 0.8)
     bar = np.maximum(0.1 * true["hanging"].to_numpy() / 1e3, 6.0 * noise)
     dragging = (truth["drag_residual_kN"].abs() > bar).to_numpy()
+    usual = true["usual_torque"].to_numpy() / 1e3
+    twisting = (truth["torque_residual_kNm"].abs() > np.maximum(0.1 * usual, 1.5)).to_numpy()
     worst = truth.loc[truth["peak_load_ratio"].idxmax()]
     drilling = truth["activity"].isin(["drill_rotate", "drill_slide"])
     has_cased, has_open = hole.shoe > 0.0, deepest > hole.shoe
@@ -148,5 +151,6 @@ def summary(truth: pd.DataFrame, true: pd.DataFrame, hole: Hole, settings: dict)
         "helical_episodes": [list(s) for s in spans(helical, time, 60.0, 20.0)],
         "lockup_intervals": [list(s) for s in spans(truth["lockup"].to_numpy() > 0, time, 60.0, 0.0)],
         "drag_episodes": [list(s) for s in spans(dragging, time, 60.0, 20.0)],
+        "torque_episodes": [list(s) for s in spans(twisting, time, 60.0, 20.0)],
         "largest_imbalance_kN": float(truth["residual_kN"].max()),
     }
