@@ -27,10 +27,8 @@ _FREE_SPEED = 0.05
 _TOUCH = 0.3
 # Differential pressure below this share of the level that counts is none: a locked-in load dies slowly.
 _NO_PRESSURE = 0.25
-# Second pass: bit load above this is on bottom (the contract's rule) [N], and above so many times the noise:
-# a replayed load that dies away never quite ends.
+# Second pass: bit load above this, and above the noise, is on bottom (the contract's rule) [N].
 _REFINE_WEIGHT = 1e3
-_REFINE_NOISE = 2.0
 
 
 @dataclass(frozen=True)
@@ -56,7 +54,7 @@ class Surface:
 def bottom_evidence(
     surface: Surface, depths: DepthView, references: tuple[Reference, Reference, Reference], signals: Signals
 ) -> NDArray[np.int8]:
-    """Ask what each row says by itself: above zero on bottom, below zero off it, 0 nothing.
+    """Ask what each row says by itself: +1 on bottom, -1 off it, 0 nothing.
 
     Parameters
     ----------
@@ -72,8 +70,7 @@ def bottom_evidence(
     Returns
     -------
     ndarray of int8, shape (n,)
-        2 and -2 for depth and weight, 1 and -1 for the weaker witness of pressure; the state holds where
-        there is no vote.
+        Votes; the state holds where there is none.
 
     Notes
     -----
@@ -85,15 +82,15 @@ def bottom_evidence(
     """
     close = (depths.gap < depths.near) & ~depths.run_in
     vote = np.zeros(len(close), dtype=np.int8)
-    _vote(vote, depths.advancing & surface.pumping, 2)
+    _vote(vote, depths.advancing & surface.pumping, 1)
     level = surface.differential_level
     _vote(vote, surface.pumping & (surface.differential > level), 1)
     _vote(vote, surface.pumping & (surface.differential < _NO_PRESSURE * level), -1)
     _vote_by_weight(vote, surface, depths, references, signals)
     freely = (surface.direction > 0) & (-surface.speed > _FREE_SPEED) & (depths.gap > _TOUCH)
-    _vote(vote, freely, -2)
+    _vote(vote, freely, -1)
     _vote(vote, surface.slips, 0)
-    _vote(vote, ~close, -2)
+    _vote(vote, ~close, -1)
     return vote
 
 
@@ -111,18 +108,18 @@ def _vote_by_weight(
     turned, still = surface.turning & settled, ~surface.turning & settled
     limit = weight_limit(rotating, signals)
     load = turning_reference(references, surface.axial) - surface.smooth
-    _vote(vote, turned & (load > limit), 2)
-    _vote(vote, turned & (load < 0.5 * limit), -2)
+    _vote(vote, turned & (load > limit), 1)
+    _vote(vote, turned & (load < 0.5 * limit), -1)
     limit = weight_limit(slack, signals)
     load = local_slack_off(surface, depths, slack, signals) - surface.smooth
-    _vote(vote, still & (load > limit), 2)
+    _vote(vote, still & (load > limit), 1)
     calm = np.abs(noise.rate(surface.smooth, signals.time, MOVING_WINDOW)) * MOVING_WINDOW < limit
-    _vote(vote, still & calm & (surface.direction > 0) & (np.abs(load) < 0.5 * limit), -2)
+    _vote(vote, still & calm & (surface.direction > 0) & (np.abs(load) < 0.5 * limit), -1)
     lifted = noise.hold(surface.direction) < 0
     high = surface.smooth > pick.weight - weight_limit(pick, signals)
-    _vote(vote, still & lifted & high & (depths.gap > _TOUCH), -2)
+    _vote(vote, still & lifted & high & (depths.gap > _TOUCH), -1)
     far = (surface.direction < 0) & (depths.gap > 0.5 * depths.near)
-    _vote(vote, still & far & ~np.isfinite(pick.weight), -2)
+    _vote(vote, still & far & ~np.isfinite(pick.weight), -1)
 
 
 def local_slack_off(surface: Surface, depths: DepthView, slack: Reference, signals: Signals) -> Floats:
@@ -260,13 +257,13 @@ def refine_activity(rig: RigView, bit_load: Floats, log: TimeLog) -> RigView:
     Notes
     -----
     Only rows that the first pass could not settle by themselves are looked at: out of slips, not turning,
-    and no vote of depth or weight. Elsewhere a measured reference is the better witness.
+    and no vote of depth, weight or pressure. Elsewhere what was measured is the better witness.
     """
     signals = read_signals(log)
-    limit = max(_REFINE_WEIGHT, _REFINE_NOISE * signals.hookload_noise)
+    limit = max(_REFINE_WEIGHT, signals.hookload_noise)
     known = np.isfinite(bit_load)
     loaded = noise.running_median(np.where(known, bit_load, 0.0), signals.count(SMOOTHING)) > limit
-    unsettled = np.ones(len(log), dtype=bool) if rig.bottom_vote is None else np.abs(rig.bottom_vote) < 2
+    unsettled = np.ones(len(log), dtype=bool) if rig.bottom_vote is None else rig.bottom_vote == 0
     open_rows = known & unsettled & ~rig.slips & ~rig.turning
     on_bottom = np.where(open_rows, loaded, rig.on_bottom)
     refined = replace(rig, on_bottom=on_bottom)
