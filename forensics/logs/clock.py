@@ -29,6 +29,8 @@ if TYPE_CHECKING:
 
 Floats = NDArray[np.float64]
 DAY = 86400.0
+# Rows within which a clock that leaps back over midnight falls again.
+LATE = 5
 _DATE_NAMES = frozenset(
     [
         "date",
@@ -297,10 +299,13 @@ def wrap_midnight(seconds: Floats) -> Floats:
     known = np.flatnonzero(np.isfinite(seconds))
     if len(known) > 1:
         step = np.diff(seconds[known])
-        days = np.cumsum(np.where(step < -0.5 * DAY, 1.0, 0.0))
-        # A row that arrives late, across midnight, belongs to the day before.
-        days -= np.cumsum(np.where(step > 0.5 * DAY, 1.0, 0.0)) * (days > 0)
-        out[known[1:]] += DAY * np.maximum(days, 0.0)
+        falls = (step < -0.5 * DAY).astype(float)
+        for late in np.flatnonzero(step > 0.5 * DAY):
+            # A row that comes late, across midnight, belongs to the day before: the clock falls again soon.
+            before, after = falls[max(late - LATE, 0) : late], falls[late + 1 : late + 1 + LATE]
+            if before.any() and after.any():
+                falls[late] -= 1.0
+        out[known[1:]] += DAY * np.cumsum(falls)
     return out
 
 

@@ -75,7 +75,7 @@ def take_apart(text: str) -> Stamp:
         *clock, half, offset = found.groups()
         day = f"{text[: found.start()]} {text[found.end() :]}".strip(" T-,_/.")
         return Stamp(day, _clock_seconds(tuple(clock), half), _offset_seconds(offset))
-    named = any(word.casefold()[:3] in _MONTHS for word in _WORDS.findall(text) if not word.isdigit())
+    named = any(word.casefold()[:3] in _MONTHS for word in _WORDS.findall(text) if not word.isdecimal())
     odd = _PUNCTUATED.search(text) if named else None
     if odd:
         day = f"{text[: odd.start()]} {text[odd.end() :]}".strip()
@@ -92,17 +92,17 @@ def date_fields(text: str) -> tuple[int, int, int] | tuple[str, int, int, int] |
     ((2012, 1, 7), ('open', 3, 4, 2020))
     """
     words = _WORDS.findall(text)
-    numbers = [int(word) for word in words if word.isdigit()]
+    numbers = [int(word) for word in words if word.isdecimal()]
     months = [
         _MONTHS[w.casefold()[:3]]
         for w in words
-        if not w.isdigit() and len(w) > 2 and w.casefold()[:3] in _MONTHS
+        if not w.isdecimal() and len(w) > 2 and w.casefold()[:3] in _MONTHS
     ]
     if months and len(numbers) == 2:
-        year_first = numbers[0] > 31 or len(next(w for w in words if w.isdigit())) == 4
+        year_first = numbers[0] > 31 or len(next(w for w in words if w.isdecimal())) == 4
         year, day = numbers if year_first else reversed(numbers)
         return _year(year), months[-1], day
-    digits = [word for word in words if word.isdigit()]
+    digits = [word for word in words if word.isdecimal()]
     if len(digits) == 1:
         return _packed(digits[0])
     if len(numbers) != 3 or months:
@@ -157,7 +157,11 @@ def day_number(text: str, order: str | None) -> int | None:
 def looks_like_date(text: str) -> bool:
     """Tell whether a text holds a date, with or without a clock."""
     stamp = take_apart(text)
-    if not stamp.date or (stamp.date.isdigit() and len(stamp.date) != 8) or not re.search(r"\d", stamp.date):
+    if (
+        not stamp.date
+        or (stamp.date.isdecimal() and len(stamp.date) != 8)
+        or not re.search(r"\d", stamp.date)
+    ):
         return False
     if re.fullmatch(r"[+-]?\d*[.,]\d*", stamp.date):
         return False
