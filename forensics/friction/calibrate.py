@@ -100,19 +100,21 @@ def _solve_unbuckled(
     weights: tuple[Reading, ...], model: OffBottom, prior: Prior, fixed: bool
 ) -> tuple[tuple[Reading, ...], Problem, Solved, tuple[str, ...]]:
     """Fit without the slack-off weights of a string that nears buckling: they show the helix."""
-    everything, kept = weights, weights
+    everything = _thin(weights)
+    whole = _problem(everything, model, prior)
+    depth = np.array([r.bit_depth for r in everything], dtype=float)
+    down = np.array([r.kind == "slack_off" for r in everything], dtype=bool)
+    kept = np.ones(len(everything), dtype=bool)
     for _ in range(3):
-        weights = _thin(kept)
-        problem = _problem(weights, model, prior)
+        weights = tuple(r for r, keep in zip(everything, kept, strict=True) if keep)
+        problem = whole.take(kept)
         solved = _solve(problem, weights, model, fixed)
         cased, open_ = solved.fit.p[3:5]
-        down = [r for r in everything if r.kind == "slack_off"]
-        ratio = model.slack_off_ratio(np.array([r.bit_depth for r in down]), float(cased), float(open_))
-        pressed = {id(r) for r, size in zip(down, ratio, strict=True) if size > NEAR_BUCKLING}
-        before, kept = kept, tuple(r for r in everything if id(r) not in pressed)
-        if kept == before:
+        before, kept = kept, np.ones(len(everything), dtype=bool)
+        kept[down] = model.slack_off_ratio(depth[down], float(cased), float(open_)) <= NEAR_BUCKLING
+        if (kept == before).all():
             break
-    gone = len(everything) - len(kept)
+    gone = len(everything) - len(weights)
     if gone == 0:
         return weights, problem, solved, ()
     said = (
@@ -222,6 +224,8 @@ def _result(solved: Solved, problem: Problem, fixed: bool, inputs: _Inputs) -> C
     p, prior = solved.fit.p, problem.prior
     sd = np.sqrt(np.diag(solved.cov))
     n = len(problem.value)
+    # where plateau and steady weights disagree by more than the plateau's own sigma, neither is that good
+    sd[0] *= max(1.0, abs(p[0] - prior.centre[0]) / prior.sigma[0])
     block = _estimate(p[0], sd[0], inputs.rig.block_weight.source if n == 0 else "steady weights", n)
     bias = Estimate(0.0, 0.0, 0.0, "part of the block weight", determined=False)
     if prior.given_block is not None:

@@ -7,7 +7,7 @@ lower envelope. That keeps drag episodes out of the base friction they are later
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -50,6 +50,18 @@ class Problem:
     place: Floats
     surface: ResponseSurface
     prior: Prior
+
+    def take(self, rows: Bools) -> Problem:
+        """Only some of the readings."""
+        return replace(
+            self,
+            value=self.value[rows],
+            above=self.above[rows],
+            sign=self.sign[rows],
+            sigma=self.sigma[rows],
+            place=self.place[rows],
+            surface=ResponseSurface(self.surface.table[:, :, rows]),
+        )
 
     def model(self, p: Floats) -> tuple[Floats, Floats]:
         """Modelled readings [N], shape (n,), and their Jacobian, shape (n, 6)."""

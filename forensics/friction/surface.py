@@ -70,9 +70,9 @@ class ResponseSurface:
         return value_i @ along, slope_i @ along, value_i @ across
 
 
-def _cubic(mu: float) -> tuple[int, Floats, Floats]:
+def _cubic(mu: float, nodes: int = len(FACTORS)) -> tuple[int, Floats, Floats]:
     """First of the four nodes about a factor, their Lagrange weights, and the slopes of these."""
-    first = int(np.clip(int(mu / STEP) - 1, 0, len(FACTORS) - 4))
+    first = int(np.clip(int(mu / STEP) - 1, 0, nodes - 4))
     x = mu / STEP - first
     a, b, c, d = x, x - 1.0, x - 2.0, x - 3.0
     value = np.array([-b * c * d / 6.0, a * c * d / 2.0, -a * b * d / 2.0, a * b * c / 6.0])
@@ -85,6 +85,16 @@ def _cubic(mu: float) -> tuple[int, Floats, Floats]:
         ]
     )
     return first, value, slope / STEP
+
+
+def _refined(grid: Floats) -> Floats:
+    """Bring a table at every other factor to all of them by local cubics, shape (13, 13, n)."""
+    coarse = len(grid)
+    onto = np.zeros((len(FACTORS), coarse))
+    for row in range(len(FACTORS)):
+        first, value, _ = _cubic(0.5 * row * STEP, coarse)
+        onto[row, first : first + 4] = value
+    return np.einsum("ia,jb,abn->ijn", onto, onto, grid)
 
 
 def build_surface(model: OffBottom, kinds: tuple[str, ...], bit_depth: Floats) -> ResponseSurface:
@@ -111,8 +121,9 @@ def build_surface(model: OffBottom, kinds: tuple[str, ...], bit_depth: Floats) -
         if kind == "rotating":  # no axial friction: one march serves
             table[:, :, rows] = model.string_weight(kind, depths, 0.0, 0.0)
             continue
-        for i, cased in enumerate(FACTORS):
-            for j, open_ in enumerate(FACTORS):
-                table[i, j, rows] = model.string_weight(kind, depths, float(cased), float(open_))
+        coarse = 2 if kind == "pick_up" else 1  # pulled pipe does not buckle: its weight bends gently
+        nodes = FACTORS[::coarse].tolist()
+        grid = np.array([[model.string_weight(kind, depths, c, o) for o in nodes] for c in nodes])
+        table[:, :, rows] = _refined(grid) if coarse > 1 else grid
     np.nan_to_num(table, copy=False, nan=LOWEST_WEIGHT)
     return ResponseSurface(np.maximum(table, LOWEST_WEIGHT))
