@@ -4,6 +4,7 @@ import numpy as np
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
+from matplotlib.colors import to_rgb
 from matplotlib.figure import Figure
 
 from forensics.report.describe import make_scene
@@ -132,3 +133,23 @@ def test_ticks_name_a_new_day():
     start = 1_714_723_200.0
     _, labels = clock.ticks(start, start + 30 * 3600, Show("metric", "UTC"))
     assert [label for label in labels if "\n" in label] == ["09:00\n3 May", "00:00\n4 May"]
+
+
+def lightness(colour) -> float:
+    """CIE lightness of a colour, 0 to 100."""
+    rgb = np.array(to_rgb(colour))
+    linear = np.where(rgb <= 0.04045, rgb / 12.92, ((rgb + 0.055) / 1.055) ** 2.4)
+    return float(116.0 * np.cbrt(linear @ [0.2126, 0.7152, 0.0722]) - 16.0)
+
+
+def test_load_ratio_colours_read_in_grey():
+    """Each class darker than the one before, and the step at the threshold plain to see."""
+    colours, norm = style.ratio_colours("chen")
+    steps = [lightness(colours(norm(value))) for value in (0.1, 0.3, 0.6, 0.9, 1.2, 1.6, 2.5, 9.0)]
+    assert np.all(np.diff(steps) < -2.5)
+    assert steps[4] - steps[3] < -10.0
+
+
+def test_weight_lines_differ_in_lightness():
+    shades = [lightness(colour) for colour in (style.LOGGED, style.SURFACE, style.BIT)]
+    assert np.all(np.diff(shades) < -12.0)

@@ -110,7 +110,7 @@ def test_first_page_has_finding_confidence_and_doubts(page):
     assert "1.83" in first
     assert "1.61 to 2.05" in first
     assert "replay draws" in first
-    assert "assumed, not determined by the data" in first
+    assert "not determined by the data: case file" in first
 
 
 def test_data_account_has_hashes_columns_steps_and_reasons(page):

@@ -37,7 +37,7 @@ ROTATING = INK
 # Load ratio classes: each step darker than the last; colour begins at the threshold itself.
 # The helical onset, as a multiple of the local sinusoidal load, follows the criterion of the case.
 ONSETS = {"chen": 1.41, "wu": 1.83, "mitchell": 2.83}
-_RATIO_COLOURS = ("#ffffff", "#eef1f2", "#dbe1e4", "#bcc7cd", "#f0b93a", "#d0662a", "#8e2443")
+_RATIO_COLOURS = ("#ffffff", "#f4f6f7", "#e6eaec", "#d3dade", "#e8a824", "#c25a1f", "#862044")
 RATIO_OVER = "#3d0f2b"
 
 _STYLE = {

@@ -68,8 +68,8 @@ METHOD_LIMITS = (
         "helix forms over a range of load above it."
     ),
     (
-        "Tool-joint and body clearance give different thresholds; the choice is stated above, its effect with "
-        "each episode."
+        "Tool-joint and body clearance give different thresholds; the choice is stated above, its effect "
+        "with each episode."
     ),
 )
 

@@ -183,7 +183,7 @@ def _moment_picture(scene: Scene, episode: Episode) -> Picture:
 
 
 def cause_table(episode: Episode) -> Table:
-    """Evidence for and against each cause."""
+    """Tabulate evidence for and against each cause; those without any are named below."""
     columns = (
         Column("cause"),
         Column("probability", "number"),
@@ -191,10 +191,16 @@ def cause_table(episode: Episode) -> Table:
         Column("speaks against it"),
     )
     ranked = sorted(episode.causes, key=lambda c: -c.probability)
-    rows = tuple((plain(c.cause), fixed(c.probability, 2), _side(c, 1), _side(c, -1)) for c in ranked)
+    told = [c for c in ranked if c.evidence or c.probability >= 0.05]
+    silent = [c for c in ranked if c not in told]
+    rows = tuple((plain(c.cause), fixed(c.probability, 2), _side(c, 1), _side(c, -1)) for c in told)
     note = "Probabilities weigh the causes against one another on this evidence. In brackets: its origin."
+    if silent:
+        note += (
+            f" Considered, with nothing found for or against: {', '.join(plain(c.cause) for c in silent)}."
+        )
     empty = "No cause was weighed for this episode."
-    return Table(f"{episode.id}: causes weighed", columns, rows, note if rows else "", empty)
+    return Table(f"{episode.id}: causes weighed", columns, rows, note if rows else "", empty, dense=True)
 
 
 def _side(cause: CauseView, sign: int) -> tuple[str, ...]:

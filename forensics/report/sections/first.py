@@ -54,7 +54,7 @@ def number(name: str, estimate: Estimate, quantity: str, show: Show, noun: str =
     if estimate.samples:
         origin = f"{origin}; {count(estimate.samples, noun)}"
     if not estimate.determined:
-        origin = f"assumed, not determined by the data; {origin}"
+        origin = f"not determined by the data: {origin}"
     return Number(name, value, interval, origin, estimate.determined)
 
 
