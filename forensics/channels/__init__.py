@@ -63,7 +63,7 @@ _PATTERNS = tuple(
 )
 # Words that make a name something else than the channel's reading.
 _OTHER_THING = re.compile(
-    r"set(?:p|point)|limit|alarm|target|command|cmd|qual|stdev|std$|variance|delta(?!p)|temp|tvd|vert|bitrpm|motor.*rpm|"
+    r"^min|set(?:p|point)|limit|alarm|target|command|cmd|qual|stdev|std$|variance|delta(?!p)|temp|tvd|vert|bitrpm|motor.*rpm|"
     r"rpm.*bit|rpm.*motor|total.*rpm|turb|choke|annul|casing|kill|torqueam|amps|current|min(?:imum)?$|rate.*bit|cost|hours|revs|"
     r"ecd|stick|slip|shock|vib|strok|spm|off|zero|ref|calc|model|plan|sens|status|flag"
 )

@@ -154,7 +154,7 @@ def _pick(raw: RawLog, chosen: tuple[str, str | None] | None) -> tuple[int, str 
     for i in filled:
         if not _is_number(raw.table[i]) and _holds_stamps(raw.table[i]):
             return i, raw.units[i]
-    if raw.format.startswith("LAS") and filled and raw.start is not None:
+    if not raw.format.startswith("CSV") and filled and raw.start is not None:
         return filled[0], raw.units[filled[0]]
     seen = ", ".join(repr(name) for name in raw.names[:40])
     raise LogError(

@@ -5,13 +5,12 @@ from __future__ import annotations
 import gzip
 import io
 import warnings
-import zlib
 from pathlib import Path
 from typing import TYPE_CHECKING
 
 from forensics.errors import LogError
 from forensics.logs.dialect import Dialect, find_dialect, split_line
-from forensics.logs.raw import Keep, RawLog
+from forensics.logs.raw import UNPACK_ERRORS, Keep, RawLog
 
 if TYPE_CHECKING:
     import pandas as pd
@@ -97,17 +96,20 @@ def _fast(path: Path, dialect: Dialect, wanted: list[int]) -> pd.DataFrame | Non
         **({"skipinitialspace": True} if dialect.padded else {}),
         **({"usecols": wanted} if len(wanted) < 0.9 * width else {}),
     }
-    try:
-        with warnings.catch_warnings():
-            warnings.simplefilter("error", pd.errors.DtypeWarning)
-            warnings.simplefilter("error", pd.errors.ParserWarning)
-            return _parse(path, options)[wanted]
-    except (pd.errors.DtypeWarning, UnicodeDecodeError):
-        return _parse(path, {**options, "low_memory": False, "encoding_errors": "replace"})[wanted]
-    except (pd.errors.ParserError, pd.errors.ParserWarning):
-        return None
-    except (OSError, EOFError, zlib.error) as error:
-        raise LogError(f"the file can't be unpacked: {error}", file=path) from error
+    slow = {"low_memory": False, "encoding_errors": "replace"}
+    for extra in ({}, slow):
+        try:
+            with warnings.catch_warnings():
+                warnings.simplefilter("error", pd.errors.DtypeWarning)
+                warnings.simplefilter("error", pd.errors.ParserWarning)
+                return _parse(path, {**options, **extra})[wanted]
+        except (pd.errors.DtypeWarning, UnicodeDecodeError):
+            continue
+        except (pd.errors.ParserError, pd.errors.ParserWarning, pd.errors.EmptyDataError):
+            return None
+        except UNPACK_ERRORS as error:
+            raise LogError(f"the file can't be unpacked: {error}", file=path) from error
+    return None
 
 
 def _parse(path: Path, options: dict[str, object]) -> pd.DataFrame:

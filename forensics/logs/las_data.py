@@ -63,6 +63,8 @@ def read_data(body: str, header: _Header, keep: Keep, path: Path) -> Table:
     delimiter = header.delimiter or _delimiter(head)
     if header.wrap:
         table, names, units, dropped = _wrapped(body, header)
+        if len(table) == 0:
+            raise LogError("the data section holds no whole row", file=path)
         wanted = [number for number, name in enumerate(names) if number == 0 or keep(name)]
         return table[wanted], names, units, dropped, ["wrapped lines were joined"]
     width = Counter(len(_split(line, delimiter)) for line in head).most_common(1)[0][0]

@@ -18,7 +18,7 @@ from forensics.logs.clock_text import looks_like_date
 from forensics.logs.csv_log import is_packed
 from forensics.logs.dialect import find_encoding
 from forensics.logs.las_data import read_data
-from forensics.logs.raw import Keep, RawLog
+from forensics.logs.raw import UNPACK_ERRORS, Keep, RawLog
 
 if TYPE_CHECKING:
     import lasio
@@ -90,7 +90,8 @@ def read(path: Path, head: bytes, keep: Keep) -> RawLog:
         raise LogError("the LAS header names no curves; expected a ~Curve section", file=path)
 
     def wanted(name: str) -> bool:
-        return keep(name) or keep(header.about.get(name, ""))
+        about = header.about.get(name, "")
+        return keep(name) or (bool(about) and keep(about))
 
     table, names, units, dropped, notes = read_data(body, header, wanted, path)
     return RawLog(
@@ -115,7 +116,7 @@ def _load(path: Path, head: bytes) -> str:
 
     try:
         data = gzip.decompress(path.read_bytes()) if is_packed(path) else path.read_bytes()
-    except (OSError, EOFError) as error:
+    except UNPACK_ERRORS as error:
         raise LogError(f"the file can't be unpacked: {error}", file=path) from error
     return data.decode(find_encoding(head), errors="replace").lstrip("\ufeff")
 
@@ -139,7 +140,7 @@ def _read_header(above: str) -> Header:
     header = Header()
     values = {name: value for section, name, _, value, _ in items if section in "VWPO"}
     curves = [(name, unit) for section, name, unit, _, _ in items if section == "C"]
-    header.about = {name: about for section, name, _, _, about in items if section == "C"}
+    header.about = {name: _prose(about) for section, name, _, _, about in items if section == "C"}
     if parsed is not None and len(parsed.curves) >= len(curves):
         curves = [(str(c.original_mnemonic), str(c.unit or "")) for c in parsed.curves]
     else:
@@ -154,6 +155,11 @@ def _read_header(above: str) -> Header:
     )
     _find_start(header, values)
     return header
+
+
+def _prose(about: str) -> str:
+    """Take a format and what stands around it out of a description."""
+    return re.sub(r"\{[^}]*\}.*", "", about).strip()
 
 
 def _numbers(text: str) -> list[float]:

@@ -176,8 +176,8 @@ def _candidate(raw: RawLog, place: int, choices: Choices) -> Candidate | None:
     unit = raw.units[place] if not units.is_blank(raw.units[place]) else glued
     channel, why = channels.match(stem, unit or "")
     about = raw.about.get(name, "")
-    if channel is None and about:
-        channel, _ = channels.match(about, unit)
+    if channel is None and about and not channels.is_listed(stem):
+        channel, _ = channels.match(about, unit or "")
         why = f"{name!r} is described as {about!r}"
     if channel in {None, "time"} or channel is None:
         return None

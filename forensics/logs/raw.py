@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import zlib
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field
 from pathlib import Path
@@ -12,6 +13,8 @@ if TYPE_CHECKING:
 
 # Says of a column's name whether its data are worth loading.
 Keep = Callable[[str], bool]
+# What unpacking a damaged gzip file may raise.
+UNPACK_ERRORS = (OSError, EOFError, zlib.error)
 
 
 @dataclass(frozen=True)

@@ -9,8 +9,8 @@ from dataclasses import dataclass
 from pathlib import Path
 
 from forensics.errors import LogError
-from forensics.logs import csv_log, las_log
-from forensics.logs.raw import Keep, RawLog
+from forensics.logs import csv_log, las_log, witsml_log
+from forensics.logs.raw import UNPACK_ERRORS, Keep, RawLog
 
 
 @dataclass(frozen=True)
@@ -24,6 +24,7 @@ class Reader:
 
 # The more particular format stands first; delimited text takes what is left.
 READERS: tuple[Reader, ...] = (
+    Reader("WITSML", witsml_log.sniff, witsml_log.read),
     Reader("LAS", las_log.sniff, las_log.read),
     Reader("CSV", csv_log.sniff, csv_log.read),
 )
@@ -55,7 +56,7 @@ def read_head(path: Path, size: int = csv_log.HEAD) -> bytes:
     try:
         with gzip.open(path) if csv_log.is_packed(path) else path.open("rb") as file:
             head = file.read(size)
-    except (OSError, EOFError) as error:
+    except UNPACK_ERRORS as error:
         raise LogError(f"the file can't be read: {error}", file=path) from error
     if not head.strip():
         raise LogError("the file is empty; expected a header and rows of data", file=path)

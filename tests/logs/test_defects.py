@@ -90,6 +90,9 @@ SAME = {
     "commas_between.las": FIRST,
     "wrapped.las": FIRST,
     "version_3.las": FIRST,
+    "columns_by_number.xml": FIRST,
+    "columns_by_list.xml": FIRST,
+    "two_parts.xml": FIRST,
 }
 REFUSED = {
     "no_such_file.csv": "does not exist",
@@ -113,6 +116,8 @@ REFUSED = {
     "no_data_section.las": "no data section",
     "no_rows.las": "no rows",
     "no_curves.las": "no curves",
+    "by_depth_only.xml": "by measured depth only",
+    "broken.xml": "XML is broken",
 }
 
 
