@@ -36,7 +36,7 @@ class Samples(NamedTuple):
 
     `bit` [m]; `top` tension at the rotary [N]; `mode` HOLD, TURN or SLIDE; `direction` +1 block going
     down, -1 up, kept until it reverses; `travel` block travel since it reversed [m]; `drilling` bit on
-    bottom and pumping; `free` bit clear of bottom; `share` axial share of friction while turning, signed
+    or near bottom and pumping; `free` bit clear of bottom; `share` axial share of friction while turning, signed
     by direction; `down`, `up` local multiples of friction; `scale` of weights for mud; `step` time since
     the row before [s]; `witness` bit load by differential pressure [N] or NaN.
     """
@@ -200,7 +200,8 @@ def sliding(setting: Setting, run: Run, place: Place, t: int) -> None:
             if node == 0:
                 now[MODE] = sigma
         elif samples.drilling[t] and direction >= 0 and top - now[HOOK] > ARRIVED * band:
-            now[MODE] = 1.0
+            if run.memory.tension[0] < 0.0:
+                now[MODE] = 1.0
         if now[MODE] == FREE and direction != 0 and samples.free[t] and all_moving(setting, run, place, t):
             now[MODE] = sigma
     if now[MODE] != FREE:

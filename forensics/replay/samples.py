@@ -21,6 +21,7 @@ Floats = NDArray[np.float64]
 
 SMOOTH_SECONDS = 15.0  # moving median of the hookload; longer hides tags, shorter lets noise ratchet
 EDGE_SECONDS = 3.0  # around slips the hookload is neither the block's nor the string's
+STILL_ON_BOTTOM = 5.0  # m; further than a string stretches in a partial pick-up, the bit is off bottom
 CLEAR_OF_BOTTOM = 1.0  # m; nearer than this, stretch may still hold the bit on bottom
 MIN_REVERSAL = 0.02  # m; a block that comes back by less has not reversed
 
@@ -46,16 +47,17 @@ def prepare(
     height = _filled(rig.block) if np.isfinite(rig.block).any() else -bit
     noise = rig.noise.get("block_position", 0.0)
     direction, travel = _reversals(height, mode == HOLD, max(MIN_REVERSAL, 6.0 * noise))
-    drilling = rig.on_bottom & (rig.pumping if np.isfinite(rig.usual_flow) else True)
-    clear = np.nan_to_num(rig.hole_depth, nan=np.inf) - bit > CLEAR_OF_BOTTOM
+    gap = np.nan_to_num(rig.hole_depth, nan=np.inf) - bit
+    # a string picked up in part has its bit on bottom still: whether it drills is for the memory to say
+    near = rig.on_bottom | (gap < STILL_ON_BOTTOM)
     samples = Samples(
         bit=bit,
         top=hookload - hanging - local.shift,
         mode=mode,
         direction=direction,
         travel=travel,
-        drilling=drilling,
-        free=clear & ~rig.on_bottom,
+        drilling=near & (rig.pumping if np.isfinite(rig.usual_flow) else True),
+        free=(gap > CLEAR_OF_BOTTOM) & ~rig.on_bottom,
         share=_share(log, height, model),
         down=local.down,
         up=local.up,
