@@ -81,7 +81,6 @@ def _episode(material: Material, found: Found, lockups: list[Span]) -> Episode:
     if kind in (Kind.BUCKLING, Kind.LOCKUP):
         lost = measure.lost_weight(material, peak)
     top, bottom = _depths(material, found)
-    flagged = np.flatnonzero(found.flags[span.rows]) + span.first
     episode = Episode(
         id="",
         kind=kind,
@@ -91,7 +90,7 @@ def _episode(material: Material, found: Found, lockups: list[Span]) -> Episode:
         first=span.first,
         last=span.last,
         peak=peak,
-        activity=material.usual_activity(flagged),
+        activity=material.usual_activity(_doing(material, found)),
         top_md=top,
         bottom_md=bottom,
         peak_md=_peak_depth(material, kind, peak),
@@ -115,6 +114,17 @@ def _peak(material: Material, found: Found) -> int:
         Kind.TORQUE: material.loads.torque_residual,
     }.get(found.kind, material.loads.peak_ratio)[rows]
     return int(rows[np.argmax(np.nan_to_num(values, nan=-np.inf))])
+
+
+def _doing(material: Material, found: Found) -> NDArray[np.int64]:
+    """Rows that tell what the rig was doing: the flagged ones, and those that led to a lockup."""
+    span = found.span
+    if found.kind is Kind.LOCKUP:  # the block may stand by the time the rule holds
+        before = material.rows_between(
+            float(material.time[span.first]) - rules.LOCKUP_WINDOW, material.time[-1]
+        )
+        return np.arange(before.start, span.last + 1)
+    return np.flatnonzero(found.flags[span.rows]) + span.first
 
 
 def _end(material: Material, span: Span) -> float:

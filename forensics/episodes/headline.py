@@ -91,7 +91,7 @@ def _loaded(material: Material, episode: Episode, system: str) -> str:
     when = wording.period(episode.start, episode.end, material.log.timezone)
     what = _what(material, episode, system)
     text = f"{_capital(doing)} with the bit at {wording.depth(bit, system)}, {when}, the string {what}"
-    text += _cost(episode, system)
+    text += _cost(material, episode, system)
     if episode.cause:
         text += f" {_cause(episode)}"
     return text
@@ -116,12 +116,13 @@ def _what(material: Material, episode: Episode, system: str) -> str:
     return buckled or "was under load"
 
 
-def _cost(episode: Episode, system: str) -> str:
+def _cost(material: Material, episode: Episode, system: str) -> str:
     """Say how much weight was lost."""
     lost, helical = episode.lost_weight, episode.lost_to_buckling
     if not (np.isfinite(lost.value) and lost.value > 0.0):
         return "."
-    text = f": at its worst {wording.size(lost, 'force', system)} of the surface weight did not reach the bit"
+    end = "reach the bit" if material.rig.on_bottom[episode.peak] else "get to the lower end"
+    text = f": at its worst {wording.size(lost, 'force', system)} of the weight set down did not {end}"
     if np.isfinite(helical.value) and helical.value > 0.0:
         text += f", {wording.size(helical, 'force', system)} of it beyond ordinary sliding drag"
     return text + "."

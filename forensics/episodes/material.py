@@ -84,6 +84,17 @@ class Material:
         return np.where(known, np.interp(bit, grid, weight), np.nan)
 
     @cached_property
+    def spring_rate(self) -> Floats:
+        """Pull that stretches the whole string by a metre, EA over length, shape (n,) [N/m]."""
+        string, bit = self.well.string, np.nan_to_num(self.bit)
+        give = 1.0 / np.asarray(string.values("axial"), dtype=float)
+        ends = np.asarray(string.ends, dtype=float)
+        along = np.concatenate([[0.0], np.cumsum(give * np.diff(ends, prepend=0.0))])
+        beyond = np.maximum(bit - ends[-1], 0.0) * give[-1]
+        total = np.interp(bit, np.concatenate([[0.0], ends]), along) + beyond
+        return 1.0 / np.maximum(total, 1e-12)
+
+    @cached_property
     def friction_sign(self) -> NDArray[np.int8]:
         """Which way more friction moves the hookload: +1 going up, -1 going down, 0 else; shape (n,)."""
         return (-self.rig.direction * ~self.rig.turning).astype(np.int8)

@@ -22,6 +22,11 @@ LOCKUP_PART = 0.2
 #: The reach stays short of the bit by at least this, off bottom [m]: a tenth of a stand is within its error.
 SHORT_OF_BIT = 3.0
 
+#: Off bottom, a string that was sliding is held where the hookload falls by this part of its spring rate;
+#: it slides once the block has come down this far [m] since it was raised.
+SPRING_PART = 0.3
+SETTLED_TRAVEL = 1.0
+
 #: After slips the hookload is not the string's until this has passed [s].
 SETTLED = 5.0
 
@@ -52,7 +57,8 @@ class LockupSigns:
 
     `there` where block, hookload and rotation leave lockup open; `drop` how far the hookload came down
     within the window [N], from row `since`; `held` where, off bottom, the block went further than the
-    string's stretch and the motion still has not reached the bit.
+    string's stretch and the motion still has not reached the bit, or a string that slid as a whole was
+    stopped.
     """
 
     there: Bools
@@ -88,6 +94,7 @@ def lockup_signs(material: Material) -> LockupSigns:
         there &= ~(rig.on_bottom & np.isfinite(below) & (below < least))
         short = material.loads.reach < material.bit - SHORT_OF_BIT
         held = short & (_travel_down(material) > material.loads.stretch)
+        held |= _stopped(material, drop, since)
     return LockupSigns(there, drop, since, held)
 
 
@@ -155,6 +162,18 @@ def _at_lowest(material: Material, hookload: Floats) -> Bools:
     """Rows at the lowest hookload since slips or rotation, within the noise."""
     lowest = running_extreme(hookload, _loose(material), largest=False)
     return hookload <= lowest + 1.5 * material.noise("hookload") + 1.0
+
+
+def _stopped(material: Material, drop: Floats, since: NDArray[np.int64]) -> Bools:
+    """Rows on which a string that was sliding down as a whole was stopped: the hookload fell like a spring.
+
+    A free string gives the same hookload whatever the block does; one that is held gives up its spring
+    rate. Friction that grows on the way takes far more travel for the same drop.
+    """
+    travel = material.rig.block[since] - material.rig.block
+    sliding = (material.rig.direction > 0) & (material.loads.reach >= material.bit - SHORT_OF_BIT)
+    sliding &= _travel_down(material) > SETTLED_TRAVEL
+    return sliding[since] & (drop >= SPRING_PART * material.spring_rate * np.maximum(travel, LOCKUP_TRAVEL))
 
 
 def _travel_down(material: Material) -> Floats:

@@ -35,6 +35,16 @@ class PlainHole:
         return np.asarray(md) > SHOE
 
 
+class PlainString:
+    """4000 m of one pipe of EA 600 MN: it gives 150 kN a metre."""
+
+    ends = np.array([4000.0])
+
+    def values(self, name):
+        """Property by component."""
+        return {"axial": np.array([600.0e6])}[name]
+
+
 class PlainPath:
     """Vertical to 1500 m, then straight at 85 degrees with a dogleg at 3000 m."""
 
@@ -50,6 +60,7 @@ def make_well():
     """Everything the rules ask of a well."""
     return SimpleNamespace(
         hole=PlainHole(),
+        string=PlainString(),
         trajectory=PlainPath(),
         rotating_weight=lambda bit: 400.0e3 + 20.0 * (np.asarray(bit, dtype=float) - 4000.0),
     )

@@ -223,3 +223,24 @@ def test_ids_run_in_time_order(make_run):
     episodes, _ = find_episodes(run.material())
     assert [e.id for e in episodes] == ["E001", "E002", "E003"]
     assert [e.kind for e in episodes] == [Kind.BUCKLING, Kind.DRAG, Kind.BUCKLING]
+
+
+def going_down(make_run, rate):
+    """Run in at 1 cm/s; over 60 s the hookload falls by `rate` a metre [N/m]."""
+    run = make_run()
+    run.rig["block"][:] = 40.0 - 0.01 * np.arange(run.n)
+    run.rig["on_bottom"][:] = False
+    run.rig["activity"][:] = Activity.TRIP_IN
+    fall = rate * 0.01 * np.clip(np.arange(run.n) - 1000.0, 0.0, 60.0)
+    run.rig["hookload"][:] -= fall
+    return run
+
+
+def test_a_string_stopped_off_bottom_falls_like_a_spring(make_run):
+    (episode,), _ = only(going_down(make_run, 100.0e3).material(), Kind.LOCKUP)
+    assert 1010 <= episode.first <= 1030
+    assert 1058 <= episode.last <= 1092
+
+
+def test_friction_that_grows_off_bottom_is_no_lockup(make_run):
+    assert only(going_down(make_run, 20.0e3).material(), Kind.LOCKUP)[0] == []
