@@ -10,7 +10,7 @@ from forensics.case import LimitSettings
 from forensics.episodes.catalogue import Consequence, Kind, State
 from forensics.episodes.groups import is_routine
 from forensics.estimate import Estimate
-from forensics.report import numbers
+from forensics.report import derived
 from forensics.report.scene import main_episodes
 from forensics.report.words import THIN, Show, count, duration, fixed, zone_of
 
@@ -79,9 +79,9 @@ def test_bending_stress_of_a_helix(build):
     made = build(n=1200, episodes=1)
     inertia = pi / 64 * (0.127**4 - 0.1086**4)
     expected = 0.127 * (0.2159 - 0.1683) / 2 * 100e3 / (4 * inertia)
-    assert numbers.helix_bending_stress(made, made.episodes[0], 100e3) == pytest.approx(expected)
+    assert derived.helix_bending_stress(made, made.episodes[0], 100e3) == pytest.approx(expected)
     nowhere = dataclasses.replace(made.episodes[0], peak_md=nan)
-    assert np.isnan(numbers.helix_bending_stress(made, nowhere, 100e3))
+    assert np.isnan(derived.helix_bending_stress(made, nowhere, 100e3))
 
 
 def test_turns_count_buckled_rotation_only(build):
@@ -97,8 +97,8 @@ def test_turns_count_buckled_rotation_only(build):
         loads=dataclasses.replace(made.loads, state=state),
         rig=dataclasses.replace(made.rig, turning=rpm > 5),
     )
-    assert numbers.turns_while_buckled(made) == pytest.approx(65.0)
-    assert numbers.turns_while_buckled(made, 0, 109) == pytest.approx(10.0)
+    assert derived.turns_while_buckled(made) == pytest.approx(65.0)
+    assert derived.turns_while_buckled(made, 0, 109) == pytest.approx(10.0)
 
 
 def test_seconds_in_state_do_not_count_gaps(build):
@@ -106,13 +106,13 @@ def test_seconds_in_state_do_not_count_gaps(build):
     made = dataclasses.replace(
         made, loads=dataclasses.replace(made.loads, state=np.full(1200, 2, dtype=np.int8))
     )
-    assert numbers.seconds_in_state(made, 2) == pytest.approx(1200.0)
-    assert len(numbers.gaps(made)) == 1
+    assert derived.seconds_in_state(made, 2) == pytest.approx(1200.0)
+    assert len(derived.gaps(made)) == 1
 
 
 def test_margins_against_limits(build, build_case):
     made = build(n=7200, case=build_case(limits=LimitSettings(hookload=2200e3, torque=10e3)))
-    by_name = {margin.name: margin for margin in numbers.margins(made)}
+    by_name = {margin.name: margin for margin in derived.margins(made)}
     assert set(by_name) == {"hookload", "surface torque", "tension in pipe at surface"}
     assert by_name["hookload"].largest == np.nanmax(made.rig.hookload)
     assert by_name["surface torque"].left < 0
@@ -128,14 +128,14 @@ def test_clearance_at_the_pipe_body_lowers_the_threshold(build):
     local = 2.0 * np.sqrt(stiffness * contact / joint)
     flat = dataclasses.replace(profile, sinusoidal=local, contact=contact, state=np.zeros_like(profile.state))
     open_pipe = (profile.md > 2700) & (profile.md < 3100)
-    found = numbers.other_threshold(made, flat)[open_pipe]
+    found = derived.other_threshold(made, flat)[open_pipe]
     assert found == pytest.approx(local[open_pipe] * np.sqrt(joint / body))
-    assert numbers.other_clearance(made) == "pipe body"
+    assert derived.other_clearance(made) == "pipe body"
 
 
 def test_no_limits_no_margins(build, build_case):
     made = build(n=100, case=build_case(limits=LimitSettings()))
-    assert [margin.origin for margin in numbers.margins(made)] == ["string table, as given"]
+    assert [margin.origin for margin in derived.margins(made)] == ["string table, as given"]
 
 
 def test_main_episodes_leave_routine_running_out(build, build_episode):

@@ -9,7 +9,7 @@ from numpy.typing import NDArray
 
 from forensics.episodes.catalogue import Episode
 from forensics.loads import Profile
-from forensics.report import numbers
+from forensics.report import derived
 from forensics.report.figures import lanes, style
 from forensics.report.figures.clock import time_axis
 from forensics.report.figures.decimate import runs, thin
@@ -170,7 +170,7 @@ def _draw_load(ax: Axes, profile: Profile, scene: Scene, span: tuple[float, floa
     sinusoidal = -show.scaled(profile.sinusoidal, "force")
     helical = -show.scaled(profile.helical, "force")
     inside = (profile.md >= span[0]) & (profile.md <= span[1])
-    other = -show.scaled(numbers.other_threshold(scene.findings, profile), "force")
+    other = -show.scaled(derived.other_threshold(scene.findings, profile), "force")
     ax.axvline(0.0, color=style.MUTED, linewidth=0.7)
     ax.fill_betweenx(depth, sinusoidal, other, color=style.SINUSOIDAL, alpha=0.3, linewidth=0, zorder=0.8)
     ax.plot(sinusoidal, depth, color=style.MODEL, linewidth=1.2, linestyle=(0, (4, 1.5)))

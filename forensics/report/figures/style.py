@@ -4,12 +4,12 @@ from __future__ import annotations
 
 import functools
 from collections.abc import Callable, Sequence
-from typing import ParamSpec
+from typing import Any, ParamSpec
 
 import matplotlib as mpl
 from matplotlib.axes import Axes
 from matplotlib.backends.backend_agg import FigureCanvasAgg
-from matplotlib.colors import BoundaryNorm, ListedColormap
+from matplotlib.colors import BoundaryNorm, Colormap, ListedColormap
 from matplotlib.figure import Figure
 
 MAX_WIDTH = 11.0
@@ -77,7 +77,7 @@ _BACKEND_KEYS = {"backend", "backend_fallback", "interactive", "toolbar", "timez
 P = ParamSpec("P")
 
 
-def house_settings() -> dict[str, object]:
+def house_settings() -> dict[str, Any]:
     """Give settings for drawing: matplotlib's defaults, whatever the user's file says, then our style."""
     defaults = {k: v for k, v in mpl.rcParamsDefault.items() if k not in _BACKEND_KEYS}
     return defaults | _STYLE
@@ -149,7 +149,7 @@ def ratio_edges(criterion: str) -> tuple[float, ...]:
     return (0.0, 0.25, 0.5, 0.75, 1.0, onset, round(1.5 * onset, 1), round(2.0 * onset, 1))
 
 
-def ratio_colours(criterion: str) -> tuple[ListedColormap, BoundaryNorm]:
+def ratio_colours(criterion: str) -> tuple[Colormap, BoundaryNorm]:
     """Colour steps of the load ratio."""
     colours = ListedColormap(list(_RATIO_COLOURS)).with_extremes(over=RATIO_OVER, bad="#ffffff")
     return colours, BoundaryNorm(list(ratio_edges(criterion)), colours.N)

@@ -40,7 +40,7 @@ def fan_chart(scene: Scene) -> Figure:
     }
     for kind, (line, low, high, dash) in lines.items():
         colour = KINDS[kind][1]
-        if low is not None:
+        if low is not None and high is not None:
             ax.fill_betweenx(
                 depth, show.scaled(low, "force"), show.scaled(high, "force"), color=colour, alpha=0.18, lw=0
             )

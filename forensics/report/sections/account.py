@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 
 from forensics.logs.table import Reason
-from forensics.report import numbers
+from forensics.report import derived
 from forensics.report.elements import Bullets, Column, Element, Section, Table, Text
 from forensics.report.scene import Scene
 from forensics.report.words import count, duration, fixed
@@ -74,7 +74,7 @@ def reason_table(scene: Scene) -> Table:
 def gap_table(scene: Scene) -> Table:
     """Longest gaps."""
     show = scene.show
-    found = numbers.gaps(scene.findings)
+    found = derived.gaps(scene.findings)
     longest = sorted(sorted(found, key=lambda g: (g[0] - g[1], g[0]))[:GAP_ROWS])
     rows = tuple((show.time(a), show.time(b), duration(b - a)) for a, b in longest)
     columns = (Column(f"from ({show.timezone})"), Column(f"to ({show.timezone})"), Column("length", "number"))

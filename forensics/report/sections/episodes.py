@@ -9,7 +9,7 @@ import numpy as np
 from forensics.episodes.catalogue import CauseView, Consequence, Episode, Evidence, Kind, State
 from forensics.episodes.groups import is_routine
 from forensics.episodes.headline import gravity
-from forensics.report import numbers
+from forensics.report import derived
 from forensics.report.elements import (
     Column,
     Element,
@@ -145,10 +145,10 @@ def _clearance_row(scene: Scene, episode: Episode) -> list[Number]:
     profile = scene.findings.profiles.get(episode.id)
     if profile is None or not episode.peak_load_ratio.value > 0.0:
         return []
-    ratio = -profile.tension / numbers.other_threshold(scene.findings, profile)
+    ratio = -profile.tension / derived.other_threshold(scene.findings, profile)
     if not np.isfinite(ratio).any() or np.nanmax(ratio) <= 0.0:
         return []
-    name = f"largest load ratio if the clearance is taken at the {numbers.other_clearance(scene.findings)}"
+    name = f"largest load ratio if the clearance is taken at the {derived.other_clearance(scene.findings)}"
     return [Number(name, fixed(float(np.nanmax(ratio)), 2), "", "load profile at the peak, approximate")]
 
 
@@ -160,7 +160,7 @@ def _profile_picture(scene: Scene, episode: Episode) -> Picture:
         "tension is positive to the right, compression negative to the left. Dashed: sinusoidal "
         "threshold; dotted: helical threshold, both at the actual wall force; pale band: how far the "
         "sinusoidal one moves if the clearance is taken at the "
-        f"{numbers.other_clearance(scene.findings)}. Where the load lies left of a threshold the string is "
+        f"{derived.other_clearance(scene.findings)}. Where the load lies left of a threshold the string is "
         "past it; bars at the left edge show the state the replay gave (light: sinusoidal; dark: helical)."
     )
     compression = -float(profile.tension.min()) if len(profile.tension) else math.nan

@@ -8,7 +8,7 @@ from forensics.episodes.catalogue import Consequence, Episode, Kind
 from forensics.episodes.groups import is_routine
 from forensics.episodes.headline import gravity
 from forensics.estimate import Estimate
-from forensics.report import numbers
+from forensics.report import derived
 from forensics.report.elements import Column, Element, Finding, Notice, Number, Numbers, Section, Table, Text
 from forensics.report.scene import Scene
 from forensics.report.words import Show, count, duration, fixed
@@ -66,7 +66,7 @@ def key_numbers(scene: Scene) -> tuple[Number, ...]:
     if worst is not None:
         rows += episode_numbers(worst, show, prefix=f"{worst.id}: ")
     if found.loads.state.size:
-        helical, any_state = (numbers.seconds_in_state(found, k) for k in (2, 1))
+        helical, any_state = (derived.seconds_in_state(found, k) for k in (2, 1))
         rows += [
             Number("time with a helix somewhere in the string", duration(helical), "", REPLAY),
             Number("time with any buckling, sinusoidal included", duration(any_state), "", REPLAY),
@@ -150,12 +150,12 @@ FATIGUE = (
 def rotation_sentence(scene: Scene, episode: Episode) -> str:
     """How often and how hard the pipe was bent in one episode."""
     found, show = scene.findings, scene.show
-    turns = numbers.turns_while_buckled(found, episode.first, episode.last)
+    turns = derived.turns_while_buckled(found, episode.first, episode.last)
     often = (
         f"about {fixed(turns, 0)} turns" if math.isfinite(turns) else "turns not counted, the log has no rpm"
     )
     stress = [
-        numbers.helix_bending_stress(found, episode, force)
+        derived.helix_bending_stress(found, episode, force)
         for force in (
             episode.peak_compression.value,
             episode.peak_compression.low,
@@ -164,7 +164,7 @@ def rotation_sentence(scene: Scene, episode: Episode) -> str:
     ]
     text = f"{episode.id}: {often} between {show.stamp(episode.start)} and {show.stamp(episode.end)}"
     if math.isfinite(stress[0]):
-        value, interval = show.estimate(Estimate(*stress, "helix"), "stress")
+        value, interval = show.estimate(Estimate(stress[0], stress[1], stress[2], "helix"), "stress")
         spread = f" ({interval})" if interval != "no interval" else ""
         text += f"; bending stress of a helix there {value}{spread}, from pitch and clearance, pipe body"
     return text + "."
@@ -174,7 +174,7 @@ def describe_margins(scene: Scene) -> Table | None:
     """Margins against limits and ratings, where any are given."""
     show = scene.show
     rows = []
-    for m in numbers.margins(scene.findings):
+    for m in derived.margins(scene.findings):
         if not math.isfinite(m.largest):
             rows.append(
                 (m.name, show.value(m.limit, m.quantity), "not in the log", "", "not judged", m.origin)

@@ -143,7 +143,8 @@ def other_threshold(findings: Findings, profile: Profile) -> Floats:
     compression = np.clip(-profile.tension, 0.0, None)
     helix = np.where(profile.state == 2, radii[0] * compression**2 / (4.0 * stiffness), 0.0)
     local = 2.0 * np.sqrt(stiffness * np.clip(profile.contact - helix, 0.0, None) / radii[0])
-    return profile.sinusoidal + local * (np.sqrt(radii[0] / radii[1]) - 1.0)
+    moved: Floats = profile.sinusoidal + local * (np.sqrt(radii[0] / radii[1]) - 1.0)
+    return moved
 
 
 def margins(findings: Findings) -> tuple[Margin, ...]:
