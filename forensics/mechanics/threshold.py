@@ -18,8 +18,8 @@ from forensics.mechanics.selfconsistent import ContactSize, local_load, lowest_c
 VERTICAL_HELICAL = 5.55
 """Helical onset in a vertical hole over (EI w^2)^(1/3): Wu and Juvkam-Wold, from memory."""
 
-ENVELOPE_RELEASE = 1.370
-"""Least load over F_DP at which a helix still touches the wall all round (the case's `envelope` release)."""
+ENVELOPE_RELEASE = 1.370405
+"""Least load over F_DP at which a helix still touches the wall all round (`helix_limit.unloading_limit`)."""
 
 
 
@@ -133,7 +133,7 @@ def release_load(sinusoidal: ArrayLike, local: ArrayLike, rule: str) -> Floats:
     sinusoidal, local : array_like
         F_sin and F_DP at the place [N].
     rule : str
-        "unbuckled" (F_sin) or "envelope" (the larger of F_sin and 1.370 F_DP).
+        "unbuckled" (F_sin) or "envelope" (the larger of F_sin and 1.370405 F_DP).
 
     Returns
     -------
