@@ -8,9 +8,8 @@ import itertools
 from collections.abc import Iterator
 from dataclasses import dataclass
 from functools import cache
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
-import matplotlib as mpl
 import numpy as np
 from jinja2 import Environment, PackageLoader, StrictUndefined
 from matplotlib.backends.backend_agg import FigureCanvasAgg
@@ -18,7 +17,7 @@ from PIL import Image
 
 from forensics.report.describe import describe
 from forensics.report.elements import Element, Part, Picture, Report, Section
-from forensics.report.figures.style import house_settings
+from forensics.report.figures.style import house_style
 
 if TYPE_CHECKING:
     from matplotlib.figure import Figure
@@ -62,7 +61,7 @@ def render(findings: Findings, units: str = "metric") -> str:
 def render_report(report: Report) -> str:
     """Render content elements to HTML, figures numbered in order."""
     counter = itertools.count(1)
-    with mpl.rc_context(house_settings()):
+    with house_style():
         sections = [_draw_section(section, counter) for section in report.sections]
     return _environment().get_template("report.html.j2").render(report=report, sections=sections)
 
@@ -75,7 +74,7 @@ def png(figure: Figure) -> bytes:
     Charts have few hues, so a palette of 256 loses nothing an eye can see and makes the file a third as big
     and faster to write. Pillow comes with matplotlib.
     """
-    canvas = FigureCanvasAgg(figure)
+    canvas: Any = FigureCanvasAgg(figure)
     canvas.draw()
     picture = Image.fromarray(np.asarray(canvas.buffer_rgba())).convert("RGB")
     # The figure is a knot of cycles that lives until the collector comes by; its pixels need not.

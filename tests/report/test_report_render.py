@@ -8,9 +8,11 @@ import matplotlib.pyplot as plt
 import numpy as np
 import pytest
 
+from forensics.case import CriteriaSettings
 from forensics.episodes.catalogue import Consequence, State
 from forensics.errors import UnitError
 from forensics.friction.result import Calibration
+from forensics.loads import Fan, RatioMap
 from forensics.report.render import render
 
 VOID = {"meta", "img", "br", "link", "input", "hr"}
@@ -213,6 +215,20 @@ def test_nothing_calibrated(build):
     )  # fmt: skip
     text = render(dataclasses.replace(made, calibration=bare))
     assert "no steady off-bottom reading" in text
+
+
+def test_no_model_line_and_no_map(build, build_case):
+    case = build_case(criteria=CriteriaSettings(helical_onset="mitchell", clearance="body"))
+    made = build(n=600, episodes=1, case=case)
+    empty = np.empty(0)
+    made = dataclasses.replace(
+        made,
+        fan=Fan(*[empty] * 8),
+        loads=dataclasses.replace(made.loads, ratio_map=RatioMap(empty, empty, np.empty((0, 0)))),
+    )
+    text = render(made)
+    assert "There is no load ratio map" in text
+    assert "clearance is taken at the tool joint" in text
 
 
 @pytest.mark.parametrize("rows", [2, 3, 40])

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import functools
 from collections.abc import Callable, Sequence
+from contextlib import AbstractContextManager
 from typing import Any, ParamSpec
 
 import matplotlib as mpl
@@ -77,10 +78,10 @@ _BACKEND_KEYS = {"backend", "backend_fallback", "interactive", "toolbar", "timez
 P = ParamSpec("P")
 
 
-def house_settings() -> dict[str, Any]:
-    """Give settings for drawing: matplotlib's defaults, whatever the user's file says, then our style."""
-    defaults = {k: v for k, v in mpl.rcParamsDefault.items() if k not in _BACKEND_KEYS}
-    return defaults | _STYLE
+def house_style() -> AbstractContextManager[None]:
+    """Draw under matplotlib's defaults, whatever the user's file says, with the house style on top."""
+    settings: Any = {k: v for k, v in mpl.rcParamsDefault.items() if k not in _BACKEND_KEYS} | _STYLE
+    return mpl.rc_context(settings)
 
 
 def styled(draw: Callable[P, Figure]) -> Callable[P, Figure]:
@@ -88,7 +89,7 @@ def styled(draw: Callable[P, Figure]) -> Callable[P, Figure]:
 
     @functools.wraps(draw)
     def wrapper(*args: P.args, **kwargs: P.kwargs) -> Figure:
-        with mpl.rc_context(house_settings()):
+        with house_style():
             return draw(*args, **kwargs)
 
     return wrapper
