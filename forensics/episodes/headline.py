@@ -13,7 +13,9 @@ from forensics.episodes.causes.weigh import UNTOLD
 from forensics.episodes.groups import DOING, is_routine, rule_label
 from forensics.episodes.material import Material
 from forensics.episodes.measure import CERTAIN, helical_span
+from forensics.episodes.ordinary import near_threshold, ordinary_loss
 from forensics.episodes.spans import Span
+from forensics.estimate import Estimate
 
 #: Episodes told one by one below the sentence.
 TOLD = 6
@@ -23,6 +25,9 @@ SURE, LIKELY = 0.9, 0.6
 
 #: Torque left in a string that does not turn counts from this part of the usual rotating torque.
 TRAPPED = 0.3
+
+QUIET = "Nothing passed a threshold that matters: no helical buckling, no lockup, no drag or torque beyond "
+    "the model."
 
 GRAVITY = {
     Consequence.LOCKED_UP: 4,
@@ -50,15 +55,15 @@ def headline(material: Material, episodes: tuple[Episode, ...], system: str = "m
         counted in the details and kept out of the sentence.
     """
     main = sorted((e for e in episodes if not is_routine(e)), key=gravity, reverse=True)
-    if main and main[0].kind in (Kind.BUCKLING, Kind.LOCKUP):
+    loaded = bool(main) and main[0].kind in (Kind.BUCKLING, Kind.LOCKUP)
+    if loaded:
         sentence = _loaded(material, main[0], system)
     elif main:
         sentence = _dragging(material, main, system)
     else:
-        sentence = (
-            "Nothing passed a threshold that matters: no helical buckling, no lockup, no drag or torque "
-            "beyond the model."
-        )
+        sentence = QUIET
+    if not loaded:
+        sentence = f"{sentence} {ordinary_loss(material, system)}".rstrip()
     return Headline(
         sentence=sentence,
         confidence=_confidence(material, main),
@@ -159,7 +164,7 @@ def _dragging(material: Material, main: list[Episode], system: str) -> str:
         text += (
             f": at the largest, {doing} with the bit at {wording.depth(worst.peak_md, system)}, "
             f"{wording.period(worst.start, worst.end, material.log.timezone)}, the {what} was "
-            f"{wording.size(peak, quantity, system)} against the model"
+            f"{_beyond(peak, quantity, system)}"
         )
     causes = Counter(e.cause for e in main if e.cause)
     text += "."
@@ -172,6 +177,14 @@ def _dragging(material: Material, main: list[Episode], system: str) -> str:
     return text
 
 
+def _beyond(residual: Estimate, quantity: str, system: str) -> str:
+    """Write a residual as more or less than the model says."""
+    side = "more" if residual.value > 0.0 else "less"
+    low, high = sorted((abs(residual.low), abs(residual.high)))
+    size = Estimate(abs(residual.value), low, high, residual.source)
+    return f"{wording.size(size, quantity, system)} {side} than the model says"
+
+
 def _confidence(material: Material, main: list[Episode]) -> str:
     """Grade the finding, and say on what."""
     sections = material.calibration.sections
@@ -182,7 +195,9 @@ def _confidence(material: Material, main: list[Episode]) -> str:
         else "friction was determined from this run's own weights"
     )
     if not main:
-        return f"{'moderate' if assumed else 'high'}: {friction}"
+        near = near_threshold(material)
+        said = f"{friction}; {near}" if near else friction
+        return f"{'moderate' if assumed or near else 'high'}: {said}"
     chance = main[0].probability
     if not np.isfinite(chance):
         return f"low: the spread over friction draws was not reckoned; {friction}"
@@ -203,7 +218,7 @@ def _details(
             line += f", lost weight {wording.size(episode.lost_weight, 'force', system)}"
         if episode.peak_residual is not None:
             quantity = "force" if episode.kind is Kind.DRAG else "moment"
-            line += f", {wording.size(episode.peak_residual, quantity, system)} against the model"
+            line += f", {_beyond(episode.peak_residual, quantity, system)}"
         if np.isfinite(episode.probability):
             line += f", probability {episode.probability:.2f}"
         if episode.cause:

@@ -43,6 +43,25 @@ def test_buckling_is_told_with_when_where_how_much_and_why(make_run):
     assert "E002" not in text
 
 
+def test_weight_lost_to_plain_friction_is_told(make_run):
+    """No buckling, but most of what was set down stayed on the wall."""
+    run = make_run()
+    run.rig["wob_surface"][:] = 200.0e3
+    run.loads["bit_load"][:] = 50.0e3
+    text = describe(run.material()).headline.sentence
+    assert text.startswith("Nothing passed")
+    assert "up to 150 kN" in text
+    assert "open-hole factor at 0.30 (0.28 to 0.32; assumed before calibration: 0.28)" in text
+
+
+def test_a_near_miss_lowers_the_confidence(make_run):
+    run = make_run()
+    run.loads["peak_ratio"][100:200] = 0.95
+    confidence = describe(run.material()).headline.confidence
+    assert confidence.startswith("moderate")
+    assert "0.95" in confidence
+
+
 def test_field_units(make_run):
     text = describe(stacked(make_run).material(), "field").headline.sentence
     assert "klbf" in text
@@ -56,6 +75,7 @@ def test_drag_without_buckling(make_run):
     assert "1 drag episode" in text
     assert "pulling out" in text
     assert "60.0 kN" in text
+    assert "more than the model says" in text
 
 
 def test_assumed_friction_lowers_the_confidence(make_run):
