@@ -26,8 +26,10 @@ SURE, LIKELY = 0.9, 0.6
 #: Torque left in a string that does not turn counts from this part of the usual rotating torque.
 TRAPPED = 0.3
 
-QUIET = "Nothing passed a threshold that matters: no helical buckling, no lockup, no drag or torque beyond "
+QUIET = (
+    "Nothing passed a threshold that matters: no helical buckling, no lockup, no drag or torque beyond "
     "the model."
+)
 
 GRAVITY = {
     Consequence.LOCKED_UP: 4,
