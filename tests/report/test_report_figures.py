@@ -1,5 +1,7 @@
 """Figures: sizes, units on axes, thinning that keeps the extremes."""
 
+import dataclasses
+
 import numpy as np
 import pytest
 from hypothesis import given, settings
@@ -133,6 +135,15 @@ def test_ticks_name_a_new_day():
     start = 1_714_723_200.0
     _, labels = clock.ticks(start, start + 30 * 3600, Show("metric", "UTC"))
     assert [label for label in labels if "\n" in label] == ["09:00\n3 May", "00:00\n4 May"]
+
+
+def test_fan_stands_a_line_without_end(findings):
+    fan = findings.fan
+    low = fan.slack_off_low.copy()
+    low[-5:] = -np.inf
+    broken = dataclasses.replace(findings, fan=dataclasses.replace(fan, slack_off_low=low))
+    left, right = weights.fan_chart(make_scene(broken, "metric")).get_axes()[0].get_xlim()
+    assert 0.0 < left < right < 2000.0
 
 
 def lightness(colour) -> float:

@@ -12,6 +12,7 @@ from forensics.report.figures import style
 from forensics.report.figures.clock import time_axis
 from forensics.report.figures.decimate import thin
 from forensics.report.scene import Scene
+from forensics.report.words import Show
 from forensics.rig.view import Activity
 
 Floats = NDArray[np.float64]
@@ -41,10 +42,8 @@ def fan_chart(scene: Scene) -> Figure:
     for kind, (line, low, high, dash) in lines.items():
         colour = KINDS[kind][1]
         if low is not None and high is not None:
-            ax.fill_betweenx(
-                depth, show.scaled(low, "force"), show.scaled(high, "force"), color=colour, alpha=0.18, lw=0
-            )
-        ax.plot(show.scaled(line, "force"), depth, color=colour, linewidth=1.4, linestyle=dash)
+            ax.fill_betweenx(depth, _finite(low, show), _finite(high, show), color=colour, alpha=0.18, lw=0)
+        ax.plot(_finite(line, show), depth, color=colour, linewidth=1.4, linestyle=dash)
     for kind, (_, colour, marker) in KINDS.items():
         picked = [r for r in readings if r.kind == kind]
         ax.plot(
@@ -66,6 +65,11 @@ def fan_chart(scene: Scene) -> Figure:
     ax.set_xlabel(f"hookload with block weight [{show.unit('force')}]")
     ax.set_ylabel(f"bit depth [{show.unit('length')}]")
     return figure
+
+
+def _finite(force: Floats, show: Show) -> Floats:
+    """Forces as shown, NaN where the model has none: past lockup a slack-off line has no end."""
+    return np.where(np.isfinite(force), show.scaled(force, "force"), np.nan)
 
 
 def _end_names(ax: Axes, depth: Floats, lines: dict[str, Floats]) -> None:
