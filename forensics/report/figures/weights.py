@@ -68,7 +68,7 @@ def fan_chart(scene: Scene) -> Figure:
 
 
 def _finite(force: Floats, show: Show) -> Floats:
-    """Forces as shown, NaN where the model has none: past lockup a slack-off line has no end."""
+    """Scale forces, NaN where the model has none: past lockup a slack-off line has no end."""
     return np.where(np.isfinite(force), show.scaled(force, "force"), np.nan)
 
 
