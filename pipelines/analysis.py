@@ -25,7 +25,8 @@ from forensics.replay.draws import replay_draws
 from forensics.replay.lines import fan
 from forensics.replay.model import build_model
 from forensics.replay.moments import profiles
-from forensics.replay.run import Replay, block_zero, ready, replay
+from forensics.replay.ready import block_zero, ready
+from forensics.replay.run import Replay, replay
 from forensics.report.scene import main_episodes
 from forensics.rig.absent import absent_channels
 from forensics.rig.activity import refine_activity

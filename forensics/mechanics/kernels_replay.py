@@ -38,7 +38,8 @@ class Samples(NamedTuple):
     down, -1 up, kept until it reverses; `travel` block travel since it reversed [m]; `drilling` bit on
     or near bottom and pumping; `free` bit clear of bottom; `share` axial share of friction while turning, signed
     by direction; `down`, `up` local multiples of friction; `scale` of weights for mud; `step` time since
-    the row before [s]; `witness` bit load by differential pressure [N] or NaN.
+    the row before [s]; `witness` most the bit load can be by differential pressure [N], infinite where
+    that is silent.
     """
 
     bit: Array
@@ -215,14 +216,12 @@ def drilling_off(setting: Setting, run: Run, place: Place, t: int) -> int:
     samples, memory, rules = run.samples, run.memory, run.rules
     load = -memory.tension[0]
     rub = samples.down[t]
-    witness = samples.witness[t]
-    if not np.isnan(witness):
-        if load - witness > rules.band:
-            _, end = bit_curve(setting, memory, place, rub, -max(witness, 0.0), np.inf)
-            last = place.top if end < 0 else end
-            memory.tension[: last + 1] = memory.work[: last + 1]
-            if end < 0:
-                run.now[MODE] = 1.0
+    if load > max(samples.witness[t], 0.0):
+        _, end = bit_curve(setting, memory, place, rub, -max(samples.witness[t], 0.0), np.inf)
+        last = place.top if end < 0 else end
+        memory.tension[: last + 1] = memory.work[: last + 1]
+        if end < 0:
+            run.now[MODE] = 1.0
         return BY_PRESSURE
     if rules.rate <= 0.0 or load <= 0.0:
         return BY_MEMORY

@@ -6,7 +6,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics.loads import DrawHistory
-from forensics.replay.room import fresh, go, restart, take
+from forensics.replay.room import blocks, fresh, go, take
 from forensics.replay.run import Replay
 
 
@@ -26,18 +26,18 @@ def replay_draws(run: Replay, rows: NDArray[np.bool_], count: int = 7) -> DrawHi
     order = np.argsort(draws[:, 1] + draws[:, 0], kind="stable")
     picked = ((np.arange(count) + 0.5) * len(order) / count).astype(int) if len(order) else order
     chosen = draws[order[picked]]
-    blocks = _blocks(run.prepared.samples.mode, rows)
+    parts = blocks(run.prepared.samples.mode, rows)
     n = len(run.log)
     state = np.zeros((len(chosen), n), dtype=np.int8)
     ratio = np.full((len(chosen), n), np.nan, dtype=np.float32)
     load = np.full((len(chosen), n), np.nan, dtype=np.float32)
     covered = np.zeros(n, dtype=bool)
-    for start, stop in blocks:
+    for start, stop in parts:
         covered[start:stop] = True
     for k, (cased, open_hole, block) in enumerate(chosen):
         at = run.model.setting(cased, open_hole)
         shift = block - run.calibration.block_weight.value
-        for start, stop in blocks:
+        for start, stop in parts:
             part = take(run.prepared.samples, slice(start, stop))
             part = part._replace(top=part.top - shift)
             found = go(at, part, run.rules, fresh(run.model))
@@ -46,16 +46,3 @@ def replay_draws(run: Replay, rows: NDArray[np.bool_], count: int = 7) -> DrawHi
             load[k, start:stop] = found.bit_load
     weights = np.full(len(chosen), 1.0 / max(len(chosen), 1))
     return DrawHistory(weights, chosen[:, 0], chosen[:, 1], covered, state, ratio, load)
-
-
-def _blocks(mode: NDArray[np.int8], rows: NDArray[np.bool_]) -> list[tuple[int, int]]:
-    """Stretches of rows to replay so that every row asked for has its lead-up, merged where they meet."""
-    edges = np.flatnonzero(np.diff(np.concatenate([[0], rows.astype(np.int8), [0]]))).reshape(-1, 2)
-    merged: list[tuple[int, int]] = []
-    for start, stop in edges:
-        lead = restart(mode, int(start))
-        if merged and lead <= merged[-1][1]:
-            merged[-1] = (merged[-1][0], int(stop))
-        else:
-            merged.append((lead, int(stop)))
-    return merged

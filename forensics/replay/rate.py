@@ -15,7 +15,7 @@ WINDOW_SECONDS = 60.0
 LEAST_WINDOWS = 8
 LEAST_LOAD = 5e3  # N; below this the load is mostly zero error
 EXPONENTS = (0.5, 2.0)  # common practice, no source: drilling rate goes with weight to a power near one
-SPREAD_FOR_EXPONENT = 0.15  # log units; less spread of load says nothing about the exponent
+SPREAD_FOR_EXPONENT = 0.4  # log units; less spread of load says nothing about the exponent
 
 
 def learn_rate(log: TimeLog, rig: RigView, bit_load: Floats) -> RateLaw:

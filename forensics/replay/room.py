@@ -48,3 +48,16 @@ def restart(mode: NDArray[np.int8], row: int) -> int:
     """Row to start from so that the memory is right at `row`: where the string last turned for a while."""
     turned = np.flatnonzero(mode[: max(row - LEAD, 0)] == TURN)
     return max(int(turned[-1]) - LEAD, 0) if len(turned) else 0
+
+
+def blocks(mode: NDArray[np.int8], rows: NDArray[np.bool_]) -> list[tuple[int, int]]:
+    """Stretches of rows to replay so that every row asked for has its lead-up, merged where they meet."""
+    edges = np.flatnonzero(np.diff(np.concatenate([[0], rows.astype(np.int8), [0]]))).reshape(-1, 2)
+    merged: list[tuple[int, int]] = []
+    for start, stop in edges:
+        lead = restart(mode, int(start))
+        if merged and lead <= merged[-1][1]:
+            merged[-1] = (merged[-1][0], int(stop))
+        else:
+            merged.append((lead, int(stop)))
+    return merged

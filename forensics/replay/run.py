@@ -7,18 +7,15 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from forensics.case import Case
 from forensics.friction.result import Calibration
 from forensics.loads import LoadHistory, RateLaw, RatioMap
 from forensics.logs.table import TimeLog
-from forensics.mechanics.kernels_replay import TURN, Rules, Run, replay_rows
+from forensics.mechanics.kernels_replay import Rules, Run, replay_rows
 from forensics.mechanics.offbottom import OffBottomModel
 from forensics.replay.lines import drag_lines, torque_lines
-from forensics.replay.local import match_locally
-from forensics.replay.model import build_model, factors
-from forensics.replay.rate import learn_rate
+from forensics.replay.model import factors
 from forensics.replay.room import fresh, room
-from forensics.replay.samples import Prepared, prepare
+from forensics.replay.samples import Prepared
 from forensics.replay.slide import straight_drag
 from forensics.rig.view import RigView
 from forensics.well.model import Well
@@ -27,12 +24,15 @@ Floats = NDArray[np.float64]
 
 MAP_TIMES = 600
 MAP_DEPTHS = 240
-BAND_NOISES = 1.5
 
 
 @dataclass(frozen=True)
 class Replay:
-    """A replay made ready: everything that does not change between friction draws."""
+    """A replay made ready: everything that does not change between friction draws.
+
+    `moved` is how much more the string rubs, row by row, than its weight readings said, where the bit's
+    own witness showed it (None: no witness).
+    """
 
     log: TimeLog
     well: Well
@@ -42,37 +42,7 @@ class Replay:
     prepared: Prepared
     rules: Rules
     rate_law: RateLaw
-
-
-def block_zero(rig: RigView) -> float:
-    """Block height taken as no pipe above the rotary: the lowest seen out of slips [m]."""
-    height = rig.block[~rig.slips & np.isfinite(rig.block)]
-    return float(np.percentile(height, 1.0)) if len(height) else 0.0
-
-
-def ready(
-    log: TimeLog,
-    well: Well,
-    rig: RigView,
-    calibration: Calibration,
-    case: Case,
-    model: OffBottomModel | None = None,
-) -> Replay:
-    """Make a run ready for replay: tables, samples, local match, rate law."""
-    if model is None:
-        depth = float(np.nanmax(log.values["bit_depth"]))
-        model = build_model(well, case, depth, block_zero(rig))
-    local = match_locally(log.time, calibration, model)
-    prepared = prepare(log, well, rig, calibration, model, local)
-    law = learn_rate(log, rig, _turning_load(prepared, model))
-    noise = rig.noise.get("hookload", 1e3)
-    rules = Rules(
-        band=max(BAND_NOISES * noise, 0.5e3),
-        tolerance=max(6.0 * noise, 10e3),
-        rate=law.rate,
-        exponent=law.exponent,
-    )
-    return Replay(log, well, rig, calibration, model, prepared, rules, law)
+    moved: Floats | None = None
 
 
 def replay(run: Replay) -> LoadHistory:
@@ -108,11 +78,3 @@ def replay(run: Replay) -> LoadHistory:
         ratio_map=RatioMap(times, depths, found.chart),
         rate_law=run.rate_law, visits=int(visits),
     )
-
-
-def _turning_load(prepared: Prepared, model: OffBottomModel) -> Floats:
-    """Bit load while turning on bottom: rotating weight less hookload [N]."""
-    samples = prepared.samples
-    grid = np.linspace(np.min(samples.bit), np.max(samples.bit) + 1.0, 400)
-    weight = np.interp(samples.bit, grid, model.string_weight("rotating", grid, 0.0, 0.0))
-    return np.where(samples.mode == TURN, weight * samples.scale - samples.top, np.nan)

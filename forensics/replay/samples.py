@@ -63,7 +63,7 @@ def prepare(
         up=local.up,
         scale=weight_scale(log, well, calibration),
         step=np.clip(np.diff(log.time, prepend=log.time[0]), 0.0, 4.0 * log.interval),
-        witness=np.full(len(log), np.nan),
+        witness=np.full(len(log), np.inf),
     )
     return Prepared(samples, hookload, hanging)
 

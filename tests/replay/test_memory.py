@@ -56,7 +56,7 @@ def rows(top, direction, **changes) -> Samples:
         "up": np.ones(n),
         "scale": np.ones(n),
         "step": np.ones(n),
-        "witness": np.full(n, np.nan),
+        "witness": np.full(n, np.inf),
     }
     return Samples(**(base | changes))
 
