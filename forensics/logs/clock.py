@@ -21,6 +21,7 @@ from forensics.logs.clock_text import (
     looks_like_date,
     take_apart,
 )
+from forensics.logs.nulls import mostly_numbers, to_numbers
 from forensics.logs.raw import RawLog
 from forensics.logs.zone import to_utc, zone_of
 
@@ -122,7 +123,8 @@ def read_clock(raw: RawLog, timezone: str, chosen: tuple[str, str | None] | None
     column = raw.table[place]
     if date_place is not None and raw.table[date_place].isna().all():
         date_place = None
-    if _is_number(column):
+    values = mostly_numbers(column)
+    if values is not None and np.isfinite(values).any():
         return _from_numbers(raw, (place, date_place), unit, zone)
     sample = column.dropna()
     if len(sample) == 0:
@@ -148,11 +150,11 @@ def _pick(raw: RawLog, chosen: tuple[str, str | None] | None) -> tuple[int, str 
     named = [i for i in filled if channels.normalise(raw.names[i]) in _CLOCK_NAMES]
     named += [i for i in filled if channels.match(raw.names[i])[0] == "time"]
     named += [i for i in filled if channels.normalise(raw.names[i]) in _DATE_NAMES]
-    full = [i for i in named if not _is_number(raw.table[i]) and _holds_stamps(raw.table[i])]
+    full = [i for i in named if _holds_stamps(raw.table[i])]
     for i in (*full, *named):
         return i, raw.units[i]
     for i in filled:
-        if not _is_number(raw.table[i]) and _holds_stamps(raw.table[i]):
+        if _holds_stamps(raw.table[i]):
             return i, raw.units[i]
     if not raw.format.startswith("CSV") and filled and raw.start is not None:
         return filled[0], raw.units[filled[0]]
@@ -160,12 +162,6 @@ def _pick(raw: RawLog, chosen: tuple[str, str | None] | None) -> tuple[int, str 
     raise LogError(
         f'found no column of time among {seen}; name it under [logs.channels] as time = "..."', file=raw.path
     )
-
-
-def _is_number(column: pd.Series) -> bool:
-    import pandas as pd
-
-    return bool(pd.api.types.is_numeric_dtype(column))
 
 
 def _holds_stamps(column: pd.Series) -> bool:
@@ -264,12 +260,7 @@ def _clock_and_date(
             file=raw.path, line=raw.first_line, column=raw.names[place],
         )  # fmt: skip
     if date_place is not None:
-        column = raw.table[date_place]
-        days = (
-            clock_number.days(column.to_numpy(float)) if _is_number(column) else _stamps(column, raw, order)
-        )
-        if isinstance(days, _Stamps):
-            order, days = days.order, days.days
+        days, order = _days_of(raw, date_place, order)
         local = days * DAY + stamps.seconds
         names = (raw.names[date_place], raw.names[place])
         return Clock(_shift(local, stamps.offset, zone), names, "date and clock in two columns", order=order)
@@ -281,6 +272,15 @@ def _clock_and_date(
         dated=False,
         warnings=("the log gives a clock without a date: stamps count from 1970-01-01",),
     )
+
+
+def _days_of(raw: RawLog, place: int, order: str | None) -> tuple[Floats, str | None]:
+    """Read a column of dates, packed or in words, as day numbers."""
+    values = mostly_numbers(raw.table[place])
+    if values is not None and np.isfinite(values).any():
+        return clock_number.days(values), order
+    stamps = _stamps(raw.table[place], raw, order)
+    return stamps.days, stamps.order
 
 
 def _shift(local: Floats, offset: Floats, zone: ZoneInfo | float) -> Floats:
@@ -313,7 +313,7 @@ def _from_numbers(
     raw: RawLog, places: tuple[int, int | None], unit: str | None, zone: ZoneInfo | float
 ) -> Clock:
     place, date_place = places
-    values = raw.table[place].to_numpy(dtype=np.float64, na_value=np.nan)
+    values = to_numbers(raw.table[place])[0]
     name = raw.names[place]
     if date_place is not None and channels.normalise(name) not in _DATE_NAMES:
         return _number_and_date(raw, (place, date_place), values, zone)
@@ -341,15 +341,9 @@ def _from_numbers(
 
 def _number_and_date(raw: RawLog, places: tuple[int, int], values: Floats, zone: ZoneInfo | float) -> Clock:
     place, date_place = places
-    column = raw.table[date_place]
     names = (raw.names[date_place], raw.names[place])
     seconds = clock_number.seconds_of_day(values, raw.units[place])
-    order = None
-    if _is_number(column):
-        days = clock_number.days(column.to_numpy(float))
-    else:
-        stamps = _stamps(column, raw, None)
-        days, order = stamps.days, stamps.order
+    days, order = _days_of(raw, date_place, None)
     if seconds is None or not np.isfinite(days).any():
         alone = replace(raw, table=raw.table.drop(columns=date_place))
         return _from_numbers(alone, (place, None), raw.units[place], zone)

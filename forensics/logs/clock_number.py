@@ -64,7 +64,7 @@ def days(values: Floats) -> Floats:
 
 
 def _packed_day(value: float) -> float:
-    if not np.isfinite(value) or value != int(value) or value <= 0:
+    if not 0 < value < 1e8 or value != int(value):
         return np.nan
     number = int(value)
     year, month, day = number // 10000, number // 100 % 100, number % 100

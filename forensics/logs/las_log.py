@@ -8,6 +8,7 @@ and nulls are found later, channel by channel, never in the index.
 from __future__ import annotations
 
 import io
+import logging
 import re
 from dataclasses import dataclass, field
 from pathlib import Path
@@ -172,6 +173,10 @@ def _numbers(text: str) -> list[float]:
 def _through_lasio(above: str) -> lasio.LASFile | None:
     import lasio
 
+    # lasio tells its logger of lines it can't parse; those are read by the grammar below, and no news.
+    logger = logging.getLogger("lasio")
+    level = logger.level
+    logger.setLevel(logging.CRITICAL)
     try:
         return lasio.read(
             io.StringIO(above + "\n~ASCII\n"),
@@ -183,6 +188,8 @@ def _through_lasio(above: str) -> lasio.LASFile | None:
     # lasio's own errors have no common base; whatever it stumbles on, the grammar below still stands.
     except Exception:
         return None
+    finally:
+        logger.setLevel(level)
 
 
 def _by_grammar(above: str) -> list[tuple[str, str, str, str, str]]:

@@ -145,6 +145,28 @@ def to_numbers(column: pd.Series, grouped: bool = False) -> tuple[Floats, int]:
     return table[codes], int(bad[codes].sum())
 
 
+def mostly_numbers(column: pd.Series) -> Floats | None:
+    """Give a column as numbers where nearly all its entries are, else None.
+
+    One garbled entry turns a whole column into text for whoever parses it.
+
+    Examples
+    --------
+    >>> import pandas as pd
+    >>> mostly_numbers(pd.Series(["2031-05-14", "2031-05-15"])) is None
+    True
+    """
+    import pandas as pd
+
+    if not pd.api.types.is_numeric_dtype(column):
+        known = column.dropna()
+        some = known.iloc[:: max(1, len(known) // 20)]
+        if len(some) == 0 or np.isnan(to_numbers(some)[0]).mean() > 0.3:
+            return None
+    values, garbled = to_numbers(column)
+    return values if garbled <= 0.2 * len(values) else None
+
+
 def find_codes(values: Floats, declared: Iterable[float] = ()) -> NDArray[np.bool_]:
     """Find null codes among numbers.
 
