@@ -213,9 +213,11 @@ def classify(view: RigView, unknown: Bools, unsure: tuple[Bools, Bools]) -> NDAr
     ndarray of int8, shape (n,)
         `Activity` codes.
     """
-    turning, pumping, down, up = view.turning, view.pumping, view.direction > 0, view.direction < 0
-    moving = down | up
     no_turn, no_pump = unsure
+    # A guess of rotation is good enough for the mechanics, not for a name.
+    turning, pumping = view.turning & ~no_turn, view.pumping
+    down, up = view.direction > 0, view.direction < 0
+    moving = down | up
     rules: list[tuple[Bools, Activity]] = [
         (unknown, Activity.UNKNOWN),
         (view.slips, Activity.CONNECTION),
@@ -267,10 +269,10 @@ def refine_activity(rig: RigView, bit_load: Floats, log: TimeLog) -> RigView:
     open_rows = known & unsettled & ~rig.slips & ~rig.turning
     on_bottom = np.where(open_rows, loaded, rig.on_bottom)
     refined = replace(rig, on_bottom=on_bottom)
-    kept = rig.activity == Activity.UNKNOWN
     none = np.zeros(len(log), dtype=bool)
-    activity = classify(refined, kept & ~rig.slips, (none, none))
-    return replace(refined, activity=activity)
+    again = (on_bottom != rig.on_bottom) & (rig.activity != Activity.UNKNOWN)
+    activity = np.where(again, classify(refined, none, (none, none)), rig.activity)
+    return replace(refined, activity=activity.astype(np.int8))
 
 
 def _vote(votes: NDArray[np.int8], where: Bools, value: int) -> None:

@@ -14,6 +14,7 @@ from forensics.rig.activity import classify, on_bottom_from, refine_activity
 from forensics.rig.block import Slips, block_weight, fill_block, find_slips
 from forensics.rig.depth import find_depths
 from forensics.rig.drives import find_drives
+from forensics.rig.guess import guess_turning
 from forensics.rig.judge import Facts, Judged, Moves, judge_bottom
 from forensics.rig.noise import Bools, Floats
 from forensics.rig.pumps import pump_shift
@@ -62,6 +63,9 @@ def understand_rig(log: TimeLog, well: Well, case: Case) -> RigView:
     )
     weight = block_weight(slips, signals, facts.moves.hookload, case.rig)
     judged = judge_bottom(facts, weight)
+    if weight is not None and facts.drives.turning_unknown.any():
+        facts = guess_turning(facts, judged, weight)
+        judged = judge_bottom(facts, weight)
     shift = pump_shift(facts, judged)
     if shift is not None:
         level = facts.moves.hookload - shift.value * facts.drives.pumping
@@ -169,6 +173,8 @@ def _can_not_tell(facts: Facts, judged: Judged, weight: Estimate, slips: Slips) 
     """Say what the log could not show, in sentences."""
     rotating, slack, _ = judged.references
     notes = list(facts.drives.remarks)
+    if (facts.drives.turning & facts.drives.turning_unknown).any():
+        notes.append("Where rotation can't be told, loads rest on a guess by the drag the hookload shows.")
     if not rotating.known:
         notes.append(
             "No steady rotating weight off bottom: weight on bit rests on the string's modelled weight."

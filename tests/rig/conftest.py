@@ -57,6 +57,7 @@ class Stand:
     friction: float = 0.0
     load: float = 0.0
     block_alone: float = BLOCK
+    drag: float = DRAG
     rows: list[tuple] = field(default_factory=list)
 
     def go(
@@ -68,7 +69,7 @@ class Stand:
             if not slips:
                 self.bit += speed
                 self.friction = (
-                    float(np.clip(self.friction - SPRING * speed, -DRAG, DRAG)) if rpm < 5 else 0.0
+                    float(np.clip(self.friction - SPRING * speed, -self.drag, self.drag)) if rpm < 5 else 0.0
                 )
                 self.load = max(0.0, (self.bit - self.bottom) * SPRING)
                 if self.load > 0 and flow > 0:

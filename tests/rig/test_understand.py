@@ -121,6 +121,20 @@ def test_no_rpm_and_no_torque_leaves_drilling_unknown(tools, drilled, full, well
     assert any("rotation there can't be told" in note for note in view.can_not_tell)
 
 
+def test_rotation_is_guessed_from_the_drag_for_the_mechanics_only(tools, well):
+    stand = tools.Stand(well, bit=2448.0, bottom=2500.0, drag=150e3).trip(2, 0.3)
+    for sliding in (False, True, False):
+        stand.drill_stand(sliding)
+    stand.trip(2, -0.3)
+    view = see(tools, changed(tools.log(stand), ("rpm", "torque")), well)
+    turning, true = stand.columns()["rpm"] > 5, stand.truth()
+    for kind in (Activity.DRILL_ROTATE, Activity.DRILL_SLIDE):
+        rows = true == kind
+        assert (view.turning[rows] == turning[rows]).mean() > 0.95
+        assert (view.activity[rows] == Activity.UNKNOWN).mean() > 0.9
+    assert any("guess" in note for note in view.can_not_tell)
+
+
 def test_depth_and_hookload_alone_still_run(tools, drilled, well):
     log = tools.log(drilled)
     bare = replace(log, values={k: log.values[k] for k in ("bit_depth", "hookload")})
