@@ -165,7 +165,7 @@ def _header(rows: Sequence[Sequence[str]], width: int) -> tuple[tuple[str, ...],
         best = max(range(len(pad)), key=lambda i: (_unit_score(pad[i]) - 0.1 * _name_score(pad[i]), i))
         if _unit_score(pad[best]) >= 0.6:
             units = pad.pop(best)
-    names = max(reversed(pad), key=_name_score)
+    names = tuple(" ".join(name.split()) for name in max(reversed(pad), key=_name_score))
     return names, tuple(unit.strip("[](){} ") or None for unit in units)
 
 
@@ -181,6 +181,18 @@ def _part_stamp(
                 *units[i + 1 : -1],
             )
     return names, units
+
+
+def _whole_lines(lines: list[str]) -> list[str]:
+    """Join lines of a header whose quoted names hold line breaks."""
+    whole: list[str] = []
+    for line in lines:
+        # Four breaks at most, so that a stray quote does not swallow the file.
+        if whole and whole[-1].count('"') % 2 and whole[-1].count("\n") < 4 and len(whole) < HEADER_LINES:
+            whole[-1] += "\n" + line
+        else:
+            whole.append(line)
+    return whole
 
 
 def find_dialect(head: bytes, path: Path) -> Dialect:
@@ -206,7 +218,7 @@ def find_dialect(head: bytes, path: Path) -> Dialect:
     encoding = find_encoding(head)
     text = head.decode(encoding, errors="replace").lstrip("\ufeff")
     # The last line may be cut by the end of the head.
-    lines = text.splitlines()[:-1] if len(head) >= 2**18 else text.splitlines()
+    lines = _whole_lines(text.splitlines()[:-1] if len(head) >= 2**18 else text.splitlines())
     filled = [line for line in lines if line.strip()]
     if not filled:
         raise LogError("the file is empty; expected a header and rows of data", file=path)

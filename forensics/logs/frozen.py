@@ -90,7 +90,8 @@ def find_frozen(channel: str, values: Mapping[str, Floats], interval: float) -> 
     Hookload: the bit moved by 0.3 m (3 m where the channel is coarse) during one value; or, in a channel
     whose noise never lets a value stand, twelve equal ones above the level of slips. Bit depth: the block,
     with the string on it, ran more than three times its height. Block: the bit moved by 3 m. Torque,
-    pressure and WOB: five minutes of one value other than zero while the hookload kept changing.
+    pressure and WOB: five minutes of one value as of work under way (above a fifth of the 95th percentile)
+    while the hookload kept changing and, for torque, the string turned.
     """
     data = values[channel]
     found = np.zeros(len(data), dtype=bool)
@@ -100,6 +101,8 @@ def find_frozen(channel: str, values: Mapping[str, Floats], interval: float) -> 
     restless = channel == "hookload" and lively and _share_still(data) < RESTLESS
     carried = _while_carried(block, hook)
     slow = max(30, 5 * minute)
+    known = np.abs(data[np.isfinite(data)])
+    at_work = 0.2 * float(np.percentile(known, 95)) if len(known) else 0.0
     shortest = (
         SHORTEST if restless else {"hookload": minute, **dict.fromkeys(MOVERS, minute)}.get(channel, slow)
     )
@@ -112,11 +115,19 @@ def find_frozen(channel: str, values: Mapping[str, Floats], interval: float) -> 
         elif channel == "block_position":
             stopped = _reach(bit, start, end) >= 3.0
         else:
-            changing = hook is not None and len(np.unique(hook[start:end])) > 0.5 * (end - start)
-            stopped = lively and data[start] != 0.0 and changing
+            stopped = lively and abs(data[start]) > at_work and _goes_on(channel, values, start, end)
         if stopped:
             found[start:end] = True
     return found
+
+
+def _goes_on(channel: str, values: Mapping[str, Floats], start: int, end: int) -> bool:
+    """Tell whether the hookload kept changing and, for torque, the string kept turning."""
+    hook, rpm = values.get("hookload"), values.get("rpm")
+    if hook is None or len(np.unique(hook[start:end])) <= 0.5 * (end - start):
+        return False
+    turning = channel != "torque" or rpm is None or float((rpm[start:end] > 5.0).mean()) > 0.5
+    return bool(turning)
 
 
 def slips_level(hook: Floats) -> float:

@@ -21,6 +21,7 @@ from forensics.logs.quality import clean
 from forensics.logs.raw import RawLog
 from forensics.logs.registry import digest, read_raw, require
 from forensics.logs.smear import find_smeared
+from forensics.logs.stray import mend_stamps
 from forensics.logs.table import FileRecord, Reason, Step, TimeLog
 
 Floats = NDArray[np.float64]
@@ -179,11 +180,12 @@ def _date_the_undated(clocks: list[Clock], raws: Sequence[RawLog]) -> list[Clock
 
 def _to_piece(raw: RawLog, clock: Clock, mapped: Mapped, with_block: bool) -> tuple[Piece, list[Step]]:
     """Bring one file's channels to SI and leave out rows without a stamp."""
-    stamped = np.isfinite(clock.time)
-    steps = []
+    time, steps = mend_stamps(clock.time, raw.path.name)
+    stamped = np.isfinite(time)
     lost = raw.dropped
-    if not stamped.all():
-        lost += int((~stamped & raw.table.notna().any(axis=1).to_numpy()).sum())
+    unread = ~np.isfinite(clock.time)
+    if unread.any():
+        lost += int((unread & raw.table.notna().any(axis=1).to_numpy()).sum())
     if lost:
         steps.append(
             Step("unreadable row", lost, detail=f"{raw.path.name}: no stamp, or not split into columns")
@@ -214,7 +216,7 @@ def _to_piece(raw: RawLog, clock: Clock, mapped: Mapped, with_block: bool) -> tu
             steps.append(Step("no value", missing, channel, raw.path.name))
         values[channel] = converted
     line = raw.first_line + np.flatnonzero(stamped)
-    return Piece(raw.path, clock.time[stamped], line, values), steps
+    return Piece(raw.path, time[stamped], line, values), steps
 
 
 def _check_size(raw: RawLog, channel: str, data: Floats, mapped: Mapped, with_block: bool) -> None:

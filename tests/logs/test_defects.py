@@ -90,6 +90,11 @@ SAME = {
     "commas_between.las": FIRST,
     "wrapped.las": FIRST,
     "version_3.las": FIRST,
+    "line_breaks_in_header.csv": FIRST,
+    "delimiter_at_line_ends.csv": FIRST,
+    "bars_between.csv": FIRST,
+    "date_late_at_midnight.csv": utc("2031-05-14T23:59:00"),
+    "date_early_at_midnight.csv": utc("2031-05-14T23:59:00"),
     "columns_by_number.xml": FIRST,
     "columns_by_list.xml": FIRST,
     "two_parts.xml": FIRST,
@@ -141,7 +146,8 @@ def test_refused_in_words_that_help(name):
 def test_every_file_of_defects_is_used():
     other = {"header_is_numbers.csv", "optional_without_unit.csv", "null_words.csv", "null_codes.csv",
              "null_smeared.csv", "garbled_lines.csv", "last_line_breaks_off.csv", "all_zero_channels.csv",
-             "rpm_zero_while_torque_is_not.csv", "run_on_and_broken_lines.las"}  # fmt: skip
+             "rpm_zero_while_torque_is_not.csv", "run_on_and_broken_lines.las",
+             "stamp_out_of_line.csv", "stamp_far_ahead.csv"}  # fmt: skip
     assert {path.name for path in DATA.iterdir()} == (SAME.keys() | REFUSED.keys() | other) - {
         "no_such_file.csv"
     }
@@ -201,6 +207,18 @@ def test_garbled_lines_are_counted():
     assert len(log) == 23
     assert done(log)["unreadable row", None] == 2
     assert done(log)["text where a number belongs", "hookload"] >= 1
+
+
+@pytest.mark.parametrize("name", ["stamp_out_of_line.csv", "stamp_far_ahead.csv"])
+def test_a_stamp_gone_wrong_does_not_spoil_the_log(name):
+    log = read(name)
+    assert len(log) == 23
+    assert done(log)["stamp out of line", None] == 1
+    assert log.time[-1] == FIRST + 115.0
+
+
+def test_dates_mended_at_midnight_are_counted():
+    assert done(read("date_late_at_midnight.csv"))["date mended at midnight", None] == 3
 
 
 def test_line_that_breaks_off_is_left_out():
