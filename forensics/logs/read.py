@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from concurrent.futures import ThreadPoolExecutor
-from dataclasses import replace
+from dataclasses import dataclass, field, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -31,6 +31,16 @@ HOOKLOAD_LOW, HOOKLOAD_HIGH = 5.0e3, 2.0e7
 DEPTH_LOW, DEPTH_HIGH = 5.0, 1.5e4
 
 
+@dataclass
+class _Gathered:
+    """What the files of a case gave."""
+
+    pieces: list[Piece] = field(default_factory=list)
+    records: list[FileRecord] = field(default_factory=list)
+    steps: list[Step] = field(default_factory=list)
+    warnings: list[str] = field(default_factory=list)
+
+
 def read_time_logs(case: Case) -> TimeLog:
     """Read a case's time logs into one table.
 
@@ -49,9 +59,14 @@ def read_time_logs(case: Case) -> TimeLog:
     LogError
         If a file can't be read, a needed channel or its unit is missing or absurd, or time can't be told.
     """
-    settings = case.logs
-    if not settings.time:
+    if not case.logs.time:
         raise LogError("no time log is named; [logs] time needs at least one file", file=case.path)
+    return _assemble(case, _gather(case))
+
+
+def _gather(case: Case) -> _Gathered:
+    """Read every file and bring it to SI; what the files held besides is let go on return."""
+    settings = case.logs
     names = wanted(settings.channels)
     for path in settings.time:
         require(path)
@@ -60,36 +75,34 @@ def read_time_logs(case: Case) -> TimeLog:
         digests = [side.submit(digest, path) for path in settings.time]
         raws = [read_raw(path, lambda name: keep(name, names)) for path in settings.time]
     _check_choices(case, raws)
-    clocks = _read_clocks(case, raws)
-    pieces, records, steps, warnings = [], [], [], []
+    out = _Gathered()
     empty: dict[str, tuple[RawLog, str]] = {}
-    for raw, clock, hashed in zip(raws, clocks, digests, strict=True):
+    for raw, clock, hashed in zip(raws, _read_clocks(case, raws), digests, strict=True):
         mapped = map_columns(raw, settings.channels, clock.columns)
         piece, account = _to_piece(raw, clock, mapped, case.rig.hookload_includes_block)
-        pieces.append(piece)
-        steps.extend(account)
-        warnings.extend((*clock.warnings, *mapped.warnings))
+        out.pieces.append(piece)
+        out.steps.extend(account)
+        out.warnings.extend((*clock.warnings, *mapped.warnings))
         empty.update({channel: (raw, column) for channel, column in mapped.empty.items()})
-        records.append(_record(raw, clock, mapped, piece, hashed.result()))
+        out.records.append(_record(raw, clock, mapped, piece, hashed.result()))
     for channel in NEEDED:
-        if any(channel in piece.values for piece in pieces):
+        if any(channel in piece.values for piece in out.pieces):
             continue
         if channel in empty:
             raw, column = empty[channel]
             raise LogError(f"every value of {channel} is missing", file=raw.path, column=column)
         raise missing_channel(channel, raws)
-    del raws
-    return _assemble(case, pieces, tuple(records), steps, warnings)
+    return out
 
 
-def _assemble(
-    case: Case, pieces: list[Piece], records: tuple[FileRecord, ...], steps: list[Step], warnings: list[str]
-) -> TimeLog:
-    time, values, joined, remarks = join(pieces)
+def _assemble(case: Case, found: _Gathered) -> TimeLog:
+    file = found.pieces[0].path
+    time, values, joined, remarks = join(found.pieces)
+    found.pieces.clear()
     interval = interval_of(time)
     if len(time) < 2:
-        raise LogError(f"found {len(time)} row with a stamp; a log needs two or more", file=pieces[0].path)
-    logged = values["hookload"].copy()
+        raise LogError(f"found {len(time)} row with a stamp; a log needs two or more", file=file)
+    logged = values["hookload"]
     work = clean(time, values, interval)
     reason = work.cause["hookload"].copy()
     lacking = ~np.isfinite(work.values["hookload"])
@@ -98,7 +111,7 @@ def _assemble(
     reason[~lacking & depthless] = work.cause["bit_depth"][~lacking & depthless]
     used = ~(lacking | depthless)
     if not used.any():
-        raise LogError(_nothing_left(reason), file=pieces[0].path)
+        raise LogError(_nothing_left(reason), file=file)
     return TimeLog(
         time=time,
         values=work.values,
@@ -107,9 +120,9 @@ def _assemble(
         reason=reason,
         interval=interval,
         timezone=case.logs.timezone,
-        history=(*steps, *joined, *work.steps),
-        files=records,
-        warnings=tuple(dict.fromkeys((*warnings, *remarks, *work.warnings))),
+        history=(*found.steps, *joined, *work.steps),
+        files=tuple(found.records),
+        warnings=tuple(dict.fromkeys((*found.warnings, *remarks, *work.warnings))),
     )
 
 

@@ -38,15 +38,15 @@ class SpikeRule:
         Share of the channel's own range (1st to 99th percentile) it must exceed.
     floor : float
         Size below which nothing is a spike [SI].
-    bottomless : float
-        Share of the range below the 1st percentile beyond which a low value counts as well; 0 for never.
+    beyond : float
+        Share of the range outside which alone an excursion counts; 0 where it counts anywhere.
     """
 
     longest: int = 2
     noise: float = 8.0
     share: float = 0.04
     floor: float = 0.0
-    bottomless: float = 0.0
+    beyond: float = 0.0
 
 
 def rule_for(channel: str, interval: float) -> SpikeRule:
@@ -54,8 +54,8 @@ def rule_for(channel: str, interval: float) -> SpikeRule:
 
     Notes
     -----
-    At 5 s and more a single sample can be a real event of its own (a joint picked up, a tag), so
-    only what reaches beyond half the channel's whole range counts there.
+    At 5 s and more a single sample can be a real event of its own (a joint picked up, a tag), so only
+    what lies plainly outside everything else in the channel counts there.
     """
     floor = {
         "hookload": 15e3,
@@ -65,8 +65,7 @@ def rule_for(channel: str, interval: float) -> SpikeRule:
         "standpipe_pressure": 5e5,
     }.get(channel, 0.0)
     if interval >= COARSE:
-        low = 0.1 if channel == "hookload" else 0.0
-        return SpikeRule(longest=1, noise=15.0, share=0.5, floor=floor, bottomless=low)
+        return SpikeRule(longest=1, noise=15.0, share=0.1, floor=floor, beyond=0.1)
     return SpikeRule(share=0.04 if channel == "hookload" else 0.1, floor=floor)
 
 
@@ -100,10 +99,9 @@ def find_spikes(values: Floats, rule: SpikeRule) -> Bools:
     low, high = np.percentile(x[:: max(1, len(x) // 20000)], [1, 99])
     noise, span = rule.noise * _local_noise(away), float(high - low)
     out = np.abs(away) > np.maximum(noise, max(rule.floor, rule.share * span))
-    if rule.bottomless > 0.0:
-        # Less than the block weighs: no moment of the run can show that.
-        depth = max(rule.floor, rule.bottomless * span)
-        out |= (x < low - depth) & (-away > np.maximum(noise, depth))
+    if rule.beyond > 0.0:
+        margin = max(rule.floor, rule.beyond * span)
+        out &= (x < low - margin) | (x > high + margin)
     if not out.any():
         return found
     starts = np.flatnonzero(out & ~np.concatenate(([False], out[:-1])))
