@@ -156,10 +156,12 @@ def whole_slide(setting: Setting, run: Run, place: Place, t: int, sigma: float) 
     """Profile of a string that slides as a whole in one direction."""
     rub = friction_of(run.samples, t, sigma)
     if run.samples.free[t]:
+        top = run.samples.top[t]
         model = rise(setting, run.memory, place, rub, 0.0, True)
-        anchor(run.memory, place, run.samples.top[t], model)
-    else:
-        march_down(setting, run.memory, place, rub, run.samples.top[t], False)
+        if sigma < 0.0 or model - top < run.rules.tolerance:
+            anchor(run.memory, place, top, model)
+            return
+    march_down(setting, run.memory, place, rub, run.samples.top[t], False)
 
 
 @njit(cache=True, error_model="numpy")
@@ -318,7 +320,9 @@ def replay_rows(setting: Setting, run: Run) -> int:
             judge(setting, run, place, t)
             visits += top + 1
         now[AT], now[TOP] = place.first, top
-        found.bit_load[t] = max(-run.memory.tension[0], 0.0)
+        # a bit clear of bottom carries nothing, whatever the march leaves there
+        clear = samples.free[t] and now[MODE] != FREE
+        found.bit_load[t] = 0.0 if clear else max(-run.memory.tension[0], 0.0)
         found.reach[t] = bit - now[REACH]
         found.full[t] = int(now[MODE])
     return visits

@@ -21,6 +21,7 @@ Floats = NDArray[np.float64]
 
 SMOOTH_SECONDS = 15.0  # moving median of the hookload; longer hides tags, shorter lets noise ratchet
 EDGE_SECONDS = 3.0  # around slips the hookload is neither the block's nor the string's
+BRIDGED_SECONDS = 15.0  # shorter gaps of hookload or bit depth are read across
 STILL_ON_BOTTOM = 5.0  # m; further than a string stretches in a partial pick-up, the bit is off bottom
 CLEAR_OF_BOTTOM = 1.0  # m; nearer than this, stretch may still hold the bit on bottom
 MIN_REVERSAL = 0.02  # m; a block that comes back by less has not reversed
@@ -43,8 +44,8 @@ def prepare(
     hookload = _smooth(rig.hookload, mode != HOLD, log.interval)
     above = model.above_rotary(rig.block) * calibration.pipe_above_rotary.value
     hanging = calibration.block_weight.value + calibration.hookload_bias.value + above
-    bit = np.maximum(_filled(log.values["bit_depth"]), 1.0)
-    height = _filled(rig.block) if np.isfinite(rig.block).any() else -bit
+    bit = np.maximum(_across(log.time, log.values["bit_depth"]), 1.0)
+    height = _across(log.time, rig.block) if np.isfinite(rig.block).any() else -bit
     noise = rig.noise.get("block_position", 0.0)
     direction, travel = _reversals(height, mode == HOLD, max(MIN_REVERSAL, 6.0 * noise))
     gap = np.nan_to_num(rig.hole_depth, nan=np.inf) - bit
@@ -79,11 +80,13 @@ def weight_scale(log: TimeLog, well: Well, calibration: Calibration) -> Floats:
 
 
 def _mode(log: TimeLog, rig: RigView) -> NDArray[np.int8]:
-    """HOLD in slips, at their edges and where the hookload is missing; TURN where the string turns."""
+    """HOLD in slips, at their edges and in gaps too long to bridge; TURN where the string turns."""
     held = rig.slips | (rig.activity == Activity.CONNECTION)
     edge = max(1, round(EDGE_SECONDS / log.interval))
     held = ndimage.binary_dilation(held, iterations=edge)
-    held |= ~np.isfinite(rig.hookload) | ~np.isfinite(log.values["bit_depth"])
+    missing = ~np.isfinite(rig.hookload) | ~np.isfinite(log.values["bit_depth"])
+    bridged = np.ones(max(3, round(BRIDGED_SECONDS / log.interval)) + 1, dtype=bool)
+    held |= ndimage.binary_opening(missing, structure=bridged)
     return np.where(held, HOLD, np.where(rig.turning, TURN, SLIDE)).astype(np.int8)
 
 
@@ -109,14 +112,10 @@ def _nearest(rows: NDArray[np.int64], count: int) -> NDArray[np.int64]:
     return np.where(closer, rows[right], rows[left])
 
 
-def _filled(values: Floats) -> Floats:
-    """Gaps filled from the last good value (the first good one at the start)."""
+def _across(time: Floats, values: Floats) -> Floats:
+    """Read gaps across in a straight line, the ends level."""
     good = np.isfinite(values)
-    if good.all():
-        return values.astype(float)
-    at = np.maximum.accumulate(np.where(good, np.arange(len(values)), -1))
-    at = np.where(at < 0, np.argmax(good), at)
-    return values[at]
+    return values.astype(float) if good.all() else np.interp(time, time[good], values[good])
 
 
 def _share(log: TimeLog, height: Floats, model: OffBottomModel) -> Floats:
