@@ -24,7 +24,7 @@ from pathlib import Path
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-Floats = NDArray[np.float64]
+from forensics.mechanics.columns import Floats, column_load
 
 LIMIT = 4 ** (1 / 3) * 1.0187929716474710890
 """c as n goes to infinity: the first zero of Ai' times the cube root of 4."""
@@ -37,12 +37,7 @@ OFFSET = 1.9
 
 LOG_N = (math.log(1e-6), math.log(1e6))
 LENGTH_RANGE = (math.log(SHORTEST - OFFSET), math.log(1e6))
-ROWS, COLUMNS = 553, 163
-
-_DEGREE = 7
-_NEAR = 40.0  # beyond this many lengths only the slow tail is left, and the mesh may grow
-_GROWTH = 1.12
-_BLOCK = 4  # trial vectors: at great n the first modes lie close together
+ROWS, COLUMNS = 553, 325
 
 
 @dataclass(frozen=True)
@@ -93,10 +88,11 @@ def column_eigenvalue(n: float, length: float) -> float:
 
     Notes
     -----
-    Galerkin's method with splines of degree 7: evenly spaced near the lower end at a step that follows the
-    half wave (``pi / n**0.25``), growing geometrically in the tail. The lowest pair comes from block inverse
-    iteration about ``2 sqrt(n)``, which is below every eigenvalue. Against the exact Airy and Scorer
-    functions it holds nine digits at n = 0.
+    By `columns.column_load`, which takes other ends too. Without side load (n = 0) the value people may have
+    at hand is Lubinski's 1.94: it holds at length 7.93 only. The string's real value falls with its length,
+    as the logarithm does: 1.71 at 20, 1.38 at 512, 1.183 at a million, towards 1.0188, which is the load of a
+    string whose top is free to move sideways. A hole off the vertical by a fraction of a degree has n above
+    1, and there the length no longer matters.
 
     References
     ----------
@@ -110,16 +106,7 @@ def column_eigenvalue(n: float, length: float) -> float:
     >>> round(column_eigenvalue(0.0, 512.0), 5)
     1.37876
     """
-    if not n >= 0 or not math.isfinite(n):
-        raise ValueError(f"n came as {n}; expected zero or more")
-    if not length > 0 or not math.isfinite(length):
-        raise ValueError(f"length came as {length}; expected a finite number above zero")
-    waves = max(1.0, n**0.25 / 4)
-    step = min(0.25 * 2.0 ** -math.ceil(math.log2(waves)), length / 8)
-    bending, falling, side, load = _matrices(float(length), step)
-    shift = 2 * math.sqrt(n)
-    # (bending + falling + n side - 2 sqrt(n) load) is positive definite: a completed square plus x y'^2
-    return _lowest(bending + falling + n * side - shift * load, load)
+    return column_load(n, length) - 2 * math.sqrt(n)
 
 
 def build_table() -> EigenTable:
@@ -173,7 +160,7 @@ def interpolate(n: ArrayLike, length: ArrayLike) -> Floats:
     -----
     Bilinear. Below n = 1e-6 ``phi`` is held; above n = 1e6 the departure from `LIMIT` falls as
     ``1/sqrt(n)``. The error of c is below 0.02 % from length 8 on. Shorter, c swings with the number of
-    half waves that fit: the error is then below 0.2 % of ``phi``, which is what a critical load is made
+    half waves that fit: the error is then below 0.1 % of ``phi``, which is what a critical load is made
     of, and can be some per cent of c itself where n is so great that c hardly matters.
 
     Examples
@@ -210,89 +197,3 @@ def _cell(position: Floats, size: int) -> tuple[NDArray[np.int64], Floats]:
     whole = np.nan_to_num(position)
     index = np.clip(whole.astype(np.int64), 0, size - 2)
     return index, position - index
-
-
-def _breaks(length: float, step: float) -> Floats:
-    """Place the mesh: even to `_NEAR`, then growing towards the far end."""
-    near = min(length, _NEAR)
-    breaks = np.linspace(0.0, near, max(8, math.ceil(near / step - 1e-9)) + 1)
-    if length > near:
-        cells = max(4, math.ceil(math.log(length / near) / math.log(_GROWTH)))
-        breaks = np.concatenate([breaks, np.geomspace(near, length, cells + 1)[1:]])
-    return breaks
-
-
-@lru_cache(maxsize=8)
-def _matrices(length: float, step: float) -> tuple[Floats, Floats, Floats, Floats]:
-    """Assemble the banded matrices of y''v'', x y'v', y v and y'v', the end values removed."""
-    from scipy.interpolate import BSpline
-
-    breaks = _breaks(length, step)
-    knots = np.concatenate([[breaks[0]] * _DEGREE, breaks, [breaks[-1]] * _DEGREE])
-    cells, width = breaks.size - 1, _DEGREE + 1
-    points, weights = np.polynomial.legendre.leggauss(width)
-    half = np.diff(breaks)[:, None] / 2
-    x = breaks[:-1, None] + half * (1 + points)
-    local = np.empty((3, cells, width, width))  # derivative, cell, point, spline
-    for spline in range(width):
-        # every (degree + 1)-th spline at once: their supports meet at most at knots
-        for derivative in range(3):
-            local[derivative, :, :, spline] = _one_in_cell(BSpline, knots, x, spline, derivative)
-    weight = half * weights
-    forms = [(local[2], weight), (local[1], weight * x), (local[0], weight), (local[1], weight)]
-    bands = [_assemble(np.einsum("cqi,cq,cqj->cij", v, w, v)) for v, w in forms]
-    return bands[0], bands[1], bands[2], bands[3]
-
-
-def _one_in_cell(spline: type, knots: Floats, x: Floats, position: int, derivative: int) -> Floats:
-    """Evaluate in each cell the spline that stands at `position` among those alive there."""
-    values = np.empty_like(x)
-    width = _DEGREE + 1
-    for start in range(width):
-        # coefficients one on every width-th spline: exactly one of them is alive in a cell
-        coefficients = np.zeros(knots.size - width)
-        coefficients[start::width] = 1.0
-        cells = np.arange((start - position) % width, x.shape[0], width)
-        if cells.size:
-            values[cells] = spline(knots, coefficients, _DEGREE)(x[cells], nu=derivative)
-    return values
-
-
-def _assemble(blocks: Floats) -> Floats:
-    """Add the cells' blocks into a lower band without the first and last spline (the pinned ends)."""
-    cells, width = blocks.shape[0], blocks.shape[1]
-    band = np.zeros((width, cells + width - 1))
-    at = np.arange(cells)
-    for j in range(width):
-        for i in range(j, width):
-            band[i - j, at + j] += blocks[:, i, j]
-    band = band[:, 1:-1]
-    for offset in range(1, width):
-        band[offset, -offset:] = 0.0  # partners of the removed last spline
-    return np.ascontiguousarray(band)
-
-
-def _multiply(band: Floats, vectors: Floats) -> Floats:
-    product = band[0][:, None] * vectors
-    for offset in range(1, min(len(band), len(vectors))):
-        below = band[offset, :-offset, None]
-        product[offset:] += below * vectors[:-offset]
-        product[:-offset] += below * vectors[offset:]
-    return product
-
-
-def _lowest(stiffness: Floats, load: Floats) -> float:
-    """Find the lowest eigenvalue of a positive definite banded pair by block inverse iteration."""
-    from scipy.linalg import cho_solve_banded, cholesky_banded, eigh
-
-    factor = cholesky_banded(stiffness, lower=True)
-    vectors = np.random.default_rng(7).standard_normal((stiffness.shape[1], _BLOCK))
-    last = math.inf
-    for _ in range(200):
-        vectors = cho_solve_banded((factor, True), _multiply(load, vectors))
-        values, mix = eigh(vectors.T @ _multiply(stiffness, vectors), vectors.T @ _multiply(load, vectors))
-        vectors = vectors @ mix
-        if abs(values[0] - last) < 1e-11 * abs(values[0]):
-            break
-        last = values[0]
-    return float(values[0])

@@ -138,7 +138,7 @@ def by_collocation(mean: float, gamma: float, start: HelixShape | None = None) -
     Examples
     --------
     >>> round(float(by_collocation(0.46, 0.1).square_slope(0.0)), 6)
-    0.364225
+    0.364025
     """
     angle = math.pi * np.arange(HARMONICS) / (HARMONICS - 1)
     j = np.arange(HARMONICS)

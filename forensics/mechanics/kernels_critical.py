@@ -11,7 +11,7 @@ import math
 
 import numba as nb
 
-from forensics.mechanics.eigen import COLUMNS, LENGTH_RANGE, LIMIT, LOG_N, OFFSET, ROWS, SHORTEST, Floats
+from forensics.mechanics.eigen import LENGTH_RANGE, LIMIT, LOG_N, OFFSET, SHORTEST, Floats
 from forensics.mechanics.threshold import VERTICAL_HELICAL
 
 Table = tuple[Floats, float, float, float, float]
@@ -20,7 +20,6 @@ Table = tuple[Floats, float, float, float, float]
 _LOG_N_LOW, _LOG_N_HIGH = LOG_N
 _ROOT_N_LOW = math.exp(0.5 * LOG_N[0])
 _PLACE_LOW, _PLACE_HIGH = LENGTH_RANGE
-_LAST_ROW, _LAST_COLUMN = ROWS - 2, COLUMNS - 2
 
 _LOG_100 = math.log(100.0)
 
@@ -33,8 +32,8 @@ def c_scalar(log_n: float, place: float, table: Table) -> float:
     held_place = min(max(place, _PLACE_LOW), _PLACE_HIGH)
     row = (held_n - n0) / dn
     column = (held_place - l0) / dl
-    i = min(int(row), _LAST_ROW)
-    j = min(int(column), _LAST_COLUMN)
+    i = min(int(row), values.shape[0] - 2)
+    j = min(int(column), values.shape[1] - 2)
     u = row - i
     v = column - j
     low = values[i, j] + v * (values[i, j + 1] - values[i, j])

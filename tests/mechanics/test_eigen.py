@@ -88,7 +88,7 @@ def test_interpolation_of_short_columns(log_n, length):
     # c swings with the half waves that fit; the load is made of phi = 2 sqrt(n) + c
     n = math.exp(log_n)
     exact = eigen.column_eigenvalue(n, length)
-    assert abs(float(eigen.interpolate(n, length)) - exact) < 0.005 * (exact + 2 * math.sqrt(n))
+    assert abs(float(eigen.interpolate(n, length)) - exact) < 1e-3 * (exact + 2 * math.sqrt(n))
 
 
 def test_edges_of_the_table_hold():
