@@ -43,7 +43,7 @@ DOING = {
     "circulate": "circulating",
     "static": "standing still",
     "connection": "at a connection",
-    "unknown": "in unknown activity",
+    "unknown": "with activity unknown",
 }
 
 

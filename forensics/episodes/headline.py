@@ -11,7 +11,7 @@ from forensics.episodes.catalogue import Consequence, Episode, Headline, Kind, S
 from forensics.episodes.causes.names import Cause
 from forensics.episodes.causes.weigh import UNTOLD
 from forensics.episodes.groups import DOING, is_routine, rule_label
-from forensics.episodes.material import Material
+from forensics.episodes.material import NOISE_MULTIPLE, Material
 from forensics.episodes.measure import CERTAIN, helical_span
 from forensics.episodes.ordinary import near_threshold, ordinary_loss
 from forensics.episodes.spans import Span
@@ -97,7 +97,8 @@ def _loaded(material: Material, episode: Episode, system: str) -> str:
     bit = float(material.bit[episode.peak])
     when = wording.period(episode.start, episode.end, material.log.timezone)
     what = _what(material, episode, system)
-    text = f"{_capital(doing)} with the bit at {wording.depth(bit, system)}, {when}, the string {what}"
+    doing = "" if episode.activity == "unknown" else f"{doing} "
+    text = f"{_capital(doing)}with the bit at {wording.depth(bit, system)}, {when}, the string {what}"
     text += _cost(material, episode, system)
     if episode.cause:
         text += f" {_cause(episode)}"
@@ -126,7 +127,8 @@ def _what(material: Material, episode: Episode, system: str) -> str:
 def _cost(material: Material, episode: Episode, system: str) -> str:
     """Say how much weight was lost."""
     lost, helical = episode.lost_weight, episode.lost_to_buckling
-    if not (np.isfinite(lost.value) and lost.value > 0.0):
+    least = NOISE_MULTIPLE * material.noise("hookload")
+    if not (np.isfinite(lost.value) and lost.value > least and not lost.low <= 0.0):
         return "."
     end = "reach the bit" if material.rig.on_bottom[episode.peak] else "get to the lower end"
     text = f": at its worst {wording.size(lost, 'force', system)} of the weight set down did not {end}"
@@ -290,4 +292,4 @@ def _listed(ids: list[str]) -> str:
 
 
 def _capital(text: str) -> str:
-    return text[0].upper() + text[1:]
+    return text[:1].upper() + text[1:]

@@ -93,7 +93,8 @@ def lost_weight(material: Material, peak: int) -> Lost:
         return Lost(NOTHING, NOTHING)
     straight = float(loads.straight_drag[peak])
     beyond = max(value - straight, 0.0) if np.isfinite(straight) else float("nan")
-    noise = Z90 * material.noise("hookload")
+    rms = material.calibration.residual_rms
+    noise = Z90 * float(np.hypot(material.noise("hookload"), rms if np.isfinite(rms) else 0.0))
     if draws is None or not draws.rows[peak] or not np.isfinite(draws.bit_load[:, peak]).any():
         low, high = value - noise, value + noise
         return Lost(

@@ -16,6 +16,10 @@ Floats = NDArray[np.float64]
 MODEL_ERROR = 0.03
 MODEL_SPLIT = 0.004
 
+#: Doglegs too short for the survey press the string against the wall by its tension: drag of this part of
+#: the string's weight, one sigma. Little beside a lateral's drag, a good part of a vertical well's.
+MODEL_TORTUOSITY = 0.002
+
 #: Readings nearer than this in bit depth are not independent [m] (one stand).
 STAND = 30.0
 
@@ -74,8 +78,12 @@ def covariance(problem: Problem, fit: Fit, bit_depth: Floats, free: NDArray[np.b
 
 def _model_errors(problem: Problem, fit: Fit) -> Floats:
     """Errors of the modelled readings [N] that scatter can't show, shape (n, 2), one sigma each."""
-    drag = fit.p[2] * (problem.surface.at(fit.p[3], fit.p[4])[0] - problem.surface.at(0.0, 0.0)[0])
-    return np.column_stack([MODEL_ERROR * drag, MODEL_SPLIT * np.abs(drag)])
+    hanging = problem.surface.at(0.0, 0.0)[0]
+    drag = fit.p[2] * (problem.surface.at(fit.p[3], fit.p[4])[0] - hanging)
+    pulled = problem.sign != 0.0
+    total = float(np.abs(drag[pulled]).sum())
+    short = MODEL_TORTUOSITY * float(np.abs(hanging[pulled]).sum()) / total if total > 0.0 else 0.0
+    return np.column_stack([np.hypot(MODEL_ERROR, short) * drag, MODEL_SPLIT * np.abs(drag)])
 
 
 def blocks(bit_depth: Floats) -> NDArray[np.int64]:
