@@ -45,11 +45,23 @@ def find_episodes(material: Material) -> tuple[tuple[Episode, ...], dict[str, in
     dropped : dict of str to int
         Spans left out, by reason.
     """
-    criteria = material.case.criteria
-    least = material.window(criteria.minimum_duration)
-    gap = material.window(criteria.bridge_gap)
     found: list[Found] = []
     dropped: dict[str, int] = {}
+    flagged, signs = flag_rows(material)
+    for kind, flags in flagged.items():
+        rule = span_rule(material, kind)
+        spans, short = find_spans(flags, material.time, rule)
+        found += [Found(kind, span, flags, rule.least, signs) for span in spans]
+        if short:
+            dropped[f"{kind.value}: shorter than {rule.least:g} s"] = short
+    lockups = [f.span for f in found if f.kind is Kind.LOCKUP]
+    episodes = [_episode(material, f, lockups) for f in found]
+    episodes.sort(key=lambda e: (e.start, list(Kind).index(e.kind)))
+    return tuple(replace(e, id=f"E{n:03d}") for n, e in enumerate(episodes, 1)), dropped
+
+
+def flag_rows(material: Material) -> tuple[dict[Kind, Bools], rules.LockupSigns]:
+    """Flag the rows of every kind of episode, shape (n,) each; with the signs the lockup rule looked at."""
     signs = rules.lockup_signs(material)
     used = np.asarray(material.log.used, dtype=bool)
     flagged = {
@@ -58,17 +70,18 @@ def find_episodes(material: Material) -> tuple[tuple[Episode, ...], dict[str, in
         Kind.DRAG: rules.dragging(material) & used,
         Kind.TORQUE: rules.hard_to_turn(material) & used,
     }
-    for kind, flags in flagged.items():
-        exact = kind in (Kind.DRAG, Kind.TORQUE)
-        rule = SpanRule(gap, least, material.log.interval, flagged=exact)
-        spans, short = find_spans(flags, material.time, rule)
-        found += [Found(kind, span, flags, least, signs) for span in spans]
-        if short:
-            dropped[f"{kind.value}: shorter than {least:g} s"] = short
-    lockups = [f.span for f in found if f.kind is Kind.LOCKUP]
-    episodes = [_episode(material, f, lockups) for f in found]
-    episodes.sort(key=lambda e: (e.start, list(Kind).index(e.kind)))
-    return tuple(replace(e, id=f"E{n:03d}") for n, e in enumerate(episodes, 1)), dropped
+    return flagged, signs
+
+
+def span_rule(material: Material, kind: Kind) -> SpanRule:
+    """Give the case's gap and least duration for a kind, neither under three samples.
+
+    Residuals must be beyond their threshold for the least duration itself; what was bridged does not count.
+    """
+    criteria = material.case.criteria
+    least = material.window(criteria.minimum_duration)
+    exact = kind in (Kind.DRAG, Kind.TORQUE)
+    return SpanRule(material.window(criteria.bridge_gap), least, material.log.interval, flagged=exact)
 
 
 def _episode(material: Material, found: Found, lockups: list[Span]) -> Episode:

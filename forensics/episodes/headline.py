@@ -14,6 +14,7 @@ from forensics.episodes.groups import DOING, is_routine, rule_label
 from forensics.episodes.material import NOISE_MULTIPLE, Material
 from forensics.episodes.measure import CERTAIN, helical_span
 from forensics.episodes.ordinary import near_threshold, ordinary_loss
+from forensics.episodes.sensitivity import sensitivity_sentence
 from forensics.episodes.spans import Span
 from forensics.estimate import Estimate
 
@@ -237,7 +238,8 @@ def _details(
             f"{wording.times(len(routine), 'episode')} of routine sinusoidal running, {hours:.1f} h in all, "
             "cost no weight: kept out of the finding."
         )
-    return tuple(said)
+    said.append(sensitivity_sentence(material))
+    return tuple(line for line in said if line)
 
 
 def _unknown(material: Material, main: list[Episode]) -> tuple[str, ...]:
