@@ -18,9 +18,12 @@ PUMPING_SHARE = 0.3
 _PRESSURE_SHARE = PUMPING_SHARE**2
 # A pump counts as running at all above this share of its highest flow.
 _RUNNING = 0.1
-# Torque above this share of its usual working value stands for rotation where rpm is missing.
-_TURNING_TORQUE = 0.25
+# Torque above this share of what turns the string off bottom stands for rotation where rpm is missing.
+_TURNING_TORQUE = 0.35
+_TORQUE_WINDOW = 9.0
 _FLOW_CHANGE = 0.1
+# Interval from which a log is slow [s].
+_SLOW = 5.0
 
 
 @dataclass(frozen=True)
@@ -42,7 +45,7 @@ class Drives:
     remarks: tuple[str, ...]
 
 
-def find_drives(log: TimeLog, signals: Signals, slips: Bools) -> Drives:
+def find_drives(log: TimeLog, signals: Signals, slips: Bools, free: Bools) -> Drives:
     """Decide for each row whether the string turned and the pumps ran.
 
     Parameters
@@ -53,13 +56,15 @@ def find_drives(log: TimeLog, signals: Signals, slips: Bools) -> Drives:
         Noise and sampling.
     slips : ndarray of bool, shape (n,)
         Rows in slips, where the drive may turn without the string.
+    free : ndarray of bool, shape (n,)
+        Rows surely off bottom, where torque is the string's own.
 
     Returns
     -------
     Drives
         With remarks on what the log could not show.
     """
-    turning, turning_unknown, words = _turning(log, signals, slips)
+    turning, turning_unknown, words = _turning(log, signals, free & ~slips)
     pumping, pumping_unknown, usual, more = _pumping(log, signals)
     return Drives(
         turning=turning & ~slips,
@@ -74,33 +79,49 @@ def find_drives(log: TimeLog, signals: Signals, slips: Bools) -> Drives:
     )
 
 
-def _turning(log: TimeLog, signals: Signals, slips: Bools) -> tuple[Bools, Bools, tuple[str, ...]]:
+def _turning(log: TimeLog, signals: Signals, free: Bools) -> tuple[Bools, Bools, tuple[str, ...]]:
     rpm, torque = log.get("rpm"), log.get("torque")
     nothing = np.zeros(len(log), dtype=bool)
     unknown = far_from_data(log, "rpm")
-    turning = nothing if rpm is None else _spins(noise.fill(rpm))
+    turning = nothing if rpm is None else _spins(_despiked(noise.fill(rpm), signals))
     if not unknown.any():
         return turning, unknown, ()
     gap = "No rotary speed in the log" if rpm is None else "Rotary speed is missing for a time"
     if torque is None:
         return turning & ~unknown, unknown, (f"{gap} and no torque: rotation there can't be told.",)
-    turning = np.where(unknown, _twists(torque, signals, slips), turning)
+    turning = np.where(unknown, _twists(torque, signals, free), turning)
     return turning, unknown & far_from_data(log, "torque"), (f"{gap}: rotation there is judged by torque.",)
 
 
 def _spins(rpm: Floats) -> Bools:
     idle = rpm[np.abs(rpm) < TURNING_RPM]
     limit = max(TURNING_RPM, noise.NOISE_FACTOR * noise.short_noise(idle))
-    return noise.running_median(rpm, noise.LEAST_SAMPLES) > min(limit, 2 * TURNING_RPM)
+    return rpm > min(limit, 2 * TURNING_RPM)
 
 
-def _twists(torque: Floats, signals: Signals, slips: Bools) -> Bools:
-    outside = torque[~slips & np.isfinite(torque)]
-    if not outside.size:
+def _despiked(values: Floats, signals: Signals) -> Floats:
+    """Take single readings out; in a slow log a single reading is a spell of its own."""
+    if signals.interval > _SLOW:
+        return values
+    return noise.running_median(values, noise.LEAST_SAMPLES)
+
+
+def _twists(torque: Floats, signals: Signals, free: Bools) -> Bools:
+    """Mark rows with a fair share of the torque that turns the string off bottom; trapped torque is less."""
+    count = signals.count(_TORQUE_WINDOW)
+    smooth = noise.running_mean(noise.running_median(noise.fill(torque), noise.LEAST_SAMPLES), count)
+    least = max(noise.NOISE_FACTOR * signals.noise.get("torque", 0.0) / count**0.5, 1.0)
+    told = np.isfinite(torque)
+    turned = smooth[free & told & (smooth > least)]
+    if turned.size < noise.LEAST_SAMPLES:
+        turned = _TURNING_TORQUE * smooth[told & (smooth > least)]
+    if not turned.size:
         return np.zeros(len(torque), dtype=bool)
-    usual = float(np.quantile(outside, 0.9))
-    limit = max(_TURNING_TORQUE * usual, noise.NOISE_FACTOR * signals.noise.get("torque", 0.0), 1.0)
-    return noise.running_median(noise.fill(torque), signals.count(5.0)) > limit
+    share = _TURNING_TORQUE * float(np.median(turned))
+    if share > least * count**0.5:
+        # Torque stands clear of the noise row by row: averaging would only blur when it came and went.
+        return noise.running_median(noise.fill(torque), noise.LEAST_SAMPLES) > share
+    return smooth > max(share, least)
 
 
 def _pumping(log: TimeLog, signals: Signals) -> tuple[Bools, Bools, float, tuple[str, ...]]:
@@ -109,7 +130,7 @@ def _pumping(log: TimeLog, signals: Signals) -> tuple[Bools, Bools, float, tuple
     usual = np.nan if flow is None else usual_level(flow, signals.noise.get("flow_in", 0.0))
     runs = np.zeros(len(log), dtype=bool)
     if flow is not None and np.isfinite(usual):
-        runs = noise.running_median(noise.fill(flow), noise.LEAST_SAMPLES) > PUMPING_SHARE * usual
+        runs = _despiked(noise.fill(flow), signals) > PUMPING_SHARE * usual
     if not unknown.any():
         return runs, unknown, usual, ()
     gap = "No flow in the log" if flow is None else "Flow is missing for a time"
@@ -121,7 +142,7 @@ def _pumping(log: TimeLog, signals: Signals) -> tuple[Bools, Bools, float, tuple
             (f"{gap} and no standpipe pressure: pumping there shows only by a hole that deepens.",),
         )
     level = usual_level(pressure, signals.noise.get("standpipe_pressure", 0.0))
-    pressed = noise.running_median(noise.fill(pressure), noise.LEAST_SAMPLES) > _PRESSURE_SHARE * level
+    pressed = _despiked(noise.fill(pressure), signals) > _PRESSURE_SHARE * level
     runs = np.where(unknown, pressed & np.isfinite(level), runs)
     unknown = unknown & far_from_data(log, "standpipe_pressure")
     return runs, unknown, usual, (f"{gap}: pumping there is judged by standpipe pressure.",)

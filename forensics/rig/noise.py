@@ -16,15 +16,15 @@ Ints = NDArray[np.int64]
 NOISE_FACTOR = 6.0
 # A window holds at least this many samples.
 LEAST_SAMPLES = 3
-_MAD_TO_SIGMA = 1.4826
 # Standard deviation of x[i-1] - 2 x[i] + x[i+1] for white noise of unit standard deviation.
 _SECOND_DIFFERENCE = 6.0**0.5
 # A value held over more samples than this is a step, not a slow sensor.
 _LONGEST_HELD = 5
 # A rounded channel shows changes of this many steps somewhere.
 _LEAST_LEVELS = 5
-# Pieces in which a channel is looked at for rest [samples].
-_PIECE = 25
+# This share of the second differences is taken for quiet; in white noise so much lies within so many sigma.
+_QUIET_SHARE = 0.2
+_QUIET_SIZE = 0.2533
 # Standard deviation of a rounding error, in rounding steps.
 _ROUNDING = 12.0**-0.5
 
@@ -73,16 +73,16 @@ def _nothing(values: Floats) -> float:
 def short_noise(values: Floats, at_rest: bool = False) -> float:
     """Short-term noise of a channel, one standard deviation, from its second differences.
 
-    Second differences are blind to slow change, and their median to steps. A sensor slower than the log
-    repeats its readings, which are then counted once; a channel that holds each for long merely steps, and
-    shows no noise but its rounding.
+    Second differences are blind to slow change, and their lower fifth to whatever the rig does, even where
+    a slow log shows little but that. A sensor slower than the log repeats its readings, which are then
+    counted once; a channel that holds each for long merely steps, and shows no noise but its rounding.
 
     Parameters
     ----------
     values : ndarray, shape (n,)
         Samples in time order; NaN allowed.
     at_rest : bool
-        Judge by the quieter quarter of the record: of a block or a bit, speeding up is not noise.
+        Rows that don't change count as quiet: of a block or a bit at rest between moves.
 
     Returns
     -------
@@ -101,17 +101,11 @@ def short_noise(values: Floats, at_rest: bool = False) -> float:
     told = good if held <= 1.0 else good[np.append(fresh, fresh[-1] + 1)]
     second = np.abs(told[2:] - 2.0 * told[1:-1] + told[:-2])
     moved = second[second > tiny]
-    # Rows that repeat both neighbours count as silence only where most rows move.
-    kept = second if moved.size > 0.5 * second.size else moved
-    return max(_typical(kept, at_rest) * _MAD_TO_SIGMA / _SECOND_DIFFERENCE, floor)
-
-
-def _typical(sizes: Floats, at_rest: bool) -> float:
-    """Median of all, or the lower quartile of the medians of short pieces."""
-    if not at_rest or sizes.size < 4 * _PIECE:
-        return float(np.median(sizes)) if sizes.size else 0.0
-    pieces = sizes[: sizes.size // _PIECE * _PIECE].reshape(-1, _PIECE)
-    return float(np.quantile(np.median(pieces, axis=1), 0.25))
+    # Rows that repeat both neighbours count as silence only where most rows move, or may be at rest.
+    kept = second if at_rest or moved.size > 0.5 * second.size else moved
+    if not kept.size:
+        return floor
+    return max(float(np.quantile(kept, _QUIET_SHARE)) / _QUIET_SIZE / _SECOND_DIFFERENCE, floor)
 
 
 def samples_in(seconds: float, interval: float) -> int:

@@ -26,7 +26,8 @@ LONGEST_BRIDGE = 60.0
 LONGEST_UNWEIGHED = 300.0
 _NOISY = ("hookload", "bit_depth", "block_position", "torque", "rpm", "wob", "standpipe_pressure",
           "flow_in", "differential_pressure")  # fmt: skip
-_MOVING = ("bit_depth", "block_position")
+# Channels that rest at a level between moves.
+_RESTING = ("bit_depth", "block_position", "rpm", "flow_in")
 
 
 @dataclass(frozen=True)
@@ -101,7 +102,7 @@ def read_signals(log: TimeLog) -> Signals:
         Filled channels, noise, and the rows where too much is missing.
     """
     levels = {
-        name: noise.short_noise(values, at_rest=name in _MOVING)
+        name: noise.short_noise(values, at_rest=name in _RESTING)
         for name in _NOISY
         if (values := log.get(name)) is not None
     }
@@ -150,10 +151,11 @@ def far_from_data(log: TimeLog, channel: str, longest: float = LONGEST_BRIDGE) -
 def block_speed(signals: Signals) -> Floats:
     """Speed of the block, up positive, over the contract's 15 s window [m/s].
 
-    Where the log has no block position the bit's depth stands in for it; in slips that says nothing.
+    Where the log has no block position, or one much noisier than the bit's depth, the bit stands in for
+    it; in slips that says nothing, and nothing is asked of it there.
     """
-    height = -signals.bit if signals.block is None else signals.block
-    if signals.block_noise > _QUIET_BLOCK and signals.interval * noise.LEAST_SAMPLES <= _STEADYING:
+    height = -signals.path if _by_the_bit(signals) else signals.block
+    if _steadied(signals):
         height = noise.running_mean(height, signals.count(_STEADYING))
     return noise.rate(height, signals.time, noise.window_seconds(MOVING_WINDOW, signals.interval))
 
@@ -174,9 +176,21 @@ def direction_of(speed: Floats, signals: Signals) -> NDArray[np.int8]:
         Signs by the contract's rule, its threshold raised to six times the noise of the speed.
     """
     window = noise.window_seconds(MOVING_WINDOW, signals.interval)
-    level = signals.block_noise
-    if level > _QUIET_BLOCK and signals.interval * noise.LEAST_SAMPLES <= _STEADYING:
+    level = _speed_noise(signals)
+    if _steadied(signals):
         level /= signals.count(_STEADYING) ** 0.5
-    scatter = noise.NOISE_FACTOR * level * 2.0**0.5 / window
-    limit = max(MOVING_SPEED, scatter)
+    limit = max(MOVING_SPEED, noise.NOISE_FACTOR * level * 2.0**0.5 / window)
     return (np.where(speed < -limit, 1, 0) + np.where(speed > limit, -1, 0)).astype(np.int8)
+
+
+def _by_the_bit(signals: Signals) -> bool:
+    return signals.block is None or signals.block_noise > max(_QUIET_BLOCK, 2.0 * signals.bit_noise)
+
+
+def _speed_noise(signals: Signals) -> float:
+    return signals.bit_noise if _by_the_bit(signals) else signals.block_noise
+
+
+def _steadied(signals: Signals) -> bool:
+    """Tell whether the height is averaged before its speed is taken: noisy, and sampled finely enough."""
+    return _speed_noise(signals) > _QUIET_BLOCK and signals.interval * noise.LEAST_SAMPLES <= _STEADYING

@@ -52,13 +52,14 @@ def understand_rig(log: TimeLog, well: Well, case: Case) -> RigView:
     signals = read_signals(log)
     below = weigh(well, signals.bit)
     slips = find_slips(log, signals, below, _STAND * well.string.components[-1].weight)
+    depths = find_depths(log, signals, well, slips.rows)
     facts = Facts(
         log=log,
         well=well,
         signals=signals,
         moves=_moves(signals, slips, case),
-        drives=find_drives(log, signals, slips.rows),
-        depths=find_depths(log, signals, well, slips.rows),
+        drives=find_drives(log, signals, slips.rows, depths.gap > depths.near),
+        depths=depths,
         below=below,
     )
     weight = block_weight(slips, signals, facts.moves.hookload, case.rig)

