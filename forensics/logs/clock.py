@@ -21,6 +21,7 @@ from forensics.logs.clock_text import (
     looks_like_date,
     take_apart,
 )
+from forensics.logs.naming import split_name
 from forensics.logs.nulls import mostly_numbers, to_numbers
 from forensics.logs.raw import RawLog
 from forensics.logs.zone import to_utc, zone_of
@@ -86,8 +87,8 @@ class Clock:
 
 def is_time_name(name: str) -> bool:
     """Tell whether a column's name says it holds a date or a time."""
-    key = channels.normalise(name)
-    return key in _DATE_NAMES or key in _CLOCK_NAMES or channels.match(name)[0] == "time"
+    key = _key(name)
+    return key in _DATE_NAMES or key in _CLOCK_NAMES or channels.match(split_name(name)[0])[0] == "time"
 
 
 def read_clock(raw: RawLog, timezone: str, chosen: tuple[str, str | None] | None, order: str | None) -> Clock:
@@ -116,9 +117,7 @@ def read_clock(raw: RawLog, timezone: str, chosen: tuple[str, str | None] | None
     """
     zone = zone_of(timezone)
     place, unit = _pick(raw, chosen)
-    dates = [
-        i for i, name in enumerate(raw.names) if channels.normalise(name) in _DATE_NAMES and i in raw.table
-    ]
+    dates = [i for i, name in enumerate(raw.names) if _key(name) in _DATE_NAMES and i in raw.table]
     date_place = next((i for i in dates if i != place), None)
     column = raw.table[place]
     if date_place is not None and raw.table[date_place].isna().all():
@@ -145,23 +144,29 @@ def _pick(raw: RawLog, chosen: tuple[str, str | None] | None) -> tuple[int, str 
         key = channels.normalise(chosen[0])
         for i in loaded:
             if raw.names[i] == chosen[0] or channels.normalise(raw.names[i]) == key:
-                return i, chosen[1] or raw.units[i]
+                return i, chosen[1] or _unit(raw, i)
     filled = [i for i in loaded if not raw.table[i].isna().all()]
-    named = [i for i in filled if channels.normalise(raw.names[i]) in _CLOCK_NAMES]
-    named += [i for i in filled if channels.match(raw.names[i])[0] == "time"]
-    named += [i for i in filled if channels.normalise(raw.names[i]) in _DATE_NAMES]
+    named = [i for i in filled if _key(raw.names[i]) in _CLOCK_NAMES]
+    named += [i for i in filled if channels.match(split_name(raw.names[i])[0])[0] == "time"]
+    named += [i for i in filled if _key(raw.names[i]) in _DATE_NAMES]
     full = [i for i in named if _holds_stamps(raw.table[i])]
-    for i in (*full, *named):
-        return i, raw.units[i]
-    for i in filled:
-        if _holds_stamps(raw.table[i]):
-            return i, raw.units[i]
-    if not raw.format.startswith("CSV") and filled and raw.start is not None:
-        return filled[0], raw.units[filled[0]]
+    stamped = [i for i in filled if _holds_stamps(raw.table[i])] if not named else []
+    # The index of a file that says when it starts can be nothing else.
+    index = filled[:1] if raw.start is not None and not raw.format.startswith("CSV") else []
+    for i in (*full, *named, *stamped, *index):
+        return i, _unit(raw, i)
     seen = ", ".join(repr(name) for name in raw.names[:40])
     raise LogError(
         f'found no column of time among {seen}; name it under [logs.channels] as time = "..."', file=raw.path
     )
+
+
+def _key(name: str) -> str:
+    return channels.normalise(split_name(name)[0])
+
+
+def _unit(raw: RawLog, place: int) -> str | None:
+    return raw.units[place] or split_name(raw.names[place])[1]
 
 
 def _holds_stamps(column: pd.Series) -> bool:
@@ -315,7 +320,7 @@ def _from_numbers(
     place, date_place = places
     values = to_numbers(raw.table[place])[0]
     name = raw.names[place]
-    if date_place is not None and channels.normalise(name) not in _DATE_NAMES:
+    if date_place is not None and _key(name) not in _DATE_NAMES:
         return _number_and_date(raw, (place, date_place), values, zone)
     found = clock_number.read(values, unit, name)
     if found is None:
@@ -342,11 +347,11 @@ def _from_numbers(
 def _number_and_date(raw: RawLog, places: tuple[int, int], values: Floats, zone: ZoneInfo | float) -> Clock:
     place, date_place = places
     names = (raw.names[date_place], raw.names[place])
-    seconds = clock_number.seconds_of_day(values, raw.units[place])
+    seconds = clock_number.seconds_of_day(values, _unit(raw, place))
     days, order = _days_of(raw, date_place, None)
     if seconds is None or not np.isfinite(days).any():
         alone = replace(raw, table=raw.table.drop(columns=date_place))
-        return _from_numbers(alone, (place, None), raw.units[place], zone)
+        return _from_numbers(alone, (place, None), _unit(raw, place), zone)
     return Clock(
         to_utc(days * DAY + seconds, zone), names, "date and time as numbers in two columns", order=order
     )

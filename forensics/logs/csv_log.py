@@ -71,6 +71,7 @@ def read(path: Path, head: bytes, keep: Keep) -> RawLog:
         units=dialect.units,
         table=table,
         first_line=dialect.skip + 1,
+        start=dialect.start,
         date_hint=" ".join(filter(None, (*dialect.names, *dialect.units))),
         notes=tuple(notes),
         grouped=dialect.delimiter == ",",

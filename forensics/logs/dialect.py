@@ -12,7 +12,7 @@ from pathlib import Path
 
 from forensics import channels
 from forensics.errors import LogError
-from forensics.logs.clock_text import looks_like_clock, looks_like_date
+from forensics.logs.clock_text import looks_like_clock, looks_like_date, take_apart
 from forensics.logs.nulls import WORDS
 from forensics.units import is_blank, quantities_of
 
@@ -49,6 +49,8 @@ class Dialect:
         True where blanks follow delimiters.
     notes : tuple of str
         Remarks for the report.
+    start : str or None
+        Stamp that a line above the header calls the start.
     """
 
     encoding: str
@@ -59,6 +61,7 @@ class Dialect:
     skip: int
     padded: bool = False
     notes: tuple[str, ...] = ()
+    start: str | None = None
 
 
 def find_encoding(head: bytes) -> str:
@@ -256,4 +259,15 @@ def _finish(lines: Sequence[str], found: tuple[str, str, int], path: Path) -> Di
         names, units = _part_stamp(names, units, rows[starts[0]])
     decimal = _decimal([rows[i] for i in starts], delimiter)
     padded = delimiter != " " and any(f"{delimiter} " in lines[i] for i in starts)
-    return Dialect(encoding, delimiter, decimal, names, units, starts[0], padded, notes)
+    return Dialect(
+        encoding, delimiter, decimal, names, units, starts[0], padded, notes, _find_start(lines[: starts[0]])
+    )
+
+
+def _find_start(lines: Sequence[str]) -> str | None:
+    """Find a stamp that a line above the data calls the start."""
+    for line in lines:
+        found = re.search(r"(?:start|begin)[^\d\n]*(\d[^;,\t|\n]*)", line, re.IGNORECASE)
+        if found and looks_like_date(found.group(1)) and take_apart(found.group(1)).clock is not None:
+            return found.group(1).strip(" \"'")
+    return None

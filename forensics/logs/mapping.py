@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import re
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass, replace
 
@@ -14,13 +13,13 @@ from forensics.case import ChannelChoice
 from forensics.channels import BY_NAME, GENERIC_DEPTH, Need
 from forensics.errors import LogError, UnitError, nearest
 from forensics.logs.clock import is_time_name
+from forensics.logs.naming import split_name
 from forensics.logs.nulls import to_numbers
 from forensics.logs.raw import RawLog
 from forensics.logs.table import SourceColumn
 
 Floats = NDArray[np.float64]
 Choices = Mapping[str, ChannelChoice]
-_BRACKETED = re.compile(r"^(.*?)\s*[\[({<]\s*([^\])}>]*?)\s*[\])}>]?\s*$")
 # Channels whose usual name is its unit: "RPM", "GPM".
 _UNIT_IN_NAME = (("rpm", "rotation", "rpm"), ("gpm", "flow", "gpm"), ("lpm", "flow", "L/min"))
 # Units a rig may have meant, likeliest first, for the hint where one is missing or absurd.
@@ -74,32 +73,6 @@ class Mapped:
     empty: Mapping[str, str]
 
 
-def split_name(name: str) -> tuple[str, str | None]:
-    """Part a column's name from a unit glued to it.
-
-    Examples
-    --------
-    >>> split_name("Hookload (k-lbs)"), split_name("Weight on Bit kkgf"), split_name("Surface RPM")
-    (('Hookload', 'k-lbs'), ('Weight on Bit', 'kkgf'), ('Surface RPM', None))
-    """
-    found = _BRACKETED.match(name)
-    if found and found.group(1) and (not found.group(2) or units.quantities_of(found.group(2))):
-        return found.group(1), found.group(2) or None
-    if channels.is_listed(name):
-        return name, None
-    words = [word for word in re.split(r"[\s_,;:/]+", name) if word]
-    for count in (1, 2, 3):
-        stem = " ".join(words[:-count])
-        known = channels.match(stem)[0] if stem else None
-        if known is None:
-            continue
-        for joint in ("", "/", "."):
-            unit = joint.join(words[-count:])
-            if BY_NAME[known].quantity in units.quantities_of(unit):
-                return stem, unit
-    return name, None
-
-
 def wanted(choices: Choices) -> frozenset[str]:
     """Names the case file chose, in the form names are compared in."""
     return frozenset(channels.normalise(choice.column) for choice in choices.values())
@@ -146,6 +119,9 @@ def map_columns(raw: RawLog, choices: Choices, time_columns: tuple[str, ...]) ->
         if name in time_columns:
             say(place, "time", "holds the stamps")
         elif (found := _candidate(raw, place, choices)) is None:
+            if is_time_name(name):
+                say(place, None, f"a date or time; the stamps come from {', '.join(time_columns)}")
+                continue
             say(place, None, channels.match(split_name(name)[0])[1])
         else:
             numbers[place] = to_numbers(raw.table[place], raw.grouped)

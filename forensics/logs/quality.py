@@ -9,12 +9,15 @@ from numpy.typing import NDArray
 
 from forensics.channels import BY_NAME
 from forensics.logs.frozen import FREEZABLE, find_frozen
+from forensics.logs.slow import fill_between
 from forensics.logs.spikes import COARSE, find_jumps, find_spikes, rule_for
 from forensics.logs.table import Reason, Step
 
 Floats = NDArray[np.float64]
 Bools = NDArray[np.bool_]
 POSITIONS = ("bit_depth", "hole_depth", "block_position")
+# Channels whose last reading stands until the next where they come more slowly than the rows.
+HELD = ("rpm", "torque", "wob", "standpipe_pressure", "flow_in")
 SPIKY = (
     "hookload",
     "hookload_max",
@@ -128,7 +131,7 @@ def clean(time: Floats, values: dict[str, Floats], interval: float) -> Cleaning:
         if channel in work.values:
             frozen = find_frozen(channel, work.values, interval)
             work.set_aside(channel, frozen, Reason.FROZEN, "frozen sensor", "one value while the rig moved")
-    _fill_slow_depth(work)
+    _fill_slow(work)
     _gaps(work)
     return work
 
@@ -163,23 +166,23 @@ def _out_of_range(work: Cleaning) -> None:
             work.drop(channel, "no usable value", "no value is believable")
 
 
-def _fill_slow_depth(work: Cleaning) -> None:
-    """Interpolate a bit depth that comes at a lower rate than the rows, and say so."""
-    depth = work.values["bit_depth"]
-    known = np.flatnonzero(np.isfinite(depth) & (work.cause["bit_depth"] == 0))
-    if len(known) < 3 or len(known) > 0.7 * len(depth):
-        return
-    gaps = np.diff(work.time[known])
-    if np.percentile(gaps, 90) > max(30.0, 5.0 * work.interval):
-        return
-    filled = np.interp(work.time, work.time[known], depth[known], left=np.nan, right=np.nan)
-    nearest = np.searchsorted(work.time[known], work.time).clip(1, len(known) - 1)
-    near = gaps[nearest - 1] <= max(30.0, 5.0 * work.interval)
-    fill = ~np.isfinite(depth) & np.isfinite(filled) & near & (work.cause["bit_depth"] == Reason.NULL_DEPTH)
-    work.values["bit_depth"] = np.where(fill, filled, depth)
-    work.cause["bit_depth"][fill] = 0
-    work.steps.append(Step("interpolated", int(fill.sum()), "bit_depth", "recorded less often than the rows"))
-    work.warnings.append("bit depth comes less often than the rows and was interpolated between its values")
+def _fill_slow(work: Cleaning) -> None:
+    """Carry channels that come at a lower rate than the rows from reading to reading, and say so."""
+    for channel in (*POSITIONS, *HELD):
+        if channel not in work.values:
+            continue
+        filled, where = fill_between(work.time, work.values[channel], work.interval, hold=channel in HELD)
+        if channel in work.cause:
+            # What was set aside for a fault stays so.
+            where &= work.cause[channel] <= Reason.NULL_DEPTH
+            work.cause[channel][where] = 0
+        if not where.any():
+            continue
+        work.values[channel] = np.where(where, filled, work.values[channel])
+        how = "repeated" if channel in HELD else "interpolated"
+        work.steps.append(Step(f"{how} between readings", int(where.sum()), channel, "slower than the rows"))
+        words = channel.replace("_", " ")
+        work.warnings.append(f"{words} comes less often than the rows and was {how} between its readings")
 
 
 def _gaps(work: Cleaning) -> None:

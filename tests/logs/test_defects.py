@@ -91,6 +91,7 @@ SAME = {
     "wrapped.las": FIRST,
     "version_3.las": FIRST,
     "line_breaks_in_header.csv": FIRST,
+    "start_above_header.csv": FIRST,
     "delimiter_at_line_ends.csv": FIRST,
     "bars_between.csv": FIRST,
     "date_late_at_midnight.csv": utc("2031-05-14T23:59:00"),
