@@ -216,7 +216,9 @@ def _details(
 ) -> tuple[str, ...]:
     """Tell the main episodes one by one, and count the rest."""
     said = []
-    for episode in main[:TOLD]:
+    inside = [e for e in main if e.kind is Kind.LOCKUP and any(_holds(other, e) for other in main)]
+    told = [e for e in main if e not in inside]
+    for episode in told[:TOLD]:
         when = wording.period(episode.start, episode.end, material.log.timezone)
         line = f"{episode.id}: {rule_label(episode)}, {when}"
         if np.isfinite(episode.lost_weight.value):
@@ -229,8 +231,9 @@ def _details(
         if episode.cause:
             line += f"; {episode.cause}"
         said.append(line + ".")
-    if len(main) > TOLD:
-        said.append(f"{wording.times(len(main) - TOLD, 'more episode')} in the table.")
+    rest = len(main) - len(told[:TOLD])
+    if rest:
+        said.append(f"{wording.times(rest, 'more episode')} in the table.")
     routine = [e for e in episodes if is_routine(e)]
     if routine:
         hours = sum(e.duration for e in routine) / 3600.0
@@ -240,6 +243,11 @@ def _details(
         )
     said.append(sensitivity_sentence(material))
     return tuple(line for line in said if line)
+
+
+def _holds(outer: Episode, inner: Episode) -> bool:
+    """Whether a buckling episode holds another in time."""
+    return outer.kind is Kind.BUCKLING and outer.first <= inner.first and outer.last >= inner.last
 
 
 def _unknown(material: Material, main: list[Episode]) -> tuple[str, ...]:

@@ -72,25 +72,6 @@ def judge(cov: Floats, prior: Prior, bears: tuple[bool, bool]) -> Verdict:
     return Verdict(held, tuple(sentences))
 
 
-def open_directions(cov: Floats, prior: Prior) -> list[tuple[float, Floats]]:
-    """Directions in parameter space with the part of the prior's width left in each, widest first.
-
-    Parameters
-    ----------
-    cov : ndarray, shape (6, 6)
-    prior : Prior
-
-    Returns
-    -------
-    list of (float, ndarray of shape (6,))
-        Posterior over prior sigma along the direction, and the direction in prior sigmas.
-    """
-    scaled = cov / np.outer(prior.sigma, prior.sigma)
-    values, vectors = np.linalg.eigh(scaled)
-    order = np.argsort(values)[::-1]
-    return [(float(np.sqrt(max(values[k], 0.0))), vectors[:, k]) for k in order]
-
-
 def _why(k: int, cov: Floats, bears: bool, prior: Prior) -> str:
     kind = KINDS[k - 3]
     assumed = prior.centre[k]
