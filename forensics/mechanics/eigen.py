@@ -186,6 +186,44 @@ def interpolate(n: ArrayLike, length: ArrayLike) -> Floats:
     return LIMIT + (inside - LIMIT) * fade + below
 
 
+def quick_eigenvalue(n: ArrayLike, length: ArrayLike) -> Floats:
+    """Give c(n, length) from a short formula: for a check by hand, not for judging.
+
+    Parameters
+    ----------
+    n : array_like
+        Side load, as in `column_eigenvalue` [-].
+    length : array_like
+        Over Lubinski's length, 5 or more [-].
+
+    Returns
+    -------
+    ndarray, shape of the inputs broadcast together
+        c [-].
+
+    Notes
+    -----
+    Two ends are fitted: ``phi`` of a string without side load by length, ``1.01879 + 1/(0.1597 + 0.4181
+    log(length + 1.057))``, and of an endless one by side load, ``2 sqrt(n) + 1.01879 + 0.59844/(1 + 0.3104
+    log(1 + 0.3566/sqrt(n) + 0.0042/n))``; they are joined by their powers of ``3 + 3.7508 log(length)``.
+    Against the solver phi, and so a critical load, is met within 1.1 % (0.3 % in the mean) for lengths from 5
+    to 1e6 and n from 0 to 1e6.
+
+    Examples
+    --------
+    >>> float(quick_eigenvalue(0.0, 512.0).round(2))
+    1.38
+    """
+    n, length = np.broadcast_arrays(np.asarray(n, dtype=float), np.asarray(length, dtype=float))
+    side, first = 2 * np.sqrt(n), LIMIT / 4 ** (1 / 3)
+    some = np.maximum(n, 1e-300)
+    endless = side + first + (LIMIT - first) / (1 + 0.3104 * np.log1p(0.3566 / np.sqrt(some) + 0.0042 / some))
+    bare = first + 1 / (0.1597 + 0.4181 * np.log(length + 1.057))
+    power = 3 + 3.7508 * np.log(length)
+    more, less = np.maximum(endless, bare), np.minimum(endless, bare)
+    return more * (1 + (less / more) ** power) ** (1 / power) - side
+
+
 def _table(values: Floats) -> EigenTable:
     dn = (LOG_N[1] - LOG_N[0]) / (ROWS - 1)
     dl = (LENGTH_RANGE[1] - LENGTH_RANGE[0]) / (COLUMNS - 1)

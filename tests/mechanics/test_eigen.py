@@ -10,6 +10,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from forensics.mechanics import eigen
+from forensics.mechanics.airy_column import exact_column_load
 from naive_mechanics import column_by_differences
 
 
@@ -89,6 +90,20 @@ def test_interpolation_of_short_columns(log_n, length):
     n = math.exp(log_n)
     exact = eigen.column_eigenvalue(n, length)
     assert abs(float(eigen.interpolate(n, length)) - exact) < 1e-3 * (exact + 2 * math.sqrt(n))
+
+
+def test_short_formula_is_within_its_stated_error():
+    n = np.concatenate([[0.0], np.geomspace(1e-6, 1e6, 90)])[:, None]
+    length = np.geomspace(5.0, 1e6, 60)
+    exact = 2 * np.sqrt(n) + eigen.interpolate(n, length)
+    off = (2 * np.sqrt(n) + eigen.quick_eigenvalue(n, length)) / exact - 1
+    assert np.abs(off).max() < 0.011
+    assert np.sqrt((off**2).mean()) < 0.003
+    # the table is held against the solver elsewhere; here, the exact solution without side load
+    for column in (5.0, 20.0, 512.0, 1e6):
+        known = exact_column_load(column)
+        assert float(eigen.quick_eigenvalue(0.0, column)) == pytest.approx(known, rel=0.011)
+    assert float(eigen.quick_eigenvalue(1e12, 50.0)) == pytest.approx(eigen.LIMIT, rel=1e-3)
 
 
 def test_edges_of_the_table_hold():
