@@ -66,7 +66,7 @@ def headline(material: Material, episodes: tuple[Episode, ...], system: str = "m
     else:
         sentence = QUIET
     if not loaded:
-        sentence = f"{sentence} {ordinary_loss(material, system)}".rstrip()
+        sentence = f"{sentence} {ordinary_loss(material, system, bool(main))}".rstrip()
     return Headline(
         sentence=sentence,
         confidence=_confidence(material, main),

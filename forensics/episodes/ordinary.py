@@ -59,7 +59,7 @@ def largest_loss(material: Material) -> tuple[int, Estimate] | None:
     return row, Estimate(value, value - half, value + half, "re-zeroed surface weight")
 
 
-def ordinary_loss(material: Material, system: str) -> str:
+def ordinary_loss(material: Material, system: str, dragging: bool = False) -> str:
     """Tell of weight lost to plain sliding friction; empty where there was none worth telling.
 
     Parameters
@@ -67,6 +67,8 @@ def ordinary_loss(material: Material, system: str) -> str:
     material : Material
     system : str
         "metric" or "field".
+    dragging : bool
+        Whether drag beyond the calibrated friction was found too: then not all of it is ordinary.
 
     Returns
     -------
@@ -77,9 +79,10 @@ def ordinary_loss(material: Material, system: str) -> str:
         return ""
     row, lost = found
     bit = float(material.bit[row])
+    what = "sliding drag, part of it beyond" if dragging else "ordinary sliding drag,"
     return (
         f"While sliding, up to {wording.size(lost, 'force', system)} of the weight set down did not reach "
-        f"the bit (at {wording.depth(bit, system)}): ordinary sliding drag, {_friction(material, row)}."
+        f"the bit (at {wording.depth(bit, system)}): {what} {_friction(material, row)}."
     )
 
 
