@@ -6,7 +6,7 @@ from dataclasses import replace
 
 import numpy as np
 
-from forensics.case import Case
+from forensics.case import Case, RigSettings
 from forensics.estimate import Estimate
 from forensics.logs.table import TimeLog
 from forensics.rig import noise
@@ -30,6 +30,9 @@ __all__ = ["refine_activity", "understand_rig"]
 _WEIGH_STEP = 5.0
 # Length of the longest common stand [m].
 _STAND = 30.0
+# The in-slips reading contradicts the case when off by this share and this much [N].
+_DISAGREES = 0.03
+_BOTHERS = 5e3
 
 
 def understand_rig(log: TimeLog, well: Well, case: Case) -> RigView:
@@ -185,6 +188,12 @@ def _can_not_tell(facts: Facts, judged: Judged, weight: Estimate, slips: Slips) 
     if slips.plateau is None:
         notes.append(
             f"No reading in slips: the block weight can't be read off; it is taken from {weight.source}."
+        )
+    seen = block_weight(slips, facts.signals, facts.moves.hookload, RigSettings())
+    if seen is not None and abs(seen.value - weight.value) > max(_DISAGREES * abs(seen.value), _BOTHERS):
+        notes.append(
+            f"In slips the hookload reads {seen.value / 1e3:.0f} kN, where the block weight is taken as "
+            f"{weight.value / 1e3:.0f} kN ({weight.source}): bias and block weight can't be told apart."
         )
     if facts.log.get("block_position") is None:
         notes.append("No block position: motion is judged by the bit's depth, and in slips not at all.")

@@ -158,6 +158,10 @@ def test_tared_sensor_has_no_block_weight(tools, drilled, full, well):
 def test_given_block_weight_is_kept(tools, drilled, well):
     view = see(tools, tools.log(drilled), well, block_weight=310e3)
     assert (view.block_weight.value, view.block_weight.source) == (310e3, "case file")
+    assert any("reads 300 kN" in note for note in view.can_not_tell)
+    assert not any(
+        "reads" in n for n in see(tools, tools.log(drilled), well, block_weight=302e3).can_not_tell
+    )
 
 
 def test_slips_channel_is_believed_only_where_physics_agrees(tools, drilled, full, well):
