@@ -79,7 +79,7 @@ def ordinary_loss(material: Material, system: str, dragging: bool = False) -> st
         return ""
     row, lost = found
     bit = float(material.bit[row])
-    what = "sliding drag, part of it beyond" if dragging else "ordinary sliding drag,"
+    what = "sliding drag," if dragging else "ordinary sliding drag,"
     return (
         f"While sliding, up to {wording.size(lost, 'force', system)} of the weight set down did not reach "
         f"the bit (at {wording.depth(bit, system)}): {what} {_friction(material, row)}."
