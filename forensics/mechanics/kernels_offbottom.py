@@ -8,12 +8,15 @@ from numba import njit
 from forensics.mechanics.kernels_judge import Setting, latch, thresholds
 from forensics.mechanics.kernels_march import Array, Ask, contact, top_element
 
+RUN_AWAY = -1e8  # N; no string carries it: the march has passed lockup
+
 
 @njit(cache=True, error_model="numpy")
 def weigh(setting: Setting, ask: Ask, judged: bool) -> tuple[float, float]:
     """Tension at the rotary of a string that slides off bottom, helical contact where it has latched [N].
 
-    Beside it, where `judged`, the largest load ratio anywhere (else 0).
+    Beside it, where `judged`, the largest load ratio anywhere (else 0). A string that locks up under its
+    own drag has no such tension: NaN.
     """
     hole, pipe, criteria = setting.hole, setting.pipe, setting.criteria
     first = int(ask.bit * hole.inv_step + 0.5)
@@ -30,6 +33,8 @@ def weigh(setting: Setting, ask: Ask, judged: bool) -> tuple[float, float]:
             force += (middle / criteria.root[criteria.kind[j], i]) ** 2
         if judged and middle < 0.0:
             ratio = max(ratio, -middle / thresholds(setting, j, i, middle, ask.scale)[1])
+        if middle < RUN_AWAY:
+            return np.nan, np.inf
         slope = weight * hole.cos_i[i] - ask.sigma * setting.mu[i] * force
         tension += slope * length
     return tension, ratio

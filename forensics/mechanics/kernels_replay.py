@@ -24,10 +24,11 @@ from forensics.mechanics.kernels_memory import (
 
 HOLD, TURN, SLIDE = 0, 1, 2  # what a sample lets the string do
 BY_HOOKLOAD, BY_MEMORY, BY_RATE, BY_PRESSURE = 0, 1, 2, 3  # what the bit load rests on
-MODE, WAY, HOOK, REACH, AT, TOP = range(6)  # columns of `Run.now`
+MODE, WAY, HOOK, REACH, AT, TOP, LIFT = range(7)  # columns of `Run.now`
 
 SAME = 0.2  # of the dead band: a string that moves as a whole is not marched again for less
 ARRIVED = 4.0  # dead bands the hookload must rise, block not raised, to show that the bit's front is here
+RAISED = 0.03  # m of block travel that shows a string sliding down to be pulled up again
 OVER_STRETCH, OVER_LENGTH = 1.3, 0.3  # travel beyond stretch, and [m], that shows a clear bit to be moving
 
 
@@ -87,8 +88,9 @@ class Run(NamedTuple):
     """One replay: samples in, results out, and what is carried from row to row.
 
     `now` holds what the string is doing (`FREE`, +1 or -1 sliding as a whole, `ROTATING`), the last
-    direction, the last hookload taken [N], how near the bit surface motion has come [m above it], and
-    depth index and top element of the last row (-1 before the first).
+    direction, the last hookload taken [N], how near the bit surface motion has come [m above it],
+    depth index and top element of the last row (-1 before the first), and the block's travel when the bit's
+    front came through [m].
     """
 
     samples: Samples
@@ -188,7 +190,9 @@ def sliding(setting: Setting, run: Run, place: Place, t: int) -> None:
     direction, top = samples.direction[t], samples.top[t]
     if now[MODE] == ROTATING:
         now[MODE], now[WAY] = FREE, 0.0
-    if direction != 0 and direction != now[WAY]:
+    # the bit's front may set the string sliding after the block was raised a little: raised again, it turns
+    again = now[MODE] == 1.0 and direction == -1 and samples.travel[t] > now[LIFT] + RAISED
+    if direction != 0 and (direction != now[WAY] or again):
         run.memory.reversal[: place.top + 2] = run.memory.tension[: place.top + 2]
         now[WAY], now[REACH] = direction, place.bit
         if now[MODE] != direction:
@@ -204,7 +208,7 @@ def sliding(setting: Setting, run: Run, place: Place, t: int) -> None:
                 now[MODE] = sigma
         elif samples.drilling[t] and direction >= 0 and top - now[HOOK] > ARRIVED * band:
             if run.memory.tension[0] < 0.0:
-                now[MODE] = 1.0
+                now[MODE], now[LIFT] = 1.0, samples.travel[t]
         if now[MODE] == FREE and direction != 0 and samples.free[t] and all_moving(setting, run, place, t):
             now[MODE] = sigma
     if now[MODE] != FREE:
@@ -223,13 +227,13 @@ def drilling_off(setting: Setting, run: Run, place: Place, t: int) -> int:
         last = place.top if end < 0 else end
         memory.tension[: last + 1] = memory.work[: last + 1]
         if end < 0:
-            run.now[MODE] = 1.0
+            run.now[MODE], run.now[LIFT] = 1.0, samples.travel[t]
         return BY_PRESSURE
     if rules.rate <= 0.0 or load <= 0.0:
         return BY_MEMORY
     drilled = rules.rate * load**rules.exponent * samples.step[t]
     if bit_front(setting, memory, place, rub, drilled):
-        run.now[MODE] = 1.0
+        run.now[MODE], run.now[LIFT] = 1.0, samples.travel[t]
     return BY_RATE
 
 

@@ -53,8 +53,10 @@ def _band(kind: str, depth: Floats, calibration: Calibration, model: OffBottomMo
         block + bias + model.string_weight(kind, depth, cased, open_hole, scale)
         for cased, open_hole, block in draws
     ]
-    low, high = np.percentile(lines, [5.0, 95.0], axis=0)
-    return low, high
+    # where some draws lock up there is no band to show
+    whole = np.isfinite(lines).all(axis=0)
+    low, high = np.percentile(np.where(whole, lines, 0.0), [5.0, 95.0], axis=0)
+    return np.where(whole, low, np.nan), np.where(whole, high, np.nan)
 
 
 def drag_lines(

@@ -26,7 +26,7 @@ def fresh(model: OffBottomModel) -> tuple[Memory, Floats]:
     """Start with a string that remembers nothing."""
     nodes = len(model.pipe.x)
     arrays = [np.zeros(nodes + 1) for _ in range(4)]
-    return Memory(*arrays, np.zeros(nodes, dtype=np.int8)), np.array([0.0, 0.0, 0.0, 0.0, -1.0, -1.0])
+    return Memory(*arrays, np.zeros(nodes, dtype=np.int8)), np.array([0.0, 0.0, 0.0, 0.0, -1.0, -1.0, 0.0])
 
 
 def room(count: int, times: int, depths: int) -> Found:

@@ -148,6 +148,27 @@ def test_once_through_the_string_follows_the_hookload_both_ways():
     assert found.bit_load[-1] < 3e3
 
 
+def test_a_string_drilled_off_after_a_small_lift_is_still_picked_up():
+    """Raised a little, held while the bit drills the slack off, then raised: the pick-up is one."""
+    well = build_well()
+    model = build_model(well, case_for(), 3400.0)
+    at = model.setting(0.2, 0.25)
+    slack = float(model.string_weight("slack_off", 3400.0, 0.2, 0.25)[0])
+    lifted = float(model.string_weight("pick_up", 3400.0, 0.2, 0.25)[0])
+    memory, now = fresh(model)
+    hold = np.full(300, slack - 40e3)
+    top = np.concatenate([np.linspace(slack + 60e3, slack - 60e3, 60), hold, np.linspace(slack, lifted + 5e3, 60)])
+    way = np.concatenate([np.ones(60), -np.ones(360)])
+    travel = np.concatenate([np.linspace(0, 2, 60), np.full(300, 0.03), np.linspace(0.03, 3.0, 60)])
+    samples = rows(
+        top, way, bit=np.full(420, 3400.0), travel=travel, drilling=np.arange(420) < 361, step=np.full(420, 5.0)
+    )
+    found = go(at, samples, NEVER._replace(rate=2e-7), (memory, now))
+    assert found.full[355] == 1
+    assert found.full[-1] == -1
+    assert found.bit_load[-1] == 0.0
+
+
 def test_a_partial_pick_up_keeps_what_is_locked_in_below():
     well = build_well()
     model = build_model(well, case_for(), 3400.0)
