@@ -8,15 +8,15 @@ from pathlib import Path
 
 import numpy as np
 
-from forensics import units
 from forensics.episodes.catalogue import Consequence, Episode, Kind, State
-from forensics.estimate import Estimate
 from forensics.exports.episodes import write_episodes
 from forensics.exports.friction import write_friction
 from forensics.exports.history import write_history
-from forensics.exports.stamps import stamp, zone
+from forensics.exports.stamps import stamp
 from forensics.exports.summary import write_summary
 from forensics.findings import Findings
+from forensics.logs.zone import tzinfo_of
+from forensics.report.words import Show, count, fixed
 from pipelines.progress import Progress
 
 EXPORTS: Mapping[str, Callable[[Findings, Path], None]] = {
@@ -68,36 +68,35 @@ def lines(findings: Findings, folder: Path, system: str = "metric") -> tuple[str
         The finding, the run, its rows, friction and block weight, the episodes, the worst, the report.
     """
     case, headline = findings.case, findings.headline
+    show = Show(system, findings.log.timezone)
     said = [
         f"{case.id}: {case.title}",
         headline.sentence,
         f"Confidence: {headline.confidence}",
-        _run(findings, system),
+        _run(findings, show),
         _rows(findings),
         _friction(findings),
-        f"Block weight: {_interval(findings.calibration.block_weight, 'force', system)}",
+        f"Block weight: {show.with_interval(findings.calibration.block_weight, 'force')}",
         _episodes(findings.episodes),
-        _worst(findings, system),
+        _worst(findings, show),
         f"Report: {folder / 'report.html'}",
     ]
     return tuple(" ".join(line.split()) for line in said if line)
 
 
-def _run(findings: Findings, system: str) -> str:
+def _run(findings: Findings, show: Show) -> str:
     log = findings.log
-    tz = zone(log.timezone)
+    tz = tzinfo_of(log.timezone)
     depth = log.values["bit_depth"]
-    low, high = (units.show(float(f(depth)), "length", system) for f in (np.nanmin, np.nanmax))
-    return f"Run: {stamp(log.time[0], tz)} to {stamp(log.time[-1], tz)}, bit {low} to {high}"
+    span = show.depths(float(np.nanmin(depth)), float(np.nanmax(depth)))
+    return f"Run: {stamp(log.time[0], tz)} to {stamp(log.time[-1], tz)}, bit {span}"
 
 
 def _rows(findings: Findings) -> str:
-    used = int(np.count_nonzero(findings.log.used))
-    files = len(findings.log.files)
-    return (
-        f"Read: {len(findings.log):,} rows from {files} file{'s' * (files != 1)}, "
-        f"{len(findings.log) - used:,} set aside"
-    )
+    rows = len(findings.log)
+    aside = rows - int(np.count_nonzero(findings.log.used))
+    files = count(len(findings.log.files), "file")
+    return f"Read: {count(rows, 'row')} from {files}, {fixed(aside, 0)} set aside"
 
 
 def _friction(findings: Findings) -> str:
@@ -107,14 +106,6 @@ def _friction(findings: Findings) -> str:
         how = f"({factor.low:.2f} to {factor.high:.2f})" if factor.determined else "(assumed)"
         parts.append(f"{section.kind} {factor.value:.2f} {how}")
     return f"Friction: {', '.join(parts)}"
-
-
-def _interval(estimate: Estimate, quantity: str, system: str) -> str:
-    value = units.show(estimate.value, quantity, system)
-    if not (np.isfinite(estimate.low) and np.isfinite(estimate.high)):
-        return value
-    low, high = (units.show(end, quantity, system) for end in (estimate.low, estimate.high))
-    return f"{value} ({low} to {high})"
 
 
 def _episodes(episodes: tuple[Episode, ...]) -> str:
@@ -129,12 +120,12 @@ def _episodes(episodes: tuple[Episode, ...]) -> str:
     return f"Episodes: {told}" + (f" ({routine} of them routine sinusoidal running)" if routine else "")
 
 
-def _worst(findings: Findings, system: str) -> str:
+def _worst(findings: Findings, show: Show) -> str:
     """Name the episode that lost the most weight, if any did."""
     losing = [e for e in findings.episodes if np.isfinite(e.lost_weight.value) and e.lost_weight.value > 0]
     if not losing:
         return ""
     worst = max(losing, key=lambda e: e.lost_weight.value)
-    tz = zone(findings.log.timezone)
-    lost = _interval(worst.lost_weight, "force", system)
+    tz = tzinfo_of(findings.log.timezone)
+    lost = show.with_interval(worst.lost_weight, "force")
     return f"Most weight lost: {lost} in {worst.id}, from {stamp(worst.start, tz)}"

@@ -9,8 +9,9 @@ from pathlib import Path
 
 from forensics.episodes.catalogue import Episode
 from forensics.estimate import Estimate
-from forensics.exports.stamps import number, stamp, zone
+from forensics.exports.stamps import number, stamp
 from forensics.findings import Findings
+from forensics.logs.zone import tzinfo_of
 
 Cell = str | float | None
 
@@ -95,7 +96,7 @@ def episode_rows(findings: Findings) -> list[dict[str, Cell]]:
     list of dict
         One `episode_row` for each episode.
     """
-    tz = zone(findings.log.timezone)
+    tz = tzinfo_of(findings.log.timezone)
     return [episode_row(episode, tz) for episode in findings.episodes]
 
 

@@ -6,10 +6,11 @@ from pathlib import Path
 from typing import Any
 
 from forensics.estimate import Estimate
-from forensics.exports.stamps import number, stamp, zone
+from forensics.exports.stamps import number, stamp
 from forensics.exports.text import write_json
 from forensics.findings import Findings
 from forensics.friction.result import Calibration, FrictionSection, Reading
+from forensics.logs.zone import tzinfo_of
 
 FORMAT = 1
 KILO = 1e3
@@ -102,7 +103,7 @@ def _force(name: str, estimate: Estimate) -> dict[str, Any]:
 
 
 def _readings(findings: Findings) -> list[dict[str, Any]]:
-    tz = zone(findings.log.timezone)
+    tz = tzinfo_of(findings.log.timezone)
     calibration = findings.calibration
     rows = []
     for reading, residual in zip(calibration.readings, calibration.residuals, strict=True):

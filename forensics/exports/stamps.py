@@ -4,41 +4,6 @@ from __future__ import annotations
 
 import datetime as dt
 import math
-import re
-import zoneinfo
-
-_OFFSET = re.compile(r"^(?:UTC|GMT)?\s*([+-])(\d{1,2}):?(\d{2})?$")
-
-
-def zone(name: str) -> dt.tzinfo:
-    """Give the time zone of a name.
-
-    Parameters
-    ----------
-    name : str
-        IANA name ("Europe/London"), offset ("+02:00", "-0330", "UTC+1") or "Z".
-
-    Returns
-    -------
-    datetime.tzinfo
-        The zone.
-
-    Raises
-    ------
-    ValueError
-        If the name is none of these.
-    """
-    text = name.strip()
-    if text.upper() in {"UTC", "GMT", "Z", ""}:
-        return dt.UTC
-    offset = _OFFSET.match(text.upper())
-    if offset:
-        sign = -1 if offset[1] == "-" else 1
-        return dt.timezone(sign * dt.timedelta(hours=int(offset[2]), minutes=int(offset[3] or 0)))
-    try:
-        return zoneinfo.ZoneInfo(text)
-    except (zoneinfo.ZoneInfoNotFoundError, ValueError) as error:
-        raise ValueError(f"{name!r} is not a time zone: give an IANA name or an offset") from error
 
 
 def stamp(seconds: float, tz: dt.tzinfo) -> str:

@@ -14,10 +14,11 @@ import numpy as np
 from forensics import __version__
 from forensics.exports.episodes import episode_rows
 from forensics.exports.friction import friction_content
-from forensics.exports.stamps import number, stamp, zone
+from forensics.exports.stamps import number, stamp
 from forensics.exports.text import write_json
 from forensics.findings import Findings
 from forensics.logs.table import FileRecord, Reason
+from forensics.logs.zone import tzinfo_of
 from forensics.rig.view import Activity
 
 FORMAT = 1
@@ -120,7 +121,7 @@ def _case(findings: Findings) -> dict[str, str | None]:
 def _run(findings: Findings) -> dict[str, Any]:
     """Say when and where the run was, and how its time was spent."""
     log, rig = findings.log, findings.rig
-    tz = zone(log.timezone)
+    tz = tzinfo_of(log.timezone)
     depth = log.values["bit_depth"]
     deep = depth[np.isfinite(depth)]
     hours = np.bincount(rig.activity, minlength=len(Activity)) * log.interval / 3600.0
@@ -153,7 +154,7 @@ def _quality(findings: Findings) -> dict[str, Any]:
 
 
 def _file(record: FileRecord, findings: Findings) -> dict[str, Any]:
-    tz = zone(findings.log.timezone)
+    tz = tzinfo_of(findings.log.timezone)
     timed = np.isfinite(record.start) and np.isfinite(record.end)
     return {
         "file": record.name,

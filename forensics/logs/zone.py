@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import datetime as dt
 import re
 from zoneinfo import ZoneInfo
 
@@ -40,6 +41,25 @@ def zone_of(name: str) -> ZoneInfo | float:
             f"unknown time zone {name!r}; use an IANA name ('Europe/Oslo') or an offset ('+01:00')",
             column="logs.timezone",
         ) from error
+
+
+def tzinfo_of(name: str) -> dt.tzinfo:
+    """Give the zone of a name (see `zone_of`) as an object that clocks understand.
+
+    Raises
+    ------
+    CaseError
+        If it is neither an IANA name nor an offset.
+
+    Examples
+    --------
+    >>> tzinfo_of("-03:30").utcoffset(None) == dt.timedelta(hours=-3.5)
+    True
+    """
+    found = zone_of(name)
+    if isinstance(found, ZoneInfo):
+        return found
+    return dt.timezone(dt.timedelta(seconds=found)) if found else dt.UTC
 
 
 def to_utc(local: Floats, zone: ZoneInfo | float) -> Floats:
