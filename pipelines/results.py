@@ -8,7 +8,8 @@ from pathlib import Path
 
 import numpy as np
 
-from forensics.episodes.catalogue import Consequence, Episode, Kind, State
+from forensics.episodes.catalogue import Episode, Kind
+from forensics.episodes.groups import is_routine
 from forensics.exports.episodes import write_episodes
 from forensics.exports.friction import write_friction
 from forensics.exports.history import write_history
@@ -112,10 +113,7 @@ def _episodes(episodes: tuple[Episode, ...]) -> str:
     if not episodes:
         return "Episodes: none"
     counts = Counter(episode.kind.value for episode in episodes)
-    routine = sum(
-        e.kind is Kind.BUCKLING and e.state is not State.HELICAL and e.consequence is Consequence.NONE
-        for e in episodes
-    )
+    routine = sum(is_routine(episode) for episode in episodes)
     told = ", ".join(f"{counts[kind.value]} {kind.value}" for kind in Kind if counts[kind.value])
     return f"Episodes: {told}" + (f" ({routine} of them routine sinusoidal running)" if routine else "")
 
