@@ -150,7 +150,7 @@ def day_number(text: str, order: str | None) -> int | None:
         fields = (year, month, day)
     try:
         return dt.date(*fields).toordinal() - _EPOCH
-    except ValueError:
+    except (ValueError, OverflowError):
         return None
 
 

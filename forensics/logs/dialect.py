@@ -100,7 +100,11 @@ def split_line(line: str, delimiter: str) -> list[str]:
     """
     if delimiter == " ":
         return line.split()
-    fields = next(csv.reader([line], delimiter=delimiter, skipinitialspace=True), [])
+    try:
+        fields = next(csv.reader([line], delimiter=delimiter, skipinitialspace=True), [])
+    except csv.Error:
+        # A stray quote or line break: no more than the delimiter can be trusted.
+        fields = line.split(delimiter)
     return [field.strip() for field in fields]
 
 

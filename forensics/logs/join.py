@@ -18,8 +18,8 @@ LATE_ROWS = 20
 LATE_INTERVALS = 20.0
 # Above this share of stamps told twice with different values, two recordings clash.
 CLASH = 0.5
-# Values this near, relative to the channel's largest, are one reading rounded in two unit systems.
-SAME = 3e-3
+# Values this near are one reading rounded in two unit systems: part of the largest hookload; depth [m].
+SAME = {"hookload": 2.5e-3, "bit_depth": 0.1}
 
 
 @dataclass(frozen=True)
@@ -121,13 +121,13 @@ def _check_overlap(piece: Piece, back: NDArray[np.int64]) -> None:
 
 def _share_different(values: Mapping[str, Floats], one: NDArray[np.int64], two: NDArray[np.int64]) -> float:
     shares = []
-    for channel in ("hookload", "bit_depth"):
+    for channel, near in SAME.items():
         if channel in values:
             a, b = values[channel][one], values[channel][two]
             known = np.isfinite(a) & np.isfinite(b)
             if known.any():
-                scale = np.abs(a[known]).max() + 1e-12
-                shares.append(float((np.abs(a[known] - b[known]) > SAME * scale).mean()))
+                scale = float(np.abs(a[known]).max()) if channel == "hookload" else 1.0
+                shares.append(float((np.abs(a[known] - b[known]) > near * scale).mean()))
     return max(shares, default=0.0)
 
 

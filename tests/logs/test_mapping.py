@@ -30,7 +30,7 @@ def mapped(choices=None, **columns):
 
 def data(found, channel):
     """Give a channel's values, in the file's unit."""
-    return list(found.values[channel])
+    return list(found.values[channel])  # noqa: PD011
 
 
 @pytest.mark.parametrize(
