@@ -164,7 +164,7 @@ def find_jumps(values: Floats, time: Floats, floor: float = 2.0, longest: float 
     usual = float(np.median(np.diff(t)))
     longest = max(longest, 10.0 * usual)
     step = np.diff(x)
-    big = np.flatnonzero(np.abs(step) > floor + TOP_SPEED * np.minimum(np.diff(t), 60.0))
+    big = np.flatnonzero(np.abs(step) > floor + TOP_SPEED * np.diff(t))
     i = 0
     while i < len(big):
         out = int(big[i])

@@ -101,6 +101,15 @@ def test_steps_of_a_metre_at_a_tag_stay():
     assert not find_jumps(values, time).any()
 
 
+def test_a_long_gap_near_the_ends_is_no_jump():
+    values, time = depth()
+    for split in (5, 595):
+        moved, later = values.copy(), time.copy()
+        moved[split:] += 900.0
+        later[split:] += 7200.0
+        assert not find_jumps(moved, later).any()
+
+
 def test_a_gap_allows_for_the_way_gone_in_it():
     values, time = depth()
     time[300:] += 600.0
