@@ -12,6 +12,7 @@ from forensics.logs.frozen import FREEZABLE, find_frozen
 from forensics.logs.slow import fill_between
 from forensics.logs.spikes import COARSE, find_jumps, find_spikes, rule_for
 from forensics.logs.table import Reason, Step
+from forensics.units import show
 
 Floats = NDArray[np.float64]
 Bools = NDArray[np.bool_]
@@ -51,6 +52,12 @@ ZERO_CONTRADICTED = {
     "rpm": ("torque", 1.0e3),
     "flow_in": ("standpipe_pressure", 2.0e6),
     "standpipe_pressure": ("flow_in", 5.0e-3),
+}
+# While the driver runs above its level, a channel below this was labelled with the wrong unit [SI].
+LEAST_WHILE = {
+    "torque": ("rpm", 20.0, 100.0),
+    "standpipe_pressure": ("flow_in", 5.0e-3, 2.0e4),
+    "flow_in": ("standpipe_pressure", 5.0e6, 1.0e-4),
 }
 CONSTANT_IS_FAULT = ("block_position", "torque", "standpipe_pressure", "wob", "hookload_max")
 _CAUSES = {"hookload": Reason.SPIKE_HOOKLOAD, "bit_depth": Reason.SPIKE_DEPTH}
@@ -118,6 +125,7 @@ def clean(time: Floats, values: dict[str, Floats], interval: float) -> Cleaning:
         work.cause[channel] = np.where(missing, np.int8(reason), np.int8(0)).astype(np.int8)
     _silent_channels(work)
     _out_of_range(work)
+    _too_small(work)
     for channel in POSITIONS:
         if channel in work.values:
             jumps = find_jumps(work.values[channel], time)
@@ -152,6 +160,19 @@ def _silent_channels(work: Cleaning) -> None:
                 work.drop(channel, "all zero", "zero in every row, as where nothing is connected")
         elif channel in CONSTANT_IS_FAULT and len(known) >= 60 and known.min() == known.max():
             work.drop(channel, "constant throughout", "one value in every row")
+
+
+def _too_small(work: Cleaning) -> None:
+    """Leave out channels far too small for their unit while what drives them ran."""
+    for channel, (driver, running, least) in LEAST_WHILE.items():
+        data, drive = work.values.get(channel), work.values.get(driver)
+        if data is None or drive is None:
+            continue
+        said = np.abs(data[(drive > running) & np.isfinite(data)])
+        if len(said) >= 60 and said.any() and np.percentile(said, 95) < least:
+            quantity = BY_NAME[channel].quantity
+            top = show(float(np.percentile(said, 95)), quantity)
+            work.drop(channel, "absurd unit", f"no more than {top} while {driver} ran: is its unit right?")
 
 
 def _out_of_range(work: Cleaning) -> None:

@@ -81,6 +81,15 @@ def test_zero_torque_while_the_string_turns_is_missing():
     assert "torque" not in clean(time, values, 1.0).values
 
 
+def test_torque_in_the_wrong_unit_is_left_out_and_said_so():
+    time, values = log()
+    values["torque"] = values["torque"] / 1e3
+    work = clean(time, values, 1.0)
+    assert "torque" not in work.values
+    assert counts(work)["absurd unit", "torque"] == N
+    assert any("is its unit right?" in warning for warning in work.warnings)
+
+
 def test_spikes_give_their_reason():
     time, values = log()
     values["hookload"][50] = 2.9e6
