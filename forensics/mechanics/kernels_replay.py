@@ -37,8 +37,8 @@ class Samples(NamedTuple):
 
     `bit` [m]; `top` tension at the rotary [N]; `mode` HOLD, TURN or SLIDE; `direction` +1 block going
     down, -1 up, kept until it reverses; `travel` block travel since it reversed [m]; `drilling` bit on
-    or near bottom and pumping; `free` bit clear of bottom; `share` axial share of friction while turning, signed
-    by direction; `down`, `up` local multiples of friction; `scale` of weights for mud; `step` time since
+    or near bottom and pumping; `free` bit clear of bottom; `share` axial share of friction while turning,
+    signed by direction; `down`, `up` local multiples of friction; `scale` of weights for mud; `step` time since
     the row before [s]; `witness` most the bit load can be by differential pressure [N], infinite where
     that is silent.
     """
@@ -183,6 +183,14 @@ def all_moving(setting: Setting, run: Run, place: Place, t: int) -> bool:
     return (samples.top[t] - model) * sigma > -run.rules.tolerance
 
 
+@njit(cache=True)
+def arrived(run: Run, t: int) -> bool:
+    """Whether the bit's front is at the surface, early: the hookload rises and the block was not raised."""
+    samples = run.samples
+    loaded = samples.drilling[t] and run.memory.tension[0] < 0.0
+    return loaded and samples.direction[t] >= 0 and samples.top[t] - run.now[HOOK] > ARRIVED * run.rules.band
+
+
 @njit(cache=True, error_model="numpy")
 def sliding(setting: Setting, run: Run, place: Place, t: int) -> None:
     """Move a string that does not turn: a front from the surface, or the whole string once it is through."""
@@ -206,9 +214,8 @@ def sliding(setting: Setting, run: Run, place: Place, t: int) -> None:
             now[REACH] = min(now[REACH], setting.pipe.x[node])
             if node == 0:
                 now[MODE] = sigma
-        elif samples.drilling[t] and direction >= 0 and top - now[HOOK] > ARRIVED * band:
-            if run.memory.tension[0] < 0.0:
-                now[MODE], now[LIFT] = 1.0, samples.travel[t]
+        elif arrived(run, t):
+            now[MODE], now[LIFT] = 1.0, samples.travel[t]
         if now[MODE] == FREE and direction != 0 and samples.free[t] and all_moving(setting, run, place, t):
             now[MODE] = sigma
     if now[MODE] != FREE:

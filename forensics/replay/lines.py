@@ -65,6 +65,7 @@ def drag_lines(
     calibration: Calibration,
     model: OffBottomModel,
     moving: NDArray[np.int8],
+    helical: NDArray[np.bool_],
 ) -> tuple[Floats, Floats]:
     """Give the hookload expected off bottom and measured less expected [N]; NaN where no line applies.
 
@@ -76,11 +77,14 @@ def drag_lines(
         The run and its calibration.
     moving : ndarray of int8, shape (n,)
         +1 where the whole string slides down, -1 up, 2 where it turns, 0 elsewhere.
+    helical : ndarray of bool, shape (n,)
+        Where any place is helical.
     """
     samples = prepared.samples
     away = samples.free & (rig.direction != 0)
     kinds = {
-        "slack_off": away & (moving == 1),
+        # a helix has its own drag: the line of a string that has none says nothing of it
+        "slack_off": away & (moving == 1) & ~helical,
         "pick_up": away & (moving == -1),
         "rotating": samples.free & (moving == 2),
     }

@@ -61,7 +61,7 @@ def replay(run: Replay) -> LoadHistory:
     found.chart_row[:] = np.clip(np.searchsorted(times, run.log.time, side="right") - 1, 0, MAP_TIMES - 1)
     kernel = Run(samples, run.rules, found, *fresh(run.model), depths[1])
     visits = replay_rows(run.model.setting(cased, open_hole), kernel)
-    expected, drag = drag_lines(run.prepared, run.rig, run.calibration, run.model, found.full)
+    expected, drag = drag_lines(run.prepared, run.rig, run.calibration, run.model, found.full, found.state == 2)
     lost = run.rig.wob_surface - found.bit_load
     return LoadHistory(
         bit_load=found.bit_load, peak_ratio=found.ratio, peak_md=found.ratio_md,

@@ -157,12 +157,12 @@ def test_a_string_drilled_off_after_a_small_lift_is_still_picked_up():
     lifted = float(model.string_weight("pick_up", 3400.0, 0.2, 0.25)[0])
     memory, now = fresh(model)
     hold = np.full(300, slack - 40e3)
-    top = np.concatenate([np.linspace(slack + 60e3, slack - 60e3, 60), hold, np.linspace(slack, lifted + 5e3, 60)])
+    down, up = np.linspace(slack + 60e3, slack - 60e3, 60), np.linspace(slack, lifted + 5e3, 60)
+    top = np.concatenate([down, hold, up])
     way = np.concatenate([np.ones(60), -np.ones(360)])
     travel = np.concatenate([np.linspace(0, 2, 60), np.full(300, 0.03), np.linspace(0.03, 3.0, 60)])
-    samples = rows(
-        top, way, bit=np.full(420, 3400.0), travel=travel, drilling=np.arange(420) < 361, step=np.full(420, 5.0)
-    )
+    drilling, step = np.arange(420) < 361, np.full(420, 5.0)
+    samples = rows(top, way, bit=np.full(420, 3400.0), travel=travel, drilling=drilling, step=step)
     found = go(at, samples, NEVER._replace(rate=2e-7), (memory, now))
     assert found.full[355] == 1
     assert found.full[-1] == -1
