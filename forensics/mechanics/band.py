@@ -1,0 +1,173 @@
+"""How far past the published helical onsets a load is: a band, not a verdict.
+
+Authors differ by a factor of two on when a pipe turns helical: Chen, Lin and Cheatham 1990 give the mean load
+while it forms, Wu and Juvkam-Wold 1993 the load at the end of forming, Mitchell 1997 the load at which no
+sinusoid is left. A load between them may stand in either shape, so the words name what it has passed.
+"""
+
+from __future__ import annotations
+
+import math
+
+import numpy as np
+from numpy.typing import ArrayLike, NDArray
+
+from forensics.mechanics.critical import CRITERIA, HELICAL_ONSETS, Place
+from forensics.mechanics.eigen import Floats
+from forensics.mechanics.selfconsistent import local_load
+from forensics.mechanics.threshold import helical_load
+
+ORDER = tuple(sorted(HELICAL_ONSETS, key=lambda name: HELICAL_ONSETS[name].factor))
+"""Names of the onsets from the lowest load to the highest."""
+
+
+def onset_loads(stiffness: ArrayLike, local: ArrayLike, w_cos: ArrayLike, drop: ArrayLike = 0.0) -> Floats:
+    """Give every published helical onset, the near-vertical term added.
+
+    Parameters
+    ----------
+    stiffness : array_like
+        EI [N.m2].
+    local : array_like
+        F_DP at the actual contact force [N].
+    w_cos : array_like
+        Buoyed weight per length times cos I [N/m].
+    drop : array_like
+        What torque takes off (see `torque.onset_drop`) [N].
+
+    Returns
+    -------
+    ndarray, shape (3, ...)
+        In the order of `ORDER` [N].
+    """
+    loads = [helical_load(stiffness, local, w_cos, HELICAL_ONSETS[name].factor) for name in ORDER]
+    return np.array(loads) - np.asarray(drop, dtype=float)
+
+
+def onsets_passed(load: ArrayLike, onsets: ArrayLike) -> NDArray[np.int64]:
+    """Count the published onsets that a compression has passed.
+
+    Parameters
+    ----------
+    load : array_like
+        Compression [N].
+    onsets : array_like, shape (3, ...)
+        From `onset_loads` [N].
+
+    Returns
+    -------
+    ndarray of int
+        0 to 3; 0 where the load is not known.
+
+    Examples
+    --------
+    >>> onsets_passed([90e3, 250e3, 500e3], np.array([[239e3], [309e3], [478e3]])).tolist()
+    [0, 1, 3]
+    """
+    return (np.asarray(load, dtype=float) >= np.asarray(onsets, dtype=float)).sum(axis=0)
+
+
+def band_words(least: int, most: int | None = None) -> str:
+    """Say in words which published onsets were passed.
+
+    Parameters
+    ----------
+    least : int
+        Onsets that the load has passed, or that the low end of its interval has.
+    most : int, optional
+        Onsets that the high end has passed; default `least`.
+
+    Returns
+    -------
+    str
+        Such as "past Chen, short of Wu and Mitchell".
+
+    Raises
+    ------
+    ValueError
+        If the numbers are not 0 to 3, in order.
+
+    Examples
+    --------
+    >>> band_words(3), band_words(2)
+    ('past all criteria', 'past Chen and Wu, short of Mitchell')
+    >>> band_words(1, 2)
+    'past Chen, perhaps past Wu, short of Mitchell'
+    """
+    most = least if most is None else most
+    if not 0 <= least <= most <= len(ORDER):
+        raise ValueError(f"onsets passed came as {least} to {most}; expected 0 to {len(ORDER)}, in order")
+    if least == most and least in (0, len(ORDER)):
+        return "past all criteria" if least else "short of all criteria"
+    names = [name.capitalize() for name in ORDER]
+    parts = [("past", names[:least]), ("perhaps past", names[least:most]), ("short of", names[most:])]
+    return ", ".join(f"{word} {_list(some)}" for word, some in parts if some)
+
+
+def outside_validity(place: Place) -> tuple[str, ...]:
+    """Say which published criteria are used beyond the range their authors give, at one place.
+
+    Parameters
+    ----------
+    place : Place
+        One place: scalars.
+
+    Returns
+    -------
+    tuple of str
+        One sentence a criterion; empty where all hold.
+    """
+    found = []
+    degrees = math.degrees(float(np.asarray(place.inclination)))
+    bend = math.degrees(float(np.hypot(place.build, np.asarray(place.turn) * np.sin(place.inclination)))) * 30
+    for criterion, validity in CRITERIA.items():
+        if bool(np.all(validity.covers(place))):
+            continue
+        low, high = (math.degrees(angle) for angle in validity.inclination)
+        most = math.degrees(validity.curvature) * 30
+        author = criterion.__name__.rsplit("_", 1)
+        found.append(
+            f"{author[0].replace('_', ' ').title()} {author[1]} holds for {low:.0f} to {high:.0f} deg "
+            f"and up to {most:.1f} deg/30 m; here {degrees:.1f} deg and {bend:.1f} deg/30 m"
+        )
+    return tuple(found)
+
+
+def clearance_band(
+    stiffness: ArrayLike, contact: ArrayLike, hole: ArrayLike, body: ArrayLike, joint: ArrayLike
+) -> tuple[Floats, Floats]:
+    """Give the local load by the clearance of the body and by that of the tool joint.
+
+    Parameters
+    ----------
+    stiffness : array_like
+        EI of the body [N.m2].
+    contact : array_like
+        Contact force per length [N/m].
+    hole, body, joint : array_like
+        Diameters [m]; `joint` not smaller than `body`.
+
+    Returns
+    -------
+    tuple of ndarray
+        Low (body) and high (joint) F_DP [N].
+
+    Notes
+    -----
+    Joints hold the pipe off the wall: the joint's clearance is right while the body between joints does not
+    touch (see `tool_joint`), the body's where it does. The load goes as one over the root of the
+    clearance, so that for ordinary drill pipe the choice moves it by about a third; the helix's own contact
+    force, which goes with the clearance, moves by about half the other way.
+
+    References
+    ----------
+    Mitchell, R. F. (2000), "Helical buckling of pipe with connectors in vertical wells", SPE Drill. & Compl.
+    15 (from memory: joints raise the load or not, by their spacing over the pitch).
+    """
+    hole = np.asarray(hole, dtype=float)
+    low = local_load(stiffness, contact, (hole - body) / 2)
+    return low, local_load(stiffness, contact, (hole - joint) / 2)
+
+
+def _list(names: list[str]) -> str:
+    return " and ".join([", ".join(names[:-1]), names[-1]]) if len(names) > 1 else names[0]
