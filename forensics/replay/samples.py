@@ -57,7 +57,7 @@ def prepare(
         mode=mode,
         direction=direction,
         travel=travel,
-        drilling=near & (rig.pumping if np.isfinite(rig.usual_flow) else True),
+        drilling=near & (rig.pumping if _shows_pumps(log) else True),
         free=(gap > CLEAR_OF_BOTTOM) & ~rig.on_bottom,
         share=_share(log, height, model),
         down=local.down,
@@ -67,6 +67,11 @@ def prepare(
         witness=np.full(len(log), np.inf),
     )
     return Prepared(samples, hookload, hanging)
+
+
+def _shows_pumps(log: TimeLog) -> bool:
+    """Whether flow, or the pressure that stands in for it, tells where the pumps ran."""
+    return any(log.get(channel) is not None for channel in ("flow_in", "standpipe_pressure"))
 
 
 def weight_scale(log: TimeLog, well: Well, calibration: Calibration) -> Floats:
