@@ -12,6 +12,7 @@ from forensics.logs.frozen import FREEZABLE, find_frozen
 from forensics.logs.slow import fill_between
 from forensics.logs.spikes import COARSE, find_jumps, find_spikes, rule_for
 from forensics.logs.table import Reason, Step
+from forensics.logs.zeros import find_zeros
 from forensics.units import show
 
 Floats = NDArray[np.float64]
@@ -130,6 +131,7 @@ def clean(time: Floats, values: dict[str, Floats], interval: float) -> Cleaning:
         if channel in work.values:
             jumps = find_jumps(work.values[channel], time)
             work.set_aside(channel, jumps, Reason.SPIKE_DEPTH, "spike", "jumps away and back")
+    _lost_zeros(work)
     for channel in SPIKY if interval < COARSE else SPIKY_COARSE:
         if channel in work.values:
             spikes = find_spikes(work.values[channel], rule_for(channel, interval))
@@ -160,6 +162,15 @@ def _silent_channels(work: Cleaning) -> None:
                 work.drop(channel, "all zero", "zero in every row, as where nothing is connected")
         elif channel in CONSTANT_IS_FAULT and len(known) >= 60 and known.min() == known.max():
             work.drop(channel, "constant throughout", "one value in every row")
+
+
+def _lost_zeros(work: Cleaning) -> None:
+    """Blank zeros that stand for "no value" in the hookload, and the torque that fell to zero with it."""
+    values = work.values
+    lost = find_zeros(work.time, values["hookload"], values["bit_depth"], values.get("block_position"))
+    work.set_aside("hookload", lost, Reason.NULL_HOOKLOAD, "zero for no value", "the hook is never empty")
+    if "torque" in values:
+        work.set_aside("torque", lost & (values["torque"] == 0.0), Reason.NULL_HOOKLOAD, "zero for no value")
 
 
 def _too_small(work: Cleaning) -> None:

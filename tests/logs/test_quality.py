@@ -99,6 +99,24 @@ def test_spikes_give_their_reason():
     assert (work.cause["bit_depth"][70:75] == Reason.SPIKE_DEPTH).all()
 
 
+def test_a_brief_zero_hookload_is_no_value():
+    time, values = log()
+    values["hookload"][100:108] = 0.0
+    work = clean(time, values, 1.0)
+    assert (work.cause["hookload"][100:108] == Reason.NULL_HOOKLOAD).all()
+    assert counts(work)["zero for no value", "hookload"] == 8
+
+
+@pytest.mark.parametrize(("block_moves", "kept"), [(True, True), (False, False)])
+def test_zeros_in_slips_of_a_tared_sensor_are_readings(block_moves, kept):
+    time, values = log(bit_depth=np.full(N, 2000.0))
+    values["hookload"][100:200] = 0.0
+    values["block_position"] = np.interp(
+        time, [0, 120, 180, N], [1.0, 1.0, 28.0 if block_moves else 1.2, 1.0]
+    )
+    assert np.isfinite(clean(time, values, 1.0).values["hookload"][100:200]).all() == kept
+
+
 def test_gaps_are_counted_with_their_length():
     time, values = log()
     time[300:] += 600.0
