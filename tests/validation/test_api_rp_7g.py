@@ -11,6 +11,7 @@ import pytest
 from field import FT_LBF, INCH, LBF, PSI
 from forensics.mechanics import pipe
 from forensics.mechanics.pipe import Tube
+from forensics.mechanics.stress import rated_use
 
 GRADES = (75000, 95000, 105000, 135000)
 
@@ -59,3 +60,9 @@ def test_p_65_heavy_weight_pipe():
     tube = Tube(5 * INCH, 3 * INCH)
     assert pipe.tensile_yield(tube, 55000 * PSI) / LBF == pytest.approx(691185, rel=1e-4)
     assert float(pipe.torsional_yield(tube, 55000 * PSI)) / FT_LBF == pytest.approx(56495, rel=1e-4)
+
+
+def test_p_86_uses_up_the_combined_rating():
+    tube = Tube(5 * INCH, 4.276 * INCH)
+    use = rated_use(tube, 135000 * PSI, 400000 * LBF, 61303.842 * FT_LBF)
+    assert float(use) == pytest.approx(1.0, rel=1e-5)

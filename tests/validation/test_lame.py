@@ -7,6 +7,7 @@ import pytest
 from field import DEG_PER_100FT, INCH, LBF, PSI
 from forensics.mechanics import pipe
 from forensics.mechanics.pipe import Tube
+from forensics.mechanics.stress import PipeLoads, combined_stress
 
 TUBING = Tube(2.875 * INCH, 2.441 * INCH)
 
@@ -30,3 +31,12 @@ def test_p_89_bending_stress_per_inch_and_degree():
 def test_p_90_bending_stress_of_drill_pipe():
     stress = pipe.bending_stress(5 * INCH, 10 * DEG_PER_100FT, 30e6 * PSI)
     assert float(stress) / PSI == pytest.approx(10908.308, rel=1e-7)
+
+
+@pytest.mark.parametrize(("pull", "equivalent"), [(0.0, 67212.707), (50000.0, 62077.993)])
+def test_p_88_by_the_combined_stress_of_effective_loads(pull, equivalent):
+    # the row's axial force is the steel's own; the effective one lacks the pressure on the bore
+    inside = 10000 * PSI
+    effective = pull * LBF - inside * TUBING.bore_area
+    stress = combined_stress(TUBING, PipeLoads(effective, inside=inside))
+    assert float(stress) / PSI == pytest.approx(equivalent, rel=1e-7)
