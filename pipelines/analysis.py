@@ -30,7 +30,7 @@ from forensics.replay.run import Replay, replay
 from forensics.report.scene import main_episodes
 from forensics.rig.absent import absent_channels
 from forensics.rig.activity import refine_activity
-from forensics.rig.plausible import check_hookload
+from forensics.rig.plausible import check_block, check_hookload
 from forensics.rig.travel import match_travel
 from forensics.rig.understand import understand_rig
 from forensics.rig.view import RigView
@@ -94,6 +94,7 @@ def _understand(case: Case, progress: Progress) -> Run:
         well = load_well(case)
         well.check_reach(float(np.nanmax(log.values["bit_depth"])))
         check_hookload(log, well)
+        check_block(log, case)
         log = match_travel(log)
     with progress.stage("rig", "telling what the rig was doing"):
         rig = understand_rig(log, well, case)

@@ -1,11 +1,12 @@
-"""Whether the hookload can be that of the string at all: the last guard against a wrong unit."""
+"""Whether hookload and block weight can be what they are said to be: the last guard against a wrong unit."""
 
 from __future__ import annotations
 
 import numpy as np
 
 from forensics import units
-from forensics.errors import LogError
+from forensics.case import Case
+from forensics.errors import CaseError, LogError
 from forensics.logs.table import SourceColumn, TimeLog
 from forensics.well.model import Well
 
@@ -51,6 +52,35 @@ def check_hookload(log: TimeLog, well: Well) -> None:
         f"check the unit{_read_as(column)}",
         file=column.file if column else None,
         column=column.column if column else None,
+    )
+
+
+def check_block(log: TimeLog, case: Case) -> None:
+    """Refuse a block weight that is more than the hook ever carried.
+
+    Parameters
+    ----------
+    log : TimeLog
+        The SI table of the run.
+    case : Case
+        Its `[rig]` may give the block weight.
+
+    Raises
+    ------
+    CaseError
+        If the hookload includes the block and still never gets to its weight.
+    """
+    given, hook = case.rig.block_weight, log.values["hookload"]
+    if given is None or not case.rig.hookload_includes_block or not np.isfinite(hook).any():
+        return
+    most = float(np.nanpercentile(hook, 99.0))
+    if given < most:
+        return
+    raise CaseError(
+        f"block weight {_show(given)} is more than the hook carries with the string on it ({_show(most)}); "
+        "check its unit, or set hookload_includes_block = false where the sensor was tared",
+        file=case.path,
+        column="rig.block_weight",
     )
 
 

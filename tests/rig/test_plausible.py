@@ -5,9 +5,10 @@ from types import SimpleNamespace
 import numpy as np
 import pytest
 
-from forensics.errors import LogError
+from forensics.case import RigSettings
+from forensics.errors import CaseError, LogError
 from forensics.logs.table import FileRecord, SourceColumn, TimeLog
-from forensics.rig.plausible import check_hookload
+from forensics.rig.plausible import check_block, check_hookload
 
 WELL = SimpleNamespace(rotating_weight=lambda depth: np.full(np.shape(depth), 600e3))
 
@@ -47,3 +48,17 @@ def test_says_what_it_saw():
 @pytest.mark.parametrize("hook", [[], [np.nan] * 5])
 def test_nothing_to_judge(hook):
     check_hookload(make_log(hook), WELL)
+
+
+def case_with(block_weight, included=True):
+    return SimpleNamespace(path="case.toml", rig=RigSettings(block_weight, hookload_includes_block=included))
+
+
+@pytest.mark.parametrize(("block", "included"), [(None, True), (290e3, True), (9290e3, False)])
+def test_takes_a_block_the_hook_can_carry(block, included):
+    check_block(make_log(np.full(100, 900e3)), case_with(block, included))
+
+
+def test_refuses_a_block_heavier_than_all_the_hook_carried():
+    with pytest.raises(CaseError, match=r"rig\.block_weight.*9290.* kN is more than the hook carries.*900"):
+        check_block(make_log(np.full(100, 900e3)), case_with(9290e3))
