@@ -14,7 +14,11 @@ Floats = NDArray[np.float64]
 #: share, and pick-up against slack-off. Survey scatter, friction that varies along the hole and
 #: stiffness left out do not show in the residuals.
 MODEL_ERROR = 0.03
-MODEL_SPLIT = 0.004
+MODEL_SPLIT = 0.015
+
+#: The second averages out over a run that was weighed over more than this in bit depth [m]. One weighed only
+#: deep in a lateral parts cased and open hole by nothing but how pulling differs from lowering.
+SPLIT_OVER = 450.0
 
 #: Doglegs too short for the survey press the string against the wall by its tension: drag of this part of
 #: the string's weight, one sigma. Little beside a lateral's drag, a good part of a vertical well's.
@@ -70,20 +74,22 @@ def covariance(problem: Problem, fit: Fit, bit_depth: Floats, free: NDArray[np.b
         sandwich = inverse @ middle @ inverse
         widen = np.maximum(1.0, np.sqrt(np.diag(sandwich) / np.diag(inverse)))
     small = inverse * np.outer(widen, widen)
-    moved = inverse @ a.T @ (fit.weights[:, None] * _model_errors(problem, fit) / sigma[:, None])
+    moved = inverse @ a.T @ (fit.weights[:, None] * _model_errors(problem, fit, bit_depth) / sigma[:, None])
     full = np.zeros_like(np.outer(unit, unit))
     full[np.ix_(free, free)] = small + moved @ moved.T
     return full * np.outer(unit, unit)
 
 
-def _model_errors(problem: Problem, fit: Fit) -> Floats:
+def _model_errors(problem: Problem, fit: Fit, bit_depth: Floats) -> Floats:
     """Errors of the modelled readings [N] that scatter can't show, shape (n, 2), one sigma each."""
     hanging = problem.surface.at(0.0, 0.0)[0]
     drag = fit.p[2] * (problem.surface.at(fit.p[3], fit.p[4])[0] - hanging)
     pulled = problem.sign != 0.0
     total = float(np.abs(drag[pulled]).sum())
     short = MODEL_TORTUOSITY * float(np.abs(hanging[pulled]).sum()) / total if total > 0.0 else 0.0
-    return np.column_stack([np.hypot(MODEL_ERROR, short) * drag, MODEL_SPLIT * np.abs(drag)])
+    reach = float(np.ptp(bit_depth[pulled])) if pulled.any() else 0.0
+    split = MODEL_SPLIT / (1.0 + reach / SPLIT_OVER) ** 0.5
+    return np.column_stack([np.hypot(MODEL_ERROR, short) * drag, split * np.abs(drag)])
 
 
 def blocks(bit_depth: Floats) -> NDArray[np.int64]:

@@ -220,6 +220,20 @@ def test_one_depth_fixes_only_a_combination(plain):
     assert modelled[0] == pytest.approx(real[0], rel=0.02)
 
 
+def test_readings_deep_in_a_lateral_alone_do_not_part_the_sections(plain):
+    # more friction in the build than elsewhere: pulling feels it more than lowering does
+    truth = PlainString(vary=0.15, step=11.0)
+    deep = np.arange(4000.0, 4150.0, 6.0)
+    found = calibrate(make_readings(truth, deep, TRUTH), make_well(), make_case(), plain, make_rig())
+    got = factors(found)
+    assert not all(estimate.determined for estimate in got.values())
+    assert any("the assumed" in said for said in found.can_not_tell)
+    for estimate, value in zip(got.values(), TRUTH, strict=True):
+        assert estimate.low <= value <= estimate.high
+    # what they do tell is the drag of the two together
+    assert got["open"].value == pytest.approx(TRUTH[1], abs=0.05)
+
+
 def test_slack_off_alone_is_said(plain):
     found = calibrate(
         make_readings(plain, RUN, TRUTH, kinds=("slack_off",)), make_well(), make_case(), plain, make_rig()
