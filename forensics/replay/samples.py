@@ -131,7 +131,8 @@ def _share(log: TimeLog, height: Floats, model: OffBottomModel) -> Floats:
     window = max(3, round(15.0 / log.interval))
     speed = -ndimage.uniform_filter1d(np.gradient(height, log.time), window)
     radius = float(np.median(model.pipe.radius))
-    rim = np.maximum(np.nan_to_num(rpm), 5.0) * 2.0 * np.pi / 60.0 * radius
+    # a lost reading is no standstill: read as one, it would give the drag all of the friction
+    rim = np.maximum(_across(log.time, rpm), 5.0) * 2.0 * np.pi / 60.0 * radius
     return speed / np.hypot(speed, rim)
 
 

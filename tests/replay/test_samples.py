@@ -2,17 +2,28 @@
 
 from __future__ import annotations
 
+from types import SimpleNamespace
+
 import numpy as np
 import pytest
 
 from forensics.logs.table import TimeLog
-from forensics.replay.samples import _shows_pumps
+from forensics.replay.samples import _share, _shows_pumps
 
 
 def log_with(**channels) -> TimeLog:
     time = np.arange(5.0)
     values = {"bit_depth": time, "hookload": time, **channels}
     return TimeLog(time, values, time, np.ones(5, dtype=bool), np.zeros(5, dtype=np.int8), 1.0)
+
+
+def test_a_lost_rotary_speed_is_no_standstill():
+    model = SimpleNamespace(pipe=SimpleNamespace(radius=np.array([0.07])))
+    height = np.linspace(10.0, 9.0, 5)
+    whole = _share(log_with(rpm=np.full(5, 100.0)), height, model)
+    gapped = _share(log_with(rpm=np.array([100.0, 100.0, np.nan, 100.0, 100.0])), height, model)
+    assert np.allclose(gapped, whole)
+    assert 0.0 < whole[2] < 0.5
 
 
 @pytest.mark.parametrize(
