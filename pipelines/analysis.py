@@ -8,12 +8,10 @@ from dataclasses import dataclass, replace
 from pathlib import Path
 
 import numpy as np
-from numpy.typing import NDArray
 
 from forensics.case import Case
-from forensics.episodes.catalogue import Episode, Kind
 from forensics.episodes.describe import describe
-from forensics.episodes.find import find_episodes
+from forensics.episodes.find import rows_in_question
 from forensics.episodes.material import Material
 from forensics.findings import Findings
 from forensics.friction.calibrate import calibrate
@@ -111,9 +109,9 @@ def _model(run: Run) -> OffBottomModel:
 def _tell(material: Material, made: Replay, progress: Progress, units: str) -> Findings:
     """Find and weigh the episodes, and gather all that the run has to tell."""
     with progress.stage("episodes", "finding episodes"):
-        first, _ = find_episodes(material)
+        wanted = rows_in_question(material)
     with progress.stage("draws", "replaying under other friction"):
-        drawn = replay_draws(made, _wanted(first, len(material.log)))
+        drawn = replay_draws(made, wanted)
         material = replace(material, draws=drawn)
     with progress.stage("episodes", "weighing episodes"):
         told = describe(material, units)
@@ -137,15 +135,6 @@ def _tell(material: Material, made: Replay, progress: Progress, units: str) -> F
         inputs=_digests(material.case, log),
         warnings=tuple(dict.fromkeys((*log.warnings, *well.warnings))),
     )
-
-
-def _wanted(episodes: tuple[Episode, ...], rows: int) -> NDArray[np.bool_]:
-    """Mark the rows whose outcome under other friction is wanted: those of buckling and lockup."""
-    wanted = np.zeros(rows, dtype=bool)
-    for episode in episodes:
-        if episode.kind in (Kind.BUCKLING, Kind.LOCKUP):
-            wanted[episode.first : episode.last + 1] = True
-    return wanted
 
 
 def _digests(case: Case, log: TimeLog) -> Mapping[str, str]:

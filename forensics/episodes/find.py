@@ -60,6 +60,16 @@ def find_episodes(material: Material) -> tuple[tuple[Episode, ...], dict[str, in
     return tuple(replace(e, id=f"E{n:03d}") for n, e in enumerate(episodes, 1)), dropped
 
 
+def rows_in_question(material: Material) -> Bools:
+    """Mark the rows whose outcome under other friction matters: the spans of buckling and lockup."""
+    flagged, _ = flag_rows(material)
+    wanted = np.zeros(len(material.log), dtype=bool)
+    for kind in (Kind.BUCKLING, Kind.LOCKUP):
+        for span in find_spans(flagged[kind], material.time, span_rule(material, kind))[0]:
+            wanted[span.rows] = True
+    return wanted
+
+
 def flag_rows(material: Material) -> tuple[dict[Kind, Bools], rules.LockupSigns]:
     """Flag the rows of every kind of episode, shape (n,) each; with the signs the lockup rule looked at."""
     signs = rules.lockup_signs(material)

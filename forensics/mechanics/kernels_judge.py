@@ -8,30 +8,27 @@ import numpy as np
 from numba import njit
 
 from forensics.mechanics.eigen import LIMIT
-from forensics.mechanics.kernels_critical import helical_prepared, length_place, sinusoidal_prepared
-from forensics.mechanics.kernels_march import Array, Hole, Pipe, contact
+from forensics.mechanics.kernels_critical import helical_prepared, sinusoidal_prepared
+from forensics.mechanics.kernels_march import Array, Hole, Pipe, Place
 
 ENVELOPE = 1.370  # times Dawson-Paslay: least load a helix keeps its shape at, from its own equations
-FAR_FROM_VERTICAL = 200.0  # local load in units of the near-vertical one; beyond, c is its limit to 0.1 %
+FAR_FROM_VERTICAL = 20.0  # local load in units of the near-vertical one: c is its limit (0.04 % of the load)
+SQUARE, LINEAR, CONSTANT, CUBE, LENGTH, GIVE = range(6)  # columns of `Criteria.at`
 
 
 class Criteria(NamedTuple):
-    """What a place is judged by; tables have shape (kinds of pipe, depths), `kind` picks the row.
+    """What a place is judged by.
 
-    `a`, `b`, `c` give the lateral load averaged over a sine wave; `root` is 2 √(EI / r), the local load per
-    root of contact (infinite on a support); `cube` is (EI w² cos² I)^⅓, zero where cos I <= 0.
-    `stiff_run` (elements) is the length of like stiffness that holds a place near vertical [m]; `onset`
-    multiplies the Dawson-Paslay load for the helix; `envelope` is 1 where a helix lasts until its own
-    unloading limit; `table` holds the near-vertical coefficients.
+    `at` has shape (kinds of pipe, depths, 6), `kind` (elements) picks its row. The first three columns give
+    the fourth power of the Dawson-Paslay load at tension T, contact averaged over a sine wave, as
+    T² SQUARE + T LINEAR + CONSTANT (huge on a support); CUBE is (EI w² cos² I)^⅓, zero where cos I <= 0;
+    LENGTH the place of the stiff length in the table of near-vertical coefficients; GIVE is r / (4 EI).
+    `onset` multiplies the Dawson-Paslay load for the helix; `envelope` is 1 where a helix lasts until its
+    own unloading limit; `table` holds the near-vertical coefficients.
     """
 
     kind: Array
-    a: Array
-    b: Array
-    c: Array
-    root: Array
-    cube: Array
-    stiff_run: Array
+    at: Array
     onset: float
     envelope: int
     table: tuple[Array, float, float, float, float]
@@ -47,46 +44,35 @@ class Setting(NamedTuple):
 
 
 @njit(cache=True, error_model="numpy", inline="always")
-def averaged_contact(setting: Setting, j: int, i: int, tension: float, scale: float) -> float:
-    """Contact per length of element `j` at depth index `i`, averaged over a sine wave [N/m]."""
+def local_square(setting: Setting, place: Place, j: int, i: int, tension: float) -> float:
+    """Square of the Dawson-Paslay load of element `j` at depth index `i`, at the contact there [N²]."""
+    at, row, scale = setting.criteria.at, setting.criteria.kind[j], place.scale
+    linear = tension * at[row, i, SQUARE] + scale * at[row, i, LINEAR]
+    return np.sqrt(max(tension * linear + scale * scale * at[row, i, CONSTANT], 0.0))
+
+
+@njit(cache=True, error_model="numpy", inline="always")
+def thresholds(setting: Setting, place: Place, j: int, i: int, tension: float) -> tuple[float, float, float]:
+    """Dawson-Paslay, sinusoidal and helical load of element `j` at depth index `i` [N]; huge on a support."""
     criteria = setting.criteria
     row = criteria.kind[j]
-    weight = setting.pipe.weight[j] * scale
-    return contact(tension, weight, criteria.a[row, i], criteria.b[row, i], criteria.c[row, i])
-
-
-@njit(cache=True, error_model="numpy")
-def thresholds(setting: Setting, j: int, i: int, tension: float, scale: float) -> tuple[float, float, float]:
-    """Dawson-Paslay, sinusoidal and helical load of element `j` at depth index `i` [N].
-
-    All are infinite on a support.
-    """
-    criteria = setting.criteria
-    row = criteria.kind[j]
-    force = averaged_contact(setting, j, i, tension, scale)
-    root, cube = criteria.root[row, i], criteria.cube[row, i]
-    local = root * np.sqrt(force)
-    if np.isinf(root):
-        return np.inf, np.inf, np.inf
+    local = np.sqrt(local_square(setting, place, j, i, tension))
+    cube = criteria.at[row, i, CUBE] * place.cube
     if local > FAR_FROM_VERTICAL * cube:
         return local, local + LIMIT * cube, criteria.onset * (local + LIMIT * cube)
-    if scale != 1.0:
-        cube *= scale ** (2.0 / 3.0)
-    w_cos = setting.pipe.weight[j] * scale * setting.hole.cos_i[i]
-    place = length_place(criteria.stiff_run[j], w_cos, cube)
-    low, local, log_n = sinusoidal_prepared(root, force, cube, place, criteria.table)
+    length = criteria.at[row, i, LENGTH]
+    low, local, log_n = sinusoidal_prepared(local, 1.0, cube, length, criteria.table)
     return local, low, helical_prepared(local, cube, log_n, criteria.onset)
 
 
-@njit(cache=True, error_model="numpy")
-def latch(setting: Setting, j: int, i: int, tension: float, scale: float) -> bool:
+@njit(cache=True, error_model="numpy", inline="always")
+def latch(setting: Setting, place: Place, j: int, i: int, tension: float) -> bool:
     """Whether element `j`, not yet helical, turns helical at this tension."""
     # the near-vertical term only raises the threshold, so most places end here
-    criteria = setting.criteria
-    root = criteria.root[criteria.kind[j], i]
-    if -tension < criteria.onset * root * np.sqrt(averaged_contact(setting, j, i, tension, scale)):
+    onset = setting.criteria.onset
+    if tension * tension < onset * onset * local_square(setting, place, j, i, tension):
         return False
-    return -tension >= thresholds(setting, j, i, tension, scale)[2]
+    return -tension >= thresholds(setting, place, j, i, tension)[2]
 
 
 @njit(cache=True, error_model="numpy")

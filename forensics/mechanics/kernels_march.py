@@ -39,6 +39,19 @@ class Pipe(NamedTuple):
     radius: Array
 
 
+class Place(NamedTuple):
+    """Where the string is: bit depth, row of the top element, depth index of the bit, scale of weights.
+
+    `cube` is that scale to the two thirds, as the near-vertical load goes with it.
+    """
+
+    bit: float
+    top: int
+    first: int
+    scale: float
+    cube: float
+
+
 class Ask(NamedTuple):
     """One string to march up: bit depth [m], +1 going down or -1 up, tension at the bit [N].
 
@@ -62,6 +75,13 @@ def contact(tension: float, weight: float, kappa2: float, kappa_d: float, sin2: 
 def top_element(x: Array, bit: float) -> int:
     """Row of the element that reaches through the rotary table, for a bit at depth `bit` [m]."""
     return min(max(np.searchsorted(x, bit, side="left") - 1, 0), len(x) - 2)
+
+
+@njit(cache=True)
+def place_at(hole: Hole, pipe: Pipe, bit: float, scale: float) -> Place:
+    """Place a string with its bit at depth `bit` [m], all weights times `scale`."""
+    cube = 1.0 if scale == 1.0 else scale ** (2.0 / 3.0)
+    return Place(bit, top_element(pipe.x, bit), int(bit * hole.inv_step + 0.5), scale, cube)
 
 
 @njit(cache=True, error_model="numpy")

@@ -13,30 +13,25 @@ from typing import NamedTuple
 import numpy as np
 from numba import njit
 
-from forensics.mechanics.kernels_judge import Setting, latch
-from forensics.mechanics.kernels_march import Array, Pipe, contact
+from forensics.mechanics.kernels_judge import GIVE, Setting, latch
+from forensics.mechanics.kernels_march import Array, Pipe, Place, contact
 
 FREE = 0
 ROTATING = 2
 
 
 class Memory(NamedTuple):
-    """What the string remembers: tension at nodes, at the last reversal, work space, state of elements."""
+    """What the string remembers: tension at nodes, at the last reversal, work space, state of elements.
+
+    `visits` (one number) counts the stations marched and judged.
+    """
 
     tension: Array
     reversal: Array
     work: Array
     drag: Array
     state: Array
-
-
-class Place(NamedTuple):
-    """Where the string is: bit depth, row of the top element, depth index of the bit, weight scale."""
-
-    bit: float
-    top: int
-    first: int
-    scale: float
+    visits: Array
 
 
 @njit(cache=True, error_model="numpy")
@@ -61,15 +56,17 @@ def march_down(
         middle = tension + 0.5 * length * slope
         force = contact(middle, weight, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i])
         if middle < 0.0:
-            if memory.state[j] < 2 and latch(setting, j, i, middle, place.scale):
+            if memory.state[j] < 2 and latch(setting, place, j, i, middle):
                 memory.state[j] = 2
             if memory.state[j] == 2:
-                force += (middle / criteria.root[criteria.kind[j], i]) ** 2
+                force += middle * middle * criteria.at[criteria.kind[j], i, GIVE]
         slope = -weight * hole.cos_i[i] + rub * mu[i] * force
         tension += slope * length
         if bounded and (tension - kept[j]) * rub >= 0.0:
+            memory.visits[0] += place.top - j + 1
             return j + 1
         kept[j] = tension
+    memory.visits[0] += place.top + 1
     return 0
 
 
@@ -94,13 +91,14 @@ def rise(
         middle = tension + 0.5 * length * slope
         force = contact(middle, weight, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i])
         if helices and middle < 0.0 and memory.state[j] == 2:
-            force += (middle / criteria.root[criteria.kind[j], i]) ** 2
+            force += middle * middle * criteria.at[criteria.kind[j], i, GIVE]
         friction = rub * mu[i] * force
         slope = weight * hole.cos_i[i] - friction
         tension += slope * length
         drag += friction * length
         memory.work[j + 1] = tension
         memory.drag[j + 1] = drag
+    memory.visits[0] += place.top + 1
     return tension
 
 
@@ -151,13 +149,14 @@ def bit_curve(
         force = contact(middle, weight, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i])
         give = 1.0 / pipe.ea[j]
         if middle < 0.0 and memory.state[j] == 2:
-            root = criteria.root[criteria.kind[j], i]
-            force += (middle / root) ** 2
-            give += 4.0 * pipe.ei[j] / root**4
+            spring = criteria.at[criteria.kind[j], i, GIVE]
+            force += middle * middle * spring
+            give += 4.0 * pipe.ei[j] * spring * spring
         slope = weight * hole.cos_i[i] - rub * mu[i] * force
         tension += slope * length
         memory.work[j + 1] = tension
         above = tension - kept[j + 1]
+        memory.visits[0] += 1
         if above <= 0.0:
             return stretch + 0.5 * over * length * over / (over - above) * give, j
         stretch += 0.5 * (over + above) * length * give

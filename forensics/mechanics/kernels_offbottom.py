@@ -5,8 +5,8 @@ from __future__ import annotations
 import numpy as np
 from numba import njit
 
-from forensics.mechanics.kernels_judge import Setting, latch, thresholds
-from forensics.mechanics.kernels_march import Array, Ask, contact, top_element
+from forensics.mechanics.kernels_judge import GIVE, Setting, latch, thresholds
+from forensics.mechanics.kernels_march import Array, Ask, contact, place_at
 
 RUN_AWAY = -1e8  # N; no string carries it: the march has passed lockup
 
@@ -19,20 +19,20 @@ def weigh(setting: Setting, ask: Ask, judged: bool) -> tuple[float, float]:
     own drag has no such tension: NaN.
     """
     hole, pipe, criteria = setting.hole, setting.pipe, setting.criteria
-    first = int(ask.bit * hole.inv_step + 0.5)
+    place = place_at(hole, pipe, ask.bit, ask.scale)
     tension = ask.tension_bit
     slope = 0.0
     ratio = 0.0
-    for j in range(top_element(pipe.x, ask.bit) + 1):
+    for j in range(place.top + 1):
         length = min(pipe.x[j + 1], ask.bit) - pipe.x[j]
-        i = max(first - ((pipe.node[j] + pipe.node[j + 1]) >> 1), 0)
+        i = max(place.first - ((pipe.node[j] + pipe.node[j + 1]) >> 1), 0)
         weight = pipe.weight[j] * ask.scale
         middle = tension + 0.5 * length * slope
         force = contact(middle, weight, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i])
-        if middle < 0.0 and latch(setting, j, i, middle, ask.scale):
-            force += (middle / criteria.root[criteria.kind[j], i]) ** 2
+        if middle < 0.0 and latch(setting, place, j, i, middle):
+            force += middle * middle * criteria.at[criteria.kind[j], i, GIVE]
         if judged and middle < 0.0:
-            ratio = max(ratio, -middle / thresholds(setting, j, i, middle, ask.scale)[1])
+            ratio = max(ratio, -middle / thresholds(setting, place, j, i, middle)[1])
         if middle < RUN_AWAY:
             return np.nan, np.inf
         slope = weight * hole.cos_i[i] - ask.sigma * setting.mu[i] * force

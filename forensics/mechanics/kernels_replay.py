@@ -7,13 +7,12 @@ from typing import NamedTuple
 import numpy as np
 from numba import njit
 
-from forensics.mechanics.kernels_judge import Setting, next_state, thresholds
-from forensics.mechanics.kernels_march import Array, top_element
+from forensics.mechanics.kernels_judge import Setting, local_square, next_state, thresholds
+from forensics.mechanics.kernels_march import Array, Place, place_at
 from forensics.mechanics.kernels_memory import (
     FREE,
     ROTATING,
     Memory,
-    Place,
     anchor,
     bit_curve,
     bit_front,
@@ -38,8 +37,8 @@ class Samples(NamedTuple):
     `bit` [m]; `top` tension at the rotary [N]; `mode` HOLD, TURN or SLIDE; `direction` +1 block going
     down, -1 up, kept until it reverses; `travel` block travel since it reversed [m]; `drilling` bit on
     or near bottom and pumping; `free` bit clear of bottom; `share` axial share of friction while turning,
-    signed by direction; `down`, `up` local multiples of friction; `scale` of weights for mud; `step` time since
-    the row before [s]; `witness` most the bit load can be by differential pressure [N], infinite where
+    signed by direction; `down`, `up` local multiples of friction; `scale` of weights for mud; `step` time
+    since the row before [s]; `witness` most the bit load can be by differential pressure [N], infinite where
     that is silent.
     """
 
@@ -105,6 +104,8 @@ class Run(NamedTuple):
 def judge(setting: Setting, run: Run, place: Place, t: int) -> None:
     """Judge every compressed element, move its state on, and write the row's peaks."""
     pipe, memory, found = setting.pipe, run.memory, run.found
+    chart = found.chart[found.chart_row[t]]
+    memory.visits[0] += place.top + 1
     best, best_md, best_load, worst = 0.0, np.nan, 0.0, 0
     top, bottom, helix_top, helix_bottom = np.nan, np.nan, np.nan, np.nan
     for j in range(place.top + 1):
@@ -114,11 +115,17 @@ def judge(setting: Setting, run: Run, place: Place, t: int) -> None:
             memory.state[j] = 0
             continue
         i = max(place.first - ((pipe.node[j] + pipe.node[j + 1]) >> 1), 0)
-        levels = thresholds(setting, j, i, tension, place.scale)
-        now = next_state(memory.state[j], -tension, levels, setting.criteria.envelope)
-        memory.state[j] = now
         end = min(pipe.x[j + 1], place.bit)
         md = place.bit - 0.5 * (pipe.x[j] + end)
+        column = int(md / run.chart_step)
+        # the near-vertical term only raises the threshold: this ratio is the most it can be
+        most = min(best, chart[column], 1.0)
+        if tension * tension < most * most * local_square(setting, place, j, i, tension):
+            memory.state[j] = 0
+            continue
+        levels = thresholds(setting, place, j, i, tension)
+        now = next_state(memory.state[j], -tension, levels, setting.criteria.envelope)
+        memory.state[j] = now
         ratio = -tension / levels[1]
         if ratio > best:
             best, best_md, best_load = ratio, md, -tension
@@ -129,8 +136,7 @@ def judge(setting: Setting, run: Run, place: Place, t: int) -> None:
             if now == 2:
                 helix_bottom = place.bit - pipe.x[j] if np.isnan(helix_bottom) else helix_bottom
                 helix_top = place.bit - end
-        column = int(md / run.chart_step)
-        found.chart[found.chart_row[t], column] = max(found.chart[found.chart_row[t], column], ratio)
+        chart[column] = max(chart[column], ratio)
     found.ratio[t], found.ratio_md[t], found.compression[t], found.state[t] = best, best_md, best_load, worst
     found.span[t, 0], found.span[t, 1] = top, bottom
     found.span[t, 2], found.span[t, 3] = helix_top, helix_bottom
@@ -305,23 +311,20 @@ def move(setting: Setting, run: Run, place: Place, t: int) -> int:
     return drilling_off(setting, run, place, t) if run.samples.drilling[t] else BY_MEMORY
 
 
-@njit(cache=True, error_model="numpy")
-def replay_rows(setting: Setting, run: Run) -> int:
-    """Replay rows in order, the memory moved on from row to row; returns the number of stations visited.
+@njit(cache=True, error_model="numpy", nogil=True)
+def replay_rows(setting: Setting, run: Run) -> None:
+    """Replay rows in order, the memory moved on from row to row.
 
     `run.memory` and `run.now` are changed in place: called again with later rows, the replay goes on
     where it stopped.
     """
-    visits = 0
     samples, found, now = run.samples, run.found, run.now
     for t in range(len(samples.bit)):
-        bit = samples.bit[t]
-        top = top_element(setting.pipe.x, bit)
-        place = Place(bit, top, int(bit * setting.hole.inv_step + 0.5), samples.scale[t])
+        place = place_at(setting.hole, setting.pipe, samples.bit[t], samples.scale[t])
         lengthen(setting, run, place)
         if still_the_same(run, t, place.first):
             copy_row(found, t)
-            now[TOP] = top
+            now[TOP] = place.top
             continue
         found.basis[t] = move(setting, run, place, t)
         held = samples.mode[t] == HOLD and t > 0 and place.first == int(now[AT])
@@ -329,11 +332,9 @@ def replay_rows(setting: Setting, run: Run) -> int:
             copy_row(found, t)
         else:
             judge(setting, run, place, t)
-            visits += top + 1
-        now[AT], now[TOP] = place.first, top
+        now[AT], now[TOP] = place.first, place.top
         # a bit clear of bottom carries nothing, whatever the march leaves there
         clear = samples.free[t] and now[MODE] != FREE
         found.bit_load[t] = 0.0 if clear else max(-run.memory.tension[0], 0.0)
-        found.reach[t] = bit - now[REACH]
+        found.reach[t] = place.bit - now[REACH]
         found.full[t] = int(now[MODE])
-    return visits

@@ -3,14 +3,26 @@
 from __future__ import annotations
 
 import numpy as np
+from numpy.typing import NDArray
 
 from forensics.case import CriteriaSettings
 from forensics.mechanics.critical import HELICAL_ONSETS
-from forensics.mechanics.eigen import load_table
+from forensics.mechanics.eigen import LENGTH_RANGE, OFFSET, SHORTEST, load_table
 from forensics.mechanics.grid import MIN_CLEARANCE, HoleGrid, PipeGrid, averaged, wave_length
-from forensics.mechanics.kernels_judge import Criteria
+from forensics.mechanics.kernels_judge import (
+    CONSTANT,
+    CUBE,
+    GIVE,
+    LENGTH,
+    LINEAR,
+    SQUARE,
+    Criteria,
+)
 from forensics.well.model import Well
 
+Floats = NDArray[np.float64]
+
+SUPPORT = 1e30  # N; the load at which a place without clearance would buckle
 WINDOW_CLASS = 2.0  # m; waves are grouped to this, so that few averages are kept
 
 
@@ -22,18 +34,29 @@ def tabulate(well: Well, hole: HoleGrid, pipe: PipeGrid, settings: CriteriaSetti
     waves = np.round(wave_length(pipe.ei[first], typical, pipe.weight[first]) / WINDOW_CLASS) * WINDOW_CLASS
     means = {wave: averaged(hole, well, float(wave)) for wave in np.unique(waves)}
     a, b, c = (np.array([means[wave][k] for wave in waves]) for k in range(3))
-    along = pipe.weight[first][:, None] * np.maximum(hole.cos_i, 0.0)
+    weight, ei = pipe.weight[first][:, None], pipe.ei[first][:, None]
     free = gap >= MIN_CLEARANCE
-    root = np.where(free, 2.0 * np.sqrt(pipe.ei[first][:, None] / np.where(free, gap, 1.0)), np.inf)
+    root2 = 4.0 * ei / np.where(free, gap, 1.0)
+    along = weight * np.maximum(hole.cos_i, 0.0)
+    cube = np.cbrt(ei * along**2)
+    at = np.zeros((*gap.shape, 6))
+    at[..., SQUARE] = np.where(free, root2**2 * a, 0.0)
+    at[..., LINEAR] = np.where(free, 2.0 * weight * root2**2 * b, 0.0)
+    at[..., CONSTANT] = np.where(free, weight**2 * root2**2 * c, SUPPORT**4)
+    at[..., CUBE] = np.where(free, cube, 0.0)
+    at[..., LENGTH] = _length_places(pipe.stiff_run[first][:, None], along, cube)
+    at[..., GIVE] = np.where(free, 1.0 / root2, 0.0)
     return Criteria(
         kind=kind.astype(np.int64),
-        a=a,
-        b=b,
-        c=c,
-        root=root,
-        cube=np.cbrt(pipe.ei[first][:, None] * along**2),
-        stiff_run=pipe.stiff_run,
+        at=at,
         onset=float(HELICAL_ONSETS[settings.helical_onset].factor),
         envelope=int(settings.helical_release == "envelope"),
         table=load_table().as_tuple(),
     )
+
+
+def _length_places(run: Floats, along: Floats, cube: Floats) -> Floats:
+    """Give the place of the stiff length in the table of coefficients, as `length_place` does."""
+    scaled = np.divide(run * along, cube, out=np.zeros_like(cube), where=cube > 0.0)
+    inside = scaled > SHORTEST
+    return np.where(inside, np.log(np.where(inside, scaled - OFFSET, 1.0)), LENGTH_RANGE[0])

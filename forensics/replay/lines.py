@@ -8,6 +8,7 @@ from numpy.typing import NDArray
 from forensics.friction.result import Calibration
 from forensics.loads import Fan
 from forensics.logs.table import TimeLog
+from forensics.mechanics.kernels_replay import Found
 from forensics.mechanics.offbottom import OffBottomModel
 from forensics.replay.model import factors
 from forensics.replay.samples import Prepared
@@ -64,8 +65,7 @@ def drag_lines(
     rig: RigView,
     calibration: Calibration,
     model: OffBottomModel,
-    moving: NDArray[np.int8],
-    helical: NDArray[np.bool_],
+    found: Found,
 ) -> tuple[Floats, Floats]:
     """Give the hookload expected off bottom and measured less expected [N]; NaN where no line applies.
 
@@ -75,12 +75,11 @@ def drag_lines(
         Samples and smoothed hookload.
     rig, calibration, model
         The run and its calibration.
-    moving : ndarray of int8, shape (n,)
-        +1 where the whole string slides down, -1 up, 2 where it turns, 0 elsewhere.
-    helical : ndarray of bool, shape (n,)
-        Where any place is helical.
+    found : Found
+        What the string did at each row, and where it was helical.
     """
     samples = prepared.samples
+    moving, helical = found.full, found.state == 2
     away = samples.free & (rig.direction != 0)
     kinds = {
         # a helix has its own drag: the line of a string that has none says nothing of it

@@ -7,9 +7,10 @@ from collections.abc import Sequence
 import numpy as np
 
 from forensics.loads import Profile
-from forensics.mechanics.kernels_judge import Setting, thresholds
-from forensics.mechanics.kernels_march import contact
+from forensics.mechanics.kernels_judge import GIVE, Setting, thresholds
+from forensics.mechanics.kernels_march import contact, place_at
 from forensics.mechanics.kernels_memory import Memory
+from forensics.mechanics.limits import SUPPORT
 from forensics.replay.model import factors
 from forensics.replay.room import fresh, go, restart, take
 from forensics.replay.run import Replay
@@ -35,28 +36,29 @@ def profiles(run: Replay, rows: Sequence[int]) -> tuple[Profile, ...]:
 def _profile(run: Replay, at: Setting, memory: Memory, row: int) -> Profile:
     """Read the profile that the memory holds, with the thresholds at it."""
     hole, pipe = at.hole, at.pipe
-    bit = float(run.prepared.samples.bit[row])
-    scale = float(run.prepared.samples.scale[row])
-    top = int(np.searchsorted(pipe.x, bit) - 1)
-    rows = np.arange(max(min(top, len(pipe.x) - 2), 0) + 1)
+    place = place_at(hole, pipe, float(run.prepared.samples.bit[row]), float(run.prepared.samples.scale[row]))
+    rows = np.arange(place.top + 1)
     middle = 0.5 * (memory.tension[rows] + memory.tension[rows + 1])
-    first = int(bit * hole.inv_step + 0.5)
-    index = np.maximum(first - ((pipe.node[rows] + pipe.node[rows + 1]) >> 1), 0)
-    levels = np.array(
-        [thresholds(at, int(j), int(i), float(t), scale) for j, i, t in zip(rows, index, middle, strict=True)]
-    )
-    levels[~np.isfinite(levels)] = np.nan
+    index = np.maximum(place.first - ((pipe.node[rows] + pipe.node[rows + 1]) >> 1), 0)
+    places = [(int(j), int(i), float(t)) for j, i, t in zip(rows, index, middle, strict=True)]
+    levels = np.array([thresholds(at, place, *one) for one in places])
+    levels[levels >= SUPPORT] = np.nan
     force = np.array(
         [
-            contact(float(t), float(pipe.weight[j]) * scale, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i])
-            for j, i, t in zip(rows, index, middle, strict=True)
+            contact(t, float(pipe.weight[j]) * place.scale, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i])
+            for j, i, t in places
         ]
     )
-    gap = 0.5 * (hole.diameter[index] - pipe.clearance_od[rows])
-    helical = memory.state[rows] == 2
-    force[helical] += (gap * middle**2 / (4.0 * pipe.ei[rows]))[helical]
-    ends = np.minimum(pipe.x[rows + 1], bit)
+    give = at.criteria.at[at.criteria.kind[rows], index, GIVE]
+    force += np.where(memory.state[rows] == 2, give * middle**2, 0.0)
+    ends = np.minimum(pipe.x[rows + 1], place.bit)
     return Profile(
-        row=row, time=float(run.log.time[row]), md=bit - 0.5 * (pipe.x[rows] + ends), tension=middle,
-        sinusoidal=levels[:, 1], helical=levels[:, 2], contact=force, state=memory.state[rows].copy(),
+        row=row,
+        time=float(run.log.time[row]),
+        md=place.bit - 0.5 * (pipe.x[rows] + ends),
+        tension=middle,
+        sinusoidal=levels[:, 1],
+        helical=levels[:, 2],
+        contact=force,
+        state=memory.state[rows].copy(),
     )

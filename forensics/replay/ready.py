@@ -15,7 +15,7 @@ from forensics.mechanics.offbottom import OffBottomModel
 from forensics.replay.local import match_locally
 from forensics.replay.model import build_model, factors
 from forensics.replay.rate import learn_rate
-from forensics.replay.room import blocks, fresh, go, take
+from forensics.replay.room import excerpt, fresh, go
 from forensics.replay.run import Replay
 from forensics.replay.samples import Prepared, prepare
 from forensics.replay.witness import SIGMAS, Witness, friction_ratio, hear
@@ -74,12 +74,13 @@ def _heed(run: Replay, witness: Witness) -> Replay:
 
 def _slides(run: Replay) -> tuple[Floats, NDArray[np.int8]]:
     """Bit load and its basis over the slides and what leads up to them; zero elsewhere."""
-    at = run.model.setting(*factors(run.calibration))
     load = np.zeros(len(run.log))
     basis = np.full(len(run.log), -1, dtype=np.int8)
-    for start, stop in blocks(run.prepared.samples.mode, run.rig.activity == Activity.DRILL_SLIDE):
-        found = go(at, take(run.prepared.samples, slice(start, stop)), run.rules, fresh(run.model))
-        load[start:stop], basis[start:stop] = found.bit_load, found.basis
+    part = excerpt(run.prepared.samples, run.log.time, run.rig.activity == Activity.DRILL_SLIDE)
+    if part.covered.any():
+        at = run.model.setting(*factors(run.calibration))
+        found = go(at, part.samples, run.rules, fresh(run.model))
+        load[part.covered], basis[part.covered] = part.spread(found.bit_load), part.spread(found.basis)
     return load, basis
 
 

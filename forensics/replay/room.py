@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import dataclass
+
 import numpy as np
 from numpy.typing import NDArray
 
@@ -12,6 +14,7 @@ from forensics.mechanics.offbottom import OffBottomModel
 
 Floats = NDArray[np.float64]
 
+COARSE_SECONDS = 5.0  # a load changes little in less
 LEAD = 30  # rows of turning replayed before the memory counts as right
 
 
@@ -26,7 +29,8 @@ def fresh(model: OffBottomModel) -> tuple[Memory, Floats]:
     """Start with a string that remembers nothing."""
     nodes = len(model.pipe.x)
     arrays = [np.zeros(nodes + 1) for _ in range(4)]
-    return Memory(*arrays, np.zeros(nodes, dtype=np.int8)), np.array([0.0, 0.0, 0.0, 0.0, -1.0, -1.0, 0.0])
+    state, visits = np.zeros(nodes, dtype=np.int8), np.zeros(1, dtype=np.int64)
+    return Memory(*arrays, state, visits), np.array([0.0, 0.0, 0.0, 0.0, -1.0, -1.0, 0.0])
 
 
 def room(count: int, times: int, depths: int) -> Found:
@@ -39,9 +43,42 @@ def room(count: int, times: int, depths: int) -> Found:
     )
 
 
-def take(samples: Samples, part: slice) -> Samples:
+def take(samples: Samples, part: slice | NDArray[np.int64]) -> Samples:
     """Take some of the rows."""
     return Samples(*(column[part] for column in samples))
+
+
+@dataclass(frozen=True)
+class Excerpt:
+    """Some stretches of a run, thinned, as one run of samples.
+
+    `rows` are the log's rows taken, shape (m,); `covered` marks all rows between them, shape (n,).
+    """
+
+    rows: NDArray[np.int64]
+    samples: Samples
+    covered: NDArray[np.bool_]
+
+    def spread(self, values: NDArray[np.generic]) -> NDArray[np.generic]:
+        """Give each covered row the value of the row taken at or before it; shape (covered.sum(),)."""
+        return values[np.searchsorted(self.rows, np.flatnonzero(self.covered), side="right") - 1]
+
+
+def excerpt(samples: Samples, time: Floats, wanted: NDArray[np.bool_]) -> Excerpt:
+    """Take the wanted rows and what leads up to them, a few seconds apart.
+
+    Each stretch begins with the string turning, which starts its memory anew, so that stretches may be
+    replayed one after the other.
+    """
+    stride = max(1, round(COARSE_SECONDS / float(np.median(np.diff(time)))))
+    parts = blocks(samples.mode, wanted)
+    covered = np.zeros(len(time), dtype=bool)
+    for start, stop in parts:
+        covered[start:stop] = True
+    rows = np.concatenate([np.arange(start, stop, stride) for start, stop in parts] or [np.empty(0, int)])
+    taken = take(samples, rows)
+    apart = np.diff(time[rows], prepend=time[rows[:1]])
+    return Excerpt(rows, taken._replace(step=np.minimum(apart, 4.0 * stride * samples.step.max())), covered)
 
 
 def restart(mode: NDArray[np.int8], row: int) -> int:

@@ -59,9 +59,11 @@ def replay(run: Replay) -> LoadHistory:
     depths = np.linspace(0.0, float(np.max(samples.bit)) + 20.0, MAP_DEPTHS + 1)
     found = room(len(run.log), MAP_TIMES, MAP_DEPTHS)
     found.chart_row[:] = np.clip(np.searchsorted(times, run.log.time, side="right") - 1, 0, MAP_TIMES - 1)
-    kernel = Run(samples, run.rules, found, *fresh(run.model), depths[1])
-    visits = replay_rows(run.model.setting(cased, open_hole), kernel)
-    expected, drag = drag_lines(run.prepared, run.rig, run.calibration, run.model, found.full, found.state == 2)
+    memory, now = fresh(run.model)
+    replay_rows(
+        run.model.setting(cased, open_hole), Run(samples, run.rules, found, memory, now, float(depths[1]))
+    )
+    expected, drag = drag_lines(run.prepared, run.rig, run.calibration, run.model, found)
     lost = run.rig.wob_surface - found.bit_load
     return LoadHistory(
         bit_load=found.bit_load, peak_ratio=found.ratio, peak_md=found.ratio_md,
@@ -76,5 +78,5 @@ def replay(run: Replay) -> LoadHistory:
         straight_drag=straight_drag(run.model, run.prepared, (cased, open_hole), found, lost),
         stretch=found.stretch,
         ratio_map=RatioMap(times, depths, found.chart),
-        rate_law=run.rate_law, visits=int(visits),
+        rate_law=run.rate_law, visits=int(memory.visits[0]),
     )

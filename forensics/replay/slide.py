@@ -14,6 +14,9 @@ from forensics.replay.samples import Prepared
 Floats = NDArray[np.float64]
 
 
+THINNED_SECONDS = 5.0  # ordinary drag changes little in less
+
+
 @njit(cache=True)
 def _top_many(hole: Hole, pipe: Pipe, mu: Array, rows: tuple[Array, Array, Array, Array]) -> Array:
     """Tension at the rotary of a string sliding down on a loaded bit, without helical contact [N]."""
@@ -37,9 +40,12 @@ def straight_drag(
     rows = np.flatnonzero((found.state == 2) & (samples.mode == SLIDE) & np.isfinite(lost))
     if len(rows) == 0:
         return ordinary
+    thin = rows[:: max(1, round(THINNED_SECONDS / float(np.median(samples.step[1:]))))]
     hole, pipe = model.hole_arrays, model.pipe_arrays
-    chosen = (samples.bit[rows], found.bit_load[rows], samples.down[rows], samples.scale[rows])
+    chosen = (samples.bit[thin], found.bit_load[thin], samples.down[thin], samples.scale[thin])
     sliding = _top_many(hole, pipe, model.friction(*factors), chosen)
-    still = _top_many(hole, pipe, np.zeros(len(hole.cos_i)), chosen)
-    ordinary[rows] = np.minimum(still - sliding, lost[rows])
+    # without friction the tension at the rotary is what hangs less what stands on the bit
+    hanging = model.string_weight("rotating", chosen[0], 0.0, 0.0, chosen[3])
+    drag = np.interp(rows, thin, hanging - chosen[1] - sliding)
+    ordinary[rows] = np.minimum(drag, lost[rows])
     return ordinary

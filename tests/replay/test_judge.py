@@ -7,6 +7,8 @@ import math
 import pytest
 
 from forensics.mechanics.kernels_judge import latch, next_state, thresholds
+from forensics.mechanics.kernels_march import place_at
+from forensics.mechanics.limits import SUPPORT
 from forensics.mechanics.threshold import helical_load, sinusoidal_load
 from forensics.replay.model import build_model
 from tests.replay.test_memory import case_for
@@ -17,22 +19,25 @@ from tests.wells import build_well, one_pipe_well
 @pytest.mark.parametrize("scale", [1.0, 0.97])
 def test_straight_hole_gives_the_published_loads(inclination, scale):
     angle = math.radians(inclination)
-    at = build_model(one_pipe_well(angle, 2000.0), case_for(), 2000.0).setting(0.2, 0.2)
+    model = build_model(one_pipe_well(angle, 2000.0), case_for(), 2000.0)
+    at = model.setting(0.2, 0.2)
+    place = place_at(at.hole, at.pipe, 1500.0, scale)
     weight = at.pipe.weight[5] * scale
-    ei, gap, run = at.pipe.ei[5], 0.5 * (0.2159 - 0.168), at.criteria.stiff_run[5]
-    local, low, high = thresholds(at, 5, 2000, -50e3, scale)
+    ei, gap, run = at.pipe.ei[5], 0.5 * (0.2159 - 0.168), model.pipe.stiff_run[5]
+    local, low, high = thresholds(at, place, 5, 2000, -50e3)
     w_cos = weight * math.cos(angle)
     assert local == pytest.approx(2.0 * math.sqrt(ei * weight * math.sin(angle) / gap), rel=1e-9)
     published = sinusoidal_load(ei, weight * math.sin(angle), gap, w_cos, run)
     assert low == pytest.approx(float(published), rel=1e-3)
     assert high == pytest.approx(float(helical_load(ei, local, w_cos, math.sqrt(2.0))), rel=1e-3)
-    assert latch(at, 5, 2000, -1.001 * high, scale)
-    assert not latch(at, 5, 2000, -0.999 * high, scale)
+    assert latch(at, place, 5, 2000, -1.001 * high)
+    assert not latch(at, place, 5, 2000, -0.999 * high)
 
 
 def test_a_support_is_not_judged():
     at = build_model(build_well(), case_for(), 2000.0).setting(0.2, 0.2)
-    assert thresholds(at, 0, 3900, -500e3, 1.0) == (math.inf,) * 3
+    place = place_at(at.hole, at.pipe, 1950.0, 1.0)
+    assert min(thresholds(at, place, 0, 3900, -500e3)) >= SUPPORT
 
 
 def test_states_remember():
