@@ -1,4 +1,4 @@
-"""What a run can't tell for want of a channel that nothing else stands in for."""
+"""What a run can't tell for want of a channel that nothing else stands in for, or of rows."""
 
 from __future__ import annotations
 
@@ -12,10 +12,12 @@ COST: Mapping[str, str] = {
     "standpipe_pressure": "No standpipe pressure in the log: what the bit felt can't be checked against it.",
     "wob": "No weight on bit (WOB) by the rig in the log: how it was zeroed can't be told.",
 }
+# From this interval on, three rows outlast what a driller does for a weight check [s].
+SLOW = 10.0
 
 
 def absent_channels(log: TimeLog) -> tuple[str, ...]:
-    """Say what is lost with each channel that the log lacks.
+    """Say what is lost with each channel that the log lacks, and with rows too far apart.
 
     Parameters
     ----------
@@ -25,6 +27,12 @@ def absent_channels(log: TimeLog) -> tuple[str, ...]:
     Returns
     -------
     tuple of str
-        One sentence a channel.
+        One sentence a channel, and one on slow rows.
     """
-    return tuple(words for channel, words in COST.items() if log.get(channel) is None)
+    lacking = [words for channel, words in COST.items() if log.get(channel) is None]
+    if log.interval >= SLOW:
+        lacking.append(
+            f"One row every {log.interval:.0f} s: what lasts less than {3 * log.interval:.0f} s, as weight "
+            "checks, tags and partial pick-ups do, can't be told."
+        )
+    return tuple(lacking)

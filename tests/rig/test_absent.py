@@ -6,10 +6,10 @@ from forensics.logs.table import TimeLog
 from forensics.rig.absent import COST, absent_channels
 
 
-def make_log(**values):
+def make_log(interval=1.0, **values):
     ones = np.ones(3)
     held = {"bit_depth": ones, "hookload": ones} | values
-    return TimeLog(np.arange(3.0), held, ones, ones > 0, np.zeros(3, np.int8), 1.0)
+    return TimeLog(interval * np.arange(3.0), held, ones, ones > 0, np.zeros(3, np.int8), interval)
 
 
 def test_all_there_says_nothing():
@@ -19,3 +19,8 @@ def test_all_there_says_nothing():
 def test_lacking_and_empty_are_told():
     told = absent_channels(make_log(torque=np.full(3, np.nan), wob=np.ones(3)))
     assert told == (COST["torque"], COST["standpipe_pressure"])
+
+
+def test_slow_rows_are_told():
+    (told,) = absent_channels(make_log(interval=30.0, **{name: np.ones(3) for name in COST}))
+    assert told.startswith("One row every 30 s: what lasts less than 90 s")
