@@ -6,7 +6,8 @@ from pathlib import Path
 
 import pytest
 
-from validation_table import HEADING, PAGE, ROWS, placed
+from validation_rows import ROWS
+from validation_table import HEADING, PAGE, placed
 
 HERE = Path(__file__).parent
 
