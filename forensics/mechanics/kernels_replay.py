@@ -324,6 +324,8 @@ def replay_rows(setting: Setting, run: Run) -> None:
         lengthen(setting, run, place)
         if still_the_same(run, t, place.first):
             copy_row(found, t)
+            if now[MODE] == ROTATING and not samples.free[t]:  # then newton goes for newton
+                found.bit_load[t] = max(found.bit_load[t] + samples.top[t - 1] - samples.top[t], 0.0)
             now[TOP] = place.top
             continue
         found.basis[t] = move(setting, run, place, t)
