@@ -11,6 +11,7 @@ from forensics.estimate import Estimate
 from forensics.logs.table import TimeLog
 from forensics.rig import noise
 from forensics.rig.noise import Bools, Floats, Runs
+from forensics.rig.setting import widen
 from forensics.rig.signals import Signals
 
 # Window over which the block must be seen to move while the bit stays [s], and how far [m].
@@ -50,11 +51,15 @@ class Plateau:
 
 @dataclass(frozen=True)
 class Slips:
-    """Which rows are in slips, the plateau they were learned from (None: none), and how they were found."""
+    """Which rows are in slips, the plateau they were learned from (None: none), and how they were found.
+
+    `settled` leaves out the rows in which slips were being set or pulled.
+    """
 
     rows: Bools
     plateau: Plateau | None
     source: str
+    settled: Bools
 
 
 def find_slips(log: TimeLog, signals: Signals, string_weight: Floats, stand_weight: float) -> Slips:
@@ -83,11 +88,15 @@ def find_slips(log: TimeLog, signals: Signals, string_weight: Floats, stand_weig
     flagged = _believed_flags(log, signals)
     if flagged is not None:
         held = signals.hookload[_inner(flagged)]
-        return Slips(flagged, _plateau_of(held, signals, stand_weight), "slips channel")
+        return Slips(flagged, _plateau_of(held, signals, stand_weight), "slips channel", flagged)
     plateau = learn_plateau(signals, string_weight, stand_weight)
     if plateau is None:
-        return Slips(np.zeros(len(signals.time), dtype=bool), None, "no in-slips reading")
-    return Slips(_near_plateau(signals, plateau, string_weight), plateau, "in-slips plateau")
+        nowhere = np.zeros(len(signals.time), dtype=bool)
+        return Slips(nowhere, None, "no in-slips reading", nowhere)
+    settled = _near_plateau(signals, plateau, string_weight)
+    wander = _SLIP_WANDER + noise.NOISE_FACTOR * signals.bit_noise
+    rows = widen(settled, signals, plateau.level, string_weight, wander)
+    return Slips(rows, plateau, "in-slips plateau", settled)
 
 
 def learn_plateau(signals: Signals, string_weight: Floats, stand_weight: float) -> Plateau | None:
@@ -149,7 +158,7 @@ def block_weight(slips: Slips, signals: Signals, hookload: Floats, rig: RigSetti
     if rig.block_weight is not None:
         w = rig.block_weight
         return Estimate(w, w, w, "case file")
-    inner = _inner(slips.rows) & ~signals.missing
+    inner = _inner(slips.settled) & ~signals.missing
     if slips.plateau is None or not inner.any():
         return None
     levels = _run_levels(hookload, inner)
