@@ -78,3 +78,33 @@ def march_helical(distance: float, bit_load: float, growth: tuple[float, float],
         k4 = rate(force + h * k3)
         force += h * (k1 + 2 * k2 + 2 * k3 + k4) / 6
     return force
+
+
+def column_by_beam_elements(n: float, length: float, bit: str, top: str, cells: int) -> float:
+    """Load phi of a column with any ends, by Hermite beam elements, dense matrices.
+
+    Unknowns are deflection and slope at each node; an end takes away those that it holds.
+    """
+    h = length / cells
+    place, weight = np.polynomial.legendre.leggauss(6)
+    s = (place + 1) / 2
+    shape = np.array(
+        [1 - 3 * s**2 + 2 * s**3, h * (s - 2 * s**2 + s**3), 3 * s**2 - 2 * s**3, h * (s**3 - s**2)]
+    )
+    slope = (
+        np.array([-6 * s + 6 * s**2, h * (1 - 4 * s + 3 * s**2), 6 * s - 6 * s**2, h * (3 * s**2 - 2 * s)])
+        / h
+    )
+    bend = np.array([-6 + 12 * s, h * (-4 + 6 * s), 6 - 12 * s, h * (6 * s - 2)]) / h**2
+    size = 2 * (cells + 1)
+    stiffness, load = np.zeros((size, size)), np.zeros((size, size))
+    for k in range(cells):
+        w, x, own = weight * h / 2, (k + s) * h, slice(2 * k, 2 * k + 4)
+        stiffness[own, own] += (bend * w) @ bend.T + (slope * (w * x)) @ slope.T + n * (shape * w) @ shape.T
+        load[own, own] += (slope * w) @ slope.T
+    held = {"pinned": [0], "guided": [1], "clamped": [0, 1]}[bit]
+    held += {"held": [size - 2], "free": [], "clamped": [size - 2, size - 1]}[top]
+    kept = np.setdiff1d(np.arange(size), held)
+    # the load's matrix may be singular: the greatest of load over stiffness is the least of its inverse
+    root = np.linalg.inv(np.linalg.cholesky(stiffness[np.ix_(kept, kept)]))
+    return 1 / float(np.linalg.eigvalsh(root @ load[np.ix_(kept, kept)] @ root.T)[-1])

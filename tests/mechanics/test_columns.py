@@ -11,6 +11,7 @@ from scipy import special
 from forensics.mechanics.airy_column import exact_column_load, scorer, scorer_integral
 from forensics.mechanics.columns import BIT_ENDS, TOP_ENDS, Ends, column_load
 from forensics.mechanics.eigen import LIMIT, column_eigenvalue
+from naive_mechanics import column_by_beam_elements
 
 ALL_ENDS = [Ends(bit, top) for bit in BIT_ENDS for top in TOP_ENDS]
 
@@ -19,6 +20,13 @@ ALL_ENDS = [Ends(bit, top) for bit in BIT_ENDS for top in TOP_ENDS]
 @pytest.mark.parametrize("length", [2.0, 5.5, 33.0, 1e5])
 def test_splines_are_the_exact_solution_without_side_load(ends, length):
     assert column_load(0.0, length, ends) == pytest.approx(exact_column_load(length, ends), rel=2e-8)
+
+
+@pytest.mark.parametrize("ends", ALL_ENDS, ids=lambda e: f"{e.bit}-{e.top}")
+@pytest.mark.parametrize(("n", "length"), [(1.0, 4.0), (60.0, 6.0), (3000.0, 3.0)])
+def test_splines_are_beam_elements_under_side_load(ends, n, length):
+    slow = column_by_beam_elements(n, length, ends.bit, ends.top, 90)
+    assert column_load(n, length, ends) == pytest.approx(slow, rel=1e-5)
 
 
 @pytest.mark.parametrize("length", [8.0, 80.0])
