@@ -4,6 +4,11 @@ Every criterion is a function of one `Place` (arrays along depth, one row a plac
 and year, and listed in `CRITERIA` with the range it holds for. `HELICAL_ONSETS` maps the names of a case
 file to those for helical onset. What the replay compares with is in `threshold`: these criteria at the
 contact force that is there, plus the near-vertical term.
+
+What the criteria leave out stands elsewhere: torque lowers the helical ones by some per cent (`torque`); tool
+joints decide the clearance (`tool_joint`, and the two loads of `band.clearance_band`); friction on the pipe
+raises all of them, which nothing here does; and that authors differ by a factor of two is told as a band
+(`band`).
 """
 
 from __future__ import annotations

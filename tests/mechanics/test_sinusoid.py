@@ -95,3 +95,25 @@ def test_no_such_sinusoid():
     for amplitude in (0.0, 2.7, math.nan):
         with pytest.raises(ValueError, match="amplitude came as"):
             sinusoid(amplitude)
+
+
+def least_second_variation(wave: Sinusoid, part: float) -> float:
+    """Least of eta'''' - ((6 theta'^2 - 1) eta')' + gamma cos(theta) eta over waves of one Bloch number."""
+    points = 96
+    phase = np.arange(points) * 2 * math.pi / points
+    order = np.fft.fftfreq(points, 1 / points)
+    kept = np.flatnonzero(np.abs(order) < points / 3)
+    pair = np.subtract.outer(np.arange(points), np.arange(points)) % points
+    stretch = (np.fft.fft(6 * wave.angle(phase, 1) ** 2 - 1) / points)[pair]
+    weight = (np.fft.fft(wave.gamma * np.cos(wave.angle(phase))) / points)[pair]
+    number = wave.wave_number * (order + part / 2)
+    form = np.diag(number**4) + number[:, None] * stretch * number + weight
+    return float(np.linalg.eigvalsh(form[np.ix_(kept, kept)])[0])
+
+
+@pytest.mark.parametrize("amplitude", [0.2, 0.72, 1.2, 1.8, 2.4])
+def test_no_disturbance_takes_energy_from_it(amplitude):
+    # a shift along the pipe costs nothing; every other disturbance, of many waves or of few, costs some
+    wave = sinusoid(amplitude)
+    assert least_second_variation(wave, 0.0) == pytest.approx(0.0, abs=1e-6)
+    assert all(least_second_variation(wave, part) > 0 for part in (0.02, 0.1, 0.3, 0.6, 1.0))
