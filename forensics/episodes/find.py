@@ -16,6 +16,8 @@ from forensics.episodes.spans import Span, SpanRule, find_spans
 Floats = NDArray[np.float64]
 Bools = NDArray[np.bool_]
 
+# A state is not carried on through a log that says nothing for longer than this [s].
+SILENCE = 300.0
 STATES = (State.NONE, State.SINUSOIDAL, State.HELICAL)
 
 
@@ -75,12 +77,19 @@ def flag_rows(material: Material) -> tuple[dict[Kind, Bools], rules.LockupSigns]
     signs = rules.lockup_signs(material)
     used = np.asarray(material.log.used, dtype=bool)
     flagged = {
-        Kind.BUCKLING: rules.buckled(material),  # states stand while rows are set aside
+        Kind.BUCKLING: rules.buckled(material) & _heard(material),
         Kind.LOCKUP: rules.locked_up(material, signs, material.loads.bit_load) & used,
         Kind.DRAG: rules.dragging(material) & used,
         Kind.TORQUE: rules.hard_to_turn(material) & used,
     }
     return flagged, signs
+
+
+def _heard(material: Material) -> Bools:
+    """Mark rows near one that was used: a state stands while rows are set aside, but not for ever."""
+    used = np.asarray(material.log.used, dtype=bool)
+    last = np.maximum.accumulate(np.where(used, material.time, -np.inf))
+    return material.time - last <= max(SILENCE, 3.0 * material.log.interval)
 
 
 def span_rule(material: Material, kind: Kind) -> SpanRule:

@@ -252,8 +252,11 @@ def _near_plateau(signals: Signals, plateau: Plateau, string_weight: Floats) -> 
     near = smooth - plateau.level < np.minimum(plateau.above, room)
     near &= plateau.level - smooth < plateau.below
     if signals.block is not None:
-        # Where no hookload was read, a block that moves without the bit is as good.
-        near = np.where(signals.weighed, near, _block_alone(signals))
+        # Where no hookload was read, a block that moves without the bit is as good; where one was, the block
+        # may carry more than usual, but not the string.
+        alone = _block_alone(signals)
+        light = signals.hookload - plateau.level < _STRING_SHARE * string_weight
+        near = np.where(signals.weighed, near | (alone & light), alone)
     near &= ~signals.missing
     runs = _bridge(noise.runs_of(near), signals)
     wander = _SLIP_WANDER + noise.NOISE_FACTOR * signals.bit_noise

@@ -69,6 +69,13 @@ def test_states_in_slips_stay_in_the_episode(make_run):
     assert episodes[0].activity == "drill_slide"
 
 
+def test_a_state_does_not_outlast_a_log_gone_silent(make_run):
+    run = make_run().buckle(slice(100, 3600))
+    run.used[400:] = False
+    (episode,), _ = only(run.material(), Kind.BUCKLING)
+    assert (episode.first, episode.last) == (100, 399 + 300)
+
+
 def test_long_sinusoidal_running_without_loss_has_no_consequence(make_run):
     (episode,), _ = only(make_run().buckle(slice(100, 3000)).with_draws().material(), Kind.BUCKLING)
     assert episode.consequence is Consequence.NONE

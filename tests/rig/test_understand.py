@@ -179,6 +179,15 @@ def test_a_stand_on_the_block_is_told_from_the_block(tools, drilled, well):
     assert "lower of two" in view.block_weight.source
 
 
+def test_a_block_that_moves_alone_is_in_slips_though_it_carries_more(tools, drilled, full, well):
+    log, slips = tools.log(drilled), drilled.columns()["slips"] > 0
+    moves = slips & (np.abs(np.gradient(log.values["block_position"])) > 0.05)
+    first = np.flatnonzero(moves)[:60]
+    heavy = log.values["hookload"].copy()
+    heavy[first] += 90e3
+    assert tools.f1(see(tools, changed(log, hookload=heavy), well).activity, full) > 0.97
+
+
 def test_no_connection_falls_back_on_the_model_and_says_so(tools, drilled, full, well):
     first = int(np.argmax(drilled.columns()["slips"] > 0)) - 5
     view = see(tools, cut(tools.log(drilled), 0, first), well)
