@@ -23,8 +23,9 @@ What is not met, or not used, and why:
 
 - Lubinski's second-order load, 3.75, is a contact problem and no second eigenvalue (3.88 at length 20); it is
   not used.
-- The vertical constants 2.55 and 5.55 (from memory) could not be recomputed: 5.55 is used for helical onset
-  in a vertical hole and named so, 2.55 is not used.
+- The vertical constants 2.55 and 5.55 (from memory) come out of an energy argument that bounds loads from
+  above (`test_wu_juvkam_wold_1993`). 5.55 is used for helical onset in a vertical hole and named so; 2.55
+  is not used, as the string's own load is lower.
 - Lubinski's 1.94 is met at length 7.93 only: strings of other lengths have other loads (`columns`).
 - A ratio factor of one web tutorial is 2e-4 off its own coordinates; two displacements elsewhere have swapped
   or hand-rounded digits; they are left out, as are four misprints of a copy of API RP 7G's table 2.

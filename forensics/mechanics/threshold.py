@@ -16,11 +16,14 @@ from forensics.mechanics.eigen import LIMIT, Floats, interpolate
 from forensics.mechanics.selfconsistent import ContactSize, local_load, lowest_crossing
 
 VERTICAL_HELICAL = 5.55
-"""Helical onset in a vertical hole over (EI w^2)^(1/3): Wu and Juvkam-Wold, from memory."""
+"""Helical onset in a vertical hole over (EI w^2)^(1/3): Wu and Juvkam-Wold, from memory.
+
+It is twice the mean load at which one turn forms (4.05) less that at which a half wave does (2.55), all by an
+energy argument that bounds loads from above.
+"""
 
 ENVELOPE_RELEASE = 1.370405
 """Least load over F_DP at which a helix still touches the wall all round (`helix_limit.unloading_limit`)."""
-
 
 
 def weight_cube(stiffness: ArrayLike, w_cos: ArrayLike) -> Floats:
