@@ -10,6 +10,7 @@ from pathlib import Path
 import numpy as np
 
 from forensics.case import Case
+from forensics.episodes.catalogue import Kind
 from forensics.episodes.describe import describe
 from forensics.episodes.find import rows_in_question
 from forensics.episodes.material import Material
@@ -22,7 +23,7 @@ from forensics.mechanics.offbottom import OffBottomModel
 from forensics.replay.draws import replay_draws
 from forensics.replay.lines import fan
 from forensics.replay.model import build_model
-from forensics.replay.moments import profiles
+from forensics.replay.moments import critical_load, profiles
 from forensics.replay.ready import block_zero, ready
 from forensics.replay.run import Replay, replay
 from forensics.report.scene import main_episodes
@@ -37,6 +38,9 @@ from pipelines.progress import Progress
 
 # The fan of model weights starts here: shallower, friction tells nothing [m].
 SHALLOW = 100.0
+
+# Kinds that press the string; the others have no load to be critical.
+PRESSED = (Kind.BUCKLING, Kind.LOCKUP)
 
 
 @dataclass(frozen=True)
@@ -115,8 +119,12 @@ def _tell(material: Material, made: Replay, progress: Progress, units: str) -> F
         material = replace(material, draws=drawn)
     with progress.stage("episodes", "weighing episodes"):
         told = describe(material, units)
+        episodes = tuple(
+            replace(e, critical_load=critical_load(made, e.peak, e.peak_md)) if e.kind in PRESSED else e
+            for e in told.episodes
+        )
     with progress.stage("profiles", "taking load profiles"):
-        mains = main_episodes(told.episodes)
+        mains = main_episodes(episodes)
         taken = profiles(made, [episode.peak for episode in mains])
     log, well = material.log, material.well
     return Findings(
@@ -127,7 +135,7 @@ def _tell(material: Material, made: Replay, progress: Progress, units: str) -> F
         calibration=material.calibration,
         loads=material.loads,
         fan=fan(material.calibration, made.model, (SHALLOW, float(np.nanmax(log.values["bit_depth"])))),
-        episodes=told.episodes,
+        episodes=episodes,
         families=told.families,
         profiles={episode.id: profile for episode, profile in zip(mains, taken, strict=True)},
         headline=told.headline,

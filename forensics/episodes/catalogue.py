@@ -58,8 +58,9 @@ class Episode:
     """One episode; times in s since 1970 UTC, depths in m, forces in N, SI throughout.
 
     `first` and `last` are row numbers in the log (inclusive); `peak` the row of the peak load ratio
-    (of the largest residual for drag and torque); `peak_residual` is that residual, measured less modelled
-    [N or N.m], None for other kinds.
+    (of the largest residual for drag and torque); `critical_load` is the compression at which that place
+    would just buckle sideways, at the contact it then causes; `peak_residual` is that residual, measured less
+    modelled [N or N.m], None for other kinds.
     """
 
     id: str
@@ -84,6 +85,7 @@ class Episode:
     cause: str = ""
     note: str = ""
     causes: tuple[CauseView, ...] = ()
+    critical_load: float = float("nan")
     peak_residual: Estimate | None = None
 
     @property

@@ -39,6 +39,7 @@ COLUMNS = (
     "cause",
     "note",
     *(f"{name}_{end}" for name in ESTIMATES for end in ("low", "high")),
+    "critical_load_kN",
 )
 
 
@@ -74,6 +75,7 @@ def episode_row(episode: Episode, tz: dt.tzinfo) -> dict[str, Cell]:
         "family": episode.family,
         "cause": episode.cause,
         "note": episode.note,
+        "critical_load_kN": number(episode.critical_load / 1e3, 3),
     }
     for name, (attribute, scale, decimals) in ESTIMATES.items():
         estimate: Estimate = getattr(episode, attribute)

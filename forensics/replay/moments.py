@@ -7,10 +7,12 @@ from collections.abc import Sequence
 import numpy as np
 
 from forensics.loads import Profile
-from forensics.mechanics.kernels_judge import GIVE, Setting, thresholds
+from forensics.mechanics.kernels_judge import CONSTANT, GIVE, LINEAR, SQUARE, Setting, thresholds
 from forensics.mechanics.kernels_march import contact, place_at
 from forensics.mechanics.kernels_memory import Memory
 from forensics.mechanics.limits import SUPPORT
+from forensics.mechanics.selfconsistent import ContactSize
+from forensics.mechanics.threshold import self_consistent_load
 from forensics.replay.model import factors
 from forensics.replay.room import fresh, go, restart, take
 from forensics.replay.run import Replay
@@ -31,6 +33,36 @@ def profiles(run: Replay, rows: Sequence[int]) -> tuple[Profile, ...]:
         done = row + 1
         taken[row] = _profile(run, at, carried[0], row)
     return tuple(taken[row] for row in rows)
+
+
+def critical_load(run: Replay, row: int, md: float) -> float:
+    """Give the compression at which a place would just buckle sideways, at the contact it then causes [N].
+
+    Parameters
+    ----------
+    run : Replay
+        Made ready.
+    row : int
+        Row of the log: which piece of string lies there, and in which mud.
+    md : float
+        Measured depth of the place [m]; NaN gives NaN, as does a support.
+    """
+    if not np.isfinite(md):
+        return float("nan")
+    model, criteria = run.model, run.model.criteria
+    bit, scale = float(run.prepared.samples.bit[row]), float(run.prepared.samples.scale[row])
+    j = int(np.clip(np.searchsorted(model.pipe.x, bit - md, side="right") - 1, 0, len(model.pipe.ei) - 1))
+    i = int(np.clip(round(md / model.hole.step), 0, len(model.hole.cos_i) - 1))
+    at = criteria.at[criteria.kind[j], i]
+    if at[GIVE] <= 0.0:
+        return float("nan")
+    gap = 4.0 * model.pipe.ei[j] * at[GIVE]
+    part = at[GIVE] ** 2  # takes the fourth power of a load back to the square of a contact
+    size = ContactSize(
+        at[CONSTANT] * part * scale**2, -0.5 * at[LINEAR] * part * scale, at[SQUARE] * part
+    )
+    w_cos = model.pipe.weight[j] * scale * model.hole.cos_i[i]
+    return float(self_consistent_load(model.pipe.ei[j], gap, w_cos, model.pipe.stiff_run[j], size))
 
 
 def _profile(run: Replay, at: Setting, memory: Memory, row: int) -> Profile:

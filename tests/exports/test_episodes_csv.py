@@ -42,7 +42,8 @@ def test_columns_begin_with_the_contracts(rows):
     names = list(rows[0])
     assert names[: len(CONTRACT)] == CONTRACT
     assert set(names[len(CONTRACT) :]) == {
-        f"{name}_{end}" for name in CONTRACT[10:14] for end in ("low", "high")
+        *(f"{name}_{end}" for name in CONTRACT[10:14] for end in ("low", "high")),
+        "critical_load_kN",
     }
 
 

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from types import SimpleNamespace
 
 import pytest
 
@@ -11,6 +12,7 @@ from forensics.mechanics.kernels_march import place_at
 from forensics.mechanics.limits import SUPPORT
 from forensics.mechanics.threshold import helical_load, sinusoidal_load
 from forensics.replay.model import build_model
+from forensics.replay.moments import critical_load
 from tests.replay.test_memory import case_for
 from tests.wells import build_well, one_pipe_well
 
@@ -50,3 +52,16 @@ def test_states_remember():
     assert next_state(2, 109.0, levels, 0) == 0
     assert next_state(2, 136.0, levels, 1) == 1
     assert next_state(2, 138.0, levels, 1) == 2
+
+
+@pytest.mark.parametrize("inclination", [20.0, 60.0, 89.5])
+def test_the_critical_load_is_where_load_and_threshold_meet(inclination):
+    """In a straight hole contact does not depend on load: the self-consistent load is the threshold."""
+    model = build_model(one_pipe_well(math.radians(inclination), 2000.0), case_for(), 2000.0)
+    run = SimpleNamespace(
+        model=model, prepared=SimpleNamespace(samples=SimpleNamespace(bit=[1500.0], scale=[0.98]))
+    )
+    place = place_at(model.hole_arrays, model.pipe_arrays, 1500.0, 0.98)
+    low = thresholds(model.setting(0.2, 0.2), place, 5, 2000, -50e3)[1]
+    assert critical_load(run, 0, 1445.0) == pytest.approx(low, rel=1e-3)
+    assert math.isnan(critical_load(run, 0, math.nan))

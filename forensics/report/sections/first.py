@@ -14,6 +14,7 @@ from forensics.report.scene import Scene
 from forensics.report.words import Show, count, duration, fixed
 
 REPLAY = "replay at the calibrated friction"
+CRITERION = "sinusoidal criterion solved at the contact it causes"
 
 # What the residual of a drag or torque episode is called, and its quantity.
 RESIDUALS = {
@@ -110,9 +111,11 @@ def worst_episode(scene: Scene) -> Episode | None:
 
 def episode_numbers(episode: Episode, show: Show, prefix: str = "") -> list[Number]:
     """List the numbers of one episode; those it does not have are left out."""
+    just = episode.critical_load
     pairs = [
         ("largest load ratio (compression over sinusoidal load)", episode.peak_load_ratio, "dimensionless"),
         ("compression at that place", episode.peak_compression, "force"),
+        ("compression at which it would just buckle there", Estimate(just, just, just, CRITERION), "force"),
         ("surface weight that did not reach the bit", episode.lost_weight, "force"),
         ("of it, lost to buckling rather than to ordinary drag", episode.lost_to_buckling, "force"),
     ]
