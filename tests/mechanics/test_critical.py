@@ -14,7 +14,7 @@ from forensics.errors import CaseError
 from forensics.mechanics import critical, threshold
 from forensics.mechanics import kernels_critical as kernels
 from forensics.mechanics.eigen import load_table
-from forensics.mechanics.selfconsistent import ContactSize, local_load
+from forensics.mechanics.selfconsistent import ContactSize, local_load, lowest_crossing
 
 TABLE = load_table().as_tuple()
 EI, GAP = 1.2288e6, 0.0445
@@ -175,3 +175,25 @@ def test_units_cancel():
     one = threshold.sinusoidal_load(EI, 100.0, GAP, 150.0, 200.0)
     two = threshold.sinusoidal_load(EI * 3 * 4, 100.0 * 3 / 2, GAP * 2, 150.0 * 3 / 2, 400.0)
     assert two == pytest.approx(3 * float(one), rel=1e-12)
+
+
+@settings(max_examples=150, deadline=None)
+@given(st.floats(1.0, 110.0), st.floats(-8.0, 8.0), st.floats(-8.0, 8.0), st.floats(0.0, 2e4))
+def test_self_consistent_load_is_the_lowest_there_is(degrees, build, turn, term):
+    """Whichever way the hole goes: the load meets its own criterion, and no lower load does."""
+    angle, w = math.radians(degrees), 258.3
+    side, k, sideways = (
+        w * math.sin(angle),
+        math.radians(build) / 30,
+        math.radians(turn) / 30 * math.sin(angle),
+    )
+    size = ContactSize(side**2, side * k, k**2 + sideways**2)
+    load = float(lowest_crossing(np.array(EI / GAP), size, term))
+
+    def own(force: np.ndarray | float) -> np.ndarray:
+        contact = np.hypot(side + np.asarray(force) * k, np.asarray(force) * sideways)
+        return term + 2 * np.sqrt(EI * contact / GAP)
+
+    assert float(own(load)) == pytest.approx(load, rel=1e-5, abs=1.0)
+    lower = np.linspace(0.0, load * (1 - 1e-4), 400)
+    assert np.all(own(lower) > lower - 1.0)
