@@ -29,6 +29,8 @@ NEEDED = ("bit_depth", "hookload")
 # Hookload no rig shows: below, the block alone weighs more; above, no derrick holds it [N].
 HOOKLOAD_LOW, HOOKLOAD_HIGH = 5.0e3, 2.0e7
 DEPTH_LOW, DEPTH_HIGH = 5.0, 1.5e4
+# Files of one run follow one another within this [s].
+NEIGHBOUR = 5.0 * DAY
 
 
 @dataclass
@@ -165,11 +167,30 @@ def _read_clocks(case: Case, raws: Sequence[RawLog]) -> list[Clock]:
             if len(raws) == 1:
                 raise
             clocks.append(None)
+    told = [clock for clock in clocks if clock is not None and clock.dated]
     done = [
-        read_clock(raw, case.logs.timezone, chosen, learned) if clock is None else clock
+        clock or _settle_order(raw, (case.logs.timezone, chosen), learned, told)
         for raw, clock in zip(raws, clocks, strict=True)
     ]
     return _date_the_undated(done, raws)
+
+
+def _settle_order(
+    raw: RawLog, how: tuple[str, tuple[str, str | None] | None], learned: str | None, told: list[Clock]
+) -> Clock:
+    """Read stamps of open order as another file showed it, or as they come to lie beside the other files."""
+    timezone, chosen = how
+    if learned is None and told:
+        first, last = (float(edge([edge(c.time[np.isfinite(c.time)]) for c in told])) for edge in (min, max))
+        tried = {order: read_clock(raw, timezone, chosen, order) for order in ("dmy", "mdy")}
+        near = [
+            order
+            for order, clock in tried.items()
+            if np.nanmax(clock.time) > first - NEIGHBOUR and np.nanmin(clock.time) < last + NEIGHBOUR
+        ]
+        if len(near) == 1:
+            return tried[near[0]]
+    return read_clock(raw, timezone, chosen, learned)
 
 
 def _date_the_undated(clocks: list[Clock], raws: Sequence[RawLog]) -> list[Clock]:

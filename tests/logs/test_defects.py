@@ -250,6 +250,16 @@ def test_open_order_of_day_and_month_is_learned_from_another_file():
     assert len(log) == 48
 
 
+@pytest.mark.parametrize(("beside", "day"), [("2031-05-05", "2031-05-04"), ("2031-04-04", "2031-04-05")])
+def test_open_order_of_day_and_month_is_settled_by_the_files_beside(tmp_path, beside, day):
+    other = tmp_path / "beside.csv"
+    rows = "".join(f"{beside}T10:00:{s:02d}Z,2000,1200\n" for s in range(0, 60, 5))
+    other.write_text(f"time,bit_depth [m],hookload [kN]\n{rows}")
+    log = read("day_or_month.csv", str(other))
+    assert utc(f"{day}T10:00:00") in log.time
+    assert len(log) == 36
+
+
 def test_files_without_a_date_beside_dated_ones_are_refused():
     with pytest.raises(LogError, match="no date while other logs"):
         read("clean.csv", "clock_over_midnight.csv")
