@@ -87,9 +87,12 @@ def ordinary_loss(material: Material, system: str, dragging: bool = False) -> st
 
 
 def near_threshold(material: Material) -> str:
-    """Say how near the string came to buckling; empty where it stayed well clear."""
-    ratio = material.loads.peak_ratio[np.asarray(material.loads.state) == 0]
+    """Say how near the string came to buckling, or how far past it; empty where it stayed well clear."""
+    ratio = material.loads.peak_ratio
     largest = float(np.nanmax(ratio)) if np.isfinite(ratio).any() else 0.0
+    if np.asarray(material.loads.state).any():
+        onset = material.case.criteria.helical_onset.capitalize()
+        return f"the load ratio came up to {largest:.2f}: sinusoidal running, short of helical onset by {onset}"
     return f"the load ratio came up to {largest:.2f}, near the threshold" if largest >= NEAR else ""
 
 
