@@ -30,6 +30,9 @@ class OffBottom(Protocol):
     def string_weight(self, kind: str, bit_depth: Floats, mu_cased: float, mu_open: float) -> Floats:
         """Hookload of the string alone at the rotary [N]."""
 
+    def string_weights(self, kind: str, bit_depth: Floats, mu_cased: Floats, mu_open: Floats) -> Floats:
+        """Weigh at k pairs of factors and n depths, shape (k, n) [N]."""
+
     def slack_off_ratio(self, bit_depth: Floats, mu_cased: float, mu_open: float) -> Floats:
         """Largest load ratio while slacking off, bit free [-]."""
 
@@ -70,9 +73,9 @@ class ResponseSurface:
         return value_i @ along, slope_i @ along, value_i @ across
 
 
-def _cubic(mu: float, nodes: int = len(FACTORS)) -> tuple[int, Floats, Floats]:
+def _cubic(mu: float) -> tuple[int, Floats, Floats]:
     """First of the four nodes about a factor, their Lagrange weights, and the slopes of these."""
-    first = int(np.clip(int(mu / STEP) - 1, 0, nodes - 4))
+    first = int(np.clip(int(mu / STEP) - 1, 0, len(FACTORS) - 4))
     x = mu / STEP - first
     a, b, c, d = x, x - 1.0, x - 2.0, x - 3.0
     value = np.array([-b * c * d / 6.0, a * c * d / 2.0, -a * b * d / 2.0, a * b * c / 6.0])
@@ -85,16 +88,6 @@ def _cubic(mu: float, nodes: int = len(FACTORS)) -> tuple[int, Floats, Floats]:
         ]
     )
     return first, value, slope / STEP
-
-
-def _refined(grid: Floats) -> Floats:
-    """Bring a table at every other factor to all of them by local cubics, shape (13, 13, n)."""
-    coarse = len(grid)
-    onto = np.zeros((len(FACTORS), coarse))
-    for row in range(len(FACTORS)):
-        first, value, _ = _cubic(0.5 * row * STEP, coarse)
-        onto[row, first : first + 4] = value
-    return np.einsum("ia,jb,abn->ijn", onto, onto, grid)
 
 
 def build_surface(model: OffBottom, kinds: tuple[str, ...], bit_depth: Floats) -> ResponseSurface:
@@ -121,9 +114,7 @@ def build_surface(model: OffBottom, kinds: tuple[str, ...], bit_depth: Floats) -
         if kind == "rotating":  # no axial friction: one march serves
             table[:, :, rows] = model.string_weight(kind, depths, 0.0, 0.0)
             continue
-        coarse = 2 if kind == "pick_up" else 1  # pulled pipe does not buckle: its weight bends gently
-        nodes = FACTORS[::coarse].tolist()
-        grid = np.array([[model.string_weight(kind, depths, c, o) for o in nodes] for c in nodes])
-        table[:, :, rows] = _refined(grid) if coarse > 1 else grid
+        pairs = np.meshgrid(FACTORS, FACTORS, indexing="ij")
+        table[:, :, rows] = model.string_weights(kind, depths, *(f.ravel() for f in pairs)).reshape(m, m, -1)
     np.nan_to_num(table, copy=False, nan=LOWEST_WEIGHT)
     return ResponseSurface(np.maximum(table, LOWEST_WEIGHT))

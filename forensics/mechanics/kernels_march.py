@@ -15,6 +15,8 @@ from numba import njit
 
 Array = np.ndarray
 
+RUN_AWAY = -1e8  # N; no string carries it: the march has passed lockup
+
 
 class Hole(NamedTuple):
     """Columns of `HoleGrid`, for compiled code."""

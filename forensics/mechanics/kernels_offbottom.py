@@ -6,9 +6,7 @@ import numpy as np
 from numba import njit
 
 from forensics.mechanics.kernels_judge import GIVE, Setting, latch, thresholds
-from forensics.mechanics.kernels_march import Array, Ask, contact, place_at
-
-RUN_AWAY = -1e8  # N; no string carries it: the march has passed lockup
+from forensics.mechanics.kernels_march import RUN_AWAY, Array, Ask, contact, place_at
 
 
 @njit(cache=True, error_model="numpy")
@@ -37,7 +35,7 @@ def weigh(setting: Setting, ask: Ask, judged: bool) -> tuple[float, float]:
             return np.nan, np.inf
         slope = weight * hole.cos_i[i] - ask.sigma * setting.mu[i] * force
         tension += slope * length
-    return tension, ratio
+    return (tension if tension > RUN_AWAY else np.nan), ratio
 
 
 @njit(cache=True)

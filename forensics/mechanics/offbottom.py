@@ -8,6 +8,7 @@ from numpy.typing import ArrayLike, NDArray
 from forensics.case import CriteriaSettings
 from forensics.mechanics.grid import HoleGrid, PipeGrid, hole_grid, pipe_grid
 from forensics.mechanics.kernels_judge import Setting
+from forensics.mechanics.kernels_lanes import weigh_lanes
 from forensics.mechanics.kernels_march import torque_up_many
 from forensics.mechanics.kernels_offbottom import press_many, weigh_many
 from forensics.mechanics.limits import tabulate
@@ -78,6 +79,26 @@ class OffBottomModel:
         bits = np.atleast_1d(np.asarray(bit_depth, dtype=float))
         scales = np.broadcast_to(np.asarray(scale, dtype=float), bits.shape).copy()
         return weigh_many(self.setting(cased, open_hole), bits, scales, SIGMA[kind])
+
+    def string_weights(
+        self, kind: str, bit_depth: ArrayLike, cased: ArrayLike, open_hole: ArrayLike
+    ) -> Floats:
+        """Hookload of the string alone at many friction factors, bit free [N], shape (strings, k).
+
+        Parameters
+        ----------
+        kind : str
+            "pick_up", "slack_off" or "rotating".
+        bit_depth : array_like, shape (k,)
+            [m]
+        cased, open_hole : array_like, shape (strings,)
+            Friction factors, in pairs.
+        """
+        bits = np.atleast_1d(np.asarray(bit_depth, dtype=float))
+        pairs = [np.ascontiguousarray(np.atleast_1d(f), dtype=float) for f in (cased, open_hole)]
+        setting = self.setting(0.0, 0.0)
+        rows = [weigh_lanes(setting, self.hole.open_hole, (b, SIGMA[kind]), *pairs) for b in bits.tolist()]
+        return np.array(rows).reshape(len(bits), len(pairs[0])).T
 
     def slack_off_ratio(self, bit_depth: ArrayLike, cased: float, open_hole: float) -> Floats:
         """Largest load ratio anywhere while slacking off with the bit free, shape (k,)."""

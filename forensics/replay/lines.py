@@ -49,11 +49,8 @@ def _band(kind: str, depth: Floats, calibration: Calibration, model: OffBottomMo
         line = _line(kind, depth, calibration, model)
         return line, line
     bias = calibration.hookload_bias.value
-    scale = calibration.weight_scale.value
-    lines = [
-        block + bias + model.string_weight(kind, depth, cased, open_hole, scale)
-        for cased, open_hole, block in draws
-    ]
+    weights = model.string_weights(kind, depth, draws[:, 0], draws[:, 1])
+    lines = draws[:, 2:3] + bias + calibration.weight_scale.value * weights
     # where some draws lock up there is no band to show
     whole = np.isfinite(lines).all(axis=0)
     low, high = np.percentile(np.where(whole, lines, 0.0), [5.0, 95.0], axis=0)

@@ -82,3 +82,17 @@ def test_component_weights_survive_the_cut_into_stations():
     buoyed = well.string.buoyed(1200.0)[:-1]
     exact = sum(w * c.length for w, c in zip(buoyed, well.string.components[:-1], strict=True))
     assert total == pytest.approx(exact, rel=1e-3)
+
+
+@pytest.mark.parametrize("kind", ["pick_up", "slack_off", "rotating"])
+def test_strings_side_by_side_weigh_what_each_weighs_alone(kind):
+    """To rounding of the largest load, away from lockup, where any rounding grows without bound."""
+    model = OffBottomModel(build_well(turn=0.3), 3400.0)
+    bits = np.array([300.0, 1234.5, 2000.0, 3333.3])
+    cased, open_hole = (f.ravel() for f in np.meshgrid(np.linspace(0, 0.4, 9), np.linspace(0, 0.5, 11)))
+    together = model.string_weights(kind, bits, cased, open_hole)
+    alone = np.array([model.string_weight(kind, bits, c, o) for c, o in zip(cased, open_hole, strict=True)])
+    sound = alone > -2e6
+    assert together.shape == (99, 4)
+    assert np.allclose(together[sound], alone[sound], rtol=0.0, atol=1e-12 * np.abs(alone[sound]).max())
+    assert not np.any(together[~sound] > -1e6)
