@@ -123,6 +123,8 @@ class LoadHistory:
         What rotated footage taught about drilling rate.
     visits : int
         Stations visited by the replay, for the benchmark.
+    bit_load_limit : ndarray or None
+        Most bit load any slacking off could give while sliding, NaN elsewhere [N].
     """
 
     bit_load: Floats
@@ -144,6 +146,7 @@ class LoadHistory:
     ratio_map: RatioMap
     rate_law: RateLaw
     visits: int = 0
+    bit_load_limit: Floats | None = None
 
 
 @dataclass(frozen=True)

@@ -82,6 +82,7 @@ COLUMNS = (
     "torque_residual_kNm",
     "used",
     "reason",
+    "wob_bit_limit_kN",
 )
 
 
@@ -105,6 +106,7 @@ def _measured(findings: Findings) -> dict[str, pa.Array]:
 
 def _reconstructed(findings: Findings) -> dict[str, pa.Array]:
     loads = findings.loads
+    limit = np.full(len(findings.log), np.nan) if loads.bit_load_limit is None else loads.bit_load_limit
     return {
         "wob_bit_kN": _numbers(loads.bit_load, KILO),
         "peak_load_ratio": _numbers(loads.peak_ratio),
@@ -114,6 +116,7 @@ def _reconstructed(findings: Findings) -> dict[str, pa.Array]:
         "basis": _words(loads.basis, [b.word for b in Basis], missing=np.isnan(loads.bit_load)),
         "drag_residual_kN": _numbers(loads.drag_residual, KILO),
         "torque_residual_kNm": _numbers(loads.torque_residual, KILO),
+        "wob_bit_limit_kN": _numbers(limit, KILO),
     }
 
 

@@ -13,11 +13,12 @@ from forensics.logs.table import TimeLog
 from forensics.mechanics.kernels_replay import Rules, Run, replay_rows
 from forensics.mechanics.offbottom import OffBottomModel
 from forensics.replay.lines import drag_lines, torque_lines
+from forensics.replay.margin import bit_load_limit
 from forensics.replay.model import factors
 from forensics.replay.room import fresh, room
 from forensics.replay.samples import Prepared
 from forensics.replay.slide import straight_drag
-from forensics.rig.view import RigView
+from forensics.rig.view import Activity, RigView
 from forensics.well.model import Well
 
 Floats = NDArray[np.float64]
@@ -75,6 +76,9 @@ def replay(run: Replay) -> LoadHistory:
             run.log, run.prepared, run.rig, run.calibration, run.model, found.bit_load
         ),
         model_hookload=expected,
+        bit_load_limit=bit_load_limit(
+            run.model, samples, run.rig.activity == Activity.DRILL_SLIDE, (cased, open_hole)
+        ),
         straight_drag=straight_drag(run.model, run.prepared, (cased, open_hole), found, lost),
         stretch=found.stretch,
         ratio_map=RatioMap(times, depths, found.chart),

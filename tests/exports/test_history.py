@@ -38,7 +38,7 @@ def written(findings, tmp_path):
 
 
 def test_columns_are_the_contracts(written):
-    assert pq.read_schema(written).names == CONTRACT
+    assert pq.read_schema(written).names == [*CONTRACT, "wob_bit_limit_kN"]
 
 
 def test_time_is_utc_and_keeps_fractions(written):
