@@ -6,14 +6,12 @@ import gzip
 import io
 import warnings
 from pathlib import Path
-from typing import TYPE_CHECKING
+
+import pandas as pd
 
 from forensics.errors import LogError
 from forensics.logs.dialect import Dialect, find_dialect, split_line
 from forensics.logs.raw import UNPACK_ERRORS, Keep, RawLog
-
-if TYPE_CHECKING:
-    import pandas as pd
 
 HEAD = 2**18
 SUFFIXES = (".csv", ".gz", ".txt", ".tsv", ".asc", ".dat", ".prn")
@@ -84,8 +82,6 @@ def _fast(path: Path, dialect: Dialect, wanted: list[int]) -> pd.DataFrame | Non
 
     Options that a clean file does not need are left out: together they cost more than the parsing.
     """
-    import pandas as pd
-
     width = len(dialect.names)
     options = {
         "sep": r"\s+" if dialect.delimiter == " " else dialect.delimiter,
@@ -114,8 +110,6 @@ def _fast(path: Path, dialect: Dialect, wanted: list[int]) -> pd.DataFrame | Non
 
 
 def _parse(path: Path, options: dict[str, object]) -> pd.DataFrame:
-    import pandas as pd
-
     return pd.read_csv(path, engine="c", header=None, skip_blank_lines=False, index_col=False, **options)
 
 
@@ -132,8 +126,6 @@ def is_packed(path: Path) -> bool:
 
 def _patient(path: Path, dialect: Dialect, wanted: list[int]) -> tuple[pd.DataFrame, int]:
     """Read line by line: long rows are cut, short ones filled, so that line numbers hold."""
-    import pandas as pd
-
     rows: list[list[str | None]] = []
     with _text(path, dialect) as lines:
         for number, line in enumerate(lines):

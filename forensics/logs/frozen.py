@@ -31,10 +31,12 @@ def runs_of(values: Floats, shortest: int = SHORTEST) -> list[tuple[int, int]]:
     """
     if len(values) == 0:
         return []
-    change = np.flatnonzero(np.diff(values) != 0) + 1
+    change = np.flatnonzero(values[1:] != values[:-1]) + 1
     edges = np.concatenate(([0], change, [len(values)]))
     long = np.flatnonzero(np.diff(edges) >= shortest)
-    return [(int(edges[i]), int(edges[i + 1])) for i in long if np.isfinite(values[edges[i]])]
+    # Most values last no longer than a sample: what is left after this is short enough for a list.
+    long = long[np.isfinite(values[edges[long]])]
+    return list(zip(edges[long].tolist(), edges[long + 1].tolist(), strict=True))
 
 
 def is_lively(values: Floats, shortest: int = SHORTEST) -> bool:
@@ -105,6 +107,7 @@ def find_frozen(channel: str, values: Mapping[str, Floats], interval: float) -> 
     slow = max(30, 5 * minute)
     known = np.abs(data[np.isfinite(data)])
     at_work = 0.2 * float(np.percentile(known, 95)) if len(known) else 0.0
+    height = max(_reach(block, 0, len(data)), 20.0)
     shortest = (
         SHORTEST if restless else {"hookload": minute, **dict.fromkeys(MOVERS, minute)}.get(channel, slow)
     )
@@ -113,7 +116,7 @@ def find_frozen(channel: str, values: Mapping[str, Floats], interval: float) -> 
             moved = _reach(bit, start, end) >= (0.3 if lively else 3.0)
             stopped = moved or (restless and data[start] > slips_level(data))
         elif channel == "bit_depth":
-            stopped = _travel(carried, start, end) > 3.5 * max(_reach(block, 0, len(data)), 20.0)
+            stopped = _travel(carried, start, end) > 3.5 * height
         elif channel == "block_position":
             stopped = _reach(bit, start, end) >= 3.0
         else:

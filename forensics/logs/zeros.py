@@ -39,11 +39,14 @@ def find_zeros(time: Floats, hookload: Floats, bit_depth: Floats, block: Floats 
     on its way without the string.
     """
     found = np.zeros(len(hookload), dtype=bool)
-    stretches = [(start, end) for start, end in runs_of(hookload, 1) if hookload[start] == 0.0]
+    zero = hookload == 0.0
+    if not zero.any():
+        return found
+    stretches = runs_of(np.where(zero, 0.0, np.nan), 1)
     share = sum(end - start for start, end in stretches) / max(len(hookload), 1)
     if not stretches or share > 0.5:
         return found
-    usual = float(np.nanmedian(hookload[hookload != 0.0]))
+    usual = float(np.nanmedian(hookload[~zero]))
     slips = block is None or any(_in_slips(block[a:b], bit_depth[a:b]) for a, b in stretches)
     for start, end in stretches:
         brief = start > 0 and end < len(time) and time[end] - time[start - 1] <= BRIEF
