@@ -10,8 +10,8 @@ from numba import njit
 from forensics.mechanics.eigen import LIMIT
 from forensics.mechanics.kernels_critical import helical_prepared, sinusoidal_prepared
 from forensics.mechanics.kernels_march import Array, Hole, Pipe, Place
+from forensics.mechanics.threshold import ENVELOPE_RELEASE as ENVELOPE
 
-ENVELOPE = 1.370  # times Dawson-Paslay: least load a helix keeps its shape at, from its own equations
 FAR_FROM_VERTICAL = 20.0  # local load in units of the near-vertical one: c is its limit (0.04 % of the load)
 SQUARE, LINEAR, CONSTANT, CUBE, LENGTH, GIVE = range(6)  # columns of `Criteria.at`
 
