@@ -11,8 +11,9 @@ import numpy as np
 
 from forensics.case import Case
 from forensics.episodes.catalogue import Kind
-from forensics.episodes.describe import describe
-from forensics.episodes.find import rows_in_question
+from forensics.episodes.describe import tell, weigh_episodes
+from forensics.episodes.find import flag_rows, rows_in_question
+from forensics.episodes.groups import are_many, load_clustering
 from forensics.episodes.material import Material
 from forensics.findings import Findings
 from forensics.friction.calibrate import calibrate
@@ -113,12 +114,18 @@ def _model(run: Run) -> OffBottomModel:
 def _tell(material: Material, made: Replay, progress: Progress, units: str) -> Findings:
     """Find and weigh the episodes, and gather all that the run has to tell."""
     with progress.stage("episodes", "finding episodes"):
+        material = replace(material, flagged=flag_rows(material))
         wanted = rows_in_question(material)
     with progress.stage("draws", "replaying under other friction"):
         drawn = replay_draws(made, wanted)
         material = replace(material, draws=drawn)
     with progress.stage("episodes", "weighing episodes"):
-        told = describe(material, units)
+        weighed = weigh_episodes(material)
+    if are_many(weighed.episodes):
+        with progress.stage("imports", "loading the clustering"):
+            load_clustering()
+    with progress.stage("episodes", "grouping episodes"):
+        told = tell(material, weighed, units)
         episodes = tuple(
             replace(e, critical_load=critical_load(made, e.peak, e.peak_md)) if e.kind in PRESSED else e
             for e in told.episodes

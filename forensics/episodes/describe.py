@@ -26,6 +26,14 @@ class Described:
     dropped: Mapping[str, int]
 
 
+@dataclass(frozen=True)
+class Weighed:
+    """Episodes with their causes weighed, in time order, and spans the rules dropped, by reason."""
+
+    episodes: tuple[Episode, ...]
+    dropped: Mapping[str, int]
+
+
 def describe(material: Material, system: str = "metric") -> Described:
     """Find episodes, weigh their causes, group them and put the finding in words.
 
@@ -40,6 +48,20 @@ def describe(material: Material, system: str = "metric") -> Described:
     -------
     Described
     """
+    return tell(material, weigh_episodes(material), system)
+
+
+def weigh_episodes(material: Material) -> Weighed:
+    """Find episodes and weigh their causes.
+
+    Parameters
+    ----------
+    material : Material
+
+    Returns
+    -------
+    Weighed
+    """
     episodes, dropped = find_episodes(material)
     signals = Signals(material)
     weighed = []
@@ -49,5 +71,23 @@ def describe(material: Material, system: str = "metric") -> Described:
             continue
         cause, views = weigh(material, signals, episode)
         weighed.append(replace(episode, cause=cause, causes=views))
-    grouped, families = group(material, tuple(weighed))
-    return Described(grouped, families, headline(material, grouped, system), dropped)
+    return Weighed(tuple(weighed), dropped)
+
+
+def tell(material: Material, weighed: Weighed, system: str = "metric") -> Described:
+    """Group episodes and put the finding in words.
+
+    Parameters
+    ----------
+    material : Material
+    weighed : Weighed
+        The run's episodes.
+    system : str
+        "metric" or "field".
+
+    Returns
+    -------
+    Described
+    """
+    grouped, families = group(material, weighed.episodes)
+    return Described(grouped, families, headline(material, grouped, system), weighed.dropped)

@@ -21,6 +21,10 @@ SILENCE = 300.0
 STATES = (State.NONE, State.SINUSOIDAL, State.HELICAL)
 
 
+# Rows that each kind's rule flags, and the signs the lockup rule looked at.
+Flagged = tuple[dict[Kind, Bools], rules.LockupSigns]
+
+
 @dataclass(frozen=True)
 class Found:
     """A span of one kind, with the rows its rule flags and the least duration it had to last [s]."""
@@ -72,8 +76,10 @@ def rows_in_question(material: Material) -> Bools:
     return wanted
 
 
-def flag_rows(material: Material) -> tuple[dict[Kind, Bools], rules.LockupSigns]:
+def flag_rows(material: Material) -> Flagged:
     """Flag the rows of every kind of episode, shape (n,) each; with the signs the lockup rule looked at."""
+    if material.flagged is not None:
+        return material.flagged
     signs = rules.lockup_signs(material)
     used = np.asarray(material.log.used, dtype=bool)
     flagged = {

@@ -65,6 +65,17 @@ def is_routine(episode: Episode) -> bool:
     )
 
 
+def are_many(episodes: tuple[Episode, ...]) -> bool:
+    """Whether more episodes are beyond routine than are listed singly: then scikit-learn groups them."""
+    return sum(not is_routine(e) for e in episodes) > SINGLY
+
+
+def load_clustering() -> None:
+    """Import scikit-learn, which takes longer than its work here."""
+    import sklearn.cluster
+    import sklearn.metrics  # noqa: F401
+
+
 def group(
     material: Material, episodes: tuple[Episode, ...]
 ) -> tuple[tuple[Episode, ...], tuple[Family, ...]]:

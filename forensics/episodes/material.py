@@ -13,6 +13,7 @@ from forensics.rig.view import Activity
 
 if TYPE_CHECKING:
     from forensics.case import Case
+    from forensics.episodes.find import Flagged
     from forensics.friction.result import Calibration
     from forensics.loads import DrawHistory, LoadHistory
     from forensics.logs.table import TimeLog
@@ -36,7 +37,8 @@ RESIDUAL_SHARE = 0.10
 class Material:
     """One run's log, loads and calibration, as the episode rules need them.
 
-    `draws` is None where the replay was not repeated.
+    `draws` is None where the replay was not repeated; `flagged` is what the rules flag on these loads, where
+    somebody has worked it out before (see `find.flag_rows`).
     """
 
     log: TimeLog
@@ -46,6 +48,7 @@ class Material:
     calibration: Calibration
     well: Well
     case: Case
+    flagged: Flagged | None = None
 
     @property
     def time(self) -> Floats:

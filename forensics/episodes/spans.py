@@ -122,14 +122,30 @@ def window_extreme(
     row : ndarray of int, shape (n,)
     """
     n = len(values)
-    largest = np.where(np.isnan(values), -np.inf, values)
+    level = np.where(np.isnan(values), -np.inf, values)
     row = np.arange(n)
-    for back in range(1, max(int(np.ceil(window / interval)), 1) + 1):
-        if back >= n:
-            break
-        here = slice(back, n)
-        earlier = np.where(np.isnan(values[:-back]), -np.inf, values[:-back])
-        better = (earlier > largest[here]) & (time[here] - time[:-back] <= window + 1e-6)
-        largest[here] = np.where(better, earlier, largest[here])
-        row[here] = np.where(better, np.arange(n - back), row[here])
-    return np.where(np.isinf(largest), np.nan, largest), row
+    first = _window_start(time, window, interval)
+    length = row - first + 1
+    largest, best = level.copy(), row.copy()
+    span = 1
+    # Two stretches of a power of two cover any window; each level is made of two of the one before.
+    while span < int(length.max(initial=1)):
+        here = np.flatnonzero((length > span) & (length <= 2 * span))
+        back = first[here] + span - 1
+        earlier = level[back] > level[here]
+        largest[here] = np.where(earlier, level[back], level[here])
+        best[here] = np.where(earlier, row[back], row[here])
+        earlier = level[:-span] > level[span:]
+        row = np.append(row[:span], np.where(earlier, row[:-span], row[span:]))
+        level = np.append(level[:span], np.maximum(level[:-span], level[span:]))
+        span *= 2
+    return np.where(np.isinf(largest), np.nan, largest), best
+
+
+def _window_start(time: Floats, window: float, interval: float) -> NDArray[np.int64]:
+    """First row of the window that ends at each row: no more seconds, and no more samples, than it holds."""
+    rows = np.arange(len(time))
+    first = np.maximum(rows - max(int(np.ceil(window / interval)), 1), 0)
+    late = np.flatnonzero(time - time[first] > window + 1e-6)
+    first[late] = np.maximum(np.searchsorted(time, time[late] - window - 1e-6), first[late])
+    return first
