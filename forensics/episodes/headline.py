@@ -99,7 +99,7 @@ def _loaded(material: Material, episode: Episode, system: str) -> str:
     when = wording.period(episode.start, episode.end, material.log.timezone)
     what = _what(material, episode, system)
     doing = "" if episode.activity == "unknown" else f"{doing} "
-    text = f"{_capital(doing)}with the bit at {wording.depth(bit, system)}, {when}, the string {what}"
+    text = _capital(f"{doing}with the bit at {wording.depth(bit, system)}, {when}, the string {what}")
     text += _cost(material, episode, system)
     if episode.cause:
         text += f" {_cause(episode)}"
@@ -199,14 +199,18 @@ def _confidence(material: Material, main: list[Episode]) -> str:
         if assumed
         else "friction was determined from this run's own weights"
     )
+    blind = material.log.get("rpm") is None and material.log.get("torque") is None
+    if blind:
+        friction += "; rotation was not logged and is guessed"
+    weak = bool(assumed) or blind
     if not main:
         near = near_threshold(material)
         said = f"{friction}; {near}" if near else friction
-        return f"{'moderate' if assumed or near else 'high'}: {said}"
+        return f"{'moderate' if weak or near else 'high'}: {said}"
     chance = main[0].probability
     if not np.isfinite(chance):
         return f"low: the spread over friction draws was not reckoned; {friction}"
-    grade = "high" if chance >= SURE and not assumed else "moderate" if chance >= LIKELY else "low"
+    grade = "high" if chance >= SURE and not weak else "moderate" if chance >= LIKELY else "low"
     share = "every draw" if chance >= CERTAIN else f"{100.0 * chance:.0f} % of the draws"
     return f"{grade}: its rule holds in {share} of friction and weight; {friction}"
 
