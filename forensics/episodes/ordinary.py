@@ -92,7 +92,7 @@ def near_threshold(material: Material) -> str:
     largest = float(np.nanmax(ratio)) if np.isfinite(ratio).any() else 0.0
     if np.asarray(material.loads.state).any():
         onset = material.case.criteria.helical_onset.capitalize()
-        return f"the load ratio came up to {largest:.2f}: sinusoidal running, short of helical onset by {onset}"
+        return f"the load ratio came up to {largest:.2f}: sinusoidal, short of helical onset by {onset}"
     return f"the load ratio came up to {largest:.2f}, near the threshold" if largest >= NEAR else ""
 
 
