@@ -30,6 +30,8 @@ __all__ = ["refine_activity", "understand_rig"]
 _WEIGH_STEP = 5.0
 # Length of the longest common stand [m].
 _STAND = 30.0
+# A survey is behind the bit by the tools between; beyond this the hole's direction is a guess [m].
+_UNSURVEYED = 100.0
 # The in-slips reading contradicts the case when off by this share and this much [N].
 _DISAGREES = 0.03
 _BOTHERS = 5e3
@@ -194,6 +196,12 @@ def _can_not_tell(facts: Facts, judged: Judged, weight: Estimate, slips: Slips) 
         notes.append(
             f"In slips the hookload reads {seen.value / 1e3:.0f} kN, where the block weight is taken as "
             f"{weight.value / 1e3:.0f} kN ({weight.source}): bias and block weight can't be told apart."
+        )
+    surveyed, deepest = float(facts.well.trajectory.md[-1]), float(facts.signals.bit.max(initial=0.0))
+    if deepest - surveyed > _UNSURVEYED:
+        notes.append(
+            f"The survey ends at {surveyed:.0f} m and the bit got to {deepest:.0f} m: the hole's direction "
+            "in between is not known, the last one surveyed was held."
         )
     if facts.log.get("block_position") is None:
         notes.append("No block position: motion is judged by the bit's depth, and in slips not at all.")

@@ -9,6 +9,7 @@ import pytest
 from forensics.rig.understand import refine_activity, understand_rig
 from forensics.rig.view import Activity
 from forensics.well.string import Component, String
+from forensics.well.trajectory import build_trajectory
 
 
 def changed(log, drop=(), **values):
@@ -186,6 +187,16 @@ def test_a_block_that_moves_alone_is_in_slips_though_it_carries_more(tools, dril
     heavy = log.values["hookload"].copy()
     heavy[first] += 90e3
     assert tools.f1(see(tools, changed(log, hookload=heavy), well).activity, full) > 0.97
+
+
+def test_a_survey_that_ends_far_above_the_bit_is_told(tools, drilled, well):
+    log = tools.log(drilled)
+    deepest = np.nanmax(log.values["bit_depth"])
+    for end, told in ((deepest - 30.0, False), (deepest - 400.0, True)):
+        md = np.arange(0.0, end, 10.0)
+        path = build_trajectory(md, np.zeros(len(md)), np.zeros(len(md)))
+        notes = see(tools, log, replace(well, trajectory=path)).can_not_tell
+        assert any(note.startswith("The survey ends at") for note in notes) == told
 
 
 def test_no_connection_falls_back_on_the_model_and_says_so(tools, drilled, full, well):
