@@ -9,6 +9,7 @@ from forensics.case import Case
 from forensics.episodes.catalogue import Episode, Family, Headline
 from forensics.friction.result import Calibration
 from forensics.loads import Fan, LoadHistory, Profile
+from forensics.logs.records import RecordedSlide, RecordedWeight
 from forensics.logs.table import TimeLog
 from forensics.rig.view import RigView
 from forensics.well.model import Well
@@ -19,7 +20,8 @@ class Findings:
     """All that one incident run found.
 
     `profiles` maps an episode id to the load profile at that episode's peak; `dropped` counts what the
-    episode rules set aside, by reason; `inputs` maps a file's name to its SHA-256.
+    episode rules set aside, by reason; `inputs` maps a file's name to its SHA-256; `weights` and `slides`
+    are what the rig kept by hand.
     """
 
     case: Case
@@ -36,3 +38,5 @@ class Findings:
     dropped: Mapping[str, int] = field(default_factory=dict)
     inputs: Mapping[str, str] = field(default_factory=dict)
     warnings: tuple[str, ...] = ()
+    weights: tuple[RecordedWeight, ...] = ()
+    slides: tuple[RecordedSlide, ...] = ()

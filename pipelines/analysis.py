@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import hashlib
+from collections import Counter
 from collections.abc import Mapping
 from dataclasses import dataclass, replace
 from pathlib import Path
@@ -10,6 +11,7 @@ from pathlib import Path
 import numpy as np
 
 from forensics.case import Case
+from forensics.case.unused import unused_settings
 from forensics.episodes.catalogue import Kind
 from forensics.episodes.describe import tell, weigh_episodes
 from forensics.episodes.find import flag_rows, rows_in_question
@@ -19,6 +21,7 @@ from forensics.findings import Findings
 from forensics.friction.calibrate import calibrate
 from forensics.friction.readings import find_readings
 from forensics.logs.read import read_time_logs
+from forensics.logs.records import RecordedSlide, RecordedWeight, read_slides, read_weights
 from forensics.logs.table import TimeLog
 from forensics.mechanics.offbottom import OffBottomModel
 from forensics.replay.draws import replay_draws
@@ -28,7 +31,7 @@ from forensics.replay.moments import critical_load, profiles
 from forensics.replay.ready import block_zero, ready
 from forensics.replay.run import Replay, replay
 from forensics.report.scene import main_episodes
-from forensics.rig.absent import absent_channels
+from forensics.rig.absent import absent_channels, idle_channels
 from forensics.rig.activity import refine_activity
 from forensics.rig.plausible import check_block, check_hookload
 from forensics.rig.travel import match_travel
@@ -46,12 +49,14 @@ PRESSED = (Kind.BUCKLING, Kind.LOCKUP)
 
 @dataclass(frozen=True)
 class Run:
-    """A run as read and understood, before its loads."""
+    """A run as read and understood, before its loads; with what the rig kept by hand."""
 
     case: Case
     log: TimeLog
     well: Well
     rig: RigView
+    weights: tuple[RecordedWeight, ...] = ()
+    slides: tuple[RecordedSlide, ...] = ()
 
 
 def analyse(case: Case, progress: Progress, units: str = "metric") -> Findings:
@@ -86,13 +91,15 @@ def analyse(case: Case, progress: Progress, units: str = "metric") -> Findings:
         loads = replay(made)
         rig = refine_activity(run.rig, loads.bit_load, run.log)
     material = Material(run.log, rig, loads, None, calibration, run.well, case)
-    return _tell(material, made, progress, units)
+    findings = _tell(material, made, progress, units)
+    return replace(findings, weights=run.weights, slides=run.slides)
 
 
 def _understand(case: Case, progress: Progress) -> Run:
     """Read logs and tables, check them against one another, and tell what the rig was doing."""
     with progress.stage("reading", "reading the logs"):
         log = read_time_logs(case)
+        weights, slides = read_weights(case, log), read_slides(case)
     with progress.stage("well", "reading the well"):
         well = load_well(case)
         well.check_reach(float(np.nanmax(log.values["bit_depth"])))
@@ -102,7 +109,7 @@ def _understand(case: Case, progress: Progress) -> Run:
     with progress.stage("rig", "telling what the rig was doing"):
         rig = understand_rig(log, well, case)
         rig = replace(rig, can_not_tell=(*rig.can_not_tell, *absent_channels(log)))
-    return Run(case, log, well, rig)
+    return Run(case, log, well, rig, weights, slides)
 
 
 def _model(run: Run) -> OffBottomModel:
@@ -148,15 +155,31 @@ def _tell(material: Material, made: Replay, progress: Progress, units: str) -> F
         headline=told.headline,
         dropped=told.dropped,
         inputs=_digests(material.case, log),
-        warnings=tuple(dict.fromkeys((*log.warnings, *well.warnings))),
+        warnings=_remarks(material),
     )
 
 
+def _remarks(material: Material) -> tuple[str, ...]:
+    """Everything a reader should know of the input, each said once."""
+    log = material.log
+    unused = (*unused_settings(material.case), *idle_channels(log))
+    return tuple(dict.fromkeys((*log.warnings, *material.well.warnings, *unused)))
+
+
 def _digests(case: Case, log: TimeLog) -> Mapping[str, str]:
-    """Give the SHA-256 of every file that went into the run, by name."""
-    tables = (case.path, case.survey, case.hole, case.string, case.fluid.file)
-    digests = {path.name: _digest(path) for path in tables if path is not None}
-    return digests | {record.name: record.sha256 for record in log.files}
+    """Give the SHA-256 of every file that went into the run, by name, or by path where names repeat."""
+    kept = (case.records.weights, case.records.slides)
+    tables = (case.path, case.survey, case.hole, case.string, case.fluid.file, *kept)
+    digests = [(path, _digest(path)) for path in tables if path is not None]
+    digests += [(path, record.sha256) for path, record in zip(case.logs.time, log.files, strict=True)]
+    names = Counter(path.name for path in {path for path, _ in digests})
+    return {path.name if names[path.name] == 1 else _below(path, case): sha for path, sha in digests}
+
+
+def _below(path: Path, case: Case) -> str:
+    """Name a file by its path from the case's folder, or in full where it lies outside."""
+    folder = case.path.parent
+    return path.relative_to(folder).as_posix() if path.is_relative_to(folder) else path.as_posix()
 
 
 def _digest(path: Path) -> str:

@@ -39,6 +39,9 @@ def _incident(arguments: argparse.Namespace) -> int:
     from pipelines import incident  # heavy: loaded only when the job runs
 
     result = incident.run(arguments.case, arguments.out, arguments.units, arguments.quiet)
+    if not arguments.quiet:
+        for remark in result.unused:
+            _say(remark)
     text = "\n".join(result.lines) + "\n"
     encoding = sys.stdout.encoding or "utf-8"
     sys.stdout.write(text.encode(encoding, "replace").decode(encoding))  # a title may hold any letter

@@ -30,12 +30,15 @@ class IncidentResult:
         figures, exports.
     lines : tuple of str
         The result in a few lines, for the terminal.
+    unused : tuple of str
+        Settings of the case that changed nothing, in sentences.
     """
 
     findings: Findings
     folder: Path
     timings: Mapping[str, float]
     lines: tuple[str, ...]
+    unused: tuple[str, ...] = ()
 
 
 def run(
@@ -72,6 +75,7 @@ def run(
     progress = Progress(quiet)
     with progress.stage("imports", "loading the libraries"):
         from forensics.case import load_case
+        from forensics.case.unused import unused_settings
         from pipelines import analysis, results
 
     case = load_case(Path(case_path))
@@ -80,4 +84,5 @@ def run(
     findings = analysis.analyse(case, progress, units)
     with whole_folder(folder) as fresh:
         results.write(findings, fresh, units, progress)
-    return IncidentResult(findings, folder, progress.timings, results.lines(findings, folder, units))
+    said = results.lines(findings, folder, units)
+    return IncidentResult(findings, folder, progress.timings, said, unused_settings(case))

@@ -12,6 +12,8 @@ COST: Mapping[str, str] = {
     "standpipe_pressure": "No standpipe pressure in the log: what the bit felt can't be checked against it.",
     "wob": "No weight on bit (WOB) by the rig in the log: how it was zeroed can't be told.",
 }
+# Channels that are read and cleaned, and that no later stage takes loads from.
+IDLE = ("flow_out", "mud_density", "pit_volume", "rop", "toolface", "downhole_wob", "downhole_torque")
 # From this interval on, three rows outlast what a driller does for a weight check [s].
 SLOW = 10.0
 
@@ -36,3 +38,24 @@ def absent_channels(log: TimeLog) -> tuple[str, ...]:
             "checks, tags and partial pick-ups do, can't be told."
         )
     return tuple(lacking)
+
+
+def idle_channels(log: TimeLog) -> tuple[str, ...]:
+    """Say which channels of a log are read and change no result.
+
+    Parameters
+    ----------
+    log : TimeLog
+        The SI table of the run.
+
+    Returns
+    -------
+    tuple of str
+        One sentence, or none.
+    """
+    there = [channel for channel in IDLE if log.get(channel) is not None]
+    if not there:
+        return ()
+    return (
+        f"Read and checked, but no reconstructed load rests on them in this version: {', '.join(there)}.",
+    )

@@ -9,9 +9,8 @@ from numpy.typing import ArrayLike, NDArray
 
 from forensics.case import FluidSettings
 from forensics.errors import TableError
-from forensics.logs.clock import DAY, to_utc, zone_of
-from forensics.logs.clock_text import date_fields, day_number, find_order, take_apart
-from forensics.tables import Column, Table, read_table
+from forensics.logs.table_stamps import table_stamps
+from forensics.tables import Column, read_table
 
 Floats = NDArray[np.float64]
 
@@ -109,7 +108,7 @@ def load_fluid(settings: FluidSettings, timezone: str = "UTC") -> tuple[Fluid, t
     if len(by) != 1:
         found = "both 'time' and 'depth'" if by else "neither 'time' nor 'depth'"
         raise TableError(f"has {found}; one of them is needed beside 'density'", file=table.file)
-    index = _stamps(table, timezone) if by[0] == "time" else table.number("depth")
+    index = table_stamps(table, timezone) if by[0] == "time" else table.number("depth")
     density = table.number("density")
     for row in range(len(table)):
         if not np.isfinite(index[row]):
@@ -128,32 +127,3 @@ def _remarks(name: str, fluid: Fluid) -> tuple[str, ...]:
             f"{name}: mud density is {fluid.typical:.4g} kg/m3, lighter than any liquid mud; check its unit",
         )
     return ()
-
-
-def _stamps(table: Table, timezone: str) -> Floats:
-    """Read date and clock of each row to seconds since 1970 UTC."""
-    texts = [
-        f"{date} {time}".strip() for date, time in zip(table.text("date"), table.text("time"), strict=True)
-    ]
-    column = "time" if "time" in table.headers else "date"
-    parts = [take_apart(text) for text in texts]
-    order = find_order(part.date for part in parts)
-    local, offset = np.full(len(table), np.nan), np.full(len(table), np.nan)
-    for row, part in enumerate(parts):
-        day = day_number(part.date, order)
-        if day is None or not part.date:
-            raise table.error(
-                f"is {texts[row]!r}; a stamp such as 2024-05-03T14:30:00Z is needed", row, column
-            )
-        if order in (None, "clash") and len(date_fields(part.date) or ()) == 4:
-            raise table.error(
-                f"is {texts[row]!r}, which can be day first or month first; write dates as YYYY-MM-DD",
-                row,
-                column,
-            )
-        local[row] = day * DAY + (part.clock or 0.0)
-        offset[row] = np.nan if part.offset is None else part.offset
-    known = np.isfinite(offset)
-    seconds: Floats = local - np.nan_to_num(offset)
-    seconds[~known] = to_utc(local[~known], zone_of(timezone))
-    return seconds

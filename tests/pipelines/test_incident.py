@@ -1,6 +1,7 @@
 """The incident job from end to end, on a small invented run."""
 
 import json
+import shutil
 
 import jsonschema
 import numpy as np
@@ -118,3 +119,18 @@ def test_fault_in_the_report_leaves_earlier_results(case, tmp_path, monkeypatch)
         incident.run(case, out, quiet=True)
     assert [(p.name, p.read_text()) for p in out.iterdir()] == [("summary.json", "earlier")]
     assert [p.name for p in tmp_path.iterdir()] == ["out"]
+
+
+def test_inputs_of_one_name_are_told_apart_and_idle_settings_are_said(case, tmp_path, capsys):
+    folder = tmp_path / "twins"
+    shutil.copytree(case.parent, folder, ignore=shutil.ignore_patterns("out*"))
+    (folder / "kept").mkdir()
+    (folder / "kept" / "survey.csv").write_text("depth [m],pick_up [kN]\n2500,1000\n")
+    with (folder / "case.toml").open("a") as file:
+        file.write('[records]\nweights = "kept/survey.csv"\nverdicts = "survey.csv"\n')
+    assert cli.main(["incident", str(folder / "case.toml"), "--out", str(folder / "out")]) == 0
+    assert "verdicts (survey.csv) is not used" in capsys.readouterr().err
+    summary = json.loads((folder / "out" / "summary.json").read_text())
+    assert {"survey.csv", "kept/survey.csv"} <= {entry["file"] for entry in summary["inputs"]}
+    assert any("verdicts" in remark for remark in summary["warnings"])
+    assert "Weights written down by hand" in (folder / "out" / "report.html").read_text(encoding="utf-8")

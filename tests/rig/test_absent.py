@@ -3,7 +3,7 @@
 import numpy as np
 
 from forensics.logs.table import TimeLog
-from forensics.rig.absent import COST, absent_channels
+from forensics.rig.absent import COST, absent_channels, idle_channels
 
 
 def make_log(interval=1.0, **values):
@@ -24,3 +24,10 @@ def test_lacking_and_empty_are_told():
 def test_slow_rows_are_told():
     (told,) = absent_channels(make_log(interval=30.0, **{name: np.ones(3) for name in COST}))
     assert told.startswith("One row every 30 s: what lasts less than 90 s")
+
+
+def test_channels_that_no_load_rests_on_are_named():
+    held = {"downhole_wob": np.ones(3), "rop": np.full(3, np.nan), "torque": np.ones(3)}
+    (told,) = idle_channels(make_log(**held))
+    assert told.endswith(": downhole_wob.")
+    assert idle_channels(make_log(torque=np.ones(3))) == ()

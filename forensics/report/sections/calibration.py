@@ -7,6 +7,7 @@ import numpy as np
 from forensics.report.elements import Column, Element, Picture, Section, Table, Text
 from forensics.report.figures import weights
 from forensics.report.scene import Scene
+from forensics.report.sections import recorded
 from forensics.report.words import count, fixed
 
 TARE_ROWS = 60
@@ -17,6 +18,7 @@ NAMES = {"pick_up": "pick-up", "slack_off": "slack-off", "rotating": "rotating",
 def describe(scene: Scene) -> Section:
     """Describe fit and residuals."""
     elements: list[Element] = [Text(_fit_sentence(scene)), _fan(scene), _residuals(scene), tare_table(scene)]
+    elements += recorded.tables(scene)
     return Section("fit", "How far the model fits", tuple(elements))
 
 

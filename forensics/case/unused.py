@@ -1,0 +1,43 @@
+"""What a case file gives that this version reads and does not use: said, so that nobody counts on it."""
+
+from __future__ import annotations
+
+from forensics.case.settings import Case
+
+
+def unused_settings(case: Case) -> tuple[str, ...]:
+    """Name the settings of a case that change nothing.
+
+    Parameters
+    ----------
+    case : Case
+
+    Returns
+    -------
+    tuple of str
+        One sentence a setting.
+    """
+    rig, said = case.rig, []
+    if case.logs.depth:
+        names = ", ".join(path.name for path in case.logs.depth)
+        said.append(f"[logs] depth ({names}) is not used by this version: no depth-indexed log is read.")
+    if case.records.verdicts is not None:
+        said.append(
+            f"[records] verdicts ({case.records.verdicts.name}) is not used by this version: "
+            "no earlier verdict is carried over."
+        )
+    if rig.lines is not None and rig.sheave_efficiency is None:
+        said.append("[rig] lines changes nothing without sheave_efficiency: the hookload is taken as logged.")
+    if rig.sheave_efficiency is not None and rig.lines is None:
+        said.append("[rig] sheave_efficiency changes nothing without lines: the hookload is taken as logged.")
+    if rig.block_weight is not None and not rig.hookload_includes_block:
+        said.append(
+            "[rig] block_weight changes nothing where hookload_includes_block is false: the block is not in "
+            "the hookload."
+        )
+    if case.limits.pipe_class is not None:
+        said.append(
+            f"[limits] pipe_class = {case.limits.pipe_class!r} derates nothing: ratings are taken as the "
+            "string table gives them."
+        )
+    return tuple(said)
