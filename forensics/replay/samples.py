@@ -45,7 +45,7 @@ def prepare(
     above = model.above_rotary(rig.block) * calibration.pipe_above_rotary.value
     hanging = calibration.block_weight.value + calibration.hookload_bias.value + above
     bit = np.maximum(_across(log.time, log.values["bit_depth"]), 1.0)
-    height = _across(log.time, rig.block) if np.isfinite(rig.block).any() else -bit
+    height = _calm(_across(log.time, rig.block) if np.isfinite(rig.block).any() else -bit)
     noise = rig.noise.get("block_position", 0.0)
     direction, travel = _reversals(height, mode == HOLD, max(MIN_REVERSAL, 6.0 * noise))
     gap = np.nan_to_num(rig.hole_depth, nan=np.inf) - bit
@@ -121,6 +121,12 @@ def _across(time: Floats, values: Floats) -> Floats:
     """Read gaps across in a straight line, the ends level."""
     good = np.isfinite(values)
     return values.astype(float) if good.all() else np.interp(time, time[good], values[good])
+
+
+def _calm(height: Floats) -> Floats:
+    """Take lone readings out of a height: one would look like a rush up and down, with all its drag."""
+    calm: Floats = ndimage.median_filter(height, size=3, mode="nearest")
+    return calm
 
 
 def _share(log: TimeLog, height: Floats, model: OffBottomModel) -> Floats:

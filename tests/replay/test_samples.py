@@ -8,7 +8,7 @@ import numpy as np
 import pytest
 
 from forensics.logs.table import TimeLog
-from forensics.replay.samples import _share, _shows_pumps
+from forensics.replay.samples import _calm, _share, _shows_pumps
 
 
 def log_with(**channels) -> TimeLog:
@@ -37,3 +37,12 @@ def test_a_lost_rotary_speed_is_no_standstill():
 )
 def test_pressure_shows_the_pumps_where_flow_is_missing(channels, shown):
     assert _shows_pumps(log_with(**channels)) is shown
+
+
+def test_a_lone_block_reading_is_no_rush_up_and_down():
+    model = SimpleNamespace(pipe=SimpleNamespace(radius=np.array([0.07])))
+    height = np.linspace(10.0, 9.0, 5)
+    off = np.where(np.arange(5) == 2, -10.0, height)
+    share = _share(log_with(rpm=np.full(5, 100.0)), _calm(off), model)
+    assert np.abs(share).max() < 0.5
+    assert np.array_equal(_calm(height), height)
