@@ -90,8 +90,8 @@ def analyse(case: Case, progress: Progress, units: str = "metric") -> Findings:
         made = ready(run.log, run.well, run.rig, calibration, case, model)
         loads = replay(made)
         rig = refine_activity(run.rig, loads.bit_load, run.log)
-    material = Material(run.log, rig, loads, None, calibration, run.well, case)
-    findings = _tell(material, made, progress, units)
+    material = Material(run.log, rig, loads, None, calibration, run.well, case, system=units)
+    findings = _tell(material, made, progress)
     return replace(findings, weights=run.weights, slides=run.slides)
 
 
@@ -118,7 +118,7 @@ def _model(run: Run) -> OffBottomModel:
     return build_model(run.well, run.case, deepest, block_zero(run.rig))
 
 
-def _tell(material: Material, made: Replay, progress: Progress, units: str) -> Findings:
+def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
     """Find and weigh the episodes, and gather all that the run has to tell."""
     with progress.stage("episodes", "finding episodes"):
         material = replace(material, flagged=flag_rows(material))
@@ -132,7 +132,7 @@ def _tell(material: Material, made: Replay, progress: Progress, units: str) -> F
         with progress.stage("imports", "loading the clustering"):
             load_clustering()
     with progress.stage("episodes", "grouping episodes"):
-        told = tell(material, weighed, units)
+        told = tell(material, weighed)
         episodes = tuple(
             replace(e, critical_load=critical_load(made, e.peak, e.peak_md)) if e.kind in PRESSED else e
             for e in told.episodes

@@ -17,6 +17,10 @@ class Kind(enum.StrEnum):
     TORQUE = "torque"
 
 
+#: What the residual of a drag or torque episode is, as a quantity.
+RESIDUAL_QUANTITY = {Kind.DRAG: "force", Kind.TORQUE: "moment"}
+
+
 class State(enum.StrEnum):
     """Worst state of the string in an episode."""
 

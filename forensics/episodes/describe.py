@@ -34,21 +34,19 @@ class Weighed:
     dropped: Mapping[str, int]
 
 
-def describe(material: Material, system: str = "metric") -> Described:
+def describe(material: Material) -> Described:
     """Find episodes, weigh their causes, group them and put the finding in words.
 
     Parameters
     ----------
     material : Material
         One run's log, rig view, loads, draws, calibration, well and case.
-    system : str
-        "metric" or "field": units of the finding's sentences.
 
     Returns
     -------
     Described
     """
-    return tell(material, weigh_episodes(material), system)
+    return tell(material, weigh_episodes(material))
 
 
 def weigh_episodes(material: Material) -> Weighed:
@@ -74,7 +72,7 @@ def weigh_episodes(material: Material) -> Weighed:
     return Weighed(tuple(weighed), dropped)
 
 
-def tell(material: Material, weighed: Weighed, system: str = "metric") -> Described:
+def tell(material: Material, weighed: Weighed) -> Described:
     """Group episodes and put the finding in words.
 
     Parameters
@@ -82,12 +80,10 @@ def tell(material: Material, weighed: Weighed, system: str = "metric") -> Descri
     material : Material
     weighed : Weighed
         The run's episodes.
-    system : str
-        "metric" or "field".
 
     Returns
     -------
     Described
     """
     grouped, families = group(material, weighed.episodes)
-    return Described(grouped, families, headline(material, grouped, system), weighed.dropped)
+    return Described(grouped, families, headline(material, grouped), weighed.dropped)

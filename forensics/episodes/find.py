@@ -7,11 +7,12 @@ from dataclasses import dataclass, replace
 import numpy as np
 from numpy.typing import NDArray
 
-from forensics.episodes import measure, rules
-from forensics.episodes.catalogue import Consequence, Episode, Kind, State
+from forensics.episodes import measure, rules, wording
+from forensics.episodes.catalogue import RESIDUAL_QUANTITY, Consequence, Episode, Kind, State
 from forensics.episodes.consequence import consequence_of
 from forensics.episodes.material import Material
 from forensics.episodes.spans import Span, SpanRule, find_spans
+from forensics.units import show
 
 Floats = NDArray[np.float64]
 Bools = NDArray[np.bool_]
@@ -212,10 +213,11 @@ def _note(material: Material, episode: Episode, consequence: Consequence) -> str
     top, bottom = measure.helical_span(material, Span(episode.first, episode.last))
     if np.isfinite(bottom - top):
         time = float((material.loads.state[rows] == 2).sum() * material.log.interval)
-        said.append(f"helical from {top:.0f} to {bottom:.0f} m, {time:.0f} s in all")
+        said.append(f"helical from {wording.depths(top, bottom, material.system)}, {time:.0f} s in all")
     if episode.peak_residual is not None:
-        unit = "kN" if episode.kind is Kind.DRAG else "kN.m"
-        said.append(f"{episode.peak_residual.value / 1e3:+.1f} {unit} against the model")
+        quantity = RESIDUAL_QUANTITY[episode.kind]
+        size = show(episode.peak_residual.value, quantity, material.system)
+        said.append(f"{size if size.startswith('-') else '+' + size} against the model")
     if consequence is Consequence.ROTATED_BUCKLED:
         said.append(f"about {_revolutions(material, episode):.0f} revolutions while helical")
     return "; ".join(said)

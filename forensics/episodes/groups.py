@@ -8,8 +8,10 @@ from dataclasses import dataclass, replace
 import numpy as np
 from numpy.typing import NDArray
 
-from forensics.episodes.catalogue import Consequence, Episode, Family, Kind, State
+from forensics.episodes import wording
+from forensics.episodes.catalogue import RESIDUAL_QUANTITY, Consequence, Episode, Family, Kind, State
 from forensics.episodes.material import Material
+from forensics.units import display_unit
 
 Floats = NDArray[np.float64]
 Ints = NDArray[np.int64]
@@ -97,13 +99,14 @@ def group(
     labels = {e.id: ROUTINE for e in episodes if is_routine(e)}
     if len(telling) <= SINGLY:
         labels |= {e.id: rule_label(e) for e in telling}
-        families = _families_by_rule(labels, episodes)
+        families = _families_by_rule(labels, episodes, material.system)
     else:
         found, stability = _cluster(_features(material, telling).scaled)
-        names = _names(telling, found)
+        names = _names(telling, found, material.system)
         labels |= {e.id: names[k] for e, k in zip(telling, found.tolist(), strict=True)}
-        families = _families_by_likeness(names, telling, found, stability)
-        families += _families_by_rule({i: n for i, n in labels.items() if n == ROUTINE}, episodes)
+        families = _families_by_likeness(names, telling, found, stability, material.system)
+        routine = {i: n for i, n in labels.items() if n == ROUTINE}
+        families += _families_by_rule(routine, episodes, material.system)
     return tuple(replace(e, family=labels[e.id]) for e in episodes), families
 
 
@@ -130,7 +133,9 @@ def rule_label(episode: Episode) -> str:
     return f"{what} {DOING.get(episode.activity, DOING['unknown'])}"
 
 
-def _families_by_rule(labels: dict[str, str], episodes: tuple[Episode, ...]) -> tuple[Family, ...]:
+def _families_by_rule(
+    labels: dict[str, str], episodes: tuple[Episode, ...], system: str
+) -> tuple[Family, ...]:
     """One family a label; stability has no meaning here."""
     members: dict[str, list[Episode]] = {}
     for episode in episodes:
@@ -138,30 +143,33 @@ def _families_by_rule(labels: dict[str, str], episodes: tuple[Episode, ...]) -> 
             members.setdefault(labels[episode.id], []).append(episode)
     order = sorted(members, key=lambda name: (name == ROUTINE, -len(members[name]), name))
     return tuple(
-        Family(name, describe_members(members[name]), tuple(e.id for e in members[name]), float("nan"))
+        Family(
+            name, describe_members(members[name], system), tuple(e.id for e in members[name]), float("nan")
+        )
         for name in order
     )
 
 
 def _families_by_likeness(
-    names: dict[int, str], episodes: list[Episode], found: Ints, stability: dict[int, float]
+    names: dict[int, str], episodes: list[Episode], found: Ints, stability: dict[int, float], system: str
 ) -> tuple[Family, ...]:
     order = sorted(names, key=lambda k: (-int((found == k).sum()), names[k]))
     made = []
     for k in order:
         members = [e for e, label in zip(episodes, found.tolist(), strict=True) if label == k]
-        made.append(
-            Family(names[k], describe_members(members), tuple(e.id for e in members), float(stability[k]))
-        )
+        said = describe_members(members, system)
+        made.append(Family(names[k], said, tuple(e.id for e in members), float(stability[k])))
     return tuple(made)
 
 
-def describe_members(members: list[Episode]) -> str:
+def describe_members(members: list[Episode], system: str = "metric") -> str:
     """Say in plain words what a group's members share.
 
     Parameters
     ----------
     members : list of Episode
+    system : str
+        "metric" or "field".
 
     Returns
     -------
@@ -169,14 +177,15 @@ def describe_members(members: list[Episode]) -> str:
     """
     said = [_shared(Counter(rule_label(e) for e in members), len(members))]
     said.append(_range("lasting", [e.duration / 60.0 for e in members], "min", 1))
-    said.append(_range("peak at", [e.peak_md for e in members], "m", 0))
+    said.append(_range("peak at", *_scaled([e.peak_md for e in members], "length", system), 0))
     ratios = [e.peak_load_ratio.value for e in members if e.kind in (Kind.BUCKLING, Kind.LOCKUP)]
     said.append(_range("load ratio", ratios, "", 2))
-    said.append(_range("lost weight", [e.lost_weight.value / 1e3 for e in members], "kN", 0))
-    residuals = [e for e in members if e.peak_residual is not None]
-    for kind, unit in ((Kind.DRAG, "kN"), (Kind.TORQUE, "kN.m")):
-        values = [e.peak_residual.value / 1e3 for e in residuals if e.kind is kind and e.peak_residual]
-        said.append(_range(f"{kind.value} against the model", values, unit, 0))
+    lost = _scaled([e.lost_weight.value for e in members], "force", system)
+    said.append(_range("lost weight", *lost, _places(lost[0])))
+    for kind, quantity in RESIDUAL_QUANTITY.items():
+        values = [e.peak_residual.value for e in members if e.kind is kind and e.peak_residual is not None]
+        residuals = _scaled(values, quantity, system)
+        said.append(_range(f"{kind.value} against the model", *residuals, _places(residuals[0])))
     return "; ".join(part for part in said if part)
 
 
@@ -187,6 +196,16 @@ def _shared(counts: Counter[str], total: int) -> str:
         return f"all {first}" if total > 1 else first
     others = ", ".join(f"{n} {name}" for name, n in rest[:3])
     return f"{number} of {total} {first}; {others}"
+
+
+def _scaled(values: list[float], quantity: str, system: str) -> tuple[list[float], str]:
+    """Values in the unit they are shown in, and its label."""
+    label, scale = display_unit(quantity, system)
+    return [value / scale for value in values], label
+
+
+def _places(values: list[float]) -> int:
+    return 0 if max((abs(v) for v in values if np.isfinite(v)), default=0.0) >= 10.0 else 1
 
 
 def _range(name: str, values: list[float], unit: str, places: int) -> str:
@@ -278,7 +297,7 @@ def _agreements(labels: Ints, again: Ints) -> dict[int, float]:
     return result
 
 
-def _names(episodes: list[Episode], found: Ints) -> dict[int, str]:
+def _names(episodes: list[Episode], found: Ints, system: str) -> dict[int, str]:
     """Name each group after what most of its members are; alike names are told apart by depth or length."""
     names: dict[int, str] = {}
     for k in np.unique(found).tolist():
@@ -291,5 +310,5 @@ def _names(episodes: list[Episode], found: Ints) -> dict[int, str]:
         )
         for number, k in enumerate(alike, 1):
             depth = np.median([e.bottom_md for e, m in zip(episodes, found, strict=True) if m == k])
-            names[k] = f"{name} ({number}, near {depth:.0f} m)"
+            names[k] = f"{name} ({number}, near {wording.depth(depth, system)})"
     return names

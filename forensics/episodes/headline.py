@@ -7,7 +7,7 @@ from collections import Counter
 import numpy as np
 
 from forensics.episodes import wording
-from forensics.episodes.catalogue import Consequence, Episode, Headline, Kind, State
+from forensics.episodes.catalogue import RESIDUAL_QUANTITY, Consequence, Episode, Headline, Kind, State
 from forensics.episodes.causes.names import Cause
 from forensics.episodes.causes.weigh import UNTOLD
 from forensics.episodes.groups import DOING, is_routine, rule_label
@@ -40,7 +40,7 @@ GRAVITY = {
 }
 
 
-def headline(material: Material, episodes: tuple[Episode, ...], system: str = "metric") -> Headline:
+def headline(material: Material, episodes: tuple[Episode, ...]) -> Headline:
     """Put the finding in words.
 
     Parameters
@@ -48,8 +48,6 @@ def headline(material: Material, episodes: tuple[Episode, ...], system: str = "m
     material : Material
     episodes : tuple of Episode
         With causes.
-    system : str
-        "metric" or "field": units of the sentences.
 
     Returns
     -------
@@ -57,6 +55,7 @@ def headline(material: Material, episodes: tuple[Episode, ...], system: str = "m
         One sentence, its confidence, the main episodes, and what the data can't tell. Routine running is
         counted in the details and kept out of the sentence.
     """
+    system = material.system
     main = sorted((e for e in episodes if not is_routine(e)), key=gravity, reverse=True)
     loaded = bool(main) and main[0].kind in (Kind.BUCKLING, Kind.LOCKUP)
     if loaded:
@@ -160,7 +159,7 @@ def _dragging(material: Material, main: list[Episode], system: str) -> str:
     told = " and ".join(
         wording.times(counts[k], f"{k.value} episode") for k in (Kind.DRAG, Kind.TORQUE) if counts[k]
     )
-    quantity = "force" if worst.kind is Kind.DRAG else "moment"
+    quantity = RESIDUAL_QUANTITY[worst.kind]
     peak = worst.peak_residual
     text = f"No buckling or lockup that mattered, but {told}"
     if peak is not None:
@@ -228,8 +227,7 @@ def _details(
         if np.isfinite(episode.lost_weight.value):
             line += f", lost weight {wording.size(episode.lost_weight, 'force', system)}"
         if episode.peak_residual is not None:
-            quantity = "force" if episode.kind is Kind.DRAG else "moment"
-            line += f", {_beyond(episode.peak_residual, quantity, system)}"
+            line += f", {_beyond(episode.peak_residual, RESIDUAL_QUANTITY[episode.kind], system)}"
         if np.isfinite(episode.probability):
             line += f", probability {episode.probability:.2f}"
         if episode.cause:

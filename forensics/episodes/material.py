@@ -38,7 +38,8 @@ class Material:
     """One run's log, loads and calibration, as the episode rules need them.
 
     `draws` is None where the replay was not repeated; `flagged` is what the rules flag on these loads, where
-    somebody has worked it out before (see `find.flag_rows`).
+    somebody has worked it out before (see `find.flag_rows`); `system`, "metric" or "field", is what
+    sentences about it are worded in.
     """
 
     log: TimeLog
@@ -49,6 +50,7 @@ class Material:
     well: Well
     case: Case
     flagged: Flagged | None = None
+    system: str = "metric"
 
     @property
     def time(self) -> Floats:

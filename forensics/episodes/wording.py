@@ -3,28 +3,12 @@
 from __future__ import annotations
 
 import datetime as dt
-import re
-import zoneinfo
 
 import numpy as np
 
 from forensics import units
 from forensics.estimate import Estimate
-
-_OFFSET = re.compile(r"^(?:UTC|GMT)?\s*([+-])(\d{1,2}):?(\d{2})?$")
-
-
-def zone(name: str) -> dt.tzinfo:
-    """Find a time zone by IANA name or offset; UTC where the name says nothing."""
-    text = name.strip()
-    offset = _OFFSET.match(text.upper())
-    if offset:
-        sign = -1 if offset[1] == "-" else 1
-        return dt.timezone(sign * dt.timedelta(hours=int(offset[2]), minutes=int(offset[3] or 0)))
-    try:
-        return zoneinfo.ZoneInfo(text or "UTC")
-    except (zoneinfo.ZoneInfoNotFoundError, ValueError):
-        return dt.UTC
+from forensics.logs.zone import tzinfo_of
 
 
 def period(start: float, end: float, timezone: str) -> str:
@@ -40,7 +24,7 @@ def period(start: float, end: float, timezone: str) -> str:
     -------
     str
     """
-    tz = zone(timezone)
+    tz = tzinfo_of(timezone)
     first, last = dt.datetime.fromtimestamp(start, tz), dt.datetime.fromtimestamp(end, tz)
     if first.date() == last.date():
         return f"on {first:%Y-%m-%d} from {first:%H:%M:%S} to {last:%H:%M:%S}"

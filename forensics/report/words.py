@@ -4,14 +4,14 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
-from datetime import UTC, datetime, timedelta, timezone, tzinfo
+from datetime import datetime, tzinfo
 from functools import cached_property
-from zoneinfo import ZoneInfo
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from forensics.estimate import Estimate
+from forensics.logs.zone import tzinfo_of
 from forensics.units import display_unit
 
 UNKNOWN = "not known"
@@ -31,24 +31,6 @@ _LABELS = {
 }
 # Contact force per length: the registry shows weights per length as masses, which a wall force is not.
 _CONTACT = {"metric": ("kN/m", 1e3), "field": ("lbf/ft", 14.593902937)}
-
-
-def zone_of(text: str) -> tzinfo:
-    """Time zone from an IANA name or an offset such as "+02:00".
-
-    Examples
-    --------
-    >>> zone_of("-05:30").utcoffset(None) == timedelta(hours=-5.5)
-    True
-    """
-    word = text.strip()
-    if word.upper() in {"", "UTC", "Z"}:
-        return UTC
-    if word[0] in "+-" + MINUS:
-        digits = word[1:].replace(":", "").ljust(4, "0")
-        span = timedelta(hours=int(digits[:2]), minutes=int(digits[2:4]))
-        return timezone(span if word[0] == "+" else -span)
-    return ZoneInfo(word)
 
 
 def plain(name: str) -> str:
@@ -133,7 +115,7 @@ class Show:
     @cached_property
     def zone(self) -> tzinfo:
         """The zone as an object."""
-        return zone_of(self.timezone)
+        return tzinfo_of(self.timezone)
 
     def unit(self, quantity: str) -> str:
         """Label of the unit a quantity is shown in; empty for a plain number."""

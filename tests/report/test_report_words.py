@@ -12,7 +12,7 @@ from forensics.episodes.groups import is_routine
 from forensics.estimate import Estimate
 from forensics.report import derived
 from forensics.report.scene import main_episodes
-from forensics.report.words import THIN, Show, count, duration, fixed, zone_of
+from forensics.report.words import THIN, Show, count, duration, fixed
 
 METRIC = Show("metric", "Europe/Oslo")
 
@@ -66,7 +66,7 @@ def test_times_follow_summer_time():
     ("text", "hours"), [("UTC", 0.0), ("Z", 0.0), ("+02", 2.0), ("+0530", 5.5), ("-07:00", -7.0)]
 )
 def test_zones(text, hours):
-    assert zone_of(text).utcoffset(None).total_seconds() == hours * 3600
+    assert Show("metric", text).zone.utcoffset(None).total_seconds() == hours * 3600
 
 
 def test_count():

@@ -16,6 +16,7 @@ import numpy as np
 from forensics.episodes.catalogue import Kind
 from forensics.episodes.causes.names import Cause
 from forensics.episodes.causes.tells import Tells
+from forensics.units import show
 
 TRADE = "trade rule, from memory"
 MECHANICS = "mechanics"
@@ -25,7 +26,10 @@ C = Cause
 
 @dataclass(frozen=True)
 class Sign:
-    """One sign: how it is read, what it says when seen, and what when its contrary is seen."""
+    """One sign: how it is read, what it says when seen, and what when its contrary is seen.
+
+    `amount`, a quantity and how to read it, goes where `text` has a pair of braces, in the reader's unit.
+    """
 
     name: str
     strength: Callable[[Tells], float]
@@ -34,6 +38,14 @@ class Sign:
     contrary: Mapping[Cause, float] = field(default_factory=dict)
     kinds: tuple[Kind, ...] = tuple(Kind)
     origin: str = TRADE
+    amount: tuple[str, Callable[[Tells], float]] | None = None
+
+    def words(self, tells: Tells, system: str) -> str:
+        """Say what the measurements show, in "metric" or "field" units."""
+        if self.amount is None:
+            return self.text(tells)
+        quantity, take = self.amount
+        return self.text(tells).format(show(take(tells), quantity, system))
 
 
 def graded(value: float, none: float, full: float) -> float:
@@ -211,36 +223,38 @@ SIGNS: tuple[Sign, ...] = (
     Sign(
         "onset",
         lambda t: graded(t.onset, 12.0, 2.0),
-        lambda t: f"the drag came up over {t.onset:.1f} m of bit travel",
+        lambda _: "the drag came up over {} of bit travel",
         {C.HANG_UP: 1.0, C.PACK_OFF: 0.7, C.STICKING: 0.7, C.FRICTION: -1.0, C.CLEANING: -0.3},
         {C.HANG_UP: -1.0, C.STICKING: -1.0, C.PACK_OFF: -0.4, C.CLEANING: 0.3},
         (Kind.DRAG,),
+        amount=("length", lambda t: t.onset),
     ),
     Sign(
         "length of hole",
         lambda t: graded(t.length, 20.0, 100.0),
-        lambda t: f"it lasted over {t.length:.0f} m of bit travel",
+        lambda _: "it lasted over {} of bit travel",
         {C.FRICTION: 0.4, C.CLEANING: 0.4, C.HANG_UP: -2.0, C.STICKING: -2.0, C.PACK_OFF: -1.0},
         {C.FRICTION: -0.4, C.CLEANING: -0.4, C.HANG_UP: 0.6, C.STICKING: 0.6, C.PACK_OFF: 0.6},
         (Kind.DRAG,),
+        amount=("length", lambda t: t.length),
     ),
     Sign(
         "near the shoe",
         lambda t: graded(t.shoe, 40.0, 10.0),
-        lambda t: f"the bit was {t.shoe:.0f} m from the shoe",
+        lambda _: "the bit was {} from the shoe",
         {C.HANG_UP: 1.0},
         {C.HANG_UP: -0.2},
         DRAGS,
+        amount=("length", lambda t: t.shoe),
     ),
     Sign(
         "dogleg at the bit",
         lambda t: graded(t.dogleg, np.radians(2.5) / 30.0, np.radians(5.0) / 30.0),
-        lambda t: (
-            f"the hole turns by up to {np.degrees(t.dogleg) * 30.0:.1f} deg/30 m over the 30 m above the bit"
-        ),
+        lambda _: "the hole turns by up to {} near the bit",
         {C.TORTUOSITY: 0.7, C.HANG_UP: 0.4},
         {C.TORTUOSITY: -0.4, C.HANG_UP: -0.3},
         (Kind.DRAG, Kind.TORQUE),
+        amount=("angle_per_length", lambda t: t.dogleg),
     ),
     Sign(
         "how it ended",
@@ -253,9 +267,10 @@ SIGNS: tuple[Sign, ...] = (
     Sign(
         "hole where cuttings settle",
         lambda t: graded(t.bed, 0.0, 200.0),
-        lambda t: f"{t.bed:.0f} m of open hole stand at 40 to 65 degrees",
+        lambda _: "{} of open hole stand at 40 to 65 degrees",
         {C.CLEANING: 0.4},
         {C.CLEANING: -0.4},
         (Kind.DRAG, Kind.TORQUE),
+        amount=("length", lambda t: t.bed),
     ),
 )

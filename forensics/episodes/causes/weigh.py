@@ -38,11 +38,14 @@ def weigh(material: Material, signals: Signals, episode: Episode) -> tuple[str, 
     views : tuple of CauseView
         All causes, likeliest first, with the evidence for and against each.
     """
-    views = rank(episode.kind, measure_tells(material, signals, episode), episode.probability)
+    tells = measure_tells(material, signals, episode)
+    views = rank(episode.kind, tells, episode.probability, material.system)
     return name_cause(views), views
 
 
-def rank(kind: Kind, tells: Tells, probability: float = float("nan")) -> tuple[CauseView, ...]:
+def rank(
+    kind: Kind, tells: Tells, probability: float = float("nan"), system: str = "metric"
+) -> tuple[CauseView, ...]:
     """Rank causes on measurements.
 
     Parameters
@@ -51,6 +54,8 @@ def rank(kind: Kind, tells: Tells, probability: float = float("nan")) -> tuple[C
     tells : Tells
     probability : float
         That the episode's own rule holds over the draws.
+    system : str
+        "metric" or "field": what the evidence is worded in.
 
     Returns
     -------
@@ -69,7 +74,8 @@ def rank(kind: Kind, tells: Tells, probability: float = float("nan")) -> tuple[C
         weights = sign.seen if strength > 0.0 else sign.contrary
         for cause, weight in weights.items():
             if weight:
-                item = Evidence(sign.name, sign.text(tells), float(weight * abs(strength)), sign.origin)
+                words = sign.words(tells, system)
+                item = Evidence(sign.name, words, float(weight * abs(strength)), sign.origin)
                 evidence[cause].append(item)
     scores = np.array(
         [PRIOR[kind][cause] + SOFTEN * sum(e.weight for e in evidence[cause]) for cause in Cause]
