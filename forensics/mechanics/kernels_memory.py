@@ -49,10 +49,12 @@ def march_down(
     tension = tension_top
     kept[place.top + 1] = tension
     slope = 0.0
+    least = min(tension, 0.0)
     for j in range(place.top, -1, -1):
         length = min(pipe.x[j + 1], place.bit) - pipe.x[j]
         i = max(place.first - ((pipe.node[j] + pipe.node[j + 1]) >> 1), 0)
         weight = pipe.weight[j] * place.scale
+        least -= weight * length
         middle = tension + 0.5 * length * slope
         force = contact(middle, weight, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i])
         if middle < 0.0:
@@ -61,7 +63,8 @@ def march_down(
             if memory.state[j] == 2:
                 force += middle * middle * criteria.at[criteria.kind[j], i, GIVE]
         slope = -weight * hole.cos_i[i] + rub * mu[i] * force
-        tension += slope * length
+        # nothing but the pipe above presses: without this a helix marched against its motion runs away
+        tension = max(tension + slope * length, least)
         if bounded and (tension - kept[j]) * rub >= 0.0:
             memory.visits[0] += place.top - j + 1
             return j + 1

@@ -182,3 +182,17 @@ def test_a_partial_pick_up_keeps_what_is_locked_in_below():
     assert found.bit_load[59] > 10e3
     assert found.bit_load[79] == pytest.approx(found.bit_load[59])
     assert found.reach[79] < 3400.0
+
+
+def test_a_march_against_the_motion_stays_within_the_weight_above():
+    slim = Component("slim", "drillpipe", 9000.0, 0.089, 0.07, 200.0, 0.12)
+    well = one_pipe_well(math.pi / 2, 3000.0, slim)
+    model = build_model(well, case_for(), 3000.0)
+    at = model.setting(MU, MU)
+    # a share of friction that holds up and not down: helices would feed on themselves to infinity
+    samples = rows([-200e3] * 3, [-1] * 3, mode=np.full(3, TURN, dtype=np.int8), share=np.full(3, -0.8))
+    found = go(at, samples, NEVER, fresh(model))
+    most = 200e3 + 1.001 * float(at.pipe.weight[0]) * 3000.0
+    assert np.isfinite(found.bit_load).all()
+    assert (found.bit_load <= most).all()
+    assert np.isfinite(found.ratio).all()
