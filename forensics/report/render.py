@@ -17,6 +17,7 @@ from PIL import Image
 
 from forensics.report.describe import describe
 from forensics.report.elements import Element, Part, Picture, Report, Section
+from forensics.report.figures.spare import hand_back, spare_sheets
 from forensics.report.figures.style import house_style
 
 if TYPE_CHECKING:
@@ -61,7 +62,7 @@ def render(findings: Findings, units: str = "metric") -> str:
 def render_report(report: Report) -> str:
     """Render content elements to HTML, figures numbered in order."""
     counter = itertools.count(1)
-    with house_style():
+    with house_style(), spare_sheets():
         sections = [_draw_section(section, counter) for section in report.sections]
     return _environment().get_template("report.html.j2").render(report=report, sections=sections)
 
@@ -74,11 +75,9 @@ def png(figure: Figure) -> bytes:
     Charts have few hues, so a palette of 256 loses nothing an eye can see and makes the file a third as big
     and faster to write. Pillow comes with matplotlib.
     """
-    canvas: Any = FigureCanvasAgg(figure)
+    canvas: Any = figure.canvas if isinstance(figure.canvas, FigureCanvasAgg) else FigureCanvasAgg(figure)
     canvas.draw()
     picture = Image.fromarray(np.asarray(canvas.buffer_rgba())).convert("RGB")
-    # The figure is a knot of cycles that lives until the collector comes by; its pixels need not.
-    del canvas.renderer
     small = picture.quantize(256, method=Image.Quantize.FASTOCTREE, dither=Image.Dither.NONE)
     # The octree rounds paper to 254; put pure white back.
     palette = [255 if level >= 253 else level for level in small.getpalette() or []]
@@ -110,6 +109,7 @@ def _draw(picture: Picture, number: int) -> Drawn:
     figure = picture.draw()
     data = base64.b64encode(png(figure)).decode("ascii")
     width, height = (round(side * figure.dpi * _PIXELS_SHOWN) for side in figure.get_size_inches())
+    hand_back(figure)
     return Drawn(number, data, width, height, picture.caption, picture.alt)
 
 

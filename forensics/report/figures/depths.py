@@ -13,6 +13,7 @@ from forensics.report import derived
 from forensics.report.figures import lanes, style
 from forensics.report.figures.clock import time_axis
 from forensics.report.figures.decimate import runs, thin
+from forensics.report.figures.spare import lay_out
 from forensics.report.scene import Scene
 
 Floats = NDArray[np.float64]
@@ -113,10 +114,10 @@ def _hole_marks(ax: Axes, scene: Scene) -> None:
 @style.styled
 def load_profile(scene: Scene, profile: Profile, episode: Episode) -> Figure:
     """Draw load against thresholds along the hole: the whole string, the place in trouble, contact force."""
-    figure = style.sheet(10.6, 5.0)
-    width, height = figure.get_size_inches()
-    boxes = ((0.95, 3.6), (5.3, 2.9), (8.75, 1.6))
-    axes = [figure.add_axes((x / width, 0.62 / height, w / width, 3.85 / height)) for x, w in boxes]
+    width, height = 10.6, 5.0
+    spans = ((0.95, 3.6), (5.3, 2.9), (8.75, 1.6))
+    places = [(x / width, 0.62 / height, w / width, 3.85 / height) for x, w in spans]
+    figure, axes = lay_out((width, height), places)
     show = scene.show
     unit = show.unit("length")
     full = (0.0, float(np.nanmax(profile.md)))

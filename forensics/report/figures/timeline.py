@@ -15,6 +15,7 @@ from forensics.episodes.catalogue import Episode
 from forensics.report.figures import lanes, style
 from forensics.report.figures.clock import time_axis
 from forensics.report.figures.decimate import POINTS, thin
+from forensics.report.figures.spare import lay_out
 from forensics.report.scene import Scene
 
 Floats = NDArray[np.float64]
@@ -159,8 +160,8 @@ def moment_strip(scene: Scene, episode: Episode) -> Figure:
     n_lanes = max(len(lanes.activity_lanes(found.rig.activity[rows])), 1)
     heights = [*(t.height for t in tracks), 0.13 * n_lanes + 0.08]
     edges = (_EDGES[0], _EDGES[1], 0.3, _EDGES[3])
-    figure = style.sheet(10.6, style.stack_height(heights, edges))
-    axes = style.stack(figure, heights, edges)
+    size = (10.6, style.stack_height(heights, edges))
+    figure, axes = lay_out(size, style.boxes(size, heights, edges))
     start, end = _span(time)
     _draw_tracks(axes[:-1], tracks, (time, found.log.interval, start), scene)
     lanes.draw_activity(axes[-1], time, found.rig.activity[rows], found.log.interval)
