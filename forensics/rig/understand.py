@@ -22,6 +22,7 @@ from forensics.rig.sheaves import hook_factor
 from forensics.rig.signals import Signals, block_speed, direction_of, read_signals
 from forensics.rig.tare import list_tares, modelled_reference, stand_spans, weight_on_bit
 from forensics.rig.view import RigView
+from forensics.units import show_both
 from forensics.well.model import Well
 
 __all__ = ["refine_activity", "understand_rig"]
@@ -194,14 +195,16 @@ def _can_not_tell(facts: Facts, judged: Judged, weight: Estimate, slips: Slips) 
     seen = block_weight(slips, facts.signals, facts.moves.hookload, RigSettings())
     if seen is not None and abs(seen.value - weight.value) > max(_DISAGREES * abs(seen.value), _BOTHERS):
         notes.append(
-            f"In slips the hookload reads {seen.value / 1e3:.0f} kN, where the block weight is taken as "
-            f"{weight.value / 1e3:.0f} kN ({weight.source}): bias and block weight can't be told apart."
+            f"In slips the hookload reads {show_both(seen.value, 'force')}, where the block weight is taken "
+            f"as {show_both(weight.value, 'force')} from {weight.source}: bias and block weight can't be "
+            "told apart."
         )
     surveyed, deepest = float(facts.well.trajectory.md[-1]), float(facts.signals.bit.max(initial=0.0))
     if deepest - surveyed > _UNSURVEYED:
         notes.append(
-            f"The survey ends at {surveyed:.0f} m and the bit got to {deepest:.0f} m: the hole's direction "
-            "in between is not known, the last one surveyed was held."
+            f"The survey ends at {show_both(surveyed, 'length')} and the bit got to "
+            f"{show_both(deepest, 'length')}: the hole's direction in between is not known, the last one "
+            "surveyed was held."
         )
     if facts.log.get("block_position") is None:
         notes.append("No block position: motion is judged by the bit's depth, and in slips not at all.")

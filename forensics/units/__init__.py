@@ -31,6 +31,7 @@ __all__ = [
     "parse_quantity",
     "quantities_of",
     "show",
+    "show_both",
     "spellings",
     "to_si",
 ]
@@ -281,3 +282,14 @@ def show(value: float, quantity: str, system: str = "metric") -> str:
         return "n/a"
     shown = round(value / scale, decimals) + 0.0
     return f"{shown:.{decimals}f} {label}".rstrip()
+
+
+def show_both(value: float, quantity: str) -> str:
+    """Put a value in words in metric and, in brackets, in field units, where the reader's are not known yet.
+
+    Examples
+    --------
+    >>> show_both(290e3, "force")
+    '290.0 kN (65.2 klbf)'
+    """
+    return f"{show(value, quantity)} ({show(value, quantity, 'field')})"
