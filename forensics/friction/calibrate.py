@@ -155,7 +155,7 @@ def _problem(weights: tuple[Reading, ...], model: OffBottom, prior: Prior) -> Pr
     block = np.array([r.block for r in weights], dtype=float)
     known = np.isfinite(block)
     block = np.where(known, block, block[known].mean() if known.any() else 0.0)
-    above = np.asarray(model.above_rotary(block), dtype=float) if known.any() else np.zeros(len(weights))
+    above = model.above_rotary(block, depth) if known.any() else np.zeros(len(weights))
     own = np.array([r.spread / np.sqrt(min(max(r.samples, 1), 10)) for r in weights], dtype=float)
     own = np.where(np.isfinite(own), own, 0.0)
     kinds = tuple(r.kind for r in weights)

@@ -42,7 +42,7 @@ class OffBottom(Protocol):
     def open_length(self, bit_depth: Floats) -> Floats:
         """Length of string in open hole [m]."""
 
-    def above_rotary(self, block: Floats) -> Floats:
+    def above_rotary(self, block: Floats, bit_depth: Floats) -> Floats:
         """Weight of the pipe between rotary and hook [N]."""
 
 

@@ -14,6 +14,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from forensics.units import G
 from forensics.well.model import Well
 from forensics.well.string import Component, buoyed_weight
 
@@ -70,8 +71,9 @@ class PipeGrid:
     weight, ei, ea, clearance_od, radius, stiff_run : ndarray, shape (m,)
         Buoyed weight per length [N/m]; bending and axial stiffness [N.m², N]; contact diameter [m];
         contact radius for torque [m]; length of the run of like stiffness the element is in [m].
-    hanging : float
-        Weight per length of the top pipe in air, full of mud [N/m].
+    ends, hanging : ndarray, shape (components,)
+        Distance of the components' upper ends above the bit [m], the last one without end; their weight per
+        length in air, full of mud [N/m].
     """
 
     x: Floats
@@ -83,7 +85,8 @@ class PipeGrid:
     clearance_od: Floats
     radius: Floats
     stiff_run: Floats
-    hanging: float
+    ends: Floats
+    hanging: Floats
 
 
 def hole_grid(well: Well, depth: float) -> HoleGrid:
@@ -124,7 +127,6 @@ def pipe_grid(well: Well, depth: float, clearance: str = "tool_joint") -> PipeGr
     chosen = [parts[row] for row in rows]
     ei = np.array([part.stiffness for part in chosen])
     lengths = np.diff(edges) * DEPTH_STEP
-    top = parts[-1]
     fill = outside if inside is None else inside
     return PipeGrid(
         x=edges * DEPTH_STEP,
@@ -136,7 +138,8 @@ def pipe_grid(well: Well, depth: float, clearance: str = "tool_joint") -> PipeGr
         clearance_od=np.array([part.contact_diameter(clearance) for part in chosen]),
         radius=np.array([0.5 * part.contact_diameter("tool_joint") for part in chosen]),
         stiff_run=_runs(ei, lengths),
-        hanging=top.weight + fill * 9.80665 * top.inner_area,
+        ends=np.append(well.string.ends[:-1], np.inf),
+        hanging=np.array([part.weight + fill * G * part.inner_area for part in parts]),
     )
 
 
@@ -179,6 +182,30 @@ def _runs(ei: Floats, lengths: Floats) -> Floats:
             runs[start:i] = lengths[start:i].sum()
             start = i
     return runs
+
+
+def weight_in_air(pipe: PipeGrid, bit_depth: Floats, height: Floats) -> Floats:
+    """Weight of the string's pipe between the rotary and a height above it [N], shape (k,).
+
+    Parameters
+    ----------
+    pipe : PipeGrid
+    bit_depth, height : ndarray, shape (k,)
+        [m]
+
+    Notes
+    -----
+    The string is longer than the hole by what stands above the rotary: that piece is the one from
+    `bit_depth` to `bit_depth + height` above the bit, liner first while a liner is being picked up.
+    """
+    starts = np.append(0.0, pipe.ends[:-1])
+    below = np.append(0.0, np.cumsum(pipe.hanging[:-1] * np.diff(starts)))
+
+    def up_to(distance: Floats) -> Floats:
+        row = np.searchsorted(starts, distance, side="right") - 1
+        return below[row] + pipe.hanging[row] * (distance - starts[row])
+
+    return up_to(bit_depth + height) - up_to(bit_depth)
 
 
 def wave_length(ei: Floats, clearance: Floats, weight: Floats) -> Floats:

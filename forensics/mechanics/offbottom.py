@@ -6,7 +6,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from forensics.case import CriteriaSettings
-from forensics.mechanics.grid import HoleGrid, PipeGrid, hole_grid, pipe_grid
+from forensics.mechanics.grid import HoleGrid, PipeGrid, hole_grid, pipe_grid, weight_in_air
 from forensics.mechanics.kernels_judge import Setting
 from forensics.mechanics.kernels_lanes import weigh_lanes
 from forensics.mechanics.kernels_march import torque_up_many
@@ -118,7 +118,8 @@ class OffBottomModel:
         total = np.concatenate([[0.0], np.cumsum(self.hole.open_hole[1:]) * self.hole.step])
         return np.interp(bits, np.arange(len(total)) * self.hole.step, total)
 
-    def above_rotary(self, block: ArrayLike) -> Floats:
-        """Weight of pipe between rotary and hook at block height `block` [m], at full share [N]."""
+    def above_rotary(self, block: ArrayLike, bit_depth: ArrayLike) -> Floats:
+        """Weight of pipe between rotary and hook at block height and bit depth [m], at full share [N]."""
         height = np.atleast_1d(np.asarray(block, dtype=float)) - self.block_zero
-        return self.pipe.hanging * np.maximum(np.nan_to_num(height), 0.0)
+        bits = np.maximum(np.nan_to_num(np.atleast_1d(np.asarray(bit_depth, dtype=float))), 0.0)
+        return weight_in_air(self.pipe, bits, np.maximum(np.nan_to_num(height), 0.0))

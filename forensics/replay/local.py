@@ -74,7 +74,8 @@ def string_part(readings: list[Reading], calibration: Calibration, model: OffBot
     """Hookload of the readings with block, bias and pipe above the rotary taken off [N], shape (k,)."""
     block = np.array([r.block for r in readings])
     value = np.array([r.value for r in readings])
-    above = model.above_rotary(block) * calibration.pipe_above_rotary.value
+    depth = np.array([r.bit_depth for r in readings])
+    above = model.above_rotary(block, depth) * calibration.pipe_above_rotary.value
     return value - calibration.block_weight.value - calibration.hookload_bias.value - above
 
 

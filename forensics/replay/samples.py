@@ -42,9 +42,9 @@ def prepare(
     """Make the replay's samples from the log and the rig view, one a row."""
     mode = _mode(log, rig)
     hookload = _smooth(rig.hookload, mode != HOLD, log.interval)
-    above = model.above_rotary(rig.block) * calibration.pipe_above_rotary.value
-    hanging = calibration.block_weight.value + calibration.hookload_bias.value + above
     bit = np.maximum(_across(log.time, log.values["bit_depth"]), 1.0)
+    above = model.above_rotary(rig.block, bit) * calibration.pipe_above_rotary.value
+    hanging = calibration.block_weight.value + calibration.hookload_bias.value + above
     height = _calm(_across(log.time, rig.block) if np.isfinite(rig.block).any() else -bit)
     noise = rig.noise.get("block_position", 0.0)
     direction, travel = _reversals(height, mode == HOLD, max(MIN_REVERSAL, 6.0 * noise))

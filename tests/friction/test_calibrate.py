@@ -63,8 +63,9 @@ class PlainString:
         del cased, open_
         return np.zeros(len(np.atleast_1d(bit_depth)))
 
-    def above_rotary(self, block):
+    def above_rotary(self, block, bit_depth):
         """Pipe in the derrick [N]."""
+        del bit_depth
         return 300.0 * np.asarray(block)
 
 
@@ -104,7 +105,7 @@ def make_readings(
     for kind in kinds:
         weight = truth.string_weight(kind, depths, *factors)
         height = rng.uniform(5.0, 30.0, len(depths))
-        value = block + truth.above_rotary(height) + weight + rng.normal(0.0, noise, len(depths))
+        value = block + truth.above_rotary(height, depths) + weight + rng.normal(0.0, noise, len(depths))
         made += [
             Reading(kind, 1000.0 * i, 1000.0 * i + 30.0, d, h, v, 700.0, 30, pumping=False)
             for i, (d, h, v) in enumerate(zip(depths, height, value, strict=True))

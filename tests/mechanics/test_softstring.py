@@ -63,6 +63,18 @@ def test_azimuth_of_a_plane_well_does_not_matter(azimuth):
     assert np.allclose(one, other, rtol=1e-9)
 
 
+def test_what_stands_above_the_rotary_is_the_piece_of_string_that_follows():
+    """In air and full of mud, component by component; counted by hand."""
+    model = OffBottomModel(build_well(), 3400.0, block_zero=1.5)
+    parts = model.well.string.components
+    hanging = [part.weight + 1200.0 * 9.80665 * part.inner_area for part in parts]
+    # the bit at 30 m: 6.5 m of collar left below 36.5 m, then heavy pipe
+    exact = 6.5 * hanging[2] + 21.5 * hanging[3]
+    assert model.above_rotary(29.5, 30.0)[0] == pytest.approx(exact, rel=1e-9)
+    assert model.above_rotary([1.5, np.nan], [500.0, 500.0]).tolist() == [0.0, 0.0]
+    assert model.above_rotary(11.5, 2000.0)[0] == pytest.approx(10.0 * hanging[-1], rel=1e-9)
+
+
 def test_drag_grows_with_friction_and_rotation_takes_it_away():
     model = OffBottomModel(build_well(), 3400.0)
     factors = np.linspace(0.0, 0.5, 11)
