@@ -126,6 +126,10 @@ def learn_plateau(signals: Signals, string_weight: Floats, stand_weight: float) 
     # The string can be stuck while the block stretches it: such readings stand high, slips stand low.
     weight = float(np.median(string_weight[evidence]))
     low = held[held < np.quantile(held, 0.1) + 0.5 * weight]
+    # A gap over which the block went up for the next stand looks like a block that moves alone.
+    usual = float(np.quantile(signals.hookload[signals.weighed], 0.9))
+    if usual - float(np.median(low)) < _STRING_SHARE * weight:
+        return _low_level(signals, still, string_weight, stand_weight)
     return _plateau_of(low, signals, stand_weight)
 
 

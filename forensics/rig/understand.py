@@ -36,6 +36,10 @@ _UNSURVEYED = 100.0
 # The in-slips reading contradicts the case when off by this share and this much [N].
 _DISAGREES = 0.03
 _BOTHERS = 5e3
+# Quantile of the hookload while turning that is taken for hardly any weight on the bit.
+_LIGHTEST_ON_BIT = 0.98
+# Share of the string's weight that may stand on the bit all the time.
+_NEVER_LIFTED = 0.10
 
 
 def understand_rig(log: TimeLog, well: Well, case: Case) -> RigView:
@@ -111,7 +115,7 @@ def _moves(signals: Signals, slips: Slips, case: Case) -> Moves:
 
 def _from_readings(judged: Judged, facts: Facts) -> Estimate:
     """Block weight as measured less modelled weight, where no reading in slips shows it."""
-    steady, below, moves = judged.steady, facts.below, facts.moves
+    steady, below = judged.steady, facts.below
     turned = steady.of("rotating")
     if len(turned):
         left = turned.value - judged.base[turned.start]
@@ -120,15 +124,31 @@ def _from_readings(judged: Judged, facts: Facts) -> Estimate:
         left = steady.value - judged.base[steady.start]
         words = "moving weights less the model without friction: no in-slips reading"
     else:
-        free = ~moves.slips & ~on_bottom_from(judged.vote)
-        rows = free if free.any() else np.ones(len(below), dtype=bool)
-        left = (moves.hookload - judged.base)[rows]
-        words = "hookload less the model without friction: no in-slips reading"
+        return _from_any_rows(judged, facts)
     left = left[np.isfinite(left)]
     value = float(np.median(left)) if left.size else 0.0
     spread = float(np.quantile(np.abs(left - value), 0.9)) if left.size else 0.0
     half = max(spread, 0.03 * float(np.median(below)), 5e3)
     return Estimate(value, value - half, value + half, words, determined=False, samples=int(left.size))
+
+
+def _from_any_rows(judged: Judged, facts: Facts) -> Estimate:
+    """Block weight where the log has neither a steady weight nor a reading in slips.
+
+    A turning string shows its weight less what stands on the bit, so its highest readings are nearest; one
+    that never turns shows its drag as well. What never left the bit is not seen: it widens the upper side.
+    """
+    out, weight = ~facts.moves.slips, float(np.median(facts.below))
+    left = facts.moves.hookload - judged.base
+    rows, share, how = out & facts.drives.turning & np.isfinite(left), _LIGHTEST_ON_BIT, "while turning"
+    if rows.sum() < noise.LEAST_SAMPLES:
+        rows, share, how = (out if out.any() else ~out) & np.isfinite(left), 0.5, "without friction"
+    value, middle = np.quantile(left[rows], (share, 0.5)).tolist() if rows.any() else (0.0, 0.0)
+    spread = float(np.quantile(np.abs(left[rows] - middle), 0.9)) if rows.any() else 0.0
+    half = max(spread, 0.03 * weight, 5e3)
+    words = f"hookload {how} less the model: neither in-slips nor off-bottom reading"
+    high = value + max(half, _NEVER_LIFTED * weight)
+    return Estimate(value, value - half, high, words, determined=False, samples=int(rows.sum()))
 
 
 def _view(facts: Facts, judged: Judged, weight: Estimate, slips: Slips) -> RigView:

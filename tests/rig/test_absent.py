@@ -1,9 +1,13 @@
 """A channel that is lacking, or holds nothing, is told with what it costs."""
 
+from dataclasses import replace
+
 import numpy as np
 
 from forensics.logs.table import TimeLog
 from forensics.rig.absent import COST, absent_channels, idle_channels
+from forensics.rig.understand import understand_rig
+from forensics.rig.view import Activity
 
 
 def make_log(interval=1.0, **values):
@@ -31,3 +35,21 @@ def test_channels_that_no_load_rests_on_are_named():
     (told,) = idle_channels(make_log(**held))
     assert told.endswith(": downhole_wob.")
     assert idle_channels(make_log(torque=np.ones(3))) == ()
+
+
+def test_a_log_of_drilling_alone_takes_no_gap_for_slips(tools, drilled, well):
+    whole = tools.log(drilled)
+    bored = np.isin(drilled.truth(), (Activity.DRILL_ROTATE, Activity.DRILL_SLIDE))
+    log = replace(
+        whole,
+        time=whole.time[bored],
+        values={name: values[bored] for name, values in whole.values.items()},
+        hookload_logged=whole.hookload_logged[bored],
+        used=whole.used[bored],
+        reason=whole.reason[bored],
+    )
+    view = understand_rig(log, well, tools.case())
+    assert not view.slips.any()
+    assert view.block_weight.low < tools.block < view.block_weight.high
+    assert not view.block_weight.determined
+    assert any("No reading in slips" in note for note in view.can_not_tell)
