@@ -90,8 +90,10 @@ def analyse(case: Case, progress: Progress, units: str = "metric") -> Findings:
         made = ready(run.log, run.well, run.rig, calibration, case, model)
         loads = replay(made)
         rig = refine_activity(run.rig, loads.bit_load, run.log)
-    material = Material(run.log, rig, loads, None, calibration, run.well, case, system=units)
-    findings = _tell(material, made, progress)
+    # Not named here: a second holder would keep alive what the rules work out on it before the draws.
+    findings = _tell(
+        Material(run.log, rig, loads, None, calibration, run.well, case, system=units), made, progress
+    )
     return replace(findings, weights=run.weights, slides=run.slides)
 
 

@@ -19,16 +19,21 @@ if TYPE_CHECKING:
     import pyarrow as pa
 
 KILO = 1e3
+# Rows laid out at a time, each lot a row group of its own: a long run need not be in memory twice.
+ROWS = 2**17
+ALL = slice(None)
 STATES = (State.NONE.value, State.SINUSOIDAL.value, State.HELICAL.value)
 
 
-def history_table(findings: Findings) -> pa.Table:
+def history_table(findings: Findings, rows: slice = ALL) -> pa.Table:
     """Lay out the history of a run in the units and under the names of the contract.
 
     Parameters
     ----------
     findings : Findings
         What the run's analysis found.
+    rows : slice
+        Rows of the log to lay out; all where left out.
 
     Returns
     -------
@@ -38,10 +43,10 @@ def history_table(findings: Findings) -> pa.Table:
     """
     import pyarrow as pa
 
-    columns = _measured(findings) | _reconstructed(findings)
-    used = np.asarray(findings.log.used, dtype=bool)
+    columns = _measured(findings, rows) | _reconstructed(findings, rows)
+    used = np.asarray(findings.log.used[rows], dtype=bool)
     columns["used"] = pa.array(used)
-    columns["reason"] = _words(findings.log.reason, [r.words for r in Reason], missing=used)
+    columns["reason"] = _words(findings.log.reason[rows], [r.words for r in Reason], missing=used)
     return pa.table({name: columns[name] for name in COLUMNS})
 
 
@@ -58,7 +63,12 @@ def write_history(findings: Findings, path: Path) -> None:
     import pyarrow.parquet as pq
 
     # Measured numbers hardly repeat: looking for repeats in them takes time and makes the file larger.
-    pq.write_table(history_table(findings), path, compression="zstd", use_dictionary=list(WORDS))
+    options = {"compression": "zstd", "use_dictionary": list(WORDS)}
+    first = history_table(findings, slice(0, ROWS))
+    with pq.ParquetWriter(path, first.schema, **options) as writer:
+        writer.write_table(first)
+        for start in range(ROWS, len(findings.log), ROWS):
+            writer.write_table(history_table(findings, slice(start, start + ROWS)))
 
 
 WORDS = ("activity", "state", "basis", "reason")
@@ -86,38 +96,41 @@ COLUMNS = (
 )
 
 
-def _measured(findings: Findings) -> dict[str, pa.Array]:
+def _measured(findings: Findings, rows: slice) -> dict[str, pa.Array]:
     import pyarrow as pa
 
     log, rig = findings.log, findings.rig
-    absent = np.full(len(log), np.nan)
     return {
-        "time": pa.array(np.round(log.time * 1e6).astype(np.int64)).cast(pa.timestamp("us", tz="UTC")),
-        "bit_depth_m": _numbers(log.values["bit_depth"]),
-        "hole_depth_m": _numbers(rig.hole_depth),
-        "activity": _words(rig.activity, [a.word for a in Activity]),
-        "hookload_kN": _numbers(rig.hookload, KILO),
-        "hookload_logged_kN": _numbers(log.hookload_logged, KILO),
-        "wob_logged_kN": _numbers(log.values.get("wob", absent), KILO),
-        "wob_surface_kN": _numbers(rig.wob_surface, KILO),
-        "wob_slack_off_ref_kN": _numbers(rig.wob_slack_off, KILO),
+        "time": pa.array(np.round(log.time[rows] * 1e6).astype(np.int64)).cast(pa.timestamp("us", tz="UTC")),
+        "bit_depth_m": _numbers(log.values["bit_depth"][rows]),
+        "hole_depth_m": _numbers(rig.hole_depth[rows]),
+        "activity": _words(rig.activity[rows], [a.word for a in Activity]),
+        "hookload_kN": _numbers(rig.hookload[rows], KILO),
+        "hookload_logged_kN": _numbers(log.hookload_logged[rows], KILO),
+        "wob_logged_kN": _numbers(_or_absent(log.values.get("wob"), log.time)[rows], KILO),
+        "wob_surface_kN": _numbers(rig.wob_surface[rows], KILO),
+        "wob_slack_off_ref_kN": _numbers(rig.wob_slack_off[rows], KILO),
     }
 
 
-def _reconstructed(findings: Findings) -> dict[str, pa.Array]:
+def _reconstructed(findings: Findings, rows: slice) -> dict[str, pa.Array]:
     loads = findings.loads
-    limit = np.full(len(findings.log), np.nan) if loads.bit_load_limit is None else loads.bit_load_limit
+    without = np.isnan(loads.bit_load[rows])
     return {
-        "wob_bit_kN": _numbers(loads.bit_load, KILO),
-        "peak_load_ratio": _numbers(loads.peak_ratio),
-        "peak_md_m": _numbers(loads.peak_md),
-        "state": _words(loads.state, STATES),
-        "reach_md_m": _numbers(loads.reach),
-        "basis": _words(loads.basis, [b.word for b in Basis], missing=np.isnan(loads.bit_load)),
-        "drag_residual_kN": _numbers(loads.drag_residual, KILO),
-        "torque_residual_kNm": _numbers(loads.torque_residual, KILO),
-        "wob_bit_limit_kN": _numbers(limit, KILO),
+        "wob_bit_kN": _numbers(loads.bit_load[rows], KILO),
+        "peak_load_ratio": _numbers(loads.peak_ratio[rows]),
+        "peak_md_m": _numbers(loads.peak_md[rows]),
+        "state": _words(loads.state[rows], STATES),
+        "reach_md_m": _numbers(loads.reach[rows]),
+        "basis": _words(loads.basis[rows], [b.word for b in Basis], missing=without),
+        "drag_residual_kN": _numbers(loads.drag_residual[rows], KILO),
+        "torque_residual_kNm": _numbers(loads.torque_residual[rows], KILO),
+        "wob_bit_limit_kN": _numbers(_or_absent(loads.bit_load_limit, loads.bit_load)[rows], KILO),
     }
+
+
+def _or_absent(values: Floats | None, like: Floats) -> Floats:
+    return np.broadcast_to(np.nan, like.shape) if values is None else values
 
 
 def _numbers(values: Floats, scale: float = 1.0) -> pa.Array:

@@ -84,3 +84,11 @@ def test_strings_are_plain_strings(findings):
 def test_same_findings_give_the_same_bytes(findings, written, tmp_path):
     write_history(findings, tmp_path / "again.parquet")
     assert (tmp_path / "again.parquet").read_bytes() == written.read_bytes()
+
+
+@pytest.mark.parametrize("rows", [1, 3, 4, 5, 6, 7])
+def test_lots_of_rows_make_one_table(findings, tmp_path, monkeypatch, rows):
+    monkeypatch.setattr("forensics.exports.history.ROWS", rows)
+    write_history(findings, tmp_path / "lots.parquet")
+    assert pq.read_table(tmp_path / "lots.parquet").equals(history_table(findings))
+    assert pq.ParquetFile(tmp_path / "lots.parquet").num_row_groups == -(-6 // rows)
