@@ -131,7 +131,7 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
     with progress.stage("episodes", "weighing episodes"):
         weighed = weigh_episodes(material)
     if are_many(weighed.episodes):
-        with progress.stage("imports", "loading the clustering"):
+        with progress.loading("loading the clustering"):
             load_clustering()
     with progress.stage("episodes", "grouping episodes"):
         told = tell(material, weighed)

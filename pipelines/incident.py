@@ -73,7 +73,7 @@ def run(
     if units not in ("metric", "field"):
         raise InputError(f"units are {units!r}; expected 'metric' or 'field'")
     progress = Progress(quiet)
-    with progress.stage("imports", "loading the libraries"):
+    with progress.loading("loading the libraries"):
         from forensics.case import load_case
         from forensics.case.unused import unused_settings
         from pipelines import analysis, results

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import gc
 import sys
 import time
 from collections.abc import Iterator
@@ -50,6 +51,32 @@ class Progress:
             took = time.perf_counter() - began
             self.timings[name] = self.timings.get(name, 0.0) + took
             self._show(f"\r{words} {ending or f'{took:.1f} s'}   \n")
+
+    @contextmanager
+    def loading(self, words: str) -> Iterator[None]:
+        """Time the loading of libraries, as stage "imports", with the collector of cycles out of the way.
+
+        Parameters
+        ----------
+        words : str
+            What the user reads.
+
+        Yields
+        ------
+        None
+
+        Notes
+        -----
+        What a library brings stays for good: to go over it again and again as it grows finds nothing.
+        """
+        working = gc.isenabled()
+        gc.disable()
+        try:
+            with self.stage("imports", words):
+                yield
+        finally:
+            if working:
+                gc.enable()
 
     def _show(self, text: str) -> None:
         if self._shown:

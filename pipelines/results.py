@@ -42,7 +42,7 @@ def write(findings: Findings, folder: Path, system: str, progress: Progress) -> 
     progress : Progress
         Times the stages "imports", "figures" and "exports".
     """
-    with progress.stage("imports", "loading the report"):
+    with progress.loading("loading the report"):
         from forensics.report.render import render
     with progress.stage("figures", "drawing the report"):
         (folder / "report.html").write_text(render(findings, system), encoding="utf-8", newline="\n")

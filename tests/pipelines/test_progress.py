@@ -1,5 +1,6 @@
 """Progress is for people who watch, timings for everybody."""
 
+import gc
 import io
 
 import pytest
@@ -45,3 +46,18 @@ def test_times_of_one_name_add_up():
         with progress.stage("figures", "drawing"):
             pass
     assert list(progress.timings) == ["figures"]
+
+
+@pytest.mark.parametrize("working", [True, False])
+def test_loading_puts_the_collector_back_as_it_was(working):
+    before = gc.isenabled()
+    progress = Progress(quiet=True)
+    try:
+        (gc.enable if working else gc.disable)()
+        with pytest.raises(ImportError), progress.loading("loading"):
+            assert not gc.isenabled()
+            raise ImportError
+        assert gc.isenabled() is working
+    finally:
+        (gc.enable if before else gc.disable)()
+    assert progress.timings["imports"] >= 0.0
