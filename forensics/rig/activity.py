@@ -6,6 +6,7 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
+from scipy.ndimage import maximum_filter1d, minimum_filter1d
 
 from forensics.logs.table import TimeLog
 from forensics.rig import noise
@@ -29,6 +30,10 @@ _TOUCH = 0.3
 _NO_PRESSURE = 0.25
 # Second pass: bit load above this, and above the noise, is on bottom (the contract's rule) [N].
 _REFINE_WEIGHT = 1e3
+# A string hangs still where hookload and block stay within this, or three noises, for so long [N, m, s].
+_STILL_FORCE = 1.5e3
+_STILL_TRAVEL = 0.03
+_STILL_SECONDS = 120.0
 
 
 @dataclass(frozen=True)
@@ -259,7 +264,9 @@ def refine_activity(rig: RigView, bit_load: Floats, log: TimeLog) -> RigView:
     Notes
     -----
     Only rows that the first pass could not settle by themselves are looked at: out of slips, not turning,
-    and no vote of depth, weight or pressure. Elsewhere what was measured is the better witness.
+    and no vote of depth, weight or pressure. Elsewhere what was measured is the better witness. A string
+    that hangs quite still with the pumps on has nothing on the bit, whatever friction leaves there in the replay: a
+    loaded bit drills, and the hookload shows it.
     """
     signals = read_signals(log)
     limit = max(_REFINE_WEIGHT, signals.hookload_noise)
@@ -267,12 +274,27 @@ def refine_activity(rig: RigView, bit_load: Floats, log: TimeLog) -> RigView:
     loaded = noise.running_median(np.where(known, bit_load, 0.0), signals.count(SMOOTHING)) > limit
     unsettled = np.ones(len(log), dtype=bool) if rig.bottom_vote is None else rig.bottom_vote == 0
     open_rows = known & unsettled & ~rig.slips & ~rig.turning
+    loaded &= ~(rig.pumping & _hangs_still(rig, log))
     on_bottom = np.where(open_rows, loaded, rig.on_bottom)
     refined = replace(rig, on_bottom=on_bottom)
     none = np.zeros(len(log), dtype=bool)
     again = (on_bottom != rig.on_bottom) & (rig.activity != Activity.UNKNOWN)
     activity = np.where(again, classify(refined, none, (none, none)), rig.activity)
     return replace(refined, activity=activity.astype(np.int8))
+
+
+def _hangs_still(rig: RigView, log: TimeLog) -> Bools:
+    """Rows in minutes in which neither block nor hookload moved by more than their noise."""
+    count = noise.samples_in(_STILL_SECONDS, log.interval)
+    spans = []
+    for values, least, key in (
+        (rig.hookload, _STILL_FORCE, "hookload"),
+        (rig.block, _STILL_TRAVEL, "block_position"),
+    ):
+        smooth = noise.running_median(noise.fill(values), noise.samples_in(SMOOTHING, log.interval))
+        span = maximum_filter1d(smooth, count) - minimum_filter1d(smooth, count)
+        spans.append(span < max(least, 3.0 * rig.noise.get(key, 0.0)))
+    return spans[0] & spans[1]
 
 
 def _vote(votes: NDArray[np.int8], where: Bools, value: int) -> None:
