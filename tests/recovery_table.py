@@ -62,8 +62,9 @@ def lock_in() -> str:
 
 def each(measure, names: tuple[str, ...], form: str) -> str:
     """Write a measure of several wells."""
-    values = {name: measure(name) for name in names}
-    return ", ".join(f"{NAMES[n]} {format(v, form).replace('%', ' %')}" for n, v in values.items() if np.isfinite(v))
+    values = [(NAMES[name], measure(name)) for name in names]
+    told = ", ".join(f"{name} {value:{form}}" for name, value in values if np.isfinite(value))
+    return told.replace("%", " %")
 
 
 def false_alarms(name: str) -> int:
