@@ -289,9 +289,9 @@ def trapped_torque(material: Material, episode: Episode) -> bool:
     """
     torque = material.log.get("torque")
     turning = material.rig.turning
-    if torque is None or not turning.any():
+    usual = material.usual_torque
+    if torque is None or not np.isfinite(usual):
         return False
-    usual = float(np.nanmedian(torque[turning]))
     rows = slice(episode.first, episode.last + 1)
     still = torque[rows][~turning[rows] & ~material.rig.slips[rows]]
     still = still[np.isfinite(still)]

@@ -120,6 +120,14 @@ class Material:
         return np.maximum(RESIDUAL_SHARE * self.rotating_weight, NOISE_MULTIPLE * self.noise("hookload"))
 
     @cached_property
+    def usual_torque(self) -> float:
+        """Median torque while the string turns [N.m]; NaN where there is none."""
+        torque = self.log.get("torque")
+        turned = torque[self.rig.turning] if torque is not None else np.zeros(0)
+        known = turned[np.isfinite(turned)]
+        return float(np.median(known)) if len(known) else float("nan")
+
+    @cached_property
     def model_torque(self) -> Floats:
         """Torque the model expects, shape (n,) [N.m]; NaN where none applies."""
         torque = self.log.get("torque")

@@ -62,8 +62,7 @@ def find_spans(flags: Bools, time: Floats, rule: SpanRule) -> tuple[list[Span], 
     breaks = breaks[rows[breaks + 1] - rows[breaks] > 0]
     firsts = np.concatenate([[rows[0]], rows[breaks + 1]])
     lasts = np.concatenate([rows[breaks], [rows[-1]]])
-    stands_for = np.minimum(np.diff(time, append=time[-1] + rule.interval), 1.5 * rule.interval)
-    counted = np.concatenate([[0.0], np.cumsum(np.where(flags, stands_for, 0.0))])
+    counted = _counted(flags, time, rule.interval) if rule.flagged else np.zeros(0)
     spans, dropped = [], 0
     for first, last in zip(firsts.tolist(), lasts.tolist(), strict=True):
         length = time[last] - time[first] + rule.interval
@@ -74,6 +73,12 @@ def find_spans(flags: Bools, time: Floats, rule: SpanRule) -> tuple[list[Span], 
         else:
             spans.append(Span(first, last))
     return spans, dropped
+
+
+def _counted(flags: Bools, time: Floats, interval: float) -> Floats:
+    """Time on flagged rows before each row, and in all, shape (n + 1,) [s]."""
+    stands_for = np.minimum(np.diff(time, append=time[-1] + interval), 1.5 * interval)
+    return np.concatenate([[0.0], np.cumsum(np.where(flags, stands_for, 0.0))])
 
 
 def running_extreme(values: Floats, resets: Bools, largest: bool) -> Floats:

@@ -48,15 +48,20 @@ def test_times_of_one_name_add_up():
     assert list(progress.timings) == ["figures"]
 
 
+def fail_to_load(progress):
+    with progress.loading("loading"):
+        assert not gc.isenabled()
+        raise ImportError
+
+
 @pytest.mark.parametrize("working", [True, False])
 def test_loading_puts_the_collector_back_as_it_was(working):
     before = gc.isenabled()
     progress = Progress(quiet=True)
     try:
         (gc.enable if working else gc.disable)()
-        with pytest.raises(ImportError), progress.loading("loading"):
-            assert not gc.isenabled()
-            raise ImportError
+        with pytest.raises(ImportError):
+            fail_to_load(progress)
         assert gc.isenabled() is working
     finally:
         (gc.enable if before else gc.disable)()

@@ -138,7 +138,7 @@ def measure_tells(material: Material, signals: Signals, episode: Episode) -> Tel
         dogleg=_dogleg(material, place),
         ratio=episode.peak_load_ratio.value,
         lost_share=float(np.clip(episode.lost_to_buckling.value / lost, 0.0, 1.0)) if lost > 0.0 else NAN,
-        friction=_friction(material, place),
+        friction=_friction(material, episode.peak),
         release=_release(material, episode),
         bed=_bed(material, place),
     )  # fmt: skip
@@ -262,11 +262,10 @@ def _dogleg(material: Material, place: float) -> float:
     return float(np.max(np.linalg.norm(curvature, axis=1)))
 
 
-def _friction(material: Material, place: float) -> float:
+def _friction(material: Material, row: int) -> float:
     """Calibrated less assumed factor of the hole that carries most drag, in steps of 0.04."""
     from forensics.friction.assumptions import assumed_factor
 
-    row = int(np.nanargmin(np.abs(material.bit - place)))
     kind = "open" if material.open_share[row] > 0.5 else "cased"
     factor = next(s.factor for s in material.calibration.sections if s.kind == kind)
     if not factor.determined:
