@@ -12,11 +12,12 @@ import numpy as np
 
 from forensics.case import Case
 from forensics.case.unused import unused_settings
-from forensics.episodes.catalogue import Kind
+from forensics.episodes.catalogue import Episode, Kind
 from forensics.episodes.describe import tell, weigh_episodes
 from forensics.episodes.find import flag_rows, rows_in_question
 from forensics.episodes.groups import are_many, load_clustering
 from forensics.episodes.material import Material
+from forensics.episodes.onsets import with_onsets
 from forensics.findings import Findings
 from forensics.friction.calibrate import calibrate
 from forensics.friction.readings import find_readings
@@ -28,6 +29,7 @@ from forensics.replay.draws import replay_draws
 from forensics.replay.lines import fan
 from forensics.replay.model import build_model
 from forensics.replay.moments import critical_load, profiles
+from forensics.replay.places import place_numbers
 from forensics.replay.ready import block_zero, ready
 from forensics.replay.run import Replay, replay
 from forensics.report.scene import main_episodes
@@ -135,10 +137,7 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
             load_clustering()
     with progress.stage("episodes", "grouping episodes"):
         told = tell(material, weighed)
-        episodes = tuple(
-            replace(e, critical_load=critical_load(made, e.peak, e.peak_md)) if e.kind in PRESSED else e
-            for e in told.episodes
-        )
+        episodes = tuple(_placed(e, made, material.case) for e in told.episodes)
     with progress.stage("profiles", "taking load profiles"):
         mains = main_episodes(episodes)
         taken = profiles(made, [episode.peak for episode in mains])
@@ -159,6 +158,16 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
         inputs=_digests(material.case, log),
         warnings=_remarks(material),
     )
+
+
+def _placed(episode: Episode, made: Replay, case: Case) -> Episode:
+    """Hold an episode that presses the string against the criteria at the place of its peak."""
+    if episode.kind not in PRESSED:
+        return episode
+    row, md = episode.peak, episode.peak_md
+    at = place_numbers(made, row, md, episode.peak_compression.value)
+    episode = replace(episode, critical_load=critical_load(made, row, md))
+    return with_onsets(episode, at, case.criteria.torque_effect)
 
 
 def _remarks(material: Material) -> tuple[str, ...]:

@@ -18,6 +18,7 @@ from forensics.case.node import (
     as_note,
     as_number,
     as_quantity,
+    as_switch,
     as_text,
     as_timezone,
     as_whole,
@@ -198,6 +199,8 @@ _CRITERIA: dict[str, Callable[..., Any]] = {
     "clearance": as_choice("tool_joint", "body"),
     "bridge_gap": as_quantity("time"),
     "minimum_duration": as_quantity("time"),
+    "torque_effect": as_switch,
+    "tool_joint_effect": as_switch,
 }
 _LIMITS: dict[str, Callable[..., Any]] = {
     "hookload": as_quantity("force"),

@@ -185,3 +185,8 @@ def as_choice(*words: str) -> Callable[[Node, str, object], str]:
         return str(value)
 
     return convert
+
+
+def as_switch(node: Node, key: str, value: object) -> bool:
+    """Take "on" or "off"."""
+    return as_choice("off", "on")(node, key, value) == "on"

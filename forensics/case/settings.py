@@ -64,13 +64,19 @@ class FrictionSettings:
 
 @dataclass(frozen=True)
 class CriteriaSettings:
-    """`[criteria]`: thresholds and episode rules [s]."""
+    """`[criteria]`: thresholds and episode rules [s].
+
+    `torque_effect` lowers the published helical onsets by what torque does; `tool_joint_effect` bends
+    jointed pipe more than the hole is curved, as its joints make it.
+    """
 
     helical_onset: str = "chen"
     helical_release: str = "unbuckled"
     clearance: str = "tool_joint"
     bridge_gap: float = 60.0
     minimum_duration: float = 20.0
+    torque_effect: bool = False
+    tool_joint_effect: bool = True
 
 
 @dataclass(frozen=True)

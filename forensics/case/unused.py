@@ -35,9 +35,4 @@ def unused_settings(case: Case) -> tuple[str, ...]:
             "[rig] block_weight changes nothing where hookload_includes_block is false: the block is not in "
             "the hookload."
         )
-    if case.limits.pipe_class is not None:
-        said.append(
-            f"[limits] pipe_class = {case.limits.pipe_class!r} derates nothing: ratings are taken as the "
-            "string table gives them."
-        )
     return tuple(said)

@@ -64,7 +64,9 @@ class Episode:
     `first` and `last` are row numbers in the log (inclusive); `peak` the row of the peak load ratio
     (of the largest residual for drag and torque); `critical_load` is the compression at which that place
     would just buckle sideways, at the contact it then causes; `peak_residual` is that residual, measured less
-    modelled [N or N.m], None for other kinds.
+    modelled [N or N.m], None for other kinds. `onsets` says which published helical onsets the compression
+    passed, `onsets_beyond` which of them are used there beyond their range, `onsets_drop` what the surface
+    torque would take off each [N].
     """
 
     id: str
@@ -91,6 +93,9 @@ class Episode:
     causes: tuple[CauseView, ...] = ()
     critical_load: float = float("nan")
     peak_residual: Estimate | None = None
+    onsets: str = ""
+    onsets_beyond: str = ""
+    onsets_drop: float = float("nan")
 
     @property
     def duration(self) -> float:

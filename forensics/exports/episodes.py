@@ -40,6 +40,8 @@ COLUMNS = (
     "note",
     *(f"{name}_{end}" for name in ESTIMATES for end in ("low", "high")),
     "critical_load_kN",
+    "onsets",
+    "onsets_beyond",
 )
 
 
@@ -76,6 +78,8 @@ def episode_row(episode: Episode, tz: dt.tzinfo) -> dict[str, Cell]:
         "cause": episode.cause,
         "note": episode.note,
         "critical_load_kN": number(episode.critical_load / 1e3, 3),
+        "onsets": episode.onsets,
+        "onsets_beyond": episode.onsets_beyond,
     }
     for name, (attribute, scale, decimals) in ESTIMATES.items():
         estimate: Estimate = getattr(episode, attribute)

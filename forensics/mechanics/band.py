@@ -8,6 +8,7 @@ sinusoid is left. A load between them may stand in either shape, so the words na
 from __future__ import annotations
 
 import math
+from dataclasses import replace
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
@@ -131,6 +132,43 @@ def outside_validity(place: Place) -> tuple[str, ...]:
             f"and up to {most:.1f} deg/30 m; here {degrees:.1f} deg and {bend:.1f} deg/30 m"
         )
     return tuple(found)
+
+
+def validity_words(place: Place) -> str:
+    """Say at one place which helical onsets are used beyond the range they were published for.
+
+    Parameters
+    ----------
+    place : Place
+        One place: scalars.
+
+    Returns
+    -------
+    str
+        Empty where all hold.
+
+    Examples
+    --------
+    >>> validity_words(Place(1.23e6, 0.0445, 241.0, math.radians(60), math.radians(3) / 30))
+    'Chen, Wu and Mitchell hold for 15 to 90 deg and up to 0.5 deg/30 m; here 60.0 deg and 3.0 deg/30 m'
+    """
+    # a hole that points upwards presses the pipe as its mirror image does
+    angle = float(np.asarray(place.inclination))
+    mirrored = replace(place, inclination=min(angle, math.pi - angle))
+    outside: dict[tuple[float, float, float], list[str]] = {}
+    for name in ORDER:
+        validity = CRITERIA[HELICAL_ONSETS[name].criterion]
+        if not bool(np.all(validity.covers(mirrored))):
+            outside.setdefault((*validity.inclination, validity.curvature), []).append(name.capitalize())
+    if not outside:
+        return ""
+    said = [
+        f"{_list(names)} {'holds' if len(names) == 1 else 'hold'} for {math.degrees(low):.0f} to "
+        f"{math.degrees(high):.0f} deg and up to {math.degrees(most) * 30:.1f} deg/30 m"
+        for (low, high, most), names in outside.items()
+    ]
+    bend = math.degrees(float(np.hypot(place.build, np.asarray(place.turn) * math.sin(angle)))) * 30
+    return f"{'; '.join(said)}; here {math.degrees(angle):.1f} deg and {bend:.1f} deg/30 m"
 
 
 def clearance_band(

@@ -14,6 +14,7 @@ from forensics.mechanics.limits import SUPPORT
 from forensics.mechanics.selfconsistent import ContactSize
 from forensics.mechanics.threshold import self_consistent_load
 from forensics.replay.model import factors
+from forensics.replay.places import find_place
 from forensics.replay.room import fresh, go, restart, take
 from forensics.replay.run import Replay
 
@@ -47,15 +48,12 @@ def critical_load(run: Replay, row: int, md: float) -> float:
     md : float
         Measured depth of the place [m]; NaN gives NaN, as does a support.
     """
-    if not np.isfinite(md):
+    found = find_place(run, row, md)
+    if found is None:
         return float("nan")
-    model, criteria = run.model, run.model.criteria
-    bit, scale = float(run.prepared.samples.bit[row]), float(run.prepared.samples.scale[row])
-    j = int(np.clip(np.searchsorted(model.pipe.x, bit - md, side="right") - 1, 0, len(model.pipe.ei) - 1))
-    i = int(np.clip(round(md / model.hole.step), 0, len(model.hole.cos_i) - 1))
-    at = criteria.at[criteria.kind[j], i]
-    if at[GIVE] <= 0.0:
-        return float("nan")
+    (j, i), model = found, run.model
+    scale = float(run.prepared.samples.scale[row])
+    at = model.criteria.at[model.criteria.kind[j], i]
     gap = 4.0 * model.pipe.ei[j] * at[GIVE]
     part = at[GIVE] ** 2  # takes the fourth power of a load back to the square of a contact
     size = ContactSize(

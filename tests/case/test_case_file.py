@@ -61,6 +61,8 @@ helical_release = "envelope"
 clearance = "body"
 bridge_gap = "2 min"
 minimum_duration = "20 s"
+torque_effect = "on"
+tool_joint_effect = "off"
 
 [limits]
 hookload = "2200 kN"
@@ -126,7 +128,7 @@ def test_every_key_is_read_in_si(write):
     assert (case.fluid.density, case.fluid.file, case.fluid.density_inside) == (None, folder / "mud.csv", 0.0)
     assert dataclasses.astuple(case.rig) == (310e3, 12, 0.985, False)
     assert dataclasses.astuple(case.friction) == (0.2, 0.28, True)
-    assert dataclasses.astuple(case.criteria) == ("wu", "envelope", "body", 120.0, 20.0)
+    assert dataclasses.astuple(case.criteria) == ("wu", "envelope", "body", 120.0, 20.0, True, False)
     assert case.limits.wob == pytest.approx(196133.0)
     assert (case.limits.torque, case.limits.pipe_class) == (45e3, "premium")
     assert case.records.verdicts == folder / "verdicts.csv"
@@ -140,7 +142,7 @@ def test_the_least_case_takes_the_defaults(write):
     assert case.fluid.density == pytest.approx(1198.26427)
     assert case.rig.block_weight is None
     assert case.rig.hookload_includes_block is True
-    assert dataclasses.astuple(case.criteria) == ("chen", "unbuckled", "tool_joint", 60.0, 20.0)
+    assert dataclasses.astuple(case.criteria) == ("chen", "unbuckled", "tool_joint", 60.0, 20.0, False, True)
     assert case.friction.fixed is False
 
 
@@ -164,7 +166,7 @@ def test_time_zones_come_by_name_or_offset(write, given, kept):
 
 REFUSED = {
     "unknown key names the nearest": ("title =", "titel =", ["line 5", "titel", "did you mean 'title'"]),
-    "unknown section": ("[records]", "[record]", ["line 62", "record", "did you mean 'records'"]),
+    "unknown section": ("[records]", "[record]", ["line 64", "record", "did you mean 'records'"]),
     "unknown key far from any": ("lines = 12", "zzz = 12", ["rig.zzz", "known are: block_weight"]),
     "unknown channel": (
         'hookload = "HKLD',

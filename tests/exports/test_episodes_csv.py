@@ -44,6 +44,8 @@ def test_columns_begin_with_the_contracts(rows):
     assert set(names[len(CONTRACT) :]) == {
         *(f"{name}_{end}" for name in CONTRACT[10:14] for end in ("low", "high")),
         "critical_load_kN",
+        "onsets",
+        "onsets_beyond",
     }
 
 

@@ -14,6 +14,7 @@ from forensics.report.scene import Scene
 from forensics.report.words import Show, count, duration, fixed
 
 REPLAY = "replay at the calibrated friction"
+ONSETS = "at the contact force of that moment, near-vertical term added"
 CRITERION = "sinusoidal criterion solved at the contact it causes"
 
 # What the residual of a drag or torque episode is called, and its quantity.
@@ -123,6 +124,9 @@ def episode_numbers(episode: Episode, show: Show, prefix: str = "") -> list[Numb
     rows = [
         number(prefix + name, e, q, show, "draw") for name, e, q in pairs if loaded and math.isfinite(e.value)
     ]
+    if episode.onsets:
+        origin = f"{ONSETS}; {episode.onsets_beyond}" if episode.onsets_beyond else ONSETS
+        rows.append(Number(f"{prefix}helical onsets as published", episode.onsets, "", origin))
     if episode.peak_residual is not None and episode.kind in RESIDUALS:
         name, quantity = RESIDUALS[episode.kind]
         rows.insert(0, number(prefix + name, episode.peak_residual, quantity, show, "draw"))
