@@ -66,7 +66,7 @@ def test_near_vertical_term_depends_on_length_and_is_lubinskis_at_one_length_onl
     scale = (1.7e7 / w) ** (1 / 3)
     unit = (1.7e7 * w**2) ** (1 / 3)
     term = threshold.near_vertical_term(1.7e7, 0.0, w, scale * np.array([7.9278, 20.0, 80.0])) / unit
-    # Lubinski 1950, from memory; lengths 20 and 80: check-values 1b, computed two ways
+    # Lubinski 1950, from memory; lengths 20 and 80: computed two ways
     np.testing.assert_allclose(term, [1.94, 1.71104, 1.51858], rtol=5e-4)
 
 
