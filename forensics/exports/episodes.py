@@ -7,7 +7,7 @@ import datetime as dt
 from collections.abc import Mapping
 from pathlib import Path
 
-from forensics.episodes.catalogue import Episode
+from forensics.episodes.catalogue import Episode, Kind
 from forensics.estimate import Estimate
 from forensics.exports.stamps import number, stamp
 from forensics.findings import Findings
@@ -21,6 +21,9 @@ ESTIMATES: Mapping[str, tuple[str, float, int]] = {
     "lost_weight_kN": ("lost_weight", 1e3, 3),
     "lost_to_buckling_kN": ("lost_to_buckling", 1e3, 3),
 }
+# What the hook carries, or the top drive turns against, beyond the model at the peak; by the episode's kind.
+RESIDUALS: Mapping[str, Kind] = {"peak_drag_residual_kN": Kind.DRAG, "peak_torque_residual_kNm": Kind.TORQUE}
+ENDS = ("low", "high")
 COLUMNS = (
     "id",
     "start",
@@ -38,10 +41,11 @@ COLUMNS = (
     "family",
     "cause",
     "note",
-    *(f"{name}_{end}" for name in ESTIMATES for end in ("low", "high")),
+    *(f"{name}_{end}" for name in ESTIMATES for end in ENDS),
     "critical_load_kN",
     "onsets",
     "onsets_beyond",
+    *(f"{name}{end}" for name in RESIDUALS for end in ("", *(f"_{end}" for end in ENDS))),
 )
 
 
@@ -82,11 +86,21 @@ def episode_row(episode: Episode, tz: dt.tzinfo) -> dict[str, Cell]:
         "onsets_beyond": episode.onsets_beyond,
     }
     for name, (attribute, scale, decimals) in ESTIMATES.items():
-        estimate: Estimate = getattr(episode, attribute)
-        row[name] = number(estimate.value / scale, decimals)
-        row[f"{name}_low"] = number(estimate.low / scale, decimals)
-        row[f"{name}_high"] = number(estimate.high / scale, decimals)
+        row |= _cells(name, getattr(episode, attribute), scale, decimals)
+    for name, kind in RESIDUALS.items():
+        row |= _cells(name, episode.peak_residual if episode.kind is kind else None, 1e3, 3)
     return {name: row[name] for name in COLUMNS}
+
+
+def _cells(name: str, estimate: Estimate | None, scale: float, decimals: int) -> dict[str, Cell]:
+    """Value and interval of an estimate; all empty where there is none."""
+    if estimate is None:
+        return dict.fromkeys((name, f"{name}_low", f"{name}_high"))
+    return {
+        name: number(estimate.value / scale, decimals),
+        f"{name}_low": number(estimate.low / scale, decimals),
+        f"{name}_high": number(estimate.high / scale, decimals),
+    }
 
 
 def episode_rows(findings: Findings) -> list[dict[str, Cell]]:

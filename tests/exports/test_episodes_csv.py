@@ -2,10 +2,13 @@
 
 import csv
 import datetime as dt
+from dataclasses import replace
 
 import pytest
 
-from forensics.exports.episodes import write_episodes
+from forensics.episodes.catalogue import Kind
+from forensics.estimate import Estimate
+from forensics.exports.episodes import episode_row, write_episodes
 
 # From the contract, section 3, word for word.
 CONTRACT = [
@@ -29,6 +32,7 @@ CONTRACT = [
     "cause",
     "note",
 ]
+RESIDUALS = ("peak_drag_residual_kN", "peak_torque_residual_kNm")
 
 
 @pytest.fixture
@@ -46,6 +50,7 @@ def test_columns_begin_with_the_contracts(rows):
         "critical_load_kN",
         "onsets",
         "onsets_beyond",
+        *(f"{name}{end}" for name in RESIDUALS for end in ("", "_low", "_high")),
     }
 
 
@@ -67,6 +72,16 @@ def test_times_are_iso_with_the_offset_of_the_log(rows):
 def test_missing_numbers_are_empty(rows):
     assert rows[1]["top_md_m"] == ""
     assert rows[1]["probability"] == ""
+
+
+def test_a_residual_stands_in_the_column_of_its_kind(findings):
+    drag = replace(
+        findings.episodes[0], kind=Kind.DRAG, peak_residual=Estimate(40e3, 35e3, 46e3, "readings of the run")
+    )
+    row = episode_row(drag, dt.UTC)
+    assert [row[f"{RESIDUALS[0]}{end}"] for end in ("", "_low", "_high")] == [40.0, 35.0, 46.0]
+    assert row[RESIDUALS[1]] is None
+    assert episode_row(replace(drag, kind=Kind.TORQUE), dt.UTC)[f"{RESIDUALS[1]}_high"] == 46.0
 
 
 def test_notes_survive_commas_and_quotes(rows):
