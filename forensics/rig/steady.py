@@ -164,24 +164,24 @@ def _measure(code: int, rows: slice, motion: Motion, signals: Signals, string_we
         or float(np.std(speed)) > _SPEED_CHANGE * abs(mean_speed)
     ):
         return None
-    value = float(np.median(hookload))
+    value = noise.middle(hookload)
     third = max(count // 3, 1)
     drift = 1.5 * abs(float(np.mean(hookload[-third:]) - np.mean(hookload[:third])))
     scatter = noise.NOISE_FACTOR * signals.hookload_noise / third**0.5
     if drift > max(scatter, _DRIFT * float(string_weight[rows.start])):
         return None
-    spread = 1.4826 * float(np.median(np.abs(hookload - value)))
+    spread = 1.4826 * noise.middle(np.abs(hookload - value))
     torque = motion.torque[rows]
     torque = torque[np.isfinite(torque)]
-    turn = float(np.median(torque)) if torque.size >= noise.LEAST_SAMPLES else np.nan
-    turn_spread = 1.4826 * float(np.median(np.abs(torque - turn))) if np.isfinite(turn) else np.nan
+    turn = noise.middle(torque) if torque.size >= noise.LEAST_SAMPLES else np.nan
+    turn_spread = 1.4826 * noise.middle(np.abs(torque - turn)) if np.isfinite(turn) else np.nan
     rpm = motion.rpm[rows]
     rpm = rpm[np.isfinite(rpm)]
     return (
         code, rows.start, rows.stop, 0,
-        float(np.median(signals.bit[rows])), float(np.median(motion.block[rows])),
+        noise.middle(signals.bit[rows]), noise.middle(motion.block[rows]),
         value, spread, turn, turn_spread, bool(np.mean(motion.pumping[rows]) > 0.5), mean_speed,
-        float(np.median(rpm)) if rpm.size else 0.0,
+        noise.middle(rpm) if rpm.size else 0.0,
     )  # fmt: skip
 
 
