@@ -265,8 +265,8 @@ def refine_activity(rig: RigView, bit_load: Floats, log: TimeLog) -> RigView:
     -----
     Only rows that the first pass could not settle by themselves are looked at: out of slips, not turning,
     and no vote of depth, weight or pressure. Elsewhere what was measured is the better witness. A string
-    that hangs quite still with the pumps on has nothing on the bit, whatever friction leaves there in the replay: a
-    loaded bit drills, and the hookload shows it.
+    that hangs quite still with the pumps on has nothing on the bit, whatever friction leaves there in the
+    replay: a loaded bit drills, and the hookload shows it.
     """
     signals = read_signals(log)
     limit = max(_REFINE_WEIGHT, signals.hookload_noise)
