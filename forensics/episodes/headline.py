@@ -202,6 +202,11 @@ def _confidence(material: Material, main: list[Episode]) -> str:
     if blind:
         friction += "; rotation was not logged and is guessed"
     weak = bool(assumed) or blind
+    if not material.calibration.readings and not material.calibration.block_weight.determined:
+        return (
+            "low: the log shows neither a steady off-bottom weight nor the block's weight, so friction and "
+            "block weight are assumed"
+        )
     if not main:
         near = near_threshold(material)
         said = f"{friction}; {near}" if near else friction

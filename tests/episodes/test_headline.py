@@ -118,3 +118,14 @@ def test_periods_are_on_the_readers_clock():
 @pytest.mark.parametrize("n", [1, 2, 5])
 def test_tiny_logs_are_survived(make_run, n):
     assert describe(make_run(n=n).buckle(slice(0, n)).material()).dropped
+
+
+def test_nothing_read_off_the_log_is_low_confidence(make_run):
+    material = stacked(make_run).material()
+    bare = replace(
+        material.calibration,
+        readings=(),
+        block_weight=replace(material.calibration.block_weight, determined=False),
+    )
+    confidence = describe(replace(material, calibration=bare)).headline.confidence
+    assert confidence.startswith("low: the log shows neither")
