@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field
+from typing import TYPE_CHECKING
 
 from forensics.case import Case
 from forensics.episodes.catalogue import Episode, Family, Headline
@@ -14,6 +15,9 @@ from forensics.logs.table import TimeLog
 from forensics.rig.view import RigView
 from forensics.well.model import Well
 
+if TYPE_CHECKING:
+    from forensics.episodes.pipe import PipeToll
+
 
 @dataclass(frozen=True)
 class Findings:
@@ -21,7 +25,7 @@ class Findings:
 
     `profiles` maps an episode id to the load profile at that episode's peak; `dropped` counts what the
     episode rules set aside, by reason; `inputs` maps a file's name to its SHA-256; `weights` and `slides`
-    are what the rig kept by hand.
+    are what the rig kept by hand; `tolls` tells by episode id what the main ones did to the pipe.
     """
 
     case: Case
@@ -40,3 +44,4 @@ class Findings:
     warnings: tuple[str, ...] = ()
     weights: tuple[RecordedWeight, ...] = ()
     slides: tuple[RecordedSlide, ...] = ()
+    tolls: Mapping[str, PipeToll] = field(default_factory=dict)

@@ -18,6 +18,7 @@ from forensics.episodes.find import flag_rows, rows_in_question
 from forensics.episodes.groups import are_many, load_clustering
 from forensics.episodes.material import Material
 from forensics.episodes.onsets import with_onsets
+from forensics.episodes.pipe import pipe_tolls
 from forensics.findings import Findings
 from forensics.friction.calibrate import calibrate
 from forensics.friction.readings import find_readings
@@ -141,6 +142,8 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
     with progress.stage("profiles", "taking load profiles"):
         mains = main_episodes(episodes)
         taken = profiles(made, [episode.peak for episode in mains])
+        peaks = {episode.id: profile for episode, profile in zip(mains, taken, strict=True)}
+        tolls = pipe_tolls(made, material, peaks, mains)
     log, well = material.log, material.well
     return Findings(
         case=material.case,
@@ -152,11 +155,12 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
         fan=fan(material.calibration, made.model, (SHALLOW, float(np.nanmax(log.values["bit_depth"])))),
         episodes=episodes,
         families=told.families,
-        profiles={episode.id: profile for episode, profile in zip(mains, taken, strict=True)},
+        profiles=peaks,
         headline=told.headline,
         dropped=told.dropped,
         inputs=_digests(material.case, log),
         warnings=_remarks(material),
+        tolls=tolls,
     )
 
 

@@ -14,6 +14,7 @@ import numpy as np
 from forensics import __version__
 from forensics.exports.episodes import episode_rows
 from forensics.exports.friction import friction_content
+from forensics.exports.pipe import pipe_content
 from forensics.exports.stamps import number, stamp
 from forensics.exports.text import write_json
 from forensics.findings import Findings
@@ -69,7 +70,10 @@ def summary_content(findings: Findings) -> dict[str, Any]:
         "quality": _quality(findings),
         "friction": friction_content(findings),
         "rate_law": _rate_law(findings),
-        "episodes": episode_rows(findings),
+        "episodes": [
+            {**row, "pipe": pipe_content(findings.tolls.get(str(row["id"])))}
+            for row in episode_rows(findings)
+        ],
         "episodes_dropped": {reason: int(count) for reason, count in sorted(findings.dropped.items())},
         "families": [
             {

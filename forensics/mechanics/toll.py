@@ -41,6 +41,8 @@ class MomentLoads:
         Of the hole [rad/m].
     torque, inside, outside : array_like
         Torque [N.m] and pressures [Pa]; default none.
+    onset : ndarray, optional
+        Load at which each place turns sinusoidal [N]; default the local load F_DP.
     """
 
     component: NDArray[np.int64]
@@ -52,6 +54,7 @@ class MomentLoads:
     torque: ArrayLike = 0.0
     inside: ArrayLike = 0.0
     outside: ArrayLike = 0.0
+    onset: Floats | None = None
 
 
 @dataclass(frozen=True)
@@ -83,7 +86,7 @@ class Toll:
     exposure: Floats
 
 
-def toll(string: String, loads: MomentLoads, pipe_class: str = "new") -> Toll:
+def toll(string: String, loads: MomentLoads, pipe_class: str = "new", joints: bool = True) -> Toll:
     """Give what a moment's loads do to every element of the string.
 
     Parameters
@@ -94,6 +97,8 @@ def toll(string: String, loads: MomentLoads, pipe_class: str = "new") -> Toll:
         Loads of its elements.
     pipe_class : str
         "new", "premium" or "used", for drill pipe; the rest of the string is taken as new.
+    joints : bool
+        Whether joints draw the bending of the hole to themselves.
 
     Returns
     -------
@@ -115,7 +120,7 @@ def toll(string: String, loads: MomentLoads, pipe_class: str = "new") -> Toll:
     for row in np.unique(loads.component):
         some = loads.component == row
         part = string.components[int(row)]
-        moment = _moment(part, loads, some)
+        moment = _moment(part, loads, some, joints)
         tension = loads.tension[some]
         acting = PipeLoads(tension, moment, torque[some], inside[some], outside[some])
         judged = judge(part, acting, pipe_class if part.kind in PIPE else "new")
@@ -156,15 +161,16 @@ def worst_by_component(component: NDArray[np.int64], values: Floats) -> dict[int
     return found
 
 
-def _moment(part: Component, loads: MomentLoads, some: NDArray[np.bool_]) -> Floats:
+def _moment(part: Component, loads: MomentLoads, some: NDArray[np.bool_], joints: bool) -> Floats:
     """Bending moment of the elements of one component [N.m]."""
     tension, state = loads.tension[some], loads.state[some]
     # a support has no clearance to buckle in
     gap = np.maximum(loads.clearance[some], 0.0)
-    place = PipeInHole(-tension, part.stiffness, np.where(gap > 0, gap, 1.0), loads.contact[some])
+    onset = None if loads.onset is None else loads.onset[some]
+    place = PipeInHole(-tension, part.stiffness, np.where(gap > 0, gap, 1.0), loads.contact[some], onset)
     wound = np.where(gap > 0, after_buckling(place, state).curvature, 0.0)
     factor = np.ones(tension.shape)
-    if part.kind in PIPE and part.tool_joint_od is not None:
+    if joints and part.kind in PIPE and part.tool_joint_od is not None:
         known = bending_factor(tension, part.stiffness, HALF_JOINT)
         factor = np.where((state == 0) & np.isfinite(known), known, 1.0)
     return part.stiffness * (np.abs(loads.curvature[some]) * factor + wound)

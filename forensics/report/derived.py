@@ -10,6 +10,9 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics.episodes.catalogue import Episode
+from forensics.mechanics.fatigue import HALF_JOINT
+from forensics.mechanics.tool_joint import sag
+from forensics.well.string import PIPE, buoyed_weight
 
 if TYPE_CHECKING:
     from forensics.findings import Findings
@@ -98,6 +101,36 @@ def helix_bending_stress(findings: Findings, episode: Episode, compression: floa
     contact = part.contact_diameter(findings.case.criteria.clearance)
     clearance = max((diameter - contact) / 2.0, 0.0)
     return part.od * clearance * compression / (4.0 * part.inertia)
+
+
+def sag_between_joints(findings: Findings, episode: Episode) -> tuple[float, float] | None:
+    """How far the pipe's body sags between joints at an episode's peak, and how far it can [m].
+
+    Parameters
+    ----------
+    findings : Findings
+        Gives hole, string, mud and bit depth.
+    episode : Episode
+        Gives place, moment and compression.
+
+    Returns
+    -------
+    tuple of float, or None
+        None where the place is not known or is no jointed pipe; the sag is infinite where the span itself
+        would buckle.
+    """
+    bit, force = findings.log.get("bit_depth"), episode.peak_compression.value
+    if bit is None or not np.isfinite([episode.peak_md, bit[episode.peak], force]).all():
+        return None
+    well = findings.well
+    above_bit = max(float(bit[episode.peak]) - episode.peak_md, 0.0)
+    part = well.string.components[int(well.string.index_at(above_bit)[0])]
+    if part.kind not in PIPE or part.tool_joint_od is None or part.tool_joint_od <= part.od:
+        return None
+    weight = float(np.ravel(buoyed_weight(part, well.fluid.typical, well.fluid.inside))[0])
+    side = weight * math.sin(float(well.trajectory.at(np.array([episode.peak_md])).inclination[0]))
+    hang = float(sag(force, part.stiffness, side, 2.0 * HALF_JOINT))
+    return hang, (part.tool_joint_od - part.od) / 2.0
 
 
 def other_clearance(findings: Findings) -> str:

@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING
 
 from forensics.report.elements import Report
 from forensics.report.scene import Scene, main_episodes
-from forensics.report.sections import account, calibration, episodes, first, method, overview, run
+from forensics.report.sections import account, calibration, episodes, first, method, overview, pipe, run
 from forensics.report.words import Show
 
 if TYPE_CHECKING:
@@ -19,6 +19,7 @@ SECTIONS = (
     run.describe,
     overview.describe,
     episodes.describe,
+    pipe.describe,
     calibration.describe,
     episodes.describe_tables,
     account.describe,

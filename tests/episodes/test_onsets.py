@@ -41,7 +41,7 @@ def run_with(torque: float | None = 15e3) -> Cheap:
 
 
 def pressed(load: float, low: float, high: float, state: State = State.HELICAL) -> Episode:
-    """A buckled episode of which only the compression and the state matter."""
+    """Make a buckled episode of which only the compression and the state matter."""
     size = Estimate(load, low, high, "replay")
     return Episode(
         id="E001", kind=Kind.BUCKLING, state=state, start=0.0, end=60.0, first=0, last=60, peak=30,

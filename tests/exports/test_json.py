@@ -6,8 +6,10 @@ import json
 import jsonschema
 import pytest
 
+from forensics.episodes.pipe import PartToll, PipeToll, Turned
 from forensics.exports.friction import write_friction
 from forensics.exports.summary import summary_schema, write_summary
+from forensics.well.string import Component
 
 
 @pytest.fixture
@@ -109,3 +111,21 @@ def test_empty_run_keeps_to_the_schema(findings, tmp_path):
     bare = dataclasses.replace(findings, episodes=(), families=(), dropped={}, warnings=())
     write_summary(bare, tmp_path / "summary.json")
     validator().validate(json.loads((tmp_path / "summary.json").read_text()))
+
+
+def test_what_an_episode_did_to_the_pipe_stands_under_it(findings, tmp_path):
+    pipe = Component("dp 5 in", "drillpipe", 3e3, 0.127, 0.1086, 310.0, 0.168, yield_strength=931e6)
+    nan = float("nan")
+    part = PartToll(pipe, True, 1800.04, 2, 80e6, 310e6, 0.333, 0.2, 9e5, nan)
+    toll = PipeToll((part,), "surface torque", "standpipe", Turned(400.0, 1e-5, 1, 1.0))
+    write_summary(dataclasses.replace(findings, tolls={"B1": toll}), tmp_path / "summary.json")
+    summary = json.loads((tmp_path / "summary.json").read_text())
+    validator().validate(summary)
+    first, second = summary["episodes"]
+    assert second["pipe"] is None
+    (told,) = first["pipe"]["parts"]
+    assert (told["state"], told["stress_MPa"], told["yield_MPa"]) == ("helical", 310.0, 931.0)
+    assert (told["tension_margin_kN"], told["torque_margin_kNm"]) == (900.0, None)
+    assert first["pipe"]["turned_while_buckled"] == {
+        "revolutions": 400.0, "fatigue_rank": 1, "fatigue_share_of_greatest": 1.0,
+    }  # fmt: skip

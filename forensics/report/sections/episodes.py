@@ -26,6 +26,7 @@ from forensics.report.figures import depths, timeline
 from forensics.report.scene import MAIN_CAP, Scene
 from forensics.report.sections.cautions import for_episode
 from forensics.report.sections.first import RESIDUALS, episode_numbers, rotation_sentence
+from forensics.report.sections.pipe import stress_table
 from forensics.report.words import count, duration, fixed, plain
 
 TABLE_ROWS = 200
@@ -84,6 +85,9 @@ def _part(scene: Scene, episode: Episode) -> Part:
     if profile is not None and len(profile.md) > 1:
         elements.append(_profile_picture(scene, episode))
     elements.append(_moment_picture(scene, episode))
+    strained = stress_table(scene, episode)
+    if strained is not None:
+        elements.append(strained)
     elements.append(cause_table(episode))
     cautions = for_episode(episode)
     if cautions:

@@ -2,9 +2,13 @@
 
 from __future__ import annotations
 
+import math
+
+from forensics.report import derived
 from forensics.report.elements import Bullets, Column, Notice, Section, Table, Text
 from forensics.report.scene import Scene
 from forensics.report.sections.cautions import GENERAL, METHOD_LIMITS
+from forensics.report.sections.first import worst_episode
 from forensics.report.words import duration, fixed, plain
 
 # Quantity of each channel whose noise is shown.
@@ -51,6 +55,7 @@ def assumption_table(scene: Scene) -> Table:
         ("helical onset", plain(rules.helical_onset), "[criteria] of the case, or default"),
         ("helical release", plain(rules.helical_release), "[criteria] of the case, or default"),
         ("clearance measured at", plain(rules.clearance), "[criteria] of the case, or default"),
+        *effects(scene),
         (
             "episodes closer than this are one",
             duration(rules.bridge_gap),
@@ -76,6 +81,31 @@ def assumption_table(scene: Scene) -> Table:
     rows.append(("usual flow of the run", show.value(found.rig.usual_flow, "flow"), "flow in"))
     columns = (Column("assumption"), Column("value"), Column("from"))
     return Table("What the result rests on", columns, tuple(rows))
+
+
+def effects(scene: Scene) -> list[tuple[str, str, str]]:
+    """Say which effects of torque and tool joints are applied, and what each comes to at the main episode."""
+    rules, show = scene.findings.case.criteria, scene.show
+    worst = worst_episode(scene)
+    torque = "applied" if rules.torque_effect else "not applied"
+    torque += " to the published helical onsets; the replay's own thresholds leave torque out"
+    joints = "applied" if rules.tool_joint_effect else "not applied"
+    joints += " to the bending of jointed pipe that is not buckled; no threshold depends on it"
+    if worst is not None and math.isfinite(worst.onsets_drop):
+        size = show.value(worst.onsets_drop, "force")
+        torque += f". At the peak of {worst.id} the surface torque, the most there can be, takes off {size}"
+    hang = derived.sag_between_joints(scene.findings, worst) if worst is not None else None
+    if worst is not None and hang is not None:
+        sags, room = (f"{1e3 * part:.0f} mm" for part in hang)
+        lies = "the joints carry it" if hang[0] < hang[1] else "it lies on the wall between them"
+        if not math.isfinite(hang[0]):
+            sags = "to the wall"
+        joints += f". At the peak of {worst.id} the body sags {sags} of {room} between joints: {lies}"
+    origin = "[criteria] of the case, or default"
+    return [
+        ("effect of torque", torque, f"{origin}; He, Halsey and Kyllingstad 1995, energy of a helix"),
+        ("effect of tool joints", joints, f"{origin}; Paslay and Cernocky 1991, beam between joints"),
+    ]
 
 
 def noise_table(scene: Scene) -> Table:

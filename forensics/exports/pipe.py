@@ -1,0 +1,58 @@
+"""What an episode did to the pipe, as `summary.json` has it under the episode."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING, Any
+
+from forensics.exports.stamps import number
+
+if TYPE_CHECKING:
+    from forensics.episodes.pipe import PartToll, PipeToll
+
+STATES = ("none", "sinusoidal", "helical")
+
+
+def pipe_content(toll: PipeToll | None) -> dict[str, Any] | None:
+    """Lay out the toll of one episode.
+
+    Parameters
+    ----------
+    toll : PipeToll or None
+        None where the episode has none: it pressed nothing, or is not among the main ones.
+
+    Returns
+    -------
+    dict or None
+        Stresses [MPa], forces [kN], moments [kN.m], depths [m]; None where there is no number.
+    """
+    if toll is None:
+        return None
+    turned = toll.turned
+    return {
+        "torque_from": toll.torque_from,
+        "pressure_from": toll.pressure_from,
+        "parts": [_part(part) for part in toll.parts],
+        "turned_while_buckled": turned
+        and {
+            "revolutions": number(turned.revolutions, 1),
+            "fatigue_rank": turned.rank,
+            "fatigue_share_of_greatest": number(turned.share, 4),
+        },
+    }
+
+
+def _part(part: PartToll) -> dict[str, Any]:
+    strength = part.component.yield_strength
+    return {
+        "component": part.component.name,
+        "buckled": part.buckled,
+        "md_m": number(part.md, 1),
+        "state": STATES[part.state],
+        "bending_MPa": number(part.bending / 1e6, 2),
+        "stress_MPa": number(part.stress / 1e6, 2),
+        "yield_MPa": None if strength is None else number(strength / 1e6, 1),
+        "yield_use": number(part.use, 4),
+        "rated_use": number(part.rated_use, 4),
+        "tension_margin_kN": number(part.tension_margin / 1e3, 1),
+        "torque_margin_kNm": number(part.torque_margin / 1e3, 2),
+    }

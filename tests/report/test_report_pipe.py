@@ -1,0 +1,82 @@
+"""What the report says of the pipe: missing ratings are named, turns are ranked, effects are stated."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+
+import pytest
+
+from forensics.case import CriteriaSettings
+from forensics.episodes.catalogue import Consequence
+from forensics.episodes.pipe import PartToll, PipeToll, Turned
+from forensics.report import derived
+from forensics.report.describe import make_scene
+from forensics.report.elements import Notice, Table
+from forensics.report.sections import method, pipe
+
+NAN = float("nan")
+
+
+@pytest.fixture
+def with_tolls(findings):
+    top, heavy = findings.well.string.components[-1], findings.well.string.components[-2]
+    part = PartToll(replace(top, yield_strength=931e6), True, 2801.4, 2, 80e6, 310e6, 0.333, 0.2, 9e5, 2.1e4)
+    bare = PartToll(heavy, False, 3200.0, 0, 5e6, 60e6, NAN, NAN, NAN, NAN)
+    first, second, third = (e.id for e in findings.episodes)
+    tolls = {
+        first: PipeToll((bare, part), "surface torque", "standpipe", Turned(400.0, 1e-5, 2, 0.25)),
+        second: PipeToll((bare,), "surface torque", "standpipe", Turned(900.0, 4e-5, 1, 1.0)),
+        third: PipeToll((bare,), "surface torque", "standpipe", Turned(NAN, NAN)),
+    }
+    last = replace(findings.episodes[2], consequence=Consequence.WEIGHT_LOST)
+    return replace(findings, episodes=(*findings.episodes[:2], last), tolls=tolls)
+
+
+def test_missing_ratings_are_named(with_tolls):
+    scene = make_scene(with_tolls, "metric")
+    table = pipe.stress_table(scene, with_tolls.episodes[0])
+    bare, buckled = table.rows
+    assert bare[4:] == ("not given",) * 4
+    assert buckled[0] == "pipe, buckled (helical there)"
+    assert buckled[1:] == ("2801", "80", "310", "33 %", "20 %", "900", "21.0")
+    assert "new (none given in [limits])" in table.note
+    assert pipe.stress_table(make_scene(replace(with_tolls, tolls={}), "metric"), scene.mains[0]) is None
+
+
+def test_turns_are_ranked_with_their_caution(with_tolls):
+    section = pipe.describe(make_scene(with_tolls, "metric"))
+    table = next(e for e in section.elements if isinstance(e, Table))
+    ids = [e.id for e in with_tolls.episodes]
+    assert [row[:3] for row in table.rows] == [
+        ("1", ids[1], "900"),
+        ("2", ids[0], "400"),
+        ("", ids[2], "no rpm in the log"),
+    ]
+    assert [row[3] for row in table.rows] == ["1.00", "0.25", "not ranked"]
+    notice = next(e for e in section.elements if isinstance(e, Notice))
+    assert "no remaining life" in notice.items[0]
+
+
+def test_without_turns_the_table_says_so(findings):
+    section = pipe.describe(make_scene(findings, "field"))
+    table = next(e for e in section.elements if isinstance(e, Table))
+    assert not table.rows
+    assert "did not turn" in table.empty
+
+
+def test_effects_are_stated_with_their_size(findings, build_case):
+    episodes = tuple(replace(e, onsets_drop=4.2e3) for e in findings.episodes)
+    case = build_case(criteria=CriteriaSettings(torque_effect=True, tool_joint_effect=False))
+    torque, joints = method.effects(make_scene(replace(findings, case=case, episodes=episodes), "metric"))
+    assert torque[1].startswith("applied")
+    assert "takes off 4.20 kN" in torque[1]
+    assert joints[1].startswith("not applied")
+    assert "the joints carry it" in joints[1]
+
+
+def test_sag_is_for_jointed_pipe_only(findings):
+    episode = findings.episodes[0]
+    hangs, room = derived.sag_between_joints(findings, episode)
+    assert 0.0 < hangs < room == pytest.approx((0.1683 - 0.127) / 2)
+    at_motor = replace(episode, peak_md=float(findings.log.values["bit_depth"][episode.peak]) - 4.0)
+    assert derived.sag_between_joints(findings, at_motor) is None
