@@ -226,7 +226,8 @@ def _result(solved: Solved, problem: Problem, fixed: bool, inputs: _Inputs) -> C
     n = len(problem.value)
     # where plateau and steady weights disagree by more than the plateau's own sigma, neither is that good
     sd[0] *= max(1.0, abs(p[0] - prior.centre[0]) / prior.sigma[0])
-    block = _estimate(p[0], sd[0], inputs.rig.block_weight.source if n == 0 else "steady weights", n)
+    # without steady weights nothing was learned beyond what the rig's own readings say
+    block = _estimate(p[0], sd[0], "steady weights", n) if n else inputs.rig.block_weight
     bias = Estimate(0.0, 0.0, 0.0, "part of the block weight", determined=False)
     if prior.given_block is not None:
         given = prior.given_block
