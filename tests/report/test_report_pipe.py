@@ -71,7 +71,10 @@ def test_effects_are_stated_with_their_size(findings, build_case):
     assert torque[1].startswith("applied")
     assert "takes off 4.20 kN" in torque[1]
     assert joints[1].startswith("not applied")
-    assert "the joints carry it" in joints[1]
+    assert "so that the joints hold it off" in joints[1]
+    still = tuple(replace(e, onsets_drop=0.0) for e in findings.episodes)
+    torque, _ = method.effects(make_scene(replace(findings, episodes=still), "metric"))
+    assert torque[1].endswith("nothing to take off")
 
 
 def test_sag_is_for_jointed_pipe_only(findings):

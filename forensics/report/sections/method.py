@@ -4,12 +4,15 @@ from __future__ import annotations
 
 import math
 
+from forensics.episodes.catalogue import Episode
 from forensics.report import derived
 from forensics.report.elements import Bullets, Column, Notice, Section, Table, Text
 from forensics.report.scene import Scene
 from forensics.report.sections.cautions import GENERAL, METHOD_LIMITS
 from forensics.report.sections.first import worst_episode
 from forensics.report.words import duration, fixed, plain
+
+LEAST_DROP = 50.0  # N; less is nothing
 
 # Quantity of each channel whose noise is shown.
 _NOISE = {
@@ -85,27 +88,44 @@ def assumption_table(scene: Scene) -> Table:
 
 def effects(scene: Scene) -> list[tuple[str, str, str]]:
     """Say which effects of torque and tool joints are applied, and what each comes to at the main episode."""
-    rules, show = scene.findings.case.criteria, scene.show
+    rules = scene.findings.case.criteria
     worst = worst_episode(scene)
     torque = "applied" if rules.torque_effect else "not applied"
     torque += " to the published helical onsets; the replay's own thresholds leave torque out"
     joints = "applied" if rules.tool_joint_effect else "not applied"
     joints += " to the bending of jointed pipe that is not buckled; no threshold depends on it"
-    if worst is not None and math.isfinite(worst.onsets_drop):
-        size = show.value(worst.onsets_drop, "force")
-        torque += f". At the peak of {worst.id} the surface torque, the most there can be, takes off {size}"
-    hang = derived.sag_between_joints(scene.findings, worst) if worst is not None else None
-    if worst is not None and hang is not None:
-        sags, room = (f"{1e3 * part:.0f} mm" for part in hang)
-        lies = "the joints carry it" if hang[0] < hang[1] else "it lies on the wall between them"
-        if not math.isfinite(hang[0]):
-            sags = "to the wall"
-        joints += f". At the peak of {worst.id} the body sags {sags} of {room} between joints: {lies}"
+    if worst is not None:
+        torque += _torque_size(scene, worst)
+        joints += _sag(scene, worst)
     origin = "[criteria] of the case, or default"
     return [
         ("effect of torque", torque, f"{origin}; He, Halsey and Kyllingstad 1995, energy of a helix"),
         ("effect of tool joints", joints, f"{origin}; Paslay and Cernocky 1991, beam between joints"),
     ]
+
+
+def _torque_size(scene: Scene, episode: Episode) -> str:
+    """Say what torque takes off the onsets at an episode's peak, in a sentence."""
+    drop = episode.onsets_drop
+    if not math.isfinite(drop):
+        return ""
+    if drop < LEAST_DROP:
+        return f". At the peak of {episode.id} the string carried no torque at surface: nothing to take off"
+    size = scene.show.value(drop, "force")
+    return f". At the peak of {episode.id} the surface torque, the most there can be, takes off {size}"
+
+
+def _sag(scene: Scene, episode: Episode) -> str:
+    """Say whether the joints hold the body off the wall at an episode's peak, in a sentence."""
+    found = derived.sag_between_joints(scene.findings, episode)
+    if found is None:
+        return ""
+    hang, room = found
+    free = f"{fixed(1e3 * room, 0)} mm are free"
+    start = f". At the peak of {episode.id} {free} between the body and the wall; "
+    if hang < room:
+        return f"{start}it sags {fixed(1e3 * hang, 0)} mm between joints, so that the joints hold it off"
+    return f"{start}it would sag more between joints, so that it lies on the wall: see the other clearance"
 
 
 def noise_table(scene: Scene) -> Table:
