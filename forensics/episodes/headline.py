@@ -215,6 +215,8 @@ def _confidence(material: Material, main: list[Episode]) -> str:
     if not np.isfinite(chance):
         return f"low: the spread over friction draws was not reckoned; {friction}"
     grade = "high" if chance >= SURE and not weak else "moderate" if chance >= LIKELY else "low"
+    if blind and main[0].kind is Kind.LOCKUP:  # its rule asks for a string that doesn't turn
+        grade = "low"
     share = "every draw" if chance >= CERTAIN else f"{100.0 * chance:.0f} % of the draws"
     return f"{grade}: its rule holds in {share} of friction and weight; {friction}"
 

@@ -8,7 +8,9 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
+from forensics.episodes.catalogue import Kind
 from forensics.episodes.describe import describe
+from forensics.episodes.headline import _confidence
 from forensics.episodes.wording import period
 from forensics.rig.view import Activity
 
@@ -129,3 +131,12 @@ def test_nothing_read_off_the_log_is_low_confidence(make_run):
     )
     confidence = describe(replace(material, calibration=bare)).headline.confidence
     assert confidence.startswith("low: the log shows neither")
+
+
+def test_a_lockup_is_not_sure_where_rotation_was_not_logged(make_run):
+    material = stacked(make_run).material()
+    found = replace(describe(material).episodes[0], probability=0.99)
+    kept = {name: values for name, values in material.log.values.items() if name not in ("rpm", "torque")}
+    blind = replace(material, log=replace(material.log, values=kept))
+    assert _confidence(blind, [replace(found, kind=Kind.LOCKUP)]).startswith("low")
+    assert _confidence(blind, [found]).startswith("moderate")
