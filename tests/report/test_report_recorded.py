@@ -2,11 +2,12 @@
 
 from dataclasses import replace
 
+import numpy as np
 import pytest
 
 from forensics.logs.records import RecordedSlide, RecordedWeight
 from forensics.report.describe import make_scene
-from forensics.report.sections import recorded
+from forensics.report.sections import calibration, recorded
 from forensics.rig.view import Activity
 
 
@@ -48,3 +49,25 @@ def test_a_slide_tells_how_much_of_it_the_log_has_as_slid(findings):
     assert table.rows[0][2] == "100 %"
     assert table.rows[1][2] == "no drilling in the log"
     assert "outside the slides" in table.note
+
+
+def with_channel(findings, **values):
+    return replace(findings, log=replace(findings.log, values={**findings.log.values, **values}))
+
+
+def words(findings):
+    section = calibration.describe(make_scene(findings, "metric"))
+    return " ".join(element.text for element in section.elements if element.form == "text")
+
+
+def test_a_downhole_weight_is_held_against_the_reconstruction(findings):
+    assert "downhole" not in words(findings)
+    told = words(with_channel(findings, downhole_wob=findings.loads.bit_load - 7e3))
+    assert "is 7.00 kN above it (median)" in told
+    off = replace(findings, rig=replace(findings.rig, on_bottom=findings.rig.on_bottom & False))
+    assert "none with the bit on bottom" in words(with_channel(off, downhole_wob=findings.loads.bit_load))
+
+
+def test_the_log_s_mud_is_held_against_the_case_s(findings):
+    told = words(with_channel(findings, mud_density=np.full(len(findings.log), 1250.0)))
+    assert "Mud density in the log is 1.25 g/cm³ (median); loads rest on that of the case, 1.32 g/cm³" in told

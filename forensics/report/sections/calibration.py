@@ -19,6 +19,7 @@ def describe(scene: Scene) -> Section:
     """Describe fit and residuals."""
     elements: list[Element] = [Text(_fit_sentence(scene)), _fan(scene), _residuals(scene), tare_table(scene)]
     elements += recorded.tables(scene)
+    elements += [Text(text) for text in (_downhole(scene), _mud(scene)) if text]
     return Section("fit", "How far the model fits", tuple(elements))
 
 
@@ -35,6 +36,39 @@ def _fit_sentence(scene: Scene) -> str:
     rms = scene.show.value(cal.residual_rms, "force")
     return (
         f"Calibrated on steady off-bottom readings: {parts}. Hookload readings miss the model by {rms} (rms)."
+    )
+
+
+def _downhole(scene: Scene) -> str:
+    """Hold the reconstructed bit load against a downhole one, where the log has it."""
+    found, show = scene.findings, scene.show
+    measured = found.log.get("downhole_wob")
+    if measured is None:
+        return ""
+    rows = found.rig.on_bottom & np.isfinite(measured) & np.isfinite(found.loads.bit_load)
+    if not rows.any():
+        return "The log has a downhole weight on bit, but none with the bit on bottom."
+    off = found.loads.bit_load[rows] - measured[rows]
+    middle, wide = float(np.median(off)), float(np.quantile(np.abs(off - np.median(off)), 0.9))
+    return (
+        "The log has a downhole weight on bit, which the reconstruction does not use: over "
+        f"{count(int(rows.sum()), 'sample')} on bottom the reconstructed bit load is "
+        f"{show.value(abs(middle), 'force')} {'above' if middle >= 0.0 else 'below'} it (median), and nine "
+        f"in ten samples lie within {show.value(wide, 'force')} of that."
+    )
+
+
+def _mud(scene: Scene) -> str:
+    """Hold the case's mud against the log's, where the log has one."""
+    found, show = scene.findings, scene.show
+    logged = found.log.get("mud_density")
+    if logged is None:
+        return ""
+    middle = float(np.nanmedian(logged))
+    return (
+        f"Mud density in the log is {show.value(middle, 'density')} (median); loads rest on that of the "
+        "case, "
+        f"{show.value(found.well.fluid.typical, 'density')}."
     )
 
 
