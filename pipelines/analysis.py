@@ -138,7 +138,7 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
             load_clustering()
     with progress.stage("episodes", "grouping episodes"):
         told = tell(material, weighed)
-        episodes = tuple(_placed(e, made, material.case) for e in told.episodes)
+        episodes = tuple(_placed(e, made, material) for e in told.episodes)
     with progress.stage("profiles", "taking load profiles"):
         mains = main_episodes(episodes)
         taken = profiles(made, [episode.peak for episode in mains])
@@ -164,14 +164,14 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
     )
 
 
-def _placed(episode: Episode, made: Replay, case: Case) -> Episode:
+def _placed(episode: Episode, made: Replay, material: Material) -> Episode:
     """Hold an episode that presses the string against the criteria at the place of its peak."""
     if episode.kind not in PRESSED:
         return episode
     row, md = episode.peak, episode.peak_md
     at = place_numbers(made, row, md, episode.peak_compression.value)
     episode = replace(episode, critical_load=critical_load(made, row, md))
-    return with_onsets(episode, at, case.criteria.torque_effect)
+    return with_onsets(episode, at, material.case.criteria.torque_effect, material.system)
 
 
 def _remarks(material: Material) -> tuple[str, ...]:

@@ -66,8 +66,9 @@ class FrictionSettings:
 class CriteriaSettings:
     """`[criteria]`: thresholds and episode rules [s].
 
-    `torque_effect` lowers the published helical onsets by what torque does; `tool_joint_effect` bends
-    jointed pipe more than the hole is curved, as its joints make it.
+    `torque_effect` lowers the published helical onsets that an episode is held against by what torque does;
+    the replay's own thresholds leave it out, as it is a few per cent of them and sliding pipe has hardly any.
+    `tool_joint_effect` bends jointed pipe more than the hole is curved, as its joints make it.
     """
 
     helical_onset: str = "chen"

@@ -12,7 +12,9 @@ from forensics.mechanics.torque import onset_drop
 from forensics.replay.places import PlaceNumbers
 
 
-def with_onsets(episode: Episode, at: PlaceNumbers | None, torque_effect: bool = False) -> Episode:
+def with_onsets(
+    episode: Episode, at: PlaceNumbers | None, torque_effect: bool = False, system: str = "metric"
+) -> Episode:
     """Say of an episode how far past the published helical onsets its compression was.
 
     Parameters
@@ -23,6 +25,8 @@ def with_onsets(episode: Episode, at: PlaceNumbers | None, torque_effect: bool =
         Its peak's place at its compression; None where there is none.
     torque_effect : bool
         Whether torque lowers the onsets.
+    system : str
+        "metric" or "field": units of its sentences.
 
     Returns
     -------
@@ -47,4 +51,5 @@ def with_onsets(episode: Episode, at: PlaceNumbers | None, torque_effect: bool =
     note = episode.note
     if episode.state is State.HELICAL or most:
         note = "; ".join(filter(None, (note, f"published helical onsets: {words}")))
-    return replace(episode, onsets=words, onsets_beyond=validity_words(place), onsets_drop=drop, note=note)
+    beyond = validity_words(place, system)
+    return replace(episode, onsets=words, onsets_beyond=beyond, onsets_drop=drop, note=note)

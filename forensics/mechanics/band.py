@@ -17,6 +17,7 @@ from forensics.mechanics.critical import CRITERIA, HELICAL_ONSETS, Place
 from forensics.mechanics.eigen import Floats
 from forensics.mechanics.selfconsistent import local_load
 from forensics.mechanics.threshold import helical_load
+from forensics.units import display_unit
 
 ORDER = tuple(sorted(HELICAL_ONSETS, key=lambda name: HELICAL_ONSETS[name].factor))
 """Names of the onsets from the lowest load to the highest."""
@@ -134,13 +135,15 @@ def outside_validity(place: Place) -> tuple[str, ...]:
     return tuple(found)
 
 
-def validity_words(place: Place) -> str:
+def validity_words(place: Place, system: str = "metric") -> str:
     """Say at one place which helical onsets are used beyond the range they were published for.
 
     Parameters
     ----------
     place : Place
         One place: scalars.
+    system : str
+        "metric" or "field": unit of the curvatures.
 
     Returns
     -------
@@ -150,7 +153,7 @@ def validity_words(place: Place) -> str:
     Examples
     --------
     >>> validity_words(Place(1.23e6, 0.0445, 241.0, math.radians(60), math.radians(3) / 30))
-    'Chen, Wu and Mitchell hold for 15 to 90 deg and up to 0.5 deg/30 m; here 60.0 deg and 3.0 deg/30 m'
+    'Chen, Wu and Mitchell hold for 15 to 90 deg and up to 0.5 deg/30m; here 60.0 deg and 3.0 deg/30m'
     """
     # a hole that points upwards presses the pipe as its mirror image does
     angle = float(np.asarray(place.inclination))
@@ -162,13 +165,14 @@ def validity_words(place: Place) -> str:
             outside.setdefault((*validity.inclination, validity.curvature), []).append(name.capitalize())
     if not outside:
         return ""
+    label, scale = display_unit("angle_per_length", system)
     said = [
         f"{_list(names)} {'holds' if len(names) == 1 else 'hold'} for {math.degrees(low):.0f} to "
-        f"{math.degrees(high):.0f} deg and up to {math.degrees(most) * 30:.1f} deg/30 m"
+        f"{math.degrees(high):.0f} deg and up to {most / scale:.1f} {label}"
         for (low, high, most), names in outside.items()
     ]
-    bend = math.degrees(float(np.hypot(place.build, np.asarray(place.turn) * math.sin(angle)))) * 30
-    return f"{'; '.join(said)}; here {math.degrees(angle):.1f} deg and {bend:.1f} deg/30 m"
+    bend = float(np.hypot(place.build, np.asarray(place.turn) * math.sin(angle))) / scale
+    return f"{'; '.join(said)}; here {math.degrees(angle):.1f} deg and {bend:.1f} {label}"
 
 
 def clearance_band(

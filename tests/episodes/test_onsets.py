@@ -100,6 +100,8 @@ def test_a_place_outside_the_published_range_is_named():
     bent = replace(at, place=replace(at.place, build=math.radians(3.0) / 30.0))
     said = with_onsets(pressed(2e5, 2e5, 2e5), bent).onsets_beyond
     assert said.startswith("Chen, Wu and Mitchell hold for 15 to 90 deg")
-    assert said.endswith("here 60.0 deg and 3.0 deg/30 m")
+    assert said.endswith("here 60.0 deg and 3.0 deg/30m")
+    field = with_onsets(pressed(2e5, 2e5, 2e5), bent, system="field").onsets_beyond
+    assert field.endswith("here 60.0 deg and 3.0 deg/100ft")
     up = replace(at, place=replace(at.place, inclination=math.radians(91.0)))
     assert with_onsets(pressed(2e5, 2e5, 2e5), up).onsets_beyond == ""

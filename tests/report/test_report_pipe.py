@@ -52,7 +52,7 @@ def test_turns_are_ranked_with_their_caution(with_tolls):
         ("2", ids[0], "400"),
         ("", ids[2], "no rpm in the log"),
     ]
-    assert [row[3] for row in table.rows] == ["1.00", "0.25", "not ranked"]
+    assert [row[3] for row in table.rows] == ["1.000", "0.250", "not ranked"]
     notice = next(e for e in section.elements if isinstance(e, Notice))
     assert "no remaining life" in notice.items[0]
 

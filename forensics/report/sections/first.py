@@ -202,7 +202,10 @@ def describe_margins(scene: Scene) -> Table | None:
     grade = scene.findings.case.limits.pipe_class
     note = "Single samples count. A limit on one quantity says nothing of pull, torque and pressure together."
     if grade:
-        note += f" The case states pipe class {grade}; ratings are used as the string table gives them."
+        note += (
+            f" The case states pipe class {grade}: ratings are used here as the string table gives them; the "
+            "tables of what episodes did to the string take the wear into account."
+        )
     columns = tuple(Column(t, a) for t, a in zip(titles, aligns, strict=True))
     return Table("Margins against the limits given", columns, tuple(rows), note)
 

@@ -120,11 +120,11 @@ def _sag(scene: Scene, episode: Episode) -> str:
     found = derived.sag_between_joints(scene.findings, episode)
     if found is None:
         return ""
-    hang, room = found
-    free = f"{fixed(1e3 * room, 0)} mm are free"
-    start = f". At the peak of {episode.id} {free} between the body and the wall; "
-    if hang < room:
-        return f"{start}it sags {fixed(1e3 * hang, 0)} mm between joints, so that the joints hold it off"
+    scale, unit, places = (1e3, "mm", 0) if scene.show.system == "metric" else (1.0 / 0.0254, "in", 2)
+    hang, room = (fixed(scale * part, places) for part in found)
+    start = f". At the peak of {episode.id} {room} {unit} are free between the body and the wall; "
+    if found[0] < found[1]:
+        return f"{start}it sags {hang} {unit} between joints, so that the joints hold it off"
     return f"{start}it would sag more between joints, so that it lies on the wall: see the other clearance"
 
 

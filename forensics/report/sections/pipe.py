@@ -68,7 +68,7 @@ def ranking_table(turned: list[tuple[Episode, PipeToll]]) -> Table:
         if found is None:
             continue
         turns = fixed(found.revolutions, 0) if math.isfinite(found.revolutions) else "no rpm in the log"
-        share = fixed(found.share, 2) if found.rank else "not ranked"
+        share = fixed(found.share, 3) if found.rank else "not ranked"
         rows.append((str(found.rank) if found.rank else "", episode.id, turns, share))
     note = (
         "Turns: rotary speed summed over the samples with any of the string buckled. Exposure: turns over "
