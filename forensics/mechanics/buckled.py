@@ -187,7 +187,9 @@ def after_buckling(place: PipeInHole, state: ArrayLike, method: str = "periodic"
         A straight place keeps its contact; everything else is zero there.
     """
     state = np.asarray(state)
-    wave, turn = sinusoidal(place, method), helical(place)
+    turn = helical(place)
+    # the table of sinusoids takes its time to make: only where there is one
+    wave = sinusoidal(place, method) if np.any(state == 1) else turn
     contact = np.asarray(place.contact, dtype=float)
 
     def pick(name: str, straight: float | Floats) -> Floats:
