@@ -19,7 +19,8 @@ import pytest
 from sklearn.metrics import f1_score
 
 from forensics.case import load_case
-from forensics.episodes.catalogue import Kind
+from forensics.episodes.catalogue import Kind, State
+from forensics.report.derived import helix_bending_stress
 from forensics.rig.view import Activity
 from pipelines.analysis import analyse
 from pipelines.progress import Progress
@@ -133,3 +134,20 @@ def test_drag_of_cuttings_is_found_where_it_was():
     real = [any(start < b and end > a for a, b in spans) for start, end in found]
     assert np.mean(seen) >= 0.8
     assert np.mean(real) >= 0.8
+
+
+@pytest.mark.parametrize("name", ["lateral_slide", "liner_lockup"])
+def test_helical_episodes_say_what_they_passed_and_what_they_did_to_the_pipe(name):
+    """The onset that flags a helix is Chen's, and its bending is Lubinski's at the place of the peak."""
+    found = well(name).found
+    helical = [e for e in found.episodes if e.state is State.HELICAL and e.kind is Kind.BUCKLING]
+    assert helical
+    assert all("past Chen" in e.onsets or e.onsets == "past all criteria" for e in helical)
+    for episode in (e for e in helical if e.id in found.tolls):
+        buckled = [part for part in found.tolls[episode.id].parts if part.state == 2]
+        assert buckled
+        published = helix_bending_stress(found, episode, episode.peak_compression.value)
+        # the greatest load ratio need not be where it bends most, and the hole bends it too
+        assert max(part.bending for part in buckled) >= 0.95 * published > 0
+        assert all(part.stress >= part.bending for part in buckled)
+        assert all(np.isnan(part.use) for part in buckled)  # these tallies give no yield
