@@ -57,13 +57,7 @@ def rule_for(channel: str, interval: float) -> SpikeRule:
     At 5 s and more a single sample can be a real event of its own (a joint picked up, a tag), so only
     what lies plainly outside everything else in the channel counts there.
     """
-    floor = {
-        "hookload": 15e3,
-        "hookload_max": 15e3,
-        "wob": 15e3,
-        "torque": 1.0e3,
-        "standpipe_pressure": 5e5,
-    }.get(channel, 0.0)
+    floor = FLOORS.get(channel, 0.0)
     if interval >= COARSE:
         return SpikeRule(longest=1, noise=15.0, share=0.1, floor=floor, beyond=0.1)
     return SpikeRule(share=0.04 if channel == "hookload" else 0.1, floor=floor)
