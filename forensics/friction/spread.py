@@ -22,7 +22,7 @@ SPLIT_OVER = 450.0
 
 #: Doglegs too short for the survey press the string against the wall by its tension: drag of this part of
 #: the string's weight, one sigma. Little beside a lateral's drag, a good part of a vertical well's.
-MODEL_TORTUOSITY = 0.002
+MODEL_TORTUOSITY = 0.003
 
 #: Readings nearer than this in bit depth are not independent [m] (one stand).
 STAND = 30.0
@@ -133,6 +133,7 @@ def draw(p: Floats, cov: Floats, levers: tuple[float, float]) -> Floats:
     rng = np.random.default_rng(20240229)
     z = rng.standard_normal((DRAWS // 2, len(p)))
     z = np.vstack([z, -z])  # mirrored pairs keep the mean exact
+    z = z @ np.linalg.inv(np.linalg.cholesky(z.T @ z / len(z))).T  # and this the spread
     sd = np.sqrt(np.diag(cov))
     unit = np.where(sd > 0.0, sd, 1.0)
     values, vectors = np.linalg.eigh(cov / np.outer(unit, unit))

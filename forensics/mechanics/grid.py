@@ -24,6 +24,7 @@ Ints = NDArray[np.int64]
 DEPTH_STEP = 0.5  # m; a quarter of a metre of placement error is far below survey error
 STATION_STEP = 10.0  # m
 MIN_CLEARANCE = 0.002  # m; less than this and the place is a support
+SURVEY_SIGMA = np.radians(0.05)  # random error of a station's direction; common practice, no source
 LIKE_STIFFNESS = 2.0  # a fall by more than half ends a run of like stiffness
 
 
@@ -102,16 +103,45 @@ def hole_grid(well: Well, depth: float) -> HoleGrid:
     middle = np.maximum(md - 0.5 * DEPTH_STEP, 0.0)
     way = well.trajectory.at(middle)
     cos_i = way.tangent[:, 2]
+    curvature = told_curvature(well, middle, way.curvature)
     return HoleGrid(
         step=DEPTH_STEP,
         cos_i=np.ascontiguousarray(cos_i),
         sin2=np.maximum(1.0 - cos_i**2, 0.0),
-        kappa2=np.einsum("ij,ij->i", way.curvature, way.curvature),
-        kappa_d=np.ascontiguousarray(way.curvature[:, 2]),
+        kappa2=np.einsum("ij,ij->i", curvature, curvature),
+        kappa_d=np.ascontiguousarray(curvature[:, 2]),
         tvd=np.asarray(well.trajectory.at(md).tvd, dtype=float),
         open_hole=np.asarray(well.hole.is_open(middle), dtype=bool),
         diameter=np.asarray(well.hole.diameter_at(middle), dtype=float),
     )
+
+
+def told_curvature(well: Well, md: Floats, curvature: Floats) -> Floats:
+    """Keep of a survey's curvature what its accuracy can tell from none, shape (n, 3) [1/m].
+
+    Parameters
+    ----------
+    well : Well
+    md : ndarray, shape (n,)
+        Measured depths [m].
+    curvature : ndarray, shape (n, 3)
+        Between stations, as surveyed [1/m].
+
+    Notes
+    -----
+    Two stations a length L apart that are each off by sigma make a dogleg of sqrt(2) sigma / L where there is
+    none. Under tension such doglegs rub, and as the wall force has no sign they do not cancel: in a straight
+    near-vertical hole they can double the drag of the model and so halve the friction found. Curvature below
+    that of the noise is taken for none, from three times the noise on it is kept whole, and between it is
+    kept in part, linear in its square. Ours.
+    """
+    stations = well.trajectory.md
+    row = np.clip(np.searchsorted(stations, md, side="right"), 1, max(len(stations) - 1, 1))
+    apart = np.diff(stations)[row - 1] if len(stations) > 1 else np.full(len(md), np.inf)
+    noise = np.sqrt(2.0) * SURVEY_SIGMA / apart
+    square = np.einsum("ij,ij->i", curvature, curvature)
+    share = np.clip((square / noise**2 - 1.0) / 8.0, 0.0, 1.0)
+    return curvature * share[:, None]
 
 
 def pipe_grid(well: Well, depth: float, clearance: str = "tool_joint") -> PipeGrid:
@@ -231,7 +261,7 @@ def averaged(hole: HoleGrid, well: Well, window: float) -> tuple[Floats, Floats,
     down = np.array([0.0, 0.0, 1.0])
     weight_part = down - way.tangent[:, 2:3] * way.tangent
     half = max(1, round(0.5 * window / hole.step))
-    kappa = _smooth(way.curvature, half)
+    kappa = _smooth(way.curvature, half)  # the mean over a wave is remedy enough for a survey's scatter
     across = _smooth(weight_part, half)
     return (
         np.einsum("ij,ij->i", kappa, kappa),

@@ -64,6 +64,7 @@ def replay(run: Replay) -> LoadHistory:
     replay_rows(
         run.model.setting(cased, open_hole), Run(samples, run.rules, found, memory, now, float(depths[1]))
     )
+    found.bit_load[run.prepared.far] = 0.0
     expected, drag = drag_lines(run.prepared, run.rig, run.calibration, run.model, found)
     lost = run.rig.wob_surface - found.bit_load
     return LoadHistory(

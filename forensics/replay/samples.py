@@ -29,11 +29,15 @@ MIN_REVERSAL = 0.02  # m; a block that comes back by less has not reversed
 
 @dataclass(frozen=True)
 class Prepared:
-    """Samples for the kernels, with the smoothed hookload and the block and pipe weight taken off it [N]."""
+    """Samples for the kernels, with the smoothed hookload and the block and pipe weight taken off it [N].
+
+    `far` marks rows on which the bit is so far off bottom that nothing can rest on it.
+    """
 
     samples: Samples
     hookload: Floats
     hanging: Floats
+    far: NDArray[np.bool_]
 
 
 def prepare(
@@ -66,7 +70,7 @@ def prepare(
         step=np.clip(np.diff(log.time, prepend=log.time[0]), 0.0, 4.0 * log.interval),
         witness=np.full(len(log), np.inf),
     )
-    return Prepared(samples, hookload, hanging)
+    return Prepared(samples, hookload, hanging, ~near)
 
 
 def _shows_pumps(log: TimeLog) -> bool:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from dataclasses import replace
 
 import numpy as np
 import pytest
@@ -10,6 +11,7 @@ import pytest
 from forensics.mechanics.grid import hole_grid, pipe_grid
 from forensics.mechanics.offbottom import OffBottomModel
 from forensics.mechanics.softstring import tension_from_bit, torque_from_bit
+from forensics.well.trajectory import build_trajectory
 from tests.naive_string import tension_at_rotary
 from tests.wells import build_well, one_pipe_well
 
@@ -108,3 +110,28 @@ def test_strings_side_by_side_weigh_what_each_weighs_alone(kind):
     assert together.shape == (99, 4)
     assert np.allclose(together[sound], alone[sound], rtol=0.0, atol=1e-12 * np.abs(alone[sound]).max())
     assert not np.any(together[~sound] > -1e6)
+
+
+def test_a_survey_that_scatters_does_not_double_the_drag():
+    """A straight hole at two degrees, stations off by a twentieth: the drag of the straight hole."""
+    md = np.arange(0.0, 2401.0, 30.0)
+    rng = np.random.default_rng(5)
+    straight = np.full(len(md), math.radians(2.0))
+    noisy = straight + np.radians(0.05) * rng.normal(size=len(md))
+    bearing = np.radians(0.05) / math.radians(2.0) * rng.normal(size=len(md))
+    model = OffBottomModel(build_well(), 2400.0)
+    weights = []
+    for inclination, azimuth in ((straight, np.zeros(len(md))), (noisy, bearing)):
+        well = replace(model.well, trajectory=build_trajectory(md, inclination, azimuth))
+        surveyed = OffBottomModel(well, 2400.0)
+        up, still = (surveyed.string_weight(kind, 2400.0, 0.3, 0.3)[0] for kind in ("pick_up", "rotating"))
+        weights.append(up - still)
+    assert weights[1] == pytest.approx(weights[0], rel=0.35)
+
+
+def test_real_curvature_is_kept_whole():
+    well = build_well()
+    hole = hole_grid(well, 3400.0)
+    built = 90.0 / 31 / 30.0 * math.pi / 180
+    middle = int(1400.0 / hole.step)
+    assert math.sqrt(hole.kappa2[middle]) == pytest.approx(built, rel=1e-9)
