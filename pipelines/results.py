@@ -17,7 +17,7 @@ from forensics.exports.stamps import stamp
 from forensics.exports.summary import write_summary
 from forensics.findings import Findings
 from forensics.logs.zone import tzinfo_of
-from forensics.report.words import Show, count, fixed
+from forensics.report.words import MINUS, Show, count, fixed
 from pipelines.progress import Progress
 
 EXPORTS: Mapping[str, Callable[[Findings, Path], None]] = {
@@ -82,7 +82,8 @@ def lines(findings: Findings, folder: Path, system: str = "metric") -> tuple[str
         _worst(findings, show),
         f"Report: {folder / 'report.html'}",
     ]
-    return tuple(" ".join(line.split()) for line in said if line)
+    # A terminal may know neither thin spaces nor a true minus.
+    return tuple(" ".join(line.split()).replace(MINUS, "-") for line in said if line)
 
 
 def _run(findings: Findings, show: Show) -> str:

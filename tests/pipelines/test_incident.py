@@ -2,6 +2,7 @@
 
 import json
 import shutil
+from dataclasses import replace
 
 import jsonschema
 import numpy as np
@@ -11,7 +12,7 @@ import pytest
 import cases
 from forensics.errors import InputError
 from forensics.exports.summary import summary_schema
-from pipelines import cli, incident
+from pipelines import cli, incident, results
 from pipelines.output import RESULTS
 
 JOB = cases.Job(duration=3700.0)
@@ -79,6 +80,14 @@ def test_result_is_told_in_ten_lines_at_most(result):
     assert result.lines[0].startswith("heron-1-run-2: ")
     assert result.lines[-1] == f"Report: {result.folder / 'report.html'}"
     assert all("\n" not in line for line in result.lines)
+
+
+def test_result_is_told_in_signs_any_terminal_has(result):
+    weight = replace(result.findings.calibration.block_weight, value=-12e3, low=-20e3, high=-4e3)
+    changed = replace(result.findings, calibration=replace(result.findings.calibration, block_weight=weight))
+    told = "\n".join(results.lines(changed, result.folder))
+    assert "Block weight: -12" in told
+    assert told.isascii()
 
 
 def test_every_stage_is_timed(result):
