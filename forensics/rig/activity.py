@@ -40,11 +40,12 @@ _STILL_SECONDS = 120.0
 class Surface:
     """What the surface shows at each row, for judging the bit; arrays of shape (n,).
 
-    `smooth` hookload averaged [N]; `direction` +1 down; `axial` share of the drag that acts along the
-    string while it turns, by its pitch of motion: + down, - up [-]; `differential` pressure re-zeroed, NaN
-    where there is none, with the level that counts as load [Pa].
+    `reading` hookload as read and `smooth` averaged [N]; `direction` +1 down; `axial` share of the drag that
+    acts along the string while it turns, by its pitch of motion: + down, - up [-]; `differential` pressure
+    re-zeroed, NaN where there is none, with the level that counts as load [Pa].
     """
 
+    reading: Floats
     smooth: Floats
     direction: NDArray[np.int8]
     speed: Floats
@@ -112,9 +113,14 @@ def _vote_by_weight(
     settled &= signals.weighed
     turned, still = surface.turning & settled, ~surface.turning & settled
     limit = weight_limit(rotating, signals)
-    load = turning_reference(references, surface.axial) - surface.smooth
+    free = turning_reference(references, surface.axial)
+    load = free - surface.smooth
     _vote(vote, turned & (load > limit), 1)
     _vote(vote, turned & (load < 0.5 * limit), -1)
+    # A turning string drags so little that, once raised, it has left the bottom in the very row that shows
+    # its weight; the average still holds the load of the rows before.
+    raised = (surface.direction < 0) & (depths.gap > _TOUCH)
+    _vote(vote, turned & raised & (free - surface.reading < limit), -1)
     limit = weight_limit(slack, signals)
     load = local_slack_off(surface, depths, slack, signals) - surface.smooth
     _vote(vote, still & (load > limit), 1)

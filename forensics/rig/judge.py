@@ -153,6 +153,7 @@ def _surface(facts: Facts) -> Surface:
     rpm = noise.fill(drives.rpm) if np.isfinite(drives.rpm).any() else np.full(len(log), _COMMON_RPM)
     spin = np.abs(rpm) * (2.0 * np.pi / 60.0) * radius
     return Surface(
+        reading=moves.hookload,
         smooth=noise.running_mean(moves.hookload, signals.count(SMOOTHING)),
         direction=moves.direction,
         speed=moves.speed,
