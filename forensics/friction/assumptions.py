@@ -19,6 +19,16 @@ KINDS = ("cased", "open")
 #: Middle of the usual ranges for water- and oil-base muds (trade values, from memory).
 DEFAULT_FACTOR = {"cased": 0.20, "open": 0.28}
 
+#: Usual factors by kind of mud, cased and open; the first whose words the case's `mud_system` holds counts
+#: (trade values, from memory).
+BY_MUD: tuple[tuple[tuple[str, ...], dict[str, float]], ...] = (
+    (("synthetic", "sbm"), {"cased": 0.15, "open": 0.20}),
+    (("oil", "obm", "diesel", "invert"), {"cased": 0.18, "open": 0.21}),
+    (("polymer",), {"cased": 0.19, "open": 0.25}),
+    (("brine", "completion fluid"), {"cased": 0.33, "open": 0.35}),
+    (("water", "wbm", "gel", "bentonite"), {"cased": 0.25, "open": 0.32}),
+)
+
 #: One sigma of the weak prior: the spread of usual factors over muds (trade values, from memory).
 FACTOR_SIGMA = {"cased": 0.08, "open": 0.10}
 
@@ -70,7 +80,7 @@ class Prior:
 
 
 def assumed_factor(kind: str, case: Case, well: Well) -> Assumed:
-    """Find the factor to start from: hole table before case file before the program's default.
+    """Find the factor to start from: hole table, case file, kind of mud, the program's default.
 
     Parameters
     ----------
@@ -94,6 +104,10 @@ def assumed_factor(kind: str, case: Case, well: Well) -> Assumed:
     stated = getattr(case.friction, kind)
     if stated is not None:
         return Assumed(float(stated), "case file")
+    mud = (case.mud_system or "").casefold()
+    for words, factors in BY_MUD:
+        if any(word in mud for word in words):
+            return Assumed(factors[kind], f"usual in {case.mud_system}")
     return Assumed(DEFAULT_FACTOR[kind], "the program's default")
 
 

@@ -23,11 +23,14 @@ from forensics.mechanics.kernels_memory import (
 
 HOLD, TURN, SLIDE = 0, 1, 2  # what a sample lets the string do
 BY_HOOKLOAD, BY_MEMORY, BY_RATE, BY_PRESSURE = 0, 1, 2, 3  # what the bit load rests on
-MODE, WAY, HOOK, REACH, AT, TOP, LIFT = range(7)  # columns of `Run.now`
+MODE, WAY, HOOK, REACH, AT, TOP, LIFT, PACE, PACED, MOVES = range(10)  # columns of `Run.now`
 
 SAME = 0.2  # of the dead band: a string that moves as a whole is not marched again for less
 ARRIVED = 4.0  # dead bands the hookload must rise, block not raised, to show that the bit's front is here
 RAISED = 0.03  # m of block travel that shows a string sliding down to be pulled up again
+PACE_LENGTH = 1.0  # m of travel over which a held string would lose a spring's load
+PACE_SHARE = 0.2  # of the spring rate: losing less, the string is moving
+FAR_STRETCH, FAR_LENGTH = 3.0, 2.0  # travel beyond stretch, and [m], from which the pace is asked
 OVER_STRETCH, OVER_LENGTH = 1.3, 0.3  # travel beyond stretch, and [m], that shows a clear bit to be moving
 
 
@@ -88,8 +91,9 @@ class Run(NamedTuple):
 
     `now` holds what the string is doing (`FREE`, +1 or -1 sliding as a whole, `ROTATING`), the last
     direction, the last hookload taken [N], how near the bit surface motion has come [m above it],
-    depth index and top element of the last row (-1 before the first), and the block's travel when the bit's
-    front came through [m].
+    depth index and top element of the last row (-1 before the first), the block's travel when the bit's
+    front came through [m], travel and hookload when the pace was last taken [m, N], and 1 where the pace
+    alone showed the string to be moving.
     """
 
     samples: Samples
@@ -166,7 +170,7 @@ def whole_slide(setting: Setting, run: Run, place: Place, t: int, sigma: float) 
     if run.samples.free[t]:
         top = run.samples.top[t]
         model = rise(setting, run.memory, place, rub, 0.0, True)
-        if sigma < 0.0 or model - top < run.rules.tolerance:
+        if sigma < 0.0 or run.now[MOVES] == 1.0 or model - top < run.rules.tolerance:
             anchor(run.memory, place, top, model)
             return
     march_down(setting, run.memory, place, rub, run.samples.top[t], False)
@@ -176,17 +180,32 @@ def whole_slide(setting: Setting, run: Run, place: Place, t: int, sigma: float) 
 def all_moving(setting: Setting, run: Run, place: Place, t: int) -> bool:
     """Whether a bit clear of bottom must be moving: the block has gone further than the string can stretch.
 
-    A hookload well below the model's slack-off weight, or above its pick-up weight, is not taken for it:
-    that string may be held.
+    A hookload well below the model's slack-off weight, or above its pick-up weight, is not enough: that
+    string may be held. It moves for all that where the block has gone far and the hookload does not change
+    as a spring's would.
     """
-    samples, memory = run.samples, run.memory
+    samples, memory, now = run.samples, run.memory, run.now
     sigma = float(samples.direction[t])
     model = rise(setting, memory, place, friction_of(samples, t, sigma), 0.0, True)
     stretch = abs(stretch_between(setting.pipe, memory.reversal, memory.work, place))
     run.found.stretch[t] = stretch
-    if samples.travel[t] < OVER_STRETCH * stretch + OVER_LENGTH:
+    travel, top = samples.travel[t], samples.top[t]
+    if travel < OVER_STRETCH * stretch + OVER_LENGTH:
+        now[PACE], now[PACED] = travel, top
         return False
-    return (samples.top[t] - model) * sigma > -run.rules.tolerance
+    now[MOVES] = 0.0
+    if (top - model) * sigma > -run.rules.tolerance:
+        return True
+    gone = travel - now[PACE]
+    if gone < PACE_LENGTH:
+        return False
+    lost = (now[PACED] - top) * sigma
+    now[PACE], now[PACED] = travel, top
+    spring = setting.pipe.ea[place.top] / place.bit
+    if travel > FAR_STRETCH * stretch + FAR_LENGTH and lost < PACE_SHARE * spring * gone:
+        now[MOVES] = 1.0
+        return True
+    return False
 
 
 @njit(cache=True)

@@ -30,7 +30,7 @@ def fresh(model: OffBottomModel) -> tuple[Memory, Floats]:
     nodes = len(model.pipe.x)
     arrays = [np.zeros(nodes + 1) for _ in range(4)]
     state, visits = np.zeros(nodes, dtype=np.int8), np.zeros(1, dtype=np.int64)
-    return Memory(*arrays, state, visits), np.array([0.0, 0.0, 0.0, 0.0, -1.0, -1.0, 0.0])
+    return Memory(*arrays, state, visits), np.array([0.0, 0.0, 0.0, 0.0, -1.0, -1.0, 0.0, 0.0, 0.0, 0.0])
 
 
 def room(count: int, times: int, depths: int) -> Found:

@@ -11,6 +11,7 @@ import pytest
 
 from forensics.case import Case, FluidSettings, FrictionSettings, LogSettings, RigSettings
 from forensics.estimate import Estimate
+from forensics.friction.assumptions import assumed_factor
 from forensics.friction.calibrate import calibrate
 from forensics.friction.result import Reading
 
@@ -346,3 +347,22 @@ def test_cost_stays_small_for_many_readings(plain):
     check(calibrate(readings, make_well(), make_case(), model, make_rig()))
     assert len(calls) == 2
     assert max(calls) <= (80, 169)
+
+
+@pytest.mark.parametrize(
+    ("mud", "cased", "open_"),
+    [
+        ("Oil-base mud, low toxicity", 0.18, 0.21),
+        ("KCl polymer water-base", 0.19, 0.25),
+        ("WBM", 0.25, 0.32),
+        (None, 0.20, 0.28),
+        ("unheard of", 0.20, 0.28),
+    ],
+)
+def test_the_kind_of_mud_sets_what_is_assumed(mud, cased, open_):
+    """Usual ranges by mud: trade values, from memory."""
+    case = make_case(mud_system=mud)
+    assert assumed_factor("cased", case, make_well()).value == cased
+    assert assumed_factor("open", case, make_well()).value == open_
+    stated = make_case(mud_system=mud, friction=FrictionSettings(cased=0.3))
+    assert assumed_factor("cased", stated, make_well()).value == 0.3

@@ -14,9 +14,10 @@ import numpy as np
 import pytest
 
 from forensics.case import Case, FluidSettings, LogSettings
-from forensics.mechanics.kernels_replay import HOLD, REACH, SLIDE, TURN, Rules, Samples
+from forensics.mechanics.kernels_march import place_at
+from forensics.mechanics.kernels_replay import HOLD, REACH, SLIDE, TURN, Rules, Run, Samples, all_moving
 from forensics.replay.model import build_model
-from forensics.replay.room import fresh, go
+from forensics.replay.room import fresh, go, room
 from forensics.well.string import Component
 from tests.wells import build_well, one_pipe_well
 
@@ -196,3 +197,20 @@ def test_a_march_against_the_motion_stays_within_the_weight_above():
     assert np.isfinite(found.bit_load).all()
     assert (found.bit_load <= most).all()
     assert np.isfinite(found.ratio).all()
+
+
+def test_a_string_that_keeps_its_hookload_over_metres_is_moving_whatever_the_model_says(bar):
+    """Below the model's slack-off weight: steady over metres it moves, losing a spring's load it is held."""
+    at, model, _ = bar
+    low = float(model.string_weight("slack_off", 3000.0, MU, MU)[0]) - 50e3
+    spring = float(at.pipe.ea[0]) / 3000.0
+    travel = np.linspace(0.0, 60.0, 61)
+    clear = {"bit": np.full(61, 3000.0), "travel": travel, "free": np.ones(61, dtype=bool)}
+    verdicts = []
+    for top in (np.full(61, low), low - spring * travel):
+        run = Run(rows(top, np.ones(61), **clear), NEVER, room(61, 1, 1), *fresh(model), 1e9)
+        place = place_at(at.hole, at.pipe, 3000.0, 1.0)
+        verdicts.append([all_moving(at, run, place, t) for t in range(61)])
+    assert not any(verdicts[0][:3])
+    assert verdicts[0][-1]
+    assert not any(verdicts[1])
