@@ -25,7 +25,7 @@ HOLD, TURN, SLIDE = 0, 1, 2  # what a sample lets the string do
 BY_HOOKLOAD, BY_MEMORY, BY_RATE, BY_PRESSURE = 0, 1, 2, 3  # what the bit load rests on
 MODE, WAY, HOOK, REACH, AT, TOP, LIFT, PACE, PACED, MOVES = range(10)  # columns of `Run.now`
 
-SAME = 0.2  # of the dead band: a string that moves as a whole is not marched again for less
+SAME = 0.35  # of the dead band: a string that moves as a whole is not marched again for less
 ARRIVED = 4.0  # dead bands the hookload must rise, block not raised, to show that the bit's front is here
 RAISED = 0.03  # m of block travel that shows a string sliding down to be pulled up again
 PACE_LENGTH = 1.0  # m of travel over which a held string would lose a spring's load

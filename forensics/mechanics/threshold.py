@@ -185,5 +185,7 @@ def self_consistent_load(
         contact = np.sqrt(np.maximum(size.a + load * (2 * np.asarray(size.b) + load * size.c), 0.0))
         local = 2 * np.sqrt(factor * contact)
         term = near_vertical_term(stiffness, local, w_cos, length)
-        load = lowest_crossing(factor, size, term)
+        before, load = load, lowest_crossing(factor, size, term)
+        if np.allclose(before, load, rtol=1e-9, atol=0.0):
+            break
     return load
