@@ -76,7 +76,10 @@ def run(
     with progress.loading("loading the libraries"):
         from forensics.case import load_case
         from forensics.case.unused import unused_settings
+        from forensics.mechanics.kernels_offbottom import wake
         from pipelines import analysis, results
+
+        wake(0.0)  # numba loads its own registries at the first call
 
     case = load_case(Path(case_path))
     folder = Path(out) if out is not None else Path("reports") / case.id

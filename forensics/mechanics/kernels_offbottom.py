@@ -39,6 +39,12 @@ def weigh(setting: Setting, ask: Ask, judged: bool) -> tuple[float, float]:
 
 
 @njit(cache=True)
+def wake(number: float) -> float:
+    """Give the number back: a first call makes numba load what all compiled code needs."""
+    return number
+
+
+@njit(cache=True)
 def weigh_many(setting: Setting, bits: Array, scale: Array, sigma: float) -> Array:
     """Weigh the string at the rotary for many bit depths, bit free [N]."""
     result = np.empty(len(bits))

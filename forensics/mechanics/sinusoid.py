@@ -25,6 +25,7 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 from functools import lru_cache
+from pathlib import Path
 
 import numpy as np
 
@@ -199,14 +200,32 @@ class SinusoidTable:
     least_contact: Floats
 
 
+TABLE_FILE = Path(__file__).with_name("sinusoid_table.npy")
+
+
 @lru_cache(maxsize=1)
 def sinusoid_table() -> SinusoidTable:
-    """Tabulate the whole branch, from the onset to the fold.
+    """Load the table of the whole branch that ships with the package, once.
+
+    Returns
+    -------
+    SinusoidTable
+        The values of `build_sinusoid_table`.
+    """
+    return SinusoidTable(*np.load(TABLE_FILE))
+
+
+def build_sinusoid_table() -> SinusoidTable:
+    """Tabulate the whole branch afresh, from the onset to the fold.
 
     Returns
     -------
     SinusoidTable
         Its first row is the onset, where all is straight.
+
+    Examples
+    --------
+    To renew the shipped file: ``np.save(TABLE_FILE, np.array(astuple(build_sinusoid_table())))``.
     """
     fine = np.linspace(0, math.pi / 2, 181)
     rows = [(1.0, 0.0, math.sqrt(0.5), 0.0, 0.0, 0.0, 1.0, 1.0)]

@@ -55,15 +55,12 @@ def _windows(log: TimeLog, rig: RigView, bit_load: Floats) -> tuple[Floats, Floa
     """Mean rate [m/s] and median load [N] of each whole window of rotary drilling."""
     drilling = rig.activity == Activity.DRILL_ROTATE
     edges = np.flatnonzero(np.diff(np.concatenate([[0], drilling.astype(np.int8), [0]])))
-    rates, loads = [], []
     step = max(3, round(WINDOW_SECONDS / log.interval))
+    parts = [np.arange(start, stop - step + 1, step) for start, stop in edges.reshape(-1, 2)]
+    first = np.concatenate([*parts, np.empty(0, dtype=int)]).astype(int)
+    last = first + step - 1
     depth = log.values["bit_depth"]
-    for start, stop in edges.reshape(-1, 2):
-        for at in range(start, stop - step + 1, step):
-            part = slice(at, at + step)
-            passed = log.time[at + step - 1] - log.time[at]
-            made = depth[at + step - 1] - depth[at]
-            if passed > 0 and np.isfinite(made) and np.isfinite(bit_load[part]).any():
-                rates.append(made / passed)
-                loads.append(np.nanmedian(bit_load[part]))
-    return np.array(rates), np.array(loads)
+    rate = (depth[last] - depth[first]) / (log.time[last] - log.time[first])
+    load = np.median(bit_load[first[:, None] + np.arange(step)], axis=1)
+    told = np.isfinite(rate) & np.isfinite(load)
+    return rate[told], load[told]

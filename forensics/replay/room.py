@@ -14,7 +14,7 @@ from forensics.mechanics.offbottom import OffBottomModel
 
 Floats = NDArray[np.float64]
 
-COARSE_SECONDS = 5.0  # a load changes little in less
+COARSE_SECONDS = 8.0  # a load changes little in less
 LEAD = 30  # rows of turning replayed before the memory counts as right
 
 

@@ -14,7 +14,7 @@ from forensics.replay.samples import Prepared
 Floats = NDArray[np.float64]
 
 
-THINNED_SECONDS = 5.0  # ordinary drag changes little in less
+THINNED_SECONDS = 15.0  # ordinary drag changes little in less
 
 
 @njit(cache=True)

@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 import math
+from dataclasses import astuple
 
 import numpy as np
 import pytest
 from scipy import integrate, optimize
 
-from forensics.mechanics.sinusoid import QUARTER, Sinusoid, sinusoid, sinusoid_table
+from forensics.mechanics.sinusoid import QUARTER, Sinusoid, build_sinusoid_table, sinusoid, sinusoid_table
 
 
 @pytest.mark.parametrize("amplitude", [0.05, 0.5, 1.2, 2.0])
@@ -117,3 +118,8 @@ def test_no_disturbance_takes_energy_from_it(amplitude):
     wave = sinusoid(amplitude)
     assert least_second_variation(wave, 0.0) == pytest.approx(0.0, abs=1e-6)
     assert all(least_second_variation(wave, part) > 0 for part in (0.02, 0.1, 0.3, 0.6, 1.0))
+
+
+def test_the_shipped_table_is_the_one_that_is_built():
+    shipped, built = (np.array(astuple(table)) for table in (sinusoid_table(), build_sinusoid_table()))
+    assert np.allclose(shipped, built, rtol=1e-9, atol=1e-12)
