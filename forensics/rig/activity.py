@@ -12,7 +12,7 @@ from forensics.logs.table import TimeLog
 from forensics.rig import noise
 from forensics.rig.depth import DepthView
 from forensics.rig.noise import Bools, Floats
-from forensics.rig.signals import MOVING_WINDOW, Signals, read_signals
+from forensics.rig.signals import MOVING_WINDOW, Signals
 from forensics.rig.tare import Reference
 from forensics.rig.view import Activity, RigView
 
@@ -274,10 +274,9 @@ def refine_activity(rig: RigView, bit_load: Floats, log: TimeLog) -> RigView:
     that hangs quite still with the pumps on has nothing on the bit, whatever friction leaves there in the
     replay: a loaded bit drills, and the hookload shows it.
     """
-    signals = read_signals(log)
-    limit = max(_REFINE_WEIGHT, signals.hookload_noise)
+    limit = max(_REFINE_WEIGHT, rig.noise.get("hookload", 0.0))
     known = np.isfinite(bit_load)
-    loaded = noise.running_median(np.where(known, bit_load, 0.0), signals.count(SMOOTHING)) > limit
+    loaded = noise.running_median(np.where(known, bit_load, 0.0), noise.samples_in(SMOOTHING, log.interval)) > limit
     unsettled = np.ones(len(log), dtype=bool) if rig.bottom_vote is None else rig.bottom_vote == 0
     open_rows = known & unsettled & ~rig.slips & ~rig.turning
     loaded &= ~(rig.pumping & _hangs_still(rig, log))
