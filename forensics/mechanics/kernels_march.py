@@ -79,7 +79,7 @@ def top_element(x: Array, bit: float) -> int:
     return min(max(np.searchsorted(x, bit, side="left") - 1, 0), len(x) - 2)
 
 
-@njit(cache=True)
+@njit(cache=True, inline="always")
 def place_at(hole: Hole, pipe: Pipe, bit: float, scale: float) -> Place:
     """Place a string with its bit at depth `bit` [m], all weights times `scale`."""
     cube = 1.0 if scale == 1.0 else scale ** (2.0 / 3.0)

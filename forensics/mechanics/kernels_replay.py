@@ -288,7 +288,7 @@ def lengthen(setting: Setting, run: Run, place: Place) -> None:
         memory.state[j] = 0
 
 
-@njit(cache=True)
+@njit(cache=True, inline="always")
 def still_the_same(run: Run, t: int, first: int) -> bool:
     """Whether a string that moves as a whole hangs as it did: same place, mode and nearly same hookload."""
     samples, now = run.samples, run.now
@@ -299,7 +299,7 @@ def still_the_same(run: Run, t: int, first: int) -> bool:
     return abs(samples.top[t] - now[HOOK]) < SAME * run.rules.band
 
 
-@njit(cache=True)
+@njit(cache=True, inline="always")
 def copy_row(found: Found, t: int) -> None:
     """Nothing changed: the row's results are those of the row before."""
     found.bit_load[t] = found.bit_load[t - 1]
@@ -340,7 +340,8 @@ def replay_rows(setting: Setting, run: Run) -> None:
     samples, found, now = run.samples, run.found, run.now
     for t in range(len(samples.bit)):
         place = place_at(setting.hole, setting.pipe, samples.bit[t], samples.scale[t])
-        lengthen(setting, run, place)
+        if place.top > int(now[TOP]):
+            lengthen(setting, run, place)
         if still_the_same(run, t, place.first):
             copy_row(found, t)
             if now[MODE] == ROTATING and not samples.free[t]:  # then newton goes for newton
