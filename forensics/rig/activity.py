@@ -276,7 +276,8 @@ def refine_activity(rig: RigView, bit_load: Floats, log: TimeLog) -> RigView:
     """
     limit = max(_REFINE_WEIGHT, rig.noise.get("hookload", 0.0))
     known = np.isfinite(bit_load)
-    loaded = noise.running_median(np.where(known, bit_load, 0.0), noise.samples_in(SMOOTHING, log.interval)) > limit
+    window = noise.samples_in(SMOOTHING, log.interval)
+    loaded = noise.running_median(np.where(known, bit_load, 0.0), window) > limit
     unsettled = np.ones(len(log), dtype=bool) if rig.bottom_vote is None else rig.bottom_vote == 0
     open_rows = known & unsettled & ~rig.slips & ~rig.turning
     loaded &= ~(rig.pumping & _hangs_still(rig, log))
