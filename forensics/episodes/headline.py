@@ -23,6 +23,8 @@ TOLD = 6
 
 #: Chance that the rule holds from which a finding is called sure, and likely.
 SURE, LIKELY = 0.9, 0.6
+#: Friction factors outside this mean that the model is wrong (common practice, no source).
+USUAL = (0.10, 0.50)
 
 #: Torque left in a string that does not turn counts from this part of the usual rotating torque.
 TRAPPED = 0.3
@@ -189,19 +191,27 @@ def _beyond(residual: Estimate, quantity: str, system: str) -> str:
     return f"{wording.size(size, quantity, system)} {side} than the model says"
 
 
+def _friction_words(material: Material) -> tuple[str, bool]:
+    """Say what the friction rests on, and whether that is weak."""
+    sections = [s for s in material.calibration.sections if s.bottom > s.top]
+    assumed = [s.kind for s in sections if not s.factor.determined]
+    if assumed:
+        return f"the {' and '.join(assumed)}-hole friction is assumed, not determined", True
+    odd = [s for s in sections if not USUAL[0] <= s.factor.value <= USUAL[1]]
+    if odd:
+        found = " and ".join(f"{s.kind}-hole {s.factor.value:.2f}" for s in odd)
+        said = f"the friction found ({found}) is outside what any mud gives"
+        return f"{said}, so string, mud, survey or block weight may be wrong", True
+    return "friction was determined from this run's own weights", False
+
+
 def _confidence(material: Material, main: list[Episode]) -> str:
     """Grade the finding, and say on what."""
-    sections = material.calibration.sections
-    assumed = [s.kind for s in sections if not s.factor.determined and s.bottom > s.top]
-    friction = (
-        f"the {' and '.join(assumed)}-hole friction is assumed, not determined"
-        if assumed
-        else "friction was determined from this run's own weights"
-    )
+    friction, weak = _friction_words(material)
     blind = material.log.get("rpm") is None and material.log.get("torque") is None
     if blind:
         friction += "; rotation was not logged and is guessed"
-    weak = bool(assumed) or blind
+    weak |= blind
     if not material.calibration.readings and not material.calibration.block_weight.determined:
         return (
             "low: the log shows neither a steady off-bottom weight nor the block's weight, so friction and "

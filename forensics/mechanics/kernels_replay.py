@@ -358,5 +358,5 @@ def replay_rows(setting: Setting, run: Run) -> None:
         # a bit clear of bottom carries nothing, whatever the march leaves there
         clear = samples.free[t] and now[MODE] != FREE
         found.bit_load[t] = 0.0 if clear else max(-run.memory.tension[0], 0.0)
-        found.reach[t] = place.bit - now[REACH]
+        found.reach[t] = max(place.bit - now[REACH], 0.0)
         found.full[t] = int(now[MODE])

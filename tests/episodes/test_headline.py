@@ -96,6 +96,16 @@ def test_assumed_friction_lowers_the_confidence(make_run):
     assert "assumed" in confidence
 
 
+@pytest.mark.parametrize("odd", [0.06, 0.62])
+def test_a_factor_no_mud_gives_lowers_the_confidence(make_run, odd):
+    run = stacked(make_run)
+    sections = tuple(replace(s, factor=replace(s.factor, value=odd)) for s in run.calibration.sections)
+    run.calibration = replace(run.calibration, sections=sections)
+    confidence = describe(run.material()).headline.confidence
+    assert not confidence.startswith("high")
+    assert f"{odd:.2f}" in confidence
+
+
 def test_without_draws_the_spread_is_said_to_be_unknown(make_run):
     run = stacked(make_run)
     run.draws = None
