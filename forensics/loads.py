@@ -8,8 +8,6 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from forensics.estimate import Estimate
-
 Floats = NDArray[np.float64]
 
 
@@ -181,7 +179,3 @@ class DrawHistory:
     peak_ratio: NDArray[np.float32]
     bit_load: NDArray[np.float32]
 
-
-__all__ = [
-    "Basis", "DrawHistory", "Estimate", "Fan", "LoadHistory", "Profile", "RateLaw", "RatioMap",
-]

@@ -2,17 +2,11 @@
 
 from __future__ import annotations
 
-import numpy as np
-from numpy.typing import NDArray
-
 from forensics.case import Case
+from forensics.friction.assumptions import DEFAULT_FACTOR
 from forensics.friction.result import Calibration
 from forensics.mechanics.offbottom import OffBottomModel
 from forensics.well.model import Well
-
-Floats = NDArray[np.float64]
-
-DEFAULT_FACTORS = {"cased": 0.20, "open": 0.28}  # common practice, no source
 
 
 def build_model(well: Well, case: Case, depth: float, block_zero: float = 0.0) -> OffBottomModel:
@@ -23,4 +17,5 @@ def build_model(well: Well, case: Case, depth: float, block_zero: float = 0.0) -
 def factors(calibration: Calibration) -> tuple[float, float]:
     """Cased and open-hole friction factors; the default where the hole has no such stretch."""
     found = {section.kind: section.factor.value for section in calibration.sections}
-    return tuple(found.get(kind, DEFAULT_FACTORS[kind]) for kind in ("cased", "open"))  # type: ignore[return-value]
+    told = DEFAULT_FACTOR | found
+    return told["cased"], told["open"]
