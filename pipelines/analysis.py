@@ -2,11 +2,7 @@
 
 from __future__ import annotations
 
-import hashlib
-from collections import Counter
-from collections.abc import Mapping
 from dataclasses import dataclass, replace
-from pathlib import Path
 
 import numpy as np
 
@@ -41,6 +37,7 @@ from forensics.rig.travel import match_travel
 from forensics.rig.understand import understand_rig
 from forensics.rig.view import RigView
 from forensics.well.model import Well, load_well
+from pipelines.fingerprints import fingerprints
 from pipelines.progress import Progress
 
 # The fan of model weights starts here: shallower, friction tells nothing [m].
@@ -158,7 +155,7 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
         profiles=peaks,
         headline=told.headline,
         dropped=told.dropped,
-        inputs=_digests(material.case, log),
+        inputs=fingerprints(material.case, log),
         warnings=_remarks(material),
         tolls=tolls,
     )
@@ -179,23 +176,3 @@ def _remarks(material: Material) -> tuple[str, ...]:
     log = material.log
     unused = (*unused_settings(material.case), *idle_channels(log))
     return tuple(dict.fromkeys((*log.warnings, *material.well.warnings, *unused)))
-
-
-def _digests(case: Case, log: TimeLog) -> Mapping[str, str]:
-    """Give the SHA-256 of every file that went into the run, by name, or by path where names repeat."""
-    kept = (case.records.weights, case.records.slides)
-    tables = (case.path, case.survey, case.hole, case.string, case.fluid.file, *kept)
-    digests = [(path, _digest(path)) for path in tables if path is not None]
-    digests += [(path, record.sha256) for path, record in zip(case.logs.time, log.files, strict=True)]
-    names = Counter(path.name for path in {path for path, _ in digests})
-    return {path.name if names[path.name] == 1 else _below(path, case): sha for path, sha in digests}
-
-
-def _below(path: Path, case: Case) -> str:
-    """Name a file by its path from the case's folder, or in full where it lies outside."""
-    folder = case.path.parent
-    return path.relative_to(folder).as_posix() if path.is_relative_to(folder) else path.as_posix()
-
-
-def _digest(path: Path) -> str:
-    return hashlib.sha256(path.read_bytes()).hexdigest()

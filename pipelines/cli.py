@@ -42,10 +42,28 @@ def _incident(arguments: argparse.Namespace) -> int:
     if not arguments.quiet:
         for remark in result.unused:
             _say(remark)
-    text = "\n".join(result.lines) + "\n"
-    encoding = sys.stdout.encoding or "utf-8"
-    sys.stdout.write(text.encode(encoding, "replace").decode(encoding))  # a title may hold any letter
+    _print("\n".join(result.lines) + "\n")
     return DONE
+
+
+def _inspect_arguments(parser: argparse.ArgumentParser) -> None:
+    parser.add_argument(
+        "paths", metavar="FILE", nargs="+", help="one case file, or bare logs with any tables at hand"
+    )
+    parser.add_argument("--draft", metavar="CASE.toml", help="write a case file made from the bare logs here")
+
+
+def _inspect(arguments: argparse.Namespace) -> int:
+    from pipelines import inspection  # heavy: loaded only when the job runs
+
+    a = arguments
+    result = inspection.run(a.paths, a.out, a.units, a.quiet, a.draft)
+    _print(f"{result.text}\npage: {result.page}\n")
+    if result.draft is not None:
+        _print(f"draft: {result.draft}\n")
+    for refusal in result.found.refusals:
+        _say(" ".join(refusal.split()))
+    return BAD_INPUT if result.found.refusals else DONE
 
 
 COMMANDS: tuple[Command, ...] = (
@@ -54,6 +72,12 @@ COMMANDS: tuple[Command, ...] = (
         "read a run's logs, reconstruct its loads, and report when, where and how the string buckled",
         _incident_arguments,
         _incident,
+    ),
+    Command(
+        "inspect",
+        "show what was read of a case or of bare logs: files, columns, units, gaps, faults; no mechanics",
+        _inspect_arguments,
+        _inspect,
     ),
 )
 
@@ -89,6 +113,15 @@ def build_parser(commands: Sequence[Command] = COMMANDS) -> argparse.ArgumentPar
         sub.add_argument("--quiet", action="store_true", help="show no progress")
         sub.set_defaults(job=command.job)
     return parser
+
+
+def _print(text: str) -> None:
+    encoding = sys.stdout.encoding or "utf-8"
+    try:
+        sys.stdout.write(text.encode(encoding, "replace").decode(encoding))  # a title may hold any letter
+        sys.stdout.flush()
+    except BrokenPipeError:  # whoever read on has read enough
+        sys.stdout = open(os.devnull, "w", encoding="utf-8")  # noqa: SIM115, PTH123 - Python flushes it at its end
 
 
 def _say(message: str) -> None:

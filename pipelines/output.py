@@ -17,6 +17,8 @@ from forensics.errors import InputError
 
 MARK = "summary.json"
 RESULTS = frozenset({MARK, "report.html", "report.pdf", "episodes.csv", "history.parquet", "friction.json"})
+# What a folder of this program may hold beside, or without, the results of the main job.
+PAGES = frozenset({"inspect.html"})
 
 
 def check_target(target: Path) -> None:
@@ -42,7 +44,7 @@ def check_target(target: Path) -> None:
                 "is where the program runs, and results replace their folder whole; name a folder inside it",
                 file=target,
             )
-        if any(place.iterdir()) and not (place / MARK).is_file():
+        if any(place.iterdir()) and not any((place / name).is_file() for name in (MARK, *PAGES)):
             raise InputError(
                 "holds files that are not earlier results of this program; name an empty or a new folder",
                 file=target,
@@ -50,6 +52,37 @@ def check_target(target: Path) -> None:
     parent = next(folder for folder in place.parents if folder.exists())
     if not parent.is_dir() or not os.access(parent, os.W_OK | os.X_OK):
         raise InputError(f"can't be made, since {parent} can't be written to; name another", file=target)
+
+
+def put_file(target: Path, name: str, data: bytes) -> None:
+    """Put one file into a folder of results, whole or not at all; what else is there stays.
+
+    Parameters
+    ----------
+    target : Path
+        The folder; made where it is missing.
+    name : str
+        The file's name.
+    data : bytes
+        What it holds.
+
+    Raises
+    ------
+    InputError
+        If the folder can't be used or the file can't be written.
+    """
+    check_target(target)
+    place = target.resolve()
+    made = _make_parents(place, target)
+    part = place / f".{name}.{os.getpid()}.part"
+    try:
+        part.write_bytes(data)
+        part.replace(place / name)
+    except OSError as error:
+        part.unlink(missing_ok=True)
+        for folder in reversed(made):
+            folder.rmdir()
+        raise _refusal(error, target) from error
 
 
 @contextmanager

@@ -42,6 +42,16 @@ class Candidate:
     chosen: bool = False
 
 
+class NoUnitError(LogError):
+    """A needed channel whose column has no unit, or one that can't be; `likely` are units it could be in."""
+
+    def __init__(self, message: str, raw: RawLog, candidate: Candidate, likely: tuple[str, ...]) -> None:
+        self.channel = candidate.channel
+        self.header = raw.names[candidate.place]
+        self.likely = likely
+        super().__init__(message, file=raw.path, column=self.header)
+
+
 @dataclass(frozen=True)
 class Mapped:
     """Channels found in one file: values in the file's unit, how to bring them to SI, and the account.
@@ -212,7 +222,7 @@ def _finish(
             account[c.place] = SourceColumn(file, raw.names[c.place], c.unit, c.channel, c.why)
             continue
         if BY_NAME[c.channel].need is Need.NEEDED:
-            raise LogError(fault, file=raw.path, column=raw.names[c.place])
+            raise NoUnitError(fault, raw, c, likely_units(c.channel, data))
         account[c.place] = SourceColumn(file, raw.names[c.place], c.unit, None, f"set aside: {fault}")
         aside[c.channel] = int(np.isfinite(data).sum())
         warnings.append(f"{file}, column {raw.names[c.place]!r}: {c.channel} set aside; {fault}")
@@ -242,18 +252,26 @@ def _unit_fault(candidate: Candidate, data: Floats) -> str | None:
 
 
 def likely_unit(channel: str, data: Floats) -> str:
-    """Name the units under which the values would be usual ones for the channel."""
+    """Say under which units the values would be usual ones for the channel; empty where none is."""
+    fits = likely_units(channel, data)
+    if not fits:
+        return ""
+    known = data[np.isfinite(data)]
+    top = float(np.percentile(np.abs(known), 95))
+    return f"values near {top:g} would be usual in {' or '.join(fits)}; "
+
+
+def likely_units(channel: str, data: Floats) -> tuple[str, ...]:
+    """Units under which the values would be usual ones for the channel, likeliest first; at most three."""
     quantity = BY_NAME[channel].quantity
     known = data[np.isfinite(data)]
     if len(known) == 0:
-        return ""
+        return ()
     top = float(np.percentile(np.abs(known), 95))
     low, high = _USUAL.get(channel, (BY_NAME[channel].plausible[1] * 1e-3, BY_NAME[channel].plausible[1]))
     names = _LIKELY.get(channel, units.spellings(quantity))
     fits = [name for name in names if low <= float(units.to_si(top, name, quantity)) <= high]
-    if not fits:
-        return ""
-    return f"values near {top:g} would be usual in {' or '.join(fits[:3])}; "
+    return tuple(fits[:3])
 
 
 def missing_channel(channel: str, raws: list[RawLog]) -> LogError:

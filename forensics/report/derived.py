@@ -17,6 +17,7 @@ from forensics.well.string import PIPE, buoyed_weight
 if TYPE_CHECKING:
     from forensics.findings import Findings
     from forensics.loads import Profile
+    from forensics.logs.table import TimeLog
 
 Floats = NDArray[np.float64]
 
@@ -237,8 +238,7 @@ def _overpull(findings: Findings) -> Floats | None:
     return np.where(findings.rig.slips, np.nan, findings.rig.hookload - rotating)
 
 
-def gaps(findings: Findings) -> list[tuple[float, float]]:
+def gaps(log: TimeLog) -> list[tuple[float, float]]:
     """Start and end of each gap: no row for more than five usual intervals [s since 1970 UTC]."""
-    log = findings.log
     rows = np.flatnonzero(np.diff(log.time) > 5.0 * log.interval)
     return [(float(log.time[row]), float(log.time[row + 1])) for row in rows]

@@ -150,14 +150,29 @@ def _check_width(rows: Rows, width: int) -> None:
             )
 
 
+def header_of(text: str, path: Path) -> Rows | None:
+    """Cells of the first row of a table's text; None where it has none."""
+    kept = _filled_lines(text)[:1]
+    if not kept:
+        return None
+    delimiter = _delimiter(kept[0][1])
+    cells = [cell.strip() for cell in next(csv.reader(io.StringIO(kept[0][1]), delimiter=delimiter))]
+    return Rows(path, [cells], [kept[0][0]], delimiter)
+
+
+def _filled_lines(text: str) -> list[tuple[int, str]]:
+    """Lines that hold something, with their numbers; comments left out."""
+    text = text.replace("\x00", "").replace("\r\n", "\n").replace("\r", "\n")
+    return [(n, line) for n, line in enumerate(text.split("\n"), 1) if line.strip()[:1] not in ("", "#")]
+
+
 def _split(path: Path) -> Rows:
     try:
         text = decode(path.read_bytes())
     except OSError as error:
         reason = "is missing" if isinstance(error, FileNotFoundError) else f"can't be read ({error.strerror})"
         raise TableError(f"{reason}; the case file names it as a table", file=path) from None
-    text = text.replace("\x00", "").replace("\r\n", "\n").replace("\r", "\n")
-    kept = [(n, line) for n, line in enumerate(text.split("\n"), 1) if line.strip()[:1] not in ("", "#")]
+    kept = _filled_lines(text)
     if not kept:
         raise TableError("is empty; a header row and rows of data are needed", file=path)
     delimiter = _delimiter(kept[0][1])

@@ -107,7 +107,7 @@ def test_seconds_in_state_do_not_count_gaps(build):
         made, loads=dataclasses.replace(made.loads, state=np.full(1200, 2, dtype=np.int8))
     )
     assert derived.seconds_in_state(made, 2) == pytest.approx(1200.0)
-    assert len(derived.gaps(made)) == 1
+    assert len(derived.gaps(made.log)) == 1
 
 
 def test_margins_against_limits(build, build_case):

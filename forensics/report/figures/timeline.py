@@ -17,6 +17,7 @@ from forensics.report.figures.clock import time_axis
 from forensics.report.figures.decimate import POINTS, thin
 from forensics.report.figures.spare import lay_out
 from forensics.report.scene import Scene
+from forensics.report.words import Show
 
 Floats = NDArray[np.float64]
 
@@ -131,7 +132,7 @@ def run_strip(scene: Scene) -> Figure:
     if not found.episodes:
         axes[0].set_yticks([])
         style.empty_note(axes[0], "no episode")
-    _draw_tracks(axes[1:-1], tracks, (found.log.time, found.log.interval, start), scene)
+    draw_tracks(axes[1:-1], tracks, (found.log.time, found.log.interval, start), scene.show)
     lanes.draw_activity(axes[-1], found.log.time, found.rig.activity, found.log.interval)
     spans = [(e.start - start, max(e.duration, (end - start) / 700)) for e in scene.mains]
     lanes.mark_rows(axes[1:-1], lanes.merge(sorted(spans), 0.0))
@@ -163,7 +164,7 @@ def moment_strip(scene: Scene, episode: Episode) -> Figure:
     size = (10.6, style.stack_height(heights, edges))
     figure, axes = lay_out(size, style.boxes(size, heights, edges))
     start, end = _span(time)
-    _draw_tracks(axes[:-1], tracks, (time, found.log.interval, start), scene)
+    draw_tracks(axes[:-1], tracks, (time, found.log.interval, start), scene.show)
     lanes.draw_activity(axes[-1], time, found.rig.activity[rows], found.log.interval)
     lanes.mark_rows(axes, [(episode.start - start, max(episode.duration, 1.0))])
     peak = _row_time(found.log.time, episode.peak) - start
@@ -202,17 +203,17 @@ def _cut(track: Track, rows: slice) -> Track:
     return Track(track.name, track.quantity, curves, track.height, track.depth)
 
 
-def _draw_tracks(
-    axes: Sequence[Axes], tracks: Sequence[Track], base: tuple[Floats, float, float], scene: Scene
+def draw_tracks(
+    axes: Sequence[Axes], tracks: Sequence[Track], base: tuple[Floats, float, float], show: Show
 ) -> None:
+    """Draw tracks on their axes; `base` holds the stamps, their interval and the start of the chart [s]."""
     for ax, track in zip(axes, tracks, strict=True):
-        _draw_track(ax, track, base, scene)
+        _draw_track(ax, track, base, show)
 
 
-def _draw_track(ax: Axes, track: Track, base: tuple[Floats, float, float], scene: Scene) -> None:
+def _draw_track(ax: Axes, track: Track, base: tuple[Floats, float, float], show: Show) -> None:
     """One track: its thinned lines, their labels at the right edge, the name at the left."""
     time, interval, start = base
-    show = scene.show
     points = POINTS if len(track.curves) < 3 else POINTS * 3 // 4
     drawn: list[tuple[Curve, Floats]] = []
     for curve in track.curves:

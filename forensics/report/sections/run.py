@@ -9,15 +9,16 @@ import numpy as np
 from forensics.report.elements import Column, Number, Numbers, Section, Table
 from forensics.report.scene import Scene
 from forensics.report.sections.first import friction_numbers, number, section_name
-from forensics.report.words import count, duration, fixed
+from forensics.report.words import Show, count, duration, fixed
+from forensics.well.model import Well
 
 
 def describe(scene: Scene) -> Section:
     """Describe what was run, in what hole, in what mud."""
     elements = (
         Numbers("Period, path and mud", run_numbers(scene), worded=True),
-        hole_table(scene),
-        string_table(scene),
+        hole_table(scene.findings.well, scene.show),
+        string_table(scene.findings.well, scene.show),
         Numbers("Friction and weights, with what decided each", calibration_numbers(scene)),
     )
     return Section("run", "The run", elements)
@@ -35,13 +36,13 @@ def run_numbers(scene: Scene) -> tuple[Number, ...]:
     if bit is not None:
         text = show.depths(float(np.nanmin(bit)), float(np.nanmax(bit)))
         rows.append(Number("bit depth", text, "", "time logs"))
-    rows += survey_numbers(scene) + mud_numbers(scene)
+    rows += survey_numbers(found.well, show) + mud_numbers(found.well, show)
     return tuple(rows)
 
 
-def survey_numbers(scene: Scene) -> list[Number]:
+def survey_numbers(well: Well, show: Show) -> list[Number]:
     """Say what the survey amounts to."""
-    show, path = scene.show, scene.findings.well.trajectory
+    path = well.trajectory
     stations = len(path.md)
     rows = [
         Number(
@@ -65,9 +66,9 @@ def survey_numbers(scene: Scene) -> list[Number]:
     return rows
 
 
-def mud_numbers(scene: Scene) -> list[Number]:
+def mud_numbers(well: Well, show: Show) -> list[Number]:
     """Density outside and inside."""
-    show, fluid = scene.show, scene.findings.well.fluid
+    fluid = well.fluid
     low, high = float(np.min(fluid.density)), float(np.max(fluid.density))
     origin = "case file" if fluid.by == "constant" else f"mud table, by {fluid.by}"
     text = show.value(low, "density") if low == high else show.range(low, high, "density")
@@ -77,9 +78,9 @@ def mud_numbers(scene: Scene) -> list[Number]:
     return rows
 
 
-def hole_table(scene: Scene) -> Table:
+def hole_table(well: Well, show: Show) -> Table:
     """List the hole, top down."""
-    show, hole = scene.show, scene.findings.well.hole
+    hole = well.hole
     rows = tuple(
         (
             hole.name[k] or "",
@@ -98,9 +99,9 @@ def hole_table(scene: Scene) -> Table:
     return Table("The hole (hole table)", columns, rows)
 
 
-def string_table(scene: Scene) -> Table:
+def string_table(well: Well, show: Show) -> Table:
     """List the string, bit first."""
-    show, string = scene.show, scene.findings.well.string
+    string = well.string
     rows = tuple(
         (
             part.name,
