@@ -8,6 +8,9 @@ import numpy as np
 from scipy.optimize import brentq
 
 from forensics.mechanics.eigen import column_eigenvalue
+from forensics.mechanics.kernels_judge import GIVE, latch
+from forensics.mechanics.kernels_march import Place
+from forensics.mechanics.offbottom import SIGMA, OffBottomModel
 
 
 def column_by_differences(n: float, length: float, points: int) -> float:
@@ -108,3 +111,48 @@ def column_by_beam_elements(n: float, length: float, bit: str, top: str, cells: 
     # the load's matrix may be singular: the greatest of load over stiffness is the least of its inverse
     root = np.linalg.inv(np.linalg.cholesky(stiffness[np.ix_(kept, kept)]))
     return 1 / float(np.linalg.eigvalsh(root @ load[np.ix_(kept, kept)] @ root.T)[-1])
+
+
+def weigh_with_slopes(
+    model: OffBottomModel, kind: str, bit: float, factors: tuple[float, ...], scale: float = 1.0
+) -> tuple[float, list[float]]:
+    """Weight of one string at the rotary, bit free, and its change with each factor and with the scale.
+
+    Plain numbers, one element after the other; whether an element turns helical is asked of the judge, which
+    has its own checks.
+    """
+    hole, pipe, setting, sigma = model.hole, model.pipe, model.setting(0.0, 0.0), SIGMA[kind]
+    last = len(factors)
+    tension, by = 0.0, [0.0] * (last + 1)
+    rate, rate_by = 0.0, [0.0] * (last + 1)
+    bit_row = int(bit / hole.step + 0.5)
+    for j in range(len(pipe.weight)):
+        if pipe.x[j] >= bit:
+            break
+        length = min(float(pipe.x[j + 1]), bit) - float(pipe.x[j])
+        i = max(bit_row - int(pipe.node[j] + pipe.node[j + 1]) // 2, 0)
+        own, section = float(pipe.weight[j]), int(model.section[i])
+        cos_i, sin2, kappa2, kappa_d = (
+            float(column[i]) for column in (hole.cos_i, hole.sin2, hole.kappa2, hole.kappa_d)
+        )
+        m = tension + length / 2 * rate
+        m_by = [by[p] + length / 2 * rate_by[p] for p in range(last + 1)]
+        w = own * scale
+        n = math.sqrt(max(m * m * kappa2 + 2 * m * w * kappa_d + w * w * sin2, 0.0))
+        n_by_m = (m * kappa2 + w * kappa_d) / n if n > 0 else 0.0
+        n_by_scale = own * (m * kappa_d + w * sin2) / n if n > 0 else 0.0
+        if m < 0 and latch(setting, Place(bit, j, bit_row, scale, scale ** (2 / 3)), j, i, m):
+            give = float(model.criteria.at[model.criteria.kind[j], i, GIVE])
+            n += m * m * give
+            n_by_m += 2 * m * give
+        mu = factors[section]
+        rate = w * cos_i - sigma * mu * n
+        for p in range(last + 1):
+            change = mu * n_by_m * m_by[p]
+            change += mu * n_by_scale if p == last else n if p == section else 0.0
+            rate_by[p] = (own * cos_i if p == last else 0.0) - sigma * change
+            by[p] += rate_by[p] * length
+        tension += rate * length
+        if min(m, tension) < -1e8:
+            return math.nan, [math.nan] * (last + 1)
+    return tension, by

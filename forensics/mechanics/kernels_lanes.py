@@ -1,99 +1,227 @@
-"""Compiled marches of many strings side by side: one place at a time, all strings at that place.
+"""Compiled march of many strings side by side: one element at a time, all strings of a block at it.
 
-What the hole does at a place is looked up once for all strings that lie there at the same bit depth and
-differ in friction only; the strings then run in the processor's vector units. Only strings pressed past the
-least load at which a helix can start are looked at one by one.
+Strings may differ in bit depth, direction, friction and weight. What the hole does where each of them lies
+is copied side by side first; roots and divisions then run in the processor's vector units. Only strings
+pressed past the least load at which a helix can start are looked at one by one.
+
+Where asked, the derivatives of every tension against each section's friction and against the scale of
+weights are carried along in the same pass: with m the tension at the middle of an element and p a parameter,
+
+    dT/dx = w cos I - sigma mu N(m),    d/dx (dT/dp) = d(w cos I)/dp - sigma (dmu/dp N + mu dN/dp),
+
+dN/dp being dN/dm dm/dp and what p changes itself.
 """
 
 from __future__ import annotations
+
+from typing import NamedTuple
 
 import numpy as np
 from numba import njit
 
 from forensics.mechanics.eigen import LIMIT
-from forensics.mechanics.kernels_judge import CUBE, GIVE, Setting, latch, local_square
-from forensics.mechanics.kernels_march import RUN_AWAY, Array, Place, place_at
+from forensics.mechanics.kernels_judge import CONSTANT, CUBE, GIVE, LINEAR, SQUARE, Criteria, Setting, latch
+from forensics.mechanics.kernels_march import RUN_AWAY, Array, Place, top_element
 
 FAST = {"nsz", "arcp", "contract", "nnan"}  # no value here is ever NaN
+LANES = 64  # strings in a block: some hundred bytes each stay in the first cache
+# rows of a block's work space, LANES numbers each
+BIT, TENSION, SLOPE, MIDDLE, SCALE, LENGTH, FORCE, RUB, SIGMA, HELIX, HELIX_BY, DRAG, OWN = (
+    row * LANES for row in range(13)
+)
+ROWS = 13
+LEAST = 0.999  # of the least load a helix can start at: what rounding may take is far less
+
+
+class Ground(NamedTuple):
+    """The hole as lanes read it.
+
+    `rows` has shape (4 depths,): cos I, sin² I, squared and downward curvature of each depth together;
+    `section` (depths,) the friction section; `least` (kinds of pipe, depths) a load below which no helix
+    starts there, weights unscaled [N].
+    """
+
+    rows: Array
+    section: Array
+    least: Array
+
+
+class Strings(NamedTuple):
+    """The strings to weigh; arrays of shape (k,), `factor` (sections, k).
+
+    `bit` [m], in order for speed; `sigma` +1 going down, -1 up, 0 without axial friction; `scale` of weights.
+    """
+
+    bit: Array
+    sigma: Array
+    scale: Array
+    factor: Array
+
+
+def least_onset(criteria: Criteria) -> Array:
+    """Give a load below which no helix starts, whatever the contact there, shape (kinds, depths) [N].
+
+    The fourth power of the Dawson-Paslay load is a parabola of the tension: its least value under compression
+    and the least near-vertical term bound the onset from below.
+    """
+    square, linear, constant = (criteria.at[..., column] for column in (SQUARE, LINEAR, CONSTANT))
+    turns = (linear > 0.0) & (square > 0.0)
+    dip = np.where(turns, linear**2 / (4.0 * np.where(turns, square, 1.0)), 0.0)
+    local = np.maximum(constant - dip, 0.0) ** 0.25
+    return criteria.onset * (local + LIMIT * criteria.at[..., CUBE])
 
 
 @njit(cache=True, error_model="numpy", fastmath=FAST)
-def _step(tension: Array, slope: Array, middle: Array, mu: Array, place: tuple[float, ...]) -> float:
-    """Move all strings over one element, helix left out; returns the lowest tension at its middle.
+def _fetch(ground: Ground, first: Array, depth: int, stage: Array, section: Array, width: int) -> None:
+    """Copy what the hole does to each string of a block, `depth` steps above its bit."""
+    rows = ground.rows
+    for k in range(width):
+        i = np.uint64(max(first[k] - depth, 0))
+        cos_i, sin2, kappa2, kappa_d = rows[4 * i], rows[4 * i + 1], rows[4 * i + 2], rows[4 * i + 3]
+        stage[4 * k], stage[4 * k + 1], stage[4 * k + 2], stage[4 * k + 3] = cos_i, sin2, kappa2, kappa_d
+        section[k] = ground.section[i]
 
-    `place` holds length, kappa², 2 w kappa_d, w² sin² I, w cos I and the direction of motion.
-    """
-    length, square, linear, constant, along, sigma = place
+
+@njit(cache=True, error_model="numpy", fastmath=FAST)
+def _rub(work: Array, section: Array, factor: Array, width: int) -> None:
+    """Look up each string's friction, signed as it moves."""
+    for k in range(width):
+        work[RUB + k] = work[SIGMA + k] * factor[np.uint64(section[k] * LANES + k)]
+
+
+@njit(cache=True, error_model="numpy", fastmath=FAST)
+def _step(work: Array, stage: Array, ends: tuple[float, float], weight: float, width: int) -> float:
+    """Move a block over one element, helix left out; returns the lowest tension at its middle [N]."""
+    low, high = ends
     least = 0.0
-    for k in range(len(tension)):
-        at = tension[k] + 0.5 * length * slope[k]
-        force = np.sqrt(max(at * (at * square + linear) + constant, 0.0))
-        rate = along - sigma * mu[k] * force
-        middle[k] = at
-        slope[k] = rate
-        tension[k] = max(tension[k] + rate * length, 4.0 * RUN_AWAY)
+    for k in range(width):
+        length = max(min(high, work[BIT + k]) - low, 0.0)
+        at = work[TENSION + k] + 0.5 * length * work[SLOPE + k]
+        own = weight * work[SCALE + k]
+        square = at * (at * stage[4 * k + 2] + 2.0 * own * stage[4 * k + 3]) + own * own * stage[4 * k + 1]
+        force = np.sqrt(max(square, 0.0))
+        slope = own * stage[4 * k] - work[RUB + k] * force
+        work[LENGTH + k] = length
+        work[MIDDLE + k] = at
+        work[FORCE + k] = force
+        work[SLOPE + k] = slope
+        work[TENSION + k] = max(work[TENSION + k] + slope * length, 4.0 * RUN_AWAY)
         least = min(least, at)
     return least
 
 
 @njit(cache=True, error_model="numpy")
-def _helices(
-    setting: Setting, place: Place, strings: tuple[Array, Array, Array, Array], j: int, i: int, step: float
-) -> None:
-    """Add the contact of a helix to the strings that are pressed into one on element `j`.
+def _helices(setting: Setting, ground: Ground, work: Array, first: Array, j: int, width: int) -> None:
+    """Add the contact of a helix to the strings that are pressed into one on element `j`."""
+    depth = (setting.pipe.node[j] + setting.pipe.node[j + 1]) >> 1
+    kind = setting.criteria.kind[j]
+    for k in range(width):
+        work[HELIX + k] = 0.0
+        work[HELIX_BY + k] = 0.0
+        at, scale = work[MIDDLE + k], work[SCALE + k]
+        i = max(first[k] - depth, 0)
+        if -at < LEAST * min(scale, 1.0) * ground.least[kind, i] or work[LENGTH + k] <= 0.0:
+            continue
+        place = Place(work[BIT + k], j, first[k], scale, 1.0 if scale == 1.0 else scale ** (2.0 / 3.0))
+        if at < 0.0 and latch(setting, place, j, i, at):
+            give = setting.criteria.at[kind, i, GIVE]
+            extra = work[RUB + k] * at * at * give
+            work[HELIX + k] = at * at * give
+            work[HELIX_BY + k] = 2.0 * at * give
+            work[SLOPE + k] -= extra
+            work[TENSION + k] = max(work[TENSION + k] - extra * work[LENGTH + k], 4.0 * RUN_AWAY)
 
-    `strings` are tension, slope, tension at the middle and friction; `step` is length, signed with the
-    direction of motion.
-    """
-    tension, slope, middle, mu = strings
-    give = setting.criteria.at[setting.criteria.kind[j], i, GIVE]
-    for k in range(len(tension)):
-        if middle[k] < 0.0 and latch(setting, place, j, i, middle[k]):
-            extra = mu[k] * middle[k] * middle[k] * give
-            slope[k] -= np.sign(step) * extra
-            tension[k] = max(tension[k] - step * extra, 4.0 * RUN_AWAY)
+
+@njit(cache=True, error_model="numpy", fastmath=FAST)
+def _differentiate(work: Array, stage: Array, weight: float, width: int) -> None:
+    """Leave in DRAG how friction grows with tension, in OWN what the scale of weights changes itself."""
+    for k in range(width):
+        at, force, rub = work[MIDDLE + k], work[FORCE + k], work[RUB + k]
+        kappa_d = stage[4 * k + 3]
+        own = weight * work[SCALE + k]
+        inverse = rub / force if force > 0.0 else 0.0
+        across = at * kappa_d + own * stage[4 * k + 1]
+        work[DRAG + k] = (at * stage[4 * k + 2] + own * kappa_d) * inverse + rub * work[HELIX_BY + k]
+        work[OWN + k] = weight * (stage[4 * k] - across * inverse)
+        work[FORCE + k] = (force + work[HELIX + k]) * work[SIGMA + k]
 
 
-@njit(cache=True, error_model="numpy")
-def weigh_lanes(
-    setting: Setting, open_hole: Array, ask: tuple[float, float], cased: Array, opened: Array
-) -> Array:
-    """Weigh strings that differ in friction only at the rotary, bit free; NaN where one locks up [N].
+@njit(cache=True, error_model="numpy", fastmath=FAST)
+def _carry(work: Array, section: Array, by: Array, slope: Array, width: int) -> None:
+    """Move the derivatives over the element; the last row is that against the scale of weights."""
+    last = len(by) // LANES - 1
+    for p in range(last):
+        row = p * LANES
+        for k in range(width):
+            length = work[LENGTH + k]
+            at = by[row + k] + 0.5 * length * slope[row + k]
+            change = -work[DRAG + k] * at - (work[FORCE + k] if section[k] == p else 0.0)
+            slope[row + k] = change
+            by[row + k] += change * length
+    row = last * LANES
+    for k in range(width):
+        length = work[LENGTH + k]
+        at = by[row + k] + 0.5 * length * slope[row + k]
+        change = work[OWN + k] - work[DRAG + k] * at
+        slope[row + k] = change
+        by[row + k] += change * length
+
+
+@njit(cache=True)
+def _load(strings: Strings, start: int, width: int, work: Array, factor: Array) -> None:
+    """Set a block of strings to their bits, free."""
+    work[:] = 0.0
+    for k in range(width):
+        work[BIT + k] = strings.bit[start + k]
+        work[SIGMA + k] = strings.sigma[start + k]
+        work[SCALE + k] = strings.scale[start + k]
+        for p in range(len(strings.factor)):
+            factor[p * LANES + k] = strings.factor[p, start + k]
+
+
+@njit(cache=True, error_model="numpy", nogil=True)
+def weigh_lanes(setting: Setting, ground: Ground, strings: Strings, weight: Array, slopes: Array) -> None:
+    """Weigh strings at the rotary, bit free, helical contact where it has latched [N]; NaN past lockup.
 
     Parameters
     ----------
     setting : Setting
         Its own friction is not used.
-    open_hole : ndarray of bool, shape (depths,)
-        Whether the hole is open there.
-    ask : tuple of float
-        Bit depth [m]; +1 going down, -1 going up.
-    cased, opened : ndarray, shape (strings,)
-        Friction factors.
+    ground, strings : Ground, Strings
+        Hole and strings.
+    weight : ndarray, shape (k,)
+        Filled with the weights [N].
+    slopes : ndarray, shape (k, sections + 1)
+        Filled with their derivatives against each section's friction and against the scale [N per unit]; of
+        no column where they are not asked.
     """
-    hole, pipe = setting.hole, setting.pipe
-    bit, sigma = ask
-    place = place_at(hole, pipe, bit, 1.0)
-    tension, slope, middle = np.zeros(len(cased)), np.zeros(len(cased)), np.zeros(len(cased))
-    for j in range(place.top + 1):
-        length = min(pipe.x[j + 1], bit) - pipe.x[j]
-        i = max(place.first - ((pipe.node[j] + pipe.node[j + 1]) >> 1), 0)
-        weight = pipe.weight[j]
-        mu = opened if open_hole[i] else cased
-        here = (
-            length,
-            hole.kappa2[i],
-            2.0 * weight * hole.kappa_d[i],
-            weight * weight * hole.sin2[i],
-            weight * hole.cos_i[i],
-            sigma,
-        )
-        least = _step(tension, slope, middle, mu, here)
-        if least < 0.0:
-            onset = setting.criteria.onset
-            cube = setting.criteria.at[setting.criteria.kind[j], i, CUBE]
-            low = onset * (np.sqrt(local_square(setting, place, j, i, least)) + LIMIT * cube)
-            # contact may fall as the load grows where the hole drops: half is bound enough to look closer
-            if -least > 0.5 * low:
-                _helices(setting, place, (tension, slope, middle, mu), j, i, sigma * length)
-    return np.where(tension < RUN_AWAY, np.nan, tension)
+    pipe = setting.pipe
+    asked = slopes.shape[1]
+    work, stage, factor = np.empty(ROWS * LANES), np.zeros(4 * LANES), np.zeros(len(strings.factor) * LANES)
+    first, section = np.zeros(LANES, dtype=np.int64), np.zeros(LANES, dtype=np.int64)
+    by, by_slope = np.zeros(asked * LANES), np.zeros(asked * LANES)
+    for start in range(0, len(strings.bit), LANES):
+        width = min(LANES, len(strings.bit) - start)
+        _load(strings, start, width, work, factor)
+        by[:] = 0.0
+        by_slope[:] = 0.0
+        deepest = 0.0
+        for k in range(width):
+            first[k] = int(work[BIT + k] * setting.hole.inv_step + 0.5)
+            deepest = max(deepest, work[BIT + k])
+        pressed = False
+        for j in range(top_element(pipe.x, deepest) + 1):
+            _fetch(ground, first, (pipe.node[j] + pipe.node[j + 1]) >> 1, stage, section, width)
+            _rub(work, section, factor, width)
+            least = _step(work, stage, (pipe.x[j], pipe.x[j + 1]), pipe.weight[j], width)
+            if least < 0.0 or pressed:
+                _helices(setting, ground, work, first, j, width)
+                pressed = least < 0.0
+            if asked > 0:
+                _differentiate(work, stage, pipe.weight[j], width)
+                _carry(work, section, by, by_slope, width)
+        for k in range(width):
+            locked = work[TENSION + k] < RUN_AWAY
+            weight[start + k] = np.nan if locked else work[TENSION + k]
+            for p in range(asked):
+                slopes[start + k, p] = np.nan if locked else by[p * LANES + k]

@@ -2,13 +2,17 @@
 
 from __future__ import annotations
 
+import copy
+from collections.abc import Sequence
+from dataclasses import dataclass
+
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from forensics.case import CriteriaSettings
 from forensics.mechanics.grid import HoleGrid, PipeGrid, hole_grid, pipe_grid, weight_in_air
 from forensics.mechanics.kernels_judge import Setting
-from forensics.mechanics.kernels_lanes import weigh_lanes
+from forensics.mechanics.kernels_lanes import Ground, Strings, least_onset, weigh_lanes
 from forensics.mechanics.kernels_march import torque_up_many
 from forensics.mechanics.kernels_offbottom import press_many, weigh_many
 from forensics.mechanics.limits import tabulate
@@ -18,6 +22,25 @@ from forensics.well.model import Well
 Floats = NDArray[np.float64]
 
 SIGMA = {"pick_up": -1.0, "slack_off": 1.0, "rotating": 0.0}
+
+
+@dataclass(frozen=True)
+class Weighed:
+    """What strings weigh at the rotary, bit free, and how that changes; k readings, S friction sections.
+
+    Parameters
+    ----------
+    weight : ndarray, shape (k,)
+        [N]; NaN where the string locks up under its own drag.
+    slopes : ndarray, shape (k, S)
+        Change with the friction factor of the cased hole and of each open section, in this order [N per 1].
+    by_scale : ndarray, shape (k,)
+        Change with the scale of all weights [N per 1].
+    """
+
+    weight: Floats
+    slopes: Floats
+    by_scale: Floats
 
 
 class OffBottomModel:
@@ -51,17 +74,70 @@ class OffBottomModel:
         self.hole_arrays = hole_arrays(self.hole)
         self.pipe_arrays = pipe_arrays(self.pipe)
         self.criteria = tabulate(well, self.hole, self.pipe, settings)
+        self.edges: tuple[float, ...] = ()
+        self.section = self.hole.open_hole.astype(np.int64)
+        self.smooth = self.setting(0.0, 0.0)
+        rows = np.stack([self.hole.cos_i, self.hole.sin2, self.hole.kappa2, self.hole.kappa_d], axis=1)
+        self.ground = Ground(rows.ravel(), self.section, least_onset(self.criteria))
 
-    def setting(self, cased: float, open_hole: float) -> Setting:
+    def divided(self, edges: Sequence[float]) -> OffBottomModel:
+        """Cut the open hole into friction sections at measured depths; tables are shared.
+
+        Parameters
+        ----------
+        edges : sequence of float
+            Depths, ascending [m]; none leaves one open section. A section may lie outside the open hole: its
+            factor then matters nowhere.
+
+        Returns
+        -------
+        OffBottomModel
+            `section` gives the friction section of each depth of the hole grid: 0 cased, 1 and on open.
+
+        Raises
+        ------
+        ValueError
+            When the depths don't ascend.
+        """
+        cuts = np.asarray(edges, dtype=float)
+        if np.any(np.diff(cuts) <= 0.0):
+            raise ValueError(f"edges came as {tuple(edges)}; expected ascending depths")
+        other = copy.copy(self)
+        other.edges = tuple(cuts.tolist())
+        middle = (np.arange(len(self.hole.open_hole)) - 0.5) * self.hole.step
+        open_section = 1 + np.searchsorted(cuts, middle, side="right")
+        other.section = np.where(self.hole.open_hole, open_section, 0).astype(np.int64)
+        other.ground = self.ground._replace(section=other.section)
+        return other
+
+    def setting(self, cased: float, *opened: float) -> Setting:
         """Put the well, the string and the criteria at the given friction as the kernels take them."""
-        return Setting(self.hole_arrays, self.pipe_arrays, self.criteria, self.friction(cased, open_hole))
+        return Setting(self.hole_arrays, self.pipe_arrays, self.criteria, self.friction(cased, *opened))
 
-    def friction(self, cased: float, open_hole: float) -> Floats:
-        """Friction factor at each depth of the hole grid, shape (n,)."""
-        return np.where(self.hole.open_hole, open_hole, cased)
+    def friction(self, cased: float, *opened: float) -> Floats:
+        """Friction factor at each depth of the hole grid, shape (n,).
+
+        Parameters
+        ----------
+        cased : float
+            In casing.
+        *opened : float
+            In each open section from the top, or one for all of them.
+        """
+        return self._factors((cased, *opened))[self.section]
+
+    def _factors(self, factors: Sequence[ArrayLike]) -> Floats:
+        """Factor of the cased hole and of each open section, shape (sections, ...)."""
+        cased, *opened = (np.asarray(factor, dtype=float) for factor in factors)
+        sections = len(self.edges) + 1
+        if len(opened) == 1:
+            opened = opened * sections
+        if len(opened) != sections:
+            raise ValueError(f"{len(opened)} open-hole factors came; expected 1 or {sections}")
+        return np.array(np.broadcast_arrays(cased, *opened))
 
     def string_weight(
-        self, kind: str, bit_depth: ArrayLike, cased: float, open_hole: float, scale: ArrayLike = 1.0
+        self, kind: str, bit_depth: ArrayLike, cased: float, *opened: float, scale: ArrayLike = 1.0
     ) -> Floats:
         """Hookload of the string alone at the rotary, bit free [N], shape (k,).
 
@@ -71,18 +147,18 @@ class OffBottomModel:
             "pick_up", "slack_off" or "rotating".
         bit_depth : array_like, shape (k,)
             [m]
-        cased, open_hole : float
-            Friction factors.
+        cased : float
+            Friction factor in casing.
+        *opened : float
+            Friction factor in each open section from the top, or one for all of them.
         scale : array_like, shape () or (k,)
             Multiplies all weights (mud or weight-per-length correction).
         """
         bits = np.atleast_1d(np.asarray(bit_depth, dtype=float))
         scales = np.broadcast_to(np.asarray(scale, dtype=float), bits.shape).copy()
-        return weigh_many(self.setting(cased, open_hole), bits, scales, SIGMA[kind])
+        return weigh_many(self.setting(cased, *opened), bits, scales, SIGMA[kind])
 
-    def string_weights(
-        self, kind: str, bit_depth: ArrayLike, cased: ArrayLike, open_hole: ArrayLike
-    ) -> Floats:
+    def string_weights(self, kind: str, bit_depth: ArrayLike, cased: ArrayLike, *opened: ArrayLike) -> Floats:
         """Hookload of the string alone at many friction factors, bit free [N], shape (strings, k).
 
         Parameters
@@ -91,19 +167,60 @@ class OffBottomModel:
             "pick_up", "slack_off" or "rotating".
         bit_depth : array_like, shape (k,)
             [m]
-        cased, open_hole : array_like, shape (strings,)
-            Friction factors, in pairs.
+        cased, *opened : array_like, shape (strings,)
+            Friction factors, one of each for every string; one open factor serves all open sections.
         """
         bits = np.atleast_1d(np.asarray(bit_depth, dtype=float))
-        pairs = [np.ascontiguousarray(np.atleast_1d(f), dtype=float) for f in (cased, open_hole)]
-        setting = self.setting(0.0, 0.0)
-        rows = [weigh_lanes(setting, self.hole.open_hole, (b, SIGMA[kind]), *pairs) for b in bits.tolist()]
-        return np.array(rows).reshape(len(bits), len(pairs[0])).T
+        factors = np.atleast_2d(self._factors((cased, *opened)).T).T
+        count = factors.shape[1]
+        # strings at one depth lie side by side: what the hole does there is then at hand
+        lanes = np.repeat(bits, count), np.full(len(bits) * count, SIGMA[kind]), np.ones(len(bits) * count)
+        return self._weigh(Strings(*lanes, np.tile(factors, len(bits))), False)[0].reshape(-1, count).T
 
-    def slack_off_ratio(self, bit_depth: ArrayLike, cased: float, open_hole: float) -> Floats:
+    def weigh_readings(
+        self, kinds: Sequence[str], bit_depth: ArrayLike, factors: Sequence[float], scale: ArrayLike = 1.0
+    ) -> Weighed:
+        """Weigh strings of any depths and directions in one pass, their derivatives carried along.
+
+        Parameters
+        ----------
+        kinds : sequence of str, length k
+            "pick_up", "slack_off" or "rotating" each.
+        bit_depth : array_like, shape (k,)
+            [m]
+        factors : sequence of float, length S
+            Friction factor of the cased hole and of each open section (or one for all of those; slopes are
+            of all sections all the same).
+        scale : array_like, shape () or (k,)
+            Multiplies all weights.
+
+        Returns
+        -------
+        Weighed
+            Weights and their derivatives. Where the string presses itself into a helix, derivatives are those
+            at the helix's present extent.
+        """
+        bits = np.atleast_1d(np.asarray(bit_depth, dtype=float))
+        order = np.argsort(bits, kind="stable")
+        sigma = np.array([SIGMA[kind] for kind in kinds], dtype=float)[order]
+        scales = np.broadcast_to(np.asarray(scale, dtype=float), bits.shape)[order]
+        lanes = np.repeat(self._factors(factors)[:, None], len(bits), axis=1)
+        weight, slopes = np.empty(len(bits)), np.empty((len(bits), len(lanes) + 1))
+        weight[order], slopes[order] = self._weigh(Strings(bits[order], sigma, scales, lanes), True)
+        return Weighed(weight, slopes[:, :-1], slopes[:, -1])
+
+    def _weigh(self, strings: Strings, derive: bool) -> tuple[Floats, Floats]:
+        """Weights, shape (k,), and where asked their derivatives, shape (k, sections + 1)."""
+        count = len(strings.bit)
+        weight = np.empty(count)
+        slopes = np.empty((count, len(strings.factor) + 1 if derive else 0))
+        weigh_lanes(self.smooth, self.ground, strings, weight, slopes)
+        return weight, slopes
+
+    def slack_off_ratio(self, bit_depth: ArrayLike, cased: float, *opened: float) -> Floats:
         """Largest load ratio anywhere while slacking off with the bit free, shape (k,)."""
         bits = np.atleast_1d(np.asarray(bit_depth, dtype=float))
-        return press_many(self.setting(cased, open_hole), bits)
+        return press_many(self.setting(cased, *opened), bits)
 
     def torque(self, bit_depth: ArrayLike, factor: float, scale: ArrayLike = 1.0) -> Floats:
         """Torque that turns the string off bottom at rotational friction `factor` [N.m], shape (k,)."""

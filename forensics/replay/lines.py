@@ -39,7 +39,7 @@ def _line(kind: str, depth: Floats, calibration: Calibration, model: OffBottomMo
     cased, open_hole = factors(calibration)
     base = calibration.block_weight.value + calibration.hookload_bias.value
     scale = calibration.weight_scale.value
-    return base + model.string_weight(kind, depth, cased, open_hole, scale)
+    return base + model.string_weight(kind, depth, cased, open_hole, scale=scale)
 
 
 def _band(kind: str, depth: Floats, calibration: Calibration, model: OffBottomModel) -> tuple[Floats, Floats]:

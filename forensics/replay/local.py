@@ -84,7 +84,7 @@ def _shifts(readings: list[Reading], calibration: Calibration, model: OffBottomM
     if not readings:
         return Series(np.empty(0), np.empty(0))
     depth = np.array([r.bit_depth for r in readings])
-    weight = model.string_weight("rotating", depth, 0.0, 0.0, calibration.weight_scale.value)
+    weight = model.string_weight("rotating", depth, 0.0, 0.0, scale=calibration.weight_scale.value)
     shift = string_part(readings, calibration, model) - weight
     limit = MAX_SHIFT * np.abs(weight)
     return Series(np.array([r.end for r in readings]), np.clip(shift, -limit, limit))
@@ -100,8 +100,8 @@ def _multiples(
     depth = np.array([r.bit_depth for r in readings])
     at = np.array([r.end for r in readings])
     scale = calibration.weight_scale.value
-    still = model.string_weight("rotating", depth, 0.0, 0.0, scale)
-    expected = model.string_weight(kind, depth, cased, open_hole, scale) - still
+    still = model.string_weight("rotating", depth, 0.0, 0.0, scale=scale)
+    expected = model.string_weight(kind, depth, cased, open_hole, scale=scale) - still
     found = string_part(readings, calibration, model) - _carry(at, shifts, 0.0) - still
     told = np.abs(expected) > LEAST_DRAG
     return Series(at[told], np.clip(found[told] / expected[told], *FACTOR_RANGE))

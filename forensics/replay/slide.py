@@ -45,7 +45,7 @@ def straight_drag(
     chosen = (samples.bit[thin], found.bit_load[thin], samples.down[thin], samples.scale[thin])
     sliding = _top_many(hole, pipe, model.friction(*factors), chosen)
     # without friction the tension at the rotary is what hangs less what stands on the bit
-    hanging = model.string_weight("rotating", chosen[0], 0.0, 0.0, chosen[3])
+    hanging = model.string_weight("rotating", chosen[0], 0.0, 0.0, scale=chosen[3])
     drag = np.interp(rows, thin, hanging - chosen[1] - sliding)
     ordinary[rows] = np.minimum(drag, lost[rows])
     return ordinary

@@ -147,7 +147,10 @@ def test_forces_on_the_string_balance(bit, factor, sigma, bit_load):
     )
     hanging = (weights * way.tangent[:, 2] * length).sum()
     drag = factor * (pressed * length).sum()
-    assert tension[-1] == pytest.approx(hanging - sigma * drag - bit_load, abs=2e-3 * (hanging + drag) + 50.0)
+    # an element over an end of the curve is taken as straight or curved whole: five metres at each end
+    kinks = 2 * 5.0 * factor * np.abs(half).max() * np.linalg.norm(way.curvature, axis=1).max()
+    room = 1e-3 * (hanging + drag) + 50.0 + kinks
+    assert tension[-1] == pytest.approx(hanging - sigma * drag - bit_load, abs=room)
 
 
 @settings(max_examples=15, deadline=None)
