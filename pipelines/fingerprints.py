@@ -27,7 +27,7 @@ def fingerprints(case: Case, log: TimeLog) -> Mapping[str, str]:
     kept = (case.records.weights, case.records.slides)
     tables = (case.path, case.survey, case.hole, case.string, case.fluid.file, *kept)
     digests = [(path, _digest(path)) for path in tables if path is not None]
-    digests += [(path, record.sha256) for path, record in zip(case.logs.time, log.files, strict=True)]
+    digests += [(record.path, record.sha256) for record in log.files if record.path is not None]
     names = Counter(path.name for path in {path for path, _ in digests})
     return {path.name if names[path.name] == 1 else _below(path, case): sha for path, sha in digests}
 

@@ -90,7 +90,7 @@ def _build(root: Node) -> Case:
         path=root.path,
         id=case_id,
         title=case.take("title", as_note) or case_id,
-        logs=_logs(root.section("logs", ("time", "depth", "timezone", "channels"))),
+        logs=_logs(root.section("logs", ("time", "depth", "timezone", "wits_units", "channels"))),
         survey=survey.need("file", as_file, 'file = "survey.csv"'),
         tie_in=_tie_in(survey),
         hole=root.section("hole", ("file",)).need("file", as_file, 'file = "hole.csv"'),
@@ -125,6 +125,7 @@ def _logs(node: Node) -> LogSettings:
         time=files,
         depth=node.take("depth", as_files, ()),
         timezone=node.take("timezone", as_timezone, "UTC"),
+        wits_units=node.take("wits_units", as_choice("metric", "fps")),
         channels={key: _choice(channels, key, quantities[key]) for key in channels.values},
     )
 

@@ -17,11 +17,12 @@ class ChannelChoice:
 
 @dataclass(frozen=True)
 class LogSettings:
-    """`[logs]`: files in the order given; zone for stamps that carry none."""
+    """`[logs]`: files in the order given; zone for stamps that carry none; units of WITS captures."""
 
     time: tuple[Path, ...]
     depth: tuple[Path, ...] = ()
     timezone: str = "UTC"
+    wits_units: str | None = None
     channels: Mapping[str, ChannelChoice] = field(default_factory=dict)
 
 

@@ -122,6 +122,8 @@ def read_clock(raw: RawLog, timezone: str, chosen: tuple[str, str | None] | None
     column = raw.table[place]
     if date_place is not None and raw.table[date_place].isna().all():
         date_place = None
+    if column.dtype.kind == "M":
+        return _from_typed(column, raw.names[place], zone)
     values = mostly_numbers(column)
     if values is not None and np.isfinite(values).any():
         return _from_numbers(raw, (place, date_place), unit, zone)
@@ -161,6 +163,17 @@ def _pick(raw: RawLog, chosen: tuple[str, str | None] | None) -> tuple[int, str 
     )
 
 
+def _from_typed(column: pd.Series, name: str, zone: ZoneInfo | float) -> Clock:
+    """Read stamps that the file itself holds as stamps."""
+    aware = column.dt.tz is not None
+    plain = column.dt.tz_convert("UTC").dt.tz_localize(None) if aware else column
+    local = plain.astype("datetime64[us]").to_numpy().astype("int64") / 1e6
+    local[column.isna().to_numpy()] = np.nan
+    return Clock(
+        local if aware else to_utc(local, zone), (name,), f"stamps with{'' if aware else 'out'} a zone"
+    )
+
+
 def _key(name: str) -> str:
     return channels.normalise(split_name(name)[0])
 
@@ -170,6 +183,8 @@ def _unit(raw: RawLog, place: int) -> str | None:
 
 
 def _holds_stamps(column: pd.Series) -> bool:
+    if column.dtype.kind == "M":
+        return True
     texts = [str(text) for text in column.dropna().iloc[:5]]
     return bool(texts) and all(looks_like_date(text) and take_apart(text).clock is not None for text in texts)
 

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import gzip
 import io
 import warnings
 from pathlib import Path
@@ -11,7 +10,8 @@ import pandas as pd
 
 from forensics.errors import LogError
 from forensics.logs.dialect import Dialect, find_dialect, split_line
-from forensics.logs.raw import UNPACK_ERRORS, Keep, RawLog
+from forensics.logs.packed import UNPACK_ERRORS, is_packed, open_bytes
+from forensics.logs.raw import Keep, RawLog
 
 HEAD = 2**18
 SUFFIXES = (".csv", ".gz", ".txt", ".tsv", ".asc", ".dat", ".prn")
@@ -89,7 +89,6 @@ def _fast(path: Path, dialect: Dialect, wanted: list[int]) -> pd.DataFrame | Non
         "names": range(width),
         "skiprows": dialect.skip,
         "encoding": dialect.encoding,
-        "compression": "gzip" if is_packed(path) else None,
         **({"skipinitialspace": True} if dialect.padded else {}),
         **({"usecols": wanted} if len(wanted) < 0.9 * width else {}),
     }
@@ -110,18 +109,15 @@ def _fast(path: Path, dialect: Dialect, wanted: list[int]) -> pd.DataFrame | Non
 
 
 def _parse(path: Path, options: dict[str, object]) -> pd.DataFrame:
-    return pd.read_csv(path, engine="c", header=None, skip_blank_lines=False, index_col=False, **options)
+    fixed = {"engine": "c", "header": None, "skip_blank_lines": False, "index_col": False}
+    if not is_packed(path):
+        return pd.read_csv(path, **fixed, **options)
+    with open_bytes(path) as file:
+        return pd.read_csv(file, **fixed, **options)
 
 
 def _text(path: Path, dialect: Dialect) -> io.TextIOBase:
-    packed = gzip.open if is_packed(path) else open
-    return packed(path, "rt", encoding=dialect.encoding, errors="replace")  # type: ignore[return-value]
-
-
-def is_packed(path: Path) -> bool:
-    """Tell whether a file is packed with gzip, whatever its name says."""
-    with path.open("rb") as file:
-        return file.read(2) == b"\x1f\x8b"
+    return io.TextIOWrapper(open_bytes(path), encoding=dialect.encoding, errors="replace")
 
 
 def _patient(path: Path, dialect: Dialect, wanted: list[int]) -> tuple[pd.DataFrame, int]:

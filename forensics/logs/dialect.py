@@ -225,6 +225,12 @@ def find_dialect(head: bytes, path: Path) -> Dialect:
     encoding = find_encoding(head)
     text = head.decode(encoding, errors="replace").lstrip("\ufeff")
     # The last line may be cut by the end of the head.
+    if len(head) >= 2**18 and len(text.splitlines()) < 2:
+        raise LogError(
+            f"the first {len(head) // 1024} KiB hold no line break; expected a header and rows of data: this "
+            "is no table of text",
+            file=path,
+        )
     lines = _whole_lines(text.splitlines()[:-1] if len(head) >= 2**18 else text.splitlines())
     filled = [line for line in lines if line.strip()]
     if not filled:

@@ -16,10 +16,10 @@ from typing import TYPE_CHECKING
 
 from forensics.errors import LogError
 from forensics.logs.clock_text import looks_like_date
-from forensics.logs.csv_log import is_packed
 from forensics.logs.dialect import find_encoding
 from forensics.logs.las_data import read_data
-from forensics.logs.raw import UNPACK_ERRORS, Keep, RawLog
+from forensics.logs.packed import read_bytes
+from forensics.logs.raw import Keep, RawLog
 
 if TYPE_CHECKING:
     import lasio
@@ -113,13 +113,7 @@ def read(path: Path, head: bytes, keep: Keep) -> RawLog:
 
 
 def _load(path: Path, head: bytes) -> str:
-    import gzip
-
-    try:
-        data = gzip.decompress(path.read_bytes()) if is_packed(path) else path.read_bytes()
-    except UNPACK_ERRORS as error:
-        raise LogError(f"the file can't be unpacked: {error}", file=path) from error
-    return data.decode(find_encoding(head), errors="replace").lstrip("\ufeff")
+    return read_bytes(path).decode(find_encoding(head), errors="replace").lstrip("\ufeff")
 
 
 def _split(text: str, path: Path) -> tuple[str, str, int]:

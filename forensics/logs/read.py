@@ -22,6 +22,7 @@ from forensics.logs.raw import RawLog
 from forensics.logs.registry import digest, read_raw, require
 from forensics.logs.smear import find_smeared
 from forensics.logs.stray import mend_stamps
+from forensics.logs.systems import settle_units
 from forensics.logs.table import FileRecord, Reason, Step, TimeLog
 
 Floats = NDArray[np.float64]
@@ -74,19 +75,23 @@ def _gather(case: Case) -> _Gathered:
         require(path)
     with ThreadPoolExecutor(max_workers=1) as side:
         # Hashing needs no lock that parsing needs.
-        digests = [side.submit(digest, path) for path in settings.time]
-        raws = [read_raw(path, lambda name: keep(name, names)) for path in settings.time]
+        digests = {path: side.submit(digest, path) for path in settings.time}
+        raws = [
+            settle_units(raw, settings.wits_units)
+            for path in settings.time
+            for raw in _by_time(read_raw(path, lambda name: keep(name, names)))
+        ]
     _check_choices(case, raws)
     out = _Gathered()
     empty: dict[str, tuple[RawLog, str]] = {}
-    for raw, clock, hashed in zip(raws, _read_clocks(case, raws), digests, strict=True):
+    for raw, clock in zip(raws, _read_clocks(case, raws), strict=True):
         mapped = map_columns(raw, settings.channels, clock.columns)
         piece, account = _to_piece(raw, clock, mapped, case.rig.hookload_includes_block)
         out.pieces.append(piece)
         out.steps.extend(account)
         out.warnings.extend((*clock.warnings, *mapped.warnings))
         empty.update({channel: (raw, column) for channel, column in mapped.empty.items()})
-        out.records.append(_record(raw, clock, mapped, piece, hashed.result()))
+        out.records.append(_record(raw, clock, mapped, piece, digests[raw.path].result()))
     for channel in NEEDED:
         if any(channel in piece.values for piece in out.pieces):
             continue
@@ -95,6 +100,19 @@ def _gather(case: Case) -> _Gathered:
             raise LogError(f"every value of {channel} is missing", file=raw.path, column=column)
         raise missing_channel(channel, raws)
     return out
+
+
+def _by_time(raw: RawLog) -> list[RawLog]:
+    """Give the logs of a file that are not indexed by depth; refuse a file that has none."""
+    logs = [raw, *raw.others]
+    timed = [log for log in logs if log.by != "depth"]
+    if not timed:
+        raise LogError(
+            "found logs by depth only; expected a log by date and time here (a log by depth goes to "
+            "[logs] depth)",
+            file=raw.path,
+        )
+    return timed
 
 
 def _assemble(case: Case, found: _Gathered) -> TimeLog:
@@ -229,10 +247,11 @@ def _to_piece(raw: RawLog, clock: Clock, mapped: Mapped, with_block: bool) -> tu
     for channel, count in mapped.aside.items():
         steps.append(Step("unit missing or unknown", count, channel, raw.path.name))
     values: dict[str, Floats] = {}
+    columns = {column.channel: column.column for column in mapped.columns if column.channel}
     for channel, data in mapped.values.items():
         if mapped.garbled.get(channel):
             steps.append(Step("text where a number belongs", mapped.garbled[channel], channel, raw.path.name))
-        codes = find_codes(data, raw.nulls)
+        codes = find_codes(data, raw.nulls_of(columns[channel]))
         smeared = find_smeared(data, codes)
         for name, where in (("null code", codes), ("smeared null", smeared)):
             if where.any():
@@ -249,8 +268,7 @@ def _to_piece(raw: RawLog, clock: Clock, mapped: Mapped, with_block: bool) -> tu
         if missing > 0:
             steps.append(Step("no value", missing, channel, raw.path.name))
         values[channel] = converted
-    line = raw.first_line + np.flatnonzero(stamped)
-    return Piece(raw.path, time[stamped], line, values), steps
+    return Piece(raw.path, time[stamped], raw.line_of(np.flatnonzero(stamped)), values), steps
 
 
 def _check_size(raw: RawLog, channel: str, data: Floats, mapped: Mapped, with_block: bool) -> None:
@@ -285,4 +303,5 @@ def _record(raw: RawLog, clock: Clock, mapped: Mapped, piece: Piece, sha256: str
         interval=interval_of(piece.time),
         columns=mapped.columns,
         notes=(clock.why, *raw.notes),
+        path=raw.path,
     )

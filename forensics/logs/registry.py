@@ -2,15 +2,15 @@
 
 from __future__ import annotations
 
-import gzip
 import hashlib
 from collections.abc import Callable
 from dataclasses import dataclass
 from pathlib import Path
 
 from forensics.errors import LogError
-from forensics.logs import csv_log, las_log, witsml_log
-from forensics.logs.raw import UNPACK_ERRORS, Keep, RawLog
+from forensics.logs import csv_log, las_log, parquet_log, wits_log, witsml_log
+from forensics.logs.packed import UNPACK_ERRORS, open_bytes
+from forensics.logs.raw import Keep, RawLog
 
 
 @dataclass(frozen=True)
@@ -24,7 +24,9 @@ class Reader:
 
 # The more particular format stands first; delimited text takes what is left.
 READERS: tuple[Reader, ...] = (
+    Reader("Parquet", parquet_log.sniff, parquet_log.read),
     Reader("WITSML", witsml_log.sniff, witsml_log.read),
+    Reader("WITS", wits_log.sniff, wits_log.read),
     Reader("LAS", las_log.sniff, las_log.read),
     Reader("CSV", csv_log.sniff, csv_log.read),
 )
@@ -54,7 +56,7 @@ def read_head(path: Path, size: int = csv_log.HEAD) -> bytes:
     """
     require(path)
     try:
-        with gzip.open(path) if csv_log.is_packed(path) else path.open("rb") as file:
+        with open_bytes(path) as file:
             head = file.read(size)
     except UNPACK_ERRORS as error:
         raise LogError(f"the file can't be read: {error}", file=path) from error

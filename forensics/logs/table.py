@@ -5,6 +5,7 @@ from __future__ import annotations
 import enum
 from collections.abc import Mapping
 from dataclasses import dataclass, field
+from pathlib import Path
 
 import numpy as np
 from numpy.typing import NDArray
@@ -52,7 +53,7 @@ class SourceColumn:
 
 @dataclass(frozen=True)
 class FileRecord:
-    """One log file: where, what, how much, over which time."""
+    """One log of a file: where, what, how much, over which time. A file may hold several."""
 
     name: str
     sha256: str
@@ -63,6 +64,7 @@ class FileRecord:
     interval: float
     columns: tuple[SourceColumn, ...] = ()
     notes: tuple[str, ...] = ()
+    path: Path | None = None
 
 
 @dataclass(frozen=True)

@@ -2,34 +2,43 @@
 
 from __future__ import annotations
 
-import gzip
-from collections.abc import Iterator
-from dataclasses import dataclass, field
+import io
+from collections.abc import Iterable, Iterator, Mapping
+from dataclasses import dataclass, field, replace
 from pathlib import Path
-from typing import TYPE_CHECKING, BinaryIO
-from xml.etree import ElementTree
+from typing import TYPE_CHECKING
+
+import numpy as np
 
 from forensics.errors import LogError
-from forensics.logs.csv_log import is_packed
-from forensics.logs.nulls import WORDS
-from forensics.logs.raw import UNPACK_ERRORS, Keep, RawLog
+from forensics.logs.nulls import WORDS, words_for_pandas
+from forensics.logs.raw import Keep, RawLog
+from forensics.logs.xml_walk import walk
 
 if TYPE_CHECKING:
     import pandas as pd
+
+
+# Delimiters that some write as words.
+DELIMITERS = {"comma": ",", "tab": "\t", "space": " ", "semicolon": ";"}
 
 
 @dataclass
 class _Part:
     """One <log>: its curves by mnemonic, the order of its columns, its rows."""
 
+    uid: str = ""
     index_type: str = ""
     index: str = ""
-    nulls: list[float] = field(default_factory=list)
+    index_place: int = 0
+    nulls: dict[str, float] = field(default_factory=dict)
     units: dict[str, str] = field(default_factory=dict)
     places: dict[str, int] = field(default_factory=dict)
+    about: dict[str, str] = field(default_factory=dict)
     listed: list[str] = field(default_factory=list)
     delimiter: str = ","
     rows: list[str] = field(default_factory=list)
+    lines: list[int] = field(default_factory=list)
     start: str | None = None
 
     @property
@@ -41,6 +50,20 @@ class _Part:
             return sorted(self.units, key=lambda name: self.places.get(name, 0))
         return list(self.units)
 
+    @property
+    def by(self) -> str:
+        """What the rows are indexed by, where the header says."""
+        if "depth" in self.index_type or "length" in self.index_type:
+            return "depth"
+        return "time" if "time" in self.index_type else ""
+
+    @property
+    def key(self) -> tuple[object, ...]:
+        """Equal for the parts of one log: same object, same columns in the same units."""
+        return self.uid, self.by, self.start if self.index_type == "elapsed time" else None, tuple(
+            (name, self.units.get(name, "")) for name in self.order
+        )  # fmt: skip
+
 
 def sniff(path: Path, head: bytes) -> bool:
     """Tell whether a file is XML."""
@@ -50,7 +73,7 @@ def sniff(path: Path, head: bytes) -> bool:
 
 
 def read(path: Path, head: bytes, keep: Keep) -> RawLog:
-    """Read a WITSML log; the parts of a log split over several <log> elements are put one after another.
+    """Read the logs of a WITSML file.
 
     Parameters
     ----------
@@ -64,12 +87,14 @@ def read(path: Path, head: bytes, keep: Keep) -> RawLog:
     Returns
     -------
     RawLog
-        Columns of all parts, numbers where every entry is one; an empty entry is missing.
+        The first log by time, or else the first; `others` holds the rest. Parts of one log, split over
+        several <log> elements, are put one after another in the order of their first rows. An empty entry
+        is missing.
 
     Raises
     ------
     LogError
-        If the XML is broken or holds no log by time.
+        If the XML is broken, unsafe, or holds no row of a log.
 
     References
     ----------
@@ -77,86 +102,93 @@ def read(path: Path, head: bytes, keep: Keep) -> RawLog:
     `columnIndex`.
     """
     del head
-    try:
-        with gzip.open(path) if is_packed(path) else path.open("rb") as file:
-            parts = [part for part in _parts(file) if part.rows]
-    except ElementTree.ParseError as error:
-        raise LogError(f"the XML is broken: {error}", file=path, line=error.position[0]) from error
-    except UNPACK_ERRORS as error:
-        raise LogError(f"the file can't be unpacked: {error}", file=path) from error
-    timed = [part for part in parts if "depth" not in part.index_type and "length" not in part.index_type]
-    if not timed:
-        found = f"logs by {parts[0].index_type} only" if parts else "no rows of log data"
-        raise LogError(f"found {found}; expected a WITSML log by date and time", file=path)
-    names = list(dict.fromkeys(name for part in timed for name in part.order))
-    wanted = [number for number, name in enumerate(names) if keep(name) or name == timed[0].index]
-    table, long = _table(timed, names, wanted)
-    units = {name: unit for part in reversed(timed) for name, unit in part.units.items()}
-    return RawLog(
-        path=path,
-        format="WITSML",
-        names=tuple(names),
-        units=tuple(units.get(name) or None for name in names),
-        table=table,
-        first_line=1,
-        nulls=tuple({code for part in timed for code in part.nulls}),
-        start=timed[0].start,
-        notes=("lines are counted by row of data",)
-        if not long
-        else ("rows longer than their header were cut",),
-    )
+    groups: dict[tuple[object, ...], list[_Part]] = {}
+    seen: set[str] = set()
+    for part in _parts(path, seen):
+        if part.rows:
+            groups.setdefault(part.key, []).append(part)
+    if not groups:
+        raise LogError(_no_rows(seen), file=path)
+    raws = [_raw(path, parts, keep) for parts in groups.values()]
+    # A log by depth is no use as the first where there is one by time.
+    raws.sort(key=lambda raw: raw.by == "depth")
+    return replace(raws[0], others=tuple(raws[1:]))
 
 
-def _local(tag: str) -> str:
-    return tag.rpartition("}")[2]
+def _no_rows(seen: set[str]) -> str:
+    other = sorted(seen & {"trajectory", "tubular", "wbGeometry", "mudLog", "message", "bhaRun"})
+    if other:
+        return (
+            f"found a WITSML {other[0]}, not a log; [logs] takes log objects ([survey], [string] and [hole] "
+            "take trajectory, tubular and wbGeometry)"
+        )
+    if "log" in seen:
+        return "found no rows of log data; expected <data> in <logData>: export the log with its data"
+    return "found no <log> element; expected a WITSML 1.3.1.1 or 1.4.1.1 log document"
 
 
-def _parts(file: BinaryIO) -> Iterator[_Part]:
-    """Walk the file once, dropping elements as they close, so that memory holds the rows alone."""
+def _parts(path: Path, seen: set[str]) -> Iterator[_Part]:
+    """Walk the file once; names of the elements met are added to `seen`."""
     part = _Part()
     curve: dict[str, str] = {}
     inside = False
-    for event, element in ElementTree.iterparse(file, events=("start", "end")):
-        name, text = _local(element.tag), (element.text or "").strip()
-        if event == "start":
+    for event in walk(path):
+        name = event.name
+        if event.opens:
             if name == "log":
-                part = _Part()
-            inside = inside or name == "logCurveInfo"
-            if inside and name == "logCurveInfo":
-                curve = {}
-            continue
-        if name == "logCurveInfo":
+                part = _Part(uid=event.attributes.get("uid", ""))
+            elif name == "logCurveInfo":
+                inside, curve = True, {}
+            elif name == "indexCurve":
+                part.index_place = _whole(event.attributes.get("columnIndex", ""))
+            seen.add(name)
+        elif name == "logCurveInfo":
             inside = False
             _add_curve(part, curve)
         elif inside:
-            curve.setdefault(name, text)
+            curve.setdefault(name, event.text)
+        elif name == "data":
+            part.rows.append(event.text)
+            part.lines.append(event.line)
         elif name == "log":
+            _place_index(part)
             yield part
+            part = _Part()
         else:
-            _add_field(part, name, text)
-        element.clear()
+            _add_field(part, name, event.text)
 
 
-def _add_curve(part: _Part, curve: dict[str, str]) -> None:
+def _add_curve(part: _Part, curve: Mapping[str, str]) -> None:
     name = curve.get("mnemonic", "")
     if not name:
         return
     part.units[name] = curve.get("unit", "")
-    part.places[name] = int(curve["columnIndex"]) if curve.get("columnIndex", "").isdecimal() else 0
-    part.nulls += _number(curve.get("nullValue", ""))
+    part.places[name] = _whole(curve.get("columnIndex", ""))
+    about = curve.get("curveDescription", "") or curve.get("mnemAlias", "")
+    if about:
+        part.about[name] = about
+    _add_null(part, name, curve.get("nullValue", ""))
+
+
+def _place_index(part: _Part) -> None:
+    """Take the index curve's own column number where its logCurveInfo gives none."""
+    if part.index in part.units and not part.places.get(part.index):
+        part.places[part.index] = part.index_place
+
+
+def _whole(text: str) -> int:
+    return int(text) if text.isdecimal() and len(text) < 7 else 0
 
 
 def _add_field(part: _Part, name: str, text: str) -> None:
-    if name == "data":
-        part.rows.append(text)
-    elif name == "indexType":
+    if name == "indexType":
         part.index_type = text.casefold()
     elif name == "indexCurve":
         part.index = text
     elif name == "nullValue":
-        part.nulls += _number(text)
+        _add_null(part, "", text)
     elif name == "dataDelimiter" and text:
-        part.delimiter = text
+        part.delimiter = DELIMITERS.get(text.casefold(), text)
     elif name == "startDateTimeIndex":
         part.start = text or None
     elif name == "mnemonicList":
@@ -166,30 +198,92 @@ def _add_field(part: _Part, name: str, text: str) -> None:
             part.units[mnemonic] = unit.strip() or part.units.get(mnemonic, "")
 
 
-def _number(text: str) -> list[float]:
+def _add_null(part: _Part, name: str, text: str) -> None:
     try:
-        return [float(text)]
+        part.nulls[name] = float(text)
     except ValueError:
-        return []
+        return
 
 
-def _table(parts: list[_Part], names: list[str], wanted: list[int]) -> tuple[pd.DataFrame, bool]:
+def _raw(path: Path, parts: list[_Part], keep: Keep) -> RawLog:
+    """Put the parts of one log one after another, in the order of their first rows."""
+    import pandas as pd
+
+    firsts = [part.rows[0].split(part.delimiter)[0] for part in parts]
+    if len({len(first) for first in firsts}) == 1 and firsts[0][:4].isdecimal() and firsts[0][4:5] == "-":
+        parts = [part for _, part in sorted(zip(firsts, parts, strict=True), key=lambda pair: pair[0])]
+    names = parts[0].order
+    index = parts[0].index or (names[0] if names else "")
+    wanted = [number for number, name in enumerate(names) if keep(name) or name == index]
+    tables, lines, cut = [], [], 0
+    for part in parts:
+        table, longer = _table(part, len(names), wanted)
+        tables.append(table)
+        lines += part.lines
+        cut += longer
+    notes = [f"{len(parts)} parts of one log put together"] if len(parts) > 1 else []
+    notes += [f"{cut} rows longer than their header were cut"] if cut else []
+    return RawLog(
+        path=path,
+        format="WITSML",
+        names=tuple(names),
+        units=tuple(parts[0].units.get(name) or None for name in names),
+        table=tables[0] if len(tables) == 1 else pd.concat(tables, ignore_index=True),
+        first_line=lines[0],
+        lines=np.array(lines),
+        nulls=tuple(dict.fromkeys(part.nulls[""] for part in parts if "" in part.nulls)),
+        own_nulls={name: null for part in parts for name, null in part.nulls.items() if name},
+        start=parts[0].start,
+        notes=tuple(notes),
+        about=parts[0].about,
+        by=parts[0].by,
+    )
+
+
+def _table(part: _Part, width: int, wanted: list[int]) -> tuple[pd.DataFrame, int]:
+    """Split rows into the columns wanted; rows longer than the header are cut, and counted."""
+    import pandas as pd
+
+    commas = [row.count(part.delimiter) for row in part.rows]
+    longer = sum(count >= width for count in commas)
+    if not longer and not any('"' in row or "\n" in row for row in part.rows):
+        try:
+            return _fast(part, width, wanted), 0
+        except (pd.errors.ParserError, pd.errors.EmptyDataError):
+            longer = 0
+    return _patient(part, wanted), longer
+
+
+def _fast(part: _Part, width: int, wanted: list[int]) -> pd.DataFrame:
+    import pandas as pd
+
+    return pd.read_csv(
+        io.StringIO("\n".join(part.rows)),
+        engine="c",
+        sep=part.delimiter,
+        header=None,
+        names=range(width),
+        usecols=wanted,
+        skip_blank_lines=False,
+        skipinitialspace=True,
+        index_col=False,
+        na_values=words_for_pandas(),
+        low_memory=False,
+    )[wanted]
+
+
+def _patient(part: _Part, wanted: Iterable[int]) -> pd.DataFrame:
     import pandas as pd
 
     columns: dict[int, list[str | None]] = {number: [] for number in wanted}
-    long = False
-    for part in parts:
-        place = {name: i for i, name in enumerate(part.order)}
-        at = [place.get(names[number], -1) for number in wanted]
-        for row in part.rows:
-            cells = row.split(part.delimiter)
-            long = long or len(cells) > len(place)
-            for number, i in zip(wanted, at, strict=True):
-                cell = cells[i].strip() if 0 <= i < len(cells) else ""
-                columns[number].append(None if cell.casefold() in WORDS else cell)
+    for row in part.rows:
+        cells = row.split(part.delimiter)
+        for number, column in columns.items():
+            cell = cells[number].strip().strip('"') if number < len(cells) else ""
+            column.append(None if cell.casefold() in WORDS else cell)
     table = pd.DataFrame({number: pd.Series(cells, dtype="object") for number, cells in columns.items()})
-    for number in wanted:
+    for number in columns:
         converted = pd.to_numeric(table[number], errors="coerce")
         if converted.notna().sum() == table[number].notna().sum():
             table[number] = converted
-    return table, long
+    return table

@@ -99,6 +99,7 @@ SAME = {
     "columns_by_number.xml": FIRST,
     "columns_by_list.xml": FIRST,
     "two_parts.xml": FIRST,
+    "frames.wits": FIRST,
 }
 REFUSED = {
     "no_such_file.csv": "does not exist",
@@ -122,8 +123,10 @@ REFUSED = {
     "no_data_section.las": "no data section",
     "no_rows.las": "no rows",
     "no_curves.las": "no curves",
-    "by_depth_only.xml": "by measured depth only",
+    "by_depth_only.xml": "logs by depth only",
     "broken.xml": "XML is broken",
+    "units_not_told.wits": "no value here tells the system",
+    "units_contradict.wits": "contradict each other",
 }
 
 
@@ -148,7 +151,7 @@ def test_every_file_of_defects_is_used():
     other = {"header_is_numbers.csv", "optional_without_unit.csv", "null_words.csv", "null_codes.csv",
              "null_smeared.csv", "garbled_lines.csv", "last_line_breaks_off.csv", "all_zero_channels.csv",
              "rpm_zero_while_torque_is_not.csv", "run_on_and_broken_lines.las",
-             "stamp_out_of_line.csv", "stamp_far_ahead.csv"}  # fmt: skip
+             "stamp_out_of_line.csv", "stamp_far_ahead.csv", "frames_broken_off.wits"}  # fmt: skip
     assert {path.name for path in DATA.iterdir()} == (SAME.keys() | REFUSED.keys() | other) - {
         "no_such_file.csv"
     }

@@ -15,6 +15,7 @@ FILES = {
     "CSV": ["clean.csv", "packed.csv.gz", "semicolon_decimal_comma.csv", "utf16.csv", "line_too_long.csv"],
     "LAS": ["elapsed_seconds.las", "wrapped.las", "version_3.las", "run_on_and_broken_lines.las"],
     "WITSML": ["columns_by_number.xml", "columns_by_list.xml", "two_parts.xml"],
+    "WITS": ["frames.wits"],
 }
 CASES = [(kind, name) for kind, names in FILES.items() for name in names]
 
