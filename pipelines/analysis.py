@@ -32,6 +32,7 @@ from forensics.replay.run import Replay, replay
 from forensics.report.scene import main_episodes
 from forensics.rig.absent import absent_channels, idle_channels
 from forensics.rig.activity import refine_activity
+from forensics.rig.contradictions import contradictions
 from forensics.rig.plausible import check_block, check_hookload
 from forensics.rig.travel import match_travel
 from forensics.rig.understand import understand_rig
@@ -91,8 +92,11 @@ def analyse(case: Case, progress: Progress, units: str = "metric") -> Findings:
         loads = replay(made)
         rig = refine_activity(run.rig, loads.bit_load, run.log)
     # Not named here: a second holder would keep alive what the rules work out on it before the draws.
+    doubts = contradictions(run.log, run.well, rig)
     findings = _tell(
-        Material(run.log, rig, loads, None, calibration, run.well, case, system=units), made, progress
+        Material(run.log, rig, loads, None, calibration, run.well, case, system=units, doubts=doubts),
+        made,
+        progress,
     )
     return replace(findings, weights=run.weights, slides=run.slides)
 
@@ -175,4 +179,4 @@ def _remarks(material: Material) -> tuple[str, ...]:
     """Everything a reader should know of the input, each said once."""
     log = material.log
     unused = (*unused_settings(material.case), *idle_channels(log))
-    return tuple(dict.fromkeys((*log.warnings, *material.well.warnings, *unused)))
+    return tuple(dict.fromkeys((*log.warnings, *material.well.warnings, *material.doubts, *unused)))

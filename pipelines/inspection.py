@@ -92,6 +92,7 @@ def _inspect_case(path: Path) -> Inspection:
     from forensics.case.unused import unused_settings
     from forensics.logs.read import read_time_logs
     from forensics.report.inspection import Inspection
+    from forensics.rig.contradictions import contradictions
     from forensics.well.model import load_well
     from pipelines.fingerprints import fingerprints
 
@@ -101,7 +102,9 @@ def _inspect_case(path: Path) -> Inspection:
     well = _tried(lambda: load_well(case), refusals)
     if well is not None:
         _tried(lambda: check(case, log, well), refusals)
-    return Inspection(case, log, well, fingerprints(case, log), tuple(refusals), unused_settings(case))
+    doubts = contradictions(log, well) if well is not None else ()
+    remarks = (*doubts, *unused_settings(case))
+    return Inspection(case, log, well, fingerprints(case, log), tuple(refusals), remarks)
 
 
 def check(case: Case, log: TimeLog, well: Well) -> None:

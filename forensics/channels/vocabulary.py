@@ -275,6 +275,23 @@ CHANNELS: tuple[Channel, ...] = (
         (-6.0e4, 1.5e5),
     ),
     Channel(
+        "inclination",
+        "angle",
+        "inclination measured while drilling",
+        _names(
+            "inclination, inc, incl, continuous inclination, cont inc, inc cont, mwd inclination, mwd inc, "
+            "sinc, svy inclination, inc rt, incl rt, dni inc, near bit inclination"
+        ),
+        (-0.02, 2.6),
+    ),
+    Channel(
+        "bit_tvd",
+        "length",
+        "true vertical depth of the bit, as the rig worked it out",
+        _names("bit tvd, dbtv, tvd bit, bit depth tvd, vbitdep, deptbitv, depth bit vertical"),
+        (-300.0, 12000.0),
+    ),
+    Channel(
         "slips",
         "dimensionless",
         "1 while the string hangs in slips",
@@ -294,7 +311,7 @@ GENERIC_DEPTH = frozenset(
 LOOKALIKES: dict[str, str] = {
     **dict.fromkeys(
         _names(
-            "vbitdep, dbtv, deptbitv, bitdepthtvd, tvdbit, vdepth, dver, deptvert, tvd, holedepthtvd, tvdhole"
+            "vdepth, dver, deptvert, tvd, holedepthtvd, tvdhole"
         ),
         "a true vertical depth",
     ),

@@ -212,6 +212,9 @@ def _confidence(material: Material, main: list[Episode]) -> str:
     if blind:
         friction += "; rotation was not logged and is guessed"
     weak |= blind
+    if material.doubts:
+        friction += "; the log contradicts the case's survey, string or mud (see the data account)"
+        weak = True
     if not material.calibration.readings and not material.calibration.block_weight.determined:
         return (
             "low: the log shows neither a steady off-bottom weight nor the block's weight, so friction and "

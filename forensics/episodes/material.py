@@ -39,7 +39,7 @@ class Material:
 
     `draws` is None where the replay was not repeated; `flagged` is what the rules flag on these loads, where
     somebody has worked it out before (see `find.flag_rows`); `system`, "metric" or "field", is what
-    sentences about it are worded in.
+    sentences about it are worded in; `doubts` say where the log contradicts survey, string or mud.
     """
 
     log: TimeLog
@@ -51,6 +51,7 @@ class Material:
     case: Case
     flagged: Flagged | None = None
     system: str = "metric"
+    doubts: tuple[str, ...] = ()
 
     @property
     def time(self) -> Floats:

@@ -13,7 +13,7 @@ COST: Mapping[str, str] = {
     "wob": "No weight on bit (WOB) by the rig in the log: how it was zeroed can't be told.",
 }
 # Channels that are read and cleaned, and that no later stage takes loads from.
-IDLE = ("flow_out", "mud_density", "pit_volume", "rop", "toolface", "downhole_wob", "downhole_torque")
+IDLE = ("flow_out", "pit_volume", "rop", "toolface", "downhole_wob", "downhole_torque")
 # From this interval on, three rows outlast what a driller does for a weight check [s].
 SLOW = 10.0
 

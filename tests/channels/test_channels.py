@@ -31,14 +31,14 @@ NAMES = {
     "differential_pressure": ["DIFP", "DIFF_PRESS", "Differential Pressure"],
     "bit_depth": ["BDEP", "BITDEP", "DBTM", "DEPTBITM", "Bit Depth", "BIT DEPTH (MD)"],
     "hole_depth": ["HDEP", "DMEA", "DEPTMEAS", "Hole Depth", "DEPT", "MD", "Depth(ft)"],
+    "inclination": ["INC", "SINC", "Continuous Inclination"],
+    "bit_tvd": ["VBITDEP", "DBTV", "Bit TVD"],
     "toolface": ["GTF", "Toolface", "TF_ANGLE"],
     "slips": ["INSLIPS_STATUS", "STIS", "slips"],
     "rop": ["ROP", "ROPA", "ROP_AVG", "Rate of Penetration"],
     "time": ["TIME", "Time", "DATETIME", "RIGTIME", "ETIM"],
 }
 OTHERS = [
-    "VBITDEP",
-    "DBTV",
     "DVER",
     "TVD",
     "BIT_RPM",
