@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import enum
+import math
 from dataclasses import dataclass
 
 from forensics.estimate import Estimate
@@ -40,12 +41,35 @@ class Consequence(enum.StrEnum):
 
 @dataclass(frozen=True)
 class Evidence:
-    """A named measurement for or against a cause; `weight` > 0 supports it, < 0 speaks against it."""
+    """A named measurement for or against a cause.
+
+    Parameters
+    ----------
+    name, text : str
+        The measurement, and a sentence with its value.
+    weight : float
+        Natural log of the likelihood ratio: above zero it supports the cause, below it speaks against.
+    origin : str
+        Where the ratio comes from.
+    value : float
+        What was measured, in `unit` (metric, as outputs have it).
+    unit : str
+    figure : str
+        What in the report shows it: "strip", "profile", "residuals", "fan", "path", "run" or "files".
+    """
 
     name: str
     text: str
     weight: float
     origin: str
+    value: float = float("nan")
+    unit: str = ""
+    figure: str = ""
+
+    @property
+    def ratio(self) -> float:
+        """How many times as often this is met with the cause as with causes at large."""
+        return math.exp(self.weight)
 
 
 @dataclass(frozen=True)

@@ -6,8 +6,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass, replace
 
 from forensics.episodes.catalogue import Episode, Family, Headline
-from forensics.episodes.causes import weigh
-from forensics.episodes.causes.signals import Signals
+from forensics.episodes.causes import Usual, weigh
 from forensics.episodes.find import find_episodes
 from forensics.episodes.groups import group, is_routine
 from forensics.episodes.headline import headline
@@ -61,13 +60,13 @@ def weigh_episodes(material: Material) -> Weighed:
     Weighed
     """
     episodes, dropped = find_episodes(material)
-    signals = Signals(material)
+    usual = Usual(material)
     weighed = []
     for episode in episodes:
         if is_routine(episode):  # it cost nothing: there is no cause to look for
             weighed.append(episode)
             continue
-        cause, views = weigh(material, signals, episode)
+        cause, views = weigh(material, usual, episode)
         weighed.append(replace(episode, cause=cause, causes=views))
     return Weighed(tuple(weighed), dropped)
 

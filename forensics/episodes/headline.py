@@ -7,9 +7,17 @@ from collections import Counter
 import numpy as np
 
 from forensics.episodes import wording
-from forensics.episodes.catalogue import RESIDUAL_QUANTITY, Consequence, Episode, Headline, Kind, State
+from forensics.episodes.catalogue import (
+    RESIDUAL_QUANTITY,
+    Consequence,
+    Episode,
+    Headline,
+    Kind,
+    State,
+)
 from forensics.episodes.causes.names import Cause
 from forensics.episodes.causes.weigh import UNTOLD
+from forensics.episodes.causes.words import cause_sentence
 from forensics.episodes.groups import DOING, is_routine, rule_label
 from forensics.episodes.material import NOISE_MULTIPLE, Material
 from forensics.episodes.measure import CERTAIN, helical_span
@@ -103,7 +111,7 @@ def _loaded(material: Material, episode: Episode, system: str) -> str:
     text = _capital(f"{doing}with the bit at {wording.depth(bit, system)}, {when}, the string {what}")
     text += _cost(material, episode, system)
     if episode.cause:
-        text += f" {_cause(episode)}"
+        text += f" {cause_sentence(episode)}"
     return text
 
 
@@ -139,21 +147,6 @@ def _cost(material: Material, episode: Episode, system: str) -> str:
     return text + "."
 
 
-def _cause(episode: Episode) -> str:
-    if episode.cause.startswith(UNTOLD):
-        return f"The causes {episode.cause.removeprefix(UNTOLD + ': ').replace(' or ', ' and ', 1)} {UNTOLD}."
-    if episode.cause == Cause.NO_DATA.value:
-        return "The log does not show enough to name a cause."
-    return f"Best-supported cause: {episode.cause}{_chance_of(episode)}."
-
-
-def _chance_of(episode: Episode) -> str:
-    leading = episode.causes[0] if episode.causes else None
-    if leading is None or not episode.cause.startswith(leading.cause):
-        return ""
-    return f" ({100.0 * leading.probability:.0f} %)"
-
-
 def _dragging(material: Material, main: list[Episode], system: str) -> str:
     """Tell of drag and torque where nothing buckled."""
     worst = main[0]
@@ -177,7 +170,7 @@ def _dragging(material: Material, main: list[Episode], system: str) -> str:
     if causes:
         leading, number = causes.most_common(1)[0]
         if leading == worst.cause:
-            text += f" {_cause(worst)}"
+            text += f" {cause_sentence(worst)}"
         elif leading != Cause.NO_DATA.value and not leading.startswith(UNTOLD):
             text += f" Most often best supported: {leading} ({number} of {len(main)})."
     return text

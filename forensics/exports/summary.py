@@ -12,6 +12,7 @@ from typing import Any
 import numpy as np
 
 from forensics import __version__
+from forensics.exports.causes import causes_content
 from forensics.exports.episodes import episode_rows
 from forensics.exports.friction import friction_content
 from forensics.exports.pipe import pipe_content
@@ -71,8 +72,12 @@ def summary_content(findings: Findings) -> dict[str, Any]:
         "friction": friction_content(findings),
         "rate_law": _rate_law(findings),
         "episodes": [
-            {**row, "pipe": pipe_content(findings.tolls.get(str(row["id"])))}
-            for row in episode_rows(findings)
+            {
+                **row,
+                "causes": causes_content(episode, episode.id in findings.profiles),
+                "pipe": pipe_content(findings.tolls.get(episode.id)),
+            }
+            for episode, row in zip(findings.episodes, episode_rows(findings), strict=True)
         ],
         "episodes_dropped": {reason: int(count) for reason, count in sorted(findings.dropped.items())},
         "families": [

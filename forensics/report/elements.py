@@ -77,12 +77,24 @@ class Column:
 
 
 @dataclass(frozen=True)
+class Linked:
+    """A line of a table cell, with a link to the anchor of what shows it."""
+
+    text: str
+    words: str
+    anchor: str
+
+
+Line = str | Linked
+
+
+@dataclass(frozen=True)
 class Table:
-    """A table; a cell is a string, or a tuple of strings for several lines."""
+    """A table; a cell is a line, or a tuple of lines."""
 
     caption: str
     columns: tuple[Column, ...]
-    rows: tuple[tuple[str | tuple[str, ...], ...], ...]
+    rows: tuple[tuple[Line | tuple[Line, ...], ...], ...]
     note: str = ""
     empty: str = "None."
     dense: bool = False
@@ -91,7 +103,7 @@ class Table:
 
 @dataclass(frozen=True)
 class Picture:
-    """A figure to be drawn when the report is rendered.
+    """A figure to be drawn when the report is rendered; `anchor` is what links to it name.
 
     Raises
     ------
@@ -102,6 +114,7 @@ class Picture:
     draw: Callable[[], Figure]
     caption: str
     alt: str
+    anchor: str = ""
     form = "picture"
 
     def __post_init__(self) -> None:

@@ -38,6 +38,7 @@ class Drawn:
     height: int
     caption: str
     alt: str
+    anchor: str = ""
     form = "drawn"
 
 
@@ -110,7 +111,7 @@ def _draw(picture: Picture, number: int) -> Drawn:
     data = base64.b64encode(png(figure)).decode("ascii")
     width, height = (round(side * figure.dpi * _PIXELS_SHOWN) for side in figure.get_size_inches())
     hand_back(figure)
-    return Drawn(number, data, width, height, picture.caption, picture.alt)
+    return Drawn(number, data, width, height, picture.caption, picture.alt, picture.anchor)
 
 
 @cache

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from forensics.episodes.causes.usual import Usual
 from forensics.episodes.causes.weigh import UNTOLD, weigh
 
-__all__ = ["UNTOLD", "weigh"]
+__all__ = ["UNTOLD", "Usual", "weigh"]

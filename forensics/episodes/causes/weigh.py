@@ -2,86 +2,91 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
+
 import numpy as np
 
-from forensics.episodes.catalogue import CauseView, Episode, Evidence, Kind
-from forensics.episodes.causes.names import PRIOR, Cause
-from forensics.episodes.causes.signals import Signals
-from forensics.episodes.causes.table import MECHANICS, SIGNS
-from forensics.episodes.causes.tells import Tells, measure_tells
+from forensics.episodes.catalogue import CauseView, Episode, Evidence
+from forensics.episodes.causes.measures import MEASURES, Subject, take_all
+from forensics.episodes.causes.names import Cause
+from forensics.episodes.causes.strengths import Strengths, strengths
+from forensics.episodes.causes.usual import Usual
 from forensics.episodes.material import Material
-
-#: Signs lean on the same readings, so their sum is worth less than if they were independent.
-SOFTEN = 0.75
 
 #: A cause is named alone where it is at least this likely, and this many times likelier than the next.
 ALONE = 0.5
 TIMES = 1.6
 
+#: Causes at least this likely, over the leading one, are named beside it where it is not.
+BESIDE = 0.5
+
 UNTOLD = "can't be told apart"
 
 
-def weigh(material: Material, signals: Signals, episode: Episode) -> tuple[str, tuple[CauseView, ...]]:
+def weigh(material: Material, usual: Usual, episode: Episode) -> tuple[str, tuple[CauseView, ...]]:
     """Weigh all causes for one episode.
 
     Parameters
     ----------
     material : Material
-    signals : Signals
+    usual : Usual
         The run's usual values.
     episode : Episode
 
     Returns
     -------
     cause : str
-        The best-supported cause, or that the leading two can't be told apart.
+        The best-supported cause, or that the leading ones can't be told apart.
     views : tuple of CauseView
         All causes, likeliest first, with the evidence for and against each.
     """
-    tells = measure_tells(material, signals, episode)
-    views = rank(episode.kind, tells, episode.probability, material.system)
+    views = rank(take_all(Subject(material, usual, episode)), material.system)
     return name_cause(views), views
 
 
 def rank(
-    kind: Kind, tells: Tells, probability: float = float("nan"), system: str = "metric"
+    values: Mapping[str, float], system: str = "metric", known: Strengths | None = None
 ) -> tuple[CauseView, ...]:
     """Rank causes on measurements.
 
     Parameters
     ----------
-    kind : Kind
-    tells : Tells
-    probability : float
-        That the episode's own rule holds over the draws.
+    values : mapping of str to float
+        By measurement [SI]; NaN, or left out, where there is none.
     system : str
         "metric" or "field": what the evidence is worded in.
+    known : Strengths, optional
+        The package's own where left out.
 
     Returns
     -------
     tuple of CauseView
         Likeliest first; probabilities add up to one.
+
+    Notes
+    -----
+    Before evidence all causes count alike. The likelihood ratios shown are those used: they multiply, and
+    the products over their sum are the probabilities, less the doubt that is shared out among all.
     """
+    known = known or strengths()
     evidence: dict[Cause, list[Evidence]] = {cause: [] for cause in Cause}
-    if kind in (Kind.BUCKLING, Kind.LOCKUP) and np.isfinite(probability):
-        weight = float(np.clip(np.log(probability / (1.0 - probability + 1e-9)), -2.0, 2.0))
-        text = f"the rule holds in {100.0 * probability:.0f} % of the draws of friction and weight"
-        evidence[Cause.BUCKLING].append(Evidence("chance over the draws", text, weight, MECHANICS))
-    for sign in SIGNS:
-        strength = sign.strength(tells) if kind in sign.kinds else float("nan")
-        if not np.isfinite(strength) or abs(strength) < 0.1:
+    for measure in MEASURES:
+        value = values.get(measure.name, float("nan"))
+        if not np.isfinite(value):
             continue
-        weights = sign.seen if strength > 0.0 else sign.contrary
-        for cause, weight in weights.items():
-            if weight:
-                words = sign.words(tells, system)
-                item = Evidence(sign.name, words, float(weight * abs(strength)), sign.origin)
-                evidence[cause].append(item)
-    scores = np.array(
-        [PRIOR[kind][cause] + SOFTEN * sum(e.weight for e in evidence[cause]) for cause in Cause]
-    )
+        strength = known.by_measure[measure.name]
+        said = strength.weights[:, measure.bin_of(value)]
+        text = measure.say(value, system)
+        for k, cause in enumerate(Cause):
+            evidence[cause].append(
+                Evidence(
+                    measure.name, text, float(said[k]), strength.origin(k),
+                    measure.scaled(value), measure.unit(), measure.figure,
+                )
+            )  # fmt: skip
+    scores = np.array([sum(e.weight for e in evidence[cause]) for cause in Cause])
     chances = np.exp(scores - scores.max())
-    chances /= chances.sum()
+    chances = (1.0 - known.doubt) * chances / chances.sum() + known.doubt / len(Cause)
     views = [
         CauseView(cause.value, float(chance), tuple(evidence[cause]))
         for cause, chance in zip(Cause, chances, strict=True)
@@ -90,7 +95,7 @@ def rank(
 
 
 def name_cause(views: tuple[CauseView, ...]) -> str:
-    """Name the leading cause, or the two that can't be told apart.
+    """Name the leading cause, or those that can't be told apart.
 
     Parameters
     ----------
@@ -106,8 +111,6 @@ def name_cause(views: tuple[CauseView, ...]) -> str:
         return first.cause
     if first.cause == Cause.NO_DATA.value:
         return first.cause
-    if second.cause == Cause.NO_DATA.value:
-        if first.probability >= TIMES * second.probability:
-            return f"{first.cause} (weakly supported)"
-        return Cause.NO_DATA.value
-    return f"{UNTOLD}: {first.cause} or {second.cause}"
+    near = [view.cause for view in views[:3] if view.probability >= BESIDE * first.probability]
+    near = near if len(near) > 1 else [first.cause, second.cause]
+    return f"{UNTOLD}: {', '.join(near[:-1])} or {near[-1]}"

@@ -81,7 +81,7 @@ def _fan(scene: Scene) -> Picture:
     )
     readings = count(len(scene.findings.calibration.readings), "reading")
     alt = f"Three model lines of hookload over bit depth with {readings}."
-    return Picture(lambda: weights.fan_chart(scene), caption, alt)
+    return Picture(lambda: weights.fan_chart(scene), caption, alt, "fan-chart")
 
 
 def _residuals(scene: Scene) -> Picture:
@@ -95,7 +95,7 @@ def _residuals(scene: Scene) -> Picture:
     worst = float(np.max(np.abs(residuals))) if len(residuals) else float("nan")
     largest = scene.show.value(worst, "force")
     alt = f"Residuals of readings and samples; the largest residual of a reading is {largest}."
-    return Picture(lambda: weights.residual_chart(scene), caption, alt)
+    return Picture(lambda: weights.residual_chart(scene), caption, alt, "residual-chart")
 
 
 def tare_table(scene: Scene) -> Table:

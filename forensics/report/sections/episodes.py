@@ -6,7 +6,8 @@ import math
 
 import numpy as np
 
-from forensics.episodes.catalogue import CauseView, Consequence, Episode, Evidence, Kind, State
+from forensics.episodes.catalogue import Consequence, Episode, Kind, State
+from forensics.episodes.causes.words import cause_sentence
 from forensics.episodes.groups import is_routine
 from forensics.episodes.headline import gravity
 from forensics.report import derived
@@ -24,6 +25,7 @@ from forensics.report.elements import (
 )
 from forensics.report.figures import depths, timeline
 from forensics.report.scene import MAIN_CAP, Scene
+from forensics.report.sections.causes import anchor, cause_table
 from forensics.report.sections.cautions import for_episode
 from forensics.report.sections.first import RESIDUALS, episode_numbers, rotation_sentence
 from forensics.report.sections.pipe import stress_table
@@ -82,13 +84,14 @@ def _part(scene: Scene, episode: Episode) -> Part:
     elements: list[Element] = [Text(summary(scene, episode))]
     profile = scene.findings.profiles.get(episode.id)
     elements.append(Numbers(f"{episode.id} in numbers", _numbers(scene, episode)))
-    if profile is not None and len(profile.md) > 1:
+    profiled = profile is not None and len(profile.md) > 1
+    if profiled:
         elements.append(_profile_picture(scene, episode))
     elements.append(_moment_picture(scene, episode))
     strained = stress_table(scene, episode)
     if strained is not None:
         elements.append(strained)
-    elements.append(cause_table(episode))
+    elements.append(cause_table(episode, profiled))
     cautions = for_episode(episode)
     if cautions:
         elements.append(Notice(f"Cautions that apply to {episode.id}", cautions))
@@ -108,7 +111,7 @@ def summary(scene: Scene, episode: Episode) -> str:
     if episode.note:
         sentences.append(episode.note[0].upper() + episode.note[1:].rstrip("."))
     if episode.cause:
-        sentences.append(f"Best-supported cause: {plain(episode.cause)}")
+        sentences.append(cause_sentence(episode))
     return ". ".join(s.rstrip(".") for s in sentences) + "."
 
 
@@ -172,7 +175,9 @@ def _profile_picture(scene: Scene, episode: Episode) -> Picture:
         "Effective tension over measured depth with sinusoidal and helical thresholds; the largest "
         f"compression is {show.value(compression, 'force')}."
     )
-    return Picture(lambda: depths.load_profile(scene, profile, episode), caption, alt)
+    return Picture(
+        lambda: depths.load_profile(scene, profile, episode), caption, alt, anchor("profile", episode)
+    )
 
 
 def _moment_picture(scene: Scene, episode: Episode) -> Picture:
@@ -183,40 +188,7 @@ def _moment_picture(scene: Scene, episode: Episode) -> Picture:
         "of the bit, the lower end did not move."
     )
     alt = f"Strip chart of rig channels and reconstruction from before to after episode {episode.id}."
-    return Picture(lambda: timeline.moment_strip(scene, episode), caption, alt)
-
-
-def cause_table(episode: Episode) -> Table:
-    """Tabulate evidence for and against each cause; those without any are named below."""
-    columns = (
-        Column("cause"),
-        Column("probability", "number"),
-        Column("speaks for it"),
-        Column("speaks against it"),
-    )
-    ranked = sorted(episode.causes, key=lambda c: -c.probability)
-    told = [c for c in ranked if c.evidence or c.probability >= 0.05]
-    silent = [c for c in ranked if c not in told]
-    rows = tuple((plain(c.cause), fixed(c.probability, 2), _side(c, 1), _side(c, -1)) for c in told)
-    note = "Probabilities weigh the causes against one another on this evidence. In brackets: its origin."
-    if silent:
-        note += (
-            f" Considered, with nothing found for or against: {', '.join(plain(c.cause) for c in silent)}."
-        )
-    empty = "No cause was weighed for this episode."
-    return Table(f"{episode.id}: causes weighed", columns, rows, note if rows else "", empty, dense=True)
-
-
-def _side(cause: CauseView, sign: int) -> tuple[str, ...]:
-    """Evidence on one side, strongest first."""
-    picked = [e for e in cause.evidence if e.weight * sign > 0]
-    ordered = sorted(picked, key=lambda e: -abs(e.weight))
-    return tuple(_evidence(e) for e in ordered) or ("nothing found",)
-
-
-def _evidence(evidence: Evidence) -> str:
-    origin = f" [{evidence.origin}]" if evidence.origin else ""
-    return f"{evidence.name}: {evidence.text}{origin}"
+    return Picture(lambda: timeline.moment_strip(scene, episode), caption, alt, anchor("strip", episode))
 
 
 def describe_tables(scene: Scene) -> Section:

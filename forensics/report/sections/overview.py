@@ -36,7 +36,7 @@ def _strip(scene: Scene) -> Picture:
         "depth, block, hookload, weight on bit, torque, rotation, pressure and flow where logged, and a "
         "band of activities."
     )
-    return Picture(lambda: timeline.run_strip(scene), caption, alt)
+    return Picture(lambda: timeline.run_strip(scene), caption, alt, "run-strip")
 
 
 def _path(scene: Scene) -> Picture:
@@ -50,7 +50,7 @@ def _path(scene: Scene) -> Picture:
         f"{e.id} {scene.show.depths(e.top_md, e.bottom_md)}" for e in scene.mains if np.isfinite(e.top_md)
     ]
     alt = f"Vertical section of the hole with affected intervals: {'; '.join(spans) or 'none'}."
-    return Picture(lambda: path.hole_path(scene), caption, alt)
+    return Picture(lambda: path.hole_path(scene), caption, alt, "hole-path")
 
 
 def _map(scene: Scene) -> list[Element]:

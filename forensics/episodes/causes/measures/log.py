@@ -1,0 +1,74 @@
+"""How poor the log is where the episode is."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from forensics.episodes.causes.measures.base import NAN, Measure, Subject
+
+#: Channels that tell causes apart, besides time, bit depth and hookload.
+WANTED = ("block_position", "rpm", "torque", "standpipe_pressure", "flow_in", "differential_pressure")
+
+
+def missing(s: Subject) -> float:
+    """How many of the wanted channels the log lacks."""
+    return float(sum(s.material.log.get(name) is None for name in WANTED))
+
+
+def interval(s: Subject) -> float:
+    """Usual sampling interval [s]."""
+    return float(s.material.log.interval)
+
+
+def lost(s: Subject) -> float:
+    """Part of the time around the episode in gaps, or with rows set aside."""
+    m = s.material
+    start, end = max(s.episode.start - 600.0, m.time[0]), min(s.episode.end + 600.0, m.time[-1])
+    rows = m.rows_between(start, end)
+    used = float(np.count_nonzero(m.log.used[rows])) * m.log.interval
+    return float(np.clip(1.0 - used / max(end - start, m.log.interval), 0.0, 1.0))
+
+
+def uncalibrated(s: Subject) -> float:
+    """Part of the hole sections whose friction the run did not determine."""
+    sections = [x for x in s.material.calibration.sections if x.bottom > x.top]
+    return float(np.mean([not x.factor.determined for x in sections])) if sections else 1.0
+
+
+MEASURES = (
+    Measure(
+        "channels missing",
+        missing,
+        (0.5, 1.5, 2.5, 4.5),
+        "of six channels that tell causes apart the log lacks {}",
+        "files",
+        "count",
+    ),
+    Measure("sampling", interval, (1.5, 5.5, 15.0), "the log has a sample every {}", "files", "time"),
+    Measure(
+        "time without samples",
+        lost,
+        (0.03, 0.15, 0.4),
+        "{} of the time around it has no usable sample",
+        "strip",
+        "share",
+    ),
+    Measure(
+        "friction not determined",
+        uncalibrated,
+        (0.25, 0.75),
+        "the run did not determine the friction of {} of its sections",
+        "fan",
+        "share",
+    ),
+)
+
+#: Taken from the other measurements, once they are.
+SILENT = Measure(
+    "measurements without a reading",
+    lambda _: NAN,
+    (0.15, 0.25, 0.35, 0.5),
+    "{} of the measurements could not be taken",
+    "files",
+    "share",
+)
