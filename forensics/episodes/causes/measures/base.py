@@ -79,7 +79,8 @@ class Measure:
     figure : str
         What shows it: "strip", "profile", "residuals", "fan", "path", "run" or "files".
     quantity : str
-        As `forensics.units` names it, or "threshold" (multiples of what counts), "share", "ratio", "count", "word".
+        As `forensics.units` names it, or "threshold" (multiples of what counts), "share", "ratio", "count" or
+        "word".
     levels : tuple of str
         For "word": what the numbers 0, 1, 2... stand for.
     """
