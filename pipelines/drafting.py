@@ -26,6 +26,7 @@ from forensics.well.fluid import MUD_COLUMNS
 from forensics.well.hole import HOLE_COLUMNS
 from forensics.well.survey import SURVEY_COLUMNS
 from forensics.well.tally import STRING_COLUMNS
+from forensics.well.witsml_objects import object_kind
 
 #: Tables told by their headers, the more particular first.
 KINDS: Mapping[str, Sequence[Column]] = {
@@ -86,6 +87,8 @@ def gather(files: Sequence[Path]) -> Gathered:
 def _kind(path: Path) -> str | None:
     """Kind of table a file is by its header; None for a log."""
     head = read_head(path)
+    if head.lstrip(b"\xef\xbb\xbf \r\n\t").startswith(b"<"):
+        return object_kind(head)
     if path.suffix.casefold() not in {".csv", ".txt", ".tsv"} or not (cells := header_of(decode(head), path)):
         return None
     found = {channels.match(cell)[0] for cell in cells.cells[0]}

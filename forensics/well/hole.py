@@ -10,6 +10,8 @@ from numpy.typing import ArrayLike, NDArray
 
 from forensics.errors import TableError, nearest
 from forensics.tables import Column, Table, plain, read_table
+from forensics.well.witsml_geometry import read_geometry
+from forensics.well.witsml_objects import is_xml
 
 Floats = NDArray[np.float64]
 
@@ -85,7 +87,8 @@ def load_hole(file: Path) -> tuple[Hole, tuple[str, ...]]:
     Parameters
     ----------
     file : Path
-        Columns top, bottom, diameter, kind, and optional name, friction. Rows may stand in any order.
+        Columns top, bottom, diameter, kind, and optional name, friction, rows in any order; or a WITSML
+        wbGeometry.
 
     Returns
     -------
@@ -98,13 +101,13 @@ def load_hole(file: Path) -> tuple[Hole, tuple[str, ...]]:
     TableError
         If the table can't be read, a diameter or kind is impossible, or sections leave a gap or overlap.
     """
-    table = read_table(file, HOLE_COLUMNS)
+    table, found = read_geometry(file) if is_xml(file) else (read_table(file, HOLE_COLUMNS), ())
     top, bottom, diameter = (table.number(name) for name in ("top", "bottom", "diameter"))
     kinds = [_kind(table, row, text) for row, text in enumerate(table.text("kind"))]
     _check_rows(table, top, bottom, diameter)
     order = np.argsort(top, kind="stable")
     _check_joins(table, top[order], bottom[order], order)
-    remarks = []
+    remarks = list(found)
     if (np.diff(order) < 0).any():
         remarks.append(f"{file.name}: rows were not in order of depth; they were sorted")
     if table.ignored:

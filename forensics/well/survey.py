@@ -18,9 +18,12 @@ from forensics.well.trajectory import (
     find_fault,
     tangent_of,
 )
+from forensics.well.witsml_objects import is_xml
+from forensics.well.witsml_trajectory import read_trajectory
 
 Floats = NDArray[np.float64]
-
+# No tool reads an angle this small: what is below was never an angle [rad].
+UNDECODED = 1e-9
 SURVEY_COLUMNS = (
     Column(
         "md",
@@ -44,7 +47,7 @@ def load_trajectory(file: Path, tie_in: TieIn | None = None) -> tuple[Trajectory
     Parameters
     ----------
     file : Path
-        Columns md, inclination, azimuth.
+        Columns md, inclination, azimuth; or a WITSML trajectory.
     tie_in : TieIn, optional
         A station above the first row.
 
@@ -59,7 +62,7 @@ def load_trajectory(file: Path, tie_in: TieIn | None = None) -> tuple[Trajectory
     TableError
         If the table can't be read, or as `build_trajectory`, with the rows named.
     """
-    table = read_table(file, SURVEY_COLUMNS)
+    table, found = read_trajectory(file) if is_xml(file) else (read_table(file, SURVEY_COLUMNS), ())
     stations = [table.number(name) for name in ("md", "inclination", "azimuth")]
     extra = 0
     if tie_in is not None:
@@ -76,7 +79,20 @@ def load_trajectory(file: Path, tie_in: TieIn | None = None) -> tuple[Trajectory
     if fault is not None:
         row, message = fault
         raise table.error(message, max(row - extra, 0))
-    return build_trajectory(*stations), _remarks(file.name, stations)
+    _refuse_undecoded(table)
+    return build_trajectory(*stations), (*found, *_remarks(file.name, stations))
+
+
+def _refuse_undecoded(table: Table) -> None:
+    """Refuse angles that are all next to nothing and none of them 0: numbers nobody decoded."""
+    angles = np.concatenate([table.number("inclination"), table.number("azimuth")])
+    if len(table) > 2 and (angles != 0.0).all() and np.abs(angles).max() < UNDECODED:
+        raise table.error(
+            f"is {np.degrees(angles[0]):.3g} deg, and no angle is larger: these numbers were not decoded "
+            "right; export the survey anew",
+            0,
+            "inclination",
+        )
 
 
 def _agree(stations: Sequence[Floats], tie_in: TieIn, table: Table) -> None:

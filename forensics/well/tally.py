@@ -10,6 +10,9 @@ import numpy as np
 from forensics.errors import nearest
 from forensics.tables import Column, Table, plain, read_table
 from forensics.well.string import KINDS, PIPE, STEEL_DENSITY, STEEL_MODULUS, Component, String, plain_weight
+from forensics.well.weights import derive_weight
+from forensics.well.witsml_objects import is_xml
+from forensics.well.witsml_tubular import read_tubular
 
 STRING_COLUMNS = (
     Column("name", "text", ("component", "description", "item", "element")),
@@ -65,7 +68,8 @@ def load_string(file: Path) -> tuple[String, tuple[str, ...]]:
     Parameters
     ----------
     file : Path
-        Bit first, going up: kind, length, od, id, weight and the optional columns of `STRING_COLUMNS`.
+        A table, bit first, going up: kind, length, od, id, weight and the optional columns of
+        `STRING_COLUMNS`; or a WITSML tubular.
 
     Returns
     -------
@@ -78,9 +82,9 @@ def load_string(file: Path) -> tuple[String, tuple[str, ...]]:
     TableError
         If the table can't be read, a size is impossible, or the bit stands among other components.
     """
-    table = read_table(file, STRING_COLUMNS)
+    table, found = read_tubular(file) if is_xml(file) else (read_table(file, STRING_COLUMNS), ())
     kinds = [_kind(table, row, text) for row, text in enumerate(table.text("kind"))]
-    remarks: list[str] = []
+    remarks: list[str] = list(found)
     components = [_component(table, row, kind, remarks) for row, kind in enumerate(kinds)]
     bits = [row for row, kind in enumerate(kinds) if kind == "bit"]
     if bits and bits[-1] != 0:
@@ -119,9 +123,11 @@ def _component(table: Table, row: int, kind: str, remarks: list[str]) -> Compone
     weight = number["weight"]
     # Exports write 0 where they know no weight.
     if math.isnan(weight) or weight == 0.0:
-        weight = plain_weight(od, bore, density)
-        joints = ", tool joints left out" if kind in PIPE else ""
-        remarks.append(f"{table.file.name}: no weight for {name}; plain tube of its OD and ID taken{joints}")
+        joint = number["tool_joint_od"]
+        derived = derive_weight(kind, od, bore, joint if joint > od else None, density)
+        weight = derived.weight
+        doubt = f"; it may be {derived.unsure:.0%} off" if derived.unsure else ""
+        remarks.append(f"{table.file.name}: no weight for {name}; taken as a {derived.how}{doubt}")
     else:
         _check_weight(table, row, weight, plain_weight(od, bore, density), kind, remarks)
     optional = ("tool_joint_od", "tensile_rating", "torque_rating", "yield_strength")
@@ -207,5 +213,9 @@ def _warn(name: str, components: list[Component], remarks: list[str]) -> None:
         )
     if components[-1].kind not in PIPE:
         remarks.append(f"{name}: the last row is a {components[-1].kind}, not pipe; the string ends there")
+    if len(components) == 1 and components[0].kind in PIPE:
+        remarks.append(
+            f"{name}: {components[0].name} is the only component; nothing is known of what hangs below it"
+        )
     if np.array([c.length for c in components]).sum() < 1.0:
         remarks.append(f"{name}: the whole string is under a metre long")
