@@ -284,7 +284,7 @@ def test_average_hookload_is_preferred_and_said_so():
     log = read("two_depths_two_hookloads.csv")
     why = {column.column: column for column in log.files[0].columns}
     assert "preferred to 'THKD'" in why["HKLA"].why
-    assert why["VBITDEP"].channel is None
+    assert why["VBITDEP"].channel == "bit_tvd"
     assert log.values["hole_depth"][0] == pytest.approx(2010.0)
     assert read("lone_depth.csv").values["hookload_max"][0] == pytest.approx(HOOKLOAD[0] + 9e3)
 
