@@ -18,6 +18,7 @@ from forensics.episodes.pipe import pipe_tolls
 from forensics.findings import Findings
 from forensics.friction.calibrate import calibrate
 from forensics.friction.readings import find_readings
+from forensics.friction.result import Calibration
 from forensics.logs.read import read_time_logs
 from forensics.logs.records import RecordedSlide, RecordedWeight, read_slides, read_weights
 from forensics.logs.table import TimeLog
@@ -82,11 +83,8 @@ def analyse(case: Case, progress: Progress, units: str = "metric") -> Findings:
     InputError
         If a log or a table can't be used, or they contradict one another.
     """
-    run = _understand(case, progress)
-    with progress.stage("calibration", "calibrating friction"):
-        model = _model(run)
-        readings = find_readings(run.log, run.rig, run.well)
-        calibration = calibrate(readings, run.well, case, model, run.rig)
+    run = understand(case, progress)
+    model, calibration = calibrate_run(run, progress)
     with progress.stage("replay", "replaying the run"):
         made = ready(run.log, run.well, run.rig, calibration, case, model)
         loads = replay(made)
@@ -101,8 +99,23 @@ def analyse(case: Case, progress: Progress, units: str = "metric") -> Findings:
     return replace(findings, weights=run.weights, slides=run.slides)
 
 
-def _understand(case: Case, progress: Progress) -> Run:
-    """Read logs and tables, check them against one another, and tell what the rig was doing."""
+def understand(case: Case, progress: Progress) -> Run:
+    """Read logs and tables, check them against one another, and tell what the rig was doing.
+
+    Parameters
+    ----------
+    case : Case
+    progress : Progress
+
+    Returns
+    -------
+    Run
+
+    Raises
+    ------
+    InputError
+        If a log or a table can't be used, or they contradict one another.
+    """
     with progress.stage("reading", "reading the logs"):
         log = read_time_logs(case)
         weights, slides = read_weights(case, log), read_slides(case)
@@ -118,10 +131,23 @@ def _understand(case: Case, progress: Progress) -> Run:
     return Run(case, log, well, rig, weights, slides)
 
 
-def _model(run: Run) -> OffBottomModel:
-    """Tabulate the well down to the deepest the bit got."""
-    deepest = float(np.nanmax(run.log.values["bit_depth"]))
-    return build_model(run.well, run.case, deepest, block_zero(run.rig))
+def calibrate_run(run: Run, progress: Progress) -> tuple[OffBottomModel, Calibration]:
+    """Tabulate the well down to the deepest the bit got, and learn friction and weights from the run.
+
+    Parameters
+    ----------
+    run : Run
+    progress : Progress
+
+    Returns
+    -------
+    OffBottomModel, Calibration
+    """
+    with progress.stage("calibration", "calibrating friction"):
+        deepest = float(np.nanmax(run.log.values["bit_depth"]))
+        model = build_model(run.well, run.case, deepest, block_zero(run.rig))
+        readings = find_readings(run.log, run.rig, run.well)
+        return model, calibrate(readings, run.well, run.case, model, run.rig)
 
 
 def _tell(material: Material, made: Replay, progress: Progress) -> Findings:

@@ -11,7 +11,7 @@ import os
 import sys
 from collections.abc import Callable, Sequence
 
-DONE, FAULT, BAD_INPUT = 0, 1, 2
+DONE, FAULT, BAD_INPUT, SOME_FAILED = 0, 1, 2, 3
 TRACEBACK_SWITCH = "TALLYBACK_TRACEBACK"
 
 
@@ -66,6 +66,18 @@ def _inspect(arguments: argparse.Namespace) -> int:
     return BAD_INPUT if result.found.refusals else DONE
 
 
+def _calibrate_arguments(parser: argparse.ArgumentParser) -> None:
+    parser.add_argument("cases", metavar="CASE.toml", nargs="+", help="case files of runs to pool")
+
+
+def _calibrate(arguments: argparse.Namespace) -> int:
+    from pipelines import calibration  # heavy: loaded only when the job runs
+
+    result = calibration.run(arguments.cases, arguments.out, arguments.units, arguments.quiet)
+    _print("\n".join(result.lines) + "\n")
+    return SOME_FAILED if result.failures else DONE
+
+
 COMMANDS: tuple[Command, ...] = (
     Command(
         "incident",
@@ -78,6 +90,12 @@ COMMANDS: tuple[Command, ...] = (
         "show what was read of a case or of bare logs: files, columns, units, gaps, faults; no mechanics",
         _inspect_arguments,
         _inspect,
+    ),
+    Command(
+        "calibrate",
+        "friction factors of one or several cases with their uncertainty, pooled for the next well's plan",
+        _calibrate_arguments,
+        _calibrate,
     ),
 )
 
@@ -99,7 +117,8 @@ def build_parser(commands: Sequence[Command] = COMMANDS) -> argparse.ArgumentPar
         prog="tallyback",
         description="Reconstructs how a drill string or liner was loaded and where it buckled, from the "
         "rig's logs, the day after.",
-        epilog="exit status: 0 done; 1 a fault of the program; 2 the input can't be used",
+        epilog="exit status: 0 done; 1 a fault of the program; 2 the input can't be used; 3 some cases of "
+        "a batch failed",
     )
     parser.add_argument("--version", action="store_true", help="show the version and exit")
     offered = parser.add_subparsers(dest="command", metavar="COMMAND", title="commands")
