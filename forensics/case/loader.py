@@ -39,6 +39,8 @@ from forensics.case.settings import (
 from forensics.errors import CaseError, UnitError
 from forensics.units import factor
 
+# A station that may be off by more than a degree is none [rad].
+LEAST_ACCURATE = 0.0175
 _SECTIONS = "case logs survey hole string fluid rig friction criteria limits records"
 
 
@@ -83,7 +85,7 @@ def load_case(path: Path | str) -> Case:
 def _build(root: Node) -> Case:
     names = ("well", "field", "rig", "section", "mud_system", "notes", "campaign")
     case = root.section("case", ("id", "title", *names))
-    survey = root.section("survey", ("file", "tie_in"))
+    survey = root.section("survey", ("file", "tie_in", "accuracy"))
     case_id = case.need("id", as_identifier, 'id = "kestrel-3-run-4"')
     words = {name: case.take(name, as_note) for name in names}
     return Case(
@@ -93,6 +95,7 @@ def _build(root: Node) -> Case:
         logs=_logs(root.section("logs", ("time", "depth", "timezone", "wits_units", "channels"))),
         survey=survey.need("file", as_file, 'file = "survey.csv"'),
         tie_in=_tie_in(survey),
+        survey_accuracy=survey.take("accuracy", as_quantity("angle", 0.0, LEAST_ACCURATE)),
         hole=root.section("hole", ("file",)).need("file", as_file, 'file = "hole.csv"'),
         string=root.section("string", ("file",)).need("file", as_file, 'file = "string.csv"'),
         fluid=_fluid(root.section("fluid", ("density", "file", "density_inside"))),

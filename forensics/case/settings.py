@@ -103,7 +103,10 @@ class RecordSettings:
 
 @dataclass(frozen=True)
 class Case:
-    """One run of one string in one hole section, as its case file states it."""
+    """One run of one string in one hole section, as its case file states it.
+
+    `survey_accuracy` is the random error of a station's direction, one sigma [rad], None where not stated.
+    """
 
     path: Path
     id: str
@@ -114,6 +117,7 @@ class Case:
     string: Path
     fluid: FluidSettings
     tie_in: TieIn | None = None
+    survey_accuracy: float | None = None
     rig: RigSettings = field(default_factory=RigSettings)
     friction: FrictionSettings = field(default_factory=FrictionSettings)
     criteria: CriteriaSettings = field(default_factory=CriteriaSettings)

@@ -24,7 +24,6 @@ Ints = NDArray[np.int64]
 DEPTH_STEP = 0.5  # m; a quarter of a metre of placement error is far below survey error
 STATION_STEP = 10.0  # m
 MIN_CLEARANCE = 0.002  # m; less than this and the place is a support
-SURVEY_SIGMA = np.radians(0.05)  # random error of a station's direction; common practice, no source
 LIKE_STIFFNESS = 2.0  # a fall by more than half ends a run of like stiffness
 
 
@@ -96,14 +95,14 @@ def hole_grid(well: Well, depth: float) -> HoleGrid:
     Notes
     -----
     Values stand for the middle of the step that ends at `i * step`, so that sums over steps are exact
-    to second order.
+    to second order. Directions and bends are those of the likely path, depths those of the survey.
     """
     count = int(np.ceil((depth + STATION_STEP) / DEPTH_STEP)) + 2
     md = np.arange(count) * DEPTH_STEP
     middle = np.maximum(md - 0.5 * DEPTH_STEP, 0.0)
-    way = well.trajectory.at(middle)
+    way = well.likely.mean.at(middle)
     cos_i = way.tangent[:, 2]
-    curvature = told_curvature(well, middle, way.curvature)
+    curvature = way.curvature
     return HoleGrid(
         step=DEPTH_STEP,
         cos_i=np.ascontiguousarray(cos_i),
@@ -114,34 +113,6 @@ def hole_grid(well: Well, depth: float) -> HoleGrid:
         open_hole=np.asarray(well.hole.is_open(middle), dtype=bool),
         diameter=np.asarray(well.hole.diameter_at(middle), dtype=float),
     )
-
-
-def told_curvature(well: Well, md: Floats, curvature: Floats) -> Floats:
-    """Keep of a survey's curvature what its accuracy can tell from none, shape (n, 3) [1/m].
-
-    Parameters
-    ----------
-    well : Well
-    md : ndarray, shape (n,)
-        Measured depths [m].
-    curvature : ndarray, shape (n, 3)
-        Between stations, as surveyed [1/m].
-
-    Notes
-    -----
-    Two stations a length L apart that are each off by sigma make a dogleg of sqrt(2) sigma / L where there is
-    none. Under tension such doglegs rub, and as the wall force has no sign they do not cancel: in a straight
-    near-vertical hole they can double the drag of the model and so halve the friction found. Curvature below
-    that of the noise is taken for none, from three times the noise on it is kept whole, and between it is
-    kept in part, linear in its square. Ours.
-    """
-    stations = well.trajectory.md
-    row = np.clip(np.searchsorted(stations, md, side="right"), 1, max(len(stations) - 1, 1))
-    apart = np.diff(stations)[row - 1] if len(stations) > 1 else np.full(len(md), np.inf)
-    noise = np.sqrt(2.0) * SURVEY_SIGMA / apart
-    square = np.einsum("ij,ij->i", curvature, curvature)
-    share = np.clip((square / noise**2 - 1.0) / 8.0, 0.0, 1.0)
-    return curvature * share[:, None]
 
 
 def pipe_grid(well: Well, depth: float, clearance: str = "tool_joint") -> PipeGrid:
@@ -257,11 +228,11 @@ def averaged(hole: HoleGrid, well: Well, window: float) -> tuple[Floats, Floats,
         a, b, c so that the size of the averaged load at tension T is sqrt(T² a + 2 T w b + w² c).
     """
     md = np.arange(len(hole.cos_i)) * hole.step
-    way = well.trajectory.at(np.maximum(md - 0.5 * hole.step, 0.0))
+    way = well.likely.mean.at(np.maximum(md - 0.5 * hole.step, 0.0))
     down = np.array([0.0, 0.0, 1.0])
     weight_part = down - way.tangent[:, 2:3] * way.tangent
     half = max(1, round(0.5 * window / hole.step))
-    kappa = _smooth(way.curvature, half)  # the mean over a wave is remedy enough for a survey's scatter
+    kappa = _smooth(way.curvature, half)
     across = _smooth(weight_part, half)
     return (
         np.einsum("ij,ij->i", kappa, kappa),

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cached_property
 from pathlib import Path
 
 import numpy as np
@@ -12,6 +13,7 @@ from forensics.case import Case
 from forensics.errors import TableError
 from forensics.well.fluid import Fluid, load_fluid
 from forensics.well.hole import Hole, load_hole
+from forensics.well.likely import STATION_SIGMA, LikelyPath, likely_path
 from forensics.well.string import Component, String, buoyed_weight
 from forensics.well.survey import load_trajectory
 from forensics.well.tally import load_string
@@ -37,6 +39,8 @@ class Well:
     fluid : Fluid
     warnings : tuple of str
         What was computed or assumed on the way, in sentences.
+    survey_accuracy : float
+        Random error of a station's direction, one sigma [rad]; none where the survey is the path itself.
     hole_file, string_file : Path, optional
         Where hole and string came from, for refusals.
     """
@@ -48,6 +52,12 @@ class Well:
     warnings: tuple[str, ...] = ()
     hole_file: Path | None = None
     string_file: Path | None = None
+    survey_accuracy: float = 0.0
+
+    @cached_property
+    def likely(self) -> LikelyPath:
+        """The path that the survey makes likely: what presses the string against the wall."""
+        return likely_path(self.trajectory, self.survey_accuracy)
 
     def rotating_weight(self, bit_depth: ArrayLike, density: float | None = None) -> Floats:
         """Weigh the string as it hangs free of friction.
@@ -169,6 +179,7 @@ def load_well(case: Case) -> Well:
         warnings=(*path_remarks, *hole_remarks, *string_remarks, *mud_remarks),
         hole_file=case.hole,
         string_file=case.string,
+        survey_accuracy=STATION_SIGMA if case.survey_accuracy is None else case.survey_accuracy,
     )
     # How deep the bit went only the log knows (`check_reach`); through the top of the hole everything went.
     well.check_fit(np.zeros(len(string.components)))

@@ -11,6 +11,7 @@ import pytest
 from forensics.mechanics.grid import hole_grid, pipe_grid
 from forensics.mechanics.offbottom import OffBottomModel
 from forensics.mechanics.softstring import tension_from_bit, torque_from_bit
+from forensics.well.likely import STATION_SIGMA
 from forensics.well.trajectory import build_trajectory
 from tests.naive_string import tension_at_rotary
 from tests.wells import build_well, one_pipe_well
@@ -123,6 +124,7 @@ def test_a_survey_that_scatters_does_not_double_the_drag():
     weights = []
     for inclination, azimuth in ((straight, np.zeros(len(md))), (noisy, bearing)):
         well = replace(model.well, trajectory=build_trajectory(md, inclination, azimuth))
+        well = replace(well, survey_accuracy=STATION_SIGMA)
         surveyed = OffBottomModel(well, 2400.0)
         up, still = (surveyed.string_weight(kind, 2400.0, 0.3, 0.3)[0] for kind in ("pick_up", "rotating"))
         weights.append(up - still)
