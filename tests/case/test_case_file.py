@@ -33,7 +33,6 @@ torque = { column = "TRQ", unit = "kft.lbf" }
 [survey]
 file = "survey.csv"
 tie_in = { md = "100 ft", inclination = "1 deg", azimuth = "20 deg" }
-accuracy = "0.1 deg"
 
 [hole]
 file = "hole.csv"
@@ -110,6 +109,11 @@ def write(tmp_path):
     return make
 
 
+def test_a_survey_may_state_its_accuracy(write):
+    case = load_case(write(FULL.replace("tie_in = {", 'accuracy = "0.1 deg"\ntie_in = {')))
+    assert case.survey_accuracy == pytest.approx(math.radians(0.1))
+
+
 def test_every_key_is_read_in_si(write):
     path = write(FULL)
     case = load_case(path)
@@ -126,7 +130,7 @@ def test_every_key_is_read_in_si(write):
     }
     assert case.tie_in.md == pytest.approx(30.48)
     assert case.tie_in.inclination == pytest.approx(math.radians(1.0))
-    assert case.survey_accuracy == pytest.approx(math.radians(0.1))
+    assert case.survey_accuracy is None
     assert (case.fluid.density, case.fluid.file, case.fluid.density_inside) == (None, folder / "mud.csv", 0.0)
     assert dataclasses.astuple(case.rig) == (310e3, 12, 0.985, False)
     assert dataclasses.astuple(case.friction) == (0.2, 0.28, True)
