@@ -9,11 +9,21 @@ from forensics.estimate import Estimate
 from forensics.exports.stamps import number, stamp
 from forensics.exports.text import write_json
 from forensics.findings import Findings
-from forensics.friction.result import Calibration, FrictionSection, Reading
+from forensics.friction.result import (
+    Calibration,
+    FrictionSection,
+    HeldOut,
+    OpenDirection,
+    Parameter,
+    Reading,
+)
 from forensics.logs.zone import tzinfo_of
 
 FORMAT = 1
 KILO = 1e3
+
+# Of a parameter in SI: what it is divided by, the unit it is then in, and its digits.
+PARAMETER_UNITS = {"N": (KILO, "kN", 3), "N.m": (KILO, "kN.m", 3), "-": (1.0, "-", 5)}
 
 
 def friction_content(findings: Findings) -> dict[str, Any]:
@@ -42,6 +52,9 @@ def friction_content(findings: Findings) -> dict[str, Any]:
         "weight_scale": number(calibration.weight_scale.value, 4),
         "torque_loss_kNm": number(loss.value / KILO, 3) if loss is not None else None,
         "can_not_tell": list(calibration.can_not_tell),
+        "held_out": _held_out(calibration.held_out),
+        "open_directions": [_direction(direction) for direction in calibration.open_directions],
+        "parameters": [_parameter(parameter) for parameter in calibration.parameters],
         "readings": _readings(findings),
     }
 
@@ -89,6 +102,43 @@ def _rotational(calibration: Calibration) -> dict[str, Any] | None:
         "all", min(tops, default=float("nan")), max(bottoms, default=float("nan")), calibration.rotational
     )
     return _section(whole)
+
+
+def _held_out(proof: HeldOut | None) -> dict[str, Any] | None:
+    """Give the errors on stands left out beside those of the fit to all."""
+    if proof is None:
+        return None
+    return {
+        "folds": proof.folds,
+        "readings": proof.readings,
+        "rms_kN": number(proof.rms / KILO, 3),
+        "in_sample_rms_kN": number(proof.in_sample / KILO, 3),
+        "torque_rms_kNm": number(proof.torque_rms / KILO, 3),
+        "torque_in_sample_rms_kNm": number(proof.torque_in_sample / KILO, 3),
+    }
+
+
+def _direction(direction: OpenDirection) -> dict[str, Any]:
+    """Give a direction in SI units: moves of one sigma, and what was learned against what was assumed."""
+    return {
+        "moves": {name: number(move, 6) for name, move in direction.moves.items()},
+        "known": number(direction.known, 3),
+        "sentence": direction.sentence,
+    }
+
+
+def _parameter(parameter: Parameter) -> dict[str, Any]:
+    scale, unit, digits = PARAMETER_UNITS[parameter.unit]
+    estimate = parameter.estimate
+    return {
+        "name": parameter.name,
+        "unit": unit,
+        "value": number(estimate.value / scale, digits),
+        "low": number(estimate.low / scale, digits),
+        "high": number(estimate.high / scale, digits),
+        "determined": bool(estimate.determined),
+        "source": estimate.source,
+    }
 
 
 def _force(name: str, estimate: Estimate) -> dict[str, Any]:

@@ -2,17 +2,21 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
+from functools import cached_property
 from typing import TYPE_CHECKING
 
 import numpy as np
+from numpy.typing import NDArray
+
+from forensics.friction.parameters import FIRST
 
 if TYPE_CHECKING:
-    from numpy.typing import NDArray
-
     from forensics.case import Case
     from forensics.rig.view import RigView
     from forensics.well.model import Well
+
+Floats = NDArray[np.float64]
 
 KINDS = ("cased", "open")
 
@@ -31,6 +35,13 @@ BY_MUD: tuple[tuple[tuple[str, ...], dict[str, float]], ...] = (
 
 #: One sigma of the weak prior: the spread of usual factors over muds (trade values, from memory).
 FACTOR_SIGMA = {"cased": 0.08, "open": 0.10}
+
+#: Correlation of the two over muds and wells: a mud that rubs more in casing rubs more on rock. The ratios of
+#: `BY_MUD`, 1.1 to 1.3 for factors that differ by two, say so (trade values, from memory).
+TOGETHER = 0.8
+
+#: One sigma by which the factors of two stretches of one open hole differ (an assumption of ours).
+APART = 0.06
 
 #: One sigma of the string's weight per length: tolerance, wear and mud density together.
 SCALE_SIGMA = 0.02
@@ -51,10 +62,35 @@ BLOCK_SIGMA_UNKNOWN = 50.0e3
 #: One sigma of a sensor's constant bias where the block weight is given: this much, or a part of it [N, -].
 BIAS_SIGMA = (10.0e3, 0.03)
 
-Z90 = 1.6448536269514722
+#: One sigma of what the pumps still add once the shift the log shows was taken out [N].
+PUMP_SIGMA = 2.0e3
 
-LOWEST = np.array([-np.inf, 0.0, 0.9, 0.01, 0.01, -0.02])
-HIGHEST = np.array([np.inf, 1.2, 1.1, 0.6, 0.6, 0.02])
+#: One sigma of the sensor's slow drift from the middle of the run to its ends [N].
+SLOW_SIGMA = 1.5e3
+
+#: One sigma of the part of the hookload that sheaves add or take once what is known of them was taken out.
+SHEAVE_SIGMA = 0.002
+
+#: Doglegs too short for the survey press the string against the wall by its tension: drag of this part of
+#: the string's weight, one sigma. Little beside a lateral's drag, a good part of a vertical well's.
+HIDDEN_SIGMA = 0.003
+
+#: A soft string on a surveyed path is trusted to this part of its drag, one sigma: what all readings
+#: share, and pick-up against slack-off. Survey scatter, friction that varies along the hole and
+#: stiffness left out do not show in the residuals.
+DRAG_SIGMA = 0.03
+SPLIT_SIGMA = 0.015
+
+#: The second averages out over a run that was weighed over more than this in bit depth [m]. One weighed only
+#: deep in a lateral parts cased and open hole by nothing but how pulling differs from lowering.
+SPLIT_OVER = 450.0
+
+#: A string near or past its buckling load feels friction that differs by this part from what it seems, one
+#: sigma of all such readings, and of each by itself: where the helix starts is known no better.
+HELIX_SIGMA = 0.10
+HELIX_OWN = 0.05
+
+Z90 = 1.6448536269514722
 
 
 @dataclass(frozen=True)
@@ -67,16 +103,42 @@ class Assumed:
 
 @dataclass(frozen=True)
 class Prior:
-    """Prior centres and sigmas of (block or block + bias [N], share, scale, cased, open, drift of the scale).
+    """Joint normal prior of the parameters, in the order of `parameters.names`.
 
-    `given_block` is the block weight of the case file [N], None where it is to be learned.
+    `centre` has shape (p,), `cov` (p, p); a parameter without variance stays where it is. `given_block` is
+    the block weight of the case file [N], None where it is to be learned.
     """
 
-    centre: NDArray[np.float64]
-    sigma: NDArray[np.float64]
+    centre: Floats
+    cov: Floats
     cased: Assumed
     open: Assumed
     given_block: float | None
+
+    @cached_property
+    def sigma(self) -> Floats:
+        """One sigma of each parameter, shape (p,)."""
+        return np.sqrt(np.diag(self.cov))
+
+    @cached_property
+    def free(self) -> NDArray[np.bool_]:
+        """Which parameters can move, shape (p,)."""
+        return self.sigma > 0.0
+
+    @cached_property
+    def root(self) -> Floats:
+        """Lower root of the free parameters' covariance, shape (f, f)."""
+        return np.linalg.cholesky(self.cov[np.ix_(self.free, self.free)])
+
+    def held(self) -> Prior:
+        """Hold every factor where it is assumed to be."""
+        cov = self.cov.copy()
+        cov[FIRST:, :] = cov[:, FIRST:] = 0.0
+        return replace(self, cov=cov)
+
+    def apart(self, p: Floats) -> Floats:
+        """How far parameters lie from the centre, in sigmas of independent directions, shape (f,)."""
+        return np.linalg.solve(self.root, (p - self.centre)[self.free])
 
 
 def assumed_factor(kind: str, case: Case, well: Well) -> Assumed:
@@ -111,7 +173,7 @@ def assumed_factor(kind: str, case: Case, well: Well) -> Assumed:
     return Assumed(DEFAULT_FACTOR[kind], "the program's default")
 
 
-def build_prior(case: Case, well: Well, rig: RigView) -> Prior:
+def build_prior(case: Case, well: Well, rig: RigView, bears: tuple[bool, ...], reach: float) -> Prior:
     """Gather the prior from case file, hole table and the rig's in-slips plateau.
 
     Parameters
@@ -119,28 +181,50 @@ def build_prior(case: Case, well: Well, rig: RigView) -> Prior:
     case : Case
     well : Well
     rig : RigView
+    bears : tuple of bool, one for each section: the cased hole, then the open ones
+        Whether any reading feels the friction of that section. Where none does, its factor stays where it
+        was assumed to be, whatever the others turn out as.
+    reach : float
+        Bit depths over which the string was pulled and lowered [m].
 
     Returns
     -------
     Prior
     """
     cased, open_ = assumed_factor("cased", case, well), assumed_factor("open", case, well)
+    block, sigma, given = _block(case, rig)
+    shift = rig.pump_shift
+    pumps = PUMP_SIGMA if shift is None else (shift.high - shift.low) / (2.0 * Z90)
+    split = SPLIT_SIGMA / (1.0 + reach / SPLIT_OVER) ** 0.5
+    ours = (HIDDEN_SIGMA, DRAG_SIGMA, split, HELIX_SIGMA)
+    rest = np.array([sigma, SHARE_SIGMA, SCALE_SIGMA, DRIFT_SIGMA, pumps, SLOW_SIGMA, SHEAVE_SIGMA, *ours])
+    cov = np.zeros((len(rest) + len(bears),) * 2)
+    cov[: len(rest), : len(rest)] = np.diag(rest**2)
+    if not case.friction.fixed:
+        cov[len(rest) :, len(rest) :] = _factor_cov(bears)
+    at = [block, 1.0, 1.0, *[0.0] * (len(rest) - 3), cased.value, *[open_.value] * (len(bears) - 1)]
+    return Prior(np.array(at), cov, cased, open_, given)
+
+
+def _block(case: Case, rig: RigView) -> tuple[float, float, float | None]:
+    """Block weight expected, its sigma, and the case file's where it gives one [N]."""
     seen = rig.block_weight
     given = case.rig.block_weight if case.rig.hookload_includes_block else None
-    block = seen.value if np.isfinite(seen.value) else 0.0
     if given is not None:
-        block = given
-        sigma = max(BIAS_SIGMA[0], BIAS_SIGMA[1] * given)
-    else:
-        width = seen.high - seen.low
-        sigma = width / (2.0 * Z90) if np.isfinite(width) else BLOCK_SIGMA_UNKNOWN
-        sigma = max(sigma, BLOCK_SIGMA_FLOOR if seen.determined else BLOCK_SIGMA_UNKNOWN)
-    return Prior(
-        centre=np.array([block, 1.0, 1.0, cased.value, open_.value, 0.0]),
-        sigma=np.array(
-            [sigma, SHARE_SIGMA, SCALE_SIGMA, FACTOR_SIGMA["cased"], FACTOR_SIGMA["open"], DRIFT_SIGMA]
-        ),
-        cased=cased,
-        open=open_,
-        given_block=given,
-    )
+        return given, max(BIAS_SIGMA[0], BIAS_SIGMA[1] * given), given
+    width = seen.high - seen.low
+    sigma = width / (2.0 * Z90) if np.isfinite(width) else BLOCK_SIGMA_UNKNOWN
+    sigma = max(sigma, BLOCK_SIGMA_FLOOR if seen.determined else BLOCK_SIGMA_UNKNOWN)
+    return (seen.value if np.isfinite(seen.value) else 0.0), sigma, None
+
+
+def _factor_cov(bears: tuple[bool, ...]) -> Floats:
+    """Covariance of the factors: cased and open go together, stretches of one open hole more so."""
+    sigma = np.array([FACTOR_SIGMA["cased"], *[FACTOR_SIGMA["open"]] * (len(bears) - 1)])
+    alike = 1.0 - 0.5 * (APART / FACTOR_SIGMA["open"]) ** 2
+    together = np.full((len(bears), len(bears)), alike)
+    together[0, :] = together[:, 0] = TOGETHER
+    deaf = ~np.array(bears)
+    together[deaf, :] = together[:, deaf] = 0.0
+    np.fill_diagonal(together, 1.0)
+    return together * np.outer(sigma, sigma)

@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Mapping
+from dataclasses import dataclass, field
 
 import numpy as np
 from numpy.typing import NDArray
@@ -19,7 +20,8 @@ class Reading:
     """One steady weight reading off bottom.
 
     `kind` is "pick_up", "slack_off", "rotating" or "torque"; `value` in N (hookload as measured,
-    block weight in) or N.m; `bit_depth`, `block` in m; `speed` in m/s; `rpm` in rev/min.
+    block weight in) or N.m; `bit_depth`, `block` in m; `speed` in m/s; `rpm` in rev/min. `by_hand` was
+    written down by the rig; `buckled` was weighed with the string near or past its buckling load.
     """
 
     kind: str
@@ -33,6 +35,8 @@ class Reading:
     pumping: bool
     speed: float = 0.0
     rpm: float = 0.0
+    by_hand: bool = False
+    buckled: bool = False
 
 
 @dataclass(frozen=True)
@@ -43,6 +47,47 @@ class FrictionSection:
     top: float
     bottom: float
     factor: Estimate
+
+
+@dataclass(frozen=True)
+class Parameter:
+    """One number of the joint fit, with its name and SI unit ("N", "N.m" or "-")."""
+
+    name: str
+    unit: str
+    estimate: Estimate
+
+
+@dataclass(frozen=True)
+class OpenDirection:
+    """A way in which parameters can move together without the readings noticing.
+
+    `moves` maps a parameter's name to how far it moves, one sigma [SI]; `known` is what the readings tell of
+    the direction, as a multiple of what was assumed of it beforehand; `sentence` puts it in words.
+    """
+
+    moves: Mapping[str, float]
+    known: float
+    sentence: str
+
+
+@dataclass(frozen=True)
+class HeldOut:
+    """How well readings are foretold by a calibration that never saw their stands.
+
+    `folds` groups of whole stands were left out in turn; `readings` hookload readings foretold, those let go
+    by the fit to all left out; `rms` and `in_sample` of the same readings [N]; `torque_rms` and
+    `torque_in_sample` [N.m], NaN where torque has no stands to leave out; `residuals`, shape (n,), measured
+    less foretold of every weight reading [N].
+    """
+
+    folds: int
+    readings: int
+    rms: float
+    in_sample: float
+    torque_rms: float
+    torque_in_sample: float
+    residuals: Floats
 
 
 @dataclass(frozen=True)
@@ -67,8 +112,8 @@ class Calibration:
         Measured less modelled [N or N.m].
     residual_rms : float
         Of the hookload readings [N].
-    draws : ndarray, shape (k, 3)
-        Joint draws (cased factor, open factor, block weight [N]) from the posterior.
+    draws : ndarray, shape (k, s + 1)
+        Joint draws (a factor for each section, then block weight [N]) from the posterior.
     can_not_tell : tuple of str
         What the readings could not determine, in sentences.
     weight_scale : Estimate
@@ -76,6 +121,17 @@ class Calibration:
         block weight + bias + share * pipe above the rotary + scale * string weight.
     torque_loss : Estimate or None
         Constant torque lost inside the top drive: modelled torque is loss + torque of the string [N.m].
+    edges : tuple of float
+        Measured depths at which the open hole is cut into sections [m].
+    gain : ndarray, shape (s + 1, n)
+        How factors and block weight follow the n weight readings: where the modelled readings change by `d`
+        [N] (other mud, survey or clearance), a fit to the same readings moves by -gain @ d.
+    held_out : HeldOut or None
+        The error on whole stands left out, None where there are too few of them.
+    open_directions : tuple of OpenDirection
+        What the readings leave open, the least known first.
+    parameters : tuple of Parameter
+        Every number of the joint fit.
     """
 
     sections: tuple[FrictionSection, ...]
@@ -90,7 +146,19 @@ class Calibration:
     can_not_tell: tuple[str, ...] = ()
     weight_scale: Estimate = UNIT_SCALE
     torque_loss: Estimate | None = None
+    edges: tuple[float, ...] = ()
+    gain: Floats = field(default_factory=lambda: np.zeros((3, 0)))
+    held_out: HeldOut | None = None
+    open_directions: tuple[OpenDirection, ...] = ()
+    parameters: tuple[Parameter, ...] = ()
+
+    @property
+    def weights(self) -> tuple[Reading, ...]:
+        """The hookload readings, as `gain` has them."""
+        return tuple(r for r in self.readings if r.kind != "torque")
 
     def factor(self, kind: str) -> float:
-        """Axial friction factor of a hole kind, "cased" or "open"."""
-        return next(s.factor.value for s in self.sections if s.kind == kind)
+        """Axial friction factor of a kind of hole, "cased" or "open": the mean by length of its sections."""
+        same = [s for s in self.sections if s.kind == kind]
+        lengths = [max(s.bottom - s.top, 1e-6) for s in same]
+        return float(np.average([s.factor.value for s in same], weights=lengths))

@@ -8,12 +8,13 @@ lower envelope. That keeps drag episodes out of the base friction they are later
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
+from typing import Protocol
 
 import numpy as np
 from numpy.typing import NDArray
 
-from forensics.friction.assumptions import HIGHEST, LOWEST, Prior
-from forensics.friction.surface import ResponseSurface
+from forensics.friction.assumptions import Prior
+from forensics.friction.parameters import DRIFT, FIRST, SCALE, gentle, stride, within
 
 Floats = NDArray[np.float64]
 Bools = NDArray[np.bool_]
@@ -24,14 +25,21 @@ LET_GO = (4.0, 6.0)
 #: Quantile of the friction-signed residuals that the start follows.
 ENVELOPE = 0.35
 
-#: Where factors start at most; block, share and scale are not held by it.
-GENTLE = np.array([np.inf, np.inf, np.inf, 0.15, 0.15, np.inf])
-
-#: A factor moves at most this far in one step.
-STRIDE = np.array([np.inf, np.inf, np.inf, 0.05, 0.05, np.inf])
-
 #: A robust sigma is never taken smaller than this part of the reading's own.
 SIGMA_FLOOR = 1.0
+
+#: Weight below which a reading counts as let go.
+HEARD = 0.1
+
+
+class Weights(Protocol):
+    """String weight of n readings as a function of the friction factors."""
+
+    def at(self, factors: Floats) -> tuple[Floats, Floats]:
+        """Weights, shape (n,), and slopes against each factor, shape (n, sections) [N]."""
+
+    def take(self, rows: Bools) -> Weights:
+        """Only some of the readings."""
 
 
 @dataclass(frozen=True)
@@ -39,8 +47,9 @@ class Problem:
     """Weight readings, ready to fit; arrays of shape (n,).
 
     `sign` is +1 where more friction lifts the reading (pick-up), -1 where it lowers it (slack-off),
-    0 where it does not matter. `sigma` is each reading's own uncertainty [N]; `place` runs from -1 to 1 over
-    the readings' depths.
+    0 where it does not matter. `sigma` is each reading's own uncertainty [N]. `place` and `when` run from
+    -1 to 1 over the readings' depths and times; `pumping` is 1 with pumps on. `hanging` is the string's
+    weight without friction [N]; `near` marks strings near or past their buckling load.
     """
 
     value: Floats
@@ -48,35 +57,46 @@ class Problem:
     sign: Floats
     sigma: Floats
     place: Floats
-    surface: ResponseSurface
+    when: Floats
+    pumping: Floats
+    hanging: Floats
+    near: Bools
+    surface: Weights
     prior: Prior
 
     def take(self, rows: Bools) -> Problem:
         """Only some of the readings."""
-        return replace(
-            self,
-            value=self.value[rows],
-            above=self.above[rows],
-            sign=self.sign[rows],
-            sigma=self.sigma[rows],
-            place=self.place[rows],
-            surface=ResponseSurface(self.surface.table[:, :, rows]),
-        )
+        names = ("value", "above", "sign", "sigma", "place", "when", "pumping", "hanging", "near")
+        part = {name: getattr(self, name)[rows] for name in names}
+        return replace(self, surface=self.surface.take(rows), **part)
 
     def model(self, p: Floats) -> tuple[Floats, Floats]:
-        """Modelled readings [N], shape (n,), and their Jacobian, shape (n, 6)."""
-        weight, slope_cased, slope_open = self.surface.at(p[3], p[4])
-        scale = p[2] + p[5] * self.place
-        ones = np.ones_like(weight)
-        jacobian = np.column_stack(
-            [ones, self.above, weight, scale * slope_cased, scale * slope_open, weight * self.place]
+        """Modelled readings [N], shape (n,), and their Jacobian, shape (n, p)."""
+        weight, slopes = self.surface.at(p[FIRST:])
+        scale = p[SCALE] + p[DRIFT] * self.place
+        drag = weight - self.hanging
+        known = np.column_stack(
+            [
+                np.ones_like(weight),
+                self.above,
+                weight,
+                weight * self.place,
+                self.pumping,
+                self.when,
+                -self.sign * self.value,  # dead-line sheaves: light on the way up, heavy on the way down
+                self.sign * self.hanging,
+                drag,
+                np.abs(drag),
+                np.where(self.near, slopes @ p[FIRST:], 0.0),
+            ]
         )
-        return p[0] + p[1] * self.above + scale * weight, jacobian
+        jacobian = np.column_stack([known, scale[:, None] * slopes])
+        return known @ p[:FIRST], jacobian
 
 
 @dataclass(frozen=True)
 class Fit:
-    """Parameters (block, share, scale, cased, open, drift), robust weights and the inflation of sigma."""
+    """Parameters, shape (p,), robust weights and the inflation of sigma; what is left over, the Jacobian."""
 
     p: Floats
     weights: Floats
@@ -84,56 +104,59 @@ class Fit:
     residuals: Floats
     jacobian: Floats
 
+    @property
+    def heard(self) -> Bools:
+        """Readings that were not let go, shape (n,)."""
+        return self.weights > HEARD
 
-def fit(problem: Problem, start: Floats, active: Bools) -> Fit:
-    """Solve for the active parameters.
+
+def fit(problem: Problem, start: Floats | None = None) -> Fit:
+    """Solve for the parameters that the prior leaves free.
 
     Parameters
     ----------
     problem : Problem
         Readings in time order.
-    start : ndarray, shape (6,)
-        Where to begin; inactive parameters stay there.
-    active : ndarray of bool, shape (6,)
+    start : ndarray, shape (p,), optional
+        A solution to go on from; without it the best of several envelope fits is taken.
 
     Returns
     -------
     Fit
     """
-    p = _best_start(problem, np.clip(start, LOWEST, HIGHEST), active)
+    p = _best_start(problem) if start is None else start
     inflation = 1.0
     weights = np.ones(len(problem.value))
     for _ in range(40):
         before = p
-        residuals, _ = _standard(problem, p)
+        residuals, jacobian = _standard(problem, p)
         inflation = robust_sigma(residuals)
-        weights = _biweight(residuals / inflation, problem.sign)
-        p = _step(problem, p, active, weights / inflation**2)
+        weights = biweight(residuals / inflation, problem.sign)
+        p = _step(problem, p, weights / inflation**2, (residuals, jacobian))
         if _settled(before, p, problem.prior):
             break
     modelled, jacobian = problem.model(p)
     return Fit(p, weights, inflation, problem.value - modelled, jacobian)
 
 
-def _best_start(problem: Problem, start: Floats, active: Bools) -> Floats:
+def _best_start(problem: Problem) -> Floats:
     """Envelope fits to stretches of the run; the one that half of all readings lie closest to.
 
     Solids that build up over the second half of a run bend a fit to the whole of it; a fit to the
     first half passes straight through the clean readings.
     """
     n = len(problem.value)
-    best, least = start, np.inf
-    # from below: at too high a factor the modelled string is locked up and shows no way back
-    start = np.where(active, np.minimum(start, GENTLE), start)
+    best, least = problem.prior.centre, np.inf
+    start = gentle(best, problem.prior.free)
     for parts, k in ((1, 0), (2, 0), (2, 1), (3, 0), (3, 1), (3, 2)):
-        within = np.zeros(n)
-        within[n * k // parts : n * (k + 1) // parts] = 1.0
-        within[problem.sign == 0.0] = 1.0
+        within_part = np.zeros(n)
+        within_part[n * k // parts : n * (k + 1) // parts] = 1.0
+        within_part[problem.sign == 0.0] = 1.0
         p = start
         for _ in range(25):
             before = p
-            residuals, _ = _standard(problem, p)
-            p = _step(problem, p, active, within * _envelope_weights(residuals, problem.sign))
+            here = _standard(problem, p)
+            p = _step(problem, p, within_part * _envelope_weights(here[0], problem.sign), here)
             if _settled(before, p, problem.prior):
                 break
         size = robust_sigma(_standard(problem, p)[0][problem.sign != 0.0])
@@ -149,6 +172,18 @@ def robust_sigma(standard: Floats) -> float:
     return max(SIGMA_FLOOR, 1.4826 * float(np.median(np.abs(standard))))
 
 
+def biweight(u: Floats, sign: Floats) -> Floats:
+    """Lopsided biweight of standardised residuals, shape (n,)."""
+    cut = np.where(u * sign > 0.0, LET_GO[0], LET_GO[1])
+    return np.where(np.abs(u) < cut, (1.0 - (u / cut) ** 2) ** 2, 0.0)
+
+
+def whitened(problem: Problem, jacobian: Floats) -> Floats:
+    """Jacobian in sigmas of the readings against independent sigmas of the prior, shape (n, f)."""
+    prior = problem.prior
+    return (jacobian / problem.sigma[:, None])[:, prior.free] @ prior.root
+
+
 def _standard(problem: Problem, p: Floats) -> tuple[Floats, Floats]:
     modelled, jacobian = problem.model(p)
     return (problem.value - modelled) / problem.sigma, jacobian
@@ -161,23 +196,19 @@ def _envelope_weights(residuals: Floats, sign: Floats) -> Floats:
     return 2.0 * share / np.maximum(np.abs(residuals), 0.5)
 
 
-def _biweight(u: Floats, sign: Floats) -> Floats:
-    cut = np.where(u * sign > 0.0, LET_GO[0], LET_GO[1])
-    return np.where(np.abs(u) < cut, (1.0 - (u / cut) ** 2) ** 2, 0.0)
-
-
-def _step(problem: Problem, p: Floats, active: Bools, weights: Floats) -> Floats:
+def _step(problem: Problem, p: Floats, weights: Floats, here: tuple[Floats, Floats]) -> Floats:
     """One Gauss-Newton step with the prior as extra rows, kept within the bounds."""
-    residuals, jacobian = _standard(problem, p)
+    residuals, jacobian = here
     prior = problem.prior
-    a = (jacobian / problem.sigma[:, None])[:, active] * prior.sigma[active]
-    w = weights[:, None]
-    normal = a.T @ (w * a) + np.eye(int(active.sum()))
-    right = a.T @ (weights * residuals) + ((prior.centre - p) / prior.sigma)[active]
+    if not prior.free.any():
+        return p
+    a = whitened(problem, jacobian)
+    normal = a.T @ (weights[:, None] * a) + np.eye(a.shape[1])
+    right = a.T @ (weights * residuals) - prior.apart(p)
     change = np.zeros(len(p))
-    change[active] = prior.sigma[active] * np.linalg.solve(normal, right)
-    return np.clip(p + np.clip(change, -STRIDE, STRIDE), LOWEST, HIGHEST)
+    change[prior.free] = prior.root @ np.linalg.solve(normal, right)
+    return np.where(prior.free, within(p + stride(change)), p)
 
 
 def _settled(before: Floats, after: Floats, prior: Prior) -> bool:
-    return bool(np.all(np.abs(after - before) < 1e-4 * prior.sigma))
+    return bool(np.all(np.abs(after - before) <= 1e-4 * prior.sigma))

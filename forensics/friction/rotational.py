@@ -8,9 +8,9 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics.estimate import Estimate
-from forensics.friction.assumptions import Z90
+from forensics.friction.assumptions import DRAG_SIGMA, Z90
 from forensics.friction.result import Reading
-from forensics.friction.spread import MODEL_ERROR, blocks
+from forensics.friction.spread import blocks
 from forensics.friction.surface import OffBottom
 
 Floats = NDArray[np.float64]
@@ -24,6 +24,9 @@ FACTOR_SIGMA = 0.08
 #: Robust sigmas at which a reading is let go: with more torque than the rest, and with less.
 LET_GO = (4.0, 6.0)
 
+#: Fewer groups of stands than this prove nothing when one is left out.
+LEAST_GROUPS = 4
+
 UNSEPARATED = (
     "The loss inside the top drive could not be told from hole friction: torque readings span too "
     "little depth."
@@ -32,12 +35,17 @@ UNSEPARATED = (
 
 @dataclass(frozen=True)
 class Rotational:
-    """Rotational factor, the loss inside the top drive [N.m], and the residuals [N.m] of the readings."""
+    """Rotational factor, the loss inside the top drive [N.m], and the residuals [N.m] of the readings.
+
+    `held_out` is the error on stands left out and that of the fit to all, of the readings heard [N.m]; NaN
+    where there are too few stands.
+    """
 
     factor: Estimate
     loss: Estimate
     residuals: Floats
     sentences: tuple[str, ...]
+    held_out: tuple[float, float]
 
 
 def fit_rotational(readings: tuple[Reading, ...], model: OffBottom, centre: float) -> Rotational | None:
@@ -68,14 +76,37 @@ def fit_rotational(readings: tuple[Reading, ...], model: OffBottom, centre: floa
     p, weights, inflation = _solve(jacobian, value, sigma, prior)
     cov = _covariance(jacobian, (value - jacobian @ p) * weights, weights, sigma * inflation, (prior, depth))
     sd = np.sqrt(np.diag(cov))
-    sd[0] = np.hypot(sd[0], MODEL_ERROR * p[0])
+    sd[0] = np.hypot(sd[0], DRAG_SIGMA * p[0])
     kept = int((weights > 0.1).sum())
     determined = bool(sd[0] < 0.5 * FACTOR_SIGMA)
     factor = _interval(p[0], sd[0], "off-bottom torque", determined, kept)
     separate = bool(sd[1] < 0.5 * LOSS[1])
     loss = _interval(p[1], sd[1], "off-bottom torque" if separate else "assumed", separate, kept)
     sentences = () if separate else (UNSEPARATED,)
-    return Rotational(factor, loss, value - jacobian @ p, sentences)
+    residuals = value - jacobian @ p
+    left_out = _hold_out((jacobian, value, sigma), prior, depth)
+    heard = weights > 0.1
+    proof = (rms(left_out[heard]), rms(residuals[heard]))
+    return Rotational(factor, loss, residuals, sentences, proof)
+
+
+def rms(values: Floats) -> float:
+    """Root of the mean square; NaN of nothing."""
+    return float(np.sqrt(np.mean(values**2))) if len(values) else float("nan")
+
+
+def _hold_out(readings: tuple[Floats, Floats, Floats], prior: Floats, depth: Floats) -> Floats:
+    """Residuals of each group of stands from a fit to the others [N.m], NaN where there are too few."""
+    jacobian, value, sigma = readings
+    label = blocks(depth)
+    out = np.full(len(value), np.nan)
+    if label.max() + 1 < LEAST_GROUPS:
+        return out
+    for k in range(int(label.max()) + 1):
+        kept = label != k
+        p, _, _ = _solve(jacobian[kept], value[kept], sigma[kept], prior)
+        out[~kept] = value[~kept] - jacobian[~kept] @ p
+    return out
 
 
 def _solve(jacobian: Floats, value: Floats, sigma: Floats, prior: Floats) -> tuple[Floats, Floats, float]:

@@ -52,25 +52,30 @@ class ResponseSurface:
 
     table: Floats
 
-    def at(self, cased: float, open_: float) -> tuple[Floats, Floats, Floats]:
+    def at(self, factors: Floats) -> tuple[Floats, Floats]:
         """Weights and their slopes against the cased and the open factor.
 
         Parameters
         ----------
-        cased, open_ : float
-            Friction factors, from 0 to 0.6 [-].
+        factors : ndarray, shape (2,)
+            Cased and open, from 0 to 0.6 [-].
 
         Returns
         -------
-        weight, slope_cased, slope_open : ndarray, shape (n,)
+        weight : ndarray, shape (n,)
+        slopes : ndarray, shape (n, 2)
             [N].
         """
-        i, value_i, slope_i = _cubic(cased)
-        j, value_j, slope_j = _cubic(open_)
+        i, value_i, slope_i = _cubic(float(factors[0]))
+        j, value_j, slope_j = _cubic(float(factors[1]))
         near = self.table[i : i + 4, j : j + 4]
         along = np.tensordot(value_j, near, axes=(0, 1))
         across = np.tensordot(slope_j, near, axes=(0, 1))
-        return value_i @ along, slope_i @ along, value_i @ across
+        return value_i @ along, np.column_stack([slope_i @ along, value_i @ across])
+
+    def take(self, rows: NDArray[np.bool_]) -> ResponseSurface:
+        """Only some of the readings."""
+        return ResponseSurface(self.table[:, :, rows])
 
 
 def _cubic(mu: float) -> tuple[int, Floats, Floats]:

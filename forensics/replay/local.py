@@ -20,6 +20,8 @@ Floats = NDArray[np.float64]
 
 MAX_SHIFT = 0.04  # of the string's weight; more than this is a fault to be reported, not followed
 FACTOR_RANGE = (0.6, 1.6)
+TRIED = (0.6, 0.8, 1.0, 1.25, 1.6)
+HELIX_TRUST = 0.5
 LEAST_DRAG = 10e3  # N; below this the drag is too small to say anything about friction
 
 
@@ -96,15 +98,25 @@ def _multiples(
     """Find the friction multiple of each sliding reading whose drag is large enough to tell."""
     if not readings:
         return Series(np.empty(0), np.empty(0))
-    cased, open_hole = factors(calibration)
+    base = np.array(factors(calibration))
     depth = np.array([r.bit_depth for r in readings])
     at = np.array([r.end for r in readings])
     scale = calibration.weight_scale.value
     still = model.string_weight("rotating", depth, 0.0, 0.0, scale=scale)
-    expected = model.string_weight(kind, depth, cased, open_hole, scale=scale) - still
+    drags = np.array([model.string_weight(kind, depth, *(base * m), scale=scale) - still for m in TRIED])
     found = string_part(readings, calibration, model) - _carry(at, shifts, 0.0) - still
-    told = np.abs(expected) > LEAST_DRAG
-    return Series(at[told], np.clip(found[told] / expected[told], *FACTOR_RANGE))
+    told = np.abs(drags[TRIED.index(1.0)]) > LEAST_DRAG
+    multiple = np.array([_multiple(drags[:, k], found[k]) for k in np.flatnonzero(told)])
+    buckled = np.array([r.buckled for r in readings])[told]
+    # a helix's drag says less of friction: half way back to what the whole run says
+    return Series(at[told], np.where(buckled, 1.0 + HELIX_TRUST * (multiple - 1.0), multiple))
+
+
+def _multiple(drags: Floats, found: float) -> float:
+    """Friction multiple at which the model gives the drag found, within those tried; drag grows with it."""
+    whole = np.isfinite(drags)
+    tried, size = np.array(TRIED)[whole], np.abs(drags[whole])
+    return float(np.interp(found * np.sign(drags[0]), np.maximum.accumulate(size), tried))
 
 
 def _carry(time: Floats, series: Series, default: float) -> Floats:

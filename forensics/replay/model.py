@@ -14,8 +14,9 @@ def build_model(well: Well, case: Case, depth: float, block_zero: float = 0.0) -
     return OffBottomModel(well, depth, case.criteria, block_zero)
 
 
-def factors(calibration: Calibration) -> tuple[float, float]:
-    """Cased and open-hole friction factors; the default where the hole has no such stretch."""
-    found = {section.kind: section.factor.value for section in calibration.sections}
-    told = DEFAULT_FACTOR | found
-    return told["cased"], told["open"]
+def factors(calibration: Calibration) -> tuple[float, ...]:
+    """Friction factors of the cased hole and of each open section; the default where the hole has none."""
+    sections = calibration.sections
+    found = {kind: [s.factor.value for s in sections if s.kind == kind] for kind in DEFAULT_FACTOR}
+    cased, opened = (found[kind] or [DEFAULT_FACTOR[kind]] for kind in ("cased", "open"))
+    return (cased[0], *opened)

@@ -92,6 +92,7 @@ def make_well(friction=(np.nan, np.nan)):
 def make_rig(block=300.0e3, half=3.0e3, determined=True):
     return SimpleNamespace(
         block_weight=Estimate(block, block - half, block + half, "in-slips plateau", determined),
+        pump_shift=None,
         noise={"hookload": 700.0},
     )
 
@@ -127,7 +128,7 @@ def factors(calibration):
     return {s.kind: s.factor for s in calibration.sections}
 
 
-def check(calibration, truth=TRUTH, width=0.06):
+def check(calibration, truth=TRUTH, width=0.075):
     for estimate, value in zip(factors(calibration).values(), truth, strict=True):
         assert estimate.determined
         assert estimate.value == pytest.approx(value, abs=0.02)
@@ -185,7 +186,7 @@ def test_drag_episodes_do_not_enter_the_base_friction(plain):
         readings[i] = replace(r, value=r.value + (push if r.kind == "pick_up" else -0.7 * push))
     assert len(rows) / len(readings) > 0.2
     found = calibrate(tuple(readings), make_well(), make_case(), plain, make_rig())
-    check(found, width=0.07)  # over half of the open-hole readings are spoilt
+    check(found, width=0.08)  # over half of the open-hole readings are spoilt
     assert any("left out" in s for s in found.can_not_tell)
 
 
@@ -211,7 +212,7 @@ def test_readings_inside_casing_leave_the_open_hole_unknown(plain):
     )
     got = factors(found)
     assert not got["open"].determined
-    assert got["open"].value == 0.28
+    assert got["open"].value == pytest.approx(0.28)
     assert any("open-hole factor is not known" in s for s in found.can_not_tell)
 
 
@@ -366,3 +367,76 @@ def test_the_kind_of_mud_sets_what_is_assumed(mud, cased, open_):
     assert assumed_factor("open", case, make_well()).value == open_
     stated = make_case(mud_system=mud, friction=FrictionSettings(cased=0.3))
     assert assumed_factor("cased", stated, make_well()).value == 0.3
+
+
+def test_a_tie_moves_cased_and_open_together(plain):
+    """Where one depth shows their sum only, more friction than assumed is put down to both."""
+    depths = np.full(12, 3000.0) + np.arange(12.0)
+    high = make_readings(plain, depths, (0.30, 0.42), kinds=("pick_up", "rotating"))
+    found = calibrate(high, make_well(), make_case(), plain, make_rig())
+    got = factors(found)
+    assert got["cased"].value > 0.25
+    assert got["cased"].low <= 0.30 <= got["cased"].high
+    assert got["open"].low <= 0.42 <= got["open"].high
+    (tied,) = [d for d in found.open_directions if {"cased factor", "open factor"} <= set(d.moves)]
+    assert "trades off" in tied.sentence
+    # the slope named is the one that leaves the pick-up weight as it is, by the model itself
+    step = 0.02
+    slope = tied.moves["open factor"] / tied.moves["cased factor"]
+
+    def pulled(cased, open_):
+        at = (got["cased"].value + cased, got["open"].value + open_)
+        return plain.string_weight("pick_up", depths[:1], *at)
+
+    alone = abs(pulled(step, 0.0) - pulled(0.0, 0.0))
+    assert abs(pulled(step, slope * step) - pulled(0.0, 0.0)) < 0.1 * alone
+
+
+def test_nothing_told_keeps_what_was_assumed_and_its_width(plain):
+    one = make_readings(plain, [700.0], TRUTH, kinds=("pick_up",))
+    found = calibrate(one, make_well(), make_case(), plain, make_rig(determined=False))
+    got = factors(found)
+    assert (got["cased"].value, got["open"].value) == (0.20, 0.28)
+    assert not any(e.determined for e in got.values())
+    assert got["cased"].high - got["cased"].low == pytest.approx(2 * 1.645 * 0.08, rel=0.01)
+    assert found.held_out is None
+
+
+def test_stands_left_out_are_foretold_as_well_as_the_noise_allows(plain):
+    readings = make_readings(plain, RUN, TRUTH) + torque_readings(plain, 0.27, 1200.0)
+    proof = calibrate(readings, make_well(), make_case(), plain, make_rig()).held_out
+    assert proof.folds >= 8
+    assert proof.in_sample <= proof.rms <= 1.3 * proof.in_sample
+    assert proof.rms == pytest.approx(1500.0, rel=0.2)
+    assert proof.torque_in_sample <= proof.torque_rms == pytest.approx(150.0, rel=0.4)
+
+
+def test_what_is_left_out_is_not_seen(plain):
+    """Spoil one stand: its own error shows in full, as no fit with it would."""
+    readings = make_readings(plain, RUN, TRUTH, noise=0.0)
+    deepest = max(r.bit_depth for r in readings)
+    spoilt = tuple(replace(r, value=r.value + 6.0e3 * (r.bit_depth == deepest)) for r in readings)
+    found = calibrate(spoilt, make_well(), make_case(), plain, make_rig())
+    rows = [i for i, r in enumerate(found.weights) if r.bit_depth == deepest]
+    assert found.held_out.residuals[rows] == pytest.approx(np.full(len(rows), 6.0e3), abs=500.0)
+
+
+def test_gain_tells_how_another_model_would_be_fitted(plain):
+    """A slightly heavier model fitted anew lands where the gain says, without fitting anew."""
+    readings = make_readings(plain, RUN, TRUTH, noise=300.0)
+    found = calibrate(readings, make_well(), make_case(), plain, make_rig())
+    heavy = PlainString(w=261.0, vary=0.1, step=60.0)
+    again = calibrate(readings, make_well(), make_case(), heavy, make_rig())
+    f = [s.factor.value for s in found.sections]
+    depths = np.array([r.bit_depth for r in found.weights])
+    kinds = np.array([r.kind for r in found.weights])
+    change = np.zeros(len(depths))
+    for kind in set(kinds):
+        rows = kinds == kind
+        both = [model.string_weight(kind, depths[rows], *f) for model in (heavy, plain)]
+        change[rows] = both[0] - both[1]
+    moved = -found.gain @ change
+    real = [s.factor.value - v for s, v in zip(again.sections, f, strict=True)]
+    assert found.gain.shape == (3, len(depths))
+    assert np.abs(real).max() > 0.002
+    assert moved[:2] == pytest.approx(real, abs=0.0005)

@@ -17,7 +17,9 @@ NAMES = {"pick_up": "pick-up", "slack_off": "slack-off", "rotating": "rotating",
 
 def describe(scene: Scene) -> Section:
     """Describe fit and residuals."""
-    elements: list[Element] = [Text(_fit_sentence(scene)), _fan(scene), _residuals(scene), tare_table(scene)]
+    elements: list[Element] = [Text(_fit_sentence(scene)), _fan(scene), proof_table(scene)]
+    elements += [Text(text) for text in _open(scene)]
+    elements += [_residuals(scene), parameter_table(scene), tare_table(scene)]
     elements += recorded.tables(scene)
     elements += [Text(text) for text in (_downhole(scene), _mud(scene)) if text]
     return Section("fit", "How far the model fits", tuple(elements))
@@ -36,6 +38,63 @@ def _fit_sentence(scene: Scene) -> str:
     rms = scene.show.value(cal.residual_rms, "force")
     return (
         f"Calibrated on steady off-bottom readings: {parts}. Hookload readings miss the model by {rms} (rms)."
+    )
+
+
+def proof_table(scene: Scene) -> Table:
+    """Set the error on stands left out beside that of the fit to all."""
+    show, proof = scene.show, scene.findings.calibration.held_out
+    rows = []
+    if proof is not None:
+        rows.append(("hookload", show.value(proof.in_sample, "force"), show.value(proof.rms, "force")))
+        if np.isfinite(proof.torque_rms):
+            torque = (show.value(proof.torque_in_sample, "moment"), show.value(proof.torque_rms, "moment"))
+            rows.append(("torque", *torque))
+    columns = (
+        Column("reading"), Column("fitted to all (rms)", "number"), Column("foretold unseen (rms)", "number"),
+    )  # fmt: skip
+    note = ""
+    if proof is not None:
+        note = (
+            f"Each of {count(proof.folds, 'group')} of neighbouring stands was left out in turn and its "
+            "readings foretold by a calibration that never saw them, nor anything matched to them. What "
+            "the fit lets go counts in neither."
+        )
+    empty = "Too few stands were weighed to leave some out: how well the model foretells is not known."
+    return Table("Readings of stands the calibration did not see", columns, tuple(rows), note, empty)
+
+
+def _open(scene: Scene) -> list[str]:
+    """Name what the readings leave open."""
+    cal = scene.findings.calibration
+    said = [direction.sentence for direction in cal.open_directions]
+    if not said:
+        return []
+    return ["What the readings leave open: " + " ".join(said)]
+
+
+def parameter_table(scene: Scene) -> Table:
+    """List every number of the joint fit with its interval and where it is from."""
+    show, cal = scene.show, scene.findings.calibration
+    rows = []
+    for parameter in cal.parameters:
+        estimate = parameter.estimate
+        interval = (estimate.value, estimate.low, estimate.high)
+        if parameter.unit == "-":
+            shown = [fixed(x, 3) for x in interval]
+        else:
+            shown = [show.value(x, "force" if parameter.unit == "N" else "moment") for x in interval]
+        told = estimate.source if estimate.determined else f"{estimate.source}; not determined"
+        rows.append((parameter.name, shown[0], f"{shown[1]} to {shown[2]}", told))
+    columns = (
+        Column("number"), Column("value", "number"), Column("90 % interval", "number"), Column("from"),
+    )  # fmt: skip
+    note = (
+        "All are fitted at once with the friction factors. Assumed: the readings say less of it than was "
+        "known before; its width still counts in the factors' intervals."
+    )
+    return Table(
+        "What else the readings were fitted with", columns, tuple(rows), note, "Nothing.", dense=True
     )
 
 
