@@ -53,8 +53,9 @@ class Subject:
 
     @cached_property
     def place(self) -> float:
-        """Bit depth at the episode's peak [m]."""
-        return float(self.material.bit[self.episode.peak])
+        """Bit depth at the episode's peak, or usual in it where the log has none there [m]."""
+        here = float(self.material.bit[self.episode.peak])
+        return here if np.isfinite(here) else middle(self.material.bit[self.rows], 1)
 
     @cached_property
     def sign(self) -> int:

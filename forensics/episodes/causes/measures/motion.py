@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 
 from forensics.episodes.catalogue import Kind
-from forensics.episodes.causes.measures.base import FEWEST, NAN, Measure, Subject, named
+from forensics.episodes.causes.measures.base import FEWEST, NAN, Measure, Subject, middle, named
 from forensics.rig.view import Activity
 
 DOING = tuple(a.word.replace("_", " ") for a in Activity)
@@ -120,8 +120,8 @@ def tries(s: Subject) -> float:
     flags, _ = flag_rows(m)
     kind = s.episode.kind if s.episode.kind in (Kind.DRAG, Kind.TORQUE) else Kind.LOCKUP
     spans, _ = find_spans(flags[kind], m.time, span_rule(m, kind))
-    places = np.array([np.nanmax(m.bit[x.rows]) for x in spans])
-    return float((np.abs(places - np.nanmax(m.bit[s.rows])) < SAME_PLACE).sum()) if len(places) else 0.0
+    places = np.array([middle(m.bit[x.rows], 1) for x in spans])
+    return float((np.abs(places - s.place) < SAME_PLACE).sum()) if np.isfinite(s.place) else NAN
 
 
 MEASURES = (

@@ -29,6 +29,8 @@ def dogleg(s: Subject) -> float:
 def bed(s: Subject) -> float:
     """Length of open hole above the bit at inclinations where cuttings settle and slide [m]."""
     step = 10.0
+    if not np.isfinite(s.place):
+        return NAN
     at = np.arange(float(s.material.well.hole.shoe), s.place, step)
     if len(at) == 0:
         return 0.0
