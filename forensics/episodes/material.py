@@ -102,15 +102,20 @@ class Material:
 
     @cached_property
     def friction_sign(self) -> NDArray[np.int8]:
-        """Which way more friction moves the hookload: +1 going up, -1 going down, 0 else; shape (n,)."""
-        return (-self.rig.direction * ~self.rig.turning).astype(np.int8)
+        """Which way more friction moves the hookload, shape (n,): +1 going up, -1 going down, 0 else.
+
+        A string that is held while the block stands still is pulled, or set down, as its residual says.
+        """
+        held = np.nan_to_num(np.sign(self.loads.drag_residual)).astype(np.int8)
+        way = np.where(self.rig.direction == 0, held, -self.rig.direction)
+        return (way * ~self.rig.turning).astype(np.int8)
 
     @cached_property
     def drag(self) -> Floats:
         """Drag beyond the model, positive for more of it, shape (n,) [N].
 
-        Going up it is the hookload's residual, going down its negative; while turning or still, where
-        drag has no direction, its size.
+        Going up it is the hookload's residual, going down its negative; while turning, where drag has no
+        direction, its size.
         """
         residual = self.loads.drag_residual
         return np.where(self.friction_sign == 0, np.abs(residual), self.friction_sign * residual)

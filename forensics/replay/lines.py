@@ -8,7 +8,7 @@ from numpy.typing import NDArray
 from forensics.friction.result import Calibration
 from forensics.loads import Fan
 from forensics.logs.table import TimeLog
-from forensics.mechanics.kernels_replay import Found
+from forensics.mechanics.kernels_replay import SLIDE, Found
 from forensics.mechanics.offbottom import OffBottomModel
 from forensics.replay.model import factors
 from forensics.replay.samples import Prepared
@@ -17,6 +17,9 @@ from forensics.rig.view import Activity, RigView
 Floats = NDArray[np.float64]
 
 FAN_POINTS = 160
+
+#: With less than this part of the slack-off weight on the hook, the string may as well hang in slips.
+HANGING = 0.3
 
 
 def fan(calibration: Calibration, model: OffBottomModel, depths: tuple[float, float]) -> Fan:
@@ -74,24 +77,33 @@ def drag_lines(
         The run and its calibration.
     found : Found
         What the string did at each row, and where it was helical.
+
+    Notes
+    -----
+    While the block stands still any hookload between slack-off and pick-up weight is in equilibrium, and no
+    line applies. One beyond either is not: the string is held, and the line it is beyond applies.
     """
     samples = prepared.samples
     moving, helical = found.full, found.state == 2
     away = samples.free & (rig.direction != 0)
+    still = samples.free & (rig.direction == 0) & (samples.mode == SLIDE)
+    string = prepared.hookload - prepared.hanging
     kinds = {
         # a helix has its own drag: the line of a string that has none says nothing of it
-        "slack_off": away & (moving == 1) & ~helical,
-        "pick_up": away & (moving == -1),
-        "rotating": samples.free & (moving == 2),
+        "slack_off": (away & (moving == 1) & ~helical, still & ~helical, -1.0),
+        "pick_up": (away & (moving == -1), still, 1.0),
+        "rotating": (samples.free & (moving == 2), np.zeros_like(still), 0.0),
     }
     expected = np.full(len(samples.bit), np.nan)
     grid = np.linspace(np.min(samples.bit), np.max(samples.bit) + 1.0, 2 * FAN_POINTS)
     cased, open_hole = factors(calibration)
-    for kind, rows in kinds.items():
-        if rows.any():
+    for kind, (rows, waiting, side) in kinds.items():
+        if (rows | waiting).any():
             line = model.string_weight(kind, grid, cased, open_hole)
-            weight = np.interp(samples.bit[rows], grid, line) * samples.scale[rows]
-            expected[rows] = weight + prepared.hanging[rows]
+            weight = np.interp(samples.bit, grid, line) * samples.scale
+            held = waiting & (side * (string - weight) > 0.0) & (string > HANGING * weight)
+            rows = rows | held
+            expected[rows] = weight[rows] + prepared.hanging[rows]
     return expected, prepared.hookload - expected
 
 

@@ -71,9 +71,7 @@ def measure(folder: Path) -> dict[str, object]:
     if not inside:
         return row
     episode: Episode = max(inside, key=gravity)
-    material = Material(
-        found.log, found.rig, found.loads, None, found.calibration, found.well, found.case
-    )
+    material = Material(found.log, found.rig, found.loads, None, found.calibration, found.well, found.case)
     values = take_all(Subject(material, Usual(material), episode))
     row |= {"episode": episode.id, "kind": episode.kind.value}
     return row | {name: f"{v:.5g}" for name, v in values.items() if math.isfinite(v)}

@@ -2,15 +2,15 @@
 
 from __future__ import annotations
 
+import itertools
 from collections import Counter
 
+import causes_learn as cl
 import numpy as np
 from numpy.typing import NDArray
 from scipy.stats import beta
 
-import causes_learn as cl
 from forensics.episodes.causes.measures import MEASURES
-from forensics.episodes.causes.names import Cause
 from forensics.episodes.causes.strengths import build, strengths
 from forensics.episodes.causes.weigh import rank
 
@@ -51,7 +51,7 @@ def reliability(chance: Floats, cause: NDArray[np.int64], edges=(0.0, 0.3, 0.5, 
     """Leading probability against share right: (lower edge, upper edge, count, mean, right) by bin."""
     top, said = chance.argmax(axis=1), chance.max(axis=1)
     found = []
-    for low, high in zip(edges[:-1], edges[1:], strict=True):
+    for low, high in itertools.pairwise(edges):
         here = (said >= low) & (said < high)
         if here.any():
             found.append((low, high, int(here.sum()), said[here].mean(), (top == cause)[here].mean()))
@@ -59,7 +59,7 @@ def reliability(chance: Floats, cause: NDArray[np.int64], edges=(0.0, 0.3, 0.5, 
 
 
 def simpler(rows: list[dict[str, str]]) -> dict[str, tuple[Floats, NDArray[np.int64]]]:
-    """What simpler rules say: every cause alike, the best single measurement, the trade's rules alone."""
+    """Give what simpler rules say: all causes alike, the best measurement, the trade's rules alone."""
     full, cause = ranked(rows)
     found = {"all causes alike": (np.full_like(full, 1.0 / len(cl.CAUSES)), cause)}
     table, known = cl.table_of(rows), strengths()
@@ -83,13 +83,12 @@ def report(rows: list[dict[str, str]]) -> str:
     lines = _detection(rows)
     chance, cause = ranked(rows)
     own = scores(chance, cause)
-    lines += [
-        "",
-        f"{len(cause)} incidents with an episode: leading cause right {own['right']:.1%}; stated (over "
-        f"{STATED:.0%}) {own['stated']:.1%}; stated and wrong {own['wrong']:.2%} (95 % bound "
-        f"{own['wrong_most']:.2%}, Clopper-Pearson)",
-        f"log score {own['log']:.3f}, Brier {own['brier']:.3f}",
-    ]
+    stated = (
+        f"stated (over {STATED:.0%}) {own['stated']:.1%}; stated and wrong {own['wrong']:.2%}, at most "
+        f"{own['wrong_most']:.2%} (Clopper-Pearson, 95 %)"
+    )
+    lines += ["", f"{len(cause)} incidents with an episode: leading cause right {own['right']:.1%}", stated]
+    lines.append(f"log score {own['log']:.3f}, Brier {own['brier']:.3f}")
     for name, (other, truth) in simpler(rows).items():
         s = scores(other, truth)
         lines.append(
@@ -97,7 +96,8 @@ def report(rows: list[dict[str, str]]) -> str:
             f"{s['wrong']:.2%}"
         )
     lines += ["", "said      count   mean  right"]
-    lines += [f"{a:.2f}-{min(b, 1):.2f} {n:6d} {m:7.2f} {r:6.2f}" for a, b, n, m, r in reliability(chance, cause)]
+    for low, high, n, mean, right in reliability(chance, cause):
+        lines.append(f"{low:.2f}-{min(high, 1.0):.2f} {n:6d} {mean:7.2f} {right:6.2f}")
     lines += ["", "true cause: right; taken for"]
     top = chance.argmax(axis=1)
     for k, name in enumerate(cl.CAUSES):
@@ -113,7 +113,8 @@ def report(rows: list[dict[str, str]]) -> str:
 
 def _detection(rows: list[dict[str, str]]) -> list[str]:
     """How many incidents gave an episode, by cause; false episodes of quiet runs."""
-    lines = [f"{len(rows)} incidents, {sum(bool(r['error']) for r in rows)} refused", "found (an episode overlaps):"]
+    refused = sum(bool(row["error"]) for row in rows)
+    lines = [f"{len(rows)} incidents, {refused} refused", "found (an episode overlaps):"]
     for name in cl.CAUSES:
         mine = [r for r in rows if r["cause"] == name and not r["error"]]
         if mine:
@@ -127,6 +128,3 @@ def _detection(rows: list[dict[str, str]]) -> list[str]:
         bad = sum(bool(int(r["others"] or 0) + int(r["alone"] or 0)) for r in quiet)
         lines.append(f"quiet runs: {bad} of {len(quiet)} with an episode; {false} in {hours:.0f} h")
     return lines
-
-
-assert len(Cause) == len(cl.CAUSES)

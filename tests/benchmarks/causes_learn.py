@@ -52,7 +52,7 @@ def table_of(rows: list[dict[str, str]]) -> Table:
 
 
 def counts_of(table: Table, rows: Ints) -> list[Floats]:
-    """Counts by measurement, each of shape (causes, bins)."""
+    """Count by measurement, each of shape (causes, bins)."""
     found = []
     for j, measure in enumerate(MEASURES):
         count = np.zeros((len(CAUSES), measure.bins))
@@ -114,7 +114,7 @@ def fit_powers(log_ratios: Floats, cause: Ints, doubt: float) -> Floats:
 
 
 def learn(table: Table) -> dict[str, Any]:
-    """Counts, powers and doubt, as `strengths.json` holds them."""
+    """Learn counts, powers and doubt, as `strengths.json` holds them."""
     log_ratios = held_out(table)
     powers = fit_powers(log_ratios, table.cause, LEAST_DOUBT)
     counts = counts_of(table, np.arange(len(table.cause)))
