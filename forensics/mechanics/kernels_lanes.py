@@ -26,10 +26,10 @@ from forensics.mechanics.kernels_march import RUN_AWAY, Array, Place, top_elemen
 FAST = {"nsz", "arcp", "contract", "nnan"}  # no value here is ever NaN
 LANES = 64  # strings in a block: some hundred bytes each stay in the first cache
 # rows of a block's work space, LANES numbers each
-BIT, TENSION, SLOPE, MIDDLE, SCALE, LENGTH, FORCE, RUB, SIGMA, HELIX, HELIX_BY, DRAG, OWN = (
-    row * LANES for row in range(13)
+BIT, TENSION, SLOPE, MIDDLE, SCALE, LENGTH, FORCE, RUB, SIGMA, NEAR, HELIX, HELIX_BY, DRAG, OWN = (
+    row * LANES for row in range(14)
 )
-ROWS = 13
+ROWS = 14
 LEAST = 0.999  # of the least load a helix can start at: what rounding may take is far less
 
 
@@ -72,28 +72,30 @@ def least_onset(criteria: Criteria) -> Array:
 
 
 @njit(cache=True, error_model="numpy", fastmath=FAST)
-def _fetch(ground: Ground, first: Array, depth: int, stage: Array, section: Array, width: int) -> None:
-    """Copy what the hole does to each string of a block, `depth` steps above its bit."""
-    rows = ground.rows
+def _fetch(rows: Array, first: Array, depth: int, stage: Array, at: Array, width: int) -> None:
+    """Copy what the hole does to each string of a block, `depth` steps above its bit, and note its row."""
     for k in range(width):
         i = np.uint64(max(first[k] - depth, 0))
+        # all four are read before any is written: one move of the processor's
         cos_i, sin2, kappa2, kappa_d = rows[4 * i], rows[4 * i + 1], rows[4 * i + 2], rows[4 * i + 3]
         stage[4 * k], stage[4 * k + 1], stage[4 * k + 2], stage[4 * k + 3] = cos_i, sin2, kappa2, kappa_d
-        section[k] = ground.section[i]
+        at[k] = i
 
 
 @njit(cache=True, error_model="numpy", fastmath=FAST)
-def _rub(work: Array, section: Array, factor: Array, width: int) -> None:
-    """Look up each string's friction, signed as it moves."""
+def _rub(sections: Array, at: Array, factor: Array, section: Array, work: Array, width: int) -> None:
+    """Look up each string's section, and its friction signed as it moves."""
     for k in range(width):
-        work[RUB + k] = work[SIGMA + k] * factor[np.uint64(section[k] * LANES + k)]
+        here = np.uint64(sections[at[k]])
+        section[k] = here
+        work[RUB + k] = factor[here * np.uint64(LANES) + np.uint64(k)]
 
 
 @njit(cache=True, error_model="numpy", fastmath=FAST)
-def _step(work: Array, stage: Array, ends: tuple[float, float], weight: float, width: int) -> float:
-    """Move a block over one element, helix left out; returns the lowest tension at its middle [N]."""
+def _step(work: Array, stage: Array, ends: tuple[float, float], weight: float, width: int) -> int:
+    """Move a block over one element, helix left out; returns how many strings are compressed there."""
     low, high = ends
-    least = 0.0
+    pressed = 0
     for k in range(width):
         length = max(min(high, work[BIT + k]) - low, 0.0)
         at = work[TENSION + k] + 0.5 * length * work[SLOPE + k]
@@ -106,28 +108,38 @@ def _step(work: Array, stage: Array, ends: tuple[float, float], weight: float, w
         work[FORCE + k] = force
         work[SLOPE + k] = slope
         work[TENSION + k] = max(work[TENSION + k] + slope * length, 4.0 * RUN_AWAY)
-        least = min(least, at)
-    return least
+        pressed += 1 if at < 0.0 else 0  # a least tension, though telling more, would keep this off the units
+    return pressed
 
 
-@njit(cache=True, error_model="numpy")
-def _helices(setting: Setting, ground: Ground, work: Array, first: Array, j: int, width: int) -> None:
-    """Add the contact of a helix to the strings that are pressed into one on element `j`."""
-    depth = (setting.pipe.node[j] + setting.pipe.node[j + 1]) >> 1
+@njit(cache=True, error_model="numpy", fastmath=FAST)
+def _near(least: Array, at: Array, work: Array, width: int) -> int:
+    """Leave in NEAR how far each string is past the least load of a helix; returns how many are."""
+    for k in range(width):
+        work[NEAR + k] = least[at[k]]
+    near = 0
+    for k in range(width):
+        past = -work[MIDDLE + k] - LEAST * min(work[SCALE + k], 1.0) * work[NEAR + k]
+        past = past if work[LENGTH + k] > 0.0 else -1.0
+        work[NEAR + k] = past
+        near += 1 if past >= 0.0 else 0
+    return near
+
+
+@njit(cache=True, error_model="numpy", inline="always")
+def _helices(setting: Setting, work: Array, at: Array, j: int, width: int) -> None:
+    """Add the contact of a helix to those strings near one that are pressed into it on element `j`."""
     kind = setting.criteria.kind[j]
     for k in range(width):
-        work[HELIX + k] = 0.0
-        work[HELIX_BY + k] = 0.0
-        at, scale = work[MIDDLE + k], work[SCALE + k]
-        i = max(first[k] - depth, 0)
-        if -at < LEAST * min(scale, 1.0) * ground.least[kind, i] or work[LENGTH + k] <= 0.0:
+        middle, scale = work[MIDDLE + k], work[SCALE + k]
+        if work[NEAR + k] < 0.0 or middle >= 0.0:
             continue
-        place = Place(work[BIT + k], j, first[k], scale, 1.0 if scale == 1.0 else scale ** (2.0 / 3.0))
-        if at < 0.0 and latch(setting, place, j, i, at):
-            give = setting.criteria.at[kind, i, GIVE]
-            extra = work[RUB + k] * at * at * give
-            work[HELIX + k] = at * at * give
-            work[HELIX_BY + k] = 2.0 * at * give
+        place = Place(work[BIT + k], j, 0, scale, 1.0 if scale == 1.0 else scale ** (2.0 / 3.0))
+        if latch(setting, place, j, at[k], middle):
+            give = setting.criteria.at[kind, at[k], GIVE]
+            extra = work[RUB + k] * middle * middle * give
+            work[HELIX + k] = middle * middle * give
+            work[HELIX_BY + k] = 2.0 * middle * give
             work[SLOPE + k] -= extra
             work[TENSION + k] = max(work[TENSION + k] - extra * work[LENGTH + k], 4.0 * RUN_AWAY)
 
@@ -149,22 +161,21 @@ def _differentiate(work: Array, stage: Array, weight: float, width: int) -> None
 @njit(cache=True, error_model="numpy", fastmath=FAST)
 def _carry(work: Array, section: Array, by: Array, slope: Array, width: int) -> None:
     """Move the derivatives over the element; the last row is that against the scale of weights."""
-    last = len(by) // LANES - 1
+    last = len(by) - 1
     for p in range(last):
-        row = p * LANES
+        one, rate = by[p], slope[p]
         for k in range(width):
-            length = work[LENGTH + k]
-            at = by[row + k] + 0.5 * length * slope[row + k]
-            change = -work[DRAG + k] * at - (work[FORCE + k] if section[k] == p else 0.0)
-            slope[row + k] = change
-            by[row + k] += change * length
-    row = last * LANES
+            length, force = work[LENGTH + k], work[FORCE + k]
+            drag = work[DRAG + k] * (one[k] + 0.5 * length * rate[k])
+            change = -(drag + force) if section[k] == p else -drag
+            rate[k] = change
+            one[k] += change * length
+    one, rate = by[last], slope[last]
     for k in range(width):
         length = work[LENGTH + k]
-        at = by[row + k] + 0.5 * length * slope[row + k]
-        change = work[OWN + k] - work[DRAG + k] * at
-        slope[row + k] = change
-        by[row + k] += change * length
+        change = work[OWN + k] - work[DRAG + k] * (one[k] + 0.5 * length * rate[k])
+        rate[k] = change
+        one[k] += change * length
 
 
 @njit(cache=True)
@@ -176,7 +187,7 @@ def _load(strings: Strings, start: int, width: int, work: Array, factor: Array) 
         work[SIGMA + k] = strings.sigma[start + k]
         work[SCALE + k] = strings.scale[start + k]
         for p in range(len(strings.factor)):
-            factor[p * LANES + k] = strings.factor[p, start + k]
+            factor[p * LANES + k] = strings.factor[p, start + k] * strings.sigma[start + k]
 
 
 @njit(cache=True, error_model="numpy", nogil=True)
@@ -195,33 +206,35 @@ def weigh_lanes(setting: Setting, ground: Ground, strings: Strings, weight: Arra
         Filled with their derivatives against each section's friction and against the scale [N per unit]; of
         no column where they are not asked.
     """
-    pipe = setting.pipe
+    # out of their tuples once: each look into one counts references
+    x, node, weights = setting.pipe.x, setting.pipe.node, setting.pipe.weight
+    rows, sections, least, kinds = ground.rows, ground.section, ground.least, setting.criteria.kind
     asked = slopes.shape[1]
     work, stage, factor = np.empty(ROWS * LANES), np.zeros(4 * LANES), np.zeros(len(strings.factor) * LANES)
     first, section = np.zeros(LANES, dtype=np.int64), np.zeros(LANES, dtype=np.int64)
-    by, by_slope = np.zeros(asked * LANES), np.zeros(asked * LANES)
+    at = np.zeros(LANES, dtype=np.uint64)
+    by, by_slope = np.zeros((asked, LANES)), np.zeros((asked, LANES))
     for start in range(0, len(strings.bit), LANES):
         width = min(LANES, len(strings.bit) - start)
         _load(strings, start, width, work, factor)
-        by[:] = 0.0
-        by_slope[:] = 0.0
+        by[:, :] = 0.0
+        by_slope[:, :] = 0.0
         deepest = 0.0
         for k in range(width):
             first[k] = int(work[BIT + k] * setting.hole.inv_step + 0.5)
             deepest = max(deepest, work[BIT + k])
-        pressed = False
-        for j in range(top_element(pipe.x, deepest) + 1):
-            _fetch(ground, first, (pipe.node[j] + pipe.node[j + 1]) >> 1, stage, section, width)
-            _rub(work, section, factor, width)
-            least = _step(work, stage, (pipe.x[j], pipe.x[j + 1]), pipe.weight[j], width)
-            if least < 0.0 or pressed:
-                _helices(setting, ground, work, first, j, width)
-                pressed = least < 0.0
+        for j in range(top_element(x, deepest) + 1):
+            _fetch(rows, first, (node[j] + node[j + 1]) >> 1, stage, at, width)
+            _rub(sections, at, factor, section, work, width)
+            pressed = _step(work, stage, (x[j], x[j + 1]), weights[j], width)
+            work[HELIX:DRAG] = 0.0
+            if pressed > 0 and _near(least[kinds[j]], at, work, width) > 0:
+                _helices(setting, work, at, j, width)
             if asked > 0:
-                _differentiate(work, stage, pipe.weight[j], width)
+                _differentiate(work, stage, weights[j], width)
                 _carry(work, section, by, by_slope, width)
         for k in range(width):
             locked = work[TENSION + k] < RUN_AWAY
             weight[start + k] = np.nan if locked else work[TENSION + k]
             for p in range(asked):
-                slopes[start + k, p] = np.nan if locked else by[p * LANES + k]
+                slopes[start + k, p] = np.nan if locked else by[p, k]
