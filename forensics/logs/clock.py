@@ -281,7 +281,7 @@ def _clock_and_date(
         )  # fmt: skip
     if date_place is not None:
         days, order = _days_of(raw, date_place, order)
-        local = days * DAY + stamps.seconds
+        local = _carry_dates(days, stamps.seconds) * DAY + stamps.seconds
         names = (raw.names[date_place], raw.names[place])
         return Clock(_shift(local, stamps.offset, zone), names, "date and clock in two columns", order=order)
     local = wrap_midnight(stamps.seconds)
@@ -292,6 +292,20 @@ def _clock_and_date(
         dated=False,
         warnings=("the log gives a clock without a date: stamps count from 1970-01-01",),
     )
+
+
+def _carry_dates(days: Floats, seconds: Floats) -> Floats:
+    """Carry a date told only now and then to the rows below it, over the midnights between."""
+    clocked = np.isfinite(seconds)
+    told = np.isfinite(days)
+    if not (clocked & ~told).sum() > 0.5 * clocked.sum() or not told.any():
+        return days
+    turns = np.full(len(days), np.nan)
+    turns[clocked] = np.floor(wrap_midnight(seconds[clocked]) / DAY)
+    last = np.maximum.accumulate(np.where(told & clocked, np.arange(len(days)), -1))
+    # Rows above the first date lie on its day, or before its midnights.
+    last = np.where(last < 0, int(np.argmax(told & clocked)), last)
+    return np.where(told, days, days[last] + turns - turns[last])
 
 
 def _days_of(raw: RawLog, place: int, order: str | None) -> tuple[Floats, str | None]:
@@ -351,7 +365,8 @@ def _from_numbers(
         start = take_apart(raw.start)
         order = _decide([start.date], raw, None)
         base = (day_number(start.date, order) or 0) * DAY + (start.clock or 0.0)
-        first = found.seconds[np.isfinite(found.seconds)][:1].sum() if raw.start_is_first_row else 0.0
+        from_first = raw.start_is_first_row or found.overflowed
+        first = found.seconds[np.isfinite(found.seconds)][:1].sum() if from_first else 0.0
         local = base + found.seconds - first
         offset = np.full(len(local), _nan(start.offset))
         return Clock(_shift(local, offset, zone), (name,), f"{found.why} from {raw.start}", order=order)

@@ -19,12 +19,16 @@ SERIAL_EPOCH = 25569.0
 
 @dataclass(frozen=True)
 class NumberClock:
-    """Seconds from numbers: since 1970 where `absolute` (UTC or local), else since some start."""
+    """Seconds from numbers: since 1970 where `absolute` (UTC or local), else since some start.
+
+    `overflowed` where a counter of 32 bits ran over, so that only its steps count.
+    """
 
     seconds: Floats
     absolute: bool
     utc: bool
     why: str
+    overflowed: bool = False
 
 
 def _known(values: Floats) -> Floats:
@@ -179,4 +183,6 @@ def _elapsed(values: Floats, unit: str | None) -> NumberClock | None:
     # Also seen: milliseconds under the unit of seconds; no log steps by a quarter of an hour.
     if scale == 1.0 and _typical_step(mended) >= 1000.0:
         scale = 1e-3
-    return NumberClock(mended * scale, False, False, f"elapsed time ({unit or 's'})")
+    over = mended is not values
+    why = f"elapsed time ({unit or 's'}{'; a counter of 32 bits ran over, steps mended' if over else ''})"
+    return NumberClock(mended * scale, False, False, why, over)

@@ -223,7 +223,8 @@ def find_dialect(head: bytes, path: Path) -> Dialect:
         If the file is empty or has no rows of numbers.
     """
     encoding = find_encoding(head)
-    text = head.decode(encoding, errors="replace").lstrip("\ufeff")
+    # A recorder that lays out its file beforehand leaves zeros after the last line.
+    text = head.decode(encoding, errors="replace").lstrip("\ufeff").rstrip("\x00")
     # The last line may be cut by the end of the head.
     if len(head) >= 2**18 and len(text.splitlines()) < 2:
         raise LogError(

@@ -16,6 +16,8 @@ Floats = NDArray[np.float64]
 # A step back is a late row, not a clock set back, while it stays below this many rows and intervals.
 LATE_ROWS = 20
 LATE_INTERVALS = 20.0
+# Steps that all go back show a file written from its end.
+SURELY_TURNED = 10
 # Above this share of stamps told twice with different values, two recordings clash.
 CLASH = 0.5
 # Values this near are one reading rounded in two unit systems: part of the largest hookload; depth [m].
@@ -131,6 +133,21 @@ def _share_different(values: Mapping[str, Floats], one: NDArray[np.int64], two: 
     return max(shares, default=0.0)
 
 
+def _newest_last(pieces: Sequence[Piece]) -> tuple[list[Piece], list[Step]]:
+    """Turn over files written with their newest row first: in every row the clock goes back."""
+    out, steps = [], []
+    for piece in pieces:
+        change = np.diff(piece.time)
+        change = change[change != 0]
+        if len(change) >= SURELY_TURNED and (change < 0).mean() >= 0.99:
+            turned = {name: data[::-1] for name, data in piece.values.items()}
+            piece = Piece(piece.path, piece.time[::-1], piece.line[::-1], turned)
+            detail = f"{piece.path.name}: newest row first"
+            steps.append(Step("turned to time order", len(piece.time), detail=detail))
+        out.append(piece)
+    return out, steps
+
+
 def join(pieces: Sequence[Piece]) -> tuple[Floats, dict[str, Floats], list[Step], list[str]]:
     """Join files in time order.
 
@@ -152,6 +169,8 @@ def join(pieces: Sequence[Piece]) -> tuple[Floats, dict[str, Floats], list[Step]
         Recordings that contradict each other.
     """
     steps: list[Step] = []
+    pieces, turned = _newest_last(pieces)
+    steps += turned
     late = sum(check_direction(piece) for piece in pieces)
     if late:
         steps.append(

@@ -83,6 +83,7 @@ def read_data(body: str, header: _Header, keep: Keep, path: Path) -> Table:
 
 def _delimiter(lines: list[str]) -> str:
     """Blank, unless commas, semicolons or tabs split the lines and decimals don't explain them."""
+    lines = [re.sub(r'"[^"]*"', '""', line) for line in lines]
     for mark in ("\t", ";", ","):
         counts = Counter(line.strip().count(mark) for line in lines)
         count, agreeing = counts.most_common(1)[0]

@@ -10,7 +10,8 @@ from __future__ import annotations
 import io
 import logging
 import re
-from dataclasses import dataclass, field
+from collections.abc import Mapping
+from dataclasses import dataclass, field, replace
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -18,13 +19,13 @@ from forensics.errors import LogError
 from forensics.logs.clock_text import looks_like_date
 from forensics.logs.dialect import find_encoding
 from forensics.logs.las_data import read_data
+from forensics.logs.las_header import Block, Item, Sections, find_sections, items_of
 from forensics.logs.packed import read_bytes
 from forensics.logs.raw import Keep, RawLog
 
 if TYPE_CHECKING:
     import lasio
 
-_SECTION = re.compile(r"^\s*~", re.MULTILINE)
 # Header items that may hold a date, a time of day, or both; the first filled one wins.
 _START_DATE = (
     *("STRT_DATETIME", "START_DATETIME", "STARTDATETIME", "SDATETIME", "DATETIME", "START_TIME", "STARTTIME"),
@@ -84,9 +85,14 @@ def read(path: Path, head: bytes, keep: Keep) -> RawLog:
     ----------
     Canadian Well Logging Society, *LAS Version 2.0: a digital standard for logs*, update January 2014.
     """
-    text = _load(path, head)
-    above, body, first_line = _split(text, path)
-    header = _read_header(above)
+    text = read_bytes(path).decode(find_encoding(head), errors="replace").lstrip("\ufeff")
+    found = find_sections(text, path)
+    logs = [_raw(path, text, found, block, keep) for block in found.blocks]
+    return replace(logs[0], others=tuple(logs[1:]))
+
+
+def _raw(path: Path, text: str, found: Sections, block: Block, keep: Keep) -> RawLog:
+    header = _read_header(text, found, block)
     if not header.names:
         raise LogError("the LAS header names no curves; expected a ~Curve section", file=path)
 
@@ -94,14 +100,14 @@ def read(path: Path, head: bytes, keep: Keep) -> RawLog:
         about = header.about.get(name, "")
         return keep(name) or (bool(about) and keep(about))
 
-    table, names, units, dropped, notes = read_data(body, header, wanted, path)
+    table, names, units, dropped, notes = read_data(text[block.start : block.end], header, wanted, path)
     return RawLog(
         path=path,
         format=f"LAS {header.version}",
         names=tuple(names),
         units=tuple(unit or None for unit in units),
         table=table,
-        first_line=first_line,
+        first_line=block.line,
         nulls=header.nulls,
         start=header.start,
         start_is_first_row=header.start_is_first_row,
@@ -112,44 +118,34 @@ def read(path: Path, head: bytes, keep: Keep) -> RawLog:
     )
 
 
-def _load(path: Path, head: bytes) -> str:
-    return read_bytes(path).decode(find_encoding(head), errors="replace").lstrip("\ufeff")
-
-
-def _split(text: str, path: Path) -> tuple[str, str, int]:
-    """Part the header from the data; the line number of the first data line comes third."""
-    mark = re.search(r"^[ \t]*~(?:A|\w*_?data\b)[^\n]*\n?", text, re.MULTILINE | re.IGNORECASE)
-    if mark is None:
-        raise LogError("found no data section; expected a line that starts with ~A", file=path)
-    body = text[mark.end() :]
-    later = re.search(r"^[ \t]*~", body, re.MULTILINE)
-    if later is not None:
-        body = body[: later.start()]
-    return text[: mark.start()], body, text.count("\n", 0, mark.end()) + 1
-
-
-def _read_header(above: str) -> Header:
+def _read_header(text: str, found: Sections, block: Block) -> Header:
     """Read the header through lasio; a header it can't make sense of is read by the line grammar."""
-    parsed = _through_lasio(above)
-    items = _by_grammar(above)
+    above = text[: found.blocks[0].title_start]
+    items = items_of(above)
     header = Header()
-    values = {name: value for section, name, _, value, _ in items if section in "VWPO"}
-    curves = [(name, unit) for section, name, unit, _, _ in items if section == "C"]
-    header.about = {name: _prose(about) for section, name, _, _, about in items if section == "C"}
+    values = {item.name: item for item in items if item.kind in "VWPO"}
+    defined = items_of(text[slice(*block.definition)], "C") if block.definition else items
+    curves = [(item.name, item.unit) for item in defined if item.kind == "C"]
+    header.about = {item.name: _prose(item.about) for item in defined if item.kind == "C"}
+    parsed = None if block.definition else _through_lasio(above)
     if parsed is not None and len(parsed.curves) >= len(curves):
         curves = [(str(c.original_mnemonic), str(c.unit or "")) for c in parsed.curves]
-    else:
+    elif not block.definition:
         header.notes.append("the LAS header departs from the standard; its lines were read one by one")
     header.names, header.units = [name for name, _ in curves], [unit for _, unit in curves]
-    header.version = (re.findall(r"[123]\.\d", values.get("VERS", "")) or ["2.0"])[0]
-    header.wrap = values.get("WRAP", "NO").strip().upper().startswith("Y")
-    header.delimiter = {"COMMA": ",", "TAB": "\t"}.get(values.get("DLM", "").strip().upper(), "")
-    header.nulls = tuple(_numbers(values.get("NULL", "")))
-    header.hints = " ".join(f"{unit} {name}" for _, name, unit, _, _ in items) + " ".join(
+    header.version = found.version
+    header.wrap = _value(values, "WRAP").upper().startswith("Y")
+    header.delimiter = {"COMMA": ",", "TAB": "\t"}.get(_value(values, "DLM").upper(), "")
+    header.nulls = tuple(_numbers(_value(values, "NULL")))
+    header.hints = " ".join(f"{item.unit} {item.name}" for item in items) + " ".join(
         re.findall(r"\{[^}]*\}", above)
     )
     _find_start(header, values)
     return header
+
+
+def _value(values: Mapping[str, Item], name: str) -> str:
+    return values[name].value.strip() if name in values else ""
 
 
 def _prose(about: str) -> str:
@@ -186,40 +182,24 @@ def _through_lasio(above: str) -> lasio.LASFile | None:
         logger.setLevel(level)
 
 
-def _by_grammar(above: str) -> list[tuple[str, str, str, str, str]]:
-    """Split header lines at the first dot, the first blank after it and the last colon.
-
-    An item is its section, name, unit, value and description.
-    """
-    items: list[tuple[str, str, str, str, str]] = []
-    section = ""
-    for line in above.splitlines():
-        bare = line.strip()
-        if bare.startswith("~"):
-            title = bare[1:].strip().upper()
-            section = "C" if "DEFINITION" in title.split("|")[0] else title[:1]
-            continue
-        found = re.match(r"^\.?([^.]*?)\s*\.(\S*)\s*(.*)$", bare)
-        if not bare or bare.startswith("#") or found is None or not section:
-            continue
-        name, unit, rest = found.groups()
-        value, colon, about = rest.rpartition(":")
-        value = value.strip() if colon else rest.strip()
-        if not value and section == "V":
-            value = about.strip()
-        about = about.strip() if colon else ""
-        items.append((section, name.strip(), unit.rstrip(":"), value, about))
-    return items
-
-
-def _find_start(header: Header, values: dict[str, str]) -> None:
+def _find_start(header: Header, values: Mapping[str, Item]) -> None:
     """Find the stamp an elapsed-time index counts from."""
-    if looks_like_date(values.get("STRT", "")):
-        header.start, header.start_is_first_row = values["STRT"], True
+    first = values.get("STRT")
+    if first is not None and looks_like_date(first.value):
+        header.start, header.start_is_first_row = first.value, True
         return
-    upper = {name.upper().replace(" ", "_"): value for name, value in values.items() if value.strip()}
-    day = next((upper[name] for name in _START_DATE if looks_like_date(upper.get(name, ""))), None)
-    clock = next((upper[name] for name in _START_CLOCK if re.search(r"\d:\d\d", upper.get(name, ""))), None)
+    upper = {name.upper().replace(" ", "_"): item for name, item in values.items()}
+    day = next(filter(None, (_as_date(upper[name]) for name in _START_DATE if name in upper)), None)
+    clock = next(filter(None, (_as_clock(upper[name]) for name in _START_CLOCK if name in upper)), None)
     if day is not None:
         has_clock = re.search(r"\d:\d\d|T\d{4,6}|\d{2}\.\d{2}\.\d{2}\s", day) is not None
         header.start = day if has_clock or clock is None else f"{day} {clock}"
+
+
+def _as_date(item: Item) -> str | None:
+    """Give the date of a header line: its value, or what LAS 1.2 puts where later versions describe."""
+    return next((text for text in (item.swapped, item.value) if looks_like_date(text)), None)
+
+
+def _as_clock(item: Item) -> str | None:
+    return next((text for text in (item.swapped, item.value) if re.search(r"\d:\d\d", text)), None)

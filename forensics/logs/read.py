@@ -232,7 +232,7 @@ def _date_the_undated(clocks: list[Clock], raws: Sequence[RawLog]) -> list[Clock
 
 def _to_piece(raw: RawLog, clock: Clock, mapped: Mapped, with_block: bool) -> tuple[Piece, list[Step]]:
     """Bring one file's channels to SI and leave out rows without a stamp."""
-    time, steps = mend_stamps(clock.time, raw.path.name)
+    time, steps = mend_stamps(clock.time, raw.path.name, mapped.values.get("hookload"))
     stamped = np.isfinite(time)
     lost = raw.dropped
     unread = ~np.isfinite(clock.time)

@@ -100,6 +100,70 @@ SAME = {
     "columns_by_list.xml": FIRST,
     "two_parts.xml": FIRST,
     "frames.wits": FIRST,
+    "newest_row_first.csv": FIRST,
+    "am_and_pm.csv": FIRST,
+    "banner_above_version.las": FIRST,
+    "blank_lines_in_header.las": FIRST,
+    "bytes_of_nul.csv": FIRST,
+    "column_header_line_in_data.las": FIRST,
+    "comments_in_data.las": FIRST,
+    "curves_twice.las": FIRST,
+    "curves_without_names.las": FIRST,
+    "data_run_twice.las": FIRST,
+    "data_title_of_version_3_in_version_2.las": FIRST,
+    "data_title_with_bar.las": FIRST,
+    "data_title_with_names.las": FIRST,
+    "data_title_with_words.las": FIRST,
+    "date_only_first_row.csv": FIRST,
+    "day_first_two_digit_year.csv": FIRST,
+    "description_cut_at_its_colon.las": FIRST,
+    "disclaimer_as_parameter.las": FIRST,
+    "dots_in_names.las": FIRST,
+    "elapsed_milliseconds.las": FIRST,
+    "epoch_microseconds.csv": FIRST,
+    "extra_columns.las": FIRST,
+    "fragment_of_a_line_at_the_end.las": FIRST,
+    "header_fields_empty.las": FIRST,
+    "header_repeated.csv": FIRST,
+    "hole_depth_zero_bit_negative.csv": FIRST,
+    "index_labelled_as_depth.las": FIRST,
+    "index_overflowed.las": FIRST,
+    "iso_with_milliseconds.csv": FIRST,
+    "iso_with_offset.csv": FIRST,
+    "latin_1_degree.las": FIRST,
+    "leading_and_tail_rows_empty.csv": FIRST,
+    "lower_case_names.las": FIRST,
+    "many_unknown_curves.las": FIRST,
+    "minutes_shared_by_rows.csv": FIRST,
+    "no_line_end_at_the_end.las": FIRST,
+    "no_version_section.las": FIRST,
+    "no_well_section.las": FIRST,
+    "offset_changes.csv": FIRST,
+    "old_line_ends.csv": FIRST,
+    "quoted_everything.csv": FIRST,
+    "quoted_text_in_data.las": FIRST,
+    "row_of_dashes.csv": FIRST,
+    "semicolons_and_decimal_commas.las": FIRST,
+    "sep_line.csv": FIRST,
+    "serial_days_as_text.csv": FIRST,
+    "start_as_c_prints_it.las": FIRST,
+    "start_in_an_impossible_month.las": FIRST,
+    "start_in_strt_as_iso.las": FIRST,
+    "start_in_strt_with_slashes.las": FIRST,
+    "start_words_and_points.las": FIRST,
+    "start_year_month_day_words.las": FIRST,
+    "tabs_between.las": FIRST,
+    "text_in_data.las": FIRST,
+    "units_above_names.csv": FIRST,
+    "utf16.las": FIRST,
+    "values_and_descriptions_swapped.las": FIRST,
+    "version_2_with_swapped_values.las": FIRST,
+    "version_3_curve_and_ascii.las": FIRST,
+    "version_3_log_in_two.las": FIRST,
+    "version_3_other_sections_first.las": FIRST,
+    "version_3_quoted_stamps.las": FIRST,
+    "version_3_tabs.las": FIRST,
+    "wrapped_with_comments.las": FIRST,
 }
 REFUSED = {
     "no_such_file.csv": "does not exist",
@@ -117,7 +181,8 @@ REFUSED = {
     "no_header.csv": "no column for bit_depth among '1', '2', '3'",
     "hookload_all_null.csv": "every value of hookload is missing",
     "hookload_all_blank.csv": "every value of hookload is missing",
-    "time_falls_throughout.csv": "line 3.*runs backwards",
+    "fixed_width.txt": "column 'BitDepth': no unit is given.*usual in m",
+    "start_day_or_month_open.las": "'05/04/2031' can be read day first or month first",
     "time_lost_for_good.csv": "line 32.*does not recover in the 30 rows",
     "clock_set_back.csv": "line 32.*come twice",
     "no_data_section.las": "no data section",
@@ -151,7 +216,8 @@ def test_every_file_of_defects_is_used():
     other = {"header_is_numbers.csv", "optional_without_unit.csv", "null_words.csv", "null_codes.csv",
              "null_smeared.csv", "garbled_lines.csv", "last_line_breaks_off.csv", "all_zero_channels.csv",
              "rpm_zero_while_torque_is_not.csv", "run_on_and_broken_lines.las",
-             "stamp_out_of_line.csv", "stamp_far_ahead.csv", "frames_broken_off.wits"}  # fmt: skip
+             "stamp_out_of_line.csv", "stamp_far_ahead.csv", "frames_broken_off.wits",
+             "stars_and_errors.csv", "infinities.las"}  # fmt: skip
     assert {path.name for path in DATA.iterdir()} == (SAME.keys() | REFUSED.keys() | other) - {
         "no_such_file.csv"
     }
@@ -188,6 +254,34 @@ def test_null_words_are_no_values():
     assert set(log.reason[~log.used]) == {Reason.NULL_HOOKLOAD}
     assert done(log)["no value", "hookload"] == 4
     assert done(log)["no value", "bit_depth"] == 3
+
+
+@pytest.mark.parametrize(
+    ("name", "rows"), [("stars_and_errors.csv", [3, 5, 7]), ("infinities.las", [1, 2, 3])]
+)
+def test_words_that_recorders_write_for_overflow_are_no_values(name, rows):
+    log = read(name)
+    assert list(np.flatnonzero(~log.used)) == rows
+    assert done(log)["no value", "hookload"] == 3
+
+
+@pytest.mark.parametrize(
+    ("name", "step", "rows"),
+    [
+        ("newest_row_first.csv", "turned to time order", 24),
+        ("minutes_shared_by_rows.csv", "stamp shared by rows", 22),
+        ("data_run_twice.las", "merged duplicate stamps", 24),
+        ("fragment_of_a_line_at_the_end.las", "unreadable row", 1),
+        ("bytes_of_nul.csv", "unreadable row", 1),
+        ("header_repeated.csv", "unreadable row", 1),
+    ],
+)
+def test_what_was_mended_is_counted(name, step, rows):
+    assert done(read(name))[step, None] == rows
+
+
+def test_steps_mended_after_an_overflow_are_said():
+    assert any("32 bits ran over" in note for note in read("index_overflowed.las").files[0].notes)
 
 
 def test_null_codes_are_counted_and_give_the_reason():

@@ -1,0 +1,42 @@
+~Version
+ VERS. 2.0 : v
+ WRAP. NO : one line a step
+~Well
+ STRT.S 0 : Start
+ STOP.S 115 : Stop
+ STEP.S 5 : Step
+ NULL. -999.25 : null
+ DATE. 14-May-31 : Date
+ STIM. 10:00:00 : Start time
+~Parameter
+ NOTE. All interpretations are opinions: we don't guarantee : the accuracy. See 12:30 a.m. : DISCLAIMER
+ DISC. "No liability, see www.example.invalid/x:y" : 
+~Curve
+ TIME.S : Time index
+ BDEP.M : Bit depth
+ HKLD.KDAN : Hookload
+~ASCII
+0 2000.000 120.000
+5 2000.050 120.450
+10 2000.100 120.600
+15 2000.150 120.450
+20 2000.200 120.900
+25 2000.250 121.050
+30 2000.300 120.900
+35 2000.350 121.350
+40 2000.400 121.500
+45 2000.450 121.350
+50 2000.500 121.800
+55 2000.550 121.950
+60 2000.600 121.800
+65 2000.650 122.250
+70 2000.700 122.400
+75 2000.750 122.250
+80 2000.800 122.700
+85 2000.850 122.850
+90 2000.900 122.700
+95 2000.950 123.150
+100 2001.000 123.300
+105 2001.050 123.150
+110 2001.100 123.600
+115 2001.150 123.750
