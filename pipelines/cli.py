@@ -51,12 +51,22 @@ def _inspect_arguments(parser: argparse.ArgumentParser) -> None:
         "paths", metavar="FILE", nargs="+", help="one case file, or bare logs with any tables at hand"
     )
     parser.add_argument("--draft", metavar="CASE.toml", help="write a case file made from the bare logs here")
+    parser.add_argument(
+        "--excerpt",
+        metavar=("START", "END"),
+        nargs=2,
+        help="write an anonymous excerpt of the case between two stamps, to share what is wrong with it",
+    )
 
 
 def _inspect(arguments: argparse.Namespace) -> int:
     from pipelines import inspection  # heavy: loaded only when the job runs
 
     a = arguments
+    if a.excerpt is not None:
+        folder, said = inspection.run_excerpt(a.paths, tuple(a.excerpt), a.out)
+        _print("\n".join((*said, f"excerpt: {folder}")) + "\n")
+        return DONE
     result = inspection.run(a.paths, a.out, a.units, a.quiet, a.draft)
     _print(f"{result.text}\npage: {result.page}\n")
     if result.draft is not None:

@@ -86,6 +86,39 @@ def run(
     return InspectionResult(found, to_text(report), folder / PAGE, Path(draft) if draft is not None else None)
 
 
+def run_excerpt(
+    paths: Sequence[Path | str], span: tuple[str, str], out: Path | str | None = None
+) -> tuple[Path, tuple[str, ...]]:
+    """Write an anonymous excerpt of a case between two stamps.
+
+    Parameters
+    ----------
+    paths : sequence of Path or str
+        One case file.
+    span : tuple of str
+        Start and end, ISO 8601.
+    out : Path or str, optional
+        Folder for the excerpt; `reports/excerpt` in the working folder where left out.
+
+    Returns
+    -------
+    Path, tuple of str
+        Where the excerpt is, and what was done to each file.
+
+    Raises
+    ------
+    InputError
+        If no single case file is given, it can't be read, or the span holds too little.
+    """
+    from pipelines.excerpting import write_excerpt
+
+    files = [Path(path) for path in paths]
+    if len(files) != 1 or files[0].suffix != ".toml":
+        raise InputError("--excerpt cuts one case; give its case file alone")
+    folder = Path(out) if out is not None else Path("reports") / "excerpt"
+    return folder, write_excerpt(files[0], span, folder)
+
+
 def _inspect_case(path: Path) -> Inspection:
     """Read all a case names; what its well or its numbers would be refused for is kept in words."""
     from forensics.case import load_case

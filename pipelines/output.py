@@ -18,7 +18,7 @@ from forensics.errors import InputError
 MARK = "summary.json"
 RESULTS = frozenset({MARK, "report.html", "report.pdf", "episodes.csv", "history.parquet", "friction.json"})
 # What a folder of this program may hold beside, or without, the results of the main job.
-PAGES = frozenset({"inspect.html", "calibration.json"})
+PAGES = frozenset({"inspect.html", "calibration.json", "excerpt.txt"})
 
 
 def check_target(target: Path) -> None:

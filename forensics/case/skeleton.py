@@ -58,13 +58,13 @@ def write_skeleton(known: Known) -> str:
         as if they lay beside the file, so that the program says which one is missing.
     """
     lines = ["# A case file drafted from logs.", *(f"# {note}" for note in known.notes)]
-    lines += ["format = 1", "", "[case]", f"id = {_quoted(known.id)}"]
-    lines.append(f"title = {_quoted(known.id)}  # {FILL_IN}: what happened, in a few words")
+    lines += ["format = 1", "", "[case]", f"id = {quoted(known.id)}"]
+    lines.append(f"title = {quoted(known.id)}  # {FILL_IN}: what happened, in a few words")
     well = known.well or "name of the well"
-    lines.append(f"{'' if known.well else '# '}well = {_quoted(well)}")
+    lines.append(f"{'' if known.well else '# '}well = {quoted(well)}")
     lines.append('# mud_system = "water-base mud"  # its usual friction is where calibration starts')
-    lines += ["", "[logs]", f"time = [{', '.join(_quoted(name) for name in known.logs)}]"]
-    lines.append(f"timezone = {_quoted(known.timezone)}  # {CHECK}: zone of stamps that carry none")
+    lines += ["", "[logs]", f"time = [{', '.join(quoted(name) for name in known.logs)}]"]
+    lines.append(f"timezone = {quoted(known.timezone)}  # {CHECK}: zone of stamps that carry none")
     lines += _choices(known)
     for name, columns in _TABLES.items():
         lines += ["", f"[{name}]", _table(known, name, columns)]
@@ -72,7 +72,7 @@ def write_skeleton(known: Known) -> str:
     lines.append('# block_weight = "310 kN"  # left out, it is learned from in-slips readings')
     lines.append("# hookload_includes_block = false  # where the sensor was tared")
     kept = [
-        f"{name} = {_quoted(known.tables[name])}" for name in ("weights", "slides") if name in known.tables
+        f"{name} = {quoted(known.tables[name])}" for name in ("weights", "slides") if name in known.tables
     ]
     lines += ["", "[records]", *kept] if kept else []
     return "\n".join(lines) + "\n"
@@ -90,9 +90,9 @@ def _choices(known: Known) -> list[str]:
         return []
     lines = ["", "[logs.channels]"]
     for channel, choice in known.choices.items():
-        unit = f", unit = {_quoted(choice.unit)}" if choice.unit else ""
+        unit = f", unit = {quoted(choice.unit)}" if choice.unit else ""
         lines.append(
-            f"{channel} = {{ column = {_quoted(choice.column)}{unit} }}  # {CHECK}: the file gives no unit; "
+            f"{channel} = {{ column = {quoted(choice.column)}{unit} }}  # {CHECK}: the file gives no unit; "
             "this one makes its values usual"
         )
     return lines
@@ -100,22 +100,22 @@ def _choices(known: Known) -> list[str]:
 
 def _table(known: Known, name: str, columns: str) -> str:
     if name in known.tables:
-        return f"file = {_quoted(known.tables[name])}"
+        return f"file = {quoted(known.tables[name])}"
     return (
-        f"file = {_quoted(f'{name}.csv')}  # {FILL_IN}: a table with columns {columns}, units in its header"
+        f"file = {quoted(f'{name}.csv')}  # {FILL_IN}: a table with columns {columns}, units in its header"
     )
 
 
 def _density(known: Known) -> str:
     if "mud" in known.tables:
-        return f"file = {_quoted(known.tables['mud'])}"
+        return f"file = {quoted(known.tables['mud'])}"
     if known.density is not None:
-        text = _quoted(f"{known.density / 1000.0:.3f} g/cm3")
+        text = quoted(f"{known.density / 1000.0:.3f} g/cm3")
         return f"density = {text}  # {CHECK}: median of the mud density in the logs"
     return f'# density = "1.25 g/cm3"  # {FILL_IN}: the mud in the hole during the run'
 
 
-def _quoted(text: str) -> str:
+def quoted(text: str) -> str:
     """Write a TOML string: quotes, backslashes and control letters escaped."""
     escaped = text.replace("\\", "\\\\").replace('"', '\\"')
     return '"' + "".join(c if c.isprintable() else f"\\U{ord(c):08x}" for c in escaped) + '"'
