@@ -45,8 +45,9 @@ def chain(count, length, weight, bending=BENDING):
 
 
 def controls(rpm=0.0, bottom=1e9):
-    c = np.zeros(10)
+    c = np.zeros(11)
     c[[el.DT, el.BOTTOM, el.ROCK_STIFFNESS, el.UNTWIST]] = 1.0, bottom, 5e7, 0.3
+    c[el.SLIDER_STIFFNESS] = el.USUAL_SLIDER_STIFFNESS
     c[el.DRILL_EXPONENT] = 1.0
     c[el.TURN_RATE] = rpm * 2.0 * math.pi / 60.0
     c[[el.MD_FIRST, el.MD_STEP]] = FIRST, STEP
@@ -55,7 +56,7 @@ def controls(rpm=0.0, bottom=1e9):
 
 def push(rows, table, control, bit, speed, seconds):
     """Move the top at a constant speed from rest; returns the last tensions and results."""
-    nodes = np.zeros((3, len(rows) + 1))
+    nodes = np.zeros((core.NODE_ROWS, len(rows) + 1))
     nodes[core.PLACE] = bit - np.concatenate([[0.0], np.cumsum(rows[:, el.LENGTH])])
     shapes = np.zeros(len(rows), dtype=np.int64)
     for _ in range(seconds):

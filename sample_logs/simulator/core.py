@@ -33,8 +33,10 @@ Floats = NDArray[np.float64]
 Ints = NDArray[np.int64]
 Bools = NDArray[np.bool_]
 # rows of the state of the nodes at the start of a step: position, slider force, its part spent on torsion,
-# friction limit, weight along the hole
-PLACE, HELD, SPENT, LIMIT, PULL = range(5)
+# friction beyond the hole's as a share of it, what else is in the way of going up and down [N]; and, within
+# a step only, friction limit and weight along the hole
+PLACE, HELD, SPENT, GRIP, UP, DOWN, LIMIT, PULL = range(8)
+NODE_ROWS = 6
 TOLERANCE = 0.5  # N
 
 
@@ -64,7 +66,8 @@ def imbalance(x: Floats, start: Floats, elements: Floats, g: Floats, control: Fl
     for i in range(n):
         radius = 0.5 * elements[i, CONTACT_OD]
         move = x[i] - start[PLACE, i]
-        friction[i], grip = slider(move, start[HELD, i], start[SPENT, i], start[LIMIT, i], radius, control)
+        limits = (start[LIMIT, i], start[UP, i], start[DOWN, i])
+        friction[i], grip = slider(move, start[HELD, i], start[SPENT, i], limits, radius, control)
         below = tension[i - 1] if i > 0 else -bit
         right[i] = below - tension[i] + start[PULL, i] - friction[i]
         diagonal[i] = slope[i] + grip + (slope[i - 1] if i > 0 else bit_slope)
@@ -104,7 +107,7 @@ def equilibrium(x: Floats, start: Floats, elements: Floats, g: Floats, control: 
     """
     n = elements.shape[0]
     tension, _ = tensions(x, elements, g)
-    start[LIMIT] = friction_limits(tension, g, elements)
+    start[LIMIT] = friction_limits(tension, g, elements, start[GRIP])
     friction = start[HELD].copy()
     move = np.zeros(n + 1)
     worst, bit, count, calm = 0.0, 0.0, 0, 0
@@ -114,7 +117,7 @@ def equilibrium(x: Floats, start: Floats, elements: Floats, g: Floats, control: 
         worst = np.abs(right).max()
         if worst < TOLERANCE:
             calm += 1
-            fresh = friction_limits(tension, g, elements)
+            fresh = friction_limits(tension, g, elements, start[GRIP])
             shift = np.abs(fresh - start[LIMIT]).max()
             if shift < TOLERANCE or calm > 25:
                 worst = max(worst, shift)
@@ -126,7 +129,7 @@ def equilibrium(x: Floats, start: Floats, elements: Floats, g: Floats, control: 
         if it < 14:
             x += move
             tension, _ = tensions(x, elements, g)
-            start[LIMIT] = friction_limits(tension, g, elements)
+            start[LIMIT] = friction_limits(tension, g, elements, start[GRIP])
         else:
             x += careful_share(move, x, start, elements, g, control) * move
     hook = tension[n - 1] + start[PULL, n]
@@ -161,15 +164,15 @@ def relatch(tension: Floats, g: Floats, elements: Floats, fresh: Bools) -> int:
 def step(nodes: Floats, shapes: Ints, elements: Floats, table: Floats, control: Floats) -> tuple:
     """One time step, in place.
 
-    `nodes` has a row each for positions, forces held by the sliders and the part of them spent on torsion;
+    `nodes` has the first six rows named at the top of this module;
     `shapes` is 0 straight, 1 sine, 2 helix, by element.
     """
     n = elements.shape[0]
     x = nodes[PLACE]
     g = geometry(x, elements, table, control[MD_FIRST], control[MD_STEP])
     g[:, E_SHAPE] = shapes
-    start = np.zeros((5, n + 1))
-    start[:3] = nodes
+    start = np.zeros((8, n + 1))
+    start[:NODE_ROWS] = nodes
     for j in range(n):
         half = 0.5 * g[j, E_WEIGHT] * g[j, E_COS]
         start[PULL, j] += half

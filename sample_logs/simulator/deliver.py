@@ -17,7 +17,8 @@ METRIC = {
     "wob": ("WOBA", "kN", 1e3, 1), "torque": ("TQA", "kN.m", 1e3, 2), "rpm": ("RPMA", "rpm", 1.0, 0),
     "standpipe_pressure": ("SPPA", "bar", 1e5, 1), "flow_in": ("MFIA", "L/min", 1 / 6e4, 0),
     "rop": ("ROPA", "m/h", 1 / 3600.0, 1), "differential_pressure": ("DIFP", "bar", 1e5, 1),
-    "mud_density": ("MDIA", "g/cm3", 1e3, 3),
+    "mud_density": ("MDIA", "g/cm3", 1e3, 3), "flow_out": ("MFOA", "L/min", 1 / 6e4, 0),
+    "toolface": ("GTF", "deg", 0.017453293, 0),
 }  # fmt: skip
 FIELD = {
     "bit_depth": ("BITD", "ft", 0.3048, 2), "hole_depth": ("HDTH", "ft", 0.3048, 2),
@@ -26,6 +27,7 @@ FIELD = {
     "rpm": ("SRPM", "rpm", 1.0, 0), "standpipe_pressure": ("SPPA", "psi", 6894.757, 0),
     "flow_in": ("TFLO", "gpm", 6.30902e-5, 1), "rop": ("ROP", "ft/h", 0.3048 / 3600.0, 1),
     "differential_pressure": ("DIFF", "psi", 6894.757, 0), "mud_density": ("MDI", "ppg", 119.826427, 2),
+    "flow_out": ("FLOWOUT", "gpm", 6.30902e-5, 1), "toolface": ("GTF", "deg", 0.017453293, 0),
 }  # fmt: skip
 
 

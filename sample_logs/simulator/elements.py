@@ -22,13 +22,15 @@ T_NORTH, T_EAST, T_DOWN, DIAMETER, MU = range(5)
 # entries of the control vector
 (
     TOP, DT, TURN_RATE, BOTTOM, DRILL_RATE, DRILL_EXPONENT, ROCK_STIFFNESS, UNTWIST, MD_FIRST, MD_STEP,
-) = range(10)  # fmt: skip
+    SLIDER_STIFFNESS,
+) = range(11)  # fmt: skip
 # entries of the result vector
 BIT_LOAD, TOP_TENSION, NEW_BOTTOM, FRICTION_TORQUE, ITERATIONS, RESIDUAL = range(6)
 # columns of the geometry of one step, by element
 D_NORTH, D_EAST, D_DOWN, P_NORTH, P_EAST, P_DOWN, E_MU, E_CLEAR, E_COS, E_WEIGHT, E_SHAPE = range(11)
 
-SLIDER_STIFFNESS = 1.5e7  # N/m: a node gives about 0.1 mm before it slips
+USUAL_SLIDER_STIFFNESS = 1.5e7  # N/m: a node gives about 0.1 mm before it slips
+PLOUGH_SPEED = 0.005  # m/s: solids in the way of a turning string resist fully from about this speed on
 REFERENCE_LOAD = 1.0e5  # N: bit load at which the drill rate is quoted
 MIN_CLEARANCE = 0.002  # m: less than this is a support, not a place that can buckle
 ROOT2 = math.sqrt(2.0)
@@ -168,8 +170,11 @@ def tensions(x: Floats, elements: Floats, g: Floats) -> tuple[Floats, Floats]:
 
 
 @njit(cache=True)
-def friction_limits(tension: Floats, g: Floats, elements: Floats) -> Floats:
-    """Largest friction force at every node: half of each neighbour's contact times its friction."""
+def friction_limits(tension: Floats, g: Floats, elements: Floats, grip: Floats) -> Floats:
+    """Largest friction force at every node: half of each neighbour's contact times its friction.
+
+    `grip` is what a node holds more than that, as a share of it.
+    """
     n = elements.shape[0]
     limit = np.zeros(n + 1)
     for j in range(n):
@@ -179,26 +184,38 @@ def friction_limits(tension: Floats, g: Floats, elements: Floats) -> Floats:
         half = 0.5 * g[j, E_MU] * normal
         limit[j] += half
         limit[j + 1] += half
-    return limit
+    return limit * (1.0 + grip)
 
 
 @njit(cache=True)
 def slider(
-    move: float, s_old: float, spent: float, limit: float, radius: float, control: Floats
+    move: float, s_old: float, spent: float, limits: tuple, radius: float, control: Floats
 ) -> tuple[float, float]:
-    """Friction force of one node (positive: holds it from going down) and its slope with position."""
+    """Friction force of one node (positive: holds it from going down) and its slope with position.
+
+    `limits` holds the contact's friction, and what else is in the way of going up and of going down: turning
+    takes the first aside, but not the others.
+    """
+    limit, up, down = limits
     sweep = control[TURN_RATE] * radius
     if sweep > 1e-6:
         v = move / control[DT]
         speed = math.sqrt(v * v + sweep * sweep)
-        return limit * v / speed, limit * sweep * sweep / (speed**3 * control[DT]) + 1.0
+        force, slope = limit * v / speed, limit * sweep * sweep / (speed**3 * control[DT]) + 1.0
+        block = down if v > 0.0 else up
+        if block > 0.0:
+            pace = math.sqrt(v * v + PLOUGH_SPEED * PLOUGH_SPEED)
+            force += block * v / pace
+            slope += block * PLOUGH_SPEED * PLOUGH_SPEED / (pace**3 * control[DT])
+        return force, slope
     cap = math.sqrt(max(limit * limit - spent * spent, 0.0))
-    trial = s_old + SLIDER_STIFFNESS * move
-    if trial > cap:
-        return cap, 0.0
-    if trial < -cap:
-        return -cap, 0.0
-    return trial, SLIDER_STIFFNESS
+    stiff = control[SLIDER_STIFFNESS]
+    trial = s_old + stiff * move
+    if trial > cap + down:
+        return cap + down, 0.0
+    if trial < -cap - up:
+        return -cap - up, 0.0
+    return trial, stiff
 
 
 @njit(cache=True)

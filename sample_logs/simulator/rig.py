@@ -53,7 +53,7 @@ class Rig:
         self.length = self.bit_depth + self.height
         self.elements = build_elements(self.settings, self.length)
         n = len(self.elements)
-        self.nodes = np.zeros((3, n + 1))
+        self.nodes = np.zeros((core.NODE_ROWS, n + 1))
         self.latched = np.zeros(n, dtype=np.int64)
         planted = self.settings["planted"]
         self.keep = planted.get("trapped_torque", 0.0)
@@ -93,7 +93,7 @@ class Rig:
     def control(self) -> Floats:
         """Control vector of the core for the present state."""
         planted = self.settings["planted"]
-        c = np.empty(10)
+        c = np.empty(11)
         c[el.TOP] = self.x[-1]
         c[el.DT] = self.dt
         c[el.TURN_RATE] = self.rpm * 2.0 * math.pi / 60.0
@@ -105,6 +105,7 @@ class Rig:
         c[el.UNTWIST] = planted.get("untwist_m", 0.3)
         c[el.MD_FIRST] = FIRST
         c[el.MD_STEP] = STEP
+        c[el.SLIDER_STIFFNESS] = planted.get("slider_stiffness", el.USUAL_SLIDER_STIFFNESS)
         return c
 
     def formation(self) -> float:
