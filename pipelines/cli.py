@@ -33,12 +33,19 @@ class Command:
 
 def _incident_arguments(parser: argparse.ArgumentParser) -> None:
     parser.add_argument("case", metavar="CASE.toml", help="the case file of the run")
+    parser.add_argument(
+        "--also",
+        action="append",
+        choices=("las", "figures"),
+        default=[],
+        help="write besides: the reconstructed channels as LAS 2.0, or each figure as SVG and PNG",
+    )
 
 
 def _incident(arguments: argparse.Namespace) -> int:
     from pipelines import incident  # heavy: loaded only when the job runs
 
-    result = incident.run(arguments.case, arguments.out, arguments.units, arguments.quiet)
+    result = incident.run(arguments.case, arguments.out, arguments.units, arguments.quiet, arguments.also)
     if not arguments.quiet:
         for remark in result.unused:
             _say(remark)

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Collection, Mapping
 from dataclasses import dataclass
 from pathlib import Path
 from typing import TYPE_CHECKING
@@ -46,6 +46,7 @@ def run(
     out: Path | str | None = None,
     units: str = "metric",
     quiet: bool = False,
+    also: Collection[str] = (),
 ) -> IncidentResult:
     """Read a case, reconstruct its loads, find its episodes, and write report and exports.
 
@@ -59,6 +60,8 @@ def run(
         "metric" or "field": what the report shows. Exports keep the contract's units.
     quiet : bool
         Show no progress.
+    also : collection of str
+        "las" for the channels as LAS 2.0, "figures" for each figure as SVG and PNG.
 
     Returns
     -------
@@ -86,6 +89,6 @@ def run(
     check_target(folder)
     findings = analysis.analyse(case, progress, units)
     with whole_folder(folder) as fresh:
-        results.write(findings, fresh, units, progress)
+        results.write(findings, fresh, units, progress, also)
     said = results.lines(findings, folder, units)
     return IncidentResult(findings, folder, progress.timings, said, unused_settings(case))

@@ -16,7 +16,12 @@ from pathlib import Path
 from forensics.errors import InputError
 
 MARK = "summary.json"
-RESULTS = frozenset({MARK, "report.html", "report.pdf", "episodes.csv", "history.parquet", "friction.json"})
+RESULTS = frozenset(
+    {
+        *(MARK, "report.html", "report.pdf", "episodes.csv", "history.parquet", "friction.json"),
+        *("history.las", "figures"),
+    }
+)
 # What a folder of this program may hold beside, or without, the results of the main job.
 PAGES = frozenset({"inspect.html", "calibration.json", "excerpt.txt"})
 

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections import Counter
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Collection, Mapping
 from pathlib import Path
 
 import numpy as np
@@ -13,6 +13,7 @@ from forensics.episodes.groups import is_routine
 from forensics.exports.episodes import write_episodes
 from forensics.exports.friction import write_friction
 from forensics.exports.history import write_history
+from forensics.exports.las import write_las
 from forensics.exports.stamps import stamp
 from forensics.exports.summary import write_summary
 from forensics.findings import Findings
@@ -28,7 +29,13 @@ EXPORTS: Mapping[str, Callable[[Findings, Path], None]] = {
 }
 
 
-def write(findings: Findings, folder: Path, system: str, progress: Progress) -> None:
+# What is written only when it is asked for: the same channels as LAS, the figures as files.
+EXTRAS = ("las", "figures")
+
+
+def write(
+    findings: Findings, folder: Path, system: str, progress: Progress, also: Collection[str] = ()
+) -> None:
     """Write the report and every export into a folder.
 
     Parameters
@@ -41,14 +48,25 @@ def write(findings: Findings, folder: Path, system: str, progress: Progress) -> 
         "metric" or "field": what the report shows.
     progress : Progress
         Times the stages "imports", "figures" and "exports".
+    also : collection of str
+        Of `EXTRAS`: "las" for `history.las`, "figures" for each figure as SVG and PNG.
     """
     with progress.loading("loading the report"):
-        from forensics.report.render import render
+        from forensics.report.describe import describe
+        from forensics.report.render import render_report
     with progress.stage("figures", "drawing the report"):
-        (folder / "report.html").write_text(render(findings, system), encoding="utf-8", newline="\n")
+        report = describe(findings, system)
+        (folder / "report.html").write_text(render_report(report), encoding="utf-8", newline="\n")
     with progress.stage("exports", "writing the exports"):
         for name, export in EXPORTS.items():
             export(findings, folder / name)
+        if "las" in also:
+            write_las(findings, folder / "history.las")
+        if "figures" in also:
+            from forensics.report.figure_files import write_figures
+
+            (folder / "figures").mkdir()
+            write_figures(report, folder / "figures")
 
 
 def lines(findings: Findings, folder: Path, system: str = "metric") -> tuple[str, ...]:

@@ -33,7 +33,8 @@ def result(case):
 
 
 def test_writes_every_result(result):
-    assert {path.name for path in result.folder.iterdir()} == RESULTS - {"report.pdf"}
+    asked_for = {"history.las", "figures"}
+    assert {path.name for path in result.folder.iterdir()} == RESULTS - {"report.pdf"} - asked_for
 
 
 def test_summary_keeps_to_the_schema(result):
