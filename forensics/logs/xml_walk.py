@@ -82,6 +82,16 @@ def _local(tag: str) -> str:
     return tag.rpartition(":")[2]
 
 
+def _feed(collector: _Collector, chunk: bytes) -> None:
+    """Parse some bytes; the parser knows UTF-8, UTF-16, Latin-1 and encodings of one byte a letter."""
+    try:
+        collector.parser.Parse(chunk, False)
+    except (ValueError, LookupError) as error:
+        raise collector.refuse(
+            f"the XML declares an encoding that can't be read ({error}); save it as UTF-8"
+        ) from error
+
+
 def walk(path: Path, kind: type[InputError] = LogError) -> Iterator[Event]:
     """Walk an XML file once, in a memory that does not grow with it.
 
@@ -107,7 +117,7 @@ def walk(path: Path, kind: type[InputError] = LogError) -> Iterator[Event]:
     try:
         with open_bytes(path) as file:
             while chunk := file.read(CHUNK):
-                collector.parser.Parse(chunk, False)
+                _feed(collector, chunk)
                 yield from collector.events
                 collector.events.clear()
             collector.parser.Parse(b"", True)

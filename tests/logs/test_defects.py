@@ -190,6 +190,7 @@ REFUSED = {
     "no_curves.las": "no curves",
     "by_depth_only.xml": "logs by depth only",
     "broken.xml": "XML is broken",
+    "encoding_of_two_bytes.xml": "save it as UTF-8",
     "units_not_told.wits": "no value here tells the system",
     "units_contradict.wits": "contradict each other",
 }
