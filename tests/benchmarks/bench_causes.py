@@ -16,6 +16,7 @@ import json
 import math
 import sys
 from concurrent.futures import ProcessPoolExecutor
+from dataclasses import replace
 from pathlib import Path
 
 sys.path.insert(0, str(Path(__file__).parents[1]))
@@ -28,6 +29,7 @@ from forensics.episodes.catalogue import Episode
 from forensics.episodes.causes import Usual
 from forensics.episodes.causes import strengths as package
 from forensics.episodes.causes.measures import MEASURES, Subject, take_all
+from forensics.episodes.find import flag_rows
 from forensics.episodes.groups import is_routine
 from forensics.episodes.headline import gravity
 from forensics.episodes.material import Material
@@ -72,6 +74,7 @@ def measure(folder: Path) -> dict[str, object]:
         return row
     episode: Episode = max(inside, key=gravity)
     material = Material(found.log, found.rig, found.loads, None, found.calibration, found.well, found.case)
+    material = replace(material, flagged=flag_rows(material))
     values = take_all(Subject(material, Usual(material), episode))
     row |= {"episode": episode.id, "kind": episode.kind.value}
     return row | {name: f"{v:.5g}" for name, v in values.items() if math.isfinite(v)}

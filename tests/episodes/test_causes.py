@@ -149,10 +149,10 @@ def test_learned_counts_take_over_from_the_rule():
 def test_origins_tell_how_many_incidents_stand_behind():
     counts = {"buckling": [10, 20, 30, 40], "motor stall": [1, 2, 3, 4]}
     known = build({"doubt": 0.0, "measures": {"sampling": {"power": 0.5, "counts": counts}}})
-    said = {v.cause: v.evidence[0].origin for v in rank({"sampling": 9.0}, known=known)}
-    assert said["buckling"] == "simulated, 100 incidents"
-    assert said["motor stall"] == f"simulated, 10 incidents, with the {TRADE}"
-    assert said["pack-off"] == TRADE
+    said = dict(zip(Cause, known.by_measure["sampling"].origins, strict=True))
+    assert said[Cause.BUCKLING] == "simulated, 100 incidents"
+    assert said[Cause.STALL] == f"simulated, 10 incidents, with the {TRADE}"
+    assert said[Cause.PACK_OFF] == TRADE
 
 
 def test_counts_on_other_bins_are_refused():

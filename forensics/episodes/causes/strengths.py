@@ -12,7 +12,7 @@ from __future__ import annotations
 import json
 from collections.abc import Mapping
 from dataclasses import dataclass
-from functools import cache
+from functools import cache, cached_property
 from importlib import resources
 from typing import Any
 
@@ -39,6 +39,9 @@ MOST = 20.0
 #: From this many simulated incidents on the trade rule is not named as an origin.
 MANY = 50
 
+#: What speaks more weakly than this many to one is left unsaid.
+LEAST = 1.03
+
 TRADE = "trade rule, from memory"
 
 
@@ -52,13 +55,17 @@ class Strength:
     weights: Floats
     incidents: NDArray[np.int64]
 
-    def origin(self, cause: int) -> str:
-        """Say where a cause's ratios come from."""
-        count = int(self.incidents[cause])
-        if count == 0:
-            return TRADE
-        said = f"simulated, {count} incidents" if count > 1 else "simulated, 1 incident"
-        return said if count >= MANY else f"{said}, with the {TRADE}"
+    @cached_property
+    def origins(self) -> tuple[str, ...]:
+        """Where each cause's ratios come from, in words."""
+        return tuple(_origin(int(count)) for count in self.incidents)
+
+
+def _origin(count: int) -> str:
+    if count == 0:
+        return TRADE
+    said = f"simulated, {count} incidents" if count > 1 else "simulated, 1 incident"
+    return said if count >= MANY else f"{said}, with the {TRADE}"
 
 
 @dataclass(frozen=True)
@@ -98,7 +105,8 @@ def weights_of(measure: Measure, counts: Floats, power: float) -> Floats:
     """Give logs of likelihood ratios, shape (causes, bins), raised to a power and capped at `MOST` to one."""
     share = shares(measure, counts)
     ratio = np.log(share / share.mean(axis=0))
-    return np.clip(power * ratio, -np.log(MOST), np.log(MOST))
+    weights = np.clip(power * ratio, -np.log(MOST), np.log(MOST))
+    return np.where(np.abs(weights) < np.log(LEAST), 0.0, weights)
 
 
 def build(content: Mapping[str, Any]) -> Strengths:

@@ -7,7 +7,10 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import NDArray
 
+from forensics.episodes.catalogue import Kind
+from forensics.episodes.find import flag_rows, span_rule
 from forensics.episodes.material import NOISE_MULTIPLE, Material
+from forensics.episodes.spans import find_spans
 from forensics.rig.view import Activity
 
 Floats = NDArray[np.float64]
@@ -20,6 +23,9 @@ FLOW_POWER = 1.8
 
 #: Rows that a slope of differential pressure against weight is read over.
 SLOPE_ROWS = 60
+
+#: Channels that tell causes apart, besides time, bit depth and hookload.
+WANTED = ("block_position", "rpm", "torque", "standpipe_pressure", "flow_in", "differential_pressure")
 
 FEWEST = 5
 
@@ -62,6 +68,70 @@ class Usual:
         with np.errstate(invalid="ignore", divide="ignore"):
             steady = material.rig.pumping & (share > 0.7) & (share < 1.3)
             return np.where(steady, pressure / share**FLOW_POWER, np.nan)
+
+    @cached_property
+    def drag(self) -> Floats:
+        """Drag beyond the model over its threshold, shape (n,)."""
+        return self.material.drag / self.material.drag_threshold
+
+    @cached_property
+    def torque(self) -> Floats:
+        """Torque beyond the model over its threshold, shape (n,)."""
+        return self.material.loads.torque_residual / self.material.torque_threshold
+
+    @cached_property
+    def dragging(self) -> float:
+        """Part of the run's readings going up or down that are beyond the threshold; NaN for few."""
+        known = np.isfinite(self.drag) & (self.material.friction_sign != 0)
+        return float((self.drag[known] > 1.0).mean()) if known.sum() >= SLOPE_ROWS else float("nan")
+
+    @cached_property
+    def turning(self) -> float:
+        """Median hookload less model while turning off bottom, over the threshold; NaN for few."""
+        m = self.material
+        turned = m.rig.turning & np.isfinite(m.loads.drag_residual)
+        if turned.sum() < SLOPE_ROWS:
+            return float("nan")
+        return float(np.median(m.loads.drag_residual[turned] / m.drag_threshold[turned]))
+
+    @cached_property
+    def returns(self) -> tuple[Floats, float]:
+        """Flow out over flow in, shape (n,), NaN where the pumps are off; and its median."""
+        out, into = self.material.log.get("flow_out"), self.material.log.get("flow_in")
+        if out is None or into is None:
+            return np.full(len(self.material.time), np.nan), float("nan")
+        with np.errstate(divide="ignore", invalid="ignore"):
+            share = np.where(self.material.rig.pumping & (into > 0.0), out / into, np.nan)
+        known = share[np.isfinite(share)]
+        return share, float(np.median(known)) if len(known) else float("nan")
+
+    @cached_property
+    def by_depth(self) -> tuple[NDArray[np.int64], Floats]:
+        """Rows in the order of bit depth, and those depths [m]; rows without one come last."""
+        order = np.argsort(self.material.bit, kind="stable")
+        return order, self.material.bit[order]
+
+    def rows_at(self, depth: float, within: float) -> NDArray[np.int64]:
+        """Rows, in order of time, with the bit within so many metres of a depth."""
+        order, depths = self.by_depth
+        known = int(np.isfinite(depths).sum())
+        first, stop = np.searchsorted(depths[:known], [depth - within, depth + within]).tolist()
+        return np.sort(order[first:stop])
+
+    @cached_property
+    def lacking(self) -> int:
+        """How many of the wanted channels the log lacks."""
+        return sum(self.material.log.get(name) is None for name in WANTED)
+
+    @cached_property
+    def places(self) -> dict[Kind, Floats]:
+        """Bit depth of every span in which a kind's rule held [m]."""
+        flags, _ = flag_rows(self.material)
+        found = {}
+        for kind, flagged in flags.items():
+            spans, _ = find_spans(flagged, self.material.time, span_rule(self.material, kind))
+            found[kind] = np.array([np.median(self.material.bit[span.rows]) for span in spans])
+        return found
 
     @cached_property
     def drilling(self) -> NDArray[np.bool_]:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Mapping
 
 import numpy as np
@@ -70,21 +71,19 @@ def rank(
     """
     known = known or strengths()
     evidence: dict[Cause, list[Evidence]] = {cause: [] for cause in Cause}
+    scores = np.zeros(len(Cause))
     for measure in MEASURES:
         value = values.get(measure.name, float("nan"))
-        if not np.isfinite(value):
+        if not math.isfinite(value):
             continue
         strength = known.by_measure[measure.name]
-        said = strength.weights[:, measure.bin_of(value)]
-        text = measure.say(value, system)
-        for k, cause in enumerate(Cause):
-            evidence[cause].append(
-                Evidence(
-                    measure.name, text, float(said[k]), strength.origin(k),
-                    measure.scaled(value), measure.unit(), measure.figure,
-                )
-            )  # fmt: skip
-    scores = np.array([sum(e.weight for e in evidence[cause]) for cause in Cause])
+        weights = strength.weights[:, measure.bin_of(value)]
+        scores += weights
+        text, scaled, unit = measure.say(value, system), measure.scaled(value), measure.unit()
+        for cause, weight, origin in zip(Cause, weights.tolist(), strength.origins, strict=True):
+            if weight:
+                said = Evidence(measure.name, text, weight, origin, scaled, unit, measure.figure)
+                evidence[cause].append(said)
     chances = np.exp(scores - scores.max())
     chances = (1.0 - known.doubt) * chances / chances.sum() + known.doubt / len(Cause)
     views = [

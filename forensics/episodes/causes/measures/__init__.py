@@ -8,13 +8,15 @@ from __future__ import annotations
 
 import numpy as np
 
-from forensics.episodes.causes.measures import bottom, drag, loads, log, motion, place, sensor
+from forensics.episodes.causes.measures import around, bottom, drag, loads, log, motion, place, sensor
 from forensics.episodes.causes.measures.base import Measure, Subject
 
 __all__ = ["MEASURES", "Measure", "Subject", "take_all"]
 
 _TAKEN = tuple(
-    measure for module in (loads, drag, motion, bottom, place, sensor, log) for measure in module.MEASURES
+    measure
+    for module in (loads, drag, around, motion, bottom, place, sensor, log)
+    for measure in module.MEASURES
 )
 
 #: Every measurement; the last counts the others that the log can't show.

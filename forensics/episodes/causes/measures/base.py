@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import bisect
 from collections.abc import Callable
 from dataclasses import dataclass
 from functools import cached_property
@@ -21,6 +22,9 @@ NAN = float("nan")
 
 #: How far around an episode its readings still belong to it [s].
 NEAR = 900.0
+
+#: A run's usual pressure is taken over this much time on both sides [s].
+AROUND = 6.0 * 3600.0
 
 #: Fewer readings than this make no measurement.
 FEWEST = 5
@@ -56,6 +60,15 @@ class Subject:
         """Bit depth at the episode's peak, or usual in it where the log has none there [m]."""
         here = float(self.material.bit[self.episode.peak])
         return here if np.isfinite(here) else middle(self.material.bit[self.rows], 1)
+
+    @cached_property
+    def usual_pressure(self) -> float:
+        """Median pressure at usual flow in the hours around, on or off bottom as at the peak [Pa]."""
+        m, episode = self.material, self.episode
+        around = m.rows_between(episode.start - AROUND, episode.end + AROUND)
+        rows = np.r_[around.start : episode.first, episode.last + 1 : around.stop]
+        rows = rows[m.rig.on_bottom[rows] == m.rig.on_bottom[episode.peak]]
+        return middle(self.usual.pressure[rows], 60)
 
     @cached_property
     def sign(self) -> int:
@@ -101,7 +114,7 @@ class Measure:
 
     def bin_of(self, value: float) -> int:
         """Bin a value lies in; a value on an edge belongs above it."""
-        return int(np.searchsorted(self.edges, value, side="right"))
+        return bisect.bisect_right(self.edges, value)
 
     def unit(self, system: str = "metric") -> str:
         """Label of the unit the value is shown in; empty for plain numbers."""

@@ -7,23 +7,11 @@ import numpy as np
 from forensics.episodes.causes.measures.base import FEWEST, NAN, Measure, Subject, middle
 from forensics.episodes.causes.usual import slope
 
-#: A run's usual pressure is taken over this much time on both sides [s].
-AROUND = 6.0 * 3600.0
-
-
-def _usual_pressure(s: Subject) -> float:
-    """Median pressure at usual flow off bottom in the hours around, the episode left out [Pa]."""
-    m = s.material
-    around = m.rows_between(s.episode.start - AROUND, s.episode.end + AROUND)
-    values = np.where(m.rig.on_bottom == m.rig.on_bottom[s.episode.peak], s.usual.pressure, np.nan)
-    values[s.rows] = np.nan
-    return middle(values[around], 60)
-
 
 def pressure_rise(s: Subject) -> float:
     """Median pressure at like flow over the hours around, less one."""
     here = middle(s.usual.pressure[s.rows])
-    return here / _usual_pressure(s) - 1.0
+    return here / s.usual_pressure - 1.0
 
 
 def pressure_peak(s: Subject) -> float:
@@ -34,7 +22,7 @@ def pressure_peak(s: Subject) -> float:
     here = here[np.isfinite(here)]
     if len(here) < 2 * FEWEST:
         return NAN
-    return float(np.sort(here)[-FEWEST]) / _usual_pressure(s) - 1.0
+    return float(np.sort(here)[-FEWEST]) / s.usual_pressure - 1.0
 
 
 def differential(s: Subject) -> float:

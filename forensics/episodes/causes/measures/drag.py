@@ -42,6 +42,13 @@ def turning(s: Subject) -> float:
     return middle(np.where(s.material.rig.turning[s.near], _residual(s), np.nan))
 
 
+def peak_turning(s: Subject) -> float:
+    """Hookload less model over the episode's rows that turn, over the threshold, signed."""
+    m = s.material
+    share = m.loads.drag_residual[s.rows] / m.drag_threshold[s.rows]
+    return middle(np.where(m.rig.turning[s.rows], share, np.nan))
+
+
 def shift(s: Subject) -> float:
     """Part of the hookload's residual that is alike going up and going down, over the threshold."""
     up, down = going_up(s), -going_down(s)
@@ -55,46 +62,48 @@ def torque(s: Subject) -> float:
     return middle(s.material.loads.torque_residual[s.near] / s.material.torque_threshold[s.near])
 
 
-def _pass_values(s: Subject) -> Floats:
-    """Drag in the episode's direction (or torque) over its threshold, shape (n,)."""
-    m = s.material
+def _passes(s: Subject) -> tuple[Floats, Floats]:
+    """Drag in the episode's direction (or torque) over its threshold at its depth, and when [s]."""
+    rows = s.usual.rows_at(s.place, SAME_DEPTH)
     if s.episode.kind is Kind.TORQUE:
-        return m.loads.torque_residual / m.torque_threshold
-    values = m.drag / m.drag_threshold
-    return np.where(m.friction_sign == s.sign, values, np.nan) if s.sign else values
+        values = s.usual.torque[rows]
+    else:
+        rows = rows[s.material.friction_sign[rows] == s.sign] if s.sign else rows
+        values = s.usual.drag[rows]
+    known = np.isfinite(values)
+    return values[known], s.material.time[rows][known]
 
 
 def elsewhen(s: Subject) -> float:
     """Drag (or torque) at the same depth on the easiest of the other passes, over the threshold."""
-    values, time = _pass_values(s), s.material.time
-    same = (np.abs(s.material.bit - s.place) < SAME_DEPTH) & np.isfinite(values)
+    values, time = _passes(s)
     other = (time < s.episode.start - NEW_PASS) | (time > s.episode.end + NEW_PASS)
-    rows = np.flatnonzero(same & other)
-    if len(rows) == 0:
+    values, time = values[other], time[other]
+    if len(values) == 0:
         return NAN
-    passes = np.split(rows, np.flatnonzero(np.diff(time[rows]) > NEW_PASS) + 1)
-    easiest = [middle(values[one]) for one in passes]
+    easiest = [middle(one) for one in np.split(values, np.flatnonzero(np.diff(time) > NEW_PASS) + 1)]
     return float(np.nanmin(easiest)) if np.isfinite(easiest).any() else NAN
 
 
 def cleaned(s: Subject) -> float:
     """Change of drag to the next pass of the depth, where the hole was circulated in between."""
-    values, time = _pass_values(s), s.material.time
-    same = (np.abs(s.material.bit - s.place) < SAME_DEPTH) & np.isfinite(values)
-    later = np.flatnonzero(same & (time > s.episode.end + NEW_PASS))
-    if len(later) < FEWEST:
+    values, time = _passes(s)
+    later = time > s.episode.end + NEW_PASS
+    if later.sum() < FEWEST:
         return NAN
-    between = slice(s.episode.last, int(later[0]))
-    if float(s.material.rig.pumping[between].sum() * s.material.log.interval) < 1800.0:
+    m = s.material
+    between = slice(s.episode.last, int(np.searchsorted(m.time, time[later][0])))
+    if float(m.rig.pumping[between].sum() * m.log.interval) < 1800.0:
         return NAN
-    return middle(values[later]) - middle(values[s.rows], 1)
+    here = (time >= s.episode.start) & (time <= s.episode.end)
+    return middle(values[later]) - middle(values[here], 1)
 
 
 def growth(s: Subject) -> float:
     """Rank correlation of drag with time, over the six hours up to the episode's end."""
     m = s.material
     rows = m.rows_between(s.episode.end - BEFORE, s.episode.end)
-    values = m.drag[rows] / m.drag_threshold[rows]
+    values = s.usual.drag[rows]
     at = np.flatnonzero((m.friction_sign[rows] != 0) & np.isfinite(values))
     if len(at) < 60 or m.time[rows][at[-1]] - m.time[rows][at[0]] < 1800.0:
         return NAN
@@ -109,7 +118,7 @@ def _told(s: Subject) -> tuple[Floats, Floats, slice]:
     """Share of the threshold and bit depth of rows moving the episode's way, and the span of like drag."""
     m = s.material
     near = m.rows_between(s.episode.start - STRETCH, s.episode.end + STRETCH)
-    share = m.drag[near] / m.drag_threshold[near]
+    share = s.usual.drag[near]
     told = np.flatnonzero((m.friction_sign[near] == s.sign) & np.isfinite(share))
     at = int(np.searchsorted(told, s.episode.peak - near.start))
     share, bit = share[told], m.bit[near][told]
@@ -148,16 +157,12 @@ def _lasting(flags: NDArray[np.bool_], bit: Floats) -> NDArray[np.int64]:
 
 def run_share(s: Subject) -> float:
     """Part of the run's readings going up or down that are beyond the threshold."""
-    m = s.material
-    share = m.drag / m.drag_threshold
-    known = np.isfinite(share) & (m.friction_sign != 0)
-    return float((share[known] > 1.0).mean()) if known.sum() >= 60 else NAN
+    return s.usual.dragging
 
 
 def run_turning(s: Subject) -> float:
     """Median hookload less model while turning off bottom in the whole run, over the threshold, signed."""
-    m = s.material
-    return middle(np.where(m.rig.turning, m.loads.drag_residual / m.drag_threshold, np.nan), 30)
+    return s.usual.turning
 
 
 GRADES = (0.2, 0.5, 1.0, 2.0)
@@ -169,6 +174,12 @@ MEASURES = (
     ),
     Measure(
         "rotating weight", turning, (-0.6, -0.25, 0.25, 0.6), "rotating weight less model: {}", "residuals"
+    ),
+    Measure(
+        "turning within the episode",
+        peak_turning,
+        (-1.0, -0.4, 0.4, 1.0),
+        "hookload less model while turning in it: {}",
     ),
     Measure(
         "same shift both ways", shift, (-0.6, -0.2, 0.2, 0.6), "up and down shifted alike by {}", "residuals"

@@ -6,13 +6,10 @@ import numpy as np
 
 from forensics.episodes.causes.measures.base import NAN, Measure, Subject
 
-#: Channels that tell causes apart, besides time, bit depth and hookload.
-WANTED = ("block_position", "rpm", "torque", "standpipe_pressure", "flow_in", "differential_pressure")
-
 
 def missing(s: Subject) -> float:
     """How many of the wanted channels the log lacks."""
-    return float(sum(s.material.log.get(name) is None for name in WANTED))
+    return float(s.usual.lacking)
 
 
 def interval(s: Subject) -> float:

@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 
 from forensics.episodes.catalogue import Kind
-from forensics.episodes.causes.measures.base import FEWEST, NAN, Measure, Subject, middle, named
+from forensics.episodes.causes.measures.base import FEWEST, NAN, Measure, Subject, named
 from forensics.rig.view import Activity
 
 DOING = tuple(a.word.replace("_", " ") for a in Activity)
@@ -113,15 +113,10 @@ def breakover(s: Subject) -> float:
 
 def tries(s: Subject) -> float:
     """How many times the lockup or drag rule held with the bit at this depth."""
-    from forensics.episodes.find import flag_rows, span_rule
-    from forensics.episodes.spans import find_spans
-
-    m = s.material
-    flags, _ = flag_rows(m)
     kind = s.episode.kind if s.episode.kind in (Kind.DRAG, Kind.TORQUE) else Kind.LOCKUP
-    spans, _ = find_spans(flags[kind], m.time, span_rule(m, kind))
-    places = np.array([middle(m.bit[x.rows], 1) for x in spans])
-    return float((np.abs(places - s.place) < SAME_PLACE).sum()) if np.isfinite(s.place) else NAN
+    if not np.isfinite(s.place):
+        return NAN
+    return float((np.abs(s.usual.places[kind] - s.place) < SAME_PLACE).sum())
 
 
 MEASURES = (

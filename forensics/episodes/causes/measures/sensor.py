@@ -5,6 +5,7 @@ from __future__ import annotations
 import numpy as np
 
 from forensics.episodes.causes.measures.base import FEWEST, NAN, Measure, Subject, middle
+from forensics.logs.table import Reason
 
 
 def slips_shift(s: Subject) -> float:
@@ -47,10 +48,14 @@ def step(s: Subject) -> float:
 
 
 def frozen(s: Subject) -> float:
-    """Part of the samples around the episode that repeat the one before to the last digit."""
-    hook = s.material.log.hookload_logged[s.near]
-    hook = hook[np.isfinite(hook)]
-    return float((np.diff(hook) == 0.0).mean()) if len(hook) >= 2 * FEWEST else NAN
+    """Part of the episode's samples that repeat the one before, or were set aside for it."""
+    log = s.material.log
+    hook = log.hookload_logged[s.rows]
+    same = np.diff(hook) == 0.0
+    aside = log.reason[s.near] == Reason.FROZEN
+    if len(hook) < 2 * FEWEST:
+        return NAN
+    return float(max(same.mean(), aside.mean()))
 
 
 MEASURES = (
@@ -79,7 +84,7 @@ MEASURES = (
         "frozen reading",
         frozen,
         (0.02, 0.2, 0.5),
-        "{} of the readings around it repeat the one before",
+        "{} of the readings repeat the one before",
         "strip",
         "share",
     ),
