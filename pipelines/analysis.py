@@ -198,7 +198,7 @@ def _placed(episode: Episode, made: Replay, material: Material) -> Episode:
     row, md = episode.peak, episode.peak_md
     at = place_numbers(made, row, md, episode.peak_compression.value)
     episode = replace(episode, critical_load=critical_load(made, row, md))
-    return with_onsets(episode, at, material.case.criteria.torque_effect, material.system)
+    return with_onsets(episode, at, material.case.criteria, material.system)
 
 
 def _remarks(material: Material) -> tuple[str, ...]:

@@ -156,3 +156,15 @@ def weigh_with_slopes(
         if min(m, tension) < -1e8:
             return math.nan, [math.nan] * (last + 1)
     return tension, by
+
+
+def wound_rate(force: float, ei: float, torque: float) -> float:
+    """Turn rate of a weightless helix under torque: ``F = 2 EI k^2 - 3/2 M k`` [rad/m]."""
+    part = 1.5 * torque
+    return (part + math.sqrt(part**2 + 8 * ei * force)) / (4 * ei)
+
+
+def wound_contact(force: float, ei: float, clearance: float, torque: float) -> float:
+    """Wall force per length of a weightless helix under torque, ``r (F k^2 + M k^3 - EI k^4)`` [N/m]."""
+    rate = wound_rate(force, ei, torque)
+    return clearance * rate**2 * (force + torque * rate - ei * rate**2)

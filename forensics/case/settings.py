@@ -67,8 +67,8 @@ class FrictionSettings:
 class CriteriaSettings:
     """`[criteria]`: thresholds and episode rules [s].
 
-    `torque_effect` lowers the published helical onsets that an episode is held against by what torque does;
-    the replay's own thresholds leave it out, as it is a few per cent of them and sliding pipe has hardly any.
+    `torque_effect` lowers the helical onset by what torque at the place does and presses the helix on the
+    wall, in the replay and in the published onsets that an episode is held against.
     `tool_joint_effect` bends jointed pipe more than the hole is curved, as its joints make it.
     """
 

@@ -6,14 +6,15 @@ from dataclasses import replace
 
 import numpy as np
 
+from forensics.case import CriteriaSettings
 from forensics.episodes.catalogue import Episode, State
-from forensics.mechanics.band import band_words, onset_loads, onsets_passed, validity_words
+from forensics.mechanics.band import ORDER, band_words, onset_loads, onsets_passed, validity_words
 from forensics.mechanics.torque import onset_drop
 from forensics.replay.places import PlaceNumbers
 
 
 def with_onsets(
-    episode: Episode, at: PlaceNumbers | None, torque_effect: bool = False, system: str = "metric"
+    episode: Episode, at: PlaceNumbers | None, criteria: CriteriaSettings, system: str = "metric"
 ) -> Episode:
     """Say of an episode how far past the published helical onsets its compression was.
 
@@ -23,8 +24,8 @@ def with_onsets(
         Of a kind that presses the string.
     at : PlaceNumbers or None
         Its peak's place at its compression; None where there is none.
-    torque_effect : bool
-        Whether torque lowers the onsets.
+    criteria : CriteriaSettings
+        Which onset the replay judged by, and whether torque lowers the onsets.
     system : str
         "metric" or "field": units of its sentences.
 
@@ -43,8 +44,11 @@ def with_onsets(
     if at is None or not load.value > 0.0:
         return episode
     place = at.place
-    drop = float(onset_drop(place.stiffness, at.contact, place.clearance, at.torque))
-    levels = onset_loads(place.stiffness, at.local, at.w_cos, np.nan_to_num(drop) * float(torque_effect))
+    levels = onset_loads(place.stiffness, at.local, at.w_cos)
+    drops = onset_drop(levels, place.stiffness, at.torque)
+    drop = float(drops[ORDER.index(criteria.helical_onset)])
+    if criteria.torque_effect:
+        levels = levels - np.nan_to_num(drops)
     ends = [end if np.isfinite(end) else load.value for end in (load.low, load.high)]
     least, most = (int(onsets_passed(end, levels)) for end in ends)
     words = band_words(least, max(most, least))

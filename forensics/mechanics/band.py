@@ -23,8 +23,8 @@ ORDER = tuple(sorted(HELICAL_ONSETS, key=lambda name: HELICAL_ONSETS[name].facto
 """Names of the onsets from the lowest load to the highest."""
 
 
-def onset_loads(stiffness: ArrayLike, local: ArrayLike, w_cos: ArrayLike, drop: ArrayLike = 0.0) -> Floats:
-    """Give every published helical onset, the near-vertical term added.
+def onset_loads(stiffness: ArrayLike, local: ArrayLike, w_cos: ArrayLike) -> Floats:
+    """Give every published helical onset, the near-vertical term added; `torque.onset_drop` is left out.
 
     Parameters
     ----------
@@ -34,16 +34,13 @@ def onset_loads(stiffness: ArrayLike, local: ArrayLike, w_cos: ArrayLike, drop: 
         F_DP at the actual contact force [N].
     w_cos : array_like
         Buoyed weight per length times cos I [N/m].
-    drop : array_like
-        What torque takes off (see `torque.onset_drop`) [N].
 
     Returns
     -------
     ndarray, shape (3, ...)
         In the order of `ORDER` [N].
     """
-    loads = [helical_load(stiffness, local, w_cos, HELICAL_ONSETS[name].factor) for name in ORDER]
-    return np.array(loads) - np.asarray(drop, dtype=float)
+    return np.array([helical_load(stiffness, local, w_cos, HELICAL_ONSETS[name].factor) for name in ORDER])
 
 
 def onsets_passed(load: ArrayLike, onsets: ArrayLike) -> NDArray[np.int64]:

@@ -13,8 +13,16 @@ from typing import NamedTuple
 import numpy as np
 from numba import njit
 
-from forensics.mechanics.kernels_judge import GIVE, Setting, latch
-from forensics.mechanics.kernels_march import Array, Pipe, Place, contact
+from forensics.mechanics.kernels_judge import (
+    GIVE,
+    Setting,
+    Stand,
+    latch,
+    latch_wound,
+    torque_at,
+    winding_wall,
+)
+from forensics.mechanics.kernels_march import Array, Pipe, contact
 
 FREE = 0
 ROTATING = 2
@@ -36,7 +44,7 @@ class Memory(NamedTuple):
 
 @njit(cache=True, error_model="numpy")
 def march_down(
-    setting: Setting, memory: Memory, place: Place, rub: float, tension_top: float, bounded: bool
+    setting: Setting, memory: Memory, place: Stand, rub: float, tension_top: float, bounded: bool
 ) -> int:
     """March from the rotary down; returns the lowest node reached (0: the bit).
 
@@ -60,8 +68,16 @@ def march_down(
         if middle < 0.0:
             if memory.state[j] < 2 and latch(setting, place, j, i, middle):
                 memory.state[j] = 2
+            torque = 0.0
+            if place.torque > 0.0:
+                torque = torque_at(setting, place, j, i)
+                if memory.state[j] < 2 and latch_wound(setting, place, j, i, middle, torque):
+                    memory.state[j] = 2
             if memory.state[j] == 2:
-                force += middle * middle * criteria.at[criteria.kind[j], i, GIVE]
+                give = criteria.at[criteria.kind[j], i, GIVE]
+                force += middle * middle * give
+                if place.torque > 0.0:
+                    force += winding_wall(give, pipe.ei[j], middle, torque)
         slope = -weight * hole.cos_i[i] + rub * mu[i] * force
         # nothing but the pipe above presses: without this a helix marched against its motion runs away
         tension = max(tension + slope * length, least)
@@ -75,7 +91,7 @@ def march_down(
 
 @njit(cache=True, error_model="numpy")
 def rise(
-    setting: Setting, memory: Memory, place: Place, rub: float, tension_bit: float, helices: bool
+    setting: Setting, memory: Memory, place: Stand, rub: float, tension_bit: float, helices: bool
 ) -> float:
     """March up from the bit into work space, friction summed beside; returns tension at the rotary.
 
@@ -94,7 +110,11 @@ def rise(
         middle = tension + 0.5 * length * slope
         force = contact(middle, weight, hole.kappa2[i], hole.kappa_d[i], hole.sin2[i])
         if helices and middle < 0.0 and memory.state[j] == 2:
-            force += middle * middle * criteria.at[criteria.kind[j], i, GIVE]
+            give = criteria.at[criteria.kind[j], i, GIVE]
+            force += middle * middle * give
+            if place.torque > 0.0:
+                torque = torque_at(setting, place, j, i)
+                force += winding_wall(give, pipe.ei[j], middle, torque)
         friction = rub * mu[i] * force
         slope = weight * hole.cos_i[i] - friction
         tension += slope * length
@@ -106,7 +126,7 @@ def rise(
 
 
 @njit(cache=True)
-def anchor(memory: Memory, place: Place, tension_top: float, model_top: float) -> None:
+def anchor(memory: Memory, place: Stand, tension_top: float, model_top: float) -> None:
     """Take the curve in work space, free at the bit, as the profile.
 
     What the hookload says beyond it is spread as the friction is: the whole string is taken to rub
@@ -119,7 +139,7 @@ def anchor(memory: Memory, place: Place, tension_top: float, model_top: float) -
 
 
 @njit(cache=True)
-def stretch_between(pipe: Pipe, first: Array, second: Array, place: Place) -> float:
+def stretch_between(pipe: Pipe, first: Array, second: Array, place: Stand) -> float:
     """Length by which the string differs between two tension profiles [m]."""
     total = 0.0
     for j in range(place.top + 1):
@@ -130,7 +150,7 @@ def stretch_between(pipe: Pipe, first: Array, second: Array, place: Place) -> fl
 
 @njit(cache=True, error_model="numpy")
 def bit_curve(
-    setting: Setting, memory: Memory, place: Place, rub: float, tension_bit: float, limit: float
+    setting: Setting, memory: Memory, place: Stand, rub: float, tension_bit: float, limit: float
 ) -> tuple[float, int]:
     """Stretch of the curve from `tension_bit` up to where it meets the memory, and the node it ends under.
 
@@ -154,6 +174,9 @@ def bit_curve(
         if middle < 0.0 and memory.state[j] == 2:
             spring = criteria.at[criteria.kind[j], i, GIVE]
             force += middle * middle * spring
+            if place.torque > 0.0:
+                torque = torque_at(setting, place, j, i)
+                force += winding_wall(spring, pipe.ei[j], middle, torque)
             give += 4.0 * pipe.ei[j] * spring * spring
         slope = weight * hole.cos_i[i] - rub * mu[i] * force
         tension += slope * length
@@ -171,14 +194,14 @@ def bit_curve(
 
 @njit(cache=True, error_model="numpy")
 def bit_front(
-    setting: Setting, memory: Memory, place: Place, rub: float, drilled: float
+    setting: Setting, memory: Memory, place: Stand, rub: float, drilled: float
 ) -> bool:
     """Unload the string from below by the length drilled [m].
 
     Returns whether the front reached the rotary.
     """
     low = memory.tension[0]
-    high = 0.0
+    high = -place.push
     if low >= high or drilled <= 0.0:
         return False
     most, _ = bit_curve(setting, memory, place, rub, high, drilled)

@@ -7,8 +7,8 @@ from typing import NamedTuple
 import numpy as np
 from numba import njit
 
-from forensics.mechanics.kernels_judge import Setting, local_square, next_state, thresholds
-from forensics.mechanics.kernels_march import Array, Place, place_at
+from forensics.mechanics.kernels_judge import Setting, Stand, judge, stand_at
+from forensics.mechanics.kernels_march import Array
 from forensics.mechanics.kernels_memory import (
     FREE,
     ROTATING,
@@ -42,7 +42,7 @@ class Samples(NamedTuple):
     or near bottom and pumping; `free` bit clear of bottom; `share` axial share of friction while turning,
     signed by direction; `down`, `up` local multiples of friction; `scale` of weights for mud; `step` time
     since the row before [s]; `witness` most the bit load can be by differential pressure [N], infinite where
-    that is silent.
+    that is silent; `ends`, of shape (n, 3), torque, its fall and the push at the bit, as in `Stand`.
     """
 
     bit: Array
@@ -58,6 +58,7 @@ class Samples(NamedTuple):
     scale: Array
     step: Array
     witness: Array
+    ends: Array
 
 
 class Rules(NamedTuple):
@@ -105,53 +106,11 @@ class Run(NamedTuple):
 
 
 @njit(cache=True, error_model="numpy")
-def judge(setting: Setting, run: Run, place: Place, t: int) -> None:
-    """Judge every compressed element, move its state on, and write the row's peaks."""
-    pipe, memory, found = setting.pipe, run.memory, run.found
-    chart = found.chart[found.chart_row[t]]
-    memory.visits[0] += place.top + 1
-    best, best_md, best_load, worst = 0.0, np.nan, 0.0, 0
-    top, bottom, helix_top, helix_bottom = np.nan, np.nan, np.nan, np.nan
-    for j in range(place.top + 1):
-        # the end pressed hardest: near vertical the critical load is the one at the foot of what buckles
-        tension = min(memory.tension[j], memory.tension[j + 1])
-        if tension >= 0.0:
-            memory.state[j] = 0
-            continue
-        i = max(place.first - ((pipe.node[j] + pipe.node[j + 1]) >> 1), 0)
-        end = min(pipe.x[j + 1], place.bit)
-        md = place.bit - 0.5 * (pipe.x[j] + end)
-        column = int(md / run.chart_step)
-        # the near-vertical term only raises the threshold: this ratio is the most it can be
-        most = min(best, chart[column], 1.0)
-        if tension * tension < most * most * local_square(setting, place, j, i, tension):
-            memory.state[j] = 0
-            continue
-        levels = thresholds(setting, place, j, i, tension)
-        now = next_state(memory.state[j], -tension, levels, setting.criteria.envelope)
-        memory.state[j] = now
-        ratio = -tension / levels[1]
-        if ratio > best:
-            best, best_md, best_load = ratio, md, -tension
-        if now > 0:
-            worst = max(worst, now)
-            bottom = place.bit - pipe.x[j] if np.isnan(bottom) else bottom
-            top = place.bit - end
-            if now == 2:
-                helix_bottom = place.bit - pipe.x[j] if np.isnan(helix_bottom) else helix_bottom
-                helix_top = place.bit - end
-        chart[column] = max(chart[column], ratio)
-    found.ratio[t], found.ratio_md[t], found.compression[t], found.state[t] = best, best_md, best_load, worst
-    found.span[t, 0], found.span[t, 1] = top, bottom
-    found.span[t, 2], found.span[t, 3] = helix_top, helix_bottom
-
-
-@njit(cache=True, error_model="numpy")
-def turning(setting: Setting, run: Run, place: Place, t: int) -> None:
+def turning(setting: Setting, run: Run, place: Stand, t: int) -> None:
     """Profile of a turning string: nearly frictionless, free at the bit or hung from the hookload."""
     rub = run.samples.share[t]
     if run.samples.free[t]:
-        model = rise(setting, run.memory, place, rub, 0.0, False)
+        model = rise(setting, run.memory, place, rub, -place.push, False)
         anchor(run.memory, place, model, model)
     else:
         march_down(setting, run.memory, place, rub, run.samples.top[t], False)
@@ -164,12 +123,12 @@ def friction_of(samples: Samples, t: int, sigma: float) -> float:
 
 
 @njit(cache=True, error_model="numpy")
-def whole_slide(setting: Setting, run: Run, place: Place, t: int, sigma: float) -> None:
+def whole_slide(setting: Setting, run: Run, place: Stand, t: int, sigma: float) -> None:
     """Profile of a string that slides as a whole in one direction."""
     rub = friction_of(run.samples, t, sigma)
     if run.samples.free[t]:
         top = run.samples.top[t]
-        model = rise(setting, run.memory, place, rub, 0.0, True)
+        model = rise(setting, run.memory, place, rub, -place.push, True)
         if sigma < 0.0 or run.now[MOVES] == 1.0 or model - top < run.rules.tolerance:
             anchor(run.memory, place, top, model)
             return
@@ -177,7 +136,7 @@ def whole_slide(setting: Setting, run: Run, place: Place, t: int, sigma: float) 
 
 
 @njit(cache=True, error_model="numpy")
-def all_moving(setting: Setting, run: Run, place: Place, t: int) -> bool:
+def all_moving(setting: Setting, run: Run, place: Stand, t: int) -> bool:
     """Whether a bit clear of bottom must be moving: the block has gone further than the string can stretch.
 
     A hookload well below the model's slack-off weight, or above its pick-up weight, is not enough: that
@@ -186,7 +145,7 @@ def all_moving(setting: Setting, run: Run, place: Place, t: int) -> bool:
     """
     samples, memory, now = run.samples, run.memory, run.now
     sigma = float(samples.direction[t])
-    model = rise(setting, memory, place, friction_of(samples, t, sigma), 0.0, True)
+    model = rise(setting, memory, place, friction_of(samples, t, sigma), -place.push, True)
     stretch = abs(stretch_between(setting.pipe, memory.reversal, memory.work, place))
     run.found.stretch[t] = stretch
     travel, top = samples.travel[t], samples.top[t]
@@ -209,15 +168,15 @@ def all_moving(setting: Setting, run: Run, place: Place, t: int) -> bool:
 
 
 @njit(cache=True)
-def arrived(run: Run, t: int) -> bool:
+def arrived(run: Run, place: Stand, t: int) -> bool:
     """Whether the bit's front is at the surface, early: the hookload rises and the block was not raised."""
     samples = run.samples
-    loaded = samples.drilling[t] and run.memory.tension[0] < 0.0
+    loaded = samples.drilling[t] and run.memory.tension[0] < -place.push
     return loaded and samples.direction[t] >= 0 and samples.top[t] - run.now[HOOK] > ARRIVED * run.rules.band
 
 
 @njit(cache=True, error_model="numpy")
-def sliding(setting: Setting, run: Run, place: Place, t: int) -> None:
+def sliding(setting: Setting, run: Run, place: Stand, t: int) -> None:
     """Move a string that does not turn: a front from the surface, or the whole string once it is through."""
     samples, now, band = run.samples, run.now, run.rules.band
     direction, top = samples.direction[t], samples.top[t]
@@ -239,7 +198,7 @@ def sliding(setting: Setting, run: Run, place: Place, t: int) -> None:
             now[REACH] = min(now[REACH], setting.pipe.x[node])
             if node == 0:
                 now[MODE] = sigma
-        elif arrived(run, t):
+        elif arrived(run, place, t):
             now[MODE], now[LIFT] = 1.0, samples.travel[t]
         if now[MODE] == FREE and direction != 0 and samples.free[t] and all_moving(setting, run, place, t):
             now[MODE] = sigma
@@ -249,13 +208,14 @@ def sliding(setting: Setting, run: Run, place: Place, t: int) -> None:
 
 
 @njit(cache=True, error_model="numpy")
-def drilling_off(setting: Setting, run: Run, place: Place, t: int) -> int:
+def drilling_off(setting: Setting, run: Run, place: Stand, t: int) -> int:
     """Let the bit unload the string from below; returns what the bit load then rests on."""
     samples, memory, rules = run.samples, run.memory, run.rules
-    load = -memory.tension[0]
+    lifted = -place.push  # tension of a bit that carries nothing
+    load = lifted - memory.tension[0]
     rub = samples.down[t]
     if load > max(samples.witness[t], 0.0):
-        _, end = bit_curve(setting, memory, place, rub, -max(samples.witness[t], 0.0), np.inf)
+        _, end = bit_curve(setting, memory, place, rub, lifted - max(samples.witness[t], 0.0), np.inf)
         last = place.top if end < 0 else end
         memory.tension[: last + 1] = memory.work[: last + 1]
         if end < 0:
@@ -270,7 +230,7 @@ def drilling_off(setting: Setting, run: Run, place: Place, t: int) -> int:
 
 
 @njit(cache=True)
-def lengthen(setting: Setting, run: Run, place: Place) -> None:
+def lengthen(setting: Setting, run: Run, place: Stand) -> None:
     """Give pipe new below the rotary its tension: it hangs on what is below."""
     pipe, memory = setting.pipe, run.memory
     last = int(run.now[TOP])
@@ -314,7 +274,7 @@ def copy_row(found: Found, t: int) -> None:
 
 
 @njit(cache=True, error_model="numpy")
-def move(setting: Setting, run: Run, place: Place, t: int) -> int:
+def move(setting: Setting, run: Run, place: Stand, t: int) -> int:
     """Move the profile on to row `t`; returns what the bit load rests on."""
     mode, now = run.samples.mode[t], run.now
     if mode == TURN:
@@ -339,7 +299,7 @@ def replay_rows(setting: Setting, run: Run) -> None:
     """
     samples, found, now = run.samples, run.found, run.now
     for t in range(len(samples.bit)):
-        place = place_at(setting.hole, setting.pipe, samples.bit[t], samples.scale[t])
+        place = stand_at(setting.hole, setting.pipe, samples.bit[t], samples.scale[t], samples.ends[t])
         if place.top > int(now[TOP]):
             lengthen(setting, run, place)
         if still_the_same(run, t, place.first):
@@ -357,6 +317,6 @@ def replay_rows(setting: Setting, run: Run) -> None:
         now[AT], now[TOP] = place.first, place.top
         # a bit clear of bottom carries nothing, whatever the march leaves there
         clear = samples.free[t] and now[MODE] != FREE
-        found.bit_load[t] = 0.0 if clear else max(-run.memory.tension[0], 0.0)
+        found.bit_load[t] = 0.0 if clear else max(-run.memory.tension[0] - place.push, 0.0)
         found.reach[t] = max(place.bit - now[REACH], 0.0)
         found.full[t] = int(now[MODE])

@@ -16,6 +16,7 @@ from forensics.mechanics.kernels_judge import (
     LENGTH,
     LINEAR,
     SQUARE,
+    TAKEN,
     Criteria,
 )
 from forensics.well.model import Well
@@ -39,13 +40,14 @@ def tabulate(well: Well, hole: HoleGrid, pipe: PipeGrid, settings: CriteriaSetti
     root2 = 4.0 * ei / np.where(free, gap, 1.0)
     along = weight * np.maximum(hole.cos_i, 0.0)
     cube = np.cbrt(ei * along**2)
-    at = np.zeros((*gap.shape, 6))
+    at = np.zeros((*gap.shape, 7))
     at[..., SQUARE] = np.where(free, root2**2 * a, 0.0)
     at[..., LINEAR] = np.where(free, 2.0 * weight * root2**2 * b, 0.0)
     at[..., CONSTANT] = np.where(free, weight**2 * root2**2 * c, SUPPORT**4)
     at[..., CUBE] = np.where(free, cube, 0.0)
     at[..., LENGTH] = _length_places(pipe.stiff_run[first][:, None], along, cube)
     at[..., GIVE] = np.where(free, 1.0 / root2, 0.0)
+    at[..., TAKEN] = _taken(hole, pipe)
     return Criteria(
         kind=kind.astype(np.int64),
         at=at,
@@ -53,6 +55,20 @@ def tabulate(well: Well, hole: HoleGrid, pipe: PipeGrid, settings: CriteriaSetti
         envelope=int(settings.helical_release == "envelope"),
         table=load_table().as_tuple(),
     )
+
+
+def _taken(hole: HoleGrid, pipe: PipeGrid) -> Floats:
+    """Torque that turning takes above each depth at a friction of one, the bit at the deepest [N.m].
+
+    Its shape along the hole stands for all depths of the bit.
+    """
+    above_bit = (len(hole.cos_i) - 1 - np.arange(len(hole.cos_i))) * hole.step
+    j = np.clip(np.searchsorted(pipe.x, above_bit, side="right") - 1, 0, len(pipe.ei) - 1)
+    hangs = pipe.weight[j] * hole.cos_i * hole.step
+    tension = np.cumsum(hangs[::-1])[::-1]
+    square = tension * (tension * hole.kappa2 + 2.0 * pipe.weight[j] * hole.kappa_d)
+    contact = np.sqrt(np.maximum(square + pipe.weight[j] ** 2 * hole.sin2, 0.0))
+    return np.cumsum(contact * pipe.radius[j]) * hole.step
 
 
 def _length_places(run: Floats, along: Floats, cube: Floats) -> Floats:

@@ -4,6 +4,10 @@ A helix of turn rate k (radians per length) twists the pipe's axis by r^2 k^3 / 
 does work on that. Per length and over r^2, its energy is ``EI k^4 / 2 - F k^2 / 2 - M k^3 / 2``, beside the
 weight's w / r for lying all round instead of on the low side. The pipe takes the hand that the torque
 favours. A sinusoid turns as much one way as the other, so that its onset does not change to first order.
+The helix that has formed presses harder on the wall, by ``r M k^3`` to first order.
+
+With ``[criteria] torque_effect = "on"`` the replay lowers its helical threshold and presses its helices by
+this, at the torque of the place (`kernels_judge.lowered`, `kernels_judge.winding_wall`).
 
 References
 ----------
@@ -16,105 +20,42 @@ torsional loading in inclined wellbores", SPE 29460 (from memory: ``F = 8 pi^2 E
 
 from __future__ import annotations
 
-import math
-
 import numpy as np
 from numpy.typing import ArrayLike
 
 from forensics.mechanics.eigen import Floats
 
 
-def turn_rate(force: ArrayLike, stiffness: ArrayLike, torque: ArrayLike) -> Floats:
-    """Give the turn rate of a weightless helix under torque.
+def onset_drop(onset: ArrayLike, stiffness: ArrayLike, torque: ArrayLike) -> Floats:
+    """Give what torque takes off a helical onset, to first order.
 
     Parameters
     ----------
-    force : array_like
-        Effective compression [N].
+    onset : array_like
+        Load at which the pipe turns helical without torque, not negative [N].
     stiffness : array_like
         EI [N.m2].
-    torque : array_like
-        Along the pipe, whichever way [N.m].
-
-    Returns
-    -------
-    ndarray
-        k with ``F = 2 EI k^2 - 3/2 M k`` [rad/m]; zero in tension. The pitch is 2 pi / k.
-    """
-    load = np.maximum(np.asarray(force, dtype=float), 0.0)
-    stiffness = np.asarray(stiffness, dtype=float)
-    part = 1.5 * np.abs(np.asarray(torque, dtype=float))
-    rate = (part + np.sqrt(part**2 + 8 * stiffness * load)) / (4 * stiffness)
-    return np.where(load > 0, rate, 0.0)
-
-
-def contact_force(force: ArrayLike, stiffness: ArrayLike, clearance: ArrayLike, torque: ArrayLike) -> Floats:
-    """Give the wall force per length of a weightless helix under torque, ``r (F k^2 + M k^3 - EI k^4)``.
-
-    Parameters
-    ----------
-    force, stiffness, torque : array_like
-        As in `turn_rate`.
-    clearance : array_like
-        Radial clearance [m].
-
-    Returns
-    -------
-    ndarray
-        [N/m]; ``r F^2 / (4 EI)`` without torque.
-    """
-    rate = turn_rate(force, stiffness, torque)
-    load = np.maximum(np.asarray(force, dtype=float), 0.0)
-    push = load + np.abs(np.asarray(torque, dtype=float)) * rate - np.asarray(stiffness) * rate**2
-    return np.asarray(clearance) * rate**2 * push
-
-
-def onset_drop(
-    stiffness: ArrayLike, contact: ArrayLike, clearance: ArrayLike, torque: ArrayLike, applied: bool = True
-) -> Floats:
-    """Give what torque takes off the helical onset.
-
-    Parameters
-    ----------
-    stiffness : array_like
-        EI [N.m2].
-    contact : array_like
-        Contact force per length before buckling [N/m].
-    clearance : array_like
-        Radial clearance [m].
     torque : array_like
         Along the pipe at the place, whichever way [N.m].
-    applied : bool
-        False leaves torque out: the drop is zero.
 
     Returns
     -------
     ndarray
-        [N], not negative; to first order ``M (2 w_c / (EI r))^(1/4)``.
+        ``M sqrt(F / (2 EI))``: torque times the turn rate of the helix that forms [N].
 
     Notes
     -----
     Chen's onset is the least load at which a helix costs no more than lying straight: ``F = EI k^2 - M k +
-    2 w_c / (r k^2)``, least over k. The drop of that is taken off every published onset, which is ours.
+    2 w_c / (r k^2)``, least over k. There this is exact to first order, and what it leaves out is
+    ``M^2 / (16 EI)``, some tens of newtons. For the other onsets, and near vertical, taking the helix's own
+    turn rate likewise is this program's own.
 
     Examples
     --------
     127 mm pipe in a horizontal 215.9 mm hole with 20 kN.m: a few per cent of 239 kN.
 
-    >>> float(onset_drop(1.23e6, 258.3, 0.0445, 20e3).round(-2))
-    6300.0
+    >>> float(onset_drop(239e3, 1.23e6, 20e3).round(-2))
+    6200.0
     """
-    stiffness, contact, clearance, moment = np.broadcast_arrays(
-        *(np.asarray(part, dtype=float) for part in (stiffness, contact, clearance, torque))
-    )
-    some = contact > 0
-    side = np.where(some, contact, 1.0) / clearance
-    moment = np.abs(moment) * float(applied)
-    start = (2 * side / stiffness) ** 0.25
-    rate = start.copy()
-    for _ in range(8):  # Newton's method: the load is convex in the rate
-        slope = 2 * stiffness * rate - moment - 4 * side / rate**3
-        rate = np.maximum(rate - slope / (2 * stiffness + 12 * side / rate**4), 0.5 * rate)
-    straight = 2 * math.sqrt(2) * np.sqrt(stiffness * side)
-    load = stiffness * rate**2 - moment * rate + 2 * side / rate**2
-    return np.where(some, np.maximum(straight - load, 0.0), 0.0)
+    load = np.maximum(np.asarray(onset, dtype=float), 0.0)
+    return np.abs(np.asarray(torque, dtype=float)) * np.sqrt(load / (2 * np.asarray(stiffness, dtype=float)))

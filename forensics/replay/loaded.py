@@ -10,15 +10,12 @@ from numpy.typing import NDArray
 from forensics.loads import Profile
 from forensics.mechanics.kernels_judge import GIVE
 from forensics.mechanics.toll import MomentLoads
-from forensics.replay.places import surface_torque
 from forensics.replay.run import Replay
+from forensics.replay.torsion import origin, torque_along
 from forensics.units import G
 
 Floats = NDArray[np.float64]
 
-SPREAD = "surface torque, taken down by what turning against the wall costs"
-HELD = "surface torque all along: the string was not turned, and how deep it reaches is not known"
-NO_TORQUE = "torsion left out: the log has no torque there"
 PRESSED = "standpipe pressure inside, nothing taken off for flow along the bore; mud column outside"
 NO_PRESSURE = "pressure left out: the log has no standpipe pressure there"
 
@@ -52,7 +49,7 @@ def loaded(run: Replay, profile: Profile) -> Loaded:
     index = np.maximum(first - ((pipe.node[rows] + pipe.node[rows + 1]) >> 1), 0)
     give = criteria.at[criteria.kind[rows], index, GIVE]
     wall = np.where(profile.state == 2, give * profile.tension**2, 0.0)
-    torque, torque_from = _torque(run, profile)
+    torque = torque_along(run, row, index)
     inside, outside, pressure_from = _pressures(run, profile, hole.tvd[index])
     loads = MomentLoads(
         component=pipe.component[rows],
@@ -61,31 +58,12 @@ def loaded(run: Replay, profile: Profile) -> Loaded:
         contact=np.maximum(profile.contact - wall, 0.0),
         clearance=4.0 * pipe.ei[rows] * give,
         curvature=np.sqrt(hole.kappa2[index]),
-        torque=torque,
+        torque=np.nan_to_num(torque),
         inside=inside,
         outside=outside,
         onset=profile.sinusoidal,
     )
-    return Loaded(loads, torque_from, pressure_from)
-
-
-def _torque(run: Replay, profile: Profile) -> tuple[Floats, str]:
-    """Torque at the middle of each element [N.m], and where it is from."""
-    surface = surface_torque(run, profile.row)
-    flat = np.full(len(profile.md), np.nan_to_num(surface))
-    if not np.isfinite(surface):
-        return flat, NO_TORQUE
-    factor = run.calibration.rotational
-    if not run.rig.turning[profile.row] or factor is None:
-        return flat, HELD
-    pipe, rows = run.model.pipe, np.arange(len(profile.md))
-    length = np.diff(np.minimum(pipe.x[: len(rows) + 1], float(run.prepared.samples.bit[profile.row])))
-    costs = factor.value * profile.contact * pipe.radius[rows] * length
-    below = np.cumsum(costs) - 0.5 * costs
-    total = float(costs.sum())
-    # what friction leaves is the bit's; friction that would take more than there is, is scaled down
-    at_bit = max(surface - total, 0.0)
-    return at_bit + below * ((surface - at_bit) / total if total > 0.0 else 0.0), SPREAD
+    return Loaded(loads, origin(run, row, torque), pressure_from)
 
 
 def _pressures(run: Replay, profile: Profile, tvd: Floats) -> tuple[Floats, Floats, str]:

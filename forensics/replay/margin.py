@@ -6,8 +6,8 @@ import numpy as np
 from numba import njit
 from numpy.typing import NDArray
 
-from forensics.mechanics.kernels_judge import Setting
-from forensics.mechanics.kernels_march import Array, place_at
+from forensics.mechanics.kernels_judge import Setting, stand_at
+from forensics.mechanics.kernels_march import Array
 from forensics.mechanics.kernels_memory import Memory, march_down
 from forensics.mechanics.kernels_replay import Samples
 from forensics.mechanics.offbottom import OffBottomModel
@@ -22,9 +22,10 @@ THINNED_SECONDS = 30.0  # the limit moves with bit depth and friction only
 def _limits(setting: Setting, memory: Memory, bits: Array, scale: Array, down: Array) -> Array:
     """Bit load of a string sliding down with nothing left on the hook [N]."""
     result = np.empty(len(bits))
+    nothing = np.zeros(3)
     for k in range(len(bits)):
         memory.state[:] = 0
-        place = place_at(setting.hole, setting.pipe, bits[k], scale[k])
+        place = stand_at(setting.hole, setting.pipe, bits[k], scale[k], nothing)
         march_down(setting, memory, place, down[k], 0.0, False)
         result[k] = max(-memory.tension[0], 0.0)
     return result

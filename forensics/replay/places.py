@@ -12,6 +12,7 @@ from forensics.mechanics.kernels_judge import GIVE, local_square
 from forensics.mechanics.kernels_march import place_at
 from forensics.replay.model import factors
 from forensics.replay.run import Replay
+from forensics.replay.torsion import torque_along
 
 
 @dataclass(frozen=True)
@@ -25,8 +26,8 @@ class PlaceNumbers:
     local : float
         F_DP at the contact force the replay judged it by, averaged over a wave [N].
     torque : float
-        Surface torque of the moment less what the top drive loses: the most that can be at the place [N.m];
-        NaN where the log has none.
+        At the place: at surface less what friction takes above it, if the string turns [N.m]; NaN where the
+        log has none.
     """
 
     place: Place
@@ -104,22 +105,4 @@ def place_numbers(run: Replay, row: int, md: float, compression: float) -> Place
         build=math.sqrt(float(hole.kappa2[i])),
     )
     local = math.sqrt(local_square(at, placed, j, i, -compression))
-    return PlaceNumbers(place, local, surface_torque(run, row))
-
-
-def surface_torque(run: Replay, row: int) -> float:
-    """Torque the string had at surface: what was logged less what the top drive loses [N.m], not negative.
-
-    Parameters
-    ----------
-    run : Replay
-        Made ready.
-    row : int
-        Row of the log.
-    """
-    torque = run.log.get("torque")
-    if torque is None:
-        return math.nan
-    turning = bool(run.rig.turning[row])
-    loss = run.calibration.torque_loss.value if turning and run.calibration.torque_loss else 0.0
-    return max(float(torque[row]) - loss, 0.0) if np.isfinite(torque[row]) else math.nan
+    return PlaceNumbers(place, local, float(torque_along(run, row, np.array([i]))[0]))

@@ -18,6 +18,7 @@ from forensics.replay.rate import learn_rate
 from forensics.replay.room import excerpt, fresh, go
 from forensics.replay.run import Replay
 from forensics.replay.samples import Prepared, prepare
+from forensics.replay.torsion import torque_ends
 from forensics.replay.witness import SIGMAS, Witness, friction_ratio, hear
 from forensics.rig.view import Activity, RigView
 from forensics.well.model import Well
@@ -57,8 +58,17 @@ def ready(
         exponent=law.exponent,
     )
     run = Replay(log, well, rig, calibration, model, prepared, rules, law)
+    if case.criteria.torque_effect:
+        run = _wound(run)
     witness = hear(log, rig, turning)
     return run if witness is None else _heed(run, witness)
+
+
+def _wound(run: Replay) -> Replay:
+    """Let torque lower the helical onset and press the helix on the wall."""
+    ends = run.prepared.samples.ends.copy()
+    ends[:, :2] = np.nan_to_num(torque_ends(run, np.arange(len(run.log))))
+    return replace(run, prepared=replace(run.prepared, samples=run.prepared.samples._replace(ends=ends)))
 
 
 def _heed(run: Replay, witness: Witness) -> Replay:

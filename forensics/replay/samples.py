@@ -69,6 +69,7 @@ def prepare(
         scale=weight_scale(log, well, calibration),
         step=np.clip(np.diff(log.time, prepend=log.time[0]), 0.0, 4.0 * log.interval),
         witness=np.full(len(log), np.inf),
+        ends=np.zeros((len(log), 3)),
     )
     return Prepared(samples, hookload, hanging, ~near)
 

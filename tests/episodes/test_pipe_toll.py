@@ -15,6 +15,7 @@ from forensics.episodes.pipe import PipeToll, Turned, parts_of, pipe_tolls
 from forensics.loads import Profile
 from forensics.mechanics import helix
 from forensics.replay import loaded as words
+from forensics.replay import torsion
 from forensics.replay.loaded import loaded
 from forensics.replay.model import build_model
 from tests.episodes.test_onsets import pressed
@@ -36,7 +37,7 @@ def run_with(torque: float = 15e3, pressure: float | None = 20e6, turning: bool 
     return SimpleNamespace(
         model=build_model(well, case_for(), 2000.0),
         well=well,
-        log=channels,
+        log=SimpleNamespace(get=channels.get, interval=1.0),
         rig=SimpleNamespace(turning=np.full(ROWS, turning)),
         calibration=SimpleNamespace(
             sections=(factor,), torque_loss=None, rotational=SimpleNamespace(value=0.2)
@@ -89,10 +90,9 @@ def test_torque_falls_downwards_by_what_the_wall_takes():
     profile = profile_of(run)
     at = loaded(run, profile)
     torque = np.asarray(at.loads.torque)
-    assert at.torque_from == words.SPREAD
+    assert at.torque_from == torsion.SPREAD
     assert np.all(np.diff(torque) > 0)  # from the bit up
-    length = np.diff(np.minimum(run.model.pipe.x[: len(torque) + 1], BIT))
-    costs = float((0.2 * profile.contact * 0.084 * length).sum())
+    costs = 0.2 * 0.084 * float(run.model.pipe.weight[0]) * BIT  # exact off bottom in a straight flat hole
     assert torque[-1] < 60e3
     assert torque[0] == pytest.approx(60e3 - costs, rel=0.02)
     light = np.asarray(loaded(run_with(torque=1e3), profile).loads.torque)
@@ -102,11 +102,11 @@ def test_torque_falls_downwards_by_what_the_wall_takes():
 def test_what_is_not_known_is_left_out_and_said():
     run = run_with(torque=math.nan, pressure=None)
     at = loaded(run, profile_of(run))
-    assert (at.torque_from, at.pressure_from) == (words.NO_TORQUE, words.NO_PRESSURE)
+    assert (at.torque_from, at.pressure_from) == (torsion.NO_TORQUE, words.NO_PRESSURE)
     assert not np.any(at.loads.torque)
     still = run_with(turning=False)
     held = loaded(still, profile_of(still))
-    assert held.torque_from == words.HELD
+    assert held.torque_from == torsion.HELD
     np.testing.assert_array_equal(held.loads.torque, 15e3)
 
 

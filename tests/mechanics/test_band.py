@@ -34,7 +34,7 @@ def test_count_and_words_go_together():
 
 def test_torque_lowers_the_band():
     assert band.onsets_passed(1.40 * LOCAL, band.onset_loads(EI, LOCAL, 0.0)) == 0
-    assert band.onsets_passed(1.40 * LOCAL, band.onset_loads(EI, LOCAL, 0.0, 0.03 * LOCAL)) == 1
+    assert band.onsets_passed(1.40 * LOCAL, band.onset_loads(EI, LOCAL, 0.0) - 0.03 * LOCAL) == 1
 
 
 def test_interval_that_spans_onsets():

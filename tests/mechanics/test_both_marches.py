@@ -37,6 +37,7 @@ def slides(top: list[float]) -> Samples:
         scale=ones,
         step=ones,
         witness=np.full(n, np.inf),
+        ends=np.zeros((n, 3)),
     )
 
 

@@ -9,7 +9,7 @@ import numpy as np
 import pytest
 
 from forensics.case import Case, FluidSettings, LogSettings
-from forensics.mechanics.kernels_march import place_at
+from forensics.mechanics.kernels_judge import stand_at
 from forensics.mechanics.kernels_memory import rise
 from forensics.mechanics.lockup import HelicalRun, load_along, lockup_distance
 from forensics.replay.model import build_model
@@ -29,7 +29,7 @@ def test_helical_march_is_the_closed_form(degrees, bit_load):
     setting = model.setting(FACTOR, FACTOR)
     memory, _ = fresh(model)
     memory.state[:] = 2
-    place = place_at(setting.hole, setting.pipe, DEPTH, 1.0)
+    place = stand_at(setting.hole, setting.pipe, DEPTH, 1.0, np.zeros(3))
     rise(setting, memory, place, 1.0, -bit_load, True)
     gap = (0.2159 - 0.168) / 2
     run = HelicalRun(DRILL_PIPE.stiffness, gap, float(model.pipe.weight[0]), FACTOR, angle)

@@ -14,7 +14,7 @@ import numpy as np
 import pytest
 
 from forensics.case import Case, FluidSettings, LogSettings
-from forensics.mechanics.kernels_march import place_at
+from forensics.mechanics.kernels_judge import stand_at
 from forensics.mechanics.kernels_replay import HOLD, REACH, SLIDE, TURN, Rules, Run, Samples, all_moving
 from forensics.replay.model import build_model
 from forensics.replay.room import fresh, go, room
@@ -58,6 +58,7 @@ def rows(top, direction, **changes) -> Samples:
         "scale": np.ones(n),
         "step": np.ones(n),
         "witness": np.full(n, np.inf),
+        "ends": np.zeros((n, 3)),
     }
     return Samples(**(base | changes))
 
@@ -209,7 +210,7 @@ def test_a_string_that_keeps_its_hookload_over_metres_is_moving_whatever_the_mod
     verdicts = []
     for top in (np.full(61, low), low - spring * travel):
         run = Run(rows(top, np.ones(61), **clear), NEVER, room(61, 1, 1), *fresh(model), 1e9)
-        place = place_at(at.hole, at.pipe, 3000.0, 1.0)
+        place = stand_at(at.hole, at.pipe, 3000.0, 1.0, np.zeros(3))
         verdicts.append([all_moving(at, run, place, t) for t in range(61)])
     assert not any(verdicts[0][:3])
     assert verdicts[0][-1]

@@ -91,7 +91,7 @@ def effects(scene: Scene) -> list[tuple[str, str, str]]:
     rules = scene.findings.case.criteria
     worst = worst_episode(scene)
     torque = "applied" if rules.torque_effect else "not applied"
-    torque += " to the published helical onsets; the replay's own thresholds leave torque out"
+    torque += " to the helical thresholds, to the published onsets and to the wall force of a helix"
     joints = "applied" if rules.tool_joint_effect else "not applied"
     joints += " to the bending of jointed pipe that is not buckled; no threshold depends on it"
     if worst is not None:
@@ -110,9 +110,9 @@ def _torque_size(scene: Scene, episode: Episode) -> str:
     if not math.isfinite(drop):
         return ""
     if drop < LEAST_DROP:
-        return f". At the peak of {episode.id} the string carried no torque at surface: nothing to take off"
+        return f". At the peak of {episode.id} the string carried no torque there: nothing to take off"
     size = scene.show.value(drop, "force")
-    return f". At the peak of {episode.id} the surface torque, the most there can be, takes off {size}"
+    return f". At the peak of {episode.id} torque at the place takes off {size} of the onset"
 
 
 def _sag(scene: Scene, episode: Episode) -> str:
