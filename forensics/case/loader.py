@@ -41,6 +41,7 @@ from forensics.units import factor
 
 # A station that may be off by more than a degree is none [rad].
 LEAST_ACCURATE = 0.0175
+_LOGS = ("time", "depth", "timezone", "timezones", "wits_units", "channels")
 _SECTIONS = "case logs survey hole string fluid rig friction criteria limits records"
 
 
@@ -92,7 +93,7 @@ def _build(root: Node) -> Case:
         path=root.path,
         id=case_id,
         title=case.take("title", as_note) or case_id,
-        logs=_logs(root.section("logs", ("time", "depth", "timezone", "wits_units", "channels"))),
+        logs=_logs(root.section("logs", _LOGS)),
         survey=survey.need("file", as_file, 'file = "survey.csv"'),
         tie_in=_tie_in(survey),
         survey_accuracy=survey.take("accuracy", as_quantity("angle", 0.0, LEAST_ACCURATE)),
@@ -129,8 +130,22 @@ def _logs(node: Node) -> LogSettings:
         depth=node.take("depth", as_files, ()),
         timezone=node.take("timezone", as_timezone, "UTC"),
         wits_units=node.take("wits_units", as_choice("metric", "fps")),
+        timezones=_timezones(node, files),
         channels={key: _choice(channels, key, quantities[key]) for key in channels.values},
     )
+
+
+def _timezones(logs: Node, files: tuple[Path, ...]) -> dict[Path, str]:
+    """Zones of single files, named as under `time`."""
+    table = logs.values.get("timezones", {})
+    names = {name: path for path in files for name in (path.name, _relative(logs.path.parent, path))}
+    node = logs.section("timezones", names if isinstance(table, dict) else ())
+    return {names[name]: as_timezone(node, name, value) for name, value in node.values.items()}
+
+
+def _relative(folder: Path, path: Path) -> str:
+    folder = folder.resolve()
+    return path.relative_to(folder).as_posix() if path.is_relative_to(folder) else path.as_posix()
 
 
 def _choice(node: Node, key: str, quantity: str) -> ChannelChoice:

@@ -17,13 +17,21 @@ class ChannelChoice:
 
 @dataclass(frozen=True)
 class LogSettings:
-    """`[logs]`: files in the order given; zone for stamps that carry none; units of WITS captures."""
+    """`[logs]`: files in the order given; zone for stamps that carry none; units of WITS captures.
+
+    `timezones` names the zone of single files, by their path.
+    """
 
     time: tuple[Path, ...]
     depth: tuple[Path, ...] = ()
     timezone: str = "UTC"
     wits_units: str | None = None
+    timezones: Mapping[Path, str] = field(default_factory=dict)
     channels: Mapping[str, ChannelChoice] = field(default_factory=dict)
+
+    def zone_of(self, path: Path) -> str:
+        """Zone of a file's stamps that carry none."""
+        return self.timezones.get(path, self.timezone)
 
 
 @dataclass(frozen=True)

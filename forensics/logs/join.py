@@ -2,14 +2,14 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
-from pathlib import Path
+from collections.abc import Sequence
 
 import numpy as np
 from numpy.typing import NDArray
 
 from forensics.errors import LogError
+from forensics.logs.clock_steps import mend_clocks
+from forensics.logs.piece import CLASH, Piece, interval_of, share_different
 from forensics.logs.table import Step
 
 Floats = NDArray[np.float64]
@@ -18,45 +18,6 @@ LATE_ROWS = 20
 LATE_INTERVALS = 20.0
 # Steps that all go back show a file written from its end.
 SURELY_TURNED = 10
-# Above this share of stamps told twice with different values, two recordings clash.
-CLASH = 0.5
-# Values this near are one reading rounded in two unit systems: part of the largest hookload; depth [m].
-SAME = {"hookload": 2.5e-3, "bit_depth": 0.1}
-
-
-@dataclass(frozen=True)
-class Piece:
-    """One file's rows in SI.
-
-    Parameters
-    ----------
-    path : Path
-        The file.
-    time : ndarray, shape (n,)
-        Stamps, finite [s since 1970 UTC].
-    line : ndarray of int, shape (n,)
-        Line of the file each row came from.
-    values : mapping of str to ndarray, shape (n,)
-        Channels [SI].
-    """
-
-    path: Path
-    time: Floats
-    line: NDArray[np.int64]
-    values: Mapping[str, Floats]
-
-
-def interval_of(time: Floats) -> float:
-    """Usual step between stamps [s]; NaN for fewer than two.
-
-    Examples
-    --------
-    >>> interval_of(np.array([0.0, 1.0, 2.0, 60.0]))
-    1.0
-    """
-    steps = np.diff(time)
-    steps = steps[steps > 0]
-    return float(np.median(steps)) if len(steps) else float("nan")
 
 
 def check_direction(piece: Piece) -> int:
@@ -111,7 +72,7 @@ def _check_overlap(piece: Piece, back: NDArray[np.int64]) -> None:
         _, first, second = np.intersect1d(piece.time[before], piece.time[after], return_indices=True)
         if len(first) < LATE_ROWS:
             continue
-        clash = _share_different(piece.values, first, second + int(turn) + 1)
+        clash = share_different(piece.values, first, second + int(turn) + 1)
         if clash > CLASH:
             raise LogError(
                 f"time falls back by {-steps[turn]:.0f} s and {len(first)} stamps come twice, not alike; "
@@ -119,18 +80,6 @@ def _check_overlap(piece: Piece, back: NDArray[np.int64]) -> None:
                 file=piece.path,
                 line=int(piece.line[turn + 1]),
             )
-
-
-def _share_different(values: Mapping[str, Floats], one: NDArray[np.int64], two: NDArray[np.int64]) -> float:
-    shares = []
-    for channel, near in SAME.items():
-        if channel in values:
-            a, b = values[channel][one], values[channel][two]
-            known = np.isfinite(a) & np.isfinite(b)
-            if known.any():
-                scale = float(np.abs(a[known]).max()) if channel == "hookload" else 1.0
-                shares.append(float((np.abs(a[known] - b[known]) > near * scale).mean()))
-    return max(shares, default=0.0)
 
 
 def _newest_last(pieces: Sequence[Piece]) -> tuple[list[Piece], list[Step]]:
@@ -166,18 +115,18 @@ def join(pieces: Sequence[Piece]) -> tuple[Floats, dict[str, Floats], list[Step]
     steps : list of Step
         Duplicates merged, rows sorted.
     warnings : list of str
-        Recordings that contradict each other.
+        Recordings that contradict each other, and clocks that were set while they recorded.
     """
-    steps: list[Step] = []
     pieces, turned = _newest_last(pieces)
-    steps += turned
+    mended = mend_clocks(pieces)
+    pieces, steps, warnings = mended.pieces, [*turned, *mended.steps], mended.warnings
     late = sum(check_direction(piece) for piece in pieces)
     if late:
         steps.append(
             Step("sorted into time order", late, detail="rows whose stamp lay before one already read")
         )
     if len(pieces) == 1 and not late and (np.diff(pieces[0].time) > 0).all():
-        return pieces[0].time, dict(pieces[0].values), steps, []
+        return pieces[0].time, dict(pieces[0].values), steps, warnings
     names = list(dict.fromkeys(name for piece in pieces for name in piece.values))
     time = np.concatenate([piece.time for piece in pieces])
     values = {
@@ -185,19 +134,18 @@ def join(pieces: Sequence[Piece]) -> tuple[Floats, dict[str, Floats], list[Step]
         for name in names
     }
     if (np.diff(time) > 0).all():
-        return time, values, steps, []
+        return time, values, steps, warnings
     order = np.argsort(time, kind="stable")
     time = time[order]
     values = {name: data[order] for name, data in values.items()}
     first = np.flatnonzero(np.diff(time, prepend=-np.inf) > 0)
     extra = len(time) - len(first)
-    warnings: list[str] = []
     if extra:
         steps.append(
             Step("merged duplicate stamps", extra, detail="one row a stamp; the first value found is kept")
         )
         twice = np.flatnonzero(np.diff(time) == 0)
-        differing = _share_different(values, twice, twice + 1)
+        differing = share_different(values, twice, twice + 1)
         if differing > CLASH and extra >= LATE_ROWS:
             warnings.append(
                 f"{extra} stamps come more than once, {differing:.0%} of them with different values; "

@@ -14,9 +14,12 @@ from forensics.case import Case
 from forensics.channels import BY_NAME
 from forensics.errors import LogError, nearest
 from forensics.logs.clock import DAY, Clock, OpenOrderError, read_clock
-from forensics.logs.join import Piece, interval_of, join
+from forensics.logs.clock_offset import find_offsets
+from forensics.logs.join import join
+from forensics.logs.lag import find_lags, tell_lags
 from forensics.logs.mapping import Mapped, keep, likely_unit, map_columns, missing_channel, wanted
 from forensics.logs.nulls import find_codes
+from forensics.logs.piece import Piece, interval_of
 from forensics.logs.quality import clean
 from forensics.logs.raw import RawLog
 from forensics.logs.registry import digest, read_raw, require
@@ -117,6 +120,7 @@ def _by_time(raw: RawLog) -> list[RawLog]:
 
 def _assemble(case: Case, found: _Gathered) -> TimeLog:
     file = found.pieces[0].path
+    found.warnings.extend(find_offsets(found.pieces, case.logs.timezone))
     time, values, joined, remarks = join(found.pieces)
     found.pieces.clear()
     interval = interval_of(time)
@@ -132,6 +136,7 @@ def _assemble(case: Case, found: _Gathered) -> TimeLog:
     used = ~(lacking | depthless)
     if not used.any():
         raise LogError(_nothing_left(reason), file=file)
+    delays, delayed = tell_lags(find_lags(time, work.values, interval))
     return TimeLog(
         time=time,
         values=work.values,
@@ -140,9 +145,9 @@ def _assemble(case: Case, found: _Gathered) -> TimeLog:
         reason=reason,
         interval=interval,
         timezone=case.logs.timezone,
-        history=(*found.steps, *joined, *work.steps),
+        history=(*found.steps, *joined, *work.steps, *delays),
         files=tuple(found.records),
-        warnings=tuple(dict.fromkeys((*found.warnings, *remarks, *work.warnings))),
+        warnings=tuple(dict.fromkeys((*found.warnings, *remarks, *work.warnings, *delayed))),
     )
 
 
@@ -178,7 +183,7 @@ def _read_clocks(case: Case, raws: Sequence[RawLog]) -> list[Clock]:
     learned: str | None = None
     for raw in raws:
         try:
-            clock = read_clock(raw, case.logs.timezone, chosen, None)
+            clock = read_clock(raw, case.logs.zone_of(raw.path), chosen, None)
             learned = clock.order if clock.order in {"dmy", "mdy"} else learned
             clocks.append(clock)
         except OpenOrderError:
@@ -187,7 +192,7 @@ def _read_clocks(case: Case, raws: Sequence[RawLog]) -> list[Clock]:
             clocks.append(None)
     told = [clock for clock in clocks if clock is not None and clock.dated]
     done = [
-        clock or _settle_order(raw, (case.logs.timezone, chosen), learned, told)
+        clock or _settle_order(raw, (case.logs.zone_of(raw.path), chosen), learned, told)
         for raw, clock in zip(raws, clocks, strict=True)
     ]
     return _date_the_undated(done, raws)

@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
-from forensics.logs.join import interval_of
+from forensics.logs.piece import interval_of
 from forensics.logs.spikes import median_of_five
 from forensics.logs.table import Step
 

@@ -170,7 +170,27 @@ def test_time_zones_come_by_name_or_offset(write, given, kept):
     assert load_case(write(FULL.replace("Europe/Oslo", given))).logs.timezone == kept
 
 
+def test_files_may_have_zones_and_wits_units_of_their_own(write):
+    own = '[logs.timezones]\n"sub/day2.csv" = "-3"\n[logs.channels]'
+    text = FULL.replace('timezone = "Europe/Oslo"', 'timezone = "Europe/Oslo"\nwits_units = "fps"')
+    path = write(text.replace("[logs.channels]", own))
+    logs = load_case(path).logs
+    assert logs.wits_units == "fps"
+    assert [logs.zone_of(file) for file in logs.time] == ["Europe/Oslo", "-03:00"]
+    assert load_case(write(LEAST)).logs.wits_units is None
+
+
 REFUSED = {
+    "zone of a file that is no log": (
+        "[logs.channels]",
+        '[logs.timezones]\n"day3.csv" = "UTC"\n[logs.channels]',
+        ["logs.timezones.day3.csv", "did you mean 'day"],
+    ),
+    "unknown system of WITS units": (
+        'timezone = "Europe/Oslo"',
+        'wits_units = "imperial"',
+        ["logs.wits_units", "'imperial'", "fps", "metric"],
+    ),
     "unknown key names the nearest": ("title =", "titel =", ["line 5", "titel", "did you mean 'title'"]),
     "unknown section": ("[records]", "[record]", ["line 64", "record", "did you mean 'records'"]),
     "unknown key far from any": ("lines = 12", "zzz = 12", ["rig.zzz", "known are: block_weight"]),
