@@ -79,7 +79,7 @@ def run(
     with progress.loading("loading the libraries"):
         from forensics.case import load_case
         from forensics.case.unused import unused_settings
-        from forensics.mechanics.kernels_offbottom import wake
+        from forensics.mechanics.kernels_march import wake
         from pipelines import analysis, results
 
         wake(0.0)  # numba loads its own registries at the first call

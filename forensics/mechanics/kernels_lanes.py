@@ -20,16 +20,26 @@ import numpy as np
 from numba import njit
 
 from forensics.mechanics.eigen import LIMIT
-from forensics.mechanics.kernels_judge import CONSTANT, CUBE, GIVE, LINEAR, SQUARE, Criteria, Setting, latch
+from forensics.mechanics.kernels_judge import (
+    CONSTANT,
+    CUBE,
+    GIVE,
+    LINEAR,
+    SQUARE,
+    Criteria,
+    Setting,
+    latch,
+    local_square,
+    thresholds,
+)
 from forensics.mechanics.kernels_march import RUN_AWAY, Array, Place, top_element
 
 FAST = {"nsz", "arcp", "contract", "nnan"}  # no value here is ever NaN
 LANES = 64  # strings in a block: some hundred bytes each stay in the first cache
 # rows of a block's work space, LANES numbers each
-BIT, TENSION, SLOPE, MIDDLE, SCALE, LENGTH, FORCE, RUB, SIGMA, NEAR, HELIX, HELIX_BY, DRAG, OWN = (
-    row * LANES for row in range(14)
-)
-ROWS = 14
+BIT, SIGMA, SCALE, TENSION, SLOPE, MIDDLE, LENGTH, FORCE = (row * LANES for row in range(8))
+RUB, NEAR, HELIX, HELIX_BY, DRAG, OWN, ARM, RATIO = (row * LANES for row in range(8, 16))
+ROWS = 16
 LEAST = 0.999  # of the least load a helix can start at: what rounding may take is far less
 
 
@@ -47,15 +57,54 @@ class Ground(NamedTuple):
 
 
 class Strings(NamedTuple):
-    """The strings to weigh; arrays of shape (k,), `factor` (sections, k).
+    """The strings to march; arrays of shape (k,), `factor` (sections, k).
 
-    `bit` [m], in order for speed; `sigma` +1 going down, -1 up, 0 without axial friction; `scale` of weights.
+    `bit` depth [m], ascending for speed; `sigma` +1 going down, -1 up, 0 without axial friction; `scale` of
+    weights; `load` on the bit [N].
     """
 
     bit: Array
     sigma: Array
     scale: Array
+    load: Array
     factor: Array
+
+
+class Found(NamedTuple):
+    """What the march writes; arrays of shape (k,), or (0,) where one is not asked for.
+
+    `weight` at the rotary [N]; `arm`, contact force times its radius summed along the string: the torque at a
+    friction of one [N.m]; `ratio`, the largest load ratio anywhere; `slopes`, shape (k, sections + 1) or of
+    no column: derivatives of `weight` against each section's friction and against the scale [N per 1].
+    A weight below `RUN_AWAY` is that of a string that locks up, and nothing beside it holds.
+    """
+
+    weight: Array
+    arm: Array
+    ratio: Array
+    slopes: Array
+
+
+class Ask(NamedTuple):
+    """What is to be worked out beside the weight."""
+
+    helices: bool
+    ratio: bool
+    arm: bool
+    slopes: bool
+
+
+class _Room(NamedTuple):
+    """Work space of a block; see the rows above."""
+
+    work: Array
+    stage: Array
+    factor: Array
+    first: Array
+    at: Array
+    section: Array
+    by: Array
+    by_slope: Array
 
 
 def least_onset(criteria: Criteria) -> Array:
@@ -127,21 +176,47 @@ def _near(least: Array, at: Array, work: Array, width: int) -> int:
 
 
 @njit(cache=True, error_model="numpy", inline="always")
+def _placed(work: Array, j: int, k: int) -> Place:
+    """Place string `k`, as far as the judge asks."""
+    scale = work[SCALE + k]
+    return Place(work[BIT + k], j, 0, scale, 1.0 if scale == 1.0 else scale ** (2.0 / 3.0))
+
+
+@njit(cache=True, error_model="numpy", inline="always")
 def _helices(setting: Setting, work: Array, at: Array, j: int, width: int) -> None:
     """Add the contact of a helix to those strings near one that are pressed into it on element `j`."""
     kind = setting.criteria.kind[j]
     for k in range(width):
-        middle, scale = work[MIDDLE + k], work[SCALE + k]
+        middle = work[MIDDLE + k]
         if work[NEAR + k] < 0.0 or middle >= 0.0:
             continue
-        place = Place(work[BIT + k], j, 0, scale, 1.0 if scale == 1.0 else scale ** (2.0 / 3.0))
-        if latch(setting, place, j, at[k], middle):
+        if latch(setting, _placed(work, j, k), j, at[k], middle):
             give = setting.criteria.at[kind, at[k], GIVE]
             extra = work[RUB + k] * middle * middle * give
             work[HELIX + k] = middle * middle * give
             work[HELIX_BY + k] = 2.0 * middle * give
             work[SLOPE + k] -= extra
             work[TENSION + k] = max(work[TENSION + k] - extra * work[LENGTH + k], 4.0 * RUN_AWAY)
+
+
+@njit(cache=True, error_model="numpy", inline="always")
+def _judge(setting: Setting, work: Array, at: Array, j: int, width: int) -> None:
+    """Keep the largest load ratio of each string."""
+    for k in range(width):
+        middle, best = work[MIDDLE + k], work[RATIO + k]
+        if middle >= 0.0 or work[LENGTH + k] <= 0.0:
+            continue
+        place = _placed(work, j, k)
+        # the near-vertical term only raises the threshold
+        if middle * middle > best * best * local_square(setting, place, j, at[k], middle):
+            work[RATIO + k] = max(best, -middle / thresholds(setting, place, j, at[k], middle)[1])
+
+
+@njit(cache=True, error_model="numpy", fastmath=FAST)
+def _turn(work: Array, radius: float, width: int) -> None:
+    """Sum contact force times radius."""
+    for k in range(width):
+        work[ARM + k] += work[FORCE + k] * radius * work[LENGTH + k]
 
 
 @njit(cache=True, error_model="numpy", fastmath=FAST)
@@ -179,20 +254,62 @@ def _carry(work: Array, section: Array, by: Array, slope: Array, width: int) -> 
 
 
 @njit(cache=True)
-def _load(strings: Strings, start: int, width: int, work: Array, factor: Array) -> None:
-    """Set a block of strings to their bits, free."""
+def _load(strings: Strings, inv_step: float, start: int, width: int, room: _Room) -> float:
+    """Set a block of strings on their bits; returns the deepest [m]."""
+    work, deepest = room.work, 0.0
     work[:] = 0.0
+    room.by[:, :] = 0.0
+    room.by_slope[:, :] = 0.0
     for k in range(width):
-        work[BIT + k] = strings.bit[start + k]
-        work[SIGMA + k] = strings.sigma[start + k]
-        work[SCALE + k] = strings.scale[start + k]
+        t = start + k
+        work[BIT + k], work[TENSION + k], work[SCALE + k] = strings.bit[t], -strings.load[t], strings.scale[t]
+        work[SIGMA + k] = strings.sigma[t]
+        room.first[k] = int(strings.bit[t] * inv_step + 0.5)
+        deepest = max(deepest, strings.bit[t])
         for p in range(len(strings.factor)):
-            factor[p * LANES + k] = strings.factor[p, start + k] * strings.sigma[start + k]
+            room.factor[p * LANES + k] = strings.factor[p, t] * strings.sigma[t]
+    return deepest
+
+
+@njit(cache=True)
+def _store(found: Found, start: int, width: int, room: _Room) -> None:
+    """Write what a block came to."""
+    for k in range(width):
+        found.weight[start + k] = room.work[TENSION + k]
+        if len(found.arm) > 0:
+            found.arm[start + k] = room.work[ARM + k]
+        if len(found.ratio) > 0:
+            found.ratio[start + k] = room.work[RATIO + k]
+        for p in range(found.slopes.shape[1]):
+            found.slopes[start + k, p] = room.by[p, k]
+
+
+@njit(cache=True, error_model="numpy", inline="always")
+def _climb(setting: Setting, ground: Ground, room: _Room, width: int, last: int, ask: Ask) -> None:
+    """March a block from its bits up to the element that reaches through the rotary for the deepest."""
+    # out of their tuples once: each look into one counts references
+    x, node, weights, radius = setting.pipe.x, setting.pipe.node, setting.pipe.weight, setting.pipe.radius
+    rows, sections, least, kinds = ground.rows, ground.section, ground.least, setting.criteria.kind
+    work, stage, factor, first, at, section, by, by_slope = room
+    for j in range(last + 1):
+        _fetch(rows, first, (node[j] + node[j + 1]) >> 1, stage, at, width)
+        _rub(sections, at, factor, section, work, width)
+        pressed = _step(work, stage, (x[j], x[j + 1]), weights[j], width)
+        work[HELIX:DRAG] = 0.0
+        if ask.helices and pressed > 0 and _near(least[kinds[j]], at, work, width) > 0:
+            _helices(setting, work, at, j, width)
+        if ask.ratio and pressed > 0:
+            _judge(setting, work, at, j, width)
+        if ask.arm:
+            _turn(work, radius[j], width)
+        if ask.slopes:
+            _differentiate(work, stage, weights[j], width)
+            _carry(work, section, by, by_slope, width)
 
 
 @njit(cache=True, error_model="numpy", nogil=True)
-def weigh_lanes(setting: Setting, ground: Ground, strings: Strings, weight: Array, slopes: Array) -> None:
-    """Weigh strings at the rotary, bit free, helical contact where it has latched [N]; NaN past lockup.
+def march_lanes(setting: Setting, ground: Ground, strings: Strings, helices: bool, found: Found) -> None:
+    """March strings from the bit up to the rotary.
 
     Parameters
     ----------
@@ -200,41 +317,25 @@ def weigh_lanes(setting: Setting, ground: Ground, strings: Strings, weight: Arra
         Its own friction is not used.
     ground, strings : Ground, Strings
         Hole and strings.
-    weight : ndarray, shape (k,)
-        Filled with the weights [N].
-    slopes : ndarray, shape (k, sections + 1)
-        Filled with their derivatives against each section's friction and against the scale [N per unit]; of
-        no column where they are not asked.
+    helices : bool
+        Whether the string carries helical contact where it is pressed past the onset.
+    found : Found
+        Filled.
     """
-    # out of their tuples once: each look into one counts references
-    x, node, weights = setting.pipe.x, setting.pipe.node, setting.pipe.weight
-    rows, sections, least, kinds = ground.rows, ground.section, ground.least, setting.criteria.kind
-    asked = slopes.shape[1]
-    work, stage, factor = np.empty(ROWS * LANES), np.zeros(4 * LANES), np.zeros(len(strings.factor) * LANES)
-    first, section = np.zeros(LANES, dtype=np.int64), np.zeros(LANES, dtype=np.int64)
-    at = np.zeros(LANES, dtype=np.uint64)
-    by, by_slope = np.zeros((asked, LANES)), np.zeros((asked, LANES))
+    asked = found.slopes.shape[1]
+    room = _Room(
+        np.empty(ROWS * LANES),
+        np.zeros(4 * LANES),
+        np.zeros(len(strings.factor) * LANES),
+        np.zeros(LANES, dtype=np.int64),
+        np.zeros(LANES, dtype=np.uint64),
+        np.zeros(LANES, dtype=np.int64),
+        np.zeros((asked, LANES)),
+        np.zeros((asked, LANES)),
+    )
+    ask = Ask(helices, len(found.ratio) > 0, len(found.arm) > 0, asked > 0)
     for start in range(0, len(strings.bit), LANES):
         width = min(LANES, len(strings.bit) - start)
-        _load(strings, start, width, work, factor)
-        by[:, :] = 0.0
-        by_slope[:, :] = 0.0
-        deepest = 0.0
-        for k in range(width):
-            first[k] = int(work[BIT + k] * setting.hole.inv_step + 0.5)
-            deepest = max(deepest, work[BIT + k])
-        for j in range(top_element(x, deepest) + 1):
-            _fetch(rows, first, (node[j] + node[j + 1]) >> 1, stage, at, width)
-            _rub(sections, at, factor, section, work, width)
-            pressed = _step(work, stage, (x[j], x[j + 1]), weights[j], width)
-            work[HELIX:DRAG] = 0.0
-            if pressed > 0 and _near(least[kinds[j]], at, work, width) > 0:
-                _helices(setting, work, at, j, width)
-            if asked > 0:
-                _differentiate(work, stage, weights[j], width)
-                _carry(work, section, by, by_slope, width)
-        for k in range(width):
-            locked = work[TENSION + k] < RUN_AWAY
-            weight[start + k] = np.nan if locked else work[TENSION + k]
-            for p in range(asked):
-                slopes[start + k, p] = np.nan if locked else by[p, k]
+        deepest = _load(strings, setting.hole.inv_step, start, width, room)
+        _climb(setting, ground, room, width, top_element(setting.pipe.x, deepest), ask)
+        _store(found, start, width, room)

@@ -10,13 +10,11 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from forensics.case import CriteriaSettings
-from forensics.mechanics.grid import HoleGrid, PipeGrid, hole_grid, pipe_grid, weight_in_air
+from forensics.mechanics.grid import hole_grid, pipe_grid, weight_in_air
 from forensics.mechanics.kernels_judge import Setting
-from forensics.mechanics.kernels_lanes import Ground, Strings, least_onset, weigh_lanes
-from forensics.mechanics.kernels_march import torque_up_many
-from forensics.mechanics.kernels_offbottom import press_many, weigh_many
+from forensics.mechanics.kernels_lanes import Found, Ground, Strings, least_onset, march_lanes
+from forensics.mechanics.kernels_march import RUN_AWAY, Hole, Pipe
 from forensics.mechanics.limits import tabulate
-from forensics.mechanics.softstring import hole_arrays, pipe_arrays
 from forensics.well.model import Well
 
 Floats = NDArray[np.float64]
@@ -68,16 +66,20 @@ class OffBottomModel:
     ) -> None:
         self.well = well
         self.block_zero = block_zero
-        self.hole: HoleGrid = hole_grid(well, depth)
+        self.hole = hole = hole_grid(well, depth)
         settings = CriteriaSettings() if criteria is None else criteria
-        self.pipe: PipeGrid = pipe_grid(well, depth, settings.clearance)
-        self.hole_arrays = hole_arrays(self.hole)
-        self.pipe_arrays = pipe_arrays(self.pipe)
-        self.criteria = tabulate(well, self.hole, self.pipe, settings)
+        self.pipe = pipe = pipe_grid(well, depth, settings.clearance)
+        self.hole_arrays = Hole(
+            1.0 / hole.step, hole.cos_i, hole.sin2, hole.kappa2, hole.kappa_d, hole.diameter
+        )
+        self.pipe_arrays = Pipe(
+            pipe.x, pipe.node, pipe.weight, pipe.ei, pipe.ea, pipe.clearance_od, pipe.radius
+        )
+        self.criteria = tabulate(well, hole, pipe, settings)
         self.edges: tuple[float, ...] = ()
-        self.section = self.hole.open_hole.astype(np.int64)
+        self.section = hole.open_hole.astype(np.int64)
         self.smooth = self.setting(0.0, 0.0)
-        rows = np.stack([self.hole.cos_i, self.hole.sin2, self.hole.kappa2, self.hole.kappa_d], axis=1)
+        rows = np.stack([hole.cos_i, hole.sin2, hole.kappa2, hole.kappa_d], axis=1)
         self.ground = Ground(rows.ravel(), self.section, least_onset(self.criteria))
 
     def divided(self, edges: Sequence[float]) -> OffBottomModel:
@@ -154,9 +156,7 @@ class OffBottomModel:
         scale : array_like, shape () or (k,)
             Multiplies all weights (mud or weight-per-length correction).
         """
-        bits = np.atleast_1d(np.asarray(bit_depth, dtype=float))
-        scales = np.broadcast_to(np.asarray(scale, dtype=float), bits.shape).copy()
-        return weigh_many(self.setting(cased, *opened), bits, scales, SIGMA[kind])
+        return self._march(self._strings(bit_depth, SIGMA[kind], (cased, *opened), scale)).weight
 
     def string_weights(self, kind: str, bit_depth: ArrayLike, cased: ArrayLike, *opened: ArrayLike) -> Floats:
         """Hookload of the string alone at many friction factors, bit free [N], shape (strings, k).
@@ -174,8 +174,8 @@ class OffBottomModel:
         factors = np.atleast_2d(self._factors((cased, *opened)).T).T
         count = factors.shape[1]
         # strings at one depth lie side by side: what the hole does there is then at hand
-        lanes = np.repeat(bits, count), np.full(len(bits) * count, SIGMA[kind]), np.ones(len(bits) * count)
-        return self._weigh(Strings(*lanes, np.tile(factors, len(bits))), False)[0].reshape(-1, count).T
+        strings = self._strings(np.repeat(bits, count), SIGMA[kind], np.tile(factors, len(bits)), 1.0)
+        return self._march(strings).weight.reshape(-1, count).T
 
     def weigh_readings(
         self, kinds: Sequence[str], bit_depth: ArrayLike, factors: Sequence[float], scale: ArrayLike = 1.0
@@ -200,34 +200,82 @@ class OffBottomModel:
             Weights and their derivatives. Where the string presses itself into a helix, derivatives are those
             at the helix's present extent.
         """
-        bits = np.atleast_1d(np.asarray(bit_depth, dtype=float))
-        order = np.argsort(bits, kind="stable")
-        sigma = np.array([SIGMA[kind] for kind in kinds], dtype=float)[order]
-        scales = np.broadcast_to(np.asarray(scale, dtype=float), bits.shape)[order]
-        lanes = np.repeat(self._factors(factors)[:, None], len(bits), axis=1)
-        weight, slopes = np.empty(len(bits)), np.empty((len(bits), len(lanes) + 1))
-        weight[order], slopes[order] = self._weigh(Strings(bits[order], sigma, scales, lanes), True)
-        return Weighed(weight, slopes[:, :-1], slopes[:, -1])
+        sigma = np.array([SIGMA[kind] for kind in kinds], dtype=float)
+        found = self._march(self._strings(bit_depth, sigma, factors, scale), slopes=True)
+        return Weighed(found.weight, found.slopes[:, :-1], found.slopes[:, -1])
 
-    def _weigh(self, strings: Strings, derive: bool) -> tuple[Floats, Floats]:
-        """Weights, shape (k,), and where asked their derivatives, shape (k, sections + 1)."""
-        count = len(strings.bit)
-        weight = np.empty(count)
-        slopes = np.empty((count, len(strings.factor) + 1 if derive else 0))
-        weigh_lanes(self.smooth, self.ground, strings, weight, slopes)
-        return weight, slopes
+    def loaded_weight(
+        self,
+        bit_depth: ArrayLike,
+        load: ArrayLike,
+        factors: Sequence[ArrayLike],
+        scale: ArrayLike = 1.0,
+    ) -> Floats:
+        """Hookload of a string that slides down on a loaded bit, no helix anywhere [N], shape (k,).
+
+        Parameters
+        ----------
+        bit_depth : array_like, shape (k,)
+            [m]
+        load : array_like, shape () or (k,)
+            Bit load [N].
+        factors : sequence of array_like, length S, each of shape () or (k,)
+            Friction factor of the cased hole and of each open section, or one for all of those.
+        scale : array_like, shape () or (k,)
+            Multiplies all weights.
+        """
+        strings = self._strings(bit_depth, SIGMA["slack_off"], factors, scale)
+        loads = np.broadcast_to(np.asarray(load, dtype=float), strings.bit.shape)
+        return self._march(strings._replace(load=loads), helices=False).weight
+
+    def _strings(
+        self, bit_depth: ArrayLike, sigma: ArrayLike, factors: Sequence[ArrayLike], scale: ArrayLike
+    ) -> Strings:
+        """Strings with free bits, what is one for all of them repeated."""
+        bits = np.atleast_1d(np.asarray(bit_depth, dtype=float))
+        sigmas, scales = (np.broadcast_to(np.asarray(v, dtype=float), bits.shape) for v in (sigma, scale))
+        told = self._factors(factors)
+        lanes = np.broadcast_to(told.reshape(len(told), -1), (len(told), len(bits)))
+        return Strings(bits, sigmas, scales, np.zeros(len(bits)), lanes)
+
+    def _march(
+        self,
+        strings: Strings,
+        *,
+        helices: bool = True,
+        arm: bool = False,
+        ratio: bool = False,
+        slopes: bool = False,
+    ) -> Found:
+        """March strings in the order of their depths; give what is asked in the order they came."""
+        bits, deepest = strings.bit, (len(self.hole.cos_i) - 1.5) * self.hole.step
+        if not np.all((bits >= 0.0) & (bits <= deepest)):
+            came = f"{bits.min()} to {bits.max()} m"
+            raise ValueError(f"bit depths of {came} came; expected 0 to {deepest} m, what the tables cover")
+        order = slice(None) if np.all(bits[1:] >= bits[:-1]) else np.argsort(bits, kind="stable")
+        # copies: one type for the compiler, which tells arrays that may not be written from those that may
+        ordered = Strings(*(np.array(column[..., order], order="C") for column in strings))
+        count, columns = len(bits), len(strings.factor) + 1 if slopes else 0
+        sizes = (count, count if arm else 0, count if ratio else 0, (count, columns))
+        found, placed = (Found(*(np.empty(size) for size in sizes)) for _ in range(2))
+        march_lanes(self.smooth, self.ground, ordered, helices, found)
+        locked = found.weight < RUN_AWAY
+        found.weight[locked], found.slopes[locked] = np.nan, np.nan
+        found.ratio[locked[: len(found.ratio)]] = np.inf
+        for column, where in zip(found, placed, strict=True):
+            if len(column):
+                where[order] = column
+        return placed
 
     def slack_off_ratio(self, bit_depth: ArrayLike, cased: float, *opened: float) -> Floats:
         """Largest load ratio anywhere while slacking off with the bit free, shape (k,)."""
-        bits = np.atleast_1d(np.asarray(bit_depth, dtype=float))
-        return press_many(self.setting(cased, *opened), bits)
+        strings = self._strings(bit_depth, SIGMA["slack_off"], (cased, *opened), 1.0)
+        return self._march(strings, ratio=True).ratio
 
     def torque(self, bit_depth: ArrayLike, factor: float, scale: ArrayLike = 1.0) -> Floats:
         """Torque that turns the string off bottom at rotational friction `factor` [N.m], shape (k,)."""
-        bits = np.atleast_1d(np.asarray(bit_depth, dtype=float))
-        scales = np.broadcast_to(np.asarray(scale, dtype=float), bits.shape).copy()
-        mu = np.full(len(self.hole.cos_i), factor)
-        return torque_up_many(self.hole_arrays, self.pipe_arrays, mu, bits, scales)
+        strings = self._strings(bit_depth, SIGMA["rotating"], (0.0, 0.0), scale)
+        return factor * self._march(strings, arm=True).arm
 
     def open_length(self, bit_depth: ArrayLike) -> Floats:
         """Length of string in open hole [m], shape (k,)."""

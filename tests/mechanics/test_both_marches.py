@@ -9,9 +9,9 @@ import pytest
 
 from forensics.case import Case, FluidSettings, LogSettings
 from forensics.mechanics.kernels_replay import REACH, SLIDE, Rules, Samples
-from forensics.mechanics.softstring import tension_from_bit
 from forensics.replay.model import build_model
 from forensics.replay.room import fresh, go
+from tests.marches import tension_from_bit
 from tests.wells import build_well
 
 HERE = Path()
@@ -56,8 +56,7 @@ def test_down_from_the_hookload_is_up_from_the_bit_load(factor, weight):
     )
     assert now[REACH] == 0
     assert memory.state.max() < 2
-    friction = np.full(len(model.hole.cos_i), factor)
-    _, up = tension_from_bit(model.hole, model.pipe, friction, BIT, 1.0, float(memory.tension[0]))
+    _, up = tension_from_bit(model, factor, BIT, 1.0, float(memory.tension[0]))
     # both extrapolate to the middle of an element from the side they come from: hence newtons, not nothing
     np.testing.assert_allclose(up, memory.tension[: len(up)], atol=1e-4 * weight)
     assert 0 < -memory.tension[0] < weight

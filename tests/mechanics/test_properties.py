@@ -12,14 +12,13 @@ from hypothesis import assume, given, settings
 from hypothesis import strategies as st
 
 from forensics.mechanics import grid
-from forensics.mechanics.grid import hole_grid, pipe_grid
 from forensics.mechanics.offbottom import OffBottomModel
-from forensics.mechanics.softstring import tension_from_bit
 from forensics.well.fluid import constant_fluid
 from forensics.well.hole import Hole
 from forensics.well.model import Well
 from forensics.well.string import Component, String
 from forensics.well.trajectory import build_trajectory
+from tests.marches import tension_from_bit
 from tests.naive_string import lateral_load
 from tests.wells import build_well
 
@@ -73,11 +72,9 @@ def test_turning_string_hangs_between_picking_up_and_slacking_off(bit, factor):
 @given(BIT, st.floats(0.01, 0.6), st.floats(0.0, 0.99), st.sampled_from([-1.0, 1.0]))
 def test_rotating_drag_is_below_sliding_drag(bit, factor, share, way):
     # friction shared with rotation: the axial share is v / sqrt(v^2 + (omega R)^2), below one
-    one = model()
-    friction = np.full(len(one.hole.cos_i), factor)
 
     def top(sigma: float) -> float:
-        return float(tension_from_bit(one.hole, one.pipe, friction, bit, sigma)[1][-1])
+        return float(tension_from_bit(model(), factor, bit, sigma)[1][-1])
 
     still, slides, turns = top(0.0), top(way), top(way * share)
     assert abs(turns - still) <= abs(slides - still) + 1e-6
@@ -87,10 +84,8 @@ def test_rotating_drag_is_below_sliding_drag(bit, factor, share, way):
 @given(st.floats(0.05, 0.5), st.floats(1e3, 1e6))
 def test_capstan_limit(factor, pull):
     # exact for a weightless string in a bend: T e^(mu theta), here over 90 degrees
-    well = arc(1000.0, turn=False, pounds=1e-9)
-    hole, pipe = hole_grid(well, 1000.0), pipe_grid(well, 1000.0)
-    friction = np.full(len(hole.cos_i), factor)
-    tension = tension_from_bit(hole, pipe, friction, 1000.0, -1.0, pull)[1][-1]
+    light = OffBottomModel(arc(1000.0, turn=False, pounds=1e-9), 1000.0)
+    tension = tension_from_bit(light, factor, 1000.0, -1.0, pull)[1][-1]
     assert tension == pytest.approx(pull * math.exp(factor * math.pi / 2), rel=2e-4)
 
 
@@ -122,9 +117,8 @@ def test_error_falls_with_the_square_of_the_station_spacing(sigma, monkeypatch):
     found = []
     for spacing in (80.0, 40.0, 20.0, 10.0):
         monkeypatch.setattr(grid, "STATION_STEP", spacing)
-        hole, pipe = hole_grid(well, length), pipe_grid(well, length)
-        friction = np.full(len(hole.cos_i), factor)
-        found.append(float(tension_from_bit(hole, pipe, friction, length, sigma, pull)[1][-1]))
+        spaced = OffBottomModel(well, length)
+        found.append(float(tension_from_bit(spaced, factor, length, sigma, pull)[1][-1]))
     # what is left of the error is that of placing directions to a quarter of a metre, the same for all
     assert found[-1] == pytest.approx(exact, rel=1e-4)
     steps = np.diff(found)
@@ -136,8 +130,7 @@ def test_error_falls_with_the_square_of_the_station_spacing(sigma, monkeypatch):
 def test_forces_on_the_string_balance(bit, factor, sigma, bit_load):
     """Pull at the rotary: the weight hanging, less the bit's push, and friction on what is pressed."""
     one = model()
-    friction = np.full(len(one.hole.cos_i), factor)
-    md, tension = tension_from_bit(one.hole, one.pipe, friction, bit, sigma, -bit_load)
+    md, tension = tension_from_bit(one, factor, bit, sigma, -bit_load)
     middle, length = 0.5 * (md[:-1] + md[1:]), md[:-1] - md[1:]
     way = one.well.trajectory.at(middle)
     weights = one.pipe.weight[: len(middle)]
@@ -158,8 +151,7 @@ def test_forces_on_the_string_balance(bit, factor, sigma, bit_load):
 def test_marching_back_down_comes_to_the_same_bit_load(bit, factor, bit_load):
     """Off lockup both ways are well-posed: down from the hookload that the march up found."""
     one = model()
-    friction = np.full(len(one.hole.cos_i), factor)
-    md, tension = tension_from_bit(one.hole, one.pipe, friction, bit, 1.0, -bit_load)
+    md, tension = tension_from_bit(one, factor, bit, 1.0, -bit_load)
     # a plain march down in small steps, its directions looked up anew
     step = 1.0
     edges = np.append(np.arange(0.0, bit, step), bit)

@@ -10,9 +10,9 @@ import pytest
 
 from forensics.mechanics.grid import hole_grid, pipe_grid
 from forensics.mechanics.offbottom import OffBottomModel
-from forensics.mechanics.softstring import tension_from_bit, torque_from_bit
 from forensics.well.likely import STATION_SIGMA
 from forensics.well.trajectory import build_trajectory
+from tests.marches import tension_from_bit
 from tests.naive_string import tension_at_rotary
 from tests.wells import build_well, one_pipe_well
 
@@ -21,9 +21,7 @@ from tests.wells import build_well, one_pipe_well
 @pytest.mark.parametrize(("bit", "load"), [(800.0, 0.0), (1700.0, 40e3), (3300.0, 0.0)])
 def test_agrees_with_plain_small_steps(sigma, bit, load):
     well = build_well(turn=0.3)
-    hole, pipe = hole_grid(well, 3400.0), pipe_grid(well, 3400.0)
-    friction = np.full(len(hole.cos_i), 0.27)
-    md, tension = tension_from_bit(hole, pipe, friction, bit, sigma, -load)
+    md, tension = tension_from_bit(OffBottomModel(well, 3400.0), 0.27, bit, sigma, -load)
     slow = tension_at_rotary(well, 0.27, bit, sigma, -load)
     assert md[0] == bit
     assert md[-1] == pytest.approx(0.0, abs=1e-9)
@@ -51,11 +49,9 @@ def test_straight_hole_closed_form():
 
 def test_torque_of_a_horizontal_string_is_mu_w_l_r():
     """Exact: contact is the weight, everywhere."""
-    well = one_pipe_well(math.pi / 2, 1500.0)
-    hole, pipe = hole_grid(well, 1500.0), pipe_grid(well, 1500.0)
-    friction = np.full(len(hole.cos_i), 0.22)
-    exact = 0.22 * pipe.weight[0] * 1500.0 * 0.084
-    assert torque_from_bit(hole, pipe, friction, 1500.0) == pytest.approx(exact, rel=1e-6)
+    model = OffBottomModel(one_pipe_well(math.pi / 2, 1500.0), 1500.0)
+    exact = 0.22 * model.pipe.weight[0] * 1500.0 * 0.084  # half the joints' diameter
+    assert model.torque(1500.0, 0.22)[0] == pytest.approx(exact, rel=1e-6)
 
 
 @pytest.mark.parametrize("azimuth", [0.0, 1.3, 3.0, 5.9])

@@ -19,36 +19,36 @@ import pytest
 
 from field import DEG_PER_100FT, FOOT, FT_LBF, INCH, LB_PER_FT, LBF
 from forensics.mechanics import grid
-from forensics.mechanics.grid import HoleGrid, PipeGrid, hole_grid, pipe_grid
-from forensics.mechanics.softstring import tension_from_bit, torque_from_bit
+from forensics.mechanics.offbottom import OffBottomModel
 from forensics.well.fluid import constant_fluid
 from forensics.well.hole import Hole
 from forensics.well.model import Well
 from forensics.well.string import Component, String
 from forensics.well.trajectory import build_trajectory
+from marches import tension_from_bit
 
 MU = 0.3
+NOTHING = 1e-9  # lb/ft
 W1 = ([0, 3000, 5000, 10000], [0, 0, 60, 60], [0, 0, 0, 0])
 # a horizontal turn at 3 deg/100 ft from 4,000 to 6,000 ft, below a build at the same rate
 TURN = ([0, 1000, 2000, 3000, 4000, 5000, 6000], [0, 0, 30, 60, 90, 90, 90], [0, 0, 0, 0, 0, 30, 60])
 
 
-def grids(survey: tuple, pounds: float) -> tuple[HoleGrid, PipeGrid, float]:
-    """Give hole, pipe and bit depth of a well in which one weight per length hangs in air."""
+def hung(survey: tuple, pounds: float) -> tuple[OffBottomModel, float]:
+    """Give model and bit depth of a well in which one weight per length hangs in air."""
     md = np.array(survey[0]) * FOOT
     trajectory = build_trajectory(md, np.radians(survey[1]), np.radians(survey[2]))
     hole = Hole(np.array([0.0]), md[-1:] + 100, np.array([0.3]), ("open",), ("",), np.array([np.nan]))
     # 6.625 in joints: contact radius 3.3125 in
     part = Component("p", "drillpipe", 9e3, 5 * INCH, 4.276 * INCH, pounds * LB_PER_FT, 6.625 * INCH)
     well = Well(trajectory, hole, String((part,)), constant_fluid(0.0))
-    return hole_grid(well, md[-1]), pipe_grid(well, md[-1]), float(md[-1])
+    return OffBottomModel(well, float(md[-1])), float(md[-1])
 
 
 def along(survey: tuple, pounds: float, sigma: float, end: float = 0.0) -> tuple[np.ndarray, np.ndarray]:
     """Give depth [ft] and tension [lbf], from the bit up."""
-    hole, pipe, bit = grids(survey, pounds)
-    friction = np.full(len(hole.cos_i), MU)
-    md, tension = tension_from_bit(hole, pipe, friction, bit, sigma, end * LBF)
+    model, bit = hung(survey, pounds)
+    md, tension = tension_from_bit(model, MU, bit, sigma, end * LBF)
     return md / FOOT, tension / LBF
 
 
@@ -95,8 +95,8 @@ def test_t_3_rotating_weighs_its_true_depth():
 
 
 def test_t_4_torque_off_bottom(tolerance):
-    hole, pipe, bit = grids(W1, 17)
-    torque = torque_from_bit(hole, pipe, np.full(len(hole.cos_i), MU), bit)
+    model, bit = hung(W1, 17)
+    torque = model.torque(bit, MU)[0]
     assert torque / FT_LBF == pytest.approx(9531.3304, rel=3 * tolerance)
 
 
@@ -119,29 +119,20 @@ def test_t_8_horizontal_turn():
 
 def test_t_9_capstan():
     # T0 exp(mu theta), theta 60 deg, no weight
-    md, tension = along(TURN, 0, -1.0, 50000)
+    md, tension = along(TURN, NOTHING, -1.0, 50000)
     assert at(md, tension, 4000) == pytest.approx(68455.3885, rel=1e-4)
 
 
 def test_t_10_capstan_factor_of_the_article():
     # five turns at 0.6 multiply by 153,552,935: so must our turn of 60 deg, raised to the same angle
-    md, tension = along(TURN, 0, -1.0, 1.0)
+    md, tension = along(TURN, NOTHING, -1.0, 1.0)
     per_radian = math.log(at(md, tension, 4000)) / math.radians(60) / MU
     assert math.exp(0.6 * 10 * math.pi * per_radian) == pytest.approx(153552935, rel=1e-3)
 
 
 def test_t_14_side_force_in_a_dogleg():
     # 100,000 lbf at 3 deg/100 ft: 52.359878 lbf/ft, 1570.7963 lbf over 30 ft
-    hole, _, _ = grids(TURN, 0)
+    hole = hung(TURN, NOTHING)[0].hole
     force = 100000 * LBF * math.sqrt(hole.kappa2[round(4500 * FOOT / hole.step)])
     assert force / LB_PER_FT == pytest.approx(52.359878, rel=1e-6)
     assert force * 30 * FOOT / LBF == pytest.approx(1570.7963, rel=1e-6)
-
-
-def test_torque_uses_the_joints_radius():
-    hole, pipe, bit = grids(W1, 17)
-    friction = np.where(np.arange(len(hole.cos_i)) * hole.step > 5010 * FOOT, MU, 0.0)
-    torque = torque_from_bit(hole, pipe, friction, bit)
-    # below the build only weight presses: friction x weight across x length x 3.3125 in
-    side = 17 * math.sin(math.radians(60)) * 4990
-    assert torque / FT_LBF == pytest.approx(MU * side * 3.3125 / 12, rel=3e-3)
