@@ -25,7 +25,7 @@ def fingerprints(case: Case, log: TimeLog) -> Mapping[str, str]:
     mapping of str to str
     """
     kept = (case.records.weights, case.records.slides)
-    tables = (case.path, case.survey, case.hole, case.string, case.fluid.file, *kept)
+    tables = (case.path, case.survey, case.hole, case.string, case.fluid.file, *kept, *case.logs.depth)
     digests = [(path, _digest(path)) for path in tables if path is not None]
     digests += [(record.path, record.sha256) for record in log.files if record.path is not None]
     names = Counter(path.name for path in {path for path, _ in digests})

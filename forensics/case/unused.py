@@ -18,9 +18,6 @@ def unused_settings(case: Case) -> tuple[str, ...]:
         One sentence a setting.
     """
     rig, said = case.rig, []
-    if case.logs.depth:
-        names = ", ".join(path.name for path in case.logs.depth)
-        said.append(f"[logs] depth ({names}) is not used by this version: no depth-indexed log is read.")
     if case.records.verdicts is not None:
         said.append(
             f"[records] verdicts ({case.records.verdicts.name}) is not used by this version: "

@@ -15,6 +15,8 @@ from forensics.channels import BY_NAME
 from forensics.errors import LogError, nearest
 from forensics.logs.clock import DAY, Clock, OpenOrderError, read_clock
 from forensics.logs.clock_offset import find_offsets
+from forensics.logs.depth_log import read_depth_logs
+from forensics.logs.depth_witness import hold_against_depth
 from forensics.logs.join import join
 from forensics.logs.lag import find_lags, tell_lags
 from forensics.logs.mapping import Mapped, keep, likely_unit, map_columns, missing_channel, wanted
@@ -137,6 +139,7 @@ def _assemble(case: Case, found: _Gathered) -> TimeLog:
     if not used.any():
         raise LogError(_nothing_left(reason), file=file)
     delays, delayed = tell_lags(find_lags(time, work.values, interval))
+    deep, doubted = hold_against_depth(time, work.values, read_depth_logs(case.logs.depth), found.records)
     return TimeLog(
         time=time,
         values=work.values,
@@ -145,9 +148,9 @@ def _assemble(case: Case, found: _Gathered) -> TimeLog:
         reason=reason,
         interval=interval,
         timezone=case.logs.timezone,
-        history=(*found.steps, *joined, *work.steps, *delays),
+        history=(*found.steps, *joined, *work.steps, *delays, *deep),
         files=tuple(found.records),
-        warnings=tuple(dict.fromkeys((*found.warnings, *remarks, *work.warnings, *delayed))),
+        warnings=tuple(dict.fromkeys((*found.warnings, *remarks, *work.warnings, *delayed, *doubted))),
     )
 
 

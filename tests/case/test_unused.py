@@ -37,7 +37,6 @@ def test_settings_that_take_effect_are_not_named():
 @pytest.mark.parametrize(
     ("changes", "named"),
     [
-        ({"logs": LogSettings((Path("log.csv"),), depth=(Path("deep.las"),))}, "deep.las"),
         ({"records": RecordSettings(verdicts=Path("verdicts.csv"))}, "verdicts.csv"),
         ({"rig": RigSettings(lines=12)}, "sheave_efficiency"),
         ({"rig": RigSettings(sheave_efficiency=0.98)}, "without lines"),
