@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING
 from forensics.case import Case
 from forensics.episodes.catalogue import Episode, Family, Headline
 from forensics.friction.result import Calibration
-from forensics.loads import Fan, LoadHistory, Profile
+from forensics.loads import DrawHistory, Fan, LoadHistory, Profile
 from forensics.logs.records import RecordedSlide, RecordedWeight
 from forensics.logs.table import TimeLog
 from forensics.rig.view import RigView
@@ -25,7 +25,8 @@ class Findings:
 
     `profiles` maps an episode id to the load profile at that episode's peak; `dropped` counts what the
     episode rules set aside, by reason; `inputs` maps a file's name to its SHA-256; `weights` and `slides`
-    are what the rig kept by hand; `tolls` tells by episode id what the main ones did to the pipe.
+    are what the rig kept by hand; `tolls` tells by episode id what the main ones did to the pipe; `draws`
+    is the replay repeated under all that is uncertain.
     """
 
     case: Case
@@ -45,3 +46,4 @@ class Findings:
     weights: tuple[RecordedWeight, ...] = ()
     slides: tuple[RecordedSlide, ...] = ()
     tolls: Mapping[str, PipeToll] = field(default_factory=dict)
+    draws: DrawHistory | None = None

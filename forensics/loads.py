@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import enum
 from dataclasses import dataclass
+from typing import ClassVar
 
 import numpy as np
 from numpy.typing import NDArray
@@ -166,16 +167,73 @@ class Fan:
 
 @dataclass(frozen=True)
 class DrawHistory:
-    """The replay repeated at k friction draws: arrays of shape (k, n).
+    """The replay repeated at k joint draws of what is uncertain, over m of the log's rows.
 
-    `weights` sum to 1. Rows outside `rows` (bool, shape (n,)) were not replayed and hold NaN.
+    Parameters
+    ----------
+    weights : ndarray, shape (k,)
+        Of the draws; they sum to 1.
+    factors : ndarray, shape (k, S)
+        Friction factors by section.
+    block : ndarray, shape (k,)
+        Block weight [N].
+    covered : ndarray of bool, shape (n,)
+        Rows of the log that the replay went through.
+    taken : ndarray of int, shape (m,)
+        Rows it took, ascending; each stands for the covered rows up to the next.
+    state : ndarray of int8, shape (k, m)
+        As `LoadHistory.state`; -1 where a draw was not replayed.
+    peak_ratio, compression, bit_load, top, bottom : ndarray of float32, shape (k, m)
+        As in `LoadHistory`.
+    multiple : ndarray of float32, shape (k, m)
+        Ordinary sliding drag over that of the calibrated replay.
+    depth : ndarray, shape (p,)
+        Bit depths of the lines [m].
+    lines : ndarray, shape (k, 3, p)
+        By how much the hookload modelled off bottom lies above the calibrated one: pick-up, rotating and
+        slack-off [N].
     """
 
     weights: Floats
-    cased: Floats
-    open: Floats
-    rows: NDArray[np.bool_]
+    factors: Floats
+    block: Floats
+    covered: NDArray[np.bool_]
+    taken: NDArray[np.int64]
     state: NDArray[np.int8]
     peak_ratio: NDArray[np.float32]
+    compression: NDArray[np.float32]
     bit_load: NDArray[np.float32]
+    top: NDArray[np.float32]
+    bottom: NDArray[np.float32]
+    multiple: NDArray[np.float32]
+    depth: Floats
+    lines: Floats
 
+    BY_ROW: ClassVar[tuple[str, ...]] = (
+        "state", "peak_ratio", "compression", "bit_load", "top", "bottom", "multiple",
+    )  # fmt: skip
+
+    def columns(self, rows: NDArray[np.int64]) -> NDArray[np.int64]:
+        """Find where each covered row of the log is told of, shape (len(rows),)."""
+        return np.maximum(np.searchsorted(self.taken, rows, side="right") - 1, 0)
+
+    def told(self, columns: NDArray[np.int64]) -> NDArray[np.bool_]:
+        """Mark the draws replayed over all the given columns, shape (k,)."""
+        return (self.state[:, columns] >= 0).all(axis=1)
+
+    def window(self, first: int, last: int) -> tuple[NDArray[np.int64], NDArray[np.int64]]:
+        """Find what tells of the rows from first to last, and how many rows each column stands for.
+
+        Parameters
+        ----------
+        first, last : int
+            Rows of the log, both in it.
+
+        Returns
+        -------
+        columns, counts : ndarray of int, shape (c,)
+            Empty where none of the rows was replayed.
+        """
+        rows = np.flatnonzero(self.covered[first : last + 1]) + first
+        columns, counts = np.unique(self.columns(rows), return_counts=True)
+        return columns, counts

@@ -10,7 +10,7 @@ from forensics.case import Case
 from forensics.case.unused import unused_settings
 from forensics.episodes.catalogue import Episode, Kind
 from forensics.episodes.describe import tell, weigh_episodes
-from forensics.episodes.find import flag_rows, rows_in_question
+from forensics.episodes.find import flag_rows, rows_in_doubt, rows_in_question
 from forensics.episodes.groups import are_many, load_clustering
 from forensics.episodes.material import Material
 from forensics.episodes.onsets import with_onsets
@@ -23,7 +23,7 @@ from forensics.logs.read import read_time_logs
 from forensics.logs.records import RecordedSlide, RecordedWeight, read_slides, read_weights
 from forensics.logs.table import TimeLog
 from forensics.mechanics.offbottom import OffBottomModel
-from forensics.replay.draws import replay_draws
+from forensics.replay.draws import more_draws, replay_draws
 from forensics.replay.lines import fan
 from forensics.replay.model import build_model
 from forensics.replay.moments import critical_load, profiles
@@ -155,9 +155,9 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
     with progress.stage("episodes", "finding episodes"):
         material = replace(material, flagged=flag_rows(material))
         wanted = rows_in_question(material)
-    with progress.stage("draws", "replaying under other friction"):
-        drawn = replay_draws(made, wanted)
-        material = replace(material, draws=drawn)
+    with progress.stage("draws", "replaying with all that is uncertain"):
+        material = replace(material, draws=replay_draws(made, wanted))
+        material = replace(material, draws=more_draws(made, material.draws, rows_in_doubt(material)))
     with progress.stage("episodes", "weighing episodes"):
         weighed = weigh_episodes(material)
     if are_many(weighed.episodes):
@@ -188,6 +188,7 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
         inputs=fingerprints(material.case, log),
         warnings=_remarks(material),
         tolls=tolls,
+        draws=material.draws,
     )
 
 

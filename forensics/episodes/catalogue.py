@@ -90,7 +90,9 @@ class Episode:
     would just buckle sideways, at the contact it then causes; `peak_residual` is that residual, measured less
     modelled [N or N.m], None for other kinds. `onsets` says which published helical onsets the compression
     passed, `onsets_beyond` which of them are used there beyond their range, `onsets_drop` what the surface
-    torque would take off each [N].
+    torque would take off each [N]. `bit_load` is what reached the bit at the peak [N], `ends` the buckled
+    interval's with how far they may be off [m] (both None for drag and torque); `probability_range` is the
+    90 % interval of the probability for the number of draws behind it.
     """
 
     id: str
@@ -120,6 +122,9 @@ class Episode:
     onsets: str = ""
     onsets_beyond: str = ""
     onsets_drop: float = float("nan")
+    bit_load: Estimate | None = None
+    ends: tuple[Estimate, Estimate] | None = None
+    probability_range: tuple[float, float] = (float("nan"), float("nan"))
 
     @property
     def duration(self) -> float:

@@ -7,8 +7,9 @@ from dataclasses import dataclass, replace
 import numpy as np
 from numpy.typing import NDArray
 
-from forensics.episodes import measure, rules, wording
+from forensics.episodes import chances, measure, rules, wording
 from forensics.episodes.catalogue import RESIDUAL_QUANTITY, Consequence, Episode, Kind, State
+from forensics.episodes.chances import Chance
 from forensics.episodes.consequence import consequence_of
 from forensics.episodes.material import Material
 from forensics.episodes.spans import Span, SpanRule, find_spans
@@ -69,12 +70,30 @@ def find_episodes(material: Material) -> tuple[tuple[Episode, ...], dict[str, in
 
 def rows_in_question(material: Material) -> Bools:
     """Mark the rows whose outcome under other friction matters: the spans of buckling and lockup."""
-    flagged, _ = flag_rows(material)
     wanted = np.zeros(len(material.log), dtype=bool)
-    for kind in (Kind.BUCKLING, Kind.LOCKUP):
-        for span in find_spans(flagged[kind], material.time, span_rule(material, kind))[0]:
-            wanted[span.rows] = True
+    for found in _loaded_spans(material):
+        wanted[found.span.rows] = True
     return wanted
+
+
+def rows_in_doubt(material: Material) -> Bools:
+    """Mark the rows of those of these spans whose rule holds in some draws only, or barely in all."""
+    wanted = np.zeros(len(material.log), dtype=bool)
+    for found in _loaded_spans(material):
+        if _chance(material, found).in_doubt:
+            wanted[found.span.rows] = True
+    return wanted
+
+
+def _loaded_spans(material: Material) -> list[Found]:
+    """Spans of buckling and lockup."""
+    flagged, signs = flag_rows(material)
+    found = []
+    for kind in (Kind.BUCKLING, Kind.LOCKUP):
+        rule = span_rule(material, kind)
+        spans, _ = find_spans(flagged[kind], material.time, rule)
+        found += [Found(kind, span, flagged[kind], rule.least, signs) for span in spans]
+    return found
 
 
 def flag_rows(material: Material) -> Flagged:
@@ -116,10 +135,11 @@ def _episode(material: Material, found: Found, lockups: list[Span]) -> Episode:
     peak = _peak(material, found)
     state = STATES[int(np.max(material.loads.state[span.rows]))]
     ratio = measure.peak_ratio(material, span, peak)
-    lost = measure.Lost(measure.NOTHING, measure.NOTHING)
+    lost, ends = measure.Lost(*[measure.NOTHING] * 3), (measure.NOTHING, measure.NOTHING)
     if kind in (Kind.BUCKLING, Kind.LOCKUP):
-        lost = measure.lost_weight(material, peak)
+        lost, ends = measure.lost_weight(material, peak), measure.depths_of(material, span)
     top, bottom = _depths(material, found)
+    chance = _chance(material, found)
     episode = Episode(
         id="",
         kind=kind,
@@ -134,12 +154,15 @@ def _episode(material: Material, found: Found, lockups: list[Span]) -> Episode:
         bottom_md=bottom,
         peak_md=_peak_depth(material, kind, peak),
         peak_load_ratio=ratio,
-        peak_compression=measure.peak_compression(material, peak, ratio),
+        peak_compression=measure.peak_compression(material, span, peak),
         lost_weight=lost.weight,
         lost_to_buckling=lost.to_buckling,
-        probability=_chance(material, found),
+        probability=chance.value,
         consequence=Consequence.NONE,
         peak_residual=measure.peak_residual(material, kind, peak),
+        bit_load=lost.bit_load,
+        ends=ends,
+        probability_range=(chance.low, chance.high),
     )
     consequence = consequence_of(material, episode, lockups)
     return replace(episode, consequence=consequence, note=_note(material, episode, consequence))
@@ -195,15 +218,15 @@ def _peak_depth(material: Material, kind: Kind, peak: int) -> float:
     return float(material.loads.peak_md[peak])
 
 
-def _chance(material: Material, found: Found) -> float:
+def _chance(material: Material, found: Found) -> Chance:
     span, least = found.span, found.least
     if found.kind is Kind.BUCKLING:
-        return measure.buckling_chance(material, span, least)
+        return chances.buckling_chance(material, span, least)
     if found.kind is Kind.LOCKUP:
-        return measure.lockup_chance(material, span, found.flags, found.signs)
+        return chances.lockup_chance(material, span, found.flags, found.signs)
     if found.kind is Kind.DRAG:
-        return measure.drag_chance(material, span, least)
-    return measure.torque_chance(material, span, least)
+        return chances.drag_chance(material, span, least)
+    return chances.torque_chance(material, span, least)
 
 
 def _note(material: Material, episode: Episode, consequence: Consequence) -> str:

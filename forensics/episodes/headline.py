@@ -18,9 +18,10 @@ from forensics.episodes.catalogue import (
 from forensics.episodes.causes.names import Cause
 from forensics.episodes.causes.weigh import UNTOLD
 from forensics.episodes.causes.words import cause_sentence
+from forensics.episodes.chances import CERTAIN
 from forensics.episodes.groups import DOING, is_routine, rule_label
 from forensics.episodes.material import NOISE_MULTIPLE, Material
-from forensics.episodes.measure import CERTAIN, helical_span
+from forensics.episodes.measure import helical_span
 from forensics.episodes.ordinary import near_threshold, ordinary_loss
 from forensics.episodes.sensitivity import sensitivity_sentence
 from forensics.episodes.spans import Span

@@ -8,28 +8,24 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics.episodes.catalogue import Kind
+from forensics.episodes.chances import Z90, drag_draws, rotational_spread
 from forensics.episodes.material import Material
-from forensics.episodes.rules import LockupSigns, locked_up
 from forensics.episodes.spans import Span
 from forensics.estimate import Estimate
 
 Floats = NDArray[np.float64]
 
-Z90 = 1.6448536269514722
-
 NOTHING = Estimate(float("nan"), float("nan"), float("nan"), "not applicable", determined=False)
 
-#: Share of a lockup's flagged rows that a draw must keep for the rule to hold in it.
-MOST = 0.5
-
-#: A chance is never told as more certain than this: the draws are few and the model is one.
-CERTAIN = 0.99
+#: Draws from which the ends of an interval are counted off; fewer don't show the twentieth part.
+ENOUGH = 40
 
 
 @dataclass(frozen=True)
 class Lost:
-    """Weight lost between surface and bit, and the part of it beyond ordinary sliding drag [N]."""
+    """Bit load at an episode's peak, weight lost above it, and the part beyond ordinary sliding drag [N]."""
 
+    bit_load: Estimate
     weight: Estimate
     to_buckling: Estimate
 
@@ -50,27 +46,68 @@ def peak_ratio(material: Material, span: Span, peak: int) -> Estimate:
         [-]
     """
     value = float(material.loads.peak_ratio[peak])
-    draws = material.draws
-    if draws is None or not draws.rows[span.rows].any():
-        return Estimate(value, float("nan"), float("nan"), "replay", determined=np.isfinite(value))
-    rows = np.arange(span.first, span.last + 1)[draws.rows[span.rows]]
-    with np.errstate(invalid="ignore"):
-        peaks = np.fmax.reduce(draws.peak_ratio[:, rows], axis=1).astype(float)
-    return around(value, peaks, draws.weights, "replay")
+    return about(value, _peaks(material, span, "peak_ratio"), "replay")
 
 
-def peak_compression(material: Material, peak: int, ratio: Estimate) -> Estimate:
-    """Compression at the peak [N]; its interval is the ratio's, the threshold being known better."""
+def peak_compression(material: Material, span: Span, peak: int) -> Estimate:
+    """Compression where the load ratio peaks [N], with its interval over the draws."""
     value = float(material.loads.peak_compression[peak])
-    if not (np.isfinite(ratio.low) and ratio.value > 0.0):
-        return Estimate(value, float("nan"), float("nan"), "replay", determined=np.isfinite(value))
-    return Estimate(
-        value,
-        value * ratio.low / ratio.value,
-        value * ratio.high / ratio.value,
-        "replay",
-        samples=ratio.samples,
-    )
+    return about(value, _peaks(material, span, "compression"), "replay")
+
+
+def _peaks(material: Material, span: Span, name: str) -> Floats:
+    """Values of each draw where its load ratio peaks, less what thinning takes off a peak, shape (k,)."""
+    draws = material.draws
+    if draws is None:
+        return np.zeros(0)
+    columns, _ = draws.window(span.first, span.last)
+    if len(columns) == 0:
+        return np.zeros(0)
+    told = draws.told(columns)
+    ratio = np.nan_to_num(draws.peak_ratio[np.ix_(told, columns)])
+    if not len(ratio):
+        return np.zeros(0)
+    at = columns[ratio.argmax(axis=1)]
+    found = getattr(draws, name)[np.flatnonzero(told), at].astype(float)
+    # the row of the peak itself may lie between the rows that were taken
+    loads = material.loads
+    whole = loads.peak_ratio[span.rows]
+    taken = draws.taken[columns]
+    best = taken[np.nan_to_num(loads.peak_ratio[taken]).argmax()]
+    values = {"peak_ratio": loads.peak_ratio, "compression": loads.peak_compression}[name]
+    missed = values[span.first + int(np.nan_to_num(whole).argmax())] - values[best]
+    return found + (float(missed) if np.isfinite(missed) else 0.0)
+
+
+def depths_of(material: Material, span: Span) -> tuple[Estimate, Estimate]:
+    """Find the ends of the buckled interval at its largest, over the draws [m].
+
+    Parameters
+    ----------
+    material : Material
+    span : Span
+
+    Returns
+    -------
+    top, bottom : Estimate
+        Not a number where nothing buckled.
+    """
+    loads, draws = material.loads, material.draws
+    length = loads.bottom[span.rows] - loads.top[span.rows]
+    if not np.isfinite(length).any():
+        return NOTHING, NOTHING
+    at = span.first + int(np.nanargmax(length))
+    values = float(loads.top[at]), float(loads.bottom[at])
+    ends = (np.zeros(0), np.zeros(0))
+    columns = np.zeros(0, dtype=np.int64) if draws is None else draws.window(span.first, span.last)[0]
+    if draws is not None and len(columns):
+        rows = np.flatnonzero(draws.told(columns))
+        top, bottom = draws.top[np.ix_(rows, columns)], draws.bottom[np.ix_(rows, columns)]
+        # a draw that buckles nowhere says nothing of where
+        widest = np.nan_to_num(bottom - top, nan=-1.0).argmax(axis=1)
+        pick = np.arange(len(rows)), widest
+        ends = (top[pick].astype(float), bottom[pick].astype(float))
+    return around(values[0], ends[0], "replay"), around(values[1], ends[1], "replay")
 
 
 def lost_weight(material: Material, peak: int) -> Lost:
@@ -85,29 +122,43 @@ def lost_weight(material: Material, peak: int) -> Lost:
     Returns
     -------
     Lost
-        [N]; not a number where the surface weight has no reference or the bit is off bottom.
+        [N]; weights not a number where the surface weight has no reference or the bit is off bottom.
     """
-    loads, draws = material.loads, material.draws
-    value = float(material.rig.wob_surface[peak] - loads.bit_load[peak])
-    if not np.isfinite(value):
-        return Lost(NOTHING, NOTHING)
-    straight = float(loads.straight_drag[peak])
-    beyond = max(value - straight, 0.0) if np.isfinite(straight) else float("nan")
+    loads = material.loads
+    bit = float(loads.bit_load[peak])
+    drawn, multiple = _bit_loads(material, peak)
     rms = material.calibration.residual_rms
     noise = Z90 * float(np.hypot(material.noise("hookload"), rms if np.isfinite(rms) else 0.0))
-    if draws is None or not draws.rows[peak] or not np.isfinite(draws.bit_load[:, peak]).any():
-        low, high = value - noise, value + noise
-        return Lost(
-            Estimate(value, low, high, "re-zeroed surface weight"),
-            Estimate(beyond, float("nan"), float("nan"), "replay", determined=bool(np.isfinite(beyond))),
-        )
-    lost = material.rig.wob_surface[peak] - draws.bit_load[:, peak].astype(float)
-    multiple = material.friction_multiple(np.array([peak]), draws.cased, draws.open)[:, 0]
+    load = _widened(around(bit, drawn, "replay"), noise, least=0.0)
+    value = float(material.rig.wob_surface[peak] - bit)
+    if not np.isfinite(value):
+        return Lost(load, NOTHING, NOTHING)
+    straight = float(loads.straight_drag[peak])
+    beyond = max(value - straight, 0.0) if np.isfinite(straight) else float("nan")
+    lost = float(material.rig.wob_surface[peak]) - drawn
     helical = np.maximum(lost - straight * multiple, 0.0)
+    weight = around(value, lost, "re-zeroed surface weight") if len(lost) else Estimate(
+        value, value, value, "re-zeroed surface weight"
+    )  # fmt: skip
     return Lost(
-        _widened(around(value, lost, draws.weights, "re-zeroed surface weight"), noise),
-        _widened(around(beyond, helical, draws.weights, "replay"), noise, least=0.0),
+        load, _widened(weight, noise), _widened(around(beyond, helical, "replay"), noise, least=0.0)
     )
+
+
+def _bit_loads(material: Material, row: int) -> tuple[Floats, Floats]:
+    """Bit load of each draw at a row [N], and its multiple of ordinary drag, shape (k,); empty without draws.
+
+    Between rows that were taken the bit load moves on as the calibrated one does.
+    """
+    draws = material.draws
+    if draws is None or not draws.covered[row]:
+        return np.zeros(0), np.zeros(0)
+    column = draws.columns(np.array([row]))
+    told = draws.told(column)
+    load = material.loads.bit_load
+    moved = float(load[row] - load[draws.taken[column[0]]])
+    found = draws.bit_load[told, column[0]].astype(float) + (moved if np.isfinite(moved) else 0.0)
+    return found, draws.multiple[told, column[0]].astype(float)
 
 
 def helical_span(material: Material, span: Span) -> tuple[float, float]:
@@ -129,94 +180,36 @@ def helical_span(material: Material, span: Span) -> tuple[float, float]:
     return float(top[at]), float(bottom[at])
 
 
-def around(value: float, samples: Floats, weights: Floats, source: str) -> Estimate:
-    """Estimate with the 90 % interval of weighted samples, widened to hold the value.
+def around(value: float, samples: Floats, source: str) -> Estimate:
+    """Estimate with the 90 % interval of samples, widened to hold the value.
 
-    With a handful of draws the ends are read off a normal curve of the samples' own spread where that is
-    wider than the samples: seven draws don't show the twentieth part.
+    With a handful of draws the ends are read off a normal curve of the samples' own spread: a dozen draws
+    don't show the twentieth part.
     """
-    known = np.isfinite(samples)
-    if not known.any() or not np.isfinite(value):
+    samples = samples[np.isfinite(samples)]
+    if len(samples) == 0 or not np.isfinite(value):
         return Estimate(value, float("nan"), float("nan"), source, determined=bool(np.isfinite(value)))
-    samples, weights = samples[known], weights[known] / weights[known].sum()
-    mean = float(weights @ samples)
-    spread = float(np.sqrt(weights @ (samples - mean) ** 2))
-    if len(samples) < 40:
-        low, high = mean - Z90 * spread, mean + Z90 * spread
+    if len(samples) < ENOUGH:
+        mean, half = float(np.mean(samples)), Z90 * float(np.std(samples))
+        low, high = mean - half, mean + half
     else:
-        order = np.argsort(samples)
-        low, high = np.interp([0.05, 0.95], np.cumsum(weights[order]), samples[order]).tolist()
+        low, high = np.quantile(samples, [0.05, 0.95]).tolist()
     return Estimate(value, min(low, value), max(high, value), source, samples=len(samples))
 
 
-def buckling_chance(material: Material, span: Span, least: float, state: int = 1) -> float:
-    """Chance that the string reaches `state` for at least `least` seconds within the span."""
-    draws = material.draws
-    if draws is None or not draws.rows[span.rows].any():
-        return float("nan")
-    rows = np.arange(span.first, span.last + 1)[draws.rows[span.rows]]
-    time = (draws.state[:, rows] >= state).sum(axis=1) * material.log.interval
-    held = time >= min(least, len(rows) * material.log.interval)
-    return _chance(held, draws.weights)
+def about(value: float, samples: Floats, source: str) -> Estimate:
+    """Do as `around` in logarithms, about the value as well: for a load over a threshold near nothing.
 
-
-def lockup_chance(material: Material, span: Span, flags: NDArray[np.bool_], signs: LockupSigns) -> float:
-    """Chance that the lockup rule holds on most of the rows flagged in the span."""
-    draws = material.draws
-    rows = np.flatnonzero(flags[span.rows]) + span.first
-    if draws is None or not draws.rows[rows].all():
-        return float("nan")
-    held = [
-        float(np.mean(locked_up(material, signs, load.astype(float))[rows])) >= MOST
-        for load in draws.bit_load
-    ]
-    return _chance(np.array(held), draws.weights)
-
-
-def drag_chance(material: Material, span: Span, least: float) -> float:
-    """Chance that the drag stays beyond its threshold for `least` seconds, over friction and block weight.
-
-    Parameters
-    ----------
-    material : Material
-    span : Span
-    least : float
-        [s]
-
-    Returns
-    -------
-    float
+    The likely path is smoother than any that is drawn, and its thresholds are lower: the truth may be either.
     """
-    draws = material.calibration.draws
-    rows = np.arange(span.first, span.last + 1)
-    rows = rows[np.isfinite(material.drag[rows])]
-    if len(draws) == 0 or len(rows) == 0:
-        return float("nan")
-    sign = material.friction_sign[rows]
-    residual = drag_draws(material, rows)
-    drag = np.where(sign == 0, np.abs(residual), residual * sign)
-    time = (drag > material.drag_threshold[rows]).sum(axis=1) * material.log.interval
-    return _chance(time >= least * (1.0 - 1e-9), np.full(len(draws), 1.0 / len(draws)))
-
-
-def drag_draws(material: Material, rows: NDArray[np.int64]) -> Floats:
-    """Hookload residuals at the calibration's draws, shape (k, m) [N].
-
-    Parameters
-    ----------
-    material : Material
-    rows : ndarray of int, shape (m,)
-
-    Returns
-    -------
-    ndarray, shape (k, m)
-    """
-    draws = material.calibration.draws
-    base = material.calibration.block_weight.value
-    moved = material.loads.model_hookload[rows] - base - material.rotating_weight[rows]
-    extra = material.friction_multiple(rows, draws[:, 0], draws[:, 1]) - 1.0
-    shift = extra * moved + (draws[:, 2] - base)[:, None]
-    return material.loads.drag_residual[rows] - shift
+    samples = samples[np.isfinite(samples) & (samples > 0.0)]
+    if len(samples) == 0 or not value > 0.0:
+        return around(value, samples, source)
+    level = np.log(samples)
+    own = float(np.log(value))
+    drawn, moved = around(own, level, source), around(own, level + own - level.mean(), source)
+    low, high = np.exp([min(drawn.low, moved.low), max(drawn.high, moved.high)]).tolist()
+    return Estimate(value, low, high, source, samples=len(samples))
 
 
 def peak_residual(material: Material, kind: Kind, peak: int) -> Estimate | None:
@@ -236,9 +229,8 @@ def peak_residual(material: Material, kind: Kind, peak: int) -> Estimate | None:
     """
     if kind is Kind.DRAG:
         value = float(material.loads.drag_residual[peak])
-        spread = (
-            float(np.std(drag_draws(material, np.array([peak])))) if len(material.calibration.draws) else 0.0
-        )
+        drawn = drag_draws(material, np.array([peak]))
+        spread = float(np.std(drawn)) if drawn.size else 0.0
         half = np.hypot(material.noise("hookload"), spread if np.isfinite(spread) else 0.0)
     elif kind is Kind.TORQUE:
         value = float(material.loads.torque_residual[peak])
@@ -248,34 +240,6 @@ def peak_residual(material: Material, kind: Kind, peak: int) -> Estimate | None:
     else:
         return None
     return Estimate(value, value - Z90 * float(half), value + Z90 * float(half), "measured less modelled")
-
-
-def rotational_spread(material: Material) -> float:
-    """One sigma of the rotational factor over its value; zero where there is none."""
-    factor = material.calibration.rotational
-    if factor is None or factor.value <= 0.0:
-        return 0.0
-    return (factor.high - factor.low) / (2.0 * Z90 * factor.value)
-
-
-def torque_chance(material: Material, span: Span, least: float) -> float:
-    """Chance that the torque stays beyond its threshold, over the rotational factor's interval."""
-    factor = material.calibration.rotational
-    rows = np.arange(span.first, span.last + 1)
-    rows = rows[np.isfinite(material.loads.torque_residual[rows])]
-    if factor is None or factor.value <= 0.0 or len(rows) == 0:
-        return float("nan")
-    sigma = rotational_spread(material)
-    quantiles = np.array([-1.645, -1.036, -0.674, -0.385, -0.126, 0.126, 0.385, 0.674, 1.036, 1.645])
-    shift = np.outer(sigma * quantiles, material.model_torque[rows])
-    residual = material.loads.torque_residual[rows] - shift
-    time = (residual > material.torque_threshold[rows]).sum(axis=1) * material.log.interval
-    return _chance(time >= least * (1.0 - 1e-9), np.full(len(quantiles), 1.0 / len(quantiles)))
-
-
-def _chance(held: NDArray[np.bool_], weights: Floats) -> float:
-    share = float(np.sum(weights[np.asarray(held, dtype=bool)]) / np.sum(weights))
-    return float(np.clip(share, 1.0 - CERTAIN, CERTAIN))
 
 
 def _widened(estimate: Estimate, by: float, least: float = -np.inf) -> Estimate:

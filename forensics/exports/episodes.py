@@ -24,6 +24,9 @@ ESTIMATES: Mapping[str, tuple[str, float, int]] = {
 # What the hook carries, or the top drive turns against, beyond the model at the peak; by the episode's kind.
 RESIDUALS: Mapping[str, Kind] = {"peak_drag_residual_kN": Kind.DRAG, "peak_torque_residual_kNm": Kind.TORQUE}
 ENDS = ("low", "high")
+# What came to the columns later with its interval, and what stood there without one.
+LATER = ("bit_load_kN",)
+BOUNDED = ("top_md_m", "bottom_md_m", "probability")
 COLUMNS = (
     "id",
     "start",
@@ -45,7 +48,8 @@ COLUMNS = (
     "critical_load_kN",
     "onsets",
     "onsets_beyond",
-    *(f"{name}{end}" for name in RESIDUALS for end in ("", *(f"_{end}" for end in ENDS))),
+    *(f"{name}{end}" for name in (*RESIDUALS, *LATER) for end in ("", *(f"_{end}" for end in ENDS))),
+    *(f"{name}_{end}" for name in BOUNDED for end in ENDS),
 )
 
 
@@ -89,6 +93,11 @@ def episode_row(episode: Episode, tz: dt.tzinfo) -> dict[str, Cell]:
         row |= _cells(name, getattr(episode, attribute), scale, decimals)
     for name, kind in RESIDUALS.items():
         row |= _cells(name, episode.peak_residual if episode.kind is kind else None, 1e3, 3)
+    row |= _cells("bit_load_kN", episode.bit_load, 1e3, 3)
+    unknown = (float("nan"), float("nan"))
+    ends = [unknown if end is None else (end.low, end.high) for end in episode.ends or (None, None)]
+    for name, bounds, decimals in zip(BOUNDED, (*ends, episode.probability_range), (2, 2, 4), strict=True):
+        row |= {f"{name}_{end}": number(value, decimals) for end, value in zip(ENDS, bounds, strict=True)}
     return {name: row[name] for name in COLUMNS}
 
 

@@ -13,6 +13,7 @@ from forensics.episodes.catalogue import State
 from forensics.findings import Findings
 from forensics.loads import Basis
 from forensics.logs.table import Floats, Reason
+from forensics.replay.bands import band
 from forensics.rig.view import Activity
 
 if TYPE_CHECKING:
@@ -93,6 +94,10 @@ COLUMNS = (
     "used",
     "reason",
     "wob_bit_limit_kN",
+    "wob_bit_low_kN",
+    "wob_bit_high_kN",
+    "peak_load_ratio_low",
+    "peak_load_ratio_high",
 )
 
 
@@ -116,6 +121,8 @@ def _measured(findings: Findings, rows: slice) -> dict[str, pa.Array]:
 def _reconstructed(findings: Findings, rows: slice) -> dict[str, pa.Array]:
     loads = findings.loads
     without = np.isnan(loads.bit_load[rows])
+    bit_low, bit_high = band(findings.draws, "bit_load", loads.bit_load, rows)
+    ratio_low, ratio_high = band(findings.draws, "peak_ratio", loads.peak_ratio, rows)
     return {
         "wob_bit_kN": _numbers(loads.bit_load[rows], KILO),
         "peak_load_ratio": _numbers(loads.peak_ratio[rows]),
@@ -126,6 +133,10 @@ def _reconstructed(findings: Findings, rows: slice) -> dict[str, pa.Array]:
         "drag_residual_kN": _numbers(loads.drag_residual[rows], KILO),
         "torque_residual_kNm": _numbers(loads.torque_residual[rows], KILO),
         "wob_bit_limit_kN": _numbers(_or_absent(loads.bit_load_limit, loads.bit_load)[rows], KILO),
+        "wob_bit_low_kN": _numbers(bit_low, KILO),
+        "wob_bit_high_kN": _numbers(bit_high, KILO),
+        "peak_load_ratio_low": _numbers(np.maximum(ratio_low, 0.0)),
+        "peak_load_ratio_high": _numbers(ratio_high),
     }
 
 

@@ -10,6 +10,7 @@ of the depth step.
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -17,6 +18,7 @@ from numpy.typing import NDArray
 from forensics.units import G
 from forensics.well.model import Well
 from forensics.well.string import Component, buoyed_weight
+from forensics.well.trajectory import Trajectory
 
 Floats = NDArray[np.float64]
 Ints = NDArray[np.int64]
@@ -44,6 +46,10 @@ class HoleGrid:
         False in casing.
     diameter : ndarray
         [m]
+    curvature, across : ndarray, shape (looks, 3)
+        Vectors of the curvature [1/m] and of what of the weight lies across the hole.
+    coarse : int
+        Steps that share one look at the path: looks = n / coarse, rounded up.
     """
 
     step: float
@@ -54,6 +60,9 @@ class HoleGrid:
     tvd: Floats
     open_hole: NDArray[np.bool_]
     diameter: Floats
+    curvature: Floats
+    across: Floats
+    coarse: int = 1
 
 
 @dataclass(frozen=True)
@@ -100,19 +109,37 @@ def hole_grid(well: Well, depth: float) -> HoleGrid:
     count = int(np.ceil((depth + STATION_STEP) / DEPTH_STEP)) + 2
     md = np.arange(count) * DEPTH_STEP
     middle = np.maximum(md - 0.5 * DEPTH_STEP, 0.0)
-    way = well.likely.mean.at(middle)
-    cos_i = way.tangent[:, 2]
-    curvature = way.curvature
     return HoleGrid(
         step=DEPTH_STEP,
-        cos_i=np.ascontiguousarray(cos_i),
-        sin2=np.maximum(1.0 - cos_i**2, 0.0),
-        kappa2=np.einsum("ij,ij->i", curvature, curvature),
-        kappa_d=np.ascontiguousarray(curvature[:, 2]),
         tvd=np.asarray(well.trajectory.at(md).tvd, dtype=float),
         open_hole=np.asarray(well.hole.is_open(middle), dtype=bool),
         diameter=np.asarray(well.hole.diameter_at(middle), dtype=float),
+        **directions(well.likely.mean, count),
     )
+
+
+def directions(path: Trajectory, count: int, coarse: int = 1) -> dict[str, Any]:
+    """Directions and bends of a path as `HoleGrid` holds them.
+
+    Parameters
+    ----------
+    path : Trajectory
+    count : int
+        Steps.
+    coarse : int
+        Steps that share one look at the path.
+    """
+    looks = -(-count // coarse)
+    middle = (np.arange(looks) * coarse + 0.5 * (coarse - 1) - 0.5) * DEPTH_STEP
+    tangent, curvature = path.bends(np.maximum(middle, 0.0))
+    cos_i = tangent[:, 2]
+    rows = np.column_stack(
+        [cos_i, np.maximum(1.0 - cos_i**2, 0.0), np.einsum("ij,ij->i", curvature, curvature), curvature[:, 2]]
+    )
+    fine = np.repeat(rows, coarse, axis=0)[:count].T.copy()
+    across = np.array([0.0, 0.0, 1.0]) - cos_i[:, None] * tangent
+    names = ("cos_i", "sin2", "kappa2", "kappa_d")
+    return dict(zip(names, fine, strict=True)) | {"curvature": curvature, "across": across, "coarse": coarse}
 
 
 def pipe_grid(well: Well, depth: float, clearance: str = "tool_joint") -> PipeGrid:
@@ -219,21 +246,16 @@ def wave_length(ei: Floats, clearance: Floats, weight: Floats) -> Floats:
     return 2.0 * np.pi * (ei * np.maximum(clearance, MIN_CLEARANCE) / weight) ** 0.25
 
 
-def averaged(hole: HoleGrid, well: Well, window: float) -> tuple[Floats, Floats, Floats]:
+def averaged(hole: HoleGrid, window: float) -> tuple[Floats, Floats, Floats]:
     """Coefficients of the lateral load averaged as a vector over `window` [m].
 
     Returns
     -------
-    tuple of three ndarrays, shape (n,)
+    tuple of three ndarrays, shape (looks,)
         a, b, c so that the size of the averaged load at tension T is sqrt(T² a + 2 T w b + w² c).
     """
-    md = np.arange(len(hole.cos_i)) * hole.step
-    way = well.likely.mean.at(np.maximum(md - 0.5 * hole.step, 0.0))
-    down = np.array([0.0, 0.0, 1.0])
-    weight_part = down - way.tangent[:, 2:3] * way.tangent
-    half = max(1, round(0.5 * window / hole.step))
-    kappa = _smooth(way.curvature, half)
-    across = _smooth(weight_part, half)
+    half = max(1, round(0.5 * window / (hole.step * hole.coarse)))
+    kappa, across = _smooth(hole.curvature, half), _smooth(hole.across, half)
     return (
         np.einsum("ij,ij->i", kappa, kappa),
         np.einsum("ij,ij->i", kappa, across),

@@ -5,12 +5,13 @@ from __future__ import annotations
 import copy
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from forensics.case import CriteriaSettings
-from forensics.mechanics.grid import hole_grid, pipe_grid, weight_in_air
+from forensics.mechanics.grid import HoleGrid, PipeGrid, hole_grid, pipe_grid, weight_in_air
 from forensics.mechanics.kernels_judge import Setting
 from forensics.mechanics.kernels_lanes import Found, Ground, Strings, least_onset, march_lanes
 from forensics.mechanics.kernels_march import RUN_AWAY, Hole, Pipe
@@ -41,6 +42,16 @@ class Weighed:
     by_scale: Floats
 
 
+def hole_arrays(hole: HoleGrid) -> Hole:
+    """Give the hole grid as compiled code takes it."""
+    return Hole(1.0 / hole.step, hole.cos_i, hole.sin2, hole.kappa2, hole.kappa_d, hole.diameter)
+
+
+def pipe_arrays(pipe: PipeGrid) -> Pipe:
+    """Give the pipe grid as compiled code takes it."""
+    return Pipe(pipe.x, pipe.node, pipe.weight, pipe.ei, pipe.ea, pipe.clearance_od, pipe.radius)
+
+
 class OffBottomModel:
     """String weight and torque off bottom, for many depths at once.
 
@@ -65,22 +76,22 @@ class OffBottomModel:
         block_zero: float = 0.0,
     ) -> None:
         self.well = well
+        self.depth = depth
         self.block_zero = block_zero
         self.hole = hole = hole_grid(well, depth)
-        settings = CriteriaSettings() if criteria is None else criteria
-        self.pipe = pipe = pipe_grid(well, depth, settings.clearance)
-        self.hole_arrays = Hole(
-            1.0 / hole.step, hole.cos_i, hole.sin2, hole.kappa2, hole.kappa_d, hole.diameter
-        )
-        self.pipe_arrays = Pipe(
-            pipe.x, pipe.node, pipe.weight, pipe.ei, pipe.ea, pipe.clearance_od, pipe.radius
-        )
-        self.criteria = tabulate(well, hole, pipe, settings)
+        self.settings = CriteriaSettings() if criteria is None else criteria
+        self.pipe = pipe_grid(well, depth, self.settings.clearance)
+        self.hole_arrays, self.pipe_arrays = hole_arrays(hole), pipe_arrays(self.pipe)
+        self.criteria = tabulate(hole, self.pipe, self.settings)
         self.edges: tuple[float, ...] = ()
         self.section = hole.open_hole.astype(np.int64)
         self.smooth = self.setting(0.0, 0.0)
-        rows = np.stack([hole.cos_i, hole.sin2, hole.kappa2, hole.kappa_d], axis=1)
-        self.ground = Ground(rows.ravel(), self.section, least_onset(self.criteria))
+
+    @cached_property
+    def ground(self) -> Ground:
+        """The hole as the weighing of strings side by side reads it."""
+        rows = np.stack([self.hole.cos_i, self.hole.sin2, self.hole.kappa2, self.hole.kappa_d], axis=1)
+        return Ground(rows.ravel(), self.section, least_onset(self.criteria))
 
     def divided(self, edges: Sequence[float]) -> OffBottomModel:
         """Cut the open hole into friction sections at measured depths; tables are shared.

@@ -64,13 +64,15 @@ class Excerpt:
         return values[np.searchsorted(self.rows, np.flatnonzero(self.covered), side="right") - 1]
 
 
-def excerpt(samples: Samples, time: Floats, wanted: NDArray[np.bool_]) -> Excerpt:
+def excerpt(
+    samples: Samples, time: Floats, wanted: NDArray[np.bool_], seconds: float = COARSE_SECONDS
+) -> Excerpt:
     """Take the wanted rows and what leads up to them, a few seconds apart.
 
     Each stretch begins with the string turning, which starts its memory anew, so that stretches may be
     replayed one after the other.
     """
-    stride = max(1, round(COARSE_SECONDS / float(np.median(np.diff(time)))))
+    stride = max(1, round(seconds / float(np.median(np.diff(time)))))
     parts = blocks(samples.mode, wanted)
     covered = np.zeros(len(time), dtype=bool)
     for start, stop in parts:

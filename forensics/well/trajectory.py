@@ -106,7 +106,7 @@ class Trajectory:
             At a station the direction is the station's, the curvature that of the arc below it.
         """
         depth = np.atleast_1d(np.asarray(md, dtype=np.float64))
-        tangent, curvature = self._turned(depth)
+        tangent, curvature = self.bends(depth)
         inclination = np.arctan2(np.hypot(tangent[:, 0], tangent[:, 1]), tangent[:, 2])
         return Directions(
             tangent, curvature, inclination, self._azimuth(depth, tangent), self.position(depth)[:, 2]
@@ -128,7 +128,8 @@ class Trajectory:
         result[below] = places[last] + along[below, None] * ahead
         return result
 
-    def _turned(self, depth: Floats) -> tuple[Floats, Floats]:
+    def bends(self, depth: Floats) -> tuple[Floats, Floats]:
+        """Find tangent and curvature only, as `at` gives them, shape (k, 3) each [-, 1/m]."""
         last = len(self.md) - 1
         tangent = np.zeros((len(depth), 3))
         curvature = np.zeros((len(depth), 3))

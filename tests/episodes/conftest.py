@@ -200,14 +200,25 @@ class Run:
             np.int8
         )
         load = self.loads["bit_load"] - spread * (scale - 1.0) * 10.0
+        def rows(values):
+            return np.broadcast_to(values, (k, self.n)).astype(np.float32)
+
+        line = 20.0e3 * np.linspace(-1.0, 1.0, k)[:, None, None] * np.array([1.0, 0.0, -1.0])[:, None]
         self.draws = DrawHistory(
-            np.full(k, 1.0 / k),
-            np.linspace(0.18, 0.22, k),
-            np.linspace(0.28, 0.32, k),
-            np.ones(self.n, bool),
-            state,
-            peak.astype(np.float32),
-            load.astype(np.float32),
+            weights=np.full(k, 1.0 / k),
+            factors=np.column_stack([np.linspace(0.18, 0.22, k), np.linspace(0.28, 0.32, k)]),
+            block=np.full(k, 300.0e3),
+            covered=np.ones(self.n, bool),
+            taken=np.arange(self.n),
+            state=state,
+            peak_ratio=peak.astype(np.float32),
+            compression=rows(self.loads["peak_compression"] * scale),
+            bit_load=load.astype(np.float32),
+            top=rows(np.where(state > 0, self.loads["top"] - 50.0 * (scale - 1.0), np.nan)),
+            bottom=rows(np.where(state > 0, self.loads["bottom"] + 50.0 * (scale - 1.0), np.nan)),
+            multiple=rows(scale),
+            depth=np.array([0.0, 6000.0]),
+            lines=np.broadcast_to(line, (k, 3, 2)),
         )
         return self
 

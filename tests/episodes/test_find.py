@@ -174,7 +174,7 @@ def test_lockup_off_bottom_needs_more_travel_than_stretch(make_run):
 
 @pytest.mark.parametrize("direction", ["in", "out"])
 def test_drag_beyond_a_tenth_of_the_rotating_weight(make_run, direction):
-    run = make_run().trip(direction, slice(500, 900), extra=60.0e3)
+    run = make_run().trip(direction, slice(500, 900), extra=60.0e3).with_draws()
     (episode,), _ = only(run.material(), Kind.DRAG)
     assert (episode.first, episode.last) == (500, 899)
     assert episode.activity == f"trip_{direction}"

@@ -47,6 +47,8 @@ def test_columns_begin_with_the_contracts(rows):
     assert names[: len(CONTRACT)] == CONTRACT
     assert set(names[len(CONTRACT) :]) == {
         *(f"{name}_{end}" for name in CONTRACT[10:14] for end in ("low", "high")),
+        *(f"{name}_{end}" for name in ("top_md_m", "bottom_md_m", "probability") for end in ("low", "high")),
+        *(f"bit_load_kN{end}" for end in ("", "_low", "_high")),
         "critical_load_kN",
         "onsets",
         "onsets_beyond",

@@ -31,6 +31,9 @@ CONTRACT = [
 ]
 
 
+BANDS = (("wob_bit", "_kN"), ("peak_load_ratio", ""))
+
+
 @pytest.fixture
 def written(findings, tmp_path):
     write_history(findings, tmp_path / "history.parquet")
@@ -38,7 +41,11 @@ def written(findings, tmp_path):
 
 
 def test_columns_are_the_contracts(written):
-    assert pq.read_schema(written).names == [*CONTRACT, "wob_bit_limit_kN"]
+    assert pq.read_schema(written).names == [
+        *CONTRACT,
+        "wob_bit_limit_kN",
+        *(f"{name}_{end}{unit}" for name, unit in BANDS for end in ("low", "high")),
+    ]
 
 
 def test_time_is_utc_and_keeps_fractions(written):

@@ -117,12 +117,15 @@ def episode_numbers(episode: Episode, show: Show, prefix: str = "") -> list[Numb
         ("largest load ratio (compression over sinusoidal load)", episode.peak_load_ratio, "dimensionless"),
         ("compression at that place", episode.peak_compression, "force"),
         ("compression at which it would just buckle there", Estimate(just, just, just, CRITERION), "force"),
+        ("bit load then", episode.bit_load, "force"),
         ("surface weight that did not reach the bit", episode.lost_weight, "force"),
         ("of it, lost to buckling rather than to ordinary drag", episode.lost_to_buckling, "force"),
     ]
     loaded = episode.kind in {Kind.BUCKLING, Kind.LOCKUP} or episode.peak_load_ratio.value > 0.0
     rows = [
-        number(prefix + name, e, q, show, "draw") for name, e, q in pairs if loaded and math.isfinite(e.value)
+        number(prefix + name, e, q, show, "draw")
+        for name, e, q in (*pairs, *_ends(episode))
+        if loaded and e is not None and math.isfinite(e.value)
     ]
     if episode.onsets:
         origin = f"{ONSETS}; {episode.onsets_beyond}" if episode.onsets_beyond else ONSETS
@@ -133,8 +136,18 @@ def episode_numbers(episode: Episode, show: Show, prefix: str = "") -> list[Numb
     if math.isfinite(episode.probability):
         origin = "share of the draws of friction, block weight and the like"
         name = f"{prefix}probability that its rule held"
-        rows.append(Number(name, fixed(episode.probability, 2), "", origin))
+        low, high = episode.probability_range
+        interval = f"{fixed(low, 2)} to {fixed(high, 2)}" if math.isfinite(high - low) else ""
+        rows.append(Number(name, fixed(episode.probability, 2), interval, origin))
     return rows
+
+
+def _ends(episode: Episode) -> tuple[tuple[str, Estimate, str], ...]:
+    """List the ends of the buckled interval."""
+    if episode.ends is None:
+        return ()
+    names = ("upper end of the buckled interval at its largest", "lower end of it")
+    return tuple((name, end, "length") for name, end in zip(names, episode.ends, strict=True))
 
 
 def rotation_notice(scene: Scene) -> list[Element]:
