@@ -38,7 +38,7 @@ KINDS: dict[str, Kind] = {
         Kind(HigherFriction.cause, HigherFriction, (*ANY, "line"), ("s_shape", "tangent", "lateral")),
         Kind(Cuttings.cause, Cuttings, ("drill", "pull", "pull", "wipe"),
              ("s_shape", "tangent", "tangent", "lateral")),
-        Kind(Tortuous.cause, Tortuous, ("pull", "run", "wipe", "drill"), ("s_shape", "tangent", "lateral")),
+        Kind(Tortuous.cause, Tortuous, ("pull", "run", "wipe", "wipe"), ("s_shape", "tangent", "lateral")),
         Kind(Ledge.cause, Ledge, ("run", "run", "wipe", "line")),
         Kind(Undergauge.cause, Undergauge, ("run",)),
         Kind(Sticking.cause, Sticking, ANY),
@@ -68,10 +68,9 @@ def make_trouble(cause: str, size: float, rng: np.random.Generator, physics: Phy
     """
     low, high, shoe = span["low"], span["high"], span["shoe"]
     maker = KINDS[cause].make
-    open_low = max(low, shoe + 20.0)
     if maker is Tortuous:
-        depth = rng.uniform(open_low - 150.0, max(open_low, 0.4 * low + 0.6 * high))
-        return Tortuous(size, rng, physics, depth=max(depth, shoe * 0.6))
+        depth = rng.uniform(0.8 * low + 0.2 * high, 0.45 * low + 0.55 * high)
+        return Tortuous(size, rng, physics, depth=max(depth, shoe + 10.0))
     if maker is Ledge:
         offset = float(rng.choice([0.0, 0.0, rng.uniform(8.0, 32.0)]))
         at_shoe = low < shoe < high

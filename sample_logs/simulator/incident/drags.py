@@ -70,8 +70,8 @@ class Cuttings(Trouble):
         self.prone *= (hole.md > hole.shoe - 60.0) & (hole.md < hole.total_depth)
         self.level = self.prone * rng.uniform(0.3, 0.8) * (1.0 + 0.3 * wander(hole.md, rng, 90.0)).clip(0.1)
         self.level = self.level.clip(0.0, 1.0)
-        self.gain = 0.25 + 0.9 * self.size
-        self.force = (12.0 + 170.0 * self.size) * 1e3
+        self.gain = 0.15 + 0.65 * self.size
+        self.force = (0.03 + 0.26 * self.size) * rig.hookload_at_rest()
         self.clean = rng.uniform(500.0, 1500.0)
         self.grow = rng.uniform(0.02, 0.06)
         self.choke = rng.uniform(0.02, 0.09) * (0.3 + self.size)
@@ -156,7 +156,7 @@ class Tortuous(Trouble):
         self.bottom = self.top + rng.uniform(60.0, 260.0)
         inside = (np.minimum(hole.md - self.top, self.bottom - hole.md) / 15.0).clip(0.0, 1.0)
         length = rng.uniform(65.0, 110.0) if self.physics.per_stand == 1 else rng.uniform(100.0, 170.0)
-        bend = np.radians(0.3 + 2.0 * self.size) * inside
+        bend = np.radians(0.3 + 1.4 * self.size) * inside
         inc = np.abs(hole.inclination + bend * wander(hole.md, rng, length))
         azi = hole.azimuth + bend * wander(hole.md, rng, length) / np.maximum(np.sin(inc), 0.3)
         hole.table[:, 0], hole.table[:, 1] = np.sin(inc) * np.cos(azi), np.sin(inc) * np.sin(azi)
@@ -164,9 +164,9 @@ class Tortuous(Trouble):
         hole.table[hole.md <= 0.0, :3] = (0.0, 0.0, 1.0)
         hole.inclination[:], hole.azimuth[:] = inc, azi
         self.pattern = inside * (0.5 + 0.5 * np.abs(wander(hole.md, rng, rng.uniform(12.0, 40.0))))
-        self.force = (8.0 + 130.0 * self.size) * 1e3
+        self.force = (0.06 + 0.26 * self.size) * rig.hookload_at_rest()
         rig.table[:, :3] = hole.table[:, :3]
-        rig.renew_friction(self.cause, 1.0 + 0.8 * self.size * inside)
+        rig.renew_friction(self.cause, 1.0 + 0.5 * self.size * inside)
         self.on = True
 
     def act(self, rig: TroubledRig) -> None:

@@ -40,7 +40,7 @@ class Hand(Driller):
         rig, pump = self.rig, self.pump if pump is None else pump
         start, sign = rig.height, math.copysign(1.0, distance)
         high, low = self._limits() if not rig.slips else (math.inf, -math.inf)
-        weights, went = [], True
+        weights, went, on_bottom = [], True, False
         while True:
             left = abs(distance) - abs(start - rig.height)
             if left <= max(0.005, rig.speed**2 / 0.11) or self._at_its_end(sign):
@@ -54,6 +54,8 @@ class Hand(Driller):
                 break
         while rig.speed:
             rig.advance(Demand(0.0, rpm, pump))
+        if not went and not on_bottom:  # hold it there and see
+            self.hold(self.rng.uniform(12, 55) * (1.2 - 0.5 * self.haste), rpm, pump)
         felt = abs(start - rig.height) > 4.0 and rig.reach >= rig.x[0] - 0.5
         if went and felt and not rig.slips and rpm <= 5.0 and len(weights) > 12:
             self._learn(sign, float(np.median(weights[len(weights) // 2 :])))
@@ -218,7 +220,7 @@ class Hand(Driller):
                 break
             if self.rng.uniform() < 0.5 and self.turn(self.rng.uniform(15, 60), self.rpm * 0.6, low):
                 break
-            self.overpull = min(self.overpull * 1.2, 450.0e3)
+            self.overpull = min(self.overpull * 1.3, max(self.overpull, 0.8 * rig.hookload_at_rest()))
             self.set_down = min(self.set_down * 1.2, 0.5 * rig.hookload_at_rest())
         self.overpull, self.set_down = held
         return abs(goal - rig.height) < 1.0

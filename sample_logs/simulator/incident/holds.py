@@ -23,7 +23,7 @@ class Holding(Trouble):
     def ask(self, rig: TroubledRig, demand: Demand) -> Demand:
         """Stall the top drive where the hold is stronger than it."""
         wants = demand.rpm > 5.0 and not rig.slips
-        free = float(rig.found[3]) if hasattr(rig, "found") and rig.rpm > 5.0 else 6.0e3
+        free = float(rig.found[3]) if hasattr(rig, "found") and rig.rpm > 5.0 else 4.0e3
         weak = 0.7 if self.wound > 0.0 else 1.0  # once it stands it takes less to hold it
         if wants and self.hold * ARM + free > weak * rig.top_drive:
             self.wound = min(rig.top_drive, self.wound + 1.5e3 * rig.dt)
@@ -46,13 +46,13 @@ class Sticking(Holding):
         self.top = max(rig.hole.shoe, float(rig.x[0]) - self.rng.uniform(60.0, 220.0))
         self.bottom = float(rig.x[0]) + self.rng.uniform(5.0, 70.0)
 
-    def place(self, _rig: TroubledRig) -> None:
+    def place(self, rig: TroubledRig) -> None:
         """Set how strongly and how fast the cake holds."""
-        self.most = (35.0 + 750.0 * self.size**1.3) * 1e3
+        self.most = (0.08 + 0.55 * self.size) * self.rng.uniform(1.0, 1.5) * rig.hookload_at_rest()
+        self.smear = self.rng.uniform(0.05, 0.8)  # m: over which it lets go
         self.tau = self.rng.uniform(240.0, 900.0)
-        self.still, self.on = 0.0, True
-        self.slip, self.pulled = 0.0, False
-        self.weaken = 1.0
+        self.still, self.slip, self.on, self.loaded = 0.0, 0.0, True, False
+        self.weaken, self.ease = 1.0, self.rng.uniform(250.0, 1500.0)  # s of working it
 
     def _nodes(self, rig: TroubledRig) -> np.ndarray:
         inside = (rig.x > self.top) & (rig.x < self.bottom)
@@ -67,7 +67,7 @@ class Sticking(Holding):
         else:
             grown = min(1.2, math.sqrt(self.still / (4.0 * self.tau)))
         share = min(1.0, 0.35 + 0.65 * len(nodes) / 4.0) if len(nodes) else 0.0
-        self.hold = self.most * grown * share * self.weaken
+        self.hold = self.most * grown * share * self.weaken * max(0.0, 1.0 - self.slip / self.smear)
         if self.hold > 0.0:
             rig.nodes[core.UP, nodes] += self.axial() / len(nodes)
             rig.nodes[core.DOWN, nodes] += self.axial() / len(nodes)
@@ -78,21 +78,18 @@ class Sticking(Holding):
         nodes = self._nodes(rig)
         moved = float(np.abs(rig.x - rig._before)[nodes].max()) if rig.has_moved and len(nodes) else 0.0
         holding = self.hold > 12.0e3
-        self.felt = holding and not rig.slips and (abs(rig.speed) > 0.005 or self.wound > 2.0e3)
+        self.loaded = holding and (self.loaded or abs(rig.speed) > 0.005 or self.wound > 2.0e3)
+        self.felt = self.loaded and not rig.slips
         if len(nodes) == 0 or (rig.rpm > 5.0 and not rig.slips):
             self.still = 0.0
         elif moved > 3.0e-4:
             self.slip += moved
-            if self.slip > 0.006:
+            if self.slip > self.smear:
                 self.still = self.slip = 0.0
         else:
             self.still += rig.dt
-            if rig.pump > 0.3 and self.weaken < 1.0:
-                self.weaken *= 1.0 - rig.dt / 1500.0
-
-    def treat(self) -> None:
-        """Spot something that eats the cake: it loosens with time."""
-        self.weaken = min(self.weaken, 0.97)
+            worked = holding and (self.wound > 2.0e3 or abs(rig.speed) > 0.005)
+            self.weaken *= 1.0 - rig.dt / self.ease if worked else 1.0
 
 
 class PackOff(Holding):
@@ -100,14 +97,14 @@ class PackOff(Holding):
 
     cause = "pack-off"
 
-    def place(self, _rig: TroubledRig) -> None:
+    def place(self, rig: TroubledRig) -> None:
         """Set how tight it gets."""
         rng = self.rng
-        self.most = (40.0 + 520.0 * self.size) * 1e3 * rng.uniform(0.8, 1.2)
+        self.most = (0.08 + 0.7 * self.size) * rig.hookload_at_rest() * rng.uniform(0.8, 1.2)
         self.extra = (6.0 + 80.0 * self.size) * 1e5 * rng.uniform(0.7, 1.3)
         self.shut = min(0.92, 0.1 + 0.8 * self.size)
         self.rise = rng.uniform(5.0, 40.0)
-        self.ease = rng.uniform(12.0, 40.0)
+        self.ease, self.wash = rng.uniform(12.0, 40.0), rng.uniform(400.0, 1500.0)  # m, s
         self.level = self.goal = self.rough = self.last_pump = 0.0
 
     def begin(self, rig: TroubledRig) -> None:
@@ -143,8 +140,8 @@ class PackOff(Holding):
             self.level = min(self.goal, self.level + rig.dt / self.rise)
         if self.level >= 0.99 * self.goal:
             moved = abs(rig.x[0] - rig._before[0]) if rig.has_moved else 0.0
-            worked = moved / self.ease + (rig.dt / 900.0 if 0.1 < rig.pump < 0.7 else 0.0)
-            worked += rig.dt / 300.0 if rig.rpm > 5.0 else 0.0
+            worked = moved / self.ease + rig.dt / self.wash * (rig.pump > 0.1)
+            worked += rig.dt / (0.4 * self.wash) * (rig.rpm > 5.0)
             self.goal = self.level = self.level * (1.0 - min(worked, 0.5))
             if self.level < 0.08:
                 self.level = self.goal = 0.0

@@ -37,7 +37,7 @@ def draw_plan(work: str, settings: dict, rng: Rng) -> tuple[Plan, float]:
     """Numbers of the story, and the depth of the hole at its start."""
     stand = settings["rig"]["stand"]
     depth, shoe = settings["well"]["total_depth"], settings["well"]["holes"][0]["bottom"]
-    length = rng.uniform(1.1, 2.9) * 3600.0
+    length = rng.uniform(0.8, 2.0) * 3600.0
     stands = int(length / (150.0 + stand / 0.3))
     bottom = depth
     if work == "drill":
@@ -69,7 +69,7 @@ def span_of(work: str, plan: Plan, settings: dict) -> dict:
     if work == "pull":
         low, high = plan.begin - way, plan.begin
     elif work == "wipe":
-        low, high = plan.begin - way / 2.0, plan.begin
+        low, high = plan.begin - 0.4 * way, plan.begin
     elif work == "drill":
         low, high = plan.begin - 400.0, plan.begin + 40.0
     shoe = settings["well"]["holes"][0]["bottom"]
@@ -99,8 +99,7 @@ def draw_hand(rig: TroubledRig, rng: Rng, physics: Physics, liner: bool) -> Hand
         rig, rng, haste=haste, rpm=0.0 if liner else rng.uniform(60, 130),
         trip_speed=rng.uniform(0.2, 0.35) + 0.15 * haste,
         check_speed=rng.uniform(0.08, 0.16), check_length=rng.uniform(4.5, 8.0),
-        overpull=rng.uniform(90, 180) * 1e3 * (1.0 + haste),
-        set_down=min(rng.uniform(40, 110) * 1e3, 0.35 * rest),
+        overpull=rng.uniform(0.12, 0.25) * rest * (1.0 + haste), set_down=rng.uniform(0.09, 0.2) * rest,
     )  # fmt: skip
 
 
@@ -140,7 +139,7 @@ def play(cause: str, seed: int, physics: Physics) -> tuple[TroubledRig, dict, st
     start = max(hole.shoe * rng.uniform(0.5, 0.85), 350.0)
     rig = TroubledRig(
         settings, hole, min(start, hole.shoe - 4.0 * settings["rig"]["stand"]), height=1.3, bottom=bottom,
-        physics=physics, static_grip=rng.uniform(*physics.static_grip), top_drive=rng.uniform(32e3, 65e3),
+        physics=physics, static_grip=rng.uniform(*physics.static_grip),
     )  # fmt: skip
     rig.troubles = draw_troubles(cause, work, rng, physics, span_of(work, plan, settings))
     prepare(cause, work, plan, rig, rng)

@@ -16,13 +16,13 @@ class Ledge(Trouble):
         super().__init__(*args, **kwargs)
         self.depth, self.offset = depth, offset
 
-    def place(self, _rig: TroubledRig) -> None:
+    def place(self, rig: TroubledRig) -> None:
         """Set its strength; `offset` is how far above the bit the body is that hangs up."""
         self.top, self.bottom = self.depth - 1.0, self.depth + self.offset + 1.0
-        self.strength = (25.0 + 330.0 * self.size) * 1e3 * self.rng.uniform(0.8, 1.2)
+        self.strength = (0.1 + 0.45 * self.size) * rig.hookload_at_rest() * self.rng.uniform(0.8, 1.2)
         self.stiffness = self.rng.uniform(5.0e6, 3.0e7)
         self.again = self.rng.uniform(0.4, 1.0)
-        self.passed, self.turned, self.on = False, 0.0, True
+        self.passed, self.turned, self.over, self.on = False, 0.0, 0.0, True
         self.patience = self.rng.uniform(3.0, 25.0)
 
     @property
@@ -51,8 +51,9 @@ class Ledge(Trouble):
             past = rig.obstacle is not None and rig.obstacle.depth > self.stop + 0.5
         else:
             past = False
-        if load > self.strength or self.turned > self.patience or past:
-            self.passed, self.turned = True, 0.0
+        self.over = self.over + rig.dt if load > self.strength else 0.0
+        if self.over > 4.0 or self.turned > self.patience or past:
+            self.passed, self.turned, self.over = True, 0.0, 0.0
             self.patience = self.rng.uniform(2.0, 15.0)
 
 

@@ -7,6 +7,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from .. import elements as el
 from ..driller import KN
 from .hand import Hand
 from .holds import Sticking
@@ -42,24 +43,32 @@ class Story:
         """The rig."""
         return self.hand.rig
 
-    def open(self, stands: int = 3) -> None:
+    def open(self, stands: int = 2) -> None:
         """Run a few stands in the cased hole, with weights taken: what a log starts with."""
         hand, rig = self.hand, self.rig
         hand.hold(40, pump=0.0)
-        for k in range(stands):
+        for _ in range(stands):
             hand.connection(pump_after=0.0, minutes=1.6)
             hand.move_to(9.5, hand.trip_speed, pump=0.0)
-            if k != 1:
-                hand.ramp_pumps()
-                hand.hold(15)
-                hand.weight_check(30)
-                hand.hold(4, pump=0.0)
+            hand.ramp_pumps()
+            hand.hold(15)
+            hand.weight_check(30)
+            hand.hold(4, pump=0.0)
             hand.move_to(1.3, hand.trip_speed, pump=0.0)
         rig.relocate(self.plan.begin, self.rng.uniform(1.0, 9.0))
+        self._learn_torque()
         hand.deadline = rig.time + self.plan.length
         hand.most = min(self.plan.most, 0.8) if self.plan.turned_softly else self.plan.most
         for trouble in rig.troubles:
             trouble.at = rig.time + trouble.share * self.plan.length
+
+    def _learn_torque(self) -> None:
+        """Set the top drive's limit above what drilling takes."""
+        rig = self.rig
+        rig.advance_first()
+        usual = el.turning_torque(rig.x, rig.tension, rig.elements, rig.hole.table, rig.control())
+        bit = self.plan.wob * rig.settings["planted"]["bit_torque_m"]
+        rig.top_drive = 1.35 * (usual + bit) + self.rng.uniform(3.0e3, 13.0e3)
 
     def check(self) -> None:
         """Take the weights, pumps on."""
@@ -190,7 +199,7 @@ def wipe(story: Story) -> None:
     hand.ramp_pumps()
     hand.hold(20)
     story.check()
-    half = max(3, story.plan.stands // 2)
+    half = max(3, int(0.4 * story.plan.stands))
     _pull(story, half)
     if rng.uniform() < 0.7:
         hand.ramp_pumps()
