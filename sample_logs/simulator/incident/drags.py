@@ -44,7 +44,7 @@ class HigherFriction(Trouble):
         if self.on and self.level < 1.0 and (rig.pump > 0.3 or not self.new_mud):
             self.level = min(1.0, self.level + rig.dt / self.ramp)
             rig.density_shift = self.shift * min(1.0, 4.0 * self.level)
-            if round(rig.time) % 10 == 0:
+            if rig.tenth:
                 self._spread(rig)
         self.felt = self.on and self.level > 0.25 and not rig.slips
 
@@ -112,7 +112,7 @@ class Cuttings(Trouble):
         flowing = rig.pump > 0.5 and not rig.slips
         if flowing:
             self.gathered *= 1.0 - rig.dt * stirred / (0.35 * self.clean)
-        if round(rig.time) % 10 == 0:
+        if rig.tenth:
             self._bed(rig, 10.0 * stirred * flowing)
         self.felt = self.size * self.mean > 0.08 and not rig.slips
 

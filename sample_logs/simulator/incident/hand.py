@@ -35,6 +35,15 @@ class Hand(Driller):
         felt = max((t.times[-1] for t in self.rig.troubles if t.times and t.passes), default=-math.inf)
         return time > self.deadline + 2400.0 or (time > self.deadline and time > felt + 600.0)
 
+    def hold(self, seconds: float, rpm: float = 0.0, pump: float | None = None) -> None:
+        """Keep the block still."""
+        rig, pump = self.rig, self.pump if pump is None else pump
+        end = rig.time + max(1.0, round(seconds))
+        while rig.time < end - 0.1:
+            rig.longest = end - rig.time
+            rig.advance(Demand(0.0, rpm, pump))
+        rig.longest = 4.0
+
     def move(self, distance: float, speed: float, rpm: float = 0.0, pump: float | None = None) -> bool:
         """Move the block; stops early where the hook carries far too much or too little. True if it went."""
         rig, pump = self.rig, self.pump if pump is None else pump

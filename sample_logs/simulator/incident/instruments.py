@@ -13,12 +13,22 @@ from .sensors import HookloadFault
 
 Floats = NDArray[np.float64]
 Rng = np.random.Generator
+#: What goes on evenly through a step; the rest holds for all of it.
+SMOOTH = ("block", "tally_depth", "bit_true", "bottom_true", "string_weight", "bit_load")
 
 
 def true_frame(rig: TroubledRig) -> pd.DataFrame:
-    """Everything recorded second by second, SI, noise-free."""
-    frame = pd.DataFrame(np.array(rig.rows), columns=list(COLUMNS))
-    frame["tag"] = rig.tags
+    """Everything at every second, SI, noise-free; hours that were not logged stay out."""
+    rows = np.array(rig.rows)
+    time = np.round(rows[:, 0])
+    breaks = np.flatnonzero(np.diff(time) > 60.0) + 1
+    first, last = np.append(0, breaks), np.append(breaks, len(time)) - 1
+    every = np.concatenate([np.arange(time[a], time[b] + 1.0) for a, b in zip(first, last, strict=True)])
+    before = np.searchsorted(time, every, side="left")
+    frame = pd.DataFrame({name: rows[before, k] for k, name in enumerate(COLUMNS)})
+    for name in SMOOTH:
+        frame[name] = np.interp(every, time, rows[:, COLUMNS.index(name)])
+    frame["time"], frame["tag"] = every, np.array(rig.tags)[before]
     return frame
 
 

@@ -43,12 +43,15 @@ class TroubledRig(Rig):
     stalled: bool = False
     density_shift: float = 0.0
     idle: int = 0
+    longest: float = 4.0  # s: the driller wants no longer step
 
     def __post_init__(self) -> None:
         """Hang the string and make room for what stands in its way."""
         super().__post_init__()
         self.factors: dict[str, np.ndarray] = {}
-        self.at_rest = np.zeros(self.x.size)
+        self.at_rest, self.pace = np.zeros(self.x.size), np.zeros(self.x.size)
+        self._before: np.ndarray | None = None
+        self.asleep = False
         self.obstacle_load = 0.0
         self.drag = self.usual = float("nan")
 
@@ -61,7 +64,7 @@ class TroubledRig(Rig):
         self.latched = np.zeros(n, dtype=np.int64)
         self._hang()
         self.moved, self.anchor = np.zeros(n + 1, dtype=bool), self.x.copy()
-        self.at_rest = np.zeros(n + 1)
+        self.at_rest, self.pace, self._before = np.zeros(n + 1), np.zeros(n + 1), None
         self.sense, self.idle = 0, 0
         self.time += round(hours * 3600.0)
 
@@ -81,8 +84,20 @@ class TroubledRig(Rig):
             c[el.DRILL_RATE] = 0.0
         return c
 
+    def _choose_step(self, demand: Demand) -> float:
+        """Take long steps while nothing changes, short ones near whatever could stop the string [s]."""
+        if self.slips or self.asleep:
+            longest = 4.0
+        else:
+            near = self.obstacle is not None and self.obstacle.depth - self.x[0] < 6.0
+            held = self.nodes[core.UP].max() > 3.0e3
+            changing = abs(demand.speed - self.speed) > 0.02 or demand.rpm * self.rpm == 0.0 != demand.rpm
+            longest = 1.0 if near or held or changing or demand.pump != self.pump else 2.0
+        return min(longest, self.longest)
+
     def advance(self, demand: Demand) -> None:
-        """Move one second on and record it."""
+        """Move a step on and record it."""
+        self.dt = self._choose_step(demand)
         for trouble in self.troubles:
             demand = trouble.ask(self, demand)
         self._stand_in_the_way()
@@ -104,16 +119,22 @@ class TroubledRig(Rig):
             aged = 1.0 + self.physics.ageing * np.log1p(self.at_rest)
             self.nodes[core.GRIP] = self.static_grip * aged * np.exp(-self.pace / self.physics.grip_speed)
 
-    @property
-    def pace(self) -> np.ndarray:
-        """Speed of every node over the last step, that of turning included [m/s]."""
-        sweep = self.rpm * 0.105 * 0.07
-        return np.hypot((self.x - self._before) / self.dt, sweep) if self.has_moved else np.zeros(self.x.size)
+    def _age(self) -> None:
+        """Note how fast every node went in the last step, turning included [m/s], and how long it rests."""
+        size = self.nodes.shape[1]
+        if not self.has_moved:
+            self.pace = np.zeros(size)
+        elif self.asleep:
+            self.pace = np.zeros(size)
+            self.at_rest += self.dt
+        else:
+            self.pace = np.hypot((self.x - self._before) / self.dt, self.rpm * 0.105 * 0.07)
+            self.at_rest = np.where(self.pace > 1e-4, 0.0, self.at_rest + self.dt)
 
     @property
     def has_moved(self) -> bool:
         """Whether the last step kept the same nodes as now."""
-        return getattr(self, "_before", None) is not None and self._before.size == self.x.size
+        return self._before is not None and self._before.size == self.nodes.shape[1]
 
     def _drive(self, demand: Demand) -> None:
         if demand.rpm <= 5.0 < self.rpm:
@@ -128,19 +149,30 @@ class TroubledRig(Rig):
         if abs(demand.speed) < 1e-12 and abs(self.speed) < ACCELERATION * self.dt * 1.01:
             self.speed = 0.0
         self.idle = self.idle + 1 if still and self.found_nothing else 0
-        if self.has_moved:
-            self.at_rest = np.where(self.pace > 1e-4, 0.0, self.at_rest + self.dt)
         if self.slips:
             self.height -= self.speed * self.dt
-        if (self.slips or self.idle > 4) and hasattr(self, "found"):
-            self._before = self.x.copy()
-            return
-        self._solve(self.speed * self.dt)
+        self.asleep = (self.slips or self.idle > 4) and self.found_something
+        if not self.asleep:
+            self._solve(self.speed * self.dt)
+        elif self.has_moved:
+            self._before[:] = self.x
+        if self.static_grip:
+            self._age()
+
+    @property
+    def tenth(self) -> bool:
+        """Whether ten seconds were completed in the last step."""
+        return math.floor(self.time / 10.0) != math.floor((self.time - self.dt) / 10.0)
 
     @property
     def found_nothing(self) -> bool:
         """Whether nothing drills: then a string at rest stays as it is."""
-        return hasattr(self, "found") and self.found[el.BIT_LOAD] <= 0.0
+        return self.found_something and self.found[el.BIT_LOAD] <= 0.0
+
+    @property
+    def found_something(self) -> bool:
+        """Whether any step was taken."""
+        return hasattr(self, "found")
 
     def _solve(self, block_move: float) -> None:
         control = self.control()
@@ -177,7 +209,7 @@ class TroubledRig(Rig):
     def _compare(self) -> None:
         """Compare hook and top drive with everyday friction, now and then."""
         self.drag = self.usual = float("nan")
-        if self.slips or round(self.time) % 3:
+        if self.slips or (self.dt == 1.0 and round(self.time) % 3):
             return
         c = self.control()
         if self.rpm > 20.0 and abs(self.speed) < 0.02:
@@ -190,6 +222,10 @@ class TroubledRig(Rig):
                 self.drag = float(self.string_weight - plain)
 
     def _record(self) -> None:
+        same = self.asleep and self.rows and self.rows[-1][-1] == self.x.size
+        if same and self.rpm <= 5.0 and self.torque_extra == 0.0:
+            self._record_rest()
+            return
         loads = el.survey_loads(self.tension, self.geo, self.elements, self.x)
         places = np.nonzero(self.latched >= 1)[0]
         span = (self.x[places[-1] + 1], self.x[places[0]]) if len(places) else (np.nan, np.nan)
@@ -204,9 +240,25 @@ class TroubledRig(Rig):
                 loads[1], float(self.latched.max()), *span, self.zero, self.drag, self.usual,
                 self.found[el.FRICTION_TORQUE], self.pressure_extra, self.pressure_share, self.torque_rough,
                 self.flow_share, float(self.stalled), self.obstacle_load, self.density_shift,
-                self.found[el.RESIDUAL],
+                self.found[el.RESIDUAL], float(self.x.size),
             )
         )  # fmt: skip
+        self.tags.append(self.tag)
+
+    def _record_rest(self) -> None:
+        """Write the last row again, with what can change while the string rests."""
+        row = list(self.rows[-1])
+        fresh = {
+            "time": self.time, "block": self.height, "hookload": self.hookload, "rpm": self.rpm,
+            "pump": self.pump, "slips": float(self.slips), "zero": self.zero, "torque": 0.0,
+            "pressure_extra": self.pressure_extra, "pressure_share": self.pressure_share,
+            "flow_share": self.flow_share, "torque_rough": self.torque_rough, "stalled": float(self.stalled),
+            "density_shift": self.density_shift, "drag": float("nan"), "usual_torque": float("nan"),
+            "tally_depth": self.tally_depth,
+        }  # fmt: skip
+        for name, value in fresh.items():
+            row[PLACES[name]] = value
+        self.rows.append(tuple(row))
         self.tags.append(self.tag)
 
     def _resize(self, elements: np.ndarray, x: np.ndarray) -> None:
@@ -214,7 +266,7 @@ class TroubledRig(Rig):
         n = len(elements)
         grown = np.zeros(n + 1)
         grown[: min(n + 1, self.at_rest.size)] = self.at_rest[: n + 1]
-        self.at_rest, self._before = grown, None
+        self.at_rest, self.pace, self._before = grown, np.zeros(n + 1), None
         self.geo = el.geometry(self.x, self.elements, self.table, FIRST, STEP)
         keep = np.zeros(n)
         keep[: min(n, self.tension.size)] = self.tension[:n]
@@ -225,5 +277,6 @@ COLUMNS = (
     "time", "block", "tally_depth", "bit_true", "bottom_true", "hookload", "string_weight", "bit_load",
     "torque", "rpm", "pump", "slips", "hanging", "ratio", "ratio_md", "state", "top", "bottom", "zero",
     "drag", "usual_torque", "friction_torque", "pressure_extra", "pressure_share", "torque_rough",
-    "flow_share", "stalled", "obstacle", "density_shift", "residual",
+    "flow_share", "stalled", "obstacle", "density_shift", "residual", "nodes",
 )  # fmt: skip
+PLACES = {name: k for k, name in enumerate(COLUMNS)}

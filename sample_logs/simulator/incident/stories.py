@@ -86,13 +86,18 @@ class Story:
                 trouble.settle(self.rig)
         pump = float(self.rng.choice([0.0, 1.0]))
         self.hand.hold(self.plan.rest, pump=pump)
+        self.leave(pump)
 
-    def leave(self) -> None:
-        """Pick up after standing still, with what that takes."""
-        hand = self.hand
-        if not hand.move(-min(4.0, hand.room_up), hand.check_speed, pump=hand.pump):
+    def leave(self, pump: float = 1.0) -> None:
+        """Pick up gently after standing still, with what that takes."""
+        hand, usual = self.hand, self.hand.overpull
+        hand.overpull = 0.5 * usual
+        speed = self.rng.uniform(0.04, 0.09)
+        if not hand.move(-min(3.5, hand.room_up), speed, pump=pump):
+            hand.overpull = usual
             hand.work_free(self.rig.height + 1.0)
-        hand.move(min(3.0, self.rig.height - 1.0), hand.check_speed)
+        hand.overpull = usual
+        hand.move(min(3.0, self.rig.height - 1.0), hand.check_speed, pump=pump)
 
 
 def drill(story: Story) -> None:
@@ -122,7 +127,6 @@ def drill(story: Story) -> None:
         if not story.rested and plan.rest > 0.0:
             hand.move(-min(2.0, hand.room_up), hand.check_speed)
             story.pause()
-            story.leave()
 
 
 def _pull(story: Story, stands: int) -> None:
