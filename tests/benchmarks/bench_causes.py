@@ -5,7 +5,8 @@
     python tests/benchmarks/bench_causes.py judge SIGNS.csv            # print how well they do on it
 
 An incident is a folder with a case file and a `truth.json` (see `sample_logs`). Its episode is the gravest
-non-routine one that overlaps the truth's time; where there is none the incident is missed and counted apart.
+non-routine one that overlaps a span in which the cause was at work; where there is none the incident is
+missed and counted apart.
 """
 
 from __future__ import annotations
@@ -62,9 +63,10 @@ def measure(folder: Path) -> dict[str, object]:
         found = analyse(load_case(next(folder.glob("*.toml"))), Progress(quiet=True))
     except InputError as error:
         return row | {"error": str(error)[:200]}
-    start, end = stamp(truth["start"]) - CLOSE, stamp(truth["end"]) + CLOSE
+    times = [(stamp(s["start"]), stamp(s["end"])) for s in truth["spans"] if s["cause"] == truth["cause"]]
+    times = times or [(stamp(truth["start"]), stamp(truth["end"]))]
     telling = [e for e in found.episodes if not is_routine(e)]
-    inside = [e for e in telling if e.start <= end and e.end >= start]
+    inside = [e for e in telling if any(e.start <= b + CLOSE and e.end >= a - CLOSE for a, b in times)]
     row |= {
         "hours": round((found.log.time[-1] - found.log.time[0]) / 3600.0, 2),
         "others": len(telling) - len(inside),

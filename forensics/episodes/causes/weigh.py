@@ -108,8 +108,8 @@ def name_cause(views: tuple[CauseView, ...]) -> str:
     first, second = views[0], views[1]
     if first.probability >= ALONE and first.probability >= TIMES * second.probability:
         return first.cause
-    if first.cause == Cause.NO_DATA.value:
-        return first.cause
     near = [view.cause for view in views[:3] if view.probability >= BESIDE * first.probability]
     near = near if len(near) > 1 else [first.cause, second.cause]
+    if Cause.NO_DATA.value in near:
+        return Cause.NO_DATA.value
     return f"{UNTOLD}: {', '.join(near[:-1])} or {near[-1]}"
