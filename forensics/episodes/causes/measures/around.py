@@ -5,7 +5,16 @@ from __future__ import annotations
 import numpy as np
 
 from forensics.episodes.catalogue import Kind
-from forensics.episodes.causes.measures.base import FEWEST, NAN, Bools, Floats, Measure, Subject, spread
+from forensics.episodes.causes.measures.base import (
+    FEWEST,
+    NAN,
+    Bools,
+    Floats,
+    Measure,
+    Subject,
+    middle,
+    spread,
+)
 from forensics.episodes.find import flag_rows
 
 #: What happened within this long of an episode is held to belong to its story [s].
@@ -92,10 +101,51 @@ def largest_down(s: Subject) -> float:
 
 def share_moving(s: Subject) -> float:
     """Part of the readings going up or down within the hour that are beyond half the threshold."""
-    m, rows = s.material, _hour(s)
+    return _share_beyond(s, _hour(s))
+
+
+def _share_beyond(s: Subject, rows: slice) -> float:
+    m = s.material
     values = s.usual.drag[rows][m.rig.direction[rows] != 0]
     values = values[np.isfinite(values)]
     return float((values > 0.5).mean()) if len(values) >= 4 * FEWEST else NAN
+
+
+def share_before(s: Subject) -> float:
+    """Part of the readings going up or down in the two hours before that are beyond half the threshold."""
+    start = s.episode.start
+    return _share_beyond(s, s.material.rows_between(start - 2.0 * HOUR, start - 60.0))
+
+
+def share_after(s: Subject) -> float:
+    """Part of the readings going up or down in the two hours after that are beyond half the threshold."""
+    end = s.episode.end
+    return _share_beyond(s, s.material.rows_between(end + 60.0, end + 2.0 * HOUR))
+
+
+def lean(s: Subject) -> float:
+    """Largest drag going up over the sum of the largest both ways; NaN where neither is half a threshold."""
+    up, down = max(largest_up(s), 0.0), max(largest_down(s), 0.0)
+    if not (np.isfinite(up) and np.isfinite(down)) or up + down < 0.5:
+        return NAN
+    return up / (up + down)
+
+
+def left_turning(s: Subject) -> float:
+    """Residual of the hookload while turning near the episode, over the largest drag either way."""
+    m = s.material
+    share = np.abs(m.loads.drag_residual[s.near] / m.drag_threshold[s.near])
+    turned = middle(np.where(m.rig.turning[s.near], share, np.nan))
+    most = np.fmax(largest_up(s), largest_down(s))
+    return float(turned / most) if most > 0.5 else NAN
+
+
+def turning_spread(s: Subject) -> float:
+    """Spread of the hookload's residual while turning within the hour, over the threshold."""
+    m, rows = s.material, _hour(s)
+    share = m.loads.drag_residual[rows] / m.drag_threshold[rows]
+    turned = share[m.rig.turning[rows] & np.isfinite(share)]
+    return float(np.subtract(*np.quantile(turned, [0.9, 0.1]))) if len(turned) >= 4 * FEWEST else NAN
 
 
 def returns(s: Subject) -> float:
@@ -106,6 +156,7 @@ def returns(s: Subject) -> float:
 
 
 TIMES = (5.0, 30.0, 120.0, 600.0)
+SHARES = (0.02, 0.1, 0.3, 0.6)
 GRADES = (0.2, 0.5, 1.0, 1.5, 2.5)
 
 MEASURES = (
@@ -155,6 +206,45 @@ MEASURES = (
         "{} of the moving readings around it are beyond half the threshold",
         "residuals",
         "share",
+    ),
+    Measure(
+        "drag before it",
+        share_before,
+        SHARES,
+        "{} of the moving readings in the two hours before are beyond half the threshold",
+        "residuals",
+        "share",
+    ),
+    Measure(
+        "drag after it",
+        share_after,
+        SHARES,
+        "{} of the moving readings in the two hours after are beyond half the threshold",
+        "residuals",
+        "share",
+    ),
+    Measure(
+        "drag up against down",
+        lean,
+        (0.1, 0.35, 0.65, 0.9),
+        "{} of the largest drag, both ways together, is going up",
+        "residuals",
+        "share",
+    ),
+    Measure(
+        "left while turning",
+        left_turning,
+        (0.1, 0.3, 0.6, 1.0),
+        "turning left {} of the largest drag",
+        "residuals",
+        "share",
+    ),
+    Measure(
+        "spread while turning",
+        turning_spread,
+        (0.15, 0.4, 1.0),
+        "hookload less model while turning varies by {}",
+        "residuals",
     ),
     Measure(
         "returns",

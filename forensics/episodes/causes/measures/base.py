@@ -126,14 +126,11 @@ class Measure:
         """Write a value with its unit."""
         if self.levels:
             return self.levels[int(value)]
-        if self.quantity == "share":
-            return f"{100.0 * value:.0f} %"
-        if self.quantity == "count":
-            return f"{value:.0f}"
-        if self.quantity == "ratio":
-            return f"{value + 0.0:.2f}"
-        if self.quantity == "threshold":
-            return f"{round(value, 1) + 0.0:.1f} of the threshold"
+        if self.quantity in FORMS:
+            scale, form = FORMS[self.quantity]
+            return form.format(round(scale * value, 2) + 0.0)
+        if self.quantity == "time" and value >= 180.0:
+            return f"{value / 60.0:.0f} min"
         return show(value, self.quantity, system)
 
     def scaled(self, value: float) -> float:
@@ -147,7 +144,15 @@ class Measure:
         return self.words.format(self.shown(value, system))
 
 
-#: Quantities that units know nothing of, and what outputs call their unit.
+#: Scale and form of the quantities that units know nothing of.
+FORMS = {
+    "share": (100.0, "{:.0f} %"),
+    "count": (1.0, "{:.0f}"),
+    "ratio": (1.0, "{:.2f}"),
+    "threshold": (1.0, "{:.1f} of the threshold"),
+}
+
+#: What outputs call their units.
 PLAIN = {"threshold": "of the threshold", "share": "1", "ratio": "1", "count": "1", "word": ""}
 
 

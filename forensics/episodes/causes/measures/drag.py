@@ -85,18 +85,30 @@ def elsewhen(s: Subject) -> float:
     return float(np.nanmin(easiest)) if np.isfinite(easiest).any() else NAN
 
 
+def earlier(s: Subject) -> float:
+    """Median drag (or torque) on earlier passes of the same depth, over the threshold."""
+    values, time = _passes(s)
+    return middle(values[time < s.episode.start - NEW_PASS])
+
+
+def later(s: Subject) -> float:
+    """Median drag (or torque) on later passes of the same depth, over the threshold."""
+    values, time = _passes(s)
+    return middle(values[time > s.episode.end + NEW_PASS])
+
+
 def cleaned(s: Subject) -> float:
     """Change of drag to the next pass of the depth, where the hole was circulated in between."""
     values, time = _passes(s)
-    later = time > s.episode.end + NEW_PASS
-    if later.sum() < FEWEST:
+    after = time > s.episode.end + NEW_PASS
+    if after.sum() < FEWEST:
         return NAN
     m = s.material
-    between = slice(s.episode.last, int(np.searchsorted(m.time, time[later][0])))
+    between = slice(s.episode.last, int(np.searchsorted(m.time, time[after][0])))
     if float(m.rig.pumping[between].sum() * m.log.interval) < 1800.0:
         return NAN
     here = (time >= s.episode.start) & (time <= s.episode.end)
-    return middle(values[later]) - middle(values[here], 1)
+    return middle(values[after]) - middle(values[here], 1)
 
 
 def growth(s: Subject) -> float:
@@ -192,6 +204,8 @@ MEASURES = (
         "easiest other pass of this depth: {}",
         "residuals",
     ),
+    Measure("earlier passes", earlier, (0.1, 0.3, 0.6, 1.0), "earlier passes of this depth: {}", "residuals"),
+    Measure("later passes", later, (0.1, 0.3, 0.6, 1.0), "later passes of this depth: {}", "residuals"),
     Measure(
         "after circulating",
         cleaned,
