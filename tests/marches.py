@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
-from forensics.mechanics.kernels_march import place_at
+from forensics.mechanics.kernels_judge import stand_at
 from forensics.mechanics.kernels_memory import rise
 from forensics.mechanics.offbottom import OffBottomModel
 from forensics.replay.room import fresh
@@ -18,7 +18,7 @@ def tension_from_bit(
     `sigma` is +1 going down, -1 going up, and less where rotation takes its share of the friction.
     """
     setting = model.setting(factor, factor)
-    place = place_at(setting.hole, setting.pipe, bit, 1.0)
+    place = stand_at(setting.hole, setting.pipe, bit, 1.0, np.zeros(3))
     memory, _ = fresh(model)
     rise(setting, memory, place, float(sigma), float(tension_bit), False)
     nodes = place.top + 2

@@ -19,19 +19,8 @@ from typing import NamedTuple
 import numpy as np
 from numba import njit
 
-from forensics.mechanics.eigen import LIMIT
-from forensics.mechanics.kernels_judge import (
-    CONSTANT,
-    CUBE,
-    GIVE,
-    LINEAR,
-    SQUARE,
-    Criteria,
-    Setting,
-    latch,
-    local_square,
-    thresholds,
-)
+from forensics.mechanics.ground import Ground
+from forensics.mechanics.kernels_judge import GIVE, Setting, latch, local_square, thresholds
 from forensics.mechanics.kernels_march import RUN_AWAY, Array, Place, top_element
 
 FAST = {"nsz", "arcp", "contract", "nnan"}  # no value here is ever NaN
@@ -43,23 +32,10 @@ ROWS = 16
 LEAST = 0.999  # of the least load a helix can start at: what rounding may take is far less
 
 
-class Ground(NamedTuple):
-    """The hole as lanes read it.
-
-    `rows` has shape (4 depths,): cos I, sin² I, squared and downward curvature of each depth together;
-    `section` (depths,) the friction section; `least` (kinds of pipe, depths) a load below which no helix
-    starts there, weights unscaled [N].
-    """
-
-    rows: Array
-    section: Array
-    least: Array
-
-
 class Strings(NamedTuple):
     """The strings to march; arrays of shape (k,), `factor` (sections, k).
 
-    `bit` depth [m], ascending for speed; `sigma` +1 going down, -1 up, 0 without axial friction; `scale` of
+    `bit` depth [m], ascending; `sigma` +1 going down, -1 up, 0 without axial friction; `scale` of
     weights; `load` on the bit [N].
     """
 
@@ -107,19 +83,6 @@ class _Room(NamedTuple):
     by_slope: Array
 
 
-def least_onset(criteria: Criteria) -> Array:
-    """Give a load below which no helix starts, whatever the contact there, shape (kinds, depths) [N].
-
-    The fourth power of the Dawson-Paslay load is a parabola of the tension: its least value under compression
-    and the least near-vertical term bound the onset from below.
-    """
-    square, linear, constant = (criteria.at[..., column] for column in (SQUARE, LINEAR, CONSTANT))
-    turns = (linear > 0.0) & (square > 0.0)
-    dip = np.where(turns, linear**2 / (4.0 * np.where(turns, square, 1.0)), 0.0)
-    local = np.maximum(constant - dip, 0.0) ** 0.25
-    return criteria.onset * (local + LIMIT * criteria.at[..., CUBE])
-
-
 @njit(cache=True, error_model="numpy", fastmath=FAST)
 def _fetch(rows: Array, first: Array, depth: int, stage: Array, at: Array, width: int) -> None:
     """Copy what the hole does to each string of a block, `depth` steps above its bit, and note its row."""
@@ -138,6 +101,14 @@ def _rub(sections: Array, at: Array, factor: Array, section: Array, work: Array,
         here = np.uint64(sections[at[k]])
         section[k] = here
         work[RUB + k] = factor[here * np.uint64(LANES) + np.uint64(k)]
+
+
+@njit(cache=True, error_model="numpy", fastmath=FAST)
+def _rub_alike(number: int, factor: Array, section: Array, work: Array, width: int) -> None:
+    """Take the friction of one section for all strings of a block."""
+    for k in range(width):
+        section[k] = number
+        work[RUB + k] = factor[number * LANES + k]
 
 
 @njit(cache=True, error_model="numpy", fastmath=FAST)
@@ -289,13 +260,21 @@ def _climb(setting: Setting, ground: Ground, room: _Room, width: int, last: int,
     """March a block from its bits up to the element that reaches through the rotary for the deepest."""
     # out of their tuples once: each look into one counts references
     x, node, weights, radius = setting.pipe.x, setting.pipe.node, setting.pipe.weight, setting.pipe.radius
-    rows, sections, least, kinds = ground.rows, ground.section, ground.least, setting.criteria.kind
+    rows, sections, until = ground.rows, ground.section, ground.until
+    least, kinds = ground.least, setting.criteria.kind
     work, stage, factor, first, at, section, by, by_slope = room
+    alike = -1
     for j in range(last + 1):
         _fetch(rows, first, (node[j] + node[j + 1]) >> 1, stage, at, width)
-        _rub(sections, at, factor, section, work, width)
+        number = sections[at[0]] if until[at[0]] >= at[width - 1] else -1
+        if number < 0:
+            _rub(sections, at, factor, section, work, width)
+        elif number != alike:
+            _rub_alike(number, factor, section, work, width)
+        alike = number
         pressed = _step(work, stage, (x[j], x[j + 1]), weights[j], width)
-        work[HELIX:DRAG] = 0.0
+        if ask.slopes:
+            work[HELIX:DRAG] = 0.0
         if ask.helices and pressed > 0 and _near(least[kinds[j]], at, work, width) > 0:
             _helices(setting, work, at, j, width)
         if ask.ratio and pressed > 0:

@@ -12,8 +12,9 @@ from numpy.typing import ArrayLike, NDArray
 
 from forensics.case import CriteriaSettings
 from forensics.mechanics.grid import HoleGrid, PipeGrid, hole_grid, pipe_grid, weight_in_air
+from forensics.mechanics.ground import Ground, build_ground, divide
 from forensics.mechanics.kernels_judge import Setting
-from forensics.mechanics.kernels_lanes import Found, Ground, Strings, least_onset, march_lanes
+from forensics.mechanics.kernels_lanes import Found, Strings, march_lanes
 from forensics.mechanics.kernels_march import RUN_AWAY, Hole, Pipe
 from forensics.mechanics.limits import tabulate
 from forensics.well.model import Well
@@ -85,13 +86,12 @@ class OffBottomModel:
         self.criteria = tabulate(hole, self.pipe, self.settings)
         self.edges: tuple[float, ...] = ()
         self.section = hole.open_hole.astype(np.int64)
-        self.smooth = self.setting(0.0, 0.0)
+        self.smooth = self.setting(0.0, 0.0)  # strings side by side bring their own friction
 
     @cached_property
     def ground(self) -> Ground:
-        """The hole as the weighing of strings side by side reads it."""
-        rows = np.stack([self.hole.cos_i, self.hole.sin2, self.hole.kappa2, self.hole.kappa_d], axis=1)
-        return Ground(rows.ravel(), self.section, least_onset(self.criteria))
+        """The hole as the march of strings side by side reads it."""
+        return build_ground(self.hole, self.section, self.criteria)
 
     def divided(self, edges: Sequence[float]) -> OffBottomModel:
         """Cut the open hole into friction sections at measured depths; tables are shared.
@@ -120,7 +120,7 @@ class OffBottomModel:
         middle = (np.arange(len(self.hole.open_hole)) - 0.5) * self.hole.step
         open_section = 1 + np.searchsorted(cuts, middle, side="right")
         other.section = np.where(self.hole.open_hole, open_section, 0).astype(np.int64)
-        other.ground = self.ground._replace(section=other.section)
+        other.ground = divide(self.ground, other.section)
         return other
 
     def setting(self, cased: float, *opened: float) -> Setting:

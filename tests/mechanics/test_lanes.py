@@ -10,8 +10,8 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+from forensics.mechanics.ground import least_onset
 from forensics.mechanics.kernels_judge import latch
-from forensics.mechanics.kernels_lanes import least_onset
 from forensics.mechanics.kernels_march import place_at
 from forensics.mechanics.offbottom import SIGMA, OffBottomModel, Weighed
 from forensics.well.fluid import constant_fluid
