@@ -173,10 +173,12 @@ class Refit:
         As found, with its readings.
     model : OffBottomModel
         What it was found with.
+    grid : ndarray, shape (p,)
+        Bit depths at which the models are compared, ascending [m]: they differ by little that varies in less.
     """
 
-    def __init__(self, calibration: Calibration, model: OffBottomModel) -> None:
-        self.calibration, self.model = calibration, model
+    def __init__(self, calibration: Calibration, model: OffBottomModel, grid: Floats) -> None:
+        self.calibration, self.model, self.grid = calibration, model, grid
         self.kinds = np.array([r.kind for r in calibration.weights])
         self.depth = np.array([r.bit_depth for r in calibration.weights])
         self.sigma = np.array([reading_sigma(r) for r in calibration.readings])
@@ -188,7 +190,8 @@ class Refit:
         result = np.zeros(len(self.depth))
         for kind in set(self.kinds.tolist()):
             rows = self.kinds == kind
-            result[rows] = model.string_weight(kind, self.depth[rows], *self.mu, scale=scale)
+            weight = model.string_weight(kind, self.grid, *self.mu, scale=scale)
+            result[rows] = np.interp(self.depth[rows], self.grid, weight)
         return result
 
     def __call__(self, other: OffBottomModel, draw: Draw) -> Calibration:

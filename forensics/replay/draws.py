@@ -14,22 +14,20 @@ from forensics.friction.result import Calibration
 from forensics.loads import DrawHistory
 from forensics.mechanics.departed import departed
 from forensics.mechanics.kernels_replay import Found, Samples
-from forensics.mechanics.offbottom import OffBottomModel
 from forensics.replay.doubt import LOADED_SIGMA, Draw, Refit, departure, joint_draws, rate_factor
 from forensics.replay.local import LocalMatch, match_locally
 from forensics.replay.model import factors
 from forensics.replay.room import Excerpt, excerpt, fresh, go
 from forensics.replay.run import Replay
+from forensics.replay.tabulated import KINDS, tabulated
 
 Floats = NDArray[np.float64]
 
 FIRST, ALL = 12, 36  # draws of everything in question, and of what they leave in doubt: 0.08 at a half
-DENSE, SPARSE = 8.0, 14.0  # s between rows replayed: of a short stretch, of a long one
+DENSE, SPARSE = 8.0, 16.0  # s between rows replayed: of a short stretch, of a long one
 MANY = 4000  # rows at the dense spacing from which a stretch counts as long
 
 LINE_POINTS = 48
-LEAST_DRAG = 1e3  # N; less drag than this has no multiple
-KINDS = ("pick_up", "rotating", "slack_off")
 
 
 class Outcome(NamedTuple):
@@ -102,22 +100,22 @@ def _replayed(run: Replay, rows: NDArray[np.bool_], draws: tuple[Draw, ...]) -> 
     """Replay rows, and what leads up to them, at the given draws."""
     part = _taken(run, rows)
     depth = np.linspace(*_reach(run), LINE_POINTS)
-    base = match_locally(run.log.time[part.rows], run.calibration, run.model)
-    lines = _lines(run.model, run.calibration, depth)
-    refit = Refit(run.calibration, run.model)
+    time = run.log.time[part.rows]
+    lines = tabulated(run.model, run.calibration, depth)
+    base = match_locally(time, run.calibration, lines)
+    refit = Refit(run.calibration, run.model, depth)
 
     def one(draw: Draw) -> Outcome:
         model = departed(run.model, departure(run.well, draw))
         calibration = refit(model, draw)
-        local = match_locally(run.log.time[part.rows], calibration, model)
+        own = tabulated(model, calibration, depth)
+        local = match_locally(time, calibration, own)
         samples = _as_drawn(run, part.samples, draw, (base, local), calibration)
         rules = run.rules._replace(rate=run.rules.rate * rate_factor(draw, run.rate_law))
         found = go(model.setting(*factors(calibration)), samples, rules, fresh(model))
-        own = _lines(model, calibration, depth)
-        drag, was = own[2] - own[1], lines[2] - lines[1]
-        share = np.divide(drag, was, out=np.ones_like(was), where=np.abs(was) > LEAST_DRAG)
-        multiple = np.interp(part.samples.bit, depth, share) * samples.down / part.samples.down
-        return Outcome(calibration, found, multiple, own - lines)
+        block = calibration.block_weight.value - run.calibration.block_weight.value
+        share = own.drag_over(lines, part.samples.bit) * samples.down / part.samples.down
+        return Outcome(calibration, found, share, block + own.weights - lines.weights)
 
     with ThreadPoolExecutor() as pool:  # the kernel holds no lock
         outcomes = list(pool.map(one, draws))
@@ -148,15 +146,6 @@ def _as_drawn(
         down=samples.down * after.down / before.down * loaded,
         up=samples.up * after.up / before.up * loaded,
         scale=samples.scale * calibration.weight_scale.value / run.calibration.weight_scale.value,
-    )
-
-
-def _lines(model: OffBottomModel, calibration: Calibration, depth: Floats) -> Floats:
-    """Block weight and string weight: pick-up, rotating, slack-off, shape (3, points) [N]."""
-    base = calibration.block_weight.value
-    scale = calibration.weight_scale.value
-    return np.array(
-        [base + model.string_weight(kind, depth, *factors(calibration), scale=scale) for kind in KINDS]
     )
 
 

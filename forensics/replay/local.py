@@ -13,8 +13,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics.friction.result import Calibration, Reading
-from forensics.mechanics.offbottom import OffBottomModel
 from forensics.replay.model import factors
+from forensics.replay.tabulated import Weights
 
 Floats = NDArray[np.float64]
 
@@ -45,7 +45,7 @@ class LocalMatch:
     up: Floats
 
 
-def match_locally(time: Floats, calibration: Calibration, model: OffBottomModel) -> LocalMatch:
+def match_locally(time: Floats, calibration: Calibration, model: Weights) -> LocalMatch:
     """Interpolate what the readings say beyond the model to the log's rows.
 
     Parameters
@@ -72,7 +72,7 @@ def match_locally(time: Floats, calibration: Calibration, model: OffBottomModel)
     return LocalMatch(_carry(time, shifts, 0.0), down, up)
 
 
-def string_part(readings: list[Reading], calibration: Calibration, model: OffBottomModel) -> Floats:
+def string_part(readings: list[Reading], calibration: Calibration, model: Weights) -> Floats:
     """Hookload of the readings with block, bias and pipe above the rotary taken off [N], shape (k,)."""
     block = np.array([r.block for r in readings])
     value = np.array([r.value for r in readings])
@@ -81,7 +81,7 @@ def string_part(readings: list[Reading], calibration: Calibration, model: OffBot
     return value - calibration.block_weight.value - calibration.hookload_bias.value - above
 
 
-def _shifts(readings: list[Reading], calibration: Calibration, model: OffBottomModel) -> Series:
+def _shifts(readings: list[Reading], calibration: Calibration, model: Weights) -> Series:
     """Find the weight shifts of the rotating readings."""
     if not readings:
         return Series(np.empty(0), np.empty(0))
@@ -93,7 +93,7 @@ def _shifts(readings: list[Reading], calibration: Calibration, model: OffBottomM
 
 
 def _multiples(
-    readings: list[Reading], shifts: Series, kind: str, calibration: Calibration, model: OffBottomModel
+    readings: list[Reading], shifts: Series, kind: str, calibration: Calibration, model: Weights
 ) -> Series:
     """Find the friction multiple of each sliding reading whose drag is large enough to tell."""
     if not readings:

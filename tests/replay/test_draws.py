@@ -59,7 +59,8 @@ def test_draws_are_mirrored_pairs_and_repeat(run):
 def test_a_draw_keeps_to_the_runs_own_weights(run):
     """Another path, hole and weight move the model; refitted, it foretells the readings as before."""
     calibration, model = run.calibration, run.model
-    refit = Refit(calibration, model)
+    grid = np.linspace(run.prepared.samples.bit.min(), run.prepared.samples.bit.max() + 1.0, 48)
+    refit = Refit(calibration, model, grid)
     weights = calibration.weights
     kinds, depth = [r.kind for r in weights], [r.bit_depth for r in weights]
 
