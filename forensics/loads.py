@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 import enum
-from dataclasses import dataclass
+from collections.abc import Mapping
+from dataclasses import dataclass, field
 from typing import ClassVar
 
 import numpy as np
@@ -40,6 +41,131 @@ class RateLaw:
     determined: bool
     samples: int
     spread: float
+
+
+@dataclass(frozen=True)
+class Response:
+    """How a channel answers the load on the bit, as rotated footage taught it.
+
+    Parameters
+    ----------
+    name : str
+        Of the channel, as the report calls it.
+    basis : Basis
+        What a bit load read off it rests on.
+    slope : float
+        Signal beyond its off-bottom zero for each newton on the bit [SI unit of the channel per N].
+    spread : float
+        One sigma of the slope from window to window, as a part of it.
+    correlation : float
+        Of signal and load over the windows; NaN where the load hardly varied.
+    low, high : float
+        Bit loads it was learned at: 5 and 95 % of the windows [N].
+    windows : int
+        Windows of rotated footage that taught it.
+    delay : float
+        How late the channel comes [s].
+    heard : bool
+        Whether it is believed.
+    why : str
+        Why it is not; empty where it is.
+    set_aside : Mapping of str to int
+        Rows of it set aside, by reason.
+    """
+
+    name: str
+    basis: Basis
+    slope: float = float("nan")
+    spread: float = float("nan")
+    correlation: float = float("nan")
+    low: float = float("nan")
+    high: float = float("nan")
+    windows: int = 0
+    delay: float = 0.0
+    heard: bool = False
+    why: str = ""
+    set_aside: Mapping[str, int] = field(default_factory=dict)
+
+
+@dataclass(frozen=True)
+class WitnessCheck:
+    """Bit load by hookload alone against the bit's own witness, over some rows (a slide, an episode).
+
+    Parameters
+    ----------
+    first, last : int
+        Rows of the log, inclusive.
+    rows : int
+        Rows on which both speak.
+    by_hookload, by_witness : float
+        Mean bit loads [N].
+    difference : float
+        Mean of hookload less witness [N].
+    sigma : float
+        One standard error expected of that difference: friction, zero and response together [N].
+    scatter : float
+        Standard deviation of the difference from row to row [N].
+    correlation : float
+        Of the two bit loads; NaN where they hardly varied.
+    bound : float
+        Share of the rows on which the replay itself leans on the witness.
+    paper, shortening : float
+        Footage on paper over these rows, by the bit's counted depth, and the part of it that was the string
+        growing shorter [m].
+    drilled : float
+        Footage that the witness's bit load can have drilled, by the rate law [m]; NaN without a law.
+    """
+
+    first: int
+    last: int
+    rows: int
+    by_hookload: float
+    by_witness: float
+    difference: float
+    sigma: float
+    scatter: float
+    correlation: float
+    bound: float = 0.0
+    paper: float = float("nan")
+    shortening: float = float("nan")
+    drilled: float = float("nan")
+
+    @property
+    def sigmas(self) -> float:
+        """The difference in its standard errors; NaN where either is silent."""
+        return self.difference / self.sigma if self.sigma > 0.0 else float("nan")
+
+
+@dataclass(frozen=True)
+class BitWitness:
+    """What the bit's own witnesses say of the load on it; arrays of shape (n,).
+
+    Parameters
+    ----------
+    load, sigma : ndarray
+        Bit load by all witnesses heard, weighed by inverse variance, and its standard error [N]; NaN where
+        silent.
+    basis : ndarray of int8
+        `Basis` of the one that weighs most; meaningless where silent.
+    by_hookload, own_sigma : ndarray
+        Bit load by the hookload alone, at the friction of the weight readings, and its standard error [N];
+        NaN outside slides.
+    moved : ndarray
+        How much more the string rubs than the weight readings say, where the witness showed it [-].
+    responses : tuple of Response
+        Every channel asked, heard or not.
+    slides : tuple of WitnessCheck
+        One for each slide in which both speak.
+    """
+
+    load: Floats
+    sigma: Floats
+    basis: NDArray[np.int8]
+    by_hookload: Floats
+    own_sigma: Floats
+    moved: Floats
+    responses: tuple[Response, ...] = ()
+    slides: tuple[WitnessCheck, ...] = ()
 
 
 @dataclass(frozen=True)
@@ -124,6 +250,8 @@ class LoadHistory:
         Stations visited by the replay, for the benchmark.
     bit_load_limit : ndarray or None
         Most bit load any slacking off could give while sliding, NaN elsewhere [N].
+    witness : BitWitness or None
+        What the bit's own witnesses say; None where the log has none that could.
     """
 
     bit_load: Floats
@@ -146,6 +274,7 @@ class LoadHistory:
     rate_law: RateLaw
     visits: int = 0
     bit_load_limit: Floats | None = None
+    witness: BitWitness | None = None
 
 
 @dataclass(frozen=True)

@@ -7,11 +7,11 @@ from numpy.typing import NDArray
 
 from forensics.loads import RateLaw
 from forensics.logs.table import TimeLog
-from forensics.rig.view import Activity, RigView
+from forensics.replay.windows import rotary_windows
+from forensics.rig.view import RigView
 
 Floats = NDArray[np.float64]
 
-WINDOW_SECONDS = 60.0
 LEAST_WINDOWS = 8
 LEAST_LOAD = 5e3  # N; below this the load is mostly zero error
 EXPONENTS = (0.5, 2.0)  # common practice, no source: drilling rate goes with weight to a power near one
@@ -53,14 +53,10 @@ def learn_rate(log: TimeLog, rig: RigView, bit_load: Floats) -> RateLaw:
 
 def _windows(log: TimeLog, rig: RigView, bit_load: Floats) -> tuple[Floats, Floats]:
     """Mean rate [m/s] and median load [N] of each whole window of rotary drilling."""
-    drilling = rig.activity == Activity.DRILL_ROTATE
-    edges = np.flatnonzero(np.diff(np.concatenate([[0], drilling.astype(np.int8), [0]])))
-    step = max(3, round(WINDOW_SECONDS / log.interval))
-    parts = [np.arange(start, stop - step + 1, step) for start, stop in edges.reshape(-1, 2)]
-    first = np.concatenate([*parts, np.empty(0, dtype=int)]).astype(int)
-    last = first + step - 1
+    windows = rotary_windows(log, rig)
+    first, last = windows.first, windows.first + windows.step - 1
     depth = log.values["bit_depth"]
     rate = (depth[last] - depth[first]) / (log.time[last] - log.time[first])
-    load = np.median(bit_load[first[:, None] + np.arange(step)], axis=1)
+    load = windows.medians(bit_load)
     told = np.isfinite(rate) & np.isfinite(load)
     return rate[told], load[told]

@@ -15,12 +15,11 @@ from forensics.mechanics.offbottom import OffBottomModel
 from forensics.replay.local import match_locally
 from forensics.replay.model import build_model, factors
 from forensics.replay.rate import learn_rate
-from forensics.replay.room import excerpt, fresh, go
 from forensics.replay.run import Replay
 from forensics.replay.samples import Prepared, prepare
 from forensics.replay.torsion import torque_ends
-from forensics.replay.witness import SIGMAS, Witness, friction_ratio, hear
-from forensics.rig.view import Activity, RigView
+from forensics.replay.witness.heed import heed
+from forensics.rig.view import RigView
 from forensics.well.model import Well
 
 Floats = NDArray[np.float64]
@@ -48,7 +47,8 @@ def ready(
         model = build_model(well, case, depth, block_zero(rig))
     local = match_locally(log.time, calibration, model)
     prepared = prepare(log, well, rig, calibration, model, local)
-    turning = _turning_load(prepared, model)
+    still, drag = _lines(prepared, model, calibration)
+    turning = _turning_load(prepared, still, drag)
     law = learn_rate(log, rig, turning)
     noise = rig.noise.get("hookload", 1e3)
     rules = Rules(
@@ -60,8 +60,7 @@ def ready(
     run = Replay(log, well, rig, calibration, model, prepared, rules, law)
     if case.criteria.torque_effect:
         run = _wound(run)
-    witness = hear(log, rig, turning)
-    return run if witness is None else _heed(run, witness)
+    return heed(run, turning, drag)
 
 
 def _wound(run: Replay) -> Replay:
@@ -71,32 +70,18 @@ def _wound(run: Replay) -> Replay:
     return replace(run, prepared=replace(run.prepared, samples=run.prepared.samples._replace(ends=ends)))
 
 
-def _heed(run: Replay, witness: Witness) -> Replay:
-    """Let the pressure bound the bit load, and move friction where the two disagree for long."""
-    bound = np.where(np.isfinite(witness.load), witness.load + SIGMAS * witness.sigma, np.inf)
-    samples = run.prepared.samples._replace(witness=bound)
-    run = replace(run, prepared=replace(run.prepared, samples=samples))
-    load, basis = _slides(run)
-    ratio = friction_ratio(run.log, run.rig, witness, load, basis)
-    samples = samples._replace(down=samples.down * ratio)
-    return replace(run, prepared=replace(run.prepared, samples=samples), moved=ratio)
+def _turning_load(prepared: Prepared, still: Floats, drag: Floats) -> Floats:
+    """Bit load while turning on bottom: rotating weight, less the drag of going down, less hookload [N]."""
+    samples = prepared.samples
+    return np.where(samples.mode == TURN, still - samples.share * drag - samples.top, np.nan)
 
 
-def _slides(run: Replay) -> tuple[Floats, NDArray[np.int8]]:
-    """Bit load and its basis over the slides and what leads up to them; zero elsewhere."""
-    load = np.zeros(len(run.log))
-    basis = np.full(len(run.log), -1, dtype=np.int8)
-    part = excerpt(run.prepared.samples, run.log.time, run.rig.activity == Activity.DRILL_SLIDE)
-    if part.covered.any():
-        at = run.model.setting(*factors(run.calibration))
-        found = go(at, part.samples, run.rules, fresh(run.model))
-        load[part.covered], basis[part.covered] = part.spread(found.bit_load), part.spread(found.basis)
-    return load, basis
-
-
-def _turning_load(prepared: Prepared, model: OffBottomModel) -> Floats:
-    """Bit load while turning on bottom: rotating weight less hookload [N]."""
+def _lines(prepared: Prepared, model: OffBottomModel, calibration: Calibration) -> tuple[Floats, Floats]:
+    """Weight of the string at rest, and the drag of sliding down with the bit free, shape (n,) each [N]."""
     samples = prepared.samples
     grid = np.linspace(np.min(samples.bit), np.max(samples.bit) + 1.0, 400)
-    weight = np.interp(samples.bit, grid, model.string_weight("rotating", grid, 0.0, 0.0))
-    return np.where(samples.mode == TURN, weight * samples.scale - samples.top, np.nan)
+    still, sliding = (
+        np.interp(samples.bit, grid, model.string_weight(kind, grid, *factors(calibration))) * samples.scale
+        for kind in ("rotating", "slack_off")
+    )
+    return still, samples.down * (still - sliding)

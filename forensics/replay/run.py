@@ -8,7 +8,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics.friction.result import Calibration
-from forensics.loads import LoadHistory, RateLaw, RatioMap
+from forensics.loads import BitWitness, LoadHistory, RateLaw, RatioMap
 from forensics.logs.table import TimeLog
 from forensics.mechanics.kernels_replay import Rules, Run, replay_rows
 from forensics.mechanics.offbottom import OffBottomModel
@@ -18,6 +18,8 @@ from forensics.replay.model import factors
 from forensics.replay.room import fresh, room
 from forensics.replay.samples import Prepared
 from forensics.replay.slide import straight_drag
+from forensics.replay.windows import window_rows
+from forensics.replay.witness.combine import lean
 from forensics.rig.view import Activity, RigView
 from forensics.well.model import Well
 
@@ -31,8 +33,7 @@ MAP_DEPTHS = 240
 class Replay:
     """A replay made ready: everything that does not change between friction draws.
 
-    `moved` is how much more the string rubs, row by row, than its weight readings said, where the bit's
-    own witness showed it (None: no witness).
+    `witness` is what the bit's own witnesses say (None: not asked yet).
     """
 
     log: TimeLog
@@ -43,7 +44,7 @@ class Replay:
     prepared: Prepared
     rules: Rules
     rate_law: RateLaw
-    moved: Floats | None = None
+    witness: BitWitness | None = None
 
 
 def replay(run: Replay) -> LoadHistory:
@@ -65,6 +66,10 @@ def replay(run: Replay) -> LoadHistory:
         run.model.setting(cased, open_hole), Run(samples, run.rules, found, memory, now, float(depths[1]))
     )
     found.bit_load[run.prepared.far] = 0.0
+    if run.witness is not None:
+        drilling = run.rig.activity == Activity.DRILL_SLIDE
+        step = window_rows(run.log.interval)
+        found.bit_load[:], found.basis[:] = lean(run.witness, found.bit_load, found.basis, drilling, step)
     expected, drag = drag_lines(run.prepared, run.rig, run.calibration, run.model, found)
     lost = run.rig.wob_surface - found.bit_load
     return LoadHistory(
@@ -84,4 +89,5 @@ def replay(run: Replay) -> LoadHistory:
         stretch=found.stretch,
         ratio_map=RatioMap(times, depths, found.chart),
         rate_law=run.rate_law, visits=int(memory.visits[0]),
+        witness=run.witness,
     )
