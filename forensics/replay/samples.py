@@ -24,6 +24,7 @@ EDGE_SECONDS = 3.0  # around slips the hookload is neither the block's nor the s
 BRIDGED_SECONDS = 15.0  # shorter gaps of hookload or bit depth are read across
 STILL_ON_BOTTOM = 5.0  # m; further than a string stretches in a partial pick-up, the bit is off bottom
 CLEAR_OF_BOTTOM = 1.0  # m; nearer than this, stretch may still hold the bit on bottom
+LEAST_FLOW = 0.5  # of the usual flow: with less a motor hardly turns (from memory)
 MIN_REVERSAL = 0.02  # m; a block that comes back by less has not reversed
 
 
@@ -61,7 +62,7 @@ def prepare(
         mode=mode,
         direction=direction,
         travel=travel,
-        drilling=near & (rig.pumping if _shows_pumps(log) else True),
+        drilling=near & _bit_turns(log, rig),
         free=(gap > CLEAR_OF_BOTTOM) & ~rig.on_bottom,
         share=_share(log, height, model),
         down=local.down,
@@ -74,9 +75,14 @@ def prepare(
     return Prepared(samples, hookload, hanging, ~near)
 
 
-def _shows_pumps(log: TimeLog) -> bool:
-    """Whether flow, or the pressure that stands in for it, tells where the pumps ran."""
-    return any(log.get(channel) is not None for channel in ("flow_in", "standpipe_pressure"))
+def _bit_turns(log: TimeLog, rig: RigView) -> NDArray[np.bool_]:
+    """Rows on which a motor turns the bit: enough flow; pumps on where only pressure tells; else all."""
+    flow = log.get("flow_in")
+    if flow is not None and rig.usual_flow > 0.0:
+        return rig.pumping & (np.nan_to_num(flow, nan=np.inf) > LEAST_FLOW * rig.usual_flow)
+    if log.get("standpipe_pressure") is not None:
+        return rig.pumping
+    return np.ones(len(log), dtype=bool)
 
 
 def weight_scale(log: TimeLog, well: Well, calibration: Calibration) -> Floats:

@@ -8,7 +8,7 @@ import numpy as np
 import pytest
 
 from forensics.logs.table import TimeLog
-from forensics.replay.samples import _calm, _share, _shows_pumps
+from forensics.replay.samples import _bit_turns, _calm, _share
 
 
 def log_with(**channels) -> TimeLog:
@@ -29,14 +29,15 @@ def test_a_lost_rotary_speed_is_no_standstill():
 @pytest.mark.parametrize(
     ("channels", "shown"),
     [
-        ({"flow_in": np.ones(5)}, True),
-        ({"standpipe_pressure": np.ones(5)}, True),
-        ({"flow_in": np.full(5, np.nan)}, False),
-        ({}, False),
+        ({"flow_in": np.array([0.0, 0.4, 0.6, 1.0, np.nan])}, [False, False, True, True, False]),
+        ({"standpipe_pressure": np.ones(5)}, [False, True, True, True, False]),
+        ({"flow_in": np.full(5, np.nan)}, [True] * 5),
+        ({}, [True] * 5),
     ],
 )
-def test_pressure_shows_the_pumps_where_flow_is_missing(channels, shown):
-    assert _shows_pumps(log_with(**channels)) is shown
+def test_a_bit_turns_with_half_the_usual_flow_or_while_the_pumps_show(channels, shown):
+    rig = SimpleNamespace(pumping=np.array([False, True, True, True, False]), usual_flow=1.0)
+    assert _bit_turns(log_with(**channels), rig).tolist() == shown
 
 
 def test_a_lone_block_reading_is_no_rush_up_and_down():

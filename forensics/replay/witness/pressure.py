@@ -6,6 +6,7 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
+from scipy.ndimage import minimum_filter1d, uniform_filter1d
 
 from forensics.loads import Basis, Response
 from forensics.logs.table import TimeLog
@@ -19,6 +20,7 @@ Bools = NDArray[np.bool_]
 
 LIKE_FLOW = 0.05  # pressures at flows further apart than this say nothing of the bit load
 SAME_FLOW = 0.015  # and nearer than this they are one flow
+SETTLING = 10.0  # s before and after a change of flow that say nothing
 FLOW_EXPONENT = 1.8  # turbulent losses in pipe; common practice, no source
 LEAST_ZERO_SECONDS = 20.0
 CLEAR = 1.0  # m off bottom from which nothing rests on the bit
@@ -88,12 +90,12 @@ def like_flow(log: TimeLog, rig: RigView) -> tuple[Bools, Floats]:
     if flow is None or not np.isfinite(flow[drilling]).any():
         return rig.pumping.copy(), np.ones(len(log))
     usual = float(np.nanmedian(flow[drilling]))
-    steps = max(1, round(15.0 / log.interval))
     known = np.isfinite(flow)
-    filled = np.interp(log.time, log.time[known], flow[known])
-    smooth = np.convolve(np.pad(filled, steps, mode="edge"), np.ones(2 * steps + 1), "valid")
-    ratio = smooth / (2 * steps + 1) / usual
-    like = np.abs(ratio - 1.0) < LIKE_FLOW
+    ratio = np.interp(log.time, log.time[known], flow[known]) / usual
+    like = np.abs(uniform_filter1d(ratio, 3) - 1.0) < LIKE_FLOW
+    # while the flow changes the pressure goes ahead of it, or lags behind
+    edge = max(1, round(SETTLING / log.interval))
+    like = minimum_filter1d((like & rig.pumping).astype(np.int8), 2 * edge + 1) > 0
+    level = uniform_filter1d(ratio, 4 * edge + 1)
     # a meter's own noise would be read as pressure
-    changed = like & (np.abs(ratio - 1.0) > SAME_FLOW)
-    return like & rig.pumping, np.where(changed, ratio, 1.0)
+    return like, np.where(like & (np.abs(level - 1.0) > SAME_FLOW), level, 1.0)
