@@ -151,7 +151,9 @@ class BitWitness:
         Bit load by the hookload alone, at the friction of the weight readings, and its standard error [N];
         NaN outside slides.
     moved : ndarray
-        How much more the string rubs than the weight readings say, where the witness showed it [-].
+        How much more the string rubs than the weight readings say, where the witness proved it [-].
+    beyond : ndarray
+        What the witness, short of that proof, takes off the bit load by hookload [N].
     responses : tuple of Response
         Every channel asked, heard or not.
     slides : tuple of WitnessCheck
@@ -164,6 +166,7 @@ class BitWitness:
     by_hookload: Floats
     own_sigma: Floats
     moved: Floats
+    beyond: Floats
     responses: tuple[Response, ...] = ()
     slides: tuple[WitnessCheck, ...] = ()
 

@@ -75,9 +75,9 @@ def lean(
     Returns
     -------
     bit_load, basis : ndarray, shape (n,)
-        Unchanged where the hookload shows the bit and the witness does not flatly contradict it, and where
-        only the drilling rate speaks: the replay has that already. Where the witness stopped the remembered
-        load, it alone counts.
+        Where the hookload shows the bit and the witness does not flatly contradict it, no more changes than
+        the slow part that both their errors allow; where only the drilling rate speaks, nothing: the replay
+        has that already. Where the witness stopped the remembered load, it alone counts.
     """
     told = drilling & np.isfinite(witness.load) & (witness.basis != Basis.RATE_LAW)
     own = np.where(basis == Basis.HOOKLOAD, witness.own_sigma, UNSEEN) ** 2
@@ -90,5 +90,6 @@ def lean(
     # a bit that carries nothing is not loaded by the witness's own noise
     loaded = (witness.load > FLATLY * witness.sigma) | (bit_load > witness.load)
     heeded = told & loaded & ((basis != Basis.HOOKLOAD) | apart)
-    mixed = np.where(heeded, bit_load + share * (witness.load - bit_load), bit_load)
+    shown = np.where(told & (basis == Basis.HOOKLOAD), np.maximum(bit_load - witness.beyond, 0.0), bit_load)
+    mixed = np.where(heeded, bit_load + share * (witness.load - bit_load), shown)
     return mixed, np.where(heeded & (share > 0.5), witness.basis, basis).astype(np.int8)

@@ -84,11 +84,11 @@ def heed(run: Replay, turning: Floats, drag: Floats) -> Replay:
         sliding & (own.basis == Basis.HOOKLOAD) & np.isfinite(load)
         & (own.drag > np.maximum(LEAST_DRAG, WHOLE * drag)),
     )  # fmt: skip
-    moved = friction_ratio(telling, sliding)
+    moved, beyond = friction_ratio(telling, sliding)
     witness = BitWitness(
         load, sigma, basis,
         np.where(sliding, own.load, np.nan), np.where(sliding, own.sigma, np.nan),
-        moved, tuple(_response(a) for a in asked),
+        moved, beyond, tuple(_response(a) for a in asked),
     )  # fmt: skip
     checks = (_check(run, witness, footage, first, stop - 1) for first, stop in slides)
     witness = replace(witness, slides=tuple(c for c in checks if c is not None))
@@ -134,9 +134,9 @@ def _response(asked: Heard | Response) -> Response:
 
 
 def _silent(run: Replay, responses: tuple[Response, ...]) -> BitWitness:
-    silent = np.full(len(run.log), np.nan)
-    basis = np.zeros(len(run.log), dtype=np.int8)
-    return BitWitness(silent, silent, basis, silent, silent, np.ones(len(run.log)), responses)
+    n = len(run.log)
+    silent, basis = np.full(n, np.nan), np.zeros(n, dtype=np.int8)
+    return BitWitness(silent, silent, basis, silent, silent, np.ones(n), np.zeros(n), responses)
 
 
 def _slides(run: Replay) -> list[tuple[int, int]]:
