@@ -296,7 +296,8 @@ class Hand(Driller):
             gap = self.rig.bottom - self.rig.x[0]
             wanted = min(speed, 0.015 + 0.06 * max(gap - 0.3, 0.0))
             self.rig.advance(Demand(wanted, rpm, self.pump))
-            if self.rig.found[0] > load or self.wob() > 8.0 * load + 250 * KN:
+            stacked = self.wob() > 8.0 * load + 250 * KN or self.rig.rows[-1][RATIO] > self.most
+            if self.rig.found[0] > load or stacked:
                 return
 
     def slide_on(self, length: float, drop: float, most: float, patience: float = 900.0) -> None:

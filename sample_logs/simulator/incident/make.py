@@ -133,7 +133,9 @@ def play(cause: str, seed: int, physics: Physics) -> tuple[TroubledRig, dict, st
     }  # fmt: skip
     plan, bottom = draw_plan(work, settings, rng)
     if cause == BUCKLING and work == "line":
-        settings["planted"]["friction_open"] = rng.uniform(0.35, 0.55)
+        settings["planted"]["friction_open"] = rng.uniform(0.42, 0.7)
+        deep = settings["well"]["total_depth"] - plan.stands * settings["rig"]["stand"] - 30.0
+        plan.begin = max(plan.begin, deep - rng.uniform(0.0, 200.0))
     hole = build_hole(settings, np.random.default_rng([seed, 1]))
     survey = delivered_survey(settings, hole, np.random.default_rng([seed, 2]))
     start = max(hole.shoe * rng.uniform(0.5, 0.85), 350.0)
