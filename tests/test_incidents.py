@@ -25,6 +25,7 @@ from simulator.incident.rig import TroubledRig  # noqa: E402
 from simulator.incident.sensors import HookloadFault  # noqa: E402
 from simulator.incident.stops import Ledge, Undergauge  # noqa: E402
 from simulator.incident.wells import draw_settings  # noqa: E402
+from simulator.rig import Demand  # noqa: E402
 
 BOTH = pytest.mark.parametrize("law", list(SETS.values()), ids=list(SETS))
 BIT = 2050.0
@@ -196,8 +197,7 @@ def test_a_stalled_motor_drills_nothing_until_the_weight_is_off(law):
     for _ in range(600):
         if rig.stalled:
             break
-        hand.stack(20e3 + hand.wob(), limit=0.3)
-        hand.hold(2, rpm=90.0)
+        rig.advance(Demand(0.01, 90.0, 1.0))
     assert rig.stalled
     hand.hold(2, rpm=90.0)
     bottom = rig.bottom
