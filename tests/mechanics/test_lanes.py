@@ -85,6 +85,14 @@ def test_slopes_are_those_of_small_differences():
         np.testing.assert_allclose(difference, slopes[:, p], atol=1e-7 * np.abs(slopes[:, p]).max() + 1e-3)
 
 
+@settings(max_examples=40, deadline=None)
+@given(st.floats(30.0, 3390.0), st.lists(st.floats(0.0, 0.35), min_size=4, max_size=4))
+def test_more_friction_in_any_section_is_more_drag(bit, factors):
+    got = model().weigh_readings(["pick_up", "slack_off"], [bit, bit], factors)
+    assert np.all(got.slopes[0] >= 0.0)
+    assert np.isnan(got.weight[1]) or np.all(got.slopes[1] <= 0.0)
+
+
 def test_a_turning_string_knows_no_friction():
     got = model().weigh_readings(["rotating"] * 3, [800.0, 2000.0, 3300.0], FACTORS)
     assert not got.slopes.any()
