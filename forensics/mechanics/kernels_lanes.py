@@ -46,7 +46,7 @@ class Strings(NamedTuple):
     factor: Array
 
 
-class Found(NamedTuple):
+class AtRotary(NamedTuple):
     """What the march writes; arrays of shape (k,), or (0,) where one is not asked for.
 
     `weight` at the rotary [N]; `arm`, contact force times its radius summed along the string: the torque at a
@@ -243,7 +243,7 @@ def _load(strings: Strings, inv_step: float, start: int, width: int, room: _Room
 
 
 @njit(cache=True)
-def _store(found: Found, start: int, width: int, room: _Room) -> None:
+def _store(found: AtRotary, start: int, width: int, room: _Room) -> None:
     """Write what a block came to."""
     for k in range(width):
         found.weight[start + k] = room.work[TENSION + k]
@@ -287,7 +287,7 @@ def _climb(setting: Setting, ground: Ground, room: _Room, width: int, last: int,
 
 
 @njit(cache=True, error_model="numpy", nogil=True)
-def march_lanes(setting: Setting, ground: Ground, strings: Strings, helices: bool, found: Found) -> None:
+def march_lanes(setting: Setting, ground: Ground, strings: Strings, helices: bool, found: AtRotary) -> None:
     """March strings from the bit up to the rotary.
 
     Parameters
@@ -298,7 +298,7 @@ def march_lanes(setting: Setting, ground: Ground, strings: Strings, helices: boo
         Hole and strings.
     helices : bool
         Whether the string carries helical contact where it is pressed past the onset.
-    found : Found
+    found : AtRotary
         Filled.
     """
     asked = found.slopes.shape[1]

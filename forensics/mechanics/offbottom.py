@@ -14,7 +14,7 @@ from forensics.case import CriteriaSettings
 from forensics.mechanics.grid import HoleGrid, PipeGrid, hole_grid, pipe_grid, weight_in_air
 from forensics.mechanics.ground import Ground, build_ground, divide
 from forensics.mechanics.kernels_judge import Setting
-from forensics.mechanics.kernels_lanes import Found, Strings, march_lanes
+from forensics.mechanics.kernels_lanes import AtRotary, Strings, march_lanes
 from forensics.mechanics.kernels_march import RUN_AWAY, Hole, Pipe
 from forensics.mechanics.limits import tabulate
 from forensics.well.model import Well
@@ -257,7 +257,7 @@ class OffBottomModel:
         arm: bool = False,
         ratio: bool = False,
         slopes: bool = False,
-    ) -> Found:
+    ) -> AtRotary:
         """March strings in the order of their depths; give what is asked in the order they came."""
         bits, deepest = strings.bit, (len(self.hole.cos_i) - 1.5) * self.hole.step
         if not np.all((bits >= 0.0) & (bits <= deepest)):
@@ -268,7 +268,7 @@ class OffBottomModel:
         ordered = Strings(*(np.array(column[..., order], order="C") for column in strings))
         count, columns = len(bits), len(strings.factor) + 1 if slopes else 0
         sizes = (count, count if arm else 0, count if ratio else 0, (count, columns))
-        found, placed = (Found(*(np.empty(size) for size in sizes)) for _ in range(2))
+        found, placed = (AtRotary(*(np.empty(size) for size in sizes)) for _ in range(2))
         march_lanes(self.smooth, self.ground, ordered, helices, found)
         locked = found.weight < RUN_AWAY
         found.weight[locked], found.slopes[locked] = np.nan, np.nan

@@ -19,6 +19,7 @@ from forensics.well.hole import Hole
 from forensics.well.model import Well
 from forensics.well.string import Component, String
 from forensics.well.trajectory import build_trajectory
+from tests.marches import tension_from_bit
 from tests.naive_mechanics import weigh_with_slopes
 from tests.wells import build_well, one_pipe_well
 
@@ -148,6 +149,30 @@ def test_capstan_above_a_straight_incline(kind):
     assert got.weight[0] == pytest.approx(below * turns, rel=1e-4)
     exact = [sign * angle * below * turns, sign * 700.0 * straight * math.sin(angle) * turns]
     np.testing.assert_allclose(got.slopes[0], exact, rtol=3e-4)
+
+
+@settings(max_examples=15, deadline=None)
+@given(st.floats(100.0, 3390.0), st.floats(0.0, 2e5), st.floats(0.0, 0.2))
+def test_a_loaded_string_without_helices_is_the_replays_march(bit, load, factor):
+    up = tension_from_bit(model(), factor, bit, 1.0, -load)[1]
+    got = model().loaded_weight([bit, bit], load, (factor, factor))
+    np.testing.assert_allclose(got, up[-1], rtol=0.0, atol=1e-12 * np.abs(up).max())
+
+
+def test_load_ratio_of_a_level_string():
+    """Exact: pushed from the rotary, load mu w x, against the Dawson-Paslay load 2 sqrt(EI w / r)."""
+    one = OffBottomModel(one_pipe_well(math.pi / 2, 2000.0), 2000.0)
+    weight, gap = float(one.pipe.weight[0]), (0.2159 - 0.168) / 2
+    # load is taken at the middle of the topmost element of ten metres
+    exact = 0.25 * weight * 1995.0 / (2.0 * math.sqrt(float(one.pipe.ei[0]) * weight / gap))
+    assert one.slack_off_ratio([500.0, 2000.0], 0.1, 0.25)[1] == pytest.approx(exact, rel=1e-6)
+
+
+def test_a_depth_beyond_the_tables_is_refused():
+    with pytest.raises(ValueError, match="what the tables cover"):
+        model().string_weight("pick_up", [100.0, 3500.0], 0.2, 0.2)
+    with pytest.raises(ValueError, match="what the tables cover"):
+        model().weigh_readings(["pick_up"], [math.nan], FACTORS)
 
 
 def test_sections_of_one_factor_are_the_whole():
