@@ -36,21 +36,35 @@ _ITEMS = """
 ITEMS = {code: (name, {"metric": metric, "fps": fps}) for code, name, metric, fps in re.findall(
     r"(\d{4}) (\S+) (\S+) (\S+)", _ITEMS)}  # fmt: skip
 SYSTEMS = ("metric", "fps")
-_ITEM = re.compile(r"(\d{4})\s*(.*)")
-# No value is longer; a line of this length is no item [characters].
+# No value is longer; a line of this length is no item [bytes].
 LONGEST = 4096
+CHUNK = 2**20
+# Items that every record repeats: who, when and what.
+REPEATED = frozenset(f"{number:02d}" for number in range(1, 8))
 
 
 @dataclass
 class _Capture:
     """What the frames hold: rows by code, and what had to be put up with."""
 
+    main: str
     rows: dict[str, list[int]] = field(default_factory=dict)
-    texts: dict[str, list[str | None]] = field(default_factory=dict)
+    texts: dict[str, list[bytes]] = field(default_factory=dict)
     lines: list[int] = field(default_factory=list)
+    records: set[str] = field(default_factory=set)
     truncated: int = 0
     outside: int = 0
     odd: int = 0
+
+    def meet(self, code: str, keep: Keep) -> str:
+        """Make a column of an item met for the first time; "" where it is not to be loaded."""
+        self.records.add(code[:2])
+        # What every record repeats is told once by the main one.
+        if code[:2] != self.main and code[2:] in REPEATED:
+            return ""
+        self.rows[code], self.texts[code] = [], []
+        name = ITEMS[code][0] if code in ITEMS else code
+        return code if keep(name) or name in TELLING else ""
 
 
 def sniff(path: Path, head: bytes) -> bool:
@@ -87,20 +101,14 @@ def read(path: Path, head: bytes, keep: Keep) -> RawLog:
     ----------
     API PUBL 3855 / IADC, WITS, revision 1.1: level 0 and predefined records. Item codes from memory.
     """
-    del head
-    found = _Capture()
-    frames = list(_frames(path, found))
-    if not frames:
+    found = _Capture(_main_record(head))
+    _walk(path, found, keep)
+    if not found.lines:
         raise LogError(
-            f"found no whole WITS frame ({found.truncated} broken off); expected lines of items, such as "
-            "01082450.3, between && and !!",
+            f"found no whole WITS frame of record {found.main} ({found.truncated} broken off); expected "
+            "lines of items, such as 01082450.3, between && and !!",
             file=path,
         )
-    counted = Counter(record for _, frame in frames for record in {code[:2] for code, _ in frame})
-    main = "01" if "01" in counted else counted.most_common(1)[0][0]
-    _fill(found, frames, main, keep)
-    if not found.lines:
-        raise LogError("found no WITS item that is read; expected record 01", file=path)
     codes = list(found.texts)
     names = tuple(ITEMS[code][0] if code in ITEMS else code for code in codes)
     return RawLog(
@@ -108,10 +116,10 @@ def read(path: Path, head: bytes, keep: Keep) -> RawLog:
         format="WITS level 0",
         names=names,
         units=(None,) * len(names),
-        table=_table(found, codes),
+        table=_table(found),
         first_line=found.lines[0],
         lines=np.array(found.lines),
-        notes=_notes(found, main, counted),
+        notes=_notes(found),
         dropped=found.truncated,
         about={name: f"WITS item {code}" for name, code in zip(names, codes, strict=True)},
         by="time",
@@ -124,81 +132,100 @@ def _unit(code: str, system: str) -> str | None:
     return None if unit == "-" else unit
 
 
-def _frames(path: Path, found: _Capture) -> Iterator[tuple[int, list[tuple[str, str]]]]:
-    """Part the lines into whole frames, each with the line it starts on; count what is none."""
-    frame: list[tuple[str, str]] | None = None
-    start = 0
+def _main_record(head: bytes) -> str:
+    """Name the record whose frames are rows: the general time-based one, or the one most often sent."""
+    counted = Counter(re.findall(r"^\s*(\d\d)\d\d", head.decode("latin-1"), re.MULTILINE))
+    return "01" if "01" in counted or not counted else counted.most_common(1)[0][0]
+
+
+def _walk(path: Path, found: _Capture, keep: Keep) -> None:
+    """Walk the lines once: whole frames go into the columns, what is none is counted."""
+    frame: list[tuple[str, bytes]] | None = None
+    start, whole, main = 0, False, found.main.encode()
+    loaded: dict[bytes, str] = {}
     for number, line in enumerate(_lines(path), 1):
-        if line.startswith("&&"):
+        mark = line[:2]
+        if mark == b"&&":
             found.truncated += frame is not None
-            frame, start = [], number
-        elif line.startswith("!!"):
-            if frame:
-                yield start, frame
+            frame, start, whole = [], number, False
+        elif mark == b"!!":
+            if frame is not None:
+                _add(found, frame, start if whole else None)
             frame = None
         elif not line:
             continue
         elif frame is None:
             found.outside += 1
-        elif item := _ITEM.fullmatch(line):
-            frame.append((item[1], item[2]))
+        elif line[:4] in loaded or (len(line) >= 4 and line[:4].isdigit()):
+            whole = whole or mark == main
+            if line[:4] not in loaded:
+                loaded[line[:4]] = found.meet(line[:4].decode(), keep)
+            if code := loaded[line[:4]]:
+                frame.append((code, line[4:]))
         else:
             found.odd += 1
     found.truncated += frame is not None
 
 
-def _lines(path: Path) -> Iterator[str]:
+def _lines(path: Path) -> Iterator[bytes]:
     """Lines of the file without outer blanks; one too long to be an item comes cut."""
+    tail = b""
     try:
         with open_bytes(path) as file:
-            while line := file.readline(LONGEST):
-                if not line.endswith(b"\n") and len(line) == LONGEST:
-                    while (rest := file.readline(2**20)) and not rest.endswith(b"\n"):
-                        pass
-                yield line.decode("latin-1").strip(" \t\r\n\x00")
+            while chunk := file.read(CHUNK):
+                lines = (tail + chunk).split(b"\n")
+                tail = lines.pop()[:LONGEST]
+                for line in lines:
+                    yield line[:LONGEST].strip(b" \t\r\x00")
     except UNPACK_ERRORS as error:
         raise LogError(f"the file can't be unpacked: {error}", file=path) from error
+    yield tail.strip(b" \t\r\x00")
 
 
-def _fill(found: _Capture, frames: list[tuple[int, list[tuple[str, str]]]], main: str, keep: Keep) -> None:
-    """Give each frame of the main record a row, and the items of others the row they came with or after."""
-    names = {code: ITEMS[code][0] if code in ITEMS else code for _, frame in frames for code, _ in frame}
-    wanted = {code: keep(name) or name in TELLING for code, name in names.items()}
-    # Items that every record repeats: who, when and what, told once by the main one.
-    repeated = {f"{number:02d}" for number in range(1, 8)}
-    for line, frame in frames:
-        if any(code[:2] == main for code, _ in frame):
-            found.lines.append(line)
-        if not found.lines:
-            continue
-        row = len(found.lines) - 1
-        for code, text in frame:
-            if code[:2] != main and code[2:] in repeated:
-                continue
-            texts, rows = found.texts.setdefault(code, []), found.rows.setdefault(code, [])
-            if wanted[code]:
-                rows.append(row)
-                texts.append(None if text.casefold() in WORDS else text)
+def _add(found: _Capture, frame: list[tuple[str, bytes]], line: int | None) -> None:
+    """Give a frame of the main record a row, and the items of others the row they came with or after."""
+    if line is not None:
+        found.lines.append(line)
+    if not found.lines:
+        return
+    row = len(found.lines) - 1
+    for code, text in frame:
+        found.rows[code].append(row)
+        found.texts[code].append(text)
 
 
-def _table(found: _Capture, codes: list[str]) -> pd.DataFrame:
+def _table(found: _Capture) -> pd.DataFrame:
     import pandas as pd
 
     columns = {}
-    for number, code in enumerate(codes):
-        if not found.rows[code]:
+    for number, code in enumerate(found.texts):
+        rows = np.array(found.rows[code], dtype=np.int64)
+        if len(rows) == 0:
             continue
-        series = pd.Series(found.texts[code], index=found.rows[code], dtype="object")
         # An item told twice in one frame counts as told last.
-        series = series[~series.index.duplicated(keep="last")].reindex(range(len(found.lines)))
-        converted = pd.to_numeric(series, errors="coerce")
-        columns[number] = converted if converted.notna().sum() == series.notna().sum() else series
+        last = np.append(np.diff(rows) > 0, True)
+        series = pd.Series(_values(found.texts[code]), index=rows)[last]
+        columns[number] = series.reindex(range(len(found.lines)))
     return pd.DataFrame(columns)
 
 
-def _notes(found: _Capture, main: str, counted: Counter[str]) -> tuple[str, ...]:
-    others = sorted(set(counted) - {main})
-    told = [f"one row a frame of record {main}"]
+def _values(texts: list[bytes]) -> pd.Series | np.ndarray:
+    """Turn an item's texts into numbers where all are, or leave them text without words for "no value"."""
+    import pandas as pd
+
+    try:
+        return np.array(texts).astype(np.float64)
+    except ValueError:
+        words = [text.decode("latin-1").strip() for text in texts]
+        series = pd.Series([None if word.casefold() in WORDS else word for word in words], dtype="object")
+        converted = pd.to_numeric(series, errors="coerce")
+        told = converted if converted.notna().sum() == series.notna().sum() else series
+        return told.to_numpy()
+
+
+def _notes(found: _Capture) -> tuple[str, ...]:
+    others = sorted(found.records - {found.main})
+    told = [f"one row a frame of record {found.main}"]
     if others:
         told.append(f"items of record {', '.join(others)} stand in the row they came with or after")
     for count, what in (

@@ -7,6 +7,7 @@ import pytest
 
 import log_writers
 from forensics.case import Case, FluidSettings, LogSettings
+from forensics.errors import LogError
 from forensics.logs.read import read_time_logs
 from forensics.logs.registry import READERS, read_head, read_raw
 
@@ -86,3 +87,32 @@ def test_stamps_without_a_zone_take_the_cases(kind, tmp_path):
 @pytest.mark.parametrize("kind", ["csv", "witsml 1.3.1.1", "witsml 1.4.1.1", "parquet zoned"])
 def test_stamps_with_a_zone_keep_it(kind, tmp_path):
     assert read(write(kind, tmp_path), timezone="+03:00").time[0] == log_writers.seconds()[0]
+
+
+@pytest.mark.parametrize("kind", KINDS)
+@pytest.mark.parametrize("share", [0.1, 0.5, 0.97])
+def test_a_file_cut_anywhere_is_read_or_refused_by_its_name(kind, share, tmp_path):
+    path = write(kind, tmp_path)
+    data = path.read_bytes()
+    path.write_bytes(data[: int(share * len(data))])
+    assert read_or_refused(path)
+
+
+@pytest.mark.parametrize("kind", KINDS)
+@pytest.mark.parametrize("seed", range(3))
+def test_a_file_with_bytes_gone_wrong_is_read_or_refused_by_its_name(kind, seed, tmp_path):
+    path = write(kind, tmp_path)
+    rng = np.random.default_rng(seed)
+    data = bytearray(path.read_bytes())
+    for place in rng.integers(0, len(data), 12):
+        data[place] = int(rng.integers(0, 256))
+    path.write_bytes(bytes(data))
+    assert read_or_refused(path)
+
+
+def read_or_refused(path):
+    """Read a damaged file; a refusal must name it, and nothing else may be raised."""
+    try:
+        return len(read(path)) > 1
+    except LogError as error:
+        return str(path) in str(error)

@@ -90,7 +90,8 @@ def test_formats_with_units_of_their_own_are_left_alone():
 def test_a_file_of_broken_frames_alone_is_refused(tmp_path):
     path = tmp_path / "x.wits"
     path.write_text("&&\n01082000\n&&\n01082000\n")
-    with pytest.raises(LogError, match=r"no whole WITS frame \(2 broken off\).*between && and !!"):
+    words = r"no whole WITS frame of record 01 \(2 broken off\).*between && and !!"
+    with pytest.raises(LogError, match=words):
         read_raw(path, lambda name: bool(name))
 
 
