@@ -40,9 +40,9 @@ sys.path.insert(0, sys.argv[1])
 import forensics.mechanics.offbottom, numpy
 from tests.wells import build_well
 model = forensics.mechanics.offbottom.OffBottomModel(build_well(turn=0.3), 3400.0)
-began = time.perf_counter()
+began = time.perf_counter(), time.process_time()
 model.weigh_readings(["pick_up", "slack_off"], [2000.0, 3000.0], (0.2, 0.3))
-print(time.perf_counter() - began)
+print(time.perf_counter() - began[0], time.process_time() - began[1])
 """
 
 
@@ -206,14 +206,15 @@ def best(call: Callable, clock: Callable, seconds: float = 1.0) -> tuple[float, 
     return shortest, found
 
 
-def first_call() -> float:
-    """Shortest first call of five fresh processes, kernels cached, imports and tables apart [s]."""
+def first_call() -> tuple[float, float]:
+    """Shortest first call of five fresh processes, imports apart: by the wall, of the processor [s]."""
     root = str(Path(__file__).parents[2])
-    taken = [
-        float(subprocess.run([sys.executable, "-c", FIRST, root], check=True, capture_output=True).stdout)
+    told = [
+        subprocess.run([sys.executable, "-c", FIRST, root], check=True, capture_output=True, text=True).stdout
         for _ in range(5)
     ]
-    return min(taken)
+    wall, processor = zip(*(map(float, line.split()) for line in told), strict=True)
+    return min(wall), min(processor)
 
 
 WAYS = {
@@ -255,7 +256,9 @@ def main() -> None:
         print(f"  {name:<22}{each:10.2f} ns a step {each / timed['batch'][0]:10.1f} x batch   {off}")
     print("wanted: batch at most 2.5 ns, NumPy at least 4 x, solve_ivp at least 4000 x, off by at most 1e-12")
     print("(solve_ivp solves the equation, not the steps: it is off by what stations of ten metres are)")
-    print(f"first call in a fresh process, kernels cached: {first_call():.2f} s (wanted: at most 0.6 s)")
+    wall, processor = first_call()
+    print(f"first call in a fresh process, kernels cached: {wall:.2f} s, {processor:.2f} s of the processor "
+          "(wanted: at most 0.6 s)")
 
 
 if __name__ == "__main__":
