@@ -25,8 +25,8 @@ class Findings:
 
     `profiles` maps an episode id to the load profile at that episode's peak; `dropped` counts what the
     episode rules set aside, by reason; `inputs` maps a file's name to its SHA-256; `weights` and `slides`
-    are what the rig kept by hand; `tolls` tells by episode id what the main ones did to the pipe; `draws`
-    is the replay repeated under all that is uncertain.
+    are what the rig kept by hand; `tolls` tells by episode id what those that pressed the string did to
+    the pipe; `draws` is the replay repeated under all that is uncertain.
     """
 
     case: Case

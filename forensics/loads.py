@@ -172,6 +172,25 @@ class BitWitness:
 
 
 @dataclass(frozen=True)
+class SlackOff:
+    """What more slacking off would have brought to the lower end at one moment [N].
+
+    Parameters
+    ----------
+    more : float
+        Weight slacked off further: 50 kN, or what was left on the hook.
+    arrives : float
+        Of it, what would have reached the lower end.
+    limit : float
+        Most that can stand on the lower end, with all that hung slacked off.
+    """
+
+    more: float
+    arrives: float
+    limit: float
+
+
+@dataclass(frozen=True)
 class Profile:
     """Axial load along the hole at one moment; arrays of shape (k,), from the bit up.
 
@@ -191,6 +210,8 @@ class Profile:
         Contact force per length [N/m].
     state : ndarray of int8
         0 none, 1 sinusoidal, 2 helical.
+    slack_off : SlackOff or None
+        None while the string turns or is held.
     """
 
     row: int
@@ -201,6 +222,7 @@ class Profile:
     helical: Floats
     contact: Floats
     state: NDArray[np.int8]
+    slack_off: SlackOff | None = None
 
 
 @dataclass(frozen=True)

@@ -170,7 +170,7 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
         mains = main_episodes(episodes)
         taken = profiles(made, [episode.peak for episode in mains])
         peaks = {episode.id: profile for episode, profile in zip(mains, taken, strict=True)}
-        tolls = pipe_tolls(made, material, peaks, mains)
+        tolls = pipe_tolls(made, material, peaks, episodes)
     log, well = material.log, material.well
     return Findings(
         case=material.case,

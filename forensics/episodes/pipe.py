@@ -2,24 +2,25 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
-from dataclasses import dataclass, replace
+from collections.abc import Iterator, Mapping, Sequence
+from dataclasses import dataclass, fields, replace
 
 import numpy as np
 from numpy.typing import NDArray
 
 from forensics.episodes.catalogue import Episode, Kind
 from forensics.episodes.material import Material
-from forensics.loads import Profile
+from forensics.loads import Profile, SlackOff
 from forensics.mechanics.fatigue import ranking
-from forensics.mechanics.toll import MomentLoads, Toll, toll, worst_by_component
+from forensics.mechanics.toll import MomentLoads, Toll, joined, toll, worst_by_component
 from forensics.replay.loaded import Loaded, loaded
-from forensics.replay.moments import profiles
+from forensics.replay.moments import profiles_in_turn
 from forensics.replay.run import Replay
 from forensics.well.string import Component
 
 Floats = NDArray[np.float64]
 
+CHUNK = 100_000  # elements weighed at one go, some tens of megabytes
 GAP = 5.0  # intervals; a longer step is a gap, and counts as one interval
 
 
@@ -76,12 +77,27 @@ class Turned:
 
 @dataclass(frozen=True)
 class PipeToll:
-    """What one episode did to the pipe: by part from the bit up, where its loads are from, and its turns."""
+    """What one episode did to the pipe: by part from the bit up, where its loads are from, and its turns.
+
+    `slack_off` is what slacking off more would have brought to the lower end at the peak, while sliding.
+    """
 
     parts: tuple[PartToll, ...]
     torque_from: str
     pressure_from: str
     turned: Turned | None = None
+    slack_off: SlackOff | None = None
+
+
+@dataclass(frozen=True)
+class _Piece:
+    """Elements of one profile that are weighed: for whom, their loads and depths [m]."""
+
+    id: str
+    turning: bool
+    at: Loaded
+    md: Floats
+    slack_off: SlackOff | None
 
 
 def pipe_tolls(
@@ -96,7 +112,8 @@ def pipe_tolls(
     material : Material
         The run's loads, rig view and case.
     taken : mapping of str to Profile
-        Load profile at each episode's peak, by its id.
+        Load profile at the peak of the episodes whose whole string is weighed, by id; of the others only
+        what was buckled is.
     episodes : sequence of Episode
         Those to weigh; only what pressed the string counts.
 
@@ -105,29 +122,82 @@ def pipe_tolls(
     dict of str to PipeToll
         By id of the episode.
     """
-    pressed = [e for e in episodes if e.kind in (Kind.BUCKLING, Kind.LOCKUP) and e.id in taken]
-    worst = {e.id: row for e in pressed if (row := _turning_peak(material, e)) is not None}
-    under = dict(zip(worst, profiles(run, list(worst.values())), strict=True))
-    tolls = {}
+    pressed = [e for e in episodes if e.kind in (Kind.BUCKLING, Kind.LOCKUP)]
+    tolls: dict[str, PipeToll] = {}
+    costs: dict[str, float] = {}
+    for some in _chunks(_pieces(run, material, taken, pressed)):
+        _weigh(material, some, tolls, costs)
     for episode in pressed:
-        at = loaded(run, taken[episode.id])
-        parts = parts_of(material, at, taken[episode.id].md)
-        turned = None
-        if episode.id in under:
-            turned = _turned(material, episode, loaded(run, under[episode.id]).loads)
-        tolls[episode.id] = PipeToll(parts, at.torque_from, at.pressure_from, turned)
-    return _ranked(tolls)
+        if episode.id in costs and episode.id in tolls:
+            turns = _revolutions(material, episode)
+            turned = Turned(turns, turns * costs[episode.id])
+            tolls[episode.id] = replace(tolls[episode.id], turned=turned)
+    return _ranked({e.id: tolls[e.id] for e in pressed if e.id in tolls})
 
 
-def parts_of(material: Material, at: Loaded, md: Floats) -> tuple[PartToll, ...]:
+def _pieces(
+    run: Replay, material: Material, taken: Mapping[str, Profile], pressed: Sequence[Episode]
+) -> Iterator[_Piece]:
+    """Give what is to be weighed, profile after profile."""
+    asked: dict[int, list[tuple[str, bool]]] = {}
+    for episode in pressed:
+        if episode.id not in taken:
+            asked.setdefault(episode.peak, []).append((episode.id, False))
+        worst = _turning_peak(material, episode)
+        if worst is not None:
+            asked.setdefault(worst, []).append((episode.id, True))
+    for episode in pressed:
+        if episode.id in taken:
+            whole = taken[episode.id]
+            yield _Piece(episode.id, False, loaded(run, whole), whole.md, whole.slack_off)
+    for profile in profiles_in_turn(run, asked):
+        at, buckled = loaded(run, profile), profile.state > 0
+        only = replace(at, loads=at.loads.only(buckled))
+        for name, turning in asked[profile.row]:
+            yield _Piece(name, turning, only, profile.md[buckled], profile.slack_off)
+
+
+def _chunks(pieces: Iterator[_Piece]) -> Iterator[list[_Piece]]:
+    """Put pieces together so that they are weighed many at a time, and not all held at once."""
+    some: list[_Piece] = []
+    for piece in pieces:
+        some.append(piece)
+        if sum(len(one.md) for one in some) > CHUNK:
+            yield some
+            some = []
+    if some:
+        yield some
+
+
+def _weigh(
+    material: Material, pieces: list[_Piece], tolls: dict[str, PipeToll], costs: dict[str, float]
+) -> None:
+    """Weigh pieces at one go: parts into `tolls`, what one turn cost at the worst place into `costs`."""
+    found = _toll(material, joined([piece.at.loads for piece in pieces]))
+    ends = np.cumsum([len(piece.md) for piece in pieces]).tolist()
+    for piece, first, last in zip(pieces, [0, *ends[:-1]], ends, strict=True):
+        own = Toll(*(getattr(found, part.name)[first:last] for part in fields(Toll)))
+        if not piece.turning:
+            parts = parts_of(material, piece.at, own, piece.md)
+            tolls[piece.id] = PipeToll(
+                parts, piece.at.torque_from, piece.at.pressure_from, slack_off=piece.slack_off
+            )
+            continue
+        known = own.exposure[np.isfinite(own.exposure)]
+        costs[piece.id] = float(known.max()) if len(known) else float("nan")
+
+
+def parts_of(material: Material, at: Loaded, found: Toll, md: Floats) -> tuple[PartToll, ...]:
     """Give the toll of each component, its buckled part apart, from the bit up.
 
     Parameters
     ----------
     material : Material
-        Gives string and case.
+        Gives the string.
     at : Loaded
         Loads of the elements.
+    found : Toll
+        What they do.
     md : ndarray, shape (m,)
         Depth of each [m].
 
@@ -135,7 +205,6 @@ def parts_of(material: Material, at: Loaded, md: Floats) -> tuple[PartToll, ...]
     -------
     tuple of PartToll
     """
-    found = _toll(material, at.loads)
     part = 2 * at.loads.component + (at.loads.state > 0)
     places = worst_by_component(part, found.stress)
     components = material.well.string.components
@@ -187,15 +256,6 @@ def _both(material: Material, episode: Episode) -> NDArray[np.bool_]:
     """Mark the rows of an episode at which the string was buckled and turned."""
     rows = slice(episode.first, episode.last + 1)
     return (material.loads.state[rows] > 0) & material.rig.turning[rows]
-
-
-def _turned(material: Material, episode: Episode, loads: MomentLoads) -> Turned:
-    """Count the turns, and what they cost at the loads of the worst moment under rotation."""
-    turns = _revolutions(material, episode)
-    buckled = loads.state > 0
-    turn = _toll(material, loads).exposure[buckled]
-    worst = float(np.nanmax(turn)) if np.isfinite(turn).any() else float("nan")
-    return Turned(turns, turns * worst)
 
 
 def _revolutions(material: Material, episode: Episode) -> float:

@@ -98,6 +98,7 @@ COLUMNS = (
     "wob_bit_high_kN",
     "peak_load_ratio_low",
     "peak_load_ratio_high",
+    "wob_bit_margin_kN",
 )
 
 
@@ -123,6 +124,7 @@ def _reconstructed(findings: Findings, rows: slice) -> dict[str, pa.Array]:
     without = np.isnan(loads.bit_load[rows])
     bit_low, bit_high = band(findings.draws, "bit_load", loads.bit_load, rows)
     ratio_low, ratio_high = band(findings.draws, "peak_ratio", loads.peak_ratio, rows)
+    limit = _or_absent(loads.bit_load_limit, loads.bit_load)[rows]
     return {
         "wob_bit_kN": _numbers(loads.bit_load[rows], KILO),
         "peak_load_ratio": _numbers(loads.peak_ratio[rows]),
@@ -132,11 +134,12 @@ def _reconstructed(findings: Findings, rows: slice) -> dict[str, pa.Array]:
         "basis": _words(loads.basis[rows], [b.word for b in Basis], missing=without),
         "drag_residual_kN": _numbers(loads.drag_residual[rows], KILO),
         "torque_residual_kNm": _numbers(loads.torque_residual[rows], KILO),
-        "wob_bit_limit_kN": _numbers(_or_absent(loads.bit_load_limit, loads.bit_load)[rows], KILO),
         "wob_bit_low_kN": _numbers(bit_low, KILO),
         "wob_bit_high_kN": _numbers(bit_high, KILO),
         "peak_load_ratio_low": _numbers(np.maximum(ratio_low, 0.0)),
         "peak_load_ratio_high": _numbers(ratio_high),
+        "wob_bit_limit_kN": _numbers(limit, KILO),
+        "wob_bit_margin_kN": _numbers(np.maximum(limit - loads.bit_load[rows], 0.0), KILO),
     }
 
 

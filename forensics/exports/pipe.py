@@ -18,7 +18,7 @@ def pipe_content(toll: PipeToll | None) -> dict[str, Any] | None:
     Parameters
     ----------
     toll : PipeToll or None
-        None where the episode has none: it pressed nothing, or is not among the main ones.
+        None where the episode has none: it pressed nothing.
 
     Returns
     -------
@@ -38,6 +38,29 @@ def pipe_content(toll: PipeToll | None) -> dict[str, Any] | None:
             "fatigue_rank": turned.rank,
             "fatigue_share_of_greatest": number(turned.share, 4),
         },
+    }
+
+
+def slack_off_content(toll: PipeToll | None) -> dict[str, float | None] | None:
+    """Lay out what slacking off more would have brought to the lower end at the peak of an episode.
+
+    Parameters
+    ----------
+    toll : PipeToll or None
+        None where the episode has none.
+
+    Returns
+    -------
+    dict or None
+        Forces [kN]; None where the string was not sliding.
+    """
+    if toll is None or toll.slack_off is None:
+        return None
+    asked = toll.slack_off
+    return {
+        "more_kN": number(asked.more / 1e3, 2),
+        "would_arrive_kN": number(asked.arrives / 1e3, 2),
+        "most_that_arrives_kN": number(asked.limit / 1e3, 2),
     }
 
 

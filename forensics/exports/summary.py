@@ -15,7 +15,7 @@ from forensics import __version__
 from forensics.exports.causes import causes_content
 from forensics.exports.episodes import episode_rows
 from forensics.exports.friction import friction_content
-from forensics.exports.pipe import pipe_content
+from forensics.exports.pipe import pipe_content, slack_off_content
 from forensics.exports.stamps import number, stamp
 from forensics.exports.text import write_json
 from forensics.findings import Findings
@@ -76,6 +76,7 @@ def summary_content(findings: Findings) -> dict[str, Any]:
                 **row,
                 "causes": causes_content(episode, episode.id in findings.profiles),
                 "pipe": pipe_content(findings.tolls.get(episode.id)),
+                "slack_off": slack_off_content(findings.tolls.get(episode.id)),
             }
             for episode, row in zip(findings.episodes, episode_rows(findings), strict=True)
         ],

@@ -5,7 +5,8 @@ The link between loads along the string and the functions of `buckled`, `tool_jo
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Sequence
+from dataclasses import dataclass, fields
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
@@ -55,6 +56,22 @@ class MomentLoads:
     inside: ArrayLike = 0.0
     outside: ArrayLike = 0.0
     onset: Floats | None = None
+
+    def columns(self) -> tuple[Floats | None, ...]:
+        """Give the fields in order, each of the elements' shape."""
+        shape = self.tension.shape
+        parts = (getattr(self, part.name) for part in fields(self))
+        return tuple(None if part is None else np.broadcast_to(part, shape) for part in parts)
+
+    def only(self, some: NDArray[np.bool_]) -> MomentLoads:
+        """Give some of the elements; `some` is a mask of shape (m,)."""
+        return MomentLoads(*(None if part is None else part[some] for part in self.columns()))  # type: ignore[arg-type]
+
+
+def joined(loads: Sequence[MomentLoads]) -> MomentLoads:
+    """Put the loads of several moments end to end, all with an onset or none."""
+    pairs = zip(*(one.columns() for one in loads), strict=True)
+    return MomentLoads(*(None if some[0] is None else np.concatenate(some) for some in pairs))  # type: ignore[arg-type]
 
 
 @dataclass(frozen=True)

@@ -48,14 +48,16 @@ def loaded(run: Replay, profile: Profile) -> Loaded:
     first = int(float(run.prepared.samples.bit[row]) / hole.step + 0.5)
     index = np.maximum(first - ((pipe.node[rows] + pipe.node[rows + 1]) >> 1), 0)
     give = criteria.at[criteria.kind[rows], index, GIVE]
-    wall = np.where(profile.state == 2, give * profile.tension**2, 0.0)
+    weight = pipe.weight[rows] * float(run.prepared.samples.scale[row])
+    pull = profile.tension
+    square = pull * (pull * hole.kappa2[index] + 2.0 * weight * hole.kappa_d[index])
     torque = torque_along(run, row, index)
     inside, outside, pressure_from = _pressures(run, profile, hole.tvd[index])
     loads = MomentLoads(
         component=pipe.component[rows],
         tension=profile.tension,
         state=profile.state,
-        contact=np.maximum(profile.contact - wall, 0.0),
+        contact=np.sqrt(np.maximum(square + weight**2 * hole.sin2[index], 0.0)),
         clearance=4.0 * pipe.ei[rows] * give,
         curvature=np.sqrt(hole.kappa2[index]),
         torque=np.nan_to_num(torque),

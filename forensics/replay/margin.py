@@ -6,15 +6,17 @@ import numpy as np
 from numba import njit
 from numpy.typing import NDArray
 
-from forensics.mechanics.kernels_judge import Setting, stand_at
+from forensics.loads import SlackOff
+from forensics.mechanics.kernels_judge import Setting, Stand, stand_at
 from forensics.mechanics.kernels_march import Array
 from forensics.mechanics.kernels_memory import Memory, march_down
-from forensics.mechanics.kernels_replay import Samples
+from forensics.mechanics.kernels_replay import SLIDE, Samples
 from forensics.mechanics.offbottom import OffBottomModel
 from forensics.replay.room import fresh
 
 Floats = NDArray[np.float64]
 
+MORE = 50e3  # N; a load that a driller would slack off next (common practice, no source)
 THINNED_SECONDS = 30.0  # the limit moves with bit depth and friction only
 
 
@@ -29,6 +31,50 @@ def _limits(setting: Setting, memory: Memory, bits: Array, scale: Array, down: A
         march_down(setting, memory, place, down[k], 0.0, False)
         result[k] = max(-memory.tension[0], 0.0)
     return result
+
+
+@njit(cache=True, nogil=True)
+def _bit_load(setting: Setting, memory: Memory, place: Stand, down: float, top: float) -> float:
+    """Bit load of a string that slides down as a whole under a hookload; the memory is spent [N]."""
+    march_down(setting, memory, place, down, top, False)
+    return -memory.tension[0] - place.push
+
+
+def slack_off(setting: Setting, memory: Memory, samples: Samples, row: int) -> SlackOff | None:
+    """Tell what more slacking off would bring to the lower end.
+
+    Parameters
+    ----------
+    setting : Setting
+        Well, string and friction.
+    memory : Memory
+        What the string remembers at the row; it is left as it is.
+    samples : Samples
+        Of the whole run.
+    row : int
+        Row of the log.
+
+    Returns
+    -------
+    SlackOff or None
+        None while the string turns or is held.
+
+    Notes
+    -----
+    The string is marched down from the smaller hookload with the helices it has, and those that form. What
+    stands on the lower end already stays: a front that does not get there adds nothing.
+    """
+    if samples.mode[row] != SLIDE:
+        return None
+    place = stand_at(setting.hole, setting.pipe, samples.bit[row], samples.scale[row], samples.ends[row])
+    top, now = float(samples.top[row]), max(-float(memory.tension[0]) - place.push, 0.0)
+    more = float(np.clip(top, 0.0, MORE))
+
+    def at_bit(hookload: float) -> float:
+        spent = memory._replace(tension=memory.tension.copy(), state=memory.state.copy())
+        return max(_bit_load(setting, spent, place, samples.down[row], hookload), now)
+
+    return SlackOff(more, at_bit(top - more) - now, at_bit(min(top, 0.0)))
 
 
 def bit_load_limit(

@@ -83,18 +83,19 @@ def excerpt(
     return Excerpt(rows, taken._replace(step=np.minimum(apart, 4.0 * stride * samples.step.max())), covered)
 
 
-def restart(mode: NDArray[np.int8], row: int) -> int:
-    """Row to start from so that the memory is right at `row`: where the string last turned for a while."""
-    turned = np.flatnonzero(mode[: max(row - LEAD, 0)] == TURN)
-    return max(int(turned[-1]) - LEAD, 0) if len(turned) else 0
+def restarts(mode: NDArray[np.int8], rows: NDArray[np.int64]) -> NDArray[np.int64]:
+    """Rows to start from so that the memory is right at `rows`: where the string last turned for a while."""
+    turned = np.flatnonzero(mode == TURN)
+    last = np.searchsorted(turned, np.maximum(rows - LEAD, 0)) - 1
+    known = turned[np.maximum(last, 0)] if len(turned) else np.zeros(len(rows), dtype=np.int64)
+    return np.where(last >= 0, np.maximum(known - LEAD, 0), 0)
 
 
 def blocks(mode: NDArray[np.int8], rows: NDArray[np.bool_]) -> list[tuple[int, int]]:
     """Stretches of rows to replay so that every row asked for has its lead-up, merged where they meet."""
     edges = np.flatnonzero(np.diff(np.concatenate([[0], rows.astype(np.int8), [0]]))).reshape(-1, 2)
     merged: list[tuple[int, int]] = []
-    for start, stop in edges:
-        lead = restart(mode, int(start))
+    for (_, stop), lead in zip(edges, restarts(mode, edges[:, 0]).tolist(), strict=True):
         if merged and lead <= merged[-1][1]:
             merged[-1] = (merged[-1][0], int(stop))
         else:

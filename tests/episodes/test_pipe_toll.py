@@ -14,6 +14,8 @@ from forensics.episodes.catalogue import Kind
 from forensics.episodes.pipe import PipeToll, Turned, parts_of, pipe_tolls
 from forensics.loads import Profile
 from forensics.mechanics import helix
+from forensics.mechanics.kernels_replay import SLIDE
+from forensics.mechanics.toll import toll
 from forensics.replay import loaded as words
 from forensics.replay import torsion
 from forensics.replay.loaded import loaded
@@ -42,7 +44,9 @@ def run_with(torque: float = 15e3, pressure: float | None = 20e6, turning: bool 
         calibration=SimpleNamespace(
             sections=(factor,), torque_loss=None, rotational=SimpleNamespace(value=0.2)
         ),
-        prepared=SimpleNamespace(samples=SimpleNamespace(bit=np.full(ROWS, BIT), scale=np.ones(ROWS))),
+        prepared=SimpleNamespace(
+            samples=SimpleNamespace(bit=np.full(ROWS, BIT), scale=np.ones(ROWS), mode=np.full(ROWS, SLIDE))
+        ),
     )
 
 
@@ -113,7 +117,8 @@ def test_what_is_not_known_is_left_out_and_said():
 def test_buckled_part_stands_apart_and_bends_as_a_helix():
     run = run_with(pressure=None)
     profile = profile_of(run)
-    straight, buckled = parts_of(material_of(run), loaded(run, profile), profile.md)
+    at = loaded(run, profile)
+    straight, buckled = parts_of(material_of(run), at, toll(run.well.string, at.loads), profile.md)
     assert (straight.buckled, buckled.buckled, buckled.state) == (False, True, 2)
     gap = 0.5 * (0.2159 - PIPE.tool_joint_od)
     assert buckled.bending == pytest.approx(float(helix.bending_stress(250e3, gap, PIPE.od, PIPE.inertia)))
@@ -126,7 +131,7 @@ def test_buckled_part_stands_apart_and_bends_as_a_helix():
 def test_turns_are_counted_while_buckled_and_ranked(monkeypatch):
     run = run_with()
     monkeypatch.setattr(
-        episodes_pipe, "profiles", lambda made, rows: tuple(profile_of(made, r, 4e3 * r) for r in rows)
+        episodes_pipe, "profiles_in_turn", lambda made, rows: (profile_of(made, r, 4e3 * r) for r in rows)
     )
     first = replace(pressed(2e5, 2e5, 2e5), first=0, last=39)
     second = replace(first, id="E002", first=40, last=79)
@@ -148,3 +153,19 @@ def test_a_string_that_did_not_turn_is_not_ranked():
     assert isinstance(found, PipeToll)
     assert found.turned is None
     assert Turned(1.0, 1.0).rank is None
+
+
+def test_an_episode_not_shown_in_detail_has_its_buckled_parts_the_same(monkeypatch):
+    run = run_with()
+    monkeypatch.setattr(
+        episodes_pipe, "profiles_in_turn", lambda made, rows: (profile_of(made, r) for r in rows)
+    )
+    main = replace(pressed(2e5, 2e5, 2e5), first=0, last=39, peak=10)
+    other = replace(main, id="E002", peak=12)
+    monkeypatch.setattr(episodes_pipe, "CHUNK", 10)  # in several goes as in one
+    tolls = pipe_tolls(run, material_of(run), {main.id: profile_of(run)}, (main, other))
+    whole, part = tolls["E001"], tolls["E002"]
+    assert [p.buckled for p in whole.parts] == [False, True]
+    assert part.parts == whole.parts[1:]
+    assert part.torque_from == whole.torque_from
+

@@ -45,6 +45,7 @@ def test_columns_are_the_contracts(written):
         *CONTRACT,
         "wob_bit_limit_kN",
         *(f"{name}_{end}{unit}" for name, unit in BANDS for end in ("low", "high")),
+        "wob_bit_margin_kN",
     ]
 
 

@@ -3,16 +3,21 @@
 from __future__ import annotations
 
 import math
+from dataclasses import replace
 from types import SimpleNamespace
 
+import numpy as np
 import pytest
 
+from forensics.mechanics.critical import Place, he_kyllingstad_1995
 from forensics.mechanics.kernels_judge import latch, next_state, thresholds
 from forensics.mechanics.kernels_march import place_at
 from forensics.mechanics.limits import SUPPORT
-from forensics.mechanics.threshold import helical_load, sinusoidal_load
+from forensics.mechanics.selfconsistent import ContactSize
+from forensics.mechanics.threshold import helical_load, self_consistent_load, sinusoidal_load
 from forensics.replay.model import build_model
 from forensics.replay.moments import critical_load
+from forensics.well.trajectory import build_trajectory
 from tests.replay.test_memory import case_for
 from tests.wells import build_well, one_pipe_well
 
@@ -65,3 +70,38 @@ def test_the_critical_load_is_where_load_and_threshold_meet(inclination):
     low = thresholds(model.setting(0.2, 0.2), place, 5, 2000, -50e3)[1]
     assert critical_load(run, 0, 1445.0) == pytest.approx(low, rel=1e-3)
     assert math.isnan(critical_load(run, 0, math.nan))
+
+
+def _arc(build: float, turn: float):
+    """One pipe in a hole that bends evenly about 60 degrees, from 600 to 900 m [deg/30 m]."""
+    md = np.concatenate([np.arange(0.0, 601.0, 100.0), np.arange(610.0, 901.0, 10.0), [2000.0]])
+    along = np.clip(md - 600.0, 0.0, 300.0)
+    start = 60.0 - 5.0 * build  # at 750 m the hole stands at 60 degrees
+    inclination = np.radians(np.minimum(start, start * md / 300.0) + build * along / 30.0)
+    way = build_trajectory(md, inclination, np.radians(turn * along / 30.0))
+    well = replace(one_pipe_well(0.0, 2000.0), trajectory=way)
+    model = build_model(well, case_for(), 1000.0)
+    samples = SimpleNamespace(bit=[1000.0], scale=[1.0])
+    return SimpleNamespace(model=model, prepared=SimpleNamespace(samples=samples))
+
+
+@pytest.mark.parametrize(("build", "turn"), [(3.0, 0.0), (1.0, 0.0), (-0.5, 0.0), (-3.0, 0.0), (0.0, 4.0)])
+def test_in_a_curved_hole_it_is_the_first_crossing_of_what_the_replay_judges_by(build, turn):
+    """Build, drop (lower root) and turn: a plain scan of the replay's own threshold, and the closed form."""
+    run = _arc(build, turn)
+    model, at = run.model, run.model.setting(0.2, 0.2)
+    place = place_at(at.hole, at.pipe, 1000.0, 1.0)
+    j, i = int(np.searchsorted(model.pipe.x, 250.0, side="right")) - 1, 1500
+    found = critical_load(run, 0, 750.0)
+    loads = np.linspace(1e3, 1.02 * found, 4000)
+    over = [load >= thresholds(at, place, j, i, -load)[1] for load in loads]
+    assert found == pytest.approx(loads[over.index(True)], rel=1e-3)
+    ei, gap, weight = at.pipe.ei[j], 0.5 * (0.2159 - 0.168), at.pipe.weight[j]
+    angle, rates = math.radians(60.0), np.radians([build, turn]) / 30.0
+    w_sin, w_cos = weight * math.sin(angle), weight * math.cos(angle)
+    size = ContactSize(w_sin**2, w_sin * rates[0], rates[0] ** 2 + (math.sin(angle) * rates[1]) ** 2)
+    exact = float(self_consistent_load(ei, gap, w_cos, model.pipe.stiff_run[j], size))
+    assert found == pytest.approx(exact, rel=0.02)  # contact averaged over a wave of 24 m here
+    bare = float(he_kyllingstad_1995(Place(ei, gap, weight, angle, rates[0], rates[1])))
+    straight = 2 * math.sqrt(ei * w_sin / gap)
+    assert (found > straight) == (bare > straight)

@@ -7,8 +7,11 @@ import math
 import numpy as np
 import pytest
 
-from forensics.replay.margin import bit_load_limit
+from forensics.mechanics.kernels_replay import TURN
+from forensics.mechanics.lockup import HelicalRun, load_along
+from forensics.replay.margin import MORE, bit_load_limit, slack_off
 from forensics.replay.model import build_model
+from forensics.replay.room import fresh
 from tests.replay.test_memory import case_for, rows
 from tests.wells import build_well, one_pipe_well
 
@@ -34,3 +37,45 @@ def test_helices_lower_the_limit_and_rows_not_asked_for_have_none():
     pipe, gap = model.pipe, 0.5 * (0.2159 - 0.168)
     bound = 2.0 * math.sqrt(pipe.ei[-1] * pipe.weight[-1] / (0.25 * gap))
     assert limit[0] < bound
+
+
+@pytest.mark.parametrize("inclination", [0.0, 50.0, 70.0])
+def test_more_slacking_off_through_a_helix_is_the_closed_form(inclination):
+    """Helical from the bit to the neutral point, hanging above it: exact at constant inclination."""
+    angle, length, factor = math.radians(inclination), 1500.0, 0.3
+    model = build_model(one_pipe_well(angle, length), case_for(), length)
+    run = HelicalRun(
+        float(model.pipe.ei[0]), 0.5 * (0.2159 - 0.168), float(model.pipe.weight[0]), factor, angle
+    )
+
+    def exact(hookload: float) -> float:
+        """Bit load of the string that is helical below its neutral point; by bisection."""
+        low, high = 0.0, 2e6
+        for _ in range(60):
+            load = 0.5 * (low + high)
+            over = float(load_along(length, load, run)) < -hookload  # too little weight set down
+            low, high = (load, high) if over else (low, load)
+        return load
+
+    hangs = -run.growth * length
+    top = 0.6 * hangs
+    memory, _ = fresh(model)
+    memory.state[:] = 2
+    memory.tension[0] = -exact(top)
+    found = slack_off(model.setting(factor, factor), memory, rows([top], [1], bit=np.full(1, length)), 0)
+    more = min(MORE, top)
+    assert found.more == more
+    assert found.limit == pytest.approx(exact(0.0), rel=5e-3)
+    assert found.arrives == pytest.approx(exact(top - more) - exact(top), rel=0.02)
+    assert found.arrives < more
+
+
+def test_what_turns_has_none_and_what_stands_on_the_bit_stays():
+    angle, length = math.radians(30), 300.0
+    model = build_model(one_pipe_well(angle, length), case_for(), length)
+    memory, _ = fresh(model)
+    turning = rows([0.0], [1], bit=np.full(1, length), mode=np.full(1, TURN, dtype=np.int8))
+    assert slack_off(model.setting(0.2, 0.2), memory, turning, 0) is None
+    memory.tension[0] = -500e3
+    held = slack_off(model.setting(0.2, 0.2), memory, rows([1e3], [1], bit=np.full(1, length)), 0)
+    assert (held.more, held.arrives, held.limit) == (1e3, 0.0, 500e3)

@@ -108,6 +108,8 @@ def summary(scene: Scene, episode: Episode) -> str:
         what = "buckled" if episode.kind is Kind.BUCKLING else "affected"
         sentences[0] += f", {what} interval at its largest {show.depths(episode.top_md, episode.bottom_md)}"
     sentences.append(_consequence(scene, episode))
+    if episode.consequence in {Consequence.WEIGHT_LOST, Consequence.LOCKED_UP}:
+        sentences += slack_off_sentence(scene, episode)
     if episode.note:
         sentences.append(episode.note[0].upper() + episode.note[1:].rstrip("."))
     if episode.cause:
@@ -128,6 +130,21 @@ def _consequence(scene: Scene, episode: Episode) -> str:
     if episode.consequence is Consequence.ROTATED_BUCKLED:
         return f"Consequence: turned while buckled ({rotation_sentence(scene, episode).rstrip('.')})"
     return "No consequence was found"
+
+
+def slack_off_sentence(scene: Scene, episode: Episode) -> list[str]:
+    """Say what slacking off more would have brought to the lower end; nothing where it was not sliding."""
+    toll, show = scene.findings.tolls.get(episode.id), scene.show
+    if toll is None or toll.slack_off is None:
+        return []
+    asked = toll.slack_off
+    end = "bit" if scene.findings.rig.on_bottom[episode.peak] else "lower end"
+    limit = show.value(asked.limit, "force")
+    if asked.more <= 0.0:
+        return [f"Nothing was left on the hook to slack off; {limit} stood on the {end}"]
+    more, arrives = show.value(asked.more, "force"), show.value(asked.arrives, "force")
+    said = f"Of {more} more slacked off at the peak {arrives} would have reached the {end}"
+    return [f"{said}; the most that any slacking off brings there is {limit}"]
 
 
 def _numbers(scene: Scene, episode: Episode) -> tuple[Number, ...]:

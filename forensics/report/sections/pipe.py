@@ -14,10 +14,12 @@ if TYPE_CHECKING:
     from forensics.episodes.pipe import PartToll, PipeToll
 
 NOT_GIVEN = "not given"
+RANKED = 20  # episodes shown in the ranking
 STATES = ("", "sinusoidal", "helical")
 
 HOW = (
-    "Each main episode above that pressed the string has a table of what its loads did to it at the peak. "
+    "Each main episode above that pressed the string has a table of what its loads did to it at the peak; "
+    "summary.json has the same for what was buckled in every other one. "
     "Combined stress is the greatest von Mises stress of the body, of axial force, bending (hole, and "
     "sinusoid or helix, added), torsion and pressure, held against the string table's yield. Use in tension "
     "and torque follows API RP 7G, with ratings of the string table where it has them. A part that is "
@@ -43,7 +45,8 @@ CAUTIONS = (
 
 def describe(scene: Scene) -> Section:
     """Rank the episodes in which the string turned while buckled, and say what to heed."""
-    turned = [(e, toll) for e in scene.mains if (toll := scene.findings.tolls.get(e.id)) and toll.turned]
+    tolls = scene.findings.tolls
+    turned = [(e, toll) for e in scene.findings.episodes if (toll := tolls.get(e.id)) and toll.turned]
     elements: list[Element] = [Text(HOW), ranking_table(turned)]
     if turned:
         elements.append(Notice("Cautions that apply to stress and fatigue", CAUTIONS))
@@ -63,7 +66,7 @@ def ranking_table(turned: list[tuple[Episode, PipeToll]]) -> Table:
     last = len(turned) + 1
     ordered = sorted(turned, key=lambda pair: ((pair[1].turned.rank or last), pair[0].start))  # type: ignore[union-attr]
     rows = []
-    for episode, toll in ordered:
+    for episode, toll in ordered[:RANKED]:
         found = toll.turned
         if found is None:
             continue
@@ -73,9 +76,11 @@ def ranking_table(turned: list[tuple[Episode, PipeToll]]) -> Table:
     note = (
         "Turns: rotary speed summed over the samples with any of the string buckled. Exposure: turns over "
         "turns to failure at the bending stress, by DNV-RP-C203 curve B1 in air (no lower limit of stress), "
-        "the stress raised for tension by API RP 7G's permissible bending. Main episodes only."
+        "the stress raised for tension by API RP 7G's permissible bending."
     )
-    empty = "The string did not turn while buckled in any main episode."
+    if len(ordered) > RANKED:
+        note += f" {len(ordered) - RANKED} more, ranked lower, are in summary.json."
+    empty = "The string did not turn while buckled in any episode."
     return Table("Turned while buckled, ranked", columns, tuple(rows), note if rows else "", empty)
 
 
