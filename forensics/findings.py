@@ -16,6 +16,7 @@ from forensics.rig.view import RigView
 from forensics.well.model import Well
 
 if TYPE_CHECKING:
+    from forensics.episodes.flips import Flip
     from forensics.episodes.pipe import PipeToll
 
 
@@ -26,7 +27,8 @@ class Findings:
     `profiles` maps an episode id to the load profile at that episode's peak; `dropped` counts what the
     episode rules set aside, by reason; `inputs` maps a file's name to its SHA-256; `weights` and `slides`
     are what the rig kept by hand; `tolls` tells by episode id what those that pressed the string did to
-    the pipe; `draws` is the replay repeated under all that is uncertain.
+    the pipe; `draws` is the replay repeated under all that is uncertain; `flips` tells how far inputs would
+    have to be off to turn the main episodes.
     """
 
     case: Case
@@ -47,3 +49,4 @@ class Findings:
     slides: tuple[RecordedSlide, ...] = ()
     tolls: Mapping[str, PipeToll] = field(default_factory=dict)
     draws: DrawHistory | None = None
+    flips: tuple[Flip, ...] = ()

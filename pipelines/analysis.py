@@ -11,6 +11,7 @@ from forensics.case.unused import unused_settings
 from forensics.episodes.catalogue import Episode, Kind
 from forensics.episodes.describe import tell, weigh_episodes
 from forensics.episodes.find import flag_rows, rows_in_doubt, rows_in_question
+from forensics.episodes.flips import find_flips, with_flip
 from forensics.episodes.groups import are_many, load_clustering
 from forensics.episodes.material import Material
 from forensics.episodes.onsets import with_onsets
@@ -171,6 +172,8 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
         taken = profiles(made, [episode.peak for episode in mains])
         peaks = {episode.id: profile for episode, profile in zip(mains, taken, strict=True)}
         tolls = pipe_tolls(made, material, peaks, episodes)
+    with progress.stage("flips", "searching what would turn the finding"):
+        flips = find_flips(made, material, episodes)
     log, well = material.log, material.well
     return Findings(
         case=material.case,
@@ -183,12 +186,13 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
         episodes=episodes,
         families=told.families,
         profiles=peaks,
-        headline=told.headline,
+        headline=with_flip(told.headline, flips, material.system),
         dropped=told.dropped,
         inputs=fingerprints(material.case, log),
         warnings=_remarks(material),
         tolls=tolls,
         draws=material.draws,
+        flips=flips,
     )
 
 

@@ -225,7 +225,7 @@ def _confidence(material: Material, main: list[Episode]) -> str:
     if blind and main[0].kind is Kind.LOCKUP:  # its rule asks for a string that doesn't turn
         grade = "low"
     share = "every draw" if chance >= CERTAIN else f"{100.0 * chance:.0f} % of the draws"
-    return f"{grade}: its rule holds in {share} of friction and weight; {friction}"
+    return f"{grade}: its rule holds in {share} of friction, weight, survey and hole; {friction}"
 
 
 def _details(

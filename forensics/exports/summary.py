@@ -14,6 +14,7 @@ import numpy as np
 from forensics import __version__
 from forensics.exports.causes import causes_content
 from forensics.exports.episodes import episode_rows
+from forensics.exports.flips import flips_content
 from forensics.exports.friction import friction_content
 from forensics.exports.pipe import pipe_content, slack_off_content
 from forensics.exports.stamps import number, stamp
@@ -80,6 +81,7 @@ def summary_content(findings: Findings) -> dict[str, Any]:
             }
             for episode, row in zip(findings.episodes, episode_rows(findings), strict=True)
         ],
+        "flips": flips_content(findings),
         "episodes_dropped": {reason: int(count) for reason, count in sorted(findings.dropped.items())},
         "families": [
             {

@@ -7,7 +7,17 @@ from typing import TYPE_CHECKING
 
 from forensics.report.elements import Report
 from forensics.report.scene import Scene, main_episodes
-from forensics.report.sections import account, calibration, episodes, first, method, overview, pipe, run
+from forensics.report.sections import (
+    account,
+    calibration,
+    episodes,
+    first,
+    flips,
+    method,
+    overview,
+    pipe,
+    run,
+)
 from forensics.report.words import Show
 
 if TYPE_CHECKING:
@@ -20,6 +30,7 @@ SECTIONS = (
     overview.describe,
     episodes.describe,
     pipe.describe,
+    flips.describe,
     calibration.describe,
     episodes.describe_tables,
     account.describe,
