@@ -27,7 +27,7 @@ class IncidentResult:
         Where the results are.
     timings : mapping of str to float
         Seconds spent by stage: imports, reading, well, rig, calibration, replay, draws, episodes, profiles,
-        figures, exports.
+        flips, figures, exports.
     lines : tuple of str
         The result in a few lines, for the terminal.
     unused : tuple of str

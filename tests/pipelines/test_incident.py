@@ -17,8 +17,8 @@ from pipelines.output import RESULTS
 
 JOB = cases.Job(duration=3700.0)
 STAGES = {
-    "imports", "reading", "well", "rig", "calibration", "replay", "draws", "episodes", "profiles", "figures",
-    "exports",
+    "imports", "reading", "well", "rig", "calibration", "replay", "draws", "episodes", "profiles", "flips",
+    "figures", "exports",
 }  # fmt: skip
 
 
