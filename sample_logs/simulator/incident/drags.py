@@ -34,7 +34,7 @@ class HigherFriction(Trouble):
             told = rig.settings["case"]
             planted = rig.settings["planted"]
             told["assumed"] = {k: round(planted[f"friction_{k}"], 2) for k in ("cased", "open")}
-            if self.rng.uniform() < 0.4:
+            if self.rng.uniform() < 0.75:
                 told["assumed"]["fixed"] = "true"
             self.on, self.level = True, 1.0
             self._spread(rig)

@@ -124,6 +124,7 @@ def measure(rig: TroubledRig, true: pd.DataFrame, rng: Rng) -> pd.DataFrame:
     pump, turning = true["pump"].to_numpy(), true["rpm"].to_numpy() > 5.0
     flow = np.where(pump > 0, pump * inst["flow_l_min"] / 6e4 * (1.0 + 0.006 * rng.normal(size=n)), 0.0)
     back = lagged(flow * true["flow_share"].to_numpy(), inst["return_lag"])
+    zero = true["zero"].to_numpy() + rig.block_weight
     rise = pd.Series(hole).diff(40).fillna(0.0).to_numpy() / 40.0
     drilling = (true["bit_load"].to_numpy() > 2e3) & (pump > 0.3)
     frame = pd.DataFrame(
@@ -133,7 +134,7 @@ def measure(rig: TroubledRig, true: pd.DataFrame, rng: Rng) -> pd.DataFrame:
             "hole_depth": np.round(hole / quantum) * quantum,
             "block_position": np.round(true["block"] + 0.004 * rng.normal(size=n), 2),
             "hookload": hook,
-            "wob": true["zero"].to_numpy() + rig.block_weight - hook,
+            "wob": zero - hook,
             "torque": torque(true, settings, rng),
             "rpm": np.where(turning, np.round(true["rpm"] + 0.6 * rng.normal(size=n)), 0.0),
             "standpipe_pressure": standpipe,
@@ -145,12 +146,17 @@ def measure(rig: TroubledRig, true: pd.DataFrame, rng: Rng) -> pd.DataFrame:
             "mud_density": settings["fluid"]["density"] + true["density_shift"] + 3.0 * slow(rng, n, 3000.0),
         }
     )
+    _spoil(frame, rig, true, rng)
+    return frame
+
+
+def _spoil(frame: pd.DataFrame, rig: TroubledRig, true: pd.DataFrame, rng: Rng) -> None:
+    """Put sensors' faults, and the rig computer's habits, on what was measured."""
     for trouble in rig.troubles:
         if isinstance(trouble, HookloadFault):
             trouble.corrupt(frame, rng)
-    if inst.get("wob_clipped", False):
+    if rig.settings["instrument"].get("wob_clipped", False):
         frame["wob"] = np.where(true["slips"] > 0, 0.0, frame["wob"].clip(lower=0.0))
-    return frame
 
 
 def log_rows(frame: pd.DataFrame, settings: dict, rng: Rng, physics: Physics) -> pd.DataFrame:

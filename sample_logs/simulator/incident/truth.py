@@ -42,37 +42,41 @@ def shown(true: pd.DataFrame, start: float, end: float) -> dict:
     }
 
 
-def facts_of(rig: TroubledRig, true: pd.DataFrame, cause: str, clock: Callable[[float], str]) -> dict:
-    """Everything truth.json says about the run, save its seed and kind of work."""
-    pieces = []
-    for trouble in rig.troubles:
-        pieces += [
-            {"cause": trouble.cause, "start": a, "end": b, "top_md": trouble.top, "bottom_md": trouble.bottom,
-             "size": round(trouble.size, 3)}
-            for a, b in trouble.spans()
-        ]  # fmt: skip
+def felt(rig: TroubledRig, true: pd.DataFrame) -> list[dict]:
+    """Every interval in which a cause was felt, in time order, with its depths."""
+    pieces = [
+        {"cause": trouble.cause, "start": a, "end": b, "top_md": trouble.top, "bottom_md": trouble.bottom,
+         "size": round(trouble.size, 3)}
+        for trouble in rig.troubles
+        for a, b in trouble.spans()
+    ]  # fmt: skip
     pieces += [
         {"cause": BUCKLING, "start": s["start"], "end": s["end"], "top_md": s["top"],
          "bottom_md": s["bottom"], "ratio": round(float(s["ratio"]), 2), "helical": s["helical"]}
         for s in buckled(true)
     ]  # fmt: skip
-    pieces.sort(key=lambda p: p["start"])
+    for piece in pieces:
+        piece |= {key: round(float(piece[key]), 1) for key in ("top_md", "bottom_md")}
+    return sorted(pieces, key=lambda p: p["start"])
+
+
+def facts_of(rig: TroubledRig, true: pd.DataFrame, cause: str, clock: Callable[[float], str]) -> dict:
+    """Everything truth.json says about the run, save its seed and kind of work."""
+    pieces = felt(rig, true)
     main = [p for p in pieces if p["cause"] == cause]
     if cause in (NOTHING, POOR) or not main:
         begin, end = float(true["time"].iloc[0]), float(true["time"].iloc[-1])
-        main = [{"start": begin, "end": end, "top_md": 0.0, "bottom_md": float(true["bit_true"].max())}]
+        deepest = round(float(true["bit_true"].max()), 1)
+        main = [{"start": begin, "end": end, "top_md": 0.0, "bottom_md": deepest}]
     begin, end = main[0]["start"], max(p["end"] for p in main)
-    hole = rig.hole
-    for piece in pieces:
-        piece |= {key: round(float(piece[key]), 1) for key in ("top_md", "bottom_md")}
-        piece |= {"start": clock(piece["start"]), "end": clock(piece["end"])}
     present = {t.cause for t in rig.troubles if t.times} | ({cause} & {BUCKLING})
+    hole = rig.hole
     return {
         "cause": cause,
         "start": clock(begin), "end": clock(end),
-        "top_md": round(float(min(p["top_md"] for p in main)), 1),
-        "bottom_md": round(float(max(p["bottom_md"] for p in main)), 1),
-        "causes_present": sorted(present), "spans": pieces,
+        "top_md": min(p["top_md"] for p in main), "bottom_md": max(p["bottom_md"] for p in main),
+        "causes_present": sorted(present),
+        "spans": [p | {"start": clock(p["start"]), "end": clock(p["end"])} for p in pieces],
         "troubles": [{"cause": t.cause, "size": round(t.size, 3), "mode": getattr(t, "mode", None)}
                      for t in rig.troubles],
         "shown": shown(true, begin, end),

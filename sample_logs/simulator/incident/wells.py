@@ -174,23 +174,37 @@ def _instrument(rng: Rng, size: Size, path: str) -> dict:
     }  # fmt: skip
 
 
+def _rig(rng: Rng, stand: float, per_stand: int) -> dict:
+    rig = {"block_weight": round(between(rng, 150, 450)), "stand": stand, "elements_per_stand": per_stand}
+    if rng.uniform() < 0.25:
+        rig["lines"] = int(rng.choice([8, 10, 12]))
+        rig["sheave_efficiency"] = round(between(rng, 0.975, 0.99), 3)
+    return rig
+
+
+def _told(rng: Rng, oil: bool, section: str) -> dict:
+    """Say what the office tells of the run."""
+    return {
+        "title": "A run to be explained",
+        "well": f"{rng.choice(FIRST_NAMES)} {int(rng.integers(1, 60))}",
+        "section": section,
+        "mud_system": "oil-base mud" if oil else "water-base mud",
+        "tell_block_weight": bool(rng.uniform() < 0.6),
+    }
+
+
 def draw_settings(path: str, liner: bool, physics: Physics, seed: int) -> dict:
     """Draw the settings of one well."""
     rng = np.random.default_rng(seed)
     well = PATHS[path](rng)
     corners, depth, shoe, name = well
     size = SIZES[name]
+    section = ("liner in " if liner else "") + size.name
     oil = bool(rng.uniform() < 0.5)
     stand = float(rng.choice([28.5, 28.5, 19.0]))
     long = depth > 2600.0
     parts = liner_string(rng, size, well) if liner else drill_string(rng, path, size, well)
-    rig = {
-        "block_weight": round(between(rng, 150, 450)), "stand": stand,
-        "elements_per_stand": 1 if long or stand < 25.0 else physics.per_stand,
-    }  # fmt: skip
-    if rng.uniform() < 0.25:
-        rig["lines"] = int(rng.choice([8, 10, 12]))
-        rig["sheave_efficiency"] = round(between(rng, 0.975, 0.99), 3)
+    rig = _rig(rng, stand, 1 if long or stand < 25.0 else physics.per_stand)
     start = np.datetime64("2023-01-01T00:00:00") + int(rng.integers(0, 3.0e7))
     settings = {
         "name": f"{path}-{seed}", "seed": seed, "start": f"{start}+00:00",
@@ -206,13 +220,7 @@ def draw_settings(path: str, liner: bool, physics: Physics, seed: int) -> dict:
         "string": {"components": parts}, "rig": rig,
         "planted": _planted(rng, oil, physics), "instrument": _instrument(rng, size, path),
         "script": {},
-        "case": {
-            "id": f"{physics.name}-{seed}", "title": "A run to be explained",
-            "well": f"{rng.choice(FIRST_NAMES)} {int(rng.integers(1, 60))}",
-            "section": ("liner in " if liner else "") + size.name,
-            "mud_system": "oil-base mud" if oil else "water-base mud",
-            "tell_block_weight": bool(rng.uniform() < 0.6),
-        },
+        "case": {"id": f"{physics.name}-{seed}"} | _told(rng, oil, section),
         "delivery": {"tables": str(rng.choice(["metric", "field"]))},
     }  # fmt: skip
     if rng.uniform() < 0.4:  # what the office assumed beforehand
