@@ -17,6 +17,7 @@ from forensics.episodes.material import Material
 from forensics.episodes.onsets import with_onsets
 from forensics.episodes.pipe import pipe_tolls
 from forensics.findings import Findings
+from forensics.friction.byhand import as_readings
 from forensics.friction.calibrate import calibrate
 from forensics.friction.readings import find_readings
 from forensics.friction.result import Calibration
@@ -148,6 +149,7 @@ def calibrate_run(run: Run, progress: Progress) -> tuple[OffBottomModel, Calibra
         deepest = float(np.nanmax(run.log.values["bit_depth"]))
         model = build_model(run.well, run.case, deepest, block_zero(run.rig))
         readings = find_readings(run.log, run.rig, run.well)
+        readings += as_readings(run.weights, run.log, run.rig, run.case)
         return model, calibrate(readings, run.well, run.case, model, run.rig)
 
 

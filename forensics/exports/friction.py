@@ -56,6 +56,7 @@ def friction_content(findings: Findings) -> dict[str, Any]:
         "open_directions": [_direction(direction) for direction in calibration.open_directions],
         "parameters": [_parameter(parameter) for parameter in calibration.parameters],
         "readings": _readings(findings),
+        "breakover": _breakover(findings),
     }
 
 
@@ -168,9 +169,31 @@ def _readings(findings: Findings) -> list[dict[str, Any]]:
                 f"residual_{unit}": number(residual / KILO, 3),
                 "samples": int(reading.samples),
                 "pumping": bool(reading.pumping),
+                "by_hand": bool(reading.by_hand),
+                "near_buckling": bool(reading.buckled),
             }
         )
     return rows
+
+
+def _breakover(findings: Findings) -> list[dict[str, Any]]:
+    """Give each start upward of a string that stood still."""
+    found = findings.calibration.breakover
+    if found is None:
+        return []
+    tz = tzinfo_of(findings.log.timezone)
+    return [
+        {
+            "start": stamp(float(findings.log.time[found.row[k]]), tz),
+            "bit_depth_m": number(found.bit[k], 2),
+            "still_s": number(found.still[k], 1),
+            "peak_kN": number(found.peak[k] / KILO, 3),
+            "pick_up_kN": number(found.steady[k] / KILO, 3),
+            "excess_kN": number((found.peak[k] - found.steady[k]) / KILO, 3),
+            "pumping": bool(found.pumping[k]),
+        }
+        for k in range(len(found))
+    ]
 
 
 def _reading_unit(reading: Reading) -> str:

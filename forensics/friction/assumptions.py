@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 from numpy.typing import NDArray
 
-from forensics.friction.parameters import FIRST
+from forensics.friction.parameters import FIRST, HIDDEN
 
 if TYPE_CHECKING:
     from forensics.case import Case
@@ -71,9 +71,11 @@ SLOW_SIGMA = 1.5e3
 #: One sigma of the part of the hookload that sheaves add or take once what is known of them was taken out.
 SHEAVE_SIGMA = 0.002
 
-#: Doglegs too short for the survey press the string against the wall by its tension: drag of this part of
-#: the string's weight, one sigma. Little beside a lateral's drag, a good part of a vertical well's.
-HIDDEN_SIGMA = 0.003
+#: Doglegs too short for the survey press the string against the wall by its tension: a side force of this
+#: part of the string's weight, and one sigma; what bends of 0.05 to 0.3 deg/30 m rms do that lie between
+#: stations (invented paths). Little beside a lateral's drag, a good part of a vertical well's.
+HIDDEN_CENTRE = 0.008
+HIDDEN_SIGMA = 0.020
 
 #: A soft string on a surveyed path is trusted to this part of its drag, one sigma: what all readings
 #: share, and pick-up against slack-off. Survey scatter, friction that varies along the hole and
@@ -81,7 +83,12 @@ HIDDEN_SIGMA = 0.003
 DRAG_SIGMA = 0.03
 SPLIT_SIGMA = 0.015
 
-#: The second averages out over a run that was weighed over more than this in bit depth [m]. One weighed only
+#: Friction wanders along a hole: what the readings feel of a kind of hole differs from its mean by this part,
+#: one sigma. Of casing they feel the stretch where it bends, which is short (invented paths, with friction
+#: that wanders by a tenth over some hundred metres).
+WANDER_SIGMA = {"cased": 0.05, "open": 0.02}
+
+#: The split averages out over a run that was weighed over more than this in bit depth [m]. One weighed only
 #: deep in a lateral parts cased and open hole by nothing but how pulling differs from lowering.
 SPLIT_OVER = 450.0
 
@@ -89,6 +96,10 @@ SPLIT_OVER = 450.0
 #: sigma of all such readings, and of each by itself: where the helix starts is known no better.
 HELIX_SIGMA = 0.10
 HELIX_OWN = 0.05
+
+#: A factor counts as determined where its 90 % interval is no wider than this: the kind of mud alone tells
+#: that much (usual ranges for one kind of mud and hole are 0.05 to 0.10 wide; trade values, from memory).
+WIDEST = 0.10
 
 Z90 = 1.6448536269514722
 
@@ -202,8 +213,9 @@ def build_prior(case: Case, well: Well, rig: RigView, bears: tuple[bool, ...], r
     cov[: len(rest), : len(rest)] = np.diag(rest**2)
     if not case.friction.fixed:
         cov[len(rest) :, len(rest) :] = _factor_cov(bears)
-    at = [block, 1.0, 1.0, *[0.0] * (len(rest) - 3), cased.value, *[open_.value] * (len(bears) - 1)]
-    return Prior(np.array(at), cov, cased, open_, given)
+    at = np.array([block, 1.0, 1.0, *[0.0] * (len(rest) - 3), cased.value, *[open_.value] * (len(bears) - 1)])
+    at[HIDDEN] = HIDDEN_CENTRE
+    return Prior(at, cov, cased, open_, given)
 
 
 def _block(case: Case, rig: RigView) -> tuple[float, float, float | None]:

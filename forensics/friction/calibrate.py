@@ -40,7 +40,8 @@ def calibrate(
     Parameters
     ----------
     readings : tuple of Reading
-        Steady pick-up, slack-off and rotating weights [N] and off-bottom torques [N.m].
+        Steady pick-up, slack-off and rotating weights [N] and off-bottom torques [N.m]; those written down by
+        hand are heard with a wide sigma of their own.
     well : Well
     case : Case
         Assumed friction, and whether it is fixed; block weight where given.

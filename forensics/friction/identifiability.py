@@ -7,15 +7,11 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from forensics.friction.assumptions import Z90, Prior
+from forensics.friction.assumptions import WIDEST, Z90, Prior
 from forensics.friction.parameters import BLOCK, FIRST, REST, SCALE, names
 from forensics.friction.result import OpenDirection
 
 Floats = NDArray[np.float64]
-
-#: A factor counts as determined where its 90 % interval is no wider than this: the kind of mud alone tells
-#: that much (usual ranges for one kind of mud and hole are 0.05 to 0.10 wide; trade values, from memory).
-WIDEST = 0.10
 
 #: A direction of the parameters is open where the readings know less of it than the prior does.
 LEAST_KNOWN = 1.0

@@ -98,6 +98,7 @@ def result(
         held_out=solved.held_out,
         open_directions=solved.verdict.directions,
         parameters=_parameters(solved, block, bias),
+        breakover=rig.breakover,
     )
 
 

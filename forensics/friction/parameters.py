@@ -27,7 +27,7 @@ BLOCK, SHARE, SCALE, DRIFT, PUMPS, SLOW, SHEAVE, HIDDEN, DRAG, SPLIT, HELIX = ra
 FIRST = len(REST)
 
 #: Bounds of the parameters before the factors, and of every factor.
-_LOWEST = (-np.inf, 0.0, 0.9, -0.02, *(-np.inf,) * (FIRST - 4))
+_LOWEST = (-np.inf, 0.0, 0.9, -0.02, *(-np.inf,) * 3, 0.0, *(-np.inf,) * 3)
 _HIGHEST = (np.inf, 1.2, 1.1, 0.02, *(np.inf,) * (FIRST - 4))
 FACTORS = (0.01, 0.6)
 

@@ -9,6 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics.estimate import Estimate
+from forensics.rig.breakover import Breakovers
 
 Floats = NDArray[np.float64]
 
@@ -131,7 +132,9 @@ class Calibration:
     open_directions : tuple of OpenDirection
         What the readings leave open, the least known first.
     parameters : tuple of Parameter
-        Every number of the joint fit.
+        Every number of the joint fit beside the factors.
+    breakover : Breakovers or None
+        Peaks of the hookload as a string that stood still starts to move up: a series of its own, in no fit.
     """
 
     sections: tuple[FrictionSection, ...]
@@ -151,6 +154,7 @@ class Calibration:
     held_out: HeldOut | None = None
     open_directions: tuple[OpenDirection, ...] = ()
     parameters: tuple[Parameter, ...] = ()
+    breakover: Breakovers | None = None
 
     @property
     def weights(self) -> tuple[Reading, ...]:

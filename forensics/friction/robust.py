@@ -14,7 +14,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics.friction.assumptions import Prior
-from forensics.friction.parameters import DRIFT, FIRST, SCALE, gentle, stride, within
+from forensics.friction.parameters import DRIFT, FIRST, HIDDEN, SCALE, gentle, stride, within
 
 Floats = NDArray[np.float64]
 Bools = NDArray[np.bool_]
@@ -75,6 +75,7 @@ class Problem:
         weight, slopes = self.surface.at(p[FIRST:])
         scale = p[SCALE] + p[DRIFT] * self.place
         drag = weight - self.hanging
+        bare = self.sign * self.hanging  # rubs at unseen doglegs by its tension, mostly high up in casing
         known = np.column_stack(
             [
                 np.ones_like(weight),
@@ -84,13 +85,14 @@ class Problem:
                 self.pumping,
                 self.when,
                 -self.sign * self.value,  # dead-line sheaves: light on the way up, heavy on the way down
-                self.sign * self.hanging,
+                bare * p[FIRST],
                 drag,
                 np.abs(drag),
                 np.where(self.near, slopes @ p[FIRST:], 0.0),
             ]
         )
         jacobian = np.column_stack([known, scale[:, None] * slopes])
+        jacobian[:, FIRST] += p[HIDDEN] * bare
         return known @ p[:FIRST], jacobian
 
 

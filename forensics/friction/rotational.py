@@ -8,7 +8,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics.estimate import Estimate
-from forensics.friction.assumptions import DRAG_SIGMA, Z90
+from forensics.friction.assumptions import DRAG_SIGMA, HIDDEN_CENTRE, HIDDEN_SIGMA, WIDEST, Z90
 from forensics.friction.result import Reading
 from forensics.friction.spread import blocks
 from forensics.friction.surface import OffBottom
@@ -20,6 +20,9 @@ LOSS = (500.0, 1000.0)
 
 #: One sigma of the rotational factor about the axial one: often a little more or less than it.
 FACTOR_SIGMA = 0.08
+
+#: Contact radius at which doglegs that no survey shows rub a drill string's tool joints [m].
+LEVER = 0.084
 
 #: Robust sigmas at which a reading is let go: with more torque than the rest, and with less.
 LET_GO = (4.0, 6.0)
@@ -49,7 +52,7 @@ class Rotational:
 
 
 def fit_rotational(readings: tuple[Reading, ...], model: OffBottom, centre: float) -> Rotational | None:
-    """Fit torque = loss + factor * unit torque, robustly.
+    """Fit torque = loss + factor * unit torque, robustly, with what the torque model may be off as two more.
 
     Parameters
     ----------
@@ -71,15 +74,14 @@ def fit_rotational(readings: tuple[Reading, ...], model: OffBottom, centre: floa
     own = np.array([r.spread / np.sqrt(min(max(r.samples, 1), 10)) for r in readings])
     sigma = np.hypot(own, np.maximum(100.0, 0.01 * np.abs(value)))
     unit = np.asarray(model.torque(depth, 1.0), dtype=float)
-    jacobian = np.column_stack([unit, np.ones_like(unit)])
-    prior = np.array([[centre, FACTOR_SIGMA], [LOSS[0], LOSS[1]]])
+    hidden = centre * LEVER * np.asarray(model.string_weight("rotating", depth, 0.0, 0.0), dtype=float)
+    jacobian = np.column_stack([unit, np.ones_like(unit), centre * unit, hidden])
+    prior = np.array([[centre, FACTOR_SIGMA], LOSS, [0.0, DRAG_SIGMA], [HIDDEN_CENTRE, HIDDEN_SIGMA]])
     p, weights, inflation = _solve(jacobian, value, sigma, prior)
     cov = _covariance(jacobian, (value - jacobian @ p) * weights, weights, sigma * inflation, (prior, depth))
     sd = np.sqrt(np.diag(cov))
-    sd[0] = np.hypot(sd[0], DRAG_SIGMA * p[0])
     kept = int((weights > 0.1).sum())
-    determined = bool(sd[0] < 0.5 * FACTOR_SIGMA)
-    factor = _interval(p[0], sd[0], "off-bottom torque", determined, kept)
+    factor = _interval(p[0], sd[0], "off-bottom torque", bool(2.0 * Z90 * sd[0] <= WIDEST), kept)
     separate = bool(sd[1] < 0.5 * LOSS[1])
     loss = _interval(p[1], sd[1], "off-bottom torque" if separate else "assumed", separate, kept)
     sentences = () if separate else (UNSEPARATED,)
@@ -110,7 +112,7 @@ def _hold_out(readings: tuple[Floats, Floats, Floats], prior: Floats, depth: Flo
 
 
 def _solve(jacobian: Floats, value: Floats, sigma: Floats, prior: Floats) -> tuple[Floats, Floats, float]:
-    """Iterate lopsided biweight least squares with the prior as two more rows; loss is never negative."""
+    """Iterate lopsided biweight least squares with the prior as rows of its own; loss is never negative."""
     p = prior[:, 0].copy()
     weights, inflation = np.ones(len(value)), 1.0
     for n in range(40):
@@ -124,12 +126,13 @@ def _solve(jacobian: Floats, value: Floats, sigma: Floats, prior: Floats) -> tup
             cut = np.where(u > 0.0, LET_GO[0], LET_GO[1])
             weights = np.where(np.abs(u) < cut, (1.0 - (u / cut) ** 2) ** 2, 0.0)
         a = jacobian / (sigma * inflation)[:, None] * prior[:, 1]
-        normal = a.T @ (weights[:, None] * a) + np.eye(2)
+        normal = a.T @ (weights[:, None] * a) + np.eye(len(prior))
         right = a.T @ (weights * value / (sigma * inflation)) + prior[:, 0] / prior[:, 1]
         p = prior[:, 1] * np.linalg.solve(normal, right)
         if p[1] < 0.0:
+            rest = np.array([0, 2, 3])
             p[1] = 0.0
-            p[0] = prior[0, 1] * (right[0]) / normal[0, 0]
+            p[rest] = prior[rest, 1] * np.linalg.solve(normal[np.ix_(rest, rest)], right[rest])
     return p, weights, inflation
 
 
@@ -139,14 +142,14 @@ def _covariance(
     """Posterior covariance, widened where readings of one stand share their error."""
     prior, depth = context
     a = jacobian / sigma[:, None] * prior[:, 1]
-    inverse = np.linalg.inv(a.T @ (weights[:, None] * a) + np.eye(2))
+    inverse = np.linalg.inv(a.T @ (weights[:, None] * a) + np.eye(len(prior)))
     label = blocks(depth)
     groups = int(label.max()) + 1
-    widen = np.ones(2)
+    widen = np.ones(len(prior))
     if groups >= 4:
-        summed = np.zeros((groups, 2))
+        summed = np.zeros((groups, len(prior)))
         np.add.at(summed, label, a * (weighted / sigma)[:, None])
-        sandwich = inverse @ (summed.T @ summed * groups / (groups - 1) + np.eye(2)) @ inverse
+        sandwich = inverse @ (summed.T @ summed * groups / (groups - 1) + np.eye(len(prior))) @ inverse
         widen = np.maximum(1.0, np.sqrt(np.diag(sandwich) / np.diag(inverse)))
     return inverse * np.outer(widen * prior[:, 1], widen * prior[:, 1])
 

@@ -7,6 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from forensics.friction.assumptions import WANDER_SIGMA
 from forensics.friction.parameters import BLOCK, FIRST, PUMPS, SCALE, SHARE, within
 from forensics.friction.robust import Fit, Problem, whitened
 
@@ -73,6 +74,9 @@ def posterior(problem: Problem, fit: Fit, bit_depth: Floats) -> Posterior:
     small = inverse * np.outer(widen, widen)
     full = np.zeros_like(prior.cov)
     full[np.ix_(prior.free, prior.free)] = prior.root @ small @ prior.root.T
+    wander = np.full(len(prior.centre) - FIRST, WANDER_SIGMA["open"])
+    wander[0] = WANDER_SIGMA["cased"]
+    full[FIRST:, FIRST:] += np.diag(np.where(prior.free[FIRST:], wander * fit.p[FIRST:], 0.0) ** 2)
     followed = np.zeros((len(prior.centre), len(problem.value)))
     followed[prior.free] = prior.root @ gain
     return Posterior(full, followed)

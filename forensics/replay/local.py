@@ -57,8 +57,9 @@ def match_locally(time: Floats, calibration: Calibration, model: Weights) -> Loc
     model : OffBottomModel
         The well as the kernels take it.
     """
-    weights = {kind: [r for r in calibration.readings if r.kind == kind] for kind in SLIDING}
-    turning = [r for r in calibration.readings if r.kind == "rotating"]
+    logged = [r for r in calibration.readings if not r.by_hand]
+    weights = {kind: [r for r in logged if r.kind == kind] for kind in SLIDING}
+    turning = [r for r in logged if r.kind == "rotating"]
     shifts = _shifts(turning, calibration, model)
     multiples = {kind: _multiples(weights[kind], shifts, kind, calibration, model) for kind in SLIDING}
     usual = {kind: float(np.median(m.values)) if len(m.values) else 1.0 for kind, m in multiples.items()}

@@ -11,6 +11,7 @@ from forensics.estimate import Estimate
 from forensics.logs.table import TimeLog
 from forensics.rig import noise
 from forensics.rig.activity import SMOOTHING, Surface, bottom_evidence
+from forensics.rig.breakover import Breakovers, find_breakovers
 from forensics.rig.depth import DepthView
 from forensics.rig.drives import Drives
 from forensics.rig.noise import Bools, Floats
@@ -61,12 +62,13 @@ class Facts:
 
 @dataclass(frozen=True)
 class Judged:
-    """Votes on each row, the steady readings, the references, and the model they are carried by [N]."""
+    """Votes on each row, steady readings, references, the model they are carried by [N], rows surely free."""
 
     vote: NDArray[np.int8]
     steady: Steady
     references: tuple[Reference, Reference, Reference]
     base: Floats
+    clear: Bools
 
 
 def judge_bottom(facts: Facts, block_weight: Estimate | None) -> Judged:
@@ -100,7 +102,13 @@ def judge_bottom(facts: Facts, block_weight: Estimate | None) -> Judged:
     free = (noise.hold(vote, initial=-1) < 0) & ((depths.gap > _FREE_GAP) | depths.run_in)
     steady = _steady(facts, free)
     references = _references(steady, base, signals, block_weight)
-    return Judged(bottom_evidence(surface, depths, references, signals), steady, references, base)
+    return Judged(bottom_evidence(surface, depths, references, signals), steady, references, base, free)
+
+
+def breakovers(facts: Facts, judged: Judged) -> Breakovers:
+    """Find the starts upward of a string that stood still, off bottom."""
+    settle = _SETTLE_SHARE * facts.depths.near
+    return find_breakovers(_motion(facts, judged.clear), facts.signals, settle)
 
 
 def hanging_weight(well: Well, log: TimeLog) -> float:
@@ -113,8 +121,13 @@ def hanging_weight(well: Well, log: TimeLog) -> float:
 
 
 def _steady(facts: Facts, clear: Bools) -> Steady:
+    settle = _SETTLE_SHARE * facts.depths.near
+    return find_steady(_motion(facts, clear), facts.signals, facts.below, settle)
+
+
+def _motion(facts: Facts, clear: Bools) -> Motion:
     moves, drives = facts.moves, facts.drives
-    motion = Motion(
+    return Motion(
         hookload=moves.hookload,
         speed=moves.speed,
         direction=moves.direction,
@@ -127,7 +140,6 @@ def _steady(facts: Facts, clear: Bools) -> Steady:
         clear=clear & ~moves.slips,
         slips=moves.slips,
     )
-    return find_steady(motion, facts.signals, facts.below, _SETTLE_SHARE * facts.depths.near)
 
 
 def _references(

@@ -40,8 +40,29 @@ def hook_factor(direction: NDArray[np.int8], signals: Signals, rig: RigSettings)
     """
     if rig.lines is None or rig.sheave_efficiency is None:
         return 1.0
+    up, still, down = (direction_factor(way, rig) for way in (-1, 0, 1))
+    last = noise.hold(direction)
+    factor = np.where(last > 0, down, np.where(last < 0, up, still))
+    return noise.running_mean(factor, signals.count(_TURN_OVER))
+
+
+def direction_factor(direction: int, rig: RigSettings) -> float:
+    """Hookload over logged reading for a block that goes one way.
+
+    Parameters
+    ----------
+    direction : int
+        +1 down, -1 up, 0 where its last motion is not known.
+    rig : RigSettings
+        Lines strung and efficiency per sheave; both are needed, else the factor is one.
+
+    Returns
+    -------
+    float
+        Dimensionless.
+    """
+    if rig.lines is None or rig.sheave_efficiency is None:
+        return 1.0
     up = dead_line_to_hookload(rig.sheave_efficiency, rig.lines, "up") / rig.lines
     down = dead_line_to_hookload(rig.sheave_efficiency, rig.lines, "down") / rig.lines
-    last = noise.hold(direction)
-    factor = np.where(last > 0, down, np.where(last < 0, up, 0.5 * (up + down)))
-    return noise.running_mean(factor, signals.count(_TURN_OVER))
+    return {-1: up, 0: 0.5 * (up + down), 1: down}[direction]

@@ -15,7 +15,7 @@ from forensics.rig.block import Slips, block_weight, fill_block, find_slips
 from forensics.rig.depth import find_depths
 from forensics.rig.drives import find_drives
 from forensics.rig.guess import guess_turning
-from forensics.rig.judge import Facts, Judged, Moves, judge_bottom
+from forensics.rig.judge import Facts, Judged, Moves, breakovers, judge_bottom
 from forensics.rig.noise import Bools, Floats
 from forensics.rig.pumps import pump_shift
 from forensics.rig.sheaves import hook_factor
@@ -83,7 +83,7 @@ def understand_rig(log: TimeLog, well: Well, case: Case) -> RigView:
         facts = replace(facts, moves=replace(facts.moves, hookload=level))
         judged = judge_bottom(facts, weight)
     view = _view(facts, judged, weight or _from_readings(judged, facts), slips)
-    return replace(view, pump_shift=shift)
+    return replace(view, pump_shift=shift, breakover=breakovers(facts, judged))
 
 
 def weigh(well: Well, bit_depth: Floats) -> Floats:

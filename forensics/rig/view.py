@@ -13,6 +13,7 @@ from numpy.typing import NDArray
 from forensics.estimate import Estimate
 
 if TYPE_CHECKING:
+    from forensics.rig.breakover import Breakovers
     from forensics.rig.steady import Steady
 
 Floats = NDArray[np.float64]
@@ -93,6 +94,8 @@ class RigView:
         The steady moments off bottom that the references rest on.
     pump_shift : Estimate or None
         What the pumps added to the reading, already taken out of `hookload` [N]; None where it didn't show.
+    breakover : Breakovers or None
+        Peaks of the hookload as a string that stood still starts to move up.
     """
 
     block_weight: Estimate
@@ -114,3 +117,4 @@ class RigView:
     bottom_vote: NDArray[np.int8] | None = None
     steady: Steady | None = None
     pump_shift: Estimate | None = None
+    breakover: Breakovers | None = None

@@ -93,6 +93,7 @@ def make_rig(block=300.0e3, half=3.0e3, determined=True):
     return SimpleNamespace(
         block_weight=Estimate(block, block - half, block + half, "in-slips plateau", determined),
         pump_shift=None,
+        breakover=None,
         noise={"hookload": 700.0},
     )
 
@@ -174,7 +175,7 @@ def test_slant_well_against_closed_form():
         make_readings(Slant(), RUN, TRUTH, noise=0.0), make_well(), make_case(), Slant(), make_rig()
     )
     assert factors(found)["cased"].value == pytest.approx(0.22, abs=0.002)
-    assert factors(found)["open"].value == pytest.approx(0.31, abs=0.002)
+    assert factors(found)["open"].value == pytest.approx(0.31, abs=0.003)
 
 
 def test_drag_episodes_do_not_enter_the_base_friction(plain):

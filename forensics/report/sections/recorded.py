@@ -53,8 +53,8 @@ def weight_table(scene: Scene) -> Table:
         Column("written less model", "number"),
     )  # fmt: skip
     note = (
-        f"Readings within {show.value(NEAR, 'length', 0)} of the depth count as nearby. The weights written "
-        "down are compared only: the calibration rests on the log's own readings."
+        f"Readings within {show.value(NEAR, 'length', 0)} of the depth count as nearby. The calibration "
+        "hears the weights written down with a wide error of their own, beside the log's readings."
     )
     if len(found.weights) > ROWS:
         note += f" The first {ROWS} of {len(found.weights)} are listed."
@@ -63,7 +63,8 @@ def weight_table(scene: Scene) -> Table:
 
 def nearest_reading(readings: tuple[Reading, ...], weight: RecordedWeight) -> Reading | None:
     """Give the log's reading of a weight's kind that lies nearest to it in depth, if any is near."""
-    near = [r for r in readings if r.kind == weight.kind and abs(r.bit_depth - weight.bit_depth) <= NEAR]
+    same = (r for r in readings if r.kind == weight.kind and not r.by_hand)
+    near = [r for r in same if abs(r.bit_depth - weight.bit_depth) <= NEAR]
     return min(near, key=lambda r: abs(r.bit_depth - weight.bit_depth), default=None)
 
 
