@@ -154,14 +154,14 @@ class Material:
         counts = np.bincount(busy if len(busy) else codes, minlength=1)
         return Activity(int(np.argmax(counts))).word
 
-    def friction_multiple(self, rows: Floats, cased: Floats, open_: Floats) -> Floats:
+    def friction_multiple(self, rows: Floats, factors: Floats) -> Floats:
         """Drag at other factors over drag at the calibrated ones, to first order.
 
         Parameters
         ----------
         rows : ndarray of int, shape (m,)
-        cased, open_ : ndarray, shape (k,)
-            Friction factors of the draws.
+        factors : ndarray, shape (k, sections)
+            Friction factors of the draws, a column for each section of the calibration.
 
         Returns
         -------
@@ -169,20 +169,29 @@ class Material:
 
         Notes
         -----
-        Cased and open hole are weighed by the inclined length of string in each, which is what contact
-        follows where tension is moderate.
+        Sections are weighed by the inclined length of string in each, which is what contact follows where
+        tension is moderate.
         """
-        mu = max(self.calibration.factor("cased"), 1e-3), max(self.calibration.factor("open"), 1e-3)
-        share = self.open_share[rows]
-        return np.outer(cased / mu[0], 1.0 - share) + np.outer(open_ / mu[1], share)
+        mu = np.array([section.factor.value for section in self.calibration.sections])
+        return factors / np.maximum(mu, 1e-3) @ self.drag_shares[:, rows]
 
     @cached_property
-    def open_share(self) -> Floats:
-        """Part of the drag that comes from open hole, shape (n,), 0 to 1."""
+    def drag_shares(self) -> Floats:
+        """Part of the drag that comes from each section of the calibration, shape (sections, n), 0 to 1."""
         bit = np.nan_to_num(self.bit)
         grid = np.linspace(0.0, max(float(bit.max()), 1.0), 400)
         side = np.sin(np.asarray(self.well.trajectory.at(grid).inclination)) + 0.01
         is_open = np.asarray(self.well.hole.is_open(grid), dtype=bool)
-        mu = np.where(is_open, self.calibration.factor("open"), self.calibration.factor("cased"))
-        total = np.cumsum(side * mu)
-        return np.interp(bit, grid, np.cumsum(side * mu * is_open) / np.maximum(total, 1e-12))
+        sections = self.calibration.sections
+        opened = np.searchsorted(self.calibration.edges, grid)
+        which = np.where(is_open, np.minimum(1 + opened, len(sections) - 1), 0)
+        felt = side * np.array([section.factor.value for section in sections])[which]
+        total = np.maximum(np.cumsum(felt), 1e-12)
+        parts = [np.cumsum(felt * (which == k)) / total for k in range(len(sections))]
+        return np.array([np.interp(bit, grid, part) for part in parts])
+
+    @cached_property
+    def open_share(self) -> Floats:
+        """Part of the drag that comes from open hole, shape (n,), 0 to 1."""
+        kinds = np.array([section.kind == "open" for section in self.calibration.sections])
+        return self.drag_shares[kinds].sum(axis=0)

@@ -53,7 +53,7 @@ def largest_loss(material: Material) -> tuple[int, Estimate] | None:
     draws = material.calibration.draws
     spread = 0.0
     if len(draws):
-        multiple = material.friction_multiple(np.array([row]), draws[:, 0], draws[:, 1])[:, 0]
+        multiple = material.friction_multiple(np.array([row]), draws[:, :-1])[:, 0]
         spread = float(np.std(multiple)) * value
     half = 1.6448536269514722 * spread
     return row, Estimate(value, value - half, value + half, "re-zeroed surface weight")

@@ -39,10 +39,9 @@ def fan(calibration: Calibration, model: OffBottomModel, depths: tuple[float, fl
 
 
 def _line(kind: str, depth: Floats, calibration: Calibration, model: OffBottomModel) -> Floats:
-    cased, open_hole = factors(calibration)
     base = calibration.block_weight.value + calibration.hookload_bias.value
     scale = calibration.weight_scale.value
-    return base + model.string_weight(kind, depth, cased, open_hole, scale=scale)
+    return base + model.string_weight(kind, depth, *factors(calibration), scale=scale)
 
 
 def _band(kind: str, depth: Floats, calibration: Calibration, model: OffBottomModel) -> tuple[Floats, Floats]:
@@ -52,8 +51,8 @@ def _band(kind: str, depth: Floats, calibration: Calibration, model: OffBottomMo
         line = _line(kind, depth, calibration, model)
         return line, line
     bias = calibration.hookload_bias.value
-    weights = model.string_weights(kind, depth, draws[:, 0], draws[:, 1])
-    lines = draws[:, 2:3] + bias + calibration.weight_scale.value * weights
+    weights = model.string_weights(kind, depth, *draws[:, :-1].T)
+    lines = draws[:, -1:] + bias + calibration.weight_scale.value * weights
     # where some draws lock up there is no band to show
     whole = np.isfinite(lines).all(axis=0)
     low, high = np.percentile(np.where(whole, lines, 0.0), [5.0, 95.0], axis=0)
@@ -96,10 +95,10 @@ def drag_lines(
     }
     expected = np.full(len(samples.bit), np.nan)
     grid = np.linspace(np.min(samples.bit), np.max(samples.bit) + 1.0, 2 * FAN_POINTS)
-    cased, open_hole = factors(calibration)
+    at = factors(calibration)
     for kind, (rows, waiting, side) in kinds.items():
         if (rows | waiting).any():
-            line = model.string_weight(kind, grid, cased, open_hole)
+            line = model.string_weight(kind, grid, *at)
             weight = np.interp(samples.bit, grid, line) * samples.scale
             held = waiting & (side * (string - weight) > 0.0) & (string > HANGING * weight)
             rows = rows | held

@@ -78,7 +78,7 @@ def slack_off(setting: Setting, memory: Memory, samples: Samples, row: int) -> S
 
 
 def bit_load_limit(
-    model: OffBottomModel, samples: Samples, rows: NDArray[np.bool_], factors: tuple[float, float]
+    model: OffBottomModel, samples: Samples, rows: NDArray[np.bool_], factors: tuple[float, ...]
 ) -> Floats:
     """Most bit load that any slacking off could give, at the rows asked for [N]; NaN elsewhere, shape (n,).
 
@@ -91,7 +91,7 @@ def bit_load_limit(
     rows : ndarray of bool, shape (n,)
         Rows while sliding.
     factors : tuple of float
-        Cased and open friction factors.
+        Friction factors of the cased hole and of each open section.
 
     Notes
     -----

@@ -45,6 +45,8 @@ def ready(
     if model is None:
         depth = float(np.nanmax(log.values["bit_depth"]))
         model = build_model(well, case, depth, block_zero(rig))
+    if calibration.edges:
+        model = model.divided(calibration.edges)
     local = match_locally(log.time, calibration, model)
     prepared = prepare(log, well, rig, calibration, model, local)
     still, drag = _lines(prepared, model, calibration)

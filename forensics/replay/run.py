@@ -56,14 +56,14 @@ def replay(run: Replay) -> LoadHistory:
         Arrays of the log's length, SI.
     """
     samples = run.prepared.samples
-    cased, open_hole = factors(run.calibration)
+    at = factors(run.calibration)
     times = np.linspace(run.log.time[0], run.log.time[-1] + 1.0, MAP_TIMES + 1)
     depths = np.linspace(0.0, float(np.max(samples.bit)) + 20.0, MAP_DEPTHS + 1)
     found = room(len(run.log), MAP_TIMES, MAP_DEPTHS)
     found.chart_row[:] = np.clip(np.searchsorted(times, run.log.time, side="right") - 1, 0, MAP_TIMES - 1)
     memory, now = fresh(run.model)
     replay_rows(
-        run.model.setting(cased, open_hole), Run(samples, run.rules, found, memory, now, float(depths[1]))
+        run.model.setting(*at), Run(samples, run.rules, found, memory, now, float(depths[1]))
     )
     found.bit_load[run.prepared.far] = 0.0
     if run.witness is not None:
@@ -82,10 +82,8 @@ def replay(run: Replay) -> LoadHistory:
             run.log, run.prepared, run.rig, run.calibration, run.model, found.bit_load
         ),
         model_hookload=expected,
-        bit_load_limit=bit_load_limit(
-            run.model, samples, run.rig.activity == Activity.DRILL_SLIDE, (cased, open_hole)
-        ),
-        straight_drag=straight_drag(run.model, run.prepared, (cased, open_hole), found, lost),
+        bit_load_limit=bit_load_limit(run.model, samples, run.rig.activity == Activity.DRILL_SLIDE, at),
+        straight_drag=straight_drag(run.model, run.prepared, at, found, lost),
         stretch=found.stretch,
         ratio_map=RatioMap(times, depths, found.chart),
         rate_law=run.rate_law, visits=int(memory.visits[0]),

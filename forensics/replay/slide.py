@@ -16,7 +16,7 @@ THINNED_SECONDS = 15.0  # ordinary drag changes little in less
 
 
 def straight_drag(
-    model: OffBottomModel, prepared: Prepared, factors: tuple[float, float], found: Found, lost: Floats
+    model: OffBottomModel, prepared: Prepared, factors: tuple[float, ...], found: Found, lost: Floats
 ) -> Floats:
     """Ordinary sliding drag between surface and bit at each row, helical contact left out [N].
 

@@ -25,7 +25,7 @@ def test_open_share_follows_inclined_length_and_friction(make_run):
 
 def test_friction_multiple_is_one_at_the_calibrated_factors(make_run):
     material = make_run().material()
-    multiple = material.friction_multiple(np.array([0]), np.array([0.2, 0.4]), np.array([0.3, 0.6]))
+    multiple = material.friction_multiple(np.array([0]), np.array([[0.2, 0.3], [0.4, 0.6]]))
     np.testing.assert_allclose(multiple[:, 0], [1.0, 2.0])
 
 
