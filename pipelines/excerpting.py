@@ -116,7 +116,8 @@ def _moment(text: str, timezone: str) -> float:
 
 def _write_log(window: Window, number: int, shift: Shift, folder: Path) -> tuple[str, str]:
     """Write what one file has in the window, in its own dialect if that reads back as it should."""
-    record, path = window.log.files[number], window.case.logs.time[number]
+    record = window.log.files[number]
+    path = _path_of(window, number)
     inside = window.log.time[window.rows]
     if record.end < inside[0] or record.start > inside[-1]:
         return "", f"{path.name}: nothing of it lies in the window."
@@ -148,7 +149,7 @@ def _rewritten(window: Window, number: int, how: tuple[Shift, bool], target: Pat
     case, record = window.case, window.log.files[number]
     if not record.format.startswith(("CSV", "LAS")):
         return False
-    path = case.logs.time[number]
+    path = _path_of(window, number)
     try:
         rows = _lines_of(window, number)
         excerpt.rewrite_file(path, record, rows, how, target)
@@ -159,14 +160,20 @@ def _rewritten(window: Window, number: int, how: tuple[Shift, bool], target: Pat
     return all(_same(window, again, name, how[0]) for name in ("bit_depth", "hookload"))
 
 
+def _path_of(window: Window, number: int) -> Path:
+    """Path of a log; a file may hold several."""
+    return window.log.files[number].path or window.case.logs.time[number]
+
+
 def _lines_of(window: Window, number: int) -> Rows:
     """Lines of a file that lie in the window."""
     case, inside = window.case, window.log.time[window.rows]
     names = wanted(case.logs.channels)
-    raw = read_raw(case.logs.time[number], lambda name: keep(name, names))
+    path = _path_of(window, number)
+    raw = read_raw(path, lambda name: keep(name, names))
     choice = case.logs.channels.get("time")
     clock = read_clock(
-        raw, case.logs.timezone, None if choice is None else (choice.column, choice.unit), None
+        raw, case.logs.zone_of(path), None if choice is None else (choice.column, choice.unit), None
     )
     held = np.flatnonzero((clock.time >= inside[0]) & (clock.time <= inside[-1]))
     if len(held) == 0 or not clock.dated:

@@ -11,17 +11,15 @@ from zoneinfo import ZoneInfo
 import numpy as np
 from numpy.typing import NDArray
 
-from forensics import channels
 from forensics.errors import LogError
 from forensics.logs import clock_number
+from forensics.logs.clock_column import DATE_NAMES, pick_time, time_key, unit_of
 from forensics.logs.clock_text import (
     date_fields,
     day_number,
     find_order,
-    looks_like_date,
     take_apart,
 )
-from forensics.logs.naming import split_name
 from forensics.logs.nulls import mostly_numbers, to_numbers
 from forensics.logs.raw import RawLog
 from forensics.logs.zone import to_utc, zone_of
@@ -33,25 +31,6 @@ Floats = NDArray[np.float64]
 DAY = 86400.0
 # Rows within which a clock that leaps back over midnight falls again.
 LATE = 5
-_DATE_NAMES = frozenset(
-    [
-        "date",
-        "day",
-        "datum",
-        "dato",
-        "yyyymmdd",
-        "ddmmyyyy",
-        "mmddyyyy",
-        "yymmdd",
-        "ddmmyy",
-        "logdate",
-        "fecha",
-    ]
-)
-_CLOCK_NAMES = frozenset(
-    ["time", "hhmmss", "hhmm", "clock", "timeofday", "tod", "tid", "uhrzeit", "zeit", "hora"]
-)
-
 
 class OpenOrderError(LogError):
     """The order of day and month can't be told from this file alone."""
@@ -85,12 +64,6 @@ class Clock:
     warnings: tuple[str, ...] = ()
 
 
-def is_time_name(name: str) -> bool:
-    """Tell whether a column's name says it holds a date or a time."""
-    key = _key(name)
-    return key in _DATE_NAMES or key in _CLOCK_NAMES or channels.match(split_name(name)[0])[0] == "time"
-
-
 def read_clock(raw: RawLog, timezone: str, chosen: tuple[str, str | None] | None, order: str | None) -> Clock:
     """Read the stamps of one file.
 
@@ -116,8 +89,8 @@ def read_clock(raw: RawLog, timezone: str, chosen: tuple[str, str | None] | None
         If no column holds time, or day and month can't be told apart (`OpenOrderError`).
     """
     zone = zone_of(timezone)
-    place, unit = _pick(raw, chosen)
-    dates = [i for i, name in enumerate(raw.names) if _key(name) in _DATE_NAMES and i in raw.table]
+    place, unit = pick_time(raw, chosen)
+    dates = [i for i, name in enumerate(raw.names) if time_key(name) in DATE_NAMES and i in raw.table]
     date_place = next((i for i in dates if i != place), None)
     column = raw.table[place]
     if date_place is not None and raw.table[date_place].isna().all():
@@ -139,30 +112,6 @@ def read_clock(raw: RawLog, timezone: str, chosen: tuple[str, str | None] | None
     return Clock(time, (raw.names[place],), "date and time in one column", order=stamps.order)
 
 
-def _pick(raw: RawLog, chosen: tuple[str, str | None] | None) -> tuple[int, str | None]:
-    """Find the time column: the one named, the best by name, or the first if it holds stamps."""
-    loaded = [i for i in range(len(raw.names)) if i in raw.table]
-    if chosen is not None:
-        key = channels.normalise(chosen[0])
-        for i in loaded:
-            if raw.names[i] == chosen[0] or channels.normalise(raw.names[i]) == key:
-                return i, chosen[1] or _unit(raw, i)
-    filled = [i for i in loaded if not raw.table[i].isna().all()]
-    named = [i for i in filled if _key(raw.names[i]) in _CLOCK_NAMES]
-    named += [i for i in filled if channels.match(split_name(raw.names[i])[0])[0] == "time"]
-    named += [i for i in filled if _key(raw.names[i]) in _DATE_NAMES]
-    full = [i for i in named if _holds_stamps(raw.table[i])]
-    stamped = [i for i in filled if _holds_stamps(raw.table[i])] if not named else []
-    # The index of a file that says when it starts can be nothing else.
-    index = filled[:1] if raw.start is not None and not raw.format.startswith("CSV") else []
-    for i in (*full, *named, *stamped, *index):
-        return i, _unit(raw, i)
-    seen = ", ".join(repr(name) for name in raw.names[:40])
-    raise LogError(
-        f'found no column of time among {seen}; name it under [logs.channels] as time = "..."', file=raw.path
-    )
-
-
 def _from_typed(column: pd.Series, name: str, zone: ZoneInfo | float) -> Clock:
     """Read stamps that the file itself holds as stamps."""
     aware = column.dt.tz is not None
@@ -172,21 +121,6 @@ def _from_typed(column: pd.Series, name: str, zone: ZoneInfo | float) -> Clock:
     return Clock(
         local if aware else to_utc(local, zone), (name,), f"stamps with{'' if aware else 'out'} a zone"
     )
-
-
-def _key(name: str) -> str:
-    return channels.normalise(split_name(name)[0])
-
-
-def _unit(raw: RawLog, place: int) -> str | None:
-    return raw.units[place] or split_name(raw.names[place])[1]
-
-
-def _holds_stamps(column: pd.Series) -> bool:
-    if column.dtype.kind == "M":
-        return True
-    texts = [str(text) for text in column.dropna().iloc[:5]]
-    return bool(texts) and all(looks_like_date(text) and take_apart(text).clock is not None for text in texts)
 
 
 def _is_placeholder(days: Floats) -> bool:
@@ -349,7 +283,7 @@ def _from_numbers(
     place, date_place = places
     values = to_numbers(raw.table[place])[0]
     name = raw.names[place]
-    if date_place is not None and _key(name) not in _DATE_NAMES:
+    if date_place is not None and time_key(name) not in DATE_NAMES:
         return _number_and_date(raw, (place, date_place), values, zone)
     found = clock_number.read(values, unit, name)
     if found is None:
@@ -377,11 +311,11 @@ def _from_numbers(
 def _number_and_date(raw: RawLog, places: tuple[int, int], values: Floats, zone: ZoneInfo | float) -> Clock:
     place, date_place = places
     names = (raw.names[date_place], raw.names[place])
-    seconds = clock_number.seconds_of_day(values, _unit(raw, place))
+    seconds = clock_number.seconds_of_day(values, unit_of(raw, place))
     days, order = _days_of(raw, date_place, None)
     if seconds is None or not np.isfinite(days).any():
         alone = replace(raw, table=raw.table.drop(columns=date_place))
-        return _from_numbers(alone, (place, None), _unit(raw, place), zone)
+        return _from_numbers(alone, (place, None), unit_of(raw, place), zone)
     return Clock(
         to_utc(days * DAY + seconds, zone), names, "date and time as numbers in two columns", order=order
     )

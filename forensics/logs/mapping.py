@@ -12,7 +12,7 @@ from forensics import channels, units
 from forensics.case import ChannelChoice
 from forensics.channels import BY_NAME, GENERIC_DEPTH, Need
 from forensics.errors import LogError, UnitError, nearest
-from forensics.logs.clock import is_time_name
+from forensics.logs.clock_column import is_time_name
 from forensics.logs.naming import split_name
 from forensics.logs.nulls import to_numbers
 from forensics.logs.raw import RawLog

@@ -31,6 +31,9 @@ READERS: tuple[Reader, ...] = (
     Reader("CSV", csv_log.sniff, csv_log.read),
 )
 
+# First bytes of zip files (spreadsheets are such), of older spreadsheets, 7z, xz and bzip2 files.
+ARCHIVES = (b"PK\x03\x04", b"\xd0\xcf\x11\xe0", b"7z\xbc\xaf", b"\xfd7zXZ", b"BZh")
+
 
 def require(path: Path) -> None:
     """Refuse a path that is no file.
@@ -60,6 +63,10 @@ def read_head(path: Path, size: int = csv_log.HEAD) -> bytes:
             head = file.read(size)
     except UNPACK_ERRORS as error:
         raise LogError(f"the file can't be read: {error}", file=path) from error
+    if head.startswith(ARCHIVES):
+        raise LogError(
+            "this is an archive or a spreadsheet, not a log; unpack it, or save the sheet as CSV", file=path
+        )
     if not head.strip():
         raise LogError("the file is empty; expected a header and rows of data", file=path)
     return head

@@ -171,8 +171,8 @@ def _add_curve(part: _Part, curve: Mapping[str, str]) -> None:
 
 
 def _place_index(part: _Part) -> None:
-    """Take the index curve's own column number where its logCurveInfo gives none."""
-    if part.index in part.units and not part.places.get(part.index):
+    """Take the index curve's own column number where its logCurveInfo gives none and others have theirs."""
+    if part.index in part.units and not part.places.get(part.index) and any(part.places.values()):
         part.places[part.index] = part.index_place
 
 
