@@ -87,6 +87,7 @@ def _build(root: Node) -> Case:
     names = ("well", "field", "rig", "section", "mud_system", "notes", "campaign")
     case = root.section("case", ("id", "title", *names))
     survey = root.section("survey", ("file", "tie_in", "accuracy"))
+    string = root.section("string", ("file", "nozzle_area"))
     case_id = case.need("id", as_identifier, 'id = "kestrel-3-run-4"')
     words = {name: case.take(name, as_note) for name in names}
     return Case(
@@ -98,7 +99,8 @@ def _build(root: Node) -> Case:
         tie_in=_tie_in(survey),
         survey_accuracy=survey.take("accuracy", as_quantity("angle", 0.0, LEAST_ACCURATE)),
         hole=root.section("hole", ("file",)).need("file", as_file, 'file = "hole.csv"'),
-        string=root.section("string", ("file",)).need("file", as_file, 'file = "string.csv"'),
+        string=string.need("file", as_file, 'file = "string.csv"'),
+        nozzle_area=string.take("nozzle_area", as_quantity("area", 1e-6, 0.05)),
         fluid=_fluid(root.section("fluid", ("density", "file", "density_inside"))),
         rig=RigSettings(**_settings(root, "rig", _RIG)),
         friction=FrictionSettings(**_settings(root, "friction", _FRICTION)),

@@ -113,7 +113,8 @@ class RecordSettings:
 class Case:
     """One run of one string in one hole section, as its case file states it.
 
-    `survey_accuracy` is the random error of a station's direction, one sigma [rad], None where not stated.
+    `survey_accuracy` is the random error of a station's direction, one sigma [rad], None where not stated;
+    `nozzle_area` that of all the bit's nozzles together [m2], None where it is not given.
     """
 
     path: Path
@@ -138,3 +139,4 @@ class Case:
     mud_system: str | None = None
     notes: str | None = None
     campaign: str | None = None
+    nozzle_area: float | None = None

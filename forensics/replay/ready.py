@@ -10,6 +10,7 @@ from numpy.typing import NDArray
 from forensics.case import Case
 from forensics.friction.result import Calibration
 from forensics.logs.table import TimeLog
+from forensics.mechanics.hydraulics import jet_thrust
 from forensics.mechanics.kernels_replay import TURN, Rules
 from forensics.mechanics.offbottom import OffBottomModel
 from forensics.replay.local import match_locally
@@ -62,6 +63,8 @@ def ready(
     run = Replay(log, well, rig, calibration, model, prepared, rules, law)
     if case.criteria.torque_effect:
         run = _wound(run)
+    if case.nozzle_area is not None:
+        run = _lifted(run, case.nozzle_area)
     return heed(run, turning, drag)
 
 
@@ -70,6 +73,33 @@ def _wound(run: Replay) -> Replay:
     ends = run.prepared.samples.ends.copy()
     ends[:, :2] = np.nan_to_num(torque_ends(run, np.arange(len(run.log))))
     return replace(run, prepared=replace(run.prepared, samples=run.prepared.samples._replace(ends=ends)))
+
+
+def _lifted(run: Replay, area: float) -> Replay:
+    """Let the jets press the string from below while the pumps run: the hook carries that much less."""
+    samples = run.prepared.samples
+    ends = samples.ends.copy()
+    ends[:, 2] = usual_thrust(run.rig, run.well, area) * run.rig.pumping
+    samples = samples._replace(ends=ends, top=samples.top - ends[:, 2])
+    return replace(run, prepared=replace(run.prepared, samples=samples))
+
+
+def usual_thrust(rig: RigView, well: Well, area: float) -> float:
+    """Force with which the jets lift the bit at the run's usual flow [N]; zero where no flow is known.
+
+    Parameters
+    ----------
+    rig : RigView
+        With its usual flow.
+    well : Well
+        With its mud.
+    area : float
+        Of the nozzles together [m2].
+    """
+    inside = well.fluid.inside
+    density = well.fluid.typical if inside is None else inside
+    flow = rig.usual_flow if np.isfinite(rig.usual_flow) else 0.0
+    return float(jet_thrust(flow, density, area))
 
 
 def _turning_load(prepared: Prepared, still: Floats, drag: Floats) -> Floats:

@@ -83,3 +83,12 @@ def test_sag_is_for_jointed_pipe_only(findings):
     assert 0.0 < hangs < room == pytest.approx((0.1683 - 0.127) / 2)
     at_motor = replace(episode, peak_md=float(findings.log.values["bit_depth"][episode.peak]) - 4.0)
     assert derived.sag_between_joints(findings, at_motor) is None
+
+
+def test_pumps_are_told_as_learned_and_as_the_jets_have_it(findings, build_case):
+    bare = method.pump_words(make_scene(findings, "metric"))
+    assert "can't be told without the nozzle area" in bare
+    rig = replace(findings.rig, usual_flow=0.035)
+    told = make_scene(replace(findings, rig=rig, case=build_case(nozzle_area=5e-4)), "metric")
+    thrust = findings.well.fluid.typical * 0.035**2 / 5e-4
+    assert f"lift the bit with {thrust / 1e3:.2f} kN" in method.pump_words(told)

@@ -5,6 +5,8 @@ from __future__ import annotations
 import math
 
 from forensics.episodes.catalogue import Episode
+from forensics.mechanics.hydraulics import bit_pressure_drop
+from forensics.replay.ready import usual_thrust
 from forensics.report import derived
 from forensics.report.elements import Bullets, Column, Notice, Section, Table, Text
 from forensics.report.scene import Scene
@@ -82,8 +84,32 @@ def assumption_table(scene: Scene) -> Table:
             text += f", {fixed(case.rig.sheave_efficiency, 3)} per sheave"
         rows.append(("hoisting tackle", text, "[rig] of the case"))
     rows.append(("usual flow of the run", show.value(found.rig.usual_flow, "flow"), "flow in"))
+    origin = "time log, and [string] of the case"
+    rows.append(("what the pumps do to the hookload", pump_words(scene), origin))
     columns = (Column("assumption"), Column("value"), Column("from"))
     return Table("What the result rests on", columns, tuple(rows))
+
+
+def pump_words(scene: Scene) -> str:
+    """Say what the pumps add to the hookload, as learned from the log and as the jets would have it."""
+    found, show = scene.findings, scene.show
+    learned = found.rig.pump_shift
+    said = "no shift stands out in the log; none is taken out"
+    if learned is not None:
+        said = f"{show.with_interval(learned, 'force')}, learned from the log and taken out of the hookload"
+    area = found.case.nozzle_area
+    if area is None:
+        return (
+            f"{said}. How much of it presses the string from the bit can't be told without the nozzle area "
+            "([string] nozzle_area): none is taken to"
+        )
+    thrust = usual_thrust(found.rig, found.well, area)
+    taken = show.value(float(bit_pressure_drop(thrust, area)), "pressure")
+    return (
+        f"{said}. At the usual flow the nozzles take {taken} and the jets lift the bit with "
+        f"{show.value(thrust, 'force')}, which presses the string from below beside the bit load; the rest "
+        "is returns on the outside, and the hose. Pressure itself adds nothing to the effective tension"
+    )
 
 
 def effects(scene: Scene) -> list[tuple[str, str, str]]:
