@@ -192,13 +192,21 @@ def chance_of(margins: Floats) -> Chance:
     if count == 0:
         return UNKNOWN
     share = float(np.mean(margins >= 0.0))
-    low, high = _wilson(share, count)
-    if share in (0.0, 1.0):
-        spread = float(np.std(margins))
-        clear = float(np.mean(margins)) / spread if spread > 0.0 else np.inf * (share - 0.5)
-        share = NormalDist().cdf(clear) if np.isfinite(clear) else share
-    share = float(np.clip(share, 1.0 - CERTAIN, CERTAIN))
-    return Chance(share, min(low, share), max(high, share), count)
+    bounds = _agreed(margins, share) if share in (0.0, 1.0) else (share, *_wilson(share, count))
+    value, low, high = np.clip(bounds, 1.0 - CERTAIN, CERTAIN).tolist()
+    return Chance(value, low, high, count)
+
+
+def _agreed(margins: Floats, share: float) -> tuple[float, float, float]:
+    """Chance, and its 90 % interval, where all draws agree: as if their margins were normal."""
+    spread = float(np.std(margins))
+    if spread <= 0.0:
+        return share, share, share
+    clear = float(np.mean(margins)) / spread
+    # how well so few draws tell mean over sigma (to first order, of normal samples)
+    half = Z90 * sqrt((1.0 + 0.5 * clear**2) / len(margins))
+    value, low, high = (NormalDist().cdf(z) for z in (clear, clear - half, clear + half))
+    return value, low, high
 
 
 def _wilson(share: float, count: int) -> tuple[float, float]:

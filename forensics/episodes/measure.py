@@ -20,6 +20,9 @@ NOTHING = Estimate(float("nan"), float("nan"), float("nan"), "not applicable", d
 #: Draws from which the ends of an interval are counted off; fewer don't show the twentieth part.
 ENOUGH = 40
 
+#: Pipe buckles by elements of ten metres: an end is told no better than to half of one [m].
+HALF_ELEMENT = 5.0
+
 
 @dataclass(frozen=True)
 class Lost:
@@ -107,7 +110,8 @@ def depths_of(material: Material, span: Span) -> tuple[Estimate, Estimate]:
         widest = np.nan_to_num(bottom - top, nan=-1.0).argmax(axis=1)
         pick = np.arange(len(rows)), widest
         ends = (top[pick].astype(float), bottom[pick].astype(float))
-    return around(values[0], ends[0], "replay"), around(values[1], ends[1], "replay")
+    top, bottom = (around(value, end, "replay") for value, end in zip(values, ends, strict=True))
+    return _widened(top, HALF_ELEMENT), _widened(bottom, HALF_ELEMENT)
 
 
 def lost_weight(material: Material, peak: int) -> Lost:
