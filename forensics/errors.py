@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import difflib
+import stat
 from collections.abc import Iterable
 from pathlib import Path
 
@@ -74,3 +75,35 @@ def nearest(word: str, known: Iterable[str]) -> str:
     if close:
         return f"did you mean {close[0]!r}?"
     return f"known are: {', '.join(sorted(names))}"
+
+
+def no_file(path: Path, most: int | None = None) -> str | None:
+    """Say, as the end of a sentence, why a path can't be read as a file; None where it can.
+
+    Devices and pipes are never opened: some have no end, and some wait for a writer who never comes.
+
+    Parameters
+    ----------
+    path : Path
+        Links are followed.
+    most : int, optional
+        Bytes the file may have.
+
+    Examples
+    --------
+    >>> no_file(Path("no such file"))
+    'is missing'
+    """
+    try:
+        found = path.stat()
+    except FileNotFoundError:
+        return "is missing"
+    except (OSError, ValueError) as error:
+        return f"can't be read ({getattr(error, 'strerror', None) or error})"
+    if stat.S_ISDIR(found.st_mode):
+        return "is a folder"
+    if not stat.S_ISREG(found.st_mode):
+        return "is a device or a pipe, not a file"
+    if most is not None and found.st_size > most:
+        return f"has {found.st_size / 2**20:.1f} MiB, and more than {most / 2**20:g} MiB is not read here"
+    return None

@@ -36,11 +36,16 @@ from forensics.case.settings import (
     RigSettings,
     TieIn,
 )
-from forensics.errors import CaseError, UnitError
+from forensics.errors import CaseError, UnitError, no_file
 from forensics.units import factor
 
 # A station that may be off by more than a degree is none [rad].
 LEAST_ACCURATE = 0.0175
+# No case file comes near this [bytes], or near so many parts of a dotted key.
+LARGEST, MOST_PARTS = 2**18, 100
+TOO_DEEP = "nests far deeper than any case; sections and keys such as [logs.channels] are needed"
+_IN_QUOTES = re.compile(r"\"(?:[^\"\\]|\\.)*\"|'[^']*'")
+_MANY_PARTS = re.compile(rf"(?:[\w-]*[ \t]*\.[ \t]*){{{MOST_PARTS}}}")
 _LOGS = ("time", "depth", "timezone", "timezones", "wits_units", "channels")
 _SECTIONS = "case logs survey hole string fluid rig friction criteria limits records"
 
@@ -66,8 +71,11 @@ def load_case(path: Path | str) -> Case:
     """
     path = Path(path)
     text = _read_text(path)
+    _refuse_depth(path, text)
     try:
         tree = tomllib.loads(text)
+    except RecursionError:
+        raise CaseError(TOO_DEEP, file=path) from None
     except tomllib.TOMLDecodeError as error:
         place = re.search(r"\(at line (\d+), column (\d+)\)", str(error))
         message = re.sub(r" \(at .*\)$", "", str(error))
@@ -81,6 +89,13 @@ def load_case(path: Path | str) -> Case:
     if version != 1:
         raise root.error(f"is {version}; this program reads format 1", "format")
     return _build(root)
+
+
+def _refuse_depth(path: Path, text: str) -> None:
+    """Refuse keys of very many parts, on which the parser spends the square of their number."""
+    for number, line in enumerate(text.splitlines(), 1):
+        if line.count(".") >= MOST_PARTS and _MANY_PARTS.search(_IN_QUOTES.sub("", line)):
+            raise CaseError(TOO_DEEP, file=path, line=number)
 
 
 def _build(root: Node) -> Case:
@@ -192,14 +207,15 @@ def _fluid(node: Node) -> FluidSettings:
 
 
 def _read_text(path: Path) -> str:
+    fault = no_file(path, LARGEST)
+    if fault is not None:
+        raise CaseError(f"{fault}; the path of a case file is needed", file=path)
     try:
         return path.read_bytes().decode("utf-8-sig").replace("\r\n", "\n")
     except UnicodeDecodeError as error:
         raise CaseError(f"is not UTF-8 text (byte {error.start}); save it as UTF-8", file=path) from None
     except OSError as error:
-        reason = (
-            "no such file" if isinstance(error, FileNotFoundError) else f"can't be read ({error.strerror})"
-        )
+        reason = f"can't be read ({error.strerror})"
         raise CaseError(f"{reason}; the path of a case file is needed", file=path) from None
 
 

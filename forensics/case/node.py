@@ -9,8 +9,11 @@ from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
 
-from forensics.errors import CaseError, UnitError, nearest
+from forensics.errors import CaseError, UnitError, nearest, no_file
 from forensics.units import parse_quantity, spellings
+
+#: Letters a folder's name may have, with room for what is put beside it.
+LONGEST_ID = 120
 
 
 @dataclass(frozen=True)
@@ -92,14 +95,20 @@ def as_identifier(node: Node, key: str, value: object) -> str:
         raise node.error(
             f"is {value!r}; letters, digits, dot, dash and underscore only (it names a folder)", key
         )
+    if len(value) > LONGEST_ID:
+        raise node.error(f"has {len(value)} letters; {LONGEST_ID} at most (it names a folder)", key)
     return value
 
 
 def as_file(node: Node, key: str, value: object) -> Path:
     """Take the path of a file that is there, relative to the case file."""
-    path = (node.path.parent / as_text(node, key, value)).resolve()
-    if not path.is_file():
-        found = "is a folder" if path.is_dir() else "is missing"
+    text = as_text(node, key, value)
+    try:
+        path = (node.path.parent / text).resolve()
+        found = no_file(path)
+    except (OSError, ValueError, RuntimeError) as error:
+        found = f"can't be named so ({error})"
+    if found is not None:
         raise node.error(f"file {value!r} {found}; paths are relative to the case file", key)
     return path
 

@@ -7,7 +7,7 @@ from collections.abc import Callable
 from dataclasses import dataclass
 from pathlib import Path
 
-from forensics.errors import LogError
+from forensics.errors import LogError, no_file
 from forensics.logs import csv_log, las_log, parquet_log, wits_log, witsml_log
 from forensics.logs.packed import UNPACK_ERRORS, open_bytes
 from forensics.logs.raw import Keep, RawLog
@@ -41,12 +41,11 @@ def require(path: Path) -> None:
     Raises
     ------
     LogError
-        If the file is missing or is a folder.
+        If the file is missing, a folder, a device or a pipe.
     """
-    if not path.exists():
-        raise LogError("the file does not exist; check the path in [logs]", file=path)
-    if path.is_dir():
-        raise LogError("this is a folder; [logs] names files", file=path)
+    fault = no_file(path)
+    if fault is not None:
+        raise LogError(f"{fault}; check the path of the log", file=path)
 
 
 def read_head(path: Path, size: int = csv_log.HEAD) -> bytes:

@@ -13,7 +13,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics import units
-from forensics.errors import TableError
+from forensics.errors import TableError, no_file
 from forensics.tables.columns import (
     BRACKETS,
     NUMBER,
@@ -29,6 +29,9 @@ from forensics.tables.columns import (
 
 Floats = NDArray[np.float64]
 
+# No table of one run comes near this, and as cells it takes many times its size [bytes].
+LARGEST = 2**24
+MOST_CELLS = 1000
 NULLS = frozenset({"", "-", "--", "n/a", "na", "nan", "null", "(null)", "none", "-999.25", "-9999"})
 _DELIMITERS = (";", "\t", "|", ",")
 
@@ -156,8 +159,18 @@ def header_of(text: str, path: Path) -> Rows | None:
     if not kept:
         return None
     delimiter = _delimiter(kept[0][1])
-    cells = [cell.strip() for cell in next(csv.reader(io.StringIO(kept[0][1]), delimiter=delimiter))]
+    cells = _cells(path, *kept[0], delimiter)
     return Rows(path, [cells], [kept[0][0]], delimiter)
+
+
+def _cells(path: Path, number: int, line: str, delimiter: str) -> list[str]:
+    """Cut a line into its cells; refuse one that no table has."""
+    if line.count(delimiter) > MOST_CELLS:
+        raise TableError(f"has over {MOST_CELLS} cells; this is no table of a well", file=path, line=number)
+    try:
+        return [cell.strip() for cell in next(csv.reader(io.StringIO(line), delimiter=delimiter))]
+    except csv.Error as error:
+        raise TableError(f"can't be cut into cells: {error}", file=path, line=number) from None
 
 
 def _filled_lines(text: str) -> list[tuple[int, str]]:
@@ -167,10 +180,13 @@ def _filled_lines(text: str) -> list[tuple[int, str]]:
 
 
 def _split(path: Path) -> Rows:
+    fault = no_file(path, LARGEST)
+    if fault is not None:
+        raise TableError(f"{fault}; the case file names it as a table", file=path)
     try:
         text = decode(path.read_bytes())
     except OSError as error:
-        reason = "is missing" if isinstance(error, FileNotFoundError) else f"can't be read ({error.strerror})"
+        reason = f"can't be read ({error.strerror})"
         raise TableError(f"{reason}; the case file names it as a table", file=path) from None
     kept = _filled_lines(text)
     if not kept:
@@ -178,7 +194,7 @@ def _split(path: Path) -> Rows:
     delimiter = _delimiter(kept[0][1])
     cells, lines = [], []
     for number, line in kept:
-        row = [cell.strip() for cell in next(csv.reader(io.StringIO(line), delimiter=delimiter))]
+        row = _cells(path, number, line, delimiter)
         if any(row):
             cells.append(row)
             lines.append(number)

@@ -9,7 +9,7 @@ from dataclasses import dataclass, field
 from pathlib import Path
 
 from forensics import units
-from forensics.errors import TableError, UnitError
+from forensics.errors import TableError, UnitError, no_file
 from forensics.logs.packed import UNPACK_ERRORS, open_bytes
 from forensics.logs.witsml_log import sniff
 from forensics.logs.xml_walk import walk
@@ -84,7 +84,9 @@ class Element:
 
 
 def is_xml(path: Path) -> bool:
-    """Tell whether a table of the case is XML; a file that can't be read is none."""
+    """Tell whether a table of the case is XML; what can't be read as a file is none."""
+    if no_file(path) is not None:
+        return False
     try:
         with open_bytes(path) as file:
             return sniff(path, file.read(256))

@@ -169,7 +169,7 @@ SAME = {
     "wrapped_with_comments.las": FIRST,
 }
 REFUSED = {
-    "no_such_file.csv": "does not exist",
+    "no_such_file.csv": "is missing",
     "empty.csv": "empty",
     "header_alone.csv": "no rows of data",
     "one_row.csv": "two or more",
