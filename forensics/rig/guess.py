@@ -90,6 +90,8 @@ def _full_drag(judged: Judged, kind: str, facts: Facts, block_weight: Estimate) 
     sign = -1.0 if kind == "slack_off" else 1.0
     drag = sign * (readings.value - judged.base[middle] - block_weight.value)
     kept = drag >= _SLIDING_SHARE * ndimage.maximum_filter1d(drag, _NEIGHBOURS)
+    if not kept.any():  # every reading lies on the wrong side of the weight without drag
+        return np.full(len(judged.base), np.nan)
     return np.interp(facts.signals.time, facts.signals.time[middle[kept]], drag[kept])
 
 

@@ -15,6 +15,7 @@ import csv
 import datetime as dt
 import json
 import math
+import os
 import sys
 from concurrent.futures import ProcessPoolExecutor
 from dataclasses import replace
@@ -41,6 +42,9 @@ from pipelines.progress import Progress
 ABOUT = ("incident", "cause", "present", "work", "episode", "kind", "alone", "hours", "others", "error")
 NAMES = tuple(measure.name for measure in MEASURES)
 
+#: Analyses side by side.
+WORKERS = int(os.environ.get("WORKERS", "2"))
+
 #: An episode this long before or after the truth's time is still the incident's [s].
 CLOSE = 60.0
 
@@ -61,8 +65,9 @@ def measure(folder: Path) -> dict[str, object]:
     }
     try:
         found = analyse(load_case(next(folder.glob("*.toml"))), Progress(quiet=True))
-    except InputError as error:
-        return row | {"error": str(error)[:200]}
+    except Exception as error:  # one bad run must not stop a thousand
+        kind = "" if isinstance(error, InputError) else "fault of the program: "
+        return row | {"error": f"{kind}{error!r}"[:200]}
     times = [(stamp(s["start"]), stamp(s["end"])) for s in truth["spans"] if s["cause"] == truth["cause"]]
     times = times or [(stamp(truth["start"]), stamp(truth["end"]))]
     telling = [e for e in found.episodes if not is_routine(e)]
@@ -90,7 +95,7 @@ def measure_all(root: Path, out: Path) -> None:
         writer = csv.DictWriter(file, (*ABOUT, *NAMES), lineterminator="\n")
         if not done:
             writer.writeheader()
-        with ProcessPoolExecutor(2) as pool:
+        with ProcessPoolExecutor(WORKERS) as pool:
             for row in pool.map(measure, folders, chunksize=4):
                 writer.writerow(row)
                 file.flush()
@@ -100,7 +105,8 @@ def measure_all(root: Path, out: Path) -> None:
 def read_signs(path: Path) -> list[dict[str, str]]:
     """Rows of a table of measured incidents."""
     with path.open(newline="") as file:
-        return list(csv.DictReader(file))
+        rows = {row["incident"]: row for row in csv.DictReader(file)}
+    return list(rows.values())
 
 
 def main(arguments: list[str]) -> None:

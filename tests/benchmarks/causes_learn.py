@@ -27,7 +27,7 @@ CAUSES = tuple(cause.value for cause in Cause)
 FOLDS = 5
 
 #: Pull of the powers towards the middle one, in nats per incident at a distance of one.
-PULL = 0.02
+PULL = 0.04
 LEAST_DOUBT = 0.02
 
 
