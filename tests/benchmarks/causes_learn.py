@@ -18,7 +18,7 @@ from scipy.optimize import minimize
 
 from forensics.episodes.causes.measures import MEASURES
 from forensics.episodes.causes.names import Cause
-from forensics.episodes.causes.strengths import USUAL_POWER, shares
+from forensics.episodes.causes.strengths import USUAL_POWER, log_ratios
 
 Floats = NDArray[np.float64]
 Ints = NDArray[np.int64]
@@ -66,8 +66,7 @@ def ratios(table: Table, rows: Ints, counts: list[Floats]) -> Floats:
     """Log likelihood ratios at power one, shape (rows, measurements, causes)."""
     out = np.zeros((len(rows), len(MEASURES), len(CAUSES)))
     for j, measure in enumerate(MEASURES):
-        share = shares(measure, counts[j])
-        log = np.log(share / share.mean(axis=0))
+        log = log_ratios(measure, counts[j])
         known = table.bins[rows, j] >= 0
         out[known, j] = log[:, table.bins[rows[known], j]].T
     return out

@@ -75,6 +75,7 @@ SIGNATURES = (
     (Cause.BUCKLING, {
         "kind of episode": KIND["helical buckling"], "load ratio": 2.5, "share lost to buckling": 0.7,
         "chance over the draws": 0.99, "weight answered at the bit": 0.1, "how it ended": 2.0,
+        "time helical": 900.0, "time hard to turn": 0.0, "distance off bottom": 0.0, "torque peak": 1.0,
     }),
     (Cause.FRICTION, {
         "kind of episode": KIND["drag"], "calibrated friction": 0.15, "drag going up": 1.5, "torque": 1.2,
@@ -113,7 +114,7 @@ SIGNATURES = (
     }),
     (Cause.STALL, {
         "kind of episode": KIND["torque"], "differential pressure": 3.5, "slowest drilling": 0.0,
-        "drilling rate": 0.05, "activity": float(Activity.DRILL_ROTATE), "torque peak": 2.5,
+        "drilling rate": 0.05, "torque peak": 2.5,
         "distance off bottom": 0.0,
     }),
     (Cause.SENSOR, {

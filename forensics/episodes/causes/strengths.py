@@ -39,8 +39,11 @@ MOST = 20.0
 #: From this many simulated incidents on the trade rule is not named as an origin.
 MANY = 50
 
+#: From this many to one on a trade rule is firm: learned ratios don't go against it.
+FIRM = 1.2
+
 #: What speaks more weakly than this many to one is left unsaid.
-LEAST = 1.03
+LEAST = 1.01
 
 TRADE = "trade rule, from memory"
 
@@ -101,11 +104,20 @@ def shares(measure: Measure, counts: Floats) -> Floats:
     return (counts + RULE_WORTH * ruled) / (counts.sum(axis=1, keepdims=True) + RULE_WORTH)
 
 
+def log_ratios(measure: Measure, counts: Floats) -> Floats:
+    """Give logs of likelihood ratios at power one, shape (causes, bins).
+
+    Where the counts and a firm trade rule point opposite ways nothing is said: a simulator has its own
+    habits, and so has the trade.
+    """
+    share = shares(measure, counts)
+    ratio, rule = np.log(share / share.mean(axis=0)), np.log(rules_of(measure))
+    return np.where((np.abs(rule) > np.log(FIRM)) & (rule * ratio < 0.0), 0.0, ratio)
+
+
 def weights_of(measure: Measure, counts: Floats, power: float) -> Floats:
     """Give logs of likelihood ratios, shape (causes, bins), raised to a power and capped at `MOST` to one."""
-    share = shares(measure, counts)
-    ratio = np.log(share / share.mean(axis=0))
-    weights = np.clip(power * ratio, -np.log(MOST), np.log(MOST))
+    weights = np.clip(power * log_ratios(measure, counts), -np.log(MOST), np.log(MOST))
     return np.where(np.abs(weights) < np.log(LEAST), 0.0, weights)
 
 

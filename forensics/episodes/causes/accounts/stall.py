@@ -15,7 +15,6 @@ ACCOUNT = Account(
         "drilling rate": (2.5, 1.5, 0.7, 0.5, 0.5),
         "torque peak": (0.5, 0.9, 1.3, 1.8, 2.2),
         "torque held at standstill": (0.6, 0.9, 1.4, 1.8, 1.8),
-        "activity": (1.0, 0.2, 2.5, 2.5, 0.2, 0.2, 0.4, 0.1, 0.1, 0.6, 0.4),
         "distance off bottom": (2.5, 0.8, 0.2, 0.1, 0.1),
         "how it ended": (0.7, 1.6, 0.8),
     },

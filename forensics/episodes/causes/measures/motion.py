@@ -6,9 +6,7 @@ import numpy as np
 
 from forensics.episodes.catalogue import Kind
 from forensics.episodes.causes.measures.base import FEWEST, NAN, Measure, Subject, named
-from forensics.rig.view import Activity
 
-DOING = tuple(a.word.replace("_", " ") for a in Activity)
 ENDS = ("by itself", "as the string was raised", "as the string turned")
 
 #: Standing still is looked for this long before an episode, and ends at most this long before it [s].
@@ -17,11 +15,6 @@ SHORTLY = 120.0
 
 #: Tries at the same depth lie within this [m].
 SAME_PLACE = 3.0
-
-
-def doing(s: Subject) -> float:
-    """Tell what the rig was doing, as a number of `DOING`."""
-    return float(next(a for a in Activity if a.word == s.episode.activity))
 
 
 def lasted(s: Subject) -> float:
@@ -120,7 +113,6 @@ def tries(s: Subject) -> float:
 
 
 MEASURES = (
-    Measure("activity", doing, named(DOING), "the rig's activity was {}", "strip", "word", DOING),
     Measure("duration", lasted, (40.0, 120.0, 400.0, 1200.0), "it lasted {}", "strip", "time"),
     Measure(
         "stood still before",
