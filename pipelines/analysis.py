@@ -16,6 +16,7 @@ from forensics.episodes.groups import are_many, load_clustering
 from forensics.episodes.material import Material
 from forensics.episodes.onsets import with_onsets
 from forensics.episodes.pipe import pipe_tolls
+from forensics.episodes.travel import travel_of, with_free_length
 from forensics.findings import Findings
 from forensics.friction.byhand import as_readings
 from forensics.friction.calibrate import calibrate
@@ -32,6 +33,7 @@ from forensics.replay.moments import critical_load, profiles
 from forensics.replay.places import place_numbers
 from forensics.replay.ready import block_zero, ready
 from forensics.replay.run import Replay, replay
+from forensics.replay.springs import springs
 from forensics.report.scene import main_episodes
 from forensics.rig.absent import absent_channels, idle_channels
 from forensics.rig.activity import refine_activity
@@ -170,6 +172,7 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
         told = tell(material, weighed)
         episodes = tuple(_placed(e, made, material) for e in told.episodes)
     with progress.stage("profiles", "taking load profiles"):
+        episodes = _with_travel(episodes, made, material)
         mains = main_episodes(episodes)
         taken = profiles(made, [episode.peak for episode in mains])
         peaks = {episode.id: profile for episode, profile in zip(mains, taken, strict=True)}
@@ -206,6 +209,18 @@ def _placed(episode: Episode, made: Replay, material: Material) -> Episode:
     at = place_numbers(made, row, md, episode.peak_compression.value)
     episode = replace(episode, critical_load=critical_load(made, row, md))
     return with_onsets(episode, at, material.case.criteria, material.system)
+
+
+def _with_travel(
+    episodes: tuple[Episode, ...], made: Replay, material: Material
+) -> tuple[Episode, ...]:
+    """Tell how far down the string was free in the episodes in which it may have hung."""
+    moves = {episode.id: travel_of(material, episode) for episode in episodes}
+    told = {name: move for name, move in moves.items() if move is not None}
+    taken = profiles(made, [move.row for move in told.values()])
+    for (name, move), profile in zip(tuple(told.items()), taken, strict=True):
+        told[name] = with_free_length(move, springs(made, profile, float(move.sense)))
+    return tuple(replace(e, travel=told[e.id]) if e.id in told else e for e in episodes)
 
 
 def _remarks(material: Material) -> tuple[str, ...]:

@@ -82,6 +82,41 @@ class CauseView:
 
 
 @dataclass(frozen=True)
+class Travel:
+    """How the hookload went with the block in the move that led into an episode.
+
+    Parameters
+    ----------
+    row : int
+        Last row of the part measured.
+    sense : int
+        +1 set down, -1 picked up.
+    travel, change : float
+        Block travel over that part [m], and what the hookload changed by [N].
+    stiffness, stiffness_sigma : float
+        Slope of hookload against travel at its middle, and its standard error [N/m].
+    softening, softening_sigma : float
+        Part of the slope lost from the part's beginning to its end, and its standard error: a solid stop has
+        none, buckling grows softer as weight is added.
+    free_length : Estimate or None
+        Depth at which a string of that stiffness is held, friction's share in it [m].
+    elastic_length : float
+        The same with friction left out: the trade's free length [m].
+    """
+
+    row: int
+    sense: int
+    travel: float
+    change: float
+    stiffness: float
+    stiffness_sigma: float
+    softening: float
+    softening_sigma: float
+    free_length: Estimate | None = None
+    elastic_length: float = float("nan")
+
+
+@dataclass(frozen=True)
 class Episode:
     """One episode; times in s since 1970 UTC, depths in m, forces in N, SI throughout.
 
@@ -122,6 +157,7 @@ class Episode:
     onsets: str = ""
     onsets_beyond: str = ""
     onsets_drop: float = float("nan")
+    travel: Travel | None = None
     bit_load: Estimate | None = None
     ends: tuple[Estimate, Estimate] | None = None
     probability_range: tuple[float, float] = (float("nan"), float("nan"))

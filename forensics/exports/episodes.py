@@ -7,7 +7,7 @@ import datetime as dt
 from collections.abc import Mapping
 from pathlib import Path
 
-from forensics.episodes.catalogue import Episode, Kind
+from forensics.episodes.catalogue import Episode, Kind, Travel
 from forensics.estimate import Estimate
 from forensics.exports.stamps import number, stamp
 from forensics.findings import Findings
@@ -25,7 +25,15 @@ ESTIMATES: Mapping[str, tuple[str, float, int]] = {
 RESIDUALS: Mapping[str, Kind] = {"peak_drag_residual_kN": Kind.DRAG, "peak_torque_residual_kNm": Kind.TORQUE}
 ENDS = ("low", "high")
 # What came to the columns later with its interval, and what stood there without one.
-LATER = ("bit_load_kN",)
+LATER = ("bit_load_kN", "free_length_m")
+# Slope of hookload against block travel in the move that led into the episode, and how much of it was lost.
+TRAVEL = (
+    "stiffness_kN_per_m",
+    "stiffness_error_kN_per_m",
+    "softening",
+    "softening_error",
+    "elastic_length_m",
+)
 BOUNDED = ("top_md_m", "bottom_md_m", "probability")
 COLUMNS = (
     "id",
@@ -50,6 +58,7 @@ COLUMNS = (
     "onsets_beyond",
     *(f"{name}{end}" for name in (*RESIDUALS, *LATER) for end in ("", *(f"_{end}" for end in ENDS))),
     *(f"{name}_{end}" for name in BOUNDED for end in ENDS),
+    *TRAVEL,
 )
 
 
@@ -94,11 +103,23 @@ def episode_row(episode: Episode, tz: dt.tzinfo) -> dict[str, Cell]:
     for name, kind in RESIDUALS.items():
         row |= _cells(name, episode.peak_residual if episode.kind is kind else None, 1e3, 3)
     row |= _cells("bit_load_kN", episode.bit_load, 1e3, 3)
+    travel = episode.travel
+    row |= _cells("free_length_m", None if travel is None else travel.free_length, 1.0, 1)
+    row |= dict.fromkeys(TRAVEL) if travel is None else _slope(travel)
     unknown = (float("nan"), float("nan"))
     ends = [unknown if end is None else (end.low, end.high) for end in episode.ends or (None, None)]
     for name, bounds, decimals in zip(BOUNDED, (*ends, episode.probability_range), (2, 2, 4), strict=True):
         row |= {f"{name}_{end}": number(value, decimals) for end, value in zip(ENDS, bounds, strict=True)}
     return {name: row[name] for name in COLUMNS}
+
+
+def _slope(travel: Travel) -> dict[str, Cell]:
+    """Lay out the slope of a move."""
+    values = (
+        (travel.stiffness / 1e3, 2), (travel.stiffness_sigma / 1e3, 2), (travel.softening, 3),
+        (travel.softening_sigma, 3), (travel.elastic_length, 1),
+    )  # fmt: skip
+    return {name: number(value, places) for name, (value, places) in zip(TRAVEL, values, strict=True)}
 
 
 def _cells(name: str, estimate: Estimate | None, scale: float, decimals: int) -> dict[str, Cell]:

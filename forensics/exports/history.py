@@ -99,6 +99,8 @@ COLUMNS = (
     "peak_load_ratio_low",
     "peak_load_ratio_high",
     "wob_bit_margin_kN",
+    "wob_witness_kN",
+    "wob_witness_error_kN",
 )
 
 
@@ -121,6 +123,7 @@ def _measured(findings: Findings, rows: slice) -> dict[str, pa.Array]:
 
 def _reconstructed(findings: Findings, rows: slice) -> dict[str, pa.Array]:
     loads = findings.loads
+    witness = loads.witness
     without = np.isnan(loads.bit_load[rows])
     bit_low, bit_high = band(findings.draws, "bit_load", loads.bit_load, rows)
     ratio_low, ratio_high = band(findings.draws, "peak_ratio", loads.peak_ratio, rows)
@@ -134,6 +137,8 @@ def _reconstructed(findings: Findings, rows: slice) -> dict[str, pa.Array]:
         "basis": _words(loads.basis[rows], [b.word for b in Basis], missing=without),
         "drag_residual_kN": _numbers(loads.drag_residual[rows], KILO),
         "torque_residual_kNm": _numbers(loads.torque_residual[rows], KILO),
+        "wob_witness_kN": _numbers(_or_absent(witness and witness.load, loads.bit_load)[rows], KILO),
+        "wob_witness_error_kN": _numbers(_or_absent(witness and witness.sigma, loads.bit_load)[rows], KILO),
         "wob_bit_low_kN": _numbers(bit_low, KILO),
         "wob_bit_high_kN": _numbers(bit_high, KILO),
         "peak_load_ratio_low": _numbers(np.maximum(ratio_low, 0.0)),

@@ -19,6 +19,7 @@ from forensics.exports.friction import friction_content
 from forensics.exports.pipe import pipe_content, slack_off_content
 from forensics.exports.stamps import number, stamp
 from forensics.exports.text import write_json
+from forensics.exports.witness import witness_content
 from forensics.findings import Findings
 from forensics.logs.table import FileRecord, Reason
 from forensics.logs.zone import tzinfo_of
@@ -72,6 +73,7 @@ def summary_content(findings: Findings) -> dict[str, Any]:
         "quality": _quality(findings),
         "friction": friction_content(findings),
         "rate_law": _rate_law(findings),
+        "witness": witness_content(findings),
         "episodes": [
             {
                 **row,

@@ -17,6 +17,7 @@ from forensics.report.sections import (
     overview,
     pipe,
     run,
+    witness,
 )
 from forensics.report.words import Show
 
@@ -32,6 +33,7 @@ SECTIONS = (
     pipe.describe,
     flips.describe,
     calibration.describe,
+    witness.describe,
     episodes.describe_tables,
     account.describe,
     method.describe,

@@ -8,7 +8,7 @@ import pytest
 
 from forensics.episodes.catalogue import Kind
 from forensics.estimate import Estimate
-from forensics.exports.episodes import episode_row, write_episodes
+from forensics.exports.episodes import TRAVEL, episode_row, write_episodes
 
 # From the contract, section 3, word for word.
 CONTRACT = [
@@ -52,6 +52,8 @@ def test_columns_begin_with_the_contracts(rows):
         "critical_load_kN",
         "onsets",
         "onsets_beyond",
+        *(f"free_length_m{end}" for end in ("", "_low", "_high")),
+        *TRAVEL,
         *(f"{name}{end}" for name in RESIDUALS for end in ("", "_low", "_high")),
     }
 

@@ -46,6 +46,8 @@ def test_columns_are_the_contracts(written):
         "wob_bit_limit_kN",
         *(f"{name}_{end}{unit}" for name, unit in BANDS for end in ("low", "high")),
         "wob_bit_margin_kN",
+        "wob_witness_kN",
+        "wob_witness_error_kN",
     ]
 
 

@@ -60,14 +60,6 @@ def words(findings):
     return " ".join(element.text for element in section.elements if element.form == "text")
 
 
-def test_a_downhole_weight_is_held_against_the_reconstruction(findings):
-    assert "downhole" not in words(findings)
-    told = words(with_channel(findings, downhole_wob=findings.loads.bit_load - 7e3))
-    assert "is 7.00 kN above it (median)" in told
-    off = replace(findings, rig=replace(findings.rig, on_bottom=findings.rig.on_bottom & False))
-    assert "none with the bit on bottom" in words(with_channel(off, downhole_wob=findings.loads.bit_load))
-
-
 def test_the_log_s_mud_is_held_against_the_case_s(findings):
     told = words(with_channel(findings, mud_density=np.full(len(findings.log), 1250.0)))
     assert "Mud density in the log is 1.25 g/cm³ (median); loads rest on that of the case, 1.32 g/cm³" in told

@@ -21,7 +21,7 @@ def describe(scene: Scene) -> Section:
     elements += [Text(text) for text in _open(scene)]
     elements += [_residuals(scene), parameter_table(scene), tare_table(scene)]
     elements += recorded.tables(scene)
-    elements += [Text(text) for text in (_downhole(scene), _mud(scene)) if text]
+    elements += [Text(text) for text in (_mud(scene),) if text]
     return Section("fit", "How far the model fits", tuple(elements))
 
 
@@ -95,25 +95,6 @@ def parameter_table(scene: Scene) -> Table:
     )
     return Table(
         "What else the readings were fitted with", columns, tuple(rows), note, "Nothing.", dense=True
-    )
-
-
-def _downhole(scene: Scene) -> str:
-    """Hold the reconstructed bit load against a downhole one, where the log has it."""
-    found, show = scene.findings, scene.show
-    measured = found.log.get("downhole_wob")
-    if measured is None:
-        return ""
-    rows = found.rig.on_bottom & np.isfinite(measured) & np.isfinite(found.loads.bit_load)
-    if not rows.any():
-        return "The log has a downhole weight on bit, but none with the bit on bottom."
-    off = found.loads.bit_load[rows] - measured[rows]
-    middle, wide = float(np.median(off)), float(np.quantile(np.abs(off - np.median(off)), 0.9))
-    return (
-        "The log has a downhole weight on bit, which the reconstruction does not use: over "
-        f"{count(int(rows.sum()), 'sample')} on bottom the reconstructed bit load is "
-        f"{show.value(abs(middle), 'force')} {'above' if middle >= 0.0 else 'below'} it (median), and nine "
-        f"in ten samples lie within {show.value(wide, 'force')} of that."
     )
 
 

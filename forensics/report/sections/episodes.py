@@ -29,6 +29,7 @@ from forensics.report.sections.causes import anchor, cause_table
 from forensics.report.sections.cautions import for_episode
 from forensics.report.sections.first import RESIDUALS, episode_numbers, rotation_sentence
 from forensics.report.sections.pipe import stress_table
+from forensics.report.sections.witness import over_episode, travel_sentence
 from forensics.report.words import count, duration, fixed, plain
 
 TABLE_ROWS = 200
@@ -112,6 +113,8 @@ def summary(scene: Scene, episode: Episode) -> str:
         sentences += slack_off_sentence(scene, episode)
     if episode.note:
         sentences.append(episode.note[0].upper() + episode.note[1:].rstrip("."))
+    said = (travel_sentence(scene, episode), over_episode(scene, episode))
+    sentences += [sentence for sentence in said if sentence]
     if episode.cause:
         sentences.append(cause_sentence(episode))
     return ". ".join(s.rstrip(".") for s in sentences) + "."
