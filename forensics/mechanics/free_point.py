@@ -38,8 +38,8 @@ def give_along(lengths: ArrayLike, give: ArrayLike, fade: ArrayLike) -> Floats:
 
     Examples
     --------
-    >>> give_along([1000.0, 1000.0], [1e-9, 1e-9], [0.0, 0.0]).tolist()
-    [1e-06, 2e-06]
+    >>> [round(1e6 * give, 9) for give in give_along([1000.0, 1000.0], [1e-9, 1e-9], [0.0, 0.0]).tolist()]
+    [1.0, 2.0]
     """
     lengths, give, fade = (np.asarray(values, dtype=float) for values in (lengths, give, fade))
     grown = fade * lengths

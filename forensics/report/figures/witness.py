@@ -30,17 +30,18 @@ def cross_plot(scene: Scene) -> Figure:
     both = both[:: max(1, len(both) // MOST_ROWS)]
     x, y = (show.scaled(values[both], "force") for values in (witness.load, witness.by_hookload))
     ax.plot(x, y, linestyle="none", marker=".", markersize=2, color=style.MUTED, alpha=0.35, rasterized=True)
+    widest = float(np.percentile(np.maximum(x, y), 99)) if len(x) else 0.0
     x, y, error = (
         show.scaled([getattr(check, name) for check in witness.slides], "force")
         for name in ("by_witness", "by_hookload", "sigma")
     )
     far = np.abs([check.sigmas for check in witness.slides]) > SIGMAS
-    for rows, colour in ((~far, style.ROTATING), (far, style.PICK_UP)):
+    for rows, colour, fill in ((~far, style.ROTATING, "white"), (far, style.PICK_UP, style.PICK_UP)):
         ax.errorbar(
             x[rows], y[rows], yerr=1.645 * error[rows], linestyle="none", marker="o", markersize=5,
-            mfc="white", color=colour, mew=1.3, elinewidth=0.9, zorder=3,
+            mfc=fill, color=colour, mew=1.3, elinewidth=0.9, zorder=3,
         )  # fmt: skip
-    top = 1.08 * float(max(np.max(x), np.max(y + error), 1.0))
+    top = 1.08 * float(max(np.max(x), np.max(y + error), widest, 1.0))
     ax.plot([0.0, top], [0.0, top], color=style.MUTED, linewidth=0.9)
     ax.annotate("both agree", (0.97 * top, 0.97 * top), ha="right", va="top", fontsize=8, rotation=40)
     ax.set_xlim(0.0, top)

@@ -36,7 +36,7 @@ def sentence(scene: Scene) -> str:
             "Nothing in the log tells the load on the bit a second time: the bit load while sliding rests on "
             "the hookload and on friction alone."
         )
-    heard = " and ".join(response.name for response in witness.responses if response.heard)
+    heard = ", ".join(response.name for response in witness.responses if response.heard)
     whole = overall(witness.slides)
     if whole is None:
         return f"Learned in rotated footage: {heard}. No slide has enough of it to hold the hookload against."
@@ -60,8 +60,8 @@ def sentence(scene: Scene) -> str:
 def _picture(scene: Scene) -> Picture:
     caption = (
         "Bit load in slid footage by hookload alone, at the friction of the weight readings, against the "
-        "bit's own witness. One ring a slide, with its 90 % interval; rings off the line by more than two "
-        "standard errors stand out; dots are rows of the log."
+        "bit's own witness. One ring a slide, with its 90 % interval; filled where more than two "
+        "standard errors off the line; dots are rows of the log."
     )
     alt = "Cross-plot of bit load by hookload against bit load by the bit's own channels, a ring a slide."
     return Picture(lambda: figure.cross_plot(scene), caption, alt, "witness-plot")
