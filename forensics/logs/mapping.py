@@ -13,21 +13,20 @@ from forensics.case import ChannelChoice
 from forensics.channels import BY_NAME, GENERIC_DEPTH, Need
 from forensics.errors import LogError, UnitError, nearest
 from forensics.logs.clock_column import is_time_name
+from forensics.logs.likely import likely_unit, likely_units
 from forensics.logs.naming import split_name
-from forensics.logs.nulls import to_numbers
+from forensics.logs.nulls import find_codes, to_numbers
 from forensics.logs.raw import RawLog
 from forensics.logs.table import SourceColumn
+from forensics.units import show
 
 Floats = NDArray[np.float64]
 Choices = Mapping[str, ChannelChoice]
+Numbers = Mapping[int, tuple[Floats, int]]
 # Channels whose usual name is its unit: "RPM", "GPM".
 _UNIT_IN_NAME = (("rpm", "rotation", "rpm"), ("gpm", "flow", "gpm"), ("lpm", "flow", "L/min"))
-# Units a rig may have meant, likeliest first, for the hint where one is missing or absurd.
-_LIKELY = {
-    "hookload": ("kN", "klbf", "tonnef", "kdaN", "N", "lbf", "kgf", "daN"),
-    "bit_depth": ("m", "ft"),
-}
-_USUAL = {"hookload": (1.5e5, 6.0e6), "bit_depth": (100.0, 12000.0)}
+# Two columns for one channel are the same where they are no further apart than this part of their size.
+_SAME = 0.01
 
 
 @dataclass(frozen=True)
@@ -140,8 +139,9 @@ def map_columns(raw: RawLog, choices: Choices, time_columns: tuple[str, ...]) ->
     for candidate in candidates:
         if candidate not in filled:
             say(candidate.place, None, "every value is missing")
-    picked = _pick(_settle_depth(filled), say)
+    picked, doubts = _pick(_settle_depth(filled), numbers, say)
     mapped = _finish(raw, picked, numbers, account)
+    mapped = replace(mapped, warnings=(*mapped.warnings, *(f"{file}: {words}" for words in doubts)))
     found = {c.channel for c in picked}
     empty = {c.channel: raw.names[c.place] for c in candidates if c not in filled and c.channel not in found}
     return replace(mapped, empty=empty)
@@ -187,9 +187,11 @@ def _settle_depth(found: list[Candidate]) -> list[Candidate]:
     return [bit if c is lone else c for c in found]
 
 
-def _pick(found: list[Candidate], say: Callable[[int, str | None, str], None]) -> list[Candidate]:
-    """Take the best column for each channel."""
-    picked = []
+def _pick(
+    found: list[Candidate], numbers: Numbers, say: Callable[[int, str | None, str], None]
+) -> tuple[list[Candidate], list[str]]:
+    """Take the best column for each channel; say how far the others are from it."""
+    picked, doubts = [], []
     for channel in dict.fromkeys(c.channel for c in found):
         rivals = [c for c in found if c.channel == channel]
         rivals.sort(key=lambda c: (not c.chosen, units.is_blank(c.unit), channels.rank(c.name), c.place))
@@ -198,14 +200,44 @@ def _pick(found: list[Candidate], say: Callable[[int, str | None, str], None]) -
         why = f"{best.why}; preferred to {others}" if others else best.why
         picked.append(Candidate(best.place, best.name, channel, best.unit, why, best.chosen))
         for rival in rivals[1:]:
-            say(rival.place, None, f"{channel} is taken from {best.name!r}")
-    return picked
+            apart = _apart(best, rival, numbers)
+            say(rival.place, None, f"{channel} is taken from {best.name!r}{apart and f': {apart}'}")
+            if apart.startswith("that reads") and not best.chosen and BY_NAME[channel].need is not Need.HELPS:
+                doubts.append(
+                    f"{channel.replace('_', ' ')} is taken from {best.name!r} rather than {rival.name!r}; "
+                    f"{apart}; to take the other, name it under [logs.channels] {channel}"
+                )
+    return picked, doubts
+
+
+def _apart(best: Candidate, rival: Candidate, numbers: Numbers) -> str:
+    """Say how far apart two columns are that could be the same channel; empty where it can't be told."""
+    quantity = BY_NAME[best.channel].quantity
+    values = []
+    for c in (best, rival):
+        data = numbers[c.place][0]
+        try:
+            si = units.to_si(data, "1" if quantity == "dimensionless" else c.unit or "", quantity)
+        except UnitError:
+            return ""
+        values.append(np.where(find_codes(data), np.nan, si))
+    both = np.isfinite(values[0]) & np.isfinite(values[1])
+    if both.sum() < 10:
+        return ""
+    more = (values[1] - values[0])[both]
+    size = float(np.percentile(np.abs(values[0][both]), 90))
+    low, middle, high = (float(q) for q in np.percentile(more, [5, 50, 95]))
+    if max(abs(low), abs(high)) <= _SAME * size:
+        return "the two agree"
+    way = "more" if middle >= 0.0 else "less"
+    spread = " to ".join(show(q, quantity) for q in (low, high))
+    return f"that reads {show(abs(middle), quantity)} {way} at the median, {spread} in nine rows of ten"
 
 
 def _finish(
     raw: RawLog,
     picked: list[Candidate],
-    numbers: Mapping[int, tuple[Floats, int]],
+    numbers: Numbers,
     account: dict[int, SourceColumn],
 ) -> Mapped:
     values: dict[str, Floats] = {}
@@ -249,29 +281,6 @@ def _unit_fault(candidate: Candidate, data: Floats) -> str | None:
     except UnitError as error:
         return f"{error.message}; {likely_unit(candidate.channel, data)}give it under [logs.channels]"
     return None
-
-
-def likely_unit(channel: str, data: Floats) -> str:
-    """Say under which units the values would be usual ones for the channel; empty where none is."""
-    fits = likely_units(channel, data)
-    if not fits:
-        return ""
-    known = data[np.isfinite(data)]
-    top = float(np.percentile(np.abs(known), 95))
-    return f"values near {top:g} would be usual in {' or '.join(fits)}; "
-
-
-def likely_units(channel: str, data: Floats) -> tuple[str, ...]:
-    """Units under which the values would be usual ones for the channel, likeliest first; at most three."""
-    quantity = BY_NAME[channel].quantity
-    known = data[np.isfinite(data)]
-    if len(known) == 0:
-        return ()
-    top = float(np.percentile(np.abs(known), 95))
-    low, high = _USUAL.get(channel, (BY_NAME[channel].plausible[1] * 1e-3, BY_NAME[channel].plausible[1]))
-    names = _LIKELY.get(channel, units.spellings(quantity))
-    fits = [name for name in names if low <= float(units.to_si(top, name, quantity)) <= high]
-    return tuple(fits[:3])
 
 
 def missing_channel(channel: str, raws: list[RawLog]) -> LogError:

@@ -24,8 +24,6 @@ CODES_IF_ABSURD: tuple[float, ...] = (
     9999.0, 9998.0, 9999.25, 9999.99, 99999.0, 999.25, 999.0, 8888.0, 32767.0, -32767.0, -32768.0, 65535.0,
     2147483647.0,
 )  # fmt: skip
-# Ends of a 16-bit count: twice the very same one is a reading that ran into its end.
-SATURATED: tuple[float, ...] = (32767.0, -32767.0, -32768.0, 65535.0)
 # Text for "no value", compared without case and outer blanks.
 WORDS: frozenset[str] = frozenset(
     [
@@ -183,7 +181,7 @@ def find_codes(values: Floats, declared: Iterable[float] = ()) -> NDArray[np.boo
     -------
     ndarray of bool, shape (n,)
         True where the value is a code: one of `CODES` or declared, or one of `CODES_IF_ABSURD`
-        that lies beyond twice the reach of the rest of the column, or one of `SATURATED` met twice.
+        that lies beyond twice the reach of the rest of the column.
     """
     found = np.zeros(len(values), dtype=bool)
     if len(values) == 0:
@@ -195,9 +193,6 @@ def find_codes(values: Floats, declared: Iterable[float] = ()) -> NDArray[np.boo
         # Comparing a whole column costs; most codes lie outside its reach altogether.
         if low <= code + 1e-6 * abs(code) and high >= code - 1e-6 * abs(code):
             found |= np.abs(values - code) <= 1e-6 * abs(code)
-    for code in SATURATED:
-        if low <= code <= high and (end := values == code).sum() > 1:
-            found |= end
     maybe = np.zeros(len(values), dtype=bool)
     for code in CODES_IF_ABSURD:
         if low <= code <= high:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass, field
 
 import numpy as np
@@ -9,6 +10,9 @@ from numpy.typing import NDArray
 
 from forensics.channels import BY_NAME
 from forensics.logs.frozen import FREEZABLE, find_frozen
+from forensics.logs.likely import likely_fix
+from forensics.logs.repeats import find_repeats
+from forensics.logs.saturated import CLIPPED, find_ceiling
 from forensics.logs.slow import fill_between
 from forensics.logs.spikes import COARSE, find_jumps, find_spikes, rule_for
 from forensics.logs.table import Reason, Step
@@ -57,9 +61,12 @@ ZERO_CONTRADICTED = {
 # While the driver runs above its level, a channel below this was labelled with the wrong unit [SI].
 LEAST_WHILE = {
     "torque": ("rpm", 20.0, 100.0),
+    "rpm": ("torque", 3.0e3, 4.0),
     "standpipe_pressure": ("flow_in", 5.0e-3, 2.0e4),
     "flow_in": ("standpipe_pressure", 5.0e6, 1.0e-4),
 }
+# Part of the rows that may repeat the row before in a log sampled as often as it is written.
+REPEATING = 0.4
 CONSTANT_IS_FAULT = ("block_position", "torque", "standpipe_pressure", "wob", "hookload_max")
 _CAUSES = {"hookload": Reason.SPIKE_HOOKLOAD, "bit_depth": Reason.SPIKE_DEPTH}
 
@@ -76,11 +83,14 @@ class Cleaning:
         Channels [SI]; set aside means NaN.
     cause : dict of str to ndarray of int8, shape (n,)
         `Reason` for each sample set aside in hookload and bit depth.
+    read_in : mapping of str to str
+        Units the channels were read in.
     """
 
     time: Floats
     values: dict[str, Floats]
     interval: float
+    read_in: Mapping[str, str] = field(default_factory=dict)
     steps: list[Step] = field(default_factory=list)
     warnings: list[str] = field(default_factory=list)
     cause: dict[str, NDArray[np.int8]] = field(default_factory=dict)
@@ -103,7 +113,9 @@ class Cleaning:
         self.warnings.append(f"{channel.replace('_', ' ')} left out: {why}")
 
 
-def clean(time: Floats, values: dict[str, Floats], interval: float) -> Cleaning:
+def clean(
+    time: Floats, values: dict[str, Floats], interval: float, read_in: Mapping[str, str] | None = None
+) -> Cleaning:
     """Find faults of the samples, in an order in which none hides behind another.
 
     Parameters
@@ -114,13 +126,15 @@ def clean(time: Floats, values: dict[str, Floats], interval: float) -> Cleaning:
         Channels [SI], null codes already NaN.
     interval : float
         Usual sampling interval [s].
+    read_in : mapping of str to str, optional
+        Units the channels were read in, for the fix proposed where one must be wrong.
 
     Returns
     -------
     Cleaning
         The channels with their faults set aside, and the account.
     """
-    work = Cleaning(time, dict(values), interval)
+    work = Cleaning(time, dict(values), interval, read_in or {})
     for channel, reason in (("hookload", Reason.NULL_HOOKLOAD), ("bit_depth", Reason.NULL_DEPTH)):
         missing = ~np.isfinite(values[channel])
         work.cause[channel] = np.where(missing, np.int8(reason), np.int8(0)).astype(np.int8)
@@ -141,6 +155,8 @@ def clean(time: Floats, values: dict[str, Floats], interval: float) -> Cleaning:
         if channel in work.values:
             frozen = find_frozen(channel, work.values, interval)
             work.set_aside(channel, frozen, Reason.FROZEN, "frozen sensor", "one value while the rig moved")
+    _ceilings(work)
+    _repeats(work)
     _fill_slow(work)
     _gaps(work)
     return work
@@ -181,9 +197,10 @@ def _too_small(work: Cleaning) -> None:
             continue
         said = np.abs(data[(drive > running) & np.isfinite(data)])
         if len(said) >= 60 and said.any() and np.percentile(said, 95) < least:
-            quantity = BY_NAME[channel].quantity
-            top = show(float(np.percentile(said, 95)), quantity)
-            work.drop(channel, "absurd unit", f"no more than {top} while {driver} ran: is its unit right?")
+            top = show(float(np.percentile(said, 95)), BY_NAME[channel].quantity)
+            fix = likely_fix(channel, said, work.read_in.get(channel))
+            busy = BY_NAME[driver].meaning
+            work.drop(channel, "absurd unit", f"no more than {top} while there was {busy}; {fix}")
 
 
 def _out_of_range(work: Cleaning) -> None:
@@ -191,11 +208,47 @@ def _out_of_range(work: Cleaning) -> None:
         low, high = BY_NAME[channel].plausible
         with np.errstate(invalid="ignore"):
             outside = (data < low) | (data > high)
-        work.set_aside(
-            channel, outside, Reason.OUT_OF_RANGE, "out of range", f"below {low:g} or above {high:g}"
+        if channel not in {"hookload", "bit_depth"} and _is_most(outside, data):
+            quantity, odd = BY_NAME[channel].quantity, data[outside]
+            middle = show(float(np.median(odd)), quantity)
+            fix = likely_fix(channel, odd, work.read_in.get(channel))
+            work.drop(channel, "no usable value", f"no value is believable, {middle} at the median; {fix}")
+            continue
+        limits = " or above ".join(show(limit, BY_NAME[channel].quantity) for limit in (low, high))
+        work.set_aside(channel, outside, Reason.OUT_OF_RANGE, "out of range", f"below {limits}")
+
+
+def _is_most(outside: Bools, data: Floats) -> bool:
+    """Tell whether most of what a channel shows besides rest is beyond belief."""
+    count = int(outside.sum())
+    return count > 0 and count > 0.5 * int((np.isfinite(data) & (data != 0.0)).sum())
+
+
+def _ceilings(work: Cleaning) -> None:
+    """Say where a channel was cut off at its largest value; the readings stay, as the least they can be."""
+    for channel in CLIPPED:
+        if channel not in work.values or (found := find_ceiling(work.values[channel])) is None:
+            continue
+        top = show(found.value, BY_NAME[channel].quantity)
+        detail = f"held at {top}, its largest value, for up to {found.longest} rows on end"
+        work.steps.append(Step("at its ceiling", found.rows, channel, detail))
+        work.warnings.append(
+            f"{channel.replace('_', ' ')} was {detail}, {found.rows} rows in all: the end of the sensor's "
+            "scale, or a limit of the drive; there it was this much or more"
         )
-        if channel not in {"hookload", "bit_depth"} and not np.isfinite(work.values[channel]).any():
-            work.drop(channel, "no usable value", "no value is believable")
+
+
+def _repeats(work: Cleaning) -> None:
+    """Say how much of the log repeats the row before."""
+    found = find_repeats(work.values, work.values["bit_depth"])
+    if found.share < REPEATING:
+        return
+    share = f"{100.0 * found.share:.0f} % of {found.rows} rows logged while the bit moved"
+    work.steps.append(Step("repeats the row before", found.same, detail=share))
+    work.warnings.append(
+        f"{share} repeat the row before in every mechanical channel: a step-filled record, in truth one "
+        f"reading every {found.stride * work.interval:.0f} s"
+    )
 
 
 def _fill_slow(work: Cleaning) -> None:

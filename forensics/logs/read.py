@@ -19,12 +19,14 @@ from forensics.logs.depth_log import read_depth_logs
 from forensics.logs.depth_witness import hold_against_depth
 from forensics.logs.join import join
 from forensics.logs.lag import find_lags, tell_lags
-from forensics.logs.mapping import Mapped, keep, likely_unit, map_columns, missing_channel, wanted
+from forensics.logs.likely import likely_unit
+from forensics.logs.mapping import Mapped, keep, map_columns, missing_channel, wanted
 from forensics.logs.nulls import find_codes
 from forensics.logs.piece import Piece, interval_of
 from forensics.logs.quality import clean
 from forensics.logs.raw import RawLog
 from forensics.logs.registry import digest, read_raw, require
+from forensics.logs.saturated import find_full_scale
 from forensics.logs.smear import find_smeared
 from forensics.logs.stray import mend_stamps
 from forensics.logs.systems import settle_units
@@ -129,7 +131,8 @@ def _assemble(case: Case, found: _Gathered) -> TimeLog:
     if len(time) < 2:
         raise LogError(f"found {len(time)} row with a stamp; a log needs two or more", file=file)
     logged = values["hookload"]
-    work = clean(time, values, interval)
+    read_in = {c.channel: c.unit for record in found.records for c in record.columns if c.channel and c.unit}
+    work = clean(time, values, interval, read_in)
     reason = work.cause["hookload"].copy()
     lacking = ~np.isfinite(work.values["hookload"])
     depthless = ~np.isfinite(work.values["bit_depth"])
@@ -260,11 +263,11 @@ def _to_piece(raw: RawLog, clock: Clock, mapped: Mapped, with_block: bool) -> tu
         if mapped.garbled.get(channel):
             steps.append(Step("text where a number belongs", mapped.garbled[channel], channel, raw.path.name))
         codes = find_codes(data, raw.nulls_of(columns[channel]))
-        smeared = find_smeared(data, codes)
-        for name, where in (("null code", codes), ("smeared null", smeared)):
+        smeared, full = find_smeared(data, codes), find_full_scale(data)
+        for name, where in (("null code", codes & ~full), ("smeared null", smeared), ("saturated", full)):
             if where.any():
                 steps.append(Step(name, int(where.sum()), channel, raw.path.name))
-        gone = codes | smeared
+        gone = codes | smeared | full
         kept = np.where(gone, np.nan, data) if gone.any() else data
         if channel in NEEDED:
             _check_size(raw, channel, kept, mapped, with_block)

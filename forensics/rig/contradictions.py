@@ -144,7 +144,7 @@ def _string(rig: RigView, well: Well) -> str:
     steel = 7850.0
     fitting = steel * (1.0 - ratio * (1.0 - well.fluid.typical / steel))
     hint = "components missing from or wrong in the string table, or a wrong block weight"
-    if 800.0 <= fitting <= 2400.0:
+    if 950.0 <= fitting <= 2400.0:
         muds = [show(density, "density") for density in (fitting, well.fluid.typical)]
         hint = f"a mud of {muds[0]} instead of {muds[1]}, or {hint}"
     return (

@@ -129,3 +129,18 @@ def test_only_columns_that_may_be_needed_are_kept():
     assert keep("Time", chosen)
     assert keep("Weight on Bit kkgf", chosen)
     assert not keep("Gas", chosen)
+
+
+def test_two_hookloads_that_differ_are_told_with_by_how_much():
+    rows = np.arange(200.0)
+    table = pd.DataFrame({0: rows, 1: rows, 2: 120.0 + rows % 7, 3: 118.0 + rows % 7, 4: 120.0 + rows % 7})
+    names, unit = ("TIME", "BDEP", "HKLA", "THKD", "HKL"), "tonnef"
+    log = RawLog(Path("x.csv"), "CSV", names, ("s", "m", unit, unit, unit), table, 2)
+    found = map_columns(log, {}, ("TIME",))
+    whys = {column.column: column.why for column in found.columns}
+    assert "that reads 19.6 kN less at the median" in whys["THKD"]
+    assert "the two agree" in whys["HKL"]
+    (words,) = found.warnings
+    assert "'HKLA' rather than 'THKD'" in words
+    assert "under [logs.channels] hookload" in words
+    assert map_columns(log, {"hookload": ChannelChoice("THKD")}, ("TIME",)).warnings == ()

@@ -87,7 +87,7 @@ def test_torque_in_the_wrong_unit_is_left_out_and_said_so():
     work = clean(time, values, 1.0)
     assert "torque" not in work.values
     assert counts(work)["absurd unit", "torque"] == N
-    assert any("is its unit right?" in warning for warning in work.warnings)
+    assert any("check its unit" in warning for warning in work.warnings)
 
 
 def test_spikes_give_their_reason():

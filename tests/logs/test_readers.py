@@ -84,7 +84,7 @@ def test_a_file_with_bytes_gone_wrong_is_read_or_refused_in_words(kind, name, se
 
 
 def test_missing_file_folder_and_empty_file_are_refused(tmp_path):
-    with pytest.raises(LogError, match="does not exist"):
+    with pytest.raises(LogError, match="is missing"):
         require(tmp_path / "none.csv")
     with pytest.raises(LogError, match="folder"):
         require(tmp_path)
