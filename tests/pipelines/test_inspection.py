@@ -115,7 +115,7 @@ def test_a_draft_replaces_nothing(copy):
         (["case.toml", "time.csv"], "one case file alone"),
         (["hole.csv", "survey.csv"], "is a log"),
         (["time.csv", "hole.csv", "again.csv"], "give one"),
-        (["nowhere.las"], "does not exist"),
+        (["nowhere.las"], "is missing"),
     ],
 )
 def test_wrong_files_are_refused(copy, names, words):
