@@ -265,11 +265,20 @@ def _near_plateau(signals: Signals, plateau: Plateau, string_weight: Floats) -> 
     runs = _bridge(noise.runs_of(near), signals)
     wander = _SLIP_WANDER + noise.NOISE_FACTOR * signals.bit_noise
     gone = np.zeros(len(runs)) if signals.block is None else noise.span_in(signals.block, runs)
-    stays = noise.span_in(signals.path, runs) < np.maximum(wander, _WANDER_SHARE * gone)
-    lasts = signals.time[runs.stop - 1] - signals.time[runs.start] >= _LEAST_STILL - signals.interval
+    # A bit depth bridged from the slips into the next move seems to move in slips already.
+    seen = np.where(signals.read, signals.path, np.nan)
+    stays = noise.span_in(seen, runs) < np.maximum(wander, _WANDER_SHARE * gone)
+    lasts = _lasting(runs, signals) >= _LEAST_STILL
     travels = gone > 1.0 + noise.NOISE_FACTOR * signals.block_noise
     kept = stays & (travels | lasts)
     return noise.rows_of(Runs(runs.start[kept], runs.stop[kept]), len(near))
+
+
+def _lasting(runs: Runs, signals: Signals) -> Floats:
+    """Time each stretch may have lasted: a gap before or after it says nothing against it [s]."""
+    after = np.append(signals.time, signals.time[-1] + signals.interval)[runs.stop]
+    before = np.insert(signals.time, 0, signals.time[0] - signals.interval)[runs.start]
+    return np.maximum(after - signals.time[runs.start], signals.time[runs.stop - 1] - before)
 
 
 def _bridge(runs: Runs, signals: Signals) -> Runs:

@@ -207,14 +207,14 @@ def rows_of(runs: Runs, count: int) -> Bools:
 
 
 def span_in(values: Floats, runs: Runs) -> Floats:
-    """Largest less smallest value within each stretch of a filled channel, shape (k,)."""
+    """Largest less smallest value within each stretch, shape (k,): NaN aside, zero where all are NaN."""
     if not len(runs):
         return np.zeros(0)
     edges = np.column_stack((runs.start, runs.stop)).ravel()
     closed = np.append(values, values[-1])
-    high = np.maximum.reduceat(closed, edges)[::2]
-    low = np.minimum.reduceat(closed, edges)[::2]
-    return high - low
+    high = np.fmax.reduceat(closed, edges)[::2]
+    low = np.fmin.reduceat(closed, edges)[::2]
+    return np.nan_to_num(high - low)
 
 
 def travel_since(mask: Bools, values: Floats) -> Floats:

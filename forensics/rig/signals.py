@@ -50,6 +50,8 @@ class Signals:
         One standard deviation of every channel the log has.
     weighed : ndarray of bool
         Rows with a hookload read nearby, so that it may bear witness.
+    read : ndarray of bool
+        Rows with a bit depth of their own: the others' is bridged.
     missing : ndarray of bool
         Rows too far from any hookload or bit depth to know anything.
     """
@@ -62,6 +64,7 @@ class Signals:
     block: Floats | None
     noise: dict[str, float]
     weighed: Bools
+    read: Bools
     missing: Bools
 
     @property
@@ -111,17 +114,18 @@ def read_signals(log: TimeLog) -> Signals:
     block = log.get("block_position")
     block = None if block is None else noise.fill(block)
     bit = np.where(log.used, log.values["bit_depth"], np.nan)
-    bit = noise.fill(bit if np.isfinite(bit).any() else log.values["bit_depth"])
-    read = np.isfinite(log.values["hookload"]).astype(np.float64)
+    bit = bit if np.isfinite(bit).any() else log.values["bit_depth"]
+    weighed = np.isfinite(log.values["hookload"]).astype(np.float64)
     return Signals(
         time=log.time,
         interval=log.interval,
-        bit=bit,
-        path=_path(bit, block, log.time),
+        bit=noise.fill(bit),
+        path=_path(noise.fill(bit), block, log.time),
         hookload=noise.fill(log.values["hookload"]),
         block=block,
         noise=levels,
-        weighed=noise.running_mean(read, noise.samples_in(10.0, log.interval)) > 0.5,
+        weighed=noise.running_mean(weighed, noise.samples_in(10.0, log.interval)) > 0.5,
+        read=np.isfinite(bit),
         missing=far_from_data(log, "hookload", LONGEST_UNWEIGHED) | far_from_data(log, "bit_depth"),
     )
 

@@ -236,6 +236,36 @@ def test_a_liner_without_hole_depth_takes_the_hole_from_its_table(tools, well):
     assert not view.on_bottom.any()
 
 
+def test_a_bit_depth_lost_in_slips_does_not_end_them(tools, well):
+    stand = tools.Stand(well, bit=2300.0, bottom=2600.0, height=2.0).trip(4, 0.3)
+    log, true = tools.log(stand), stand.truth()
+    inside = np.flatnonzero(true == Activity.CONNECTION)
+    last = inside[np.append(np.diff(inside) > 1, True)][1:-1]
+    depth = log.values["bit_depth"].copy()
+    for row in last:
+        depth[row - 30 : row + 25] = np.nan  # bridged: the bit seems to move before the string does
+    view = see(tools, changed(log, bit_depth=depth), well)
+    early = np.concatenate([np.arange(row - 60, row - 30) for row in last])
+    assert view.slips[early].mean() > 0.98
+
+
+def test_slips_cut_short_by_a_gap_are_slips(tools, drilled, full, well):
+    log = tools.log(drilled)
+    begin = np.flatnonzero((full[1:] == Activity.CONNECTION) & (full[:-1] != Activity.CONNECTION))[1] + 1
+    end = begin + np.flatnonzero(full[begin:] != Activity.CONNECTION)[0]
+    early, late = cut(log, 0, begin + 14), cut(log, end, len(log.time))
+    whole = replace(
+        early,
+        time=np.append(early.time, late.time),
+        values={name: np.append(v, late.values[name]) for name, v in early.values.items()},
+        hookload_logged=np.append(early.hookload_logged, late.hookload_logged),
+        used=np.append(early.used, late.used),
+        reason=np.append(early.reason, late.reason),
+    )
+    view = see(tools, whole, well)
+    assert view.slips[begin + 4 : begin + 14].all()
+
+
 def test_a_stand_counted_on_in_slips_does_not_end_them(tools, drilled, full, well):
     log = tools.log(drilled)
     inside = np.flatnonzero(full == Activity.CONNECTION)
