@@ -3,6 +3,7 @@
     python tests/benchmarks/bench_causes.py measure FOLDER SIGNS.csv   # analyse every incident below FOLDER
     python tests/benchmarks/bench_causes.py learn SIGNS.csv            # rewrite the package's strengths
     python tests/benchmarks/bench_causes.py judge SIGNS.csv            # print how well they do on it
+    python tests/benchmarks/bench_causes.py thin SIGNS.csv OUT.csv.gz  # keep a few hundred for the tests
 
 An incident is a folder with a case file and a `truth.json` (see `sample_logs`). Its episode is the gravest
 non-routine one that overlaps a span in which the cause was at work; where there is none the incident is
@@ -13,6 +14,8 @@ from __future__ import annotations
 
 import csv
 import datetime as dt
+import gzip
+import io
 import json
 import math
 import os
@@ -21,10 +24,8 @@ from concurrent.futures import ProcessPoolExecutor
 from dataclasses import replace
 from pathlib import Path
 
-sys.path.insert(0, str(Path(__file__).parents[1]))
+sys.path.insert(0, str(Path(__file__).parents[2]))
 
-import causes_judge
-import causes_learn
 
 from forensics.case import load_case
 from forensics.episodes.catalogue import Episode
@@ -38,9 +39,13 @@ from forensics.episodes.material import Material
 from forensics.errors import InputError
 from pipelines.analysis import analyse
 from pipelines.progress import Progress
+from tests.benchmarks import causes_judge, causes_learn
 
 ABOUT = ("incident", "cause", "present", "work", "episode", "kind", "alone", "hours", "others", "error")
 NAMES = tuple(measure.name for measure in MEASURES)
+
+#: Incidents kept for the tests.
+KEPT = 330
 
 #: Analyses side by side.
 WORKERS = int(os.environ.get("WORKERS", "2"))
@@ -102,9 +107,21 @@ def measure_all(root: Path, out: Path) -> None:
     print(f"{len(folders)} incidents measured, {len(done)} were there")
 
 
+def thin(rows: list[dict[str, str]], out: Path) -> None:
+    """Keep every few of the incidents that gave an episode, `KEPT` in all."""
+    telling = [row for row in rows if row["episode"] and row["cause"] in causes_learn.CAUSES]
+    chosen = telling[:: max(len(telling) // KEPT, 1)][:KEPT]
+    text = io.StringIO(newline="")
+    writer = csv.writer(text, lineterminator="\n")
+    writer.writerow((*ABOUT, *NAMES))
+    writer.writerows([row.get(name, "") for name in (*ABOUT, *NAMES)] for row in chosen)
+    out.write_bytes(gzip.compress(text.getvalue().encode(), mtime=0))
+    print(f"{len(chosen)} of {len(telling)} kept")
+
+
 def read_signs(path: Path) -> list[dict[str, str]]:
     """Rows of a table of measured incidents."""
-    with path.open(newline="") as file:
+    with gzip.open(path, "rt", newline="") if path.suffix == ".gz" else path.open(newline="") as file:
         rows = {row["incident"]: row for row in csv.DictReader(file)}
     return list(rows.values())
 
@@ -123,6 +140,9 @@ def main(arguments: list[str]) -> None:
         case ["judge", *tables]:
             rows = [row for table in tables for row in read_signs(Path(table))]
             print(causes_judge.report(rows))
+        case ["thin", *tables, out]:
+            rows = [row for table in tables for row in read_signs(Path(table))]
+            thin(rows, Path(out))
         case _:
             print(__doc__)
 

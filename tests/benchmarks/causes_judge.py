@@ -5,7 +5,6 @@ from __future__ import annotations
 import itertools
 from collections import Counter
 
-import causes_learn as cl
 import numpy as np
 from numpy.typing import NDArray
 from scipy.stats import beta
@@ -13,6 +12,7 @@ from scipy.stats import beta
 from forensics.episodes.causes.measures import MEASURES
 from forensics.episodes.causes.strengths import build, strengths
 from forensics.episodes.causes.weigh import rank
+from tests.benchmarks import causes_learn as cl
 
 Floats = NDArray[np.float64]
 
