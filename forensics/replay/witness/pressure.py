@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
+from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
@@ -37,7 +38,12 @@ class Lesson:
     windows: Windows
     load: Floats
 
-    @property
+    @cached_property
+    def like(self) -> tuple[Bools, Floats]:
+        """Rows with the flow drilled with, and the flow over it; see `like_flow`."""
+        return like_flow(self.log, self.rig)
+
+    @cached_property
     def clear(self) -> Bools:
         """Rows with the pumps on and the bit clear of bottom, shape (n,)."""
         gap = self.rig.hole_depth - self.log.values["bit_depth"]
@@ -64,7 +70,7 @@ def hear_pressure(lesson: Lesson, channel: str) -> Heard | Response:
     pressure = log.get(channel)
     if pressure is None:
         return replace(response, why="not in the log")
-    like, ratio = like_flow(log, rig)
+    like, ratio = lesson.like
     # losses in pipe grow with flow; a motor's part goes with its torque and does not
     lift = ratio**FLOW_EXPONENT if channel == "standpipe_pressure" else np.ones(len(log))
     zero = zero_line(log.time, pressure / lift, lesson.clear & like, LEAST_ZERO_SECONDS)
