@@ -79,7 +79,8 @@ def test_incidents_made_on_the_spot_are_told(tmp_path, monkeypatch):
     from simulator.incident.make import make_incident
 
     rows = []
-    for cause, seed in (("motor stall", 6100), ("differential sticking", 6201), ("differential sticking", 6204)):
+    stuck = "differential sticking"
+    for cause, seed in (("motor stall", 6100), (stuck, 6201), (stuck, 6204)):
         folder = tmp_path / str(seed)
         make_incident(cause, seed, "other", folder)
         rows.append({"episode": "", "error": ""} | bench_causes.measure(folder))
