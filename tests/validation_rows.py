@@ -22,7 +22,18 @@ from field import (
     LBF,
     PSI,
 )
-from forensics.mechanics import buckled, eigen, fatigue, helix, hoisting, lockup, pipe, stress, tool_joint
+from forensics.mechanics import (
+    buckled,
+    eigen,
+    fatigue,
+    helix,
+    hoisting,
+    hydraulics,
+    lockup,
+    pipe,
+    stress,
+    torque,
+)
 from forensics.mechanics.airy_column import exact_column_load
 from forensics.mechanics.columns import Ends, column_load
 from forensics.mechanics.critical import Place, dawson_paslay_1984, he_kyllingstad_1995, wu_juvkam_wold_1993
@@ -149,23 +160,28 @@ def _doglegs() -> float:
     return worst(found, (7.242254, 4.836800, 3.575569, 2.693578))
 
 
-def _spans() -> float:
-    place = Place(DP5_EI, DP5_CLEARANCE, DP5_WEIGHT, math.pi / 2)
-    feet = (30, 60, 90, 120, 500)
-    found = (tool_joint.paslay_bogy_1964(place, length * FOOT) / LBF for length in feet)
-    return worst(found, (43667.93, 43667.93, 39392.18, 38014.12, 38025.96))
-
-
 def _sheaves() -> float:
     lines = (2, 4, 6, 8, 10, 12)
     fast = (count * hoisting.fast_line_factor(1 / 1.04, count) for count in lines)
     return worst(fast, (1.06, 1.102, 1.145, 1.188, 1.233, 1.279))
 
 
-def _torsion() -> float:
-    tube = Tube(5 * INCH, 4.276 * INCH)
-    turned = pipe.twist(14581.51 * FT_LBF, 1000 * FOOT, tube.polar, 11.71e6 * PSI)
-    return worst([turned / (2 * math.pi)], [1.0])
+def _winding() -> float:
+    """Least energy over the turn rate against Chen's onset less what torque takes off it."""
+    onset = math.sqrt(2) * 2 * math.sqrt(DP5_EI * DP5_WEIGHT / DP5_CLEARANCE)
+    found, least = [], []
+    for moment in (5e3, 2e4, 6e4):
+        turn = np.linspace(0.05, 1.0, 200_001)
+        energy = DP5_EI * turn**2 - moment * turn + 2 * DP5_WEIGHT / (DP5_CLEARANCE * turn**2)
+        least.append(energy.min())
+        found.append(onset - float(torque.onset_drop(onset, DP5_EI, moment)) - moment**2 / (16 * DP5_EI))
+    return worst(found, least)
+
+
+def _jets() -> float:
+    area, gpm = 0.3889 * INCH**2, 6.30902e-5
+    thrust = hydraulics.jet_thrust(400 * gpm, 12 * 119.826427, area)
+    return worst([hydraulics.bit_pressure_drop(thrust, area) / PSI, thrust / LBF], [1169, 820])
 
 
 ROWS = (
@@ -207,14 +223,6 @@ ROWS = (
         "validation/test_dawson_paslay_1984",
         1e-6,
         _sinusoidal,
-    ),
-    Row(
-        "Paslay and Bogy 1964",
-        "memory",
-        "sinusoidal load of a pinned length",
-        "validation/test_paslay_bogy_1964",
-        1e-6,
-        _spans,
     ),
     Row(
         "He and Kyllingstad 1995",
@@ -297,25 +305,17 @@ ROWS = (
     Row(
         "Lubinski 1961, API RP 7G",
         "memory",
-        "dog-leg that turning pipe stands; side force on a joint",
+        "dogleg that turning pipe stands",
         "validation/test_lubinski_1961",
         2e-7,
         _doglegs,
     ),
     Row("Lame", "computed", "von Mises at the bore, combined loads", "validation/test_lame", 1e-7, _lame),
     Row(
-        "Torsion factors, web excerpt",
+        "Handbook pages on torsion, stretch and free point",
         "seen",
-        "torque per turn in 1,000 ft, seven pipes",
-        "validation/test_torsion_factors",
-        2e-6,
-        _torsion,
-    ),
-    Row(
-        "Handbook pages on stretch and free point",
-        "seen",
-        "stretch and free length",
-        "validation/test_pipe_stretch",
+        "torque per turn in 1,000 ft, stretch and free length, by the string table's stiffnesses",
+        "validation/test_check_pipe_sections",
         6e-4,
     ),
     Row(
@@ -332,5 +332,35 @@ ROWS = (
         "validation/test_block_and_tackle",
         6e-4,
         _sheaves,
+    ),
+    Row(
+        "Mitchell 1986; Wu and Juvkam-Wold 1993",
+        "memory",
+        "the replay's helical march against the closed form, four inclinations",
+        "mechanics/test_lockup_march",
+        1e-2,
+    ),
+    Row(
+        "Mitchell 1986; Wu and Juvkam-Wold 1993",
+        "memory",
+        "slack-off margin: what more weight set down brings to the bit, and the most that arrives",
+        "replay/test_margin",
+        2e-2,
+    ),
+    Row(
+        "Least energy; Miska and Cunha 1995",
+        "computed, memory",
+        "what torque takes off a helical onset; pitch of a helix under torque",
+        "mechanics/test_torque",
+        2e-5,
+        _winding,
+    ),
+    Row(
+        "Applied Drilling Engineering, 1986",
+        "memory",
+        "worked nozzles: pressure drop of the bit and thrust of its jets",
+        "validation/test_applied_drilling_engineering",
+        1e-3,
+        _jets,
     ),
 )

@@ -29,7 +29,10 @@ What is not met, or not used, and why:
 - Lubinski's 1.94 is met at length 7.93 only: strings of other lengths have other loads (`columns`).
 - A ratio factor of one web tutorial is 2e-4 off its own coordinates; two displacements elsewhere have swapped
   or hand-rounded digits; they are left out, as are four misprints of a copy of API RP 7G's table 2.
-- Block efficiencies of a textbook table from 12 lines on do not follow its own sheave ratio; left out.
+- Block efficiencies of a textbook table from 12 lines on do not follow its own sheave ratio, and three collar
+  weights of a handbook (9-1/2 and 9-3/4 in) are 1 lb/ft off their own sections; left out.
+- What no function here reckons is not checked: other survey methods than minimum curvature, mechanical
+  specific energy, pinned spans, side force limits of a joint, power at the hook.
 - Weights of drill pipe with tool joints are table values and can't be derived to better than 4 %: the tally's
   own weights are taken.
 - Mitchell's unloading limit, 1.414 F_DP, is 3.2 % above our own, 1.3704, which two methods give.

@@ -100,26 +100,6 @@ def permissible_dogleg(
     return 2 * stands / (modulus * tube.outer_diameter) * np.tanh(reach) / reach
 
 
-def dogleg_for_side_force(force: ArrayLike, tension: ArrayLike, half_joint: float = HALF_JOINT) -> Floats:
-    """Give the hole curvature in which a joint is pressed on the wall with a given force.
-
-    Parameters
-    ----------
-    force : array_like
-        On one joint; API RP 7G's limit for wear is 2,000 lbf [N].
-    tension : array_like
-        Above zero [N].
-    half_joint : float
-        Half the distance between joints [m].
-
-    Returns
-    -------
-    ndarray
-        ``force / (2 half_joint tension)`` [rad/m].
-    """
-    return np.asarray(force, dtype=float) / (2 * half_joint * np.asarray(tension, dtype=float))
-
-
 def exposure(
     bending: ArrayLike, mean_stress: ArrayLike, revolutions: ArrayLike, grade: str = "E75"
 ) -> Floats:

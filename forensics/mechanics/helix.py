@@ -139,31 +139,5 @@ def shortening(force: ArrayLike, stiffness: ArrayLike, clearance: ArrayLike) -> 
     return np.asarray(clearance) ** 2 * _compression(force) / (4 * np.asarray(stiffness, float))
 
 
-def shortening_under_weight(
-    force: ArrayLike, stiffness: ArrayLike, clearance: ArrayLike, w_cos: ArrayLike
-) -> Floats:
-    """Give the shortening of the whole helix above a loaded end, ``r^2 F^2 / (8 EI w)``.
-
-    Parameters
-    ----------
-    force : array_like
-        Effective compression at the lower end, falling off upwards at `w_cos` to zero [N].
-    stiffness, clearance : array_like
-        As in `contact_force`.
-    w_cos : array_like
-        Buoyed weight per length along the hole, above zero [N/m].
-
-    Returns
-    -------
-    ndarray
-        [m]
-
-    Notes
-    -----
-    Without friction, and helical all the way up to the neutral point, as Lubinski took it.
-    """
-    return shortening(force, stiffness, clearance) * _compression(force) / (2 * np.asarray(w_cos, float))
-
-
 def _compression(force: ArrayLike) -> Floats:
     return np.maximum(np.asarray(force, dtype=float), 0.0)

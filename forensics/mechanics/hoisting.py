@@ -59,27 +59,6 @@ def dead_line_to_hookload(efficiency: float, lines: int, direction: str, *, turn
     return _series(ratio, lines) * (ratio if turning else 1.0)
 
 
-def indicated_over_true(efficiency: float, lines: int, direction: str) -> float:
-    """Give what an uncorrected weight indicator shows over the true load on the hook.
-
-    Parameters
-    ----------
-    efficiency, lines, direction
-        As in `dead_line_to_hookload`, dead-line sheave fixed.
-
-    Returns
-    -------
-    float
-        [-]; below one while hoisting, above one while lowering.
-
-    Examples
-    --------
-    >>> round(indicated_over_true(1 / 1.02, 12, "up"), 3), round(indicated_over_true(1 / 1.02, 12, "down"), 3)
-    (0.895, 1.112)
-    """
-    return lines / dead_line_to_hookload(efficiency, lines, direction)
-
-
 def fast_line_factor(efficiency: float, lines: int) -> float:
     """Give the tension of the fast line over the load on the hook while hoisting.
 
@@ -99,25 +78,7 @@ def fast_line_factor(efficiency: float, lines: int) -> float:
     ----------
     API RP 9B, "Application, care, and use of wire rope for oil field service".
     """
-    return dead_line_factor(efficiency, lines) * (1 / efficiency) ** lines
-
-
-def dead_line_factor(efficiency: float, lines: int) -> float:
-    """Give the tension of the dead line over the load on the hook while hoisting.
-
-    Parameters
-    ----------
-    efficiency : float
-        Of one sheave [-].
-    lines : int
-        Lines strung.
-
-    Returns
-    -------
-    float
-        [-]
-    """
-    return 1 / dead_line_to_hookload(efficiency, lines, "up")
+    return (1 / efficiency) ** lines / dead_line_to_hookload(efficiency, lines, "up")
 
 
 def block_efficiency(efficiency: float, lines: int) -> float:

@@ -84,6 +84,30 @@ def true_axial(tube: Tube, loads: PipeLoads) -> Floats:
     return np.asarray(loads.tension, dtype=float) + pressed - np.asarray(loads.outside) * tube.outside_area
 
 
+def lame(tube: Tube, diameter: float, inside: ArrayLike, outside: ArrayLike) -> tuple[Floats, Floats]:
+    """Give radial and hoop stress in a thick tube under pressure, after Lame.
+
+    Parameters
+    ----------
+    tube : Tube
+        The body.
+    diameter : float
+        Where in the wall, from the bore to the outside, above zero [m].
+    inside, outside : array_like
+        Pressures [Pa].
+
+    Returns
+    -------
+    tuple of ndarray
+        Radial and hoop stress, tension positive [Pa].
+    """
+    inside, outside = np.asarray(inside, dtype=float), np.asarray(outside, dtype=float)
+    bore, rim = tube.inner_diameter**2, tube.outer_diameter**2
+    mean = (inside * bore - outside * rim) / (rim - bore)
+    rest = (inside - outside) * bore * rim / ((rim - bore) * diameter**2)
+    return mean - rest, mean + rest
+
+
 def combined_stress(tube: Tube, loads: PipeLoads) -> Floats:
     """Give the greatest von Mises stress of the body under all its loads together.
 
@@ -115,7 +139,7 @@ def combined_stress(tube: Tube, loads: PipeLoads) -> Floats:
     for diameter in (tube.inner_diameter, tube.outer_diameter):
         if diameter == 0:
             continue  # a solid bar has no bore
-        radial, hoop = _lame(tube, diameter, loads)
+        radial, hoop = lame(tube, diameter, loads.inside, loads.outside)
         bent = np.abs(np.asarray(loads.moment, dtype=float)) * diameter / (2 * tube.inertia)
         shear = np.asarray(loads.torque, dtype=float) * diameter / (2 * tube.polar)
         points += [von_mises(axial + side * bent, hoop, radial, shear) for side in (1.0, -1.0)]
@@ -183,12 +207,3 @@ def judge(component: Component, loads: PipeLoads, pipe_class: str = "new") -> Pi
         most_pull = np.fmin(most_pull, tension_left(tube, strength, turn))
         most_turn = np.fmin(most_turn, torsional_yield(tube, strength, pull))
     return PipeUse(stress, use, rated, most_pull - pull, most_turn - turn)
-
-
-def _lame(tube: Tube, diameter: float, loads: PipeLoads) -> tuple[Floats, Floats]:
-    """Radial and hoop stress at a diameter [Pa]."""
-    inside, outside = np.asarray(loads.inside, dtype=float), np.asarray(loads.outside, dtype=float)
-    bore, rim = tube.inner_diameter**2, tube.outer_diameter**2
-    mean = (inside * bore - outside * rim) / (rim - bore)
-    rest = (inside - outside) * bore * rim / ((rim - bore) * diameter**2)
-    return mean - rest, mean + rest

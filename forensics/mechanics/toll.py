@@ -142,11 +142,15 @@ def toll(string: String, loads: MomentLoads, pipe_class: str = "new", joints: bo
         acting = PipeLoads(tension, moment, torque[some], inside[some], outside[some])
         judged = judge(part, acting, pipe_class if part.kind in PIPE else "new")
         bending = moment * part.od / (2 * part.inertia)
-        grade = "S135" if (part.yield_strength or 0.0) >= STRONG else "E75"
-        turn = exposure(bending, tension / part.area, 1.0, grade)
+        turn = exposure(bending, tension / part.area, 1.0, fatigue_grade(part))
         margins = (judged.tension_margin, judged.torque_margin)
         columns[:, some] = (bending, judged.stress, judged.use, judged.rated_use, *margins, turn)
     return Toll(*columns)
+
+
+def fatigue_grade(part: Component) -> str:
+    """Name the grade whose fatigue formula a component goes by: "E75", or "S135" where its yield says so."""
+    return "S135" if (part.yield_strength or 0.0) >= STRONG else "E75"
 
 
 def worst_by_component(component: NDArray[np.int64], values: Floats) -> dict[int, tuple[int, float]]:

@@ -1,16 +1,13 @@
-"""What tool joints do: they hold the pipe off the wall, draw bending to themselves, and split it into spans.
+"""What tool joints do: they hold the pipe off the wall and draw bending to themselves.
 
 The critical loads take the pipe as even, with the clearance of the joint or of the body. Why that is allowed
 for ordinary drill pipe can be seen here: half a wave (some 12 m) is longer than a joint (some 9.6 m), so that
 each half wave has a joint to touch the wall with, and the body between joints sags by a few millimetres where
-it would have to sag by twenty to touch. Pipe held at every joint (`paslay_bogy_1964`) would bear more; joints
-slide along the wall and do not hold.
+it would have to sag by twenty to touch. Joints slide along the wall and hold nothing: pipe pinned at each
+would bear more.
 
 References
 ----------
-Paslay, P. R. and Bogy, D. B. (1964), "The stability of a circular rod laterally constrained to be in contact
-with an inclined circular cylinder", J. Appl. Mech. 31 (form from memory, high).
-
 Paslay, P. R. and Cernocky, E. P. (1991), "Bending stress magnification in constant curvature doglegs with
 impact on drillstring and casing", SPE 22547 (from memory).
 """
@@ -22,32 +19,7 @@ import math
 import numpy as np
 from numpy.typing import ArrayLike
 
-from forensics.mechanics.critical import Place
 from forensics.mechanics.eigen import Floats
-
-
-def paslay_bogy_1964(place: Place, length: float) -> Floats:
-    """Give the sinusoidal load of a straight inclined pipe of finite length, pinned at both ends.
-
-    Parameters
-    ----------
-    place : Place
-        Curvature is not used.
-    length : float
-        Between the pins [m].
-
-    Returns
-    -------
-    ndarray
-        ``(pi^2 EI / L^2) (n^2 + k / n^2)`` with ``k = w sin I L^4 / (pi^4 EI r)``, least over whole n [N].
-    """
-    stiffness = np.asarray(place.stiffness, dtype=float)
-    side = np.asarray(place.weight, dtype=float) * np.sin(place.inclination)
-    k = side * length**4 / (math.pi**4 * stiffness * np.asarray(place.clearance, dtype=float))
-    # the least of n^2 + k/n^2 lies at the fourth root of k: a whole number beside it
-    low = np.maximum(np.floor(k**0.25), 1.0)
-    waves = np.minimum(low**2 + k / low**2, (low + 1) ** 2 + k / (low + 1) ** 2)
-    return math.pi**2 * stiffness / length**2 * waves
 
 
 def bending_factor(tension: ArrayLike, stiffness: ArrayLike, half_joint: float) -> Floats:

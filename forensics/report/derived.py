@@ -11,6 +11,7 @@ from numpy.typing import NDArray
 
 from forensics.episodes.catalogue import Episode
 from forensics.mechanics.fatigue import HALF_JOINT
+from forensics.mechanics.helix import bending_stress
 from forensics.mechanics.tool_joint import sag
 from forensics.well.string import PIPE, buoyed_weight
 
@@ -86,11 +87,7 @@ def helix_bending_stress(findings: Findings, episode: Episode, compression: floa
     Returns
     -------
     float
-        OD r F / (4 I) [Pa], NaN where the place isn't known.
-
-    References
-    ----------
-    Lubinski, A., Althouse, W. S. and Logan, J. L. (1962), Helical buckling of tubing sealed in packers.
+        By `mechanics.helix` [Pa], NaN where the place isn't known.
     """
     bit = findings.log.get("bit_depth")
     if bit is None or not math.isfinite(episode.peak_md) or not math.isfinite(bit[episode.peak]):
@@ -101,7 +98,7 @@ def helix_bending_stress(findings: Findings, episode: Episode, compression: floa
     diameter = float(well.hole.diameter_at(episode.peak_md)[0])
     contact = part.contact_diameter(findings.case.criteria.clearance)
     clearance = max((diameter - contact) / 2.0, 0.0)
-    return part.od * clearance * compression / (4.0 * part.inertia)
+    return float(bending_stress(compression, clearance, part.od, part.inertia))
 
 
 def sag_between_joints(findings: Findings, episode: Episode) -> tuple[float, float] | None:

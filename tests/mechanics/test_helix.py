@@ -32,14 +32,6 @@ def test_contact_balances_axial_load_and_bending():
     np.testing.assert_allclose(helix.contact_force(FORCE, EI, GAP), balance, rtol=1e-12)
 
 
-def test_shortening_under_weight_is_the_integral():
-    w = 250.0
-    top = 4e5 / w
-    x = np.linspace(0, top, 20001)
-    total = np.trapezoid(helix.shortening(4e5 - w * x, EI, GAP), x)
-    assert helix.shortening_under_weight(4e5, EI, GAP, w) == pytest.approx(total, rel=1e-8)
-
-
 @pytest.mark.parametrize("force", [0.0, -1e5])
 def test_tension_makes_no_helix(force):
     assert helix.pitch(force, EI) == np.inf

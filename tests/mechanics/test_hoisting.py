@@ -10,7 +10,6 @@ from forensics.mechanics import hoisting
 def test_free_sheaves_share_the_load_evenly():
     for direction in ("up", "down"):
         assert hoisting.dead_line_to_hookload(1.0, 8, direction) == 8
-        assert hoisting.indicated_over_true(1.0, 8, direction) == 1
     assert hoisting.block_efficiency(1.0, 8) == 1
 
 
@@ -30,12 +29,14 @@ def test_a_turning_dead_line_sheave_adds_one_factor():
 
 def test_line_tensions_add_up_to_the_load():
     e, lines = 0.96, 8
-    dead = hoisting.dead_line_factor(e, lines)
+    dead = 1 / hoisting.dead_line_to_hookload(e, lines, "up")
     assert sum(dead / e**k for k in range(lines)) == pytest.approx(1.0)
+    assert hoisting.fast_line_factor(e, lines) == pytest.approx(dead / e**lines)
 
 
 def test_sheaves_narrow_the_apparent_gap():
-    up, down = (hoisting.indicated_over_true(0.98, 12, way) for way in ("up", "down"))
+    # an indicator scaled for still sheaves shows lines over this, times the load
+    up, down = (12 / hoisting.dead_line_to_hookload(0.98, 12, way) for way in ("up", "down"))
     assert up < 1 < down
 
 

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import math
 
-import numpy as np
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
@@ -57,14 +56,3 @@ def test_torsional_yield_is_von_mises_in_shear_within_rounding():
     # 0.577 is API's rounding of 1/sqrt(3), hence 1e-3
     torque = float(pipe.torsional_yield(BODY, YIELD))
     assert pipe.von_mises(0, 0, 0, torque / BODY.polar_modulus) == pytest.approx(YIELD, rel=1e-3)
-
-
-def test_uniform_pressure_is_no_distortion():
-    radial, hoop = pipe.bore_stresses(BODY, 3e7, 3e7)
-    assert hoop == pytest.approx(-3e7)
-    assert pipe.von_mises(-3e7, hoop, radial) == pytest.approx(0.0, abs=1.0)
-
-
-def test_stretch_and_free_length_are_inverse():
-    long = pipe.stretch(1e5, [1000.0, 2000.0], BODY.area, 206.8e9)
-    np.testing.assert_allclose(pipe.free_length(long, 1e5, BODY.area, 206.8e9), [1000.0, 2000.0])

@@ -322,13 +322,14 @@ def test_constant_channels_run(tools, drilled, well):
 
 
 def test_sheaves_are_taken_out_without_a_step(tools, drilled, well):
-    from forensics.mechanics.hoisting import indicated_over_true
+    from forensics.mechanics.hoisting import dead_line_to_hookload
 
     log, n, e = tools.log(drilled, noise=0.0), 10, 0.985
     speed = np.gradient(drilled.columns()["block"])
     sign = np.where(speed > 1e-3, 1, np.where(speed < -1e-3, -1, 0))
     last = np.maximum.accumulate(np.where(sign != 0, np.arange(len(sign)), 0))
-    shown = np.where(sign[last] > 0, indicated_over_true(e, n, "up"), indicated_over_true(e, n, "down"))
+    up, down = (n / dead_line_to_hookload(e, n, way) for way in ("up", "down"))
+    shown = np.where(sign[last] > 0, up, down)
     view = see(
         tools, changed(log, hookload=log.values["hookload"] * shown), well, lines=n, sheave_efficiency=e
     )

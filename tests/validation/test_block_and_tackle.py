@@ -28,7 +28,7 @@ ROLLER = 1 / 1.04
 )
 def test_engineers_notebook(lines, fast, dead):
     assert lines * hoisting.fast_line_factor(ROLLER, lines) == pytest.approx(fast, abs=6e-4)
-    assert lines * hoisting.dead_line_factor(ROLLER, lines) == pytest.approx(dead, abs=6e-4)
+    assert lines / hoisting.dead_line_to_hookload(ROLLER, lines, "up") == pytest.approx(dead, abs=6e-4)
 
 
 def test_h_7_h_8_h_9_rope_practice():
@@ -87,6 +87,7 @@ def test_h_18_agrees_with_the_notebook():
     ],
 )
 def test_indicated_over_true(lines, ratio, up, down):
-    # block-and-tackle algebra, after *Pipeline Rules of Thumb Handbook*, p. 6; computed
-    assert hoisting.indicated_over_true(1 / ratio, lines, "up") == pytest.approx(up, abs=6e-4)
-    assert hoisting.indicated_over_true(1 / ratio, lines, "down") == pytest.approx(down, abs=6e-4)
+    # what an indicator scaled for still sheaves shows: block-and-tackle algebra, after *Pipeline Rules of
+    # Thumb Handbook*, p. 6; computed
+    assert lines / hoisting.dead_line_to_hookload(1 / ratio, lines, "up") == pytest.approx(up, abs=6e-4)
+    assert lines / hoisting.dead_line_to_hookload(1 / ratio, lines, "down") == pytest.approx(down, abs=6e-4)

@@ -107,6 +107,12 @@ def test_torsion_factor(row):
     assert found == pytest.approx(published, abs=6e-3)
 
 
+def test_p47_turns_of_a_torque():
+    """[S20]: 24,000 ft.lbf turn 1,000 ft of 5 in 19.50 lb/ft pipe 1.64592 times."""
+    factor = 2 * math.pi * 11.71e6 * DP5.polar / INCH**4 / 144e3
+    assert 24e3 / factor == pytest.approx(1.64592, abs=6e-6)
+
+
 COLLARS = {
     "P-50": (5.0, 1.5, 61), "P-51": (6.0, 1.5, 90), "P-52": (6.5, 1.5, 107), "P-53": (6.75, 1.5, 116),
     "P-54": (8.0, 1.5, 165), "P-55": (9.0, 1.5, 210), "P-56": (10.0, 1.5, 261), "P-57": (11.0, 1.5, 317),
@@ -144,6 +150,9 @@ def test_p80_steel_by_three_names():
     assert parse_quantity("65.5 ppg", "density") == pytest.approx(7848.63, abs=6e-3)
     assert parse_quantity("490 lb/ft3", "density") == pytest.approx(7849.05, abs=6e-3)
     assert parse_quantity("30e6 psi", "stress") == pytest.approx(206.84272e9, rel=1e-7)
+    # P-81
+    assert parse_quantity("29e6 psi", "stress") == pytest.approx(199.94796e9, rel=1e-7)
+    assert parse_quantity("206.8 GPa", "stress") / PSI == pytest.approx(29.993804e6, rel=1e-7)
 
 
 def hanging(components, mud):
@@ -223,6 +232,13 @@ def test_p94_free_pipe_of_the_reference_pipe():
     found = DP5.axial * 24 * INCH / (30e3 * LBF) / FT
     assert found == pytest.approx(10549.19, abs=6e-3)
     assert found == pytest.approx(10547.0, rel=2.5e-4)
+
+
+def test_p95_stretch_of_a_string_by_its_weight():
+    """[S22]: L T / (735,000 W), inches and feet; W is taken as 3.4 lb/ft per in2 of steel."""
+    bar = tube(2.0 * math.sqrt(23.52 / 3.4 / math.pi), 0.0)
+    found = 8500 * FT * 230e3 * LBF / bar.axial / INCH
+    assert found == pytest.approx(113.1, rel=6e-4)  # 735,000 has three digits
 
 
 IODP = (

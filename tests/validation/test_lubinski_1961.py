@@ -5,7 +5,7 @@ from __future__ import annotations
 import pytest
 
 from field import DEG_PER_100FT, INCH, LBF, PSI
-from forensics.mechanics.fatigue import HALF_JOINT, dogleg_for_side_force, permissible_dogleg
+from forensics.mechanics.fatigue import HALF_JOINT, permissible_dogleg
 from forensics.mechanics.pipe import Tube
 from forensics.mechanics.tool_joint import bending_factor
 
@@ -23,10 +23,4 @@ def test_p_91_permissible_dogleg(pull, degrees):
     allowed = found * float(bending_factor(pull * LBF, 30e6 * PSI * PIPE.inertia, HALF_JOINT))
     stress = allowed * DEG_PER_100FT * 30e6 * PSI * PIPE.outer_diameter / 2
     assert 10000 * PSI < stress < 19500 * PSI
-
-
-def test_t_15_side_force_on_a_joint():
-    # 108000 F / (pi L T) with L in inches: 2,000 lbf at 200,000 lbf, half joint 180 in
-    found = float(dogleg_for_side_force(2000 * LBF, 200e3 * LBF)) / DEG_PER_100FT
     assert pytest.approx(180 * INCH) == HALF_JOINT
-    assert found == pytest.approx(1.9098593, rel=1e-7)

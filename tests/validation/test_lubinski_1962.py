@@ -1,8 +1,8 @@
 """Helical buckling of tubing: Lubinski, Althouse and Logan, J. Pet. Technol., June 1962.
 
 The worked example's totals (49.7, 165.2 and 115.5 in) were seen there; its pipe, casing and oil were seen in
-a homework variant of it. Only the parts that this program computes (helical shortening, elastic stretch,
-pitch, stress) come from it here; piston, ballooning and heat are written out in the test.
+a homework variant of it. Only the parts that this program computes (helical shortening, pitch, stress) come
+from it here; elastic stretch, piston, ballooning and heat are written out in the test.
 """
 
 from __future__ import annotations
@@ -38,8 +38,15 @@ OIL = 141.5 / 161.5 * 62.43 / 1728  # 30 API oil [lb/in3], water at 62.43 lb/ft3
 def slack_off() -> float:
     force = 20000 * LBF
     weight = 0.484307 * LBF / INCH
-    squeeze = float(pipe.stretch(force, LENGTH, TUBING.area, E))
-    return squeeze + float(helix.shortening_under_weight(force, EI, GAP, weight))
+    return force * LENGTH / (E * TUBING.area) + under_weight(force, weight)
+
+
+def under_weight(force: float, weight: float) -> float:
+    """Shortening of the helix from a loaded end up to where the weight has taken the load off [m].
+
+    The load falls evenly, and what a length shortens by goes with it: the mean is half of that at the end.
+    """
+    return float(helix.shortening(force, EI, GAP)) / 2 * force / weight
 
 
 def test_b_l1_slack_off():
@@ -55,6 +62,7 @@ def test_b_l4_section_numbers():
     assert TUBING.inertia / INCH**4 == pytest.approx(1.610904, rel=1e-6)
     assert pytest.approx(1.6095 * INCH) == GAP
     force = 66313.40 * LBF
+    assert force / (0.640052 * LBF / INCH) / FOOT == pytest.approx(8633.85, rel=1e-6)  # neutral point
     assert helix.pitch(force, EI) / INCH == pytest.approx(239.878, rel=1e-5)
     stress = helix.bending_stress(force, GAP, TUBING.outer_diameter, TUBING.inertia)
     assert stress / PSI == pytest.approx(47621.2, rel=1e-5)
@@ -68,7 +76,7 @@ def test_b_l2_l3_pressures_and_temperature():
     piston = -120000 / (30e6 * 1.812027) * ((packer - inside) * rise_in - (packer - outside) * rise_out)
     # the pressures' force on the packer bends the tubing: compression Ap (dPi - dPo) in 0.640052 lb/in
     force, weight = packer * (rise_in - rise_out) * LBF, 0.640052 * LBF / INCH
-    bent = -float(helix.shortening_under_weight(force, EI, GAP, weight)) / INCH
+    bent = -under_weight(force, weight) / INCH
     rise_density = 15 / 231 - OIL
     swell = -(0.3 / 30e6) / (ratio - 1) * (rise_density * 120000**2 + 2 * (5000.0 - ratio * 1000.0) * 120000)
     cooling = 6.9e-6 * -20 * 120000
