@@ -126,6 +126,8 @@ def _inspect_case(path: Path) -> Inspection:
     from forensics.logs.read import read_time_logs
     from forensics.report.inspection import Inspection
     from forensics.rig.contradictions import contradictions
+    from forensics.rig.travel import match_travel
+    from forensics.rig.understand import understand_rig
     from forensics.well.model import load_well
     from pipelines.fingerprints import fingerprints
 
@@ -135,7 +137,8 @@ def _inspect_case(path: Path) -> Inspection:
     well = _tried(lambda: load_well(case), refusals)
     if well is not None:
         _tried(lambda: check(case, log, well), refusals)
-    doubts = contradictions(log, well) if well is not None else ()
+    rig = None if well is None else _tried(lambda: understand_rig(match_travel(log), well, case), [])
+    doubts = () if well is None else contradictions(log, well, rig)
     remarks = (*doubts, *unused_settings(case))
     return Inspection(case, log, well, fingerprints(case, log), tuple(refusals), remarks)
 

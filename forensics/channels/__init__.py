@@ -59,6 +59,7 @@ _PATTERNS = tuple(
         (r"active.*vol|pit.*vol|tank.*vol|^pvt", "pit_volume"),
         (r"^rop|penetration", "rop"),
         (r"toolface|^tface|^gtf|^tf$", "toolface"),
+        (r"incl?.*cont|cont.*incl?|^inclin", "inclination"),
     )
 )
 # Words that make a name something else than the channel's reading.

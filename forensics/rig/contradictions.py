@@ -6,11 +6,15 @@ settles it.
 
 from __future__ import annotations
 
+from collections.abc import Iterator
+
 import numpy as np
 from numpy.typing import NDArray
 
 from forensics.channels import BY_NAME
 from forensics.logs.table import TimeLog
+from forensics.rig.misread import misread_rate, misread_toolface
+from forensics.rig.steady import Steady
 from forensics.rig.view import RigView
 from forensics.units import show
 from forensics.well.model import Well
@@ -29,7 +33,12 @@ MUD_OFF = 0.04
 WEIGHT_OFF = 0.06
 #: Fewest readings any of this is said of.
 FEWEST = 100
-FEWEST_WEIGHTS = 5
+FEWEST_WEIGHTS = 3
+#: The mean of a pick-up and a slack-off weight is off the rotating weight by this part at most (as found on
+#: simulated wells with friction up to 0.5), and the two belong together within this depth [m].
+MIDDLE_OFF, BESIDE = 0.2, 50.0
+#: Steel, and the muds that are met [kg/m3]; inclination from which a survey can be at fault [rad].
+STEEL, MUDS, LEANS = 7850.0, (950.0, 2400.0), np.radians(10.0)
 #: Ratios that only a mistaken unit makes, and how near a ratio must be.
 UNIT_RATIOS = {
     "torque": {"ft.lbf and N.m": 1.3558, "kN.m and daN.m": 100.0, "ten kN.m and kN.m": 10.0},
@@ -60,6 +69,7 @@ def contradictions(log: TimeLog, well: Well, rig: RigView | None = None) -> tupl
         A sentence each, with its numbers and its likely cause.
     """
     found = [_inclination(log, well), _vertical_depth(log, well), _mud(log, well)]
+    found += [misread_rate(log), misread_toolface(log)]
     if rig is not None:
         found.append(_string(rig, well))
     return (*(words for words in found if words), *_files(log))
@@ -129,28 +139,51 @@ def _mud(log: TimeLog, well: Well) -> str:
 
 
 def _string(rig: RigView, well: Well) -> str:
-    """Hold steady rotating weights against what the string listed weighs in this mud."""
-    steady, block = rig.steady, rig.block_weight
-    if steady is None or not block.determined or block.source == "steady weights":
+    """Hold steady weights against what the string listed weighs in this mud."""
+    block = rig.block_weight
+    if rig.steady is None or not block.determined or block.source == "steady weights":
         return ""
+    for name, allowed, bit, weight in _free_weights(rig.steady):
+        ratios = (weight - block.value) / well.rotating_weight(bit)
+        ratio = float(np.median(ratios))
+        if not np.isfinite(ratio):
+            continue
+        if abs(ratio - 1.0) <= allowed:
+            return ""
+        return (
+            f"The string does not fit the {name}: {len(bit)} of them show {100.0 * ratio:.0f} % of what the "
+            f"string listed weighs in this mud. Likely {_misfit(ratio, well)}."
+        )
+    return ""
+
+
+def _free_weights(steady: Steady) -> Iterator[tuple[str, float, Floats, Floats]]:
+    """Give weights that friction has little part in, the best first: name, tolerance, bit depths, weights."""
     turned = steady.of("rotating")
     deep = turned.bit > 0.5 * np.max(turned.bit, initial=0.0)
-    if deep.sum() < FEWEST_WEIGHTS:
-        return ""
-    own = well.rotating_weight(turned.bit[deep])
-    ratio = float(np.median((turned.value[deep] - block.value) / own))
-    if abs(ratio - 1.0) <= WEIGHT_OFF or not np.isfinite(ratio):
-        return ""
-    steel = 7850.0
-    fitting = steel * (1.0 - ratio * (1.0 - well.fluid.typical / steel))
-    hint = "components missing from or wrong in the string table, or a wrong block weight"
-    if 950.0 <= fitting <= 2400.0:
+    if deep.sum() >= FEWEST_WEIGHTS:
+        yield "rotating weights", WEIGHT_OFF, turned.bit[deep], turned.value[deep]
+    up, down = steady.of("pick_up"), steady.of("slack_off")
+    if len(up.bit) == 0 or len(down.bit) == 0:
+        return
+    apart = np.abs(up.bit[:, None] - down.bit[None, :])
+    beside = apart.argmin(axis=1)
+    good = (apart.min(axis=1) <= BESIDE) & (up.bit > 0.5 * up.bit.max())
+    if good.sum() >= FEWEST_WEIGHTS:
+        middle = 0.5 * (up.value + down.value[beside])
+        yield "means of pick-up and slack-off weights", MIDDLE_OFF, up.bit[good], middle[good]
+
+
+def _misfit(ratio: float, well: Well) -> str:
+    """Name what would make a string weigh this part of what is listed."""
+    causes = ["components missing from or wrong in the string table", "a wrong block weight"]
+    if well.trajectory.inclination.max() > LEANS:
+        causes.append(f"a hole that leans {'more' if ratio < 1.0 else 'less'} than the survey does")
+    fitting = STEEL * (1.0 - ratio * (1.0 - well.fluid.typical / STEEL))
+    if MUDS[0] <= fitting <= MUDS[1]:
         muds = [show(density, "density") for density in (fitting, well.fluid.typical)]
-        hint = f"a mud of {muds[0]} instead of {muds[1]}, or {hint}"
-    return (
-        f"The string does not fit the rotating weights: they show {100.0 * ratio:.0f} % of what the string "
-        f"listed weighs in this mud. Likely {hint}."
-    )
+        causes.insert(0, f"a mud of {muds[0]} instead of {muds[1]}")
+    return f"{', '.join(causes[:-1])} or {causes[-1]}"
 
 
 def _files(log: TimeLog) -> tuple[str, ...]:

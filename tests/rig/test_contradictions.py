@@ -7,6 +7,7 @@ import pytest
 
 from forensics.logs.table import FileRecord, TimeLog
 from forensics.rig.contradictions import contradictions
+from forensics.rig.steady import KINDS
 from forensics.rig.understand import understand_rig
 
 N = 4000
@@ -87,3 +88,19 @@ def test_a_string_lighter_than_listed_is_told(well, drilled, tools, share, told)
     assert bool(words) is told
     if told:
         assert "rotating weights" in words[0]
+
+
+@pytest.mark.parametrize(("share", "told"), [(1.0, False), (0.7, True)])
+def test_where_nothing_turned_pick_ups_and_slack_offs_are_held_against_the_string(
+    well, drilled, tools, share, told
+):
+    log = tools.log(drilled)
+    block = drilled.block_alone
+    view = understand_rig(log, well, tools.case(block_weight=block))
+    steady = view.steady.take(view.steady.kind != KINDS.index("rotating"))
+    steady = replace(steady, value=block + share * (steady.value - block))
+    words = contradictions(log, well, replace(view, steady=steady))
+    assert bool(words) is told
+    if told:
+        assert "means of pick-up and slack-off weights" in words[0]
+        assert "% of what" in words[0]
