@@ -7,6 +7,7 @@ can't tell stays where it was assumed to be, and is said to.
 from __future__ import annotations
 
 from dataclasses import replace
+from functools import partial
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -14,6 +15,7 @@ from numpy.typing import NDArray
 
 from forensics.friction import identifiability
 from forensics.friction.assumptions import HELIX_OWN, build_prior
+from forensics.friction.divide import Scene, divide
 from forensics.friction.heldout import hold_out
 from forensics.friction.outcome import Solved, result
 from forensics.friction.parameters import FIRST
@@ -72,8 +74,11 @@ def calibrate(
     bears = _bears(weights, model)
     pulled = depths(tuple(r for r in weights if SIGNS[r.kind] != 0.0))
     reach = float(np.ptp(pulled)) if len(pulled) else 0.0
-    problem = build_problem(weights, model, build_prior(case, well, rig, bears, reach))
+    prior = partial(build_prior, case, well, rig, reach=reach)
+    problem = build_problem(weights, model, prior(bears))
     problem, found = _solve(problem, depths(weights), model)
+    problem, found, edges = divide(problem, found, Scene(weights, model, float(well.hole.shoe), prior))
+    bears += bears[-1:] * len(edges)
     weights = tuple(replace(r, buckled=bool(b)) for r, b in zip(weights, problem.near, strict=True))
     rotational = fit_rotational(torques, model, float(found.p[FIRST:].mean()))
     after = posterior(problem, found, depths(weights))
@@ -85,7 +90,7 @@ def calibrate(
         if not verdict.told:
             found, after = _hold(problem, depths(weights))
     proof = hold_out(problem, found, depths(weights), rotational)
-    solved = Solved(problem, found, after, verdict, bears, rotational, proof)
+    solved = Solved(problem, found, after, verdict, bears, rotational, proof, edges)
     return result(solved, weights, torques, well, case, rig)
 
 

@@ -88,7 +88,7 @@ def result(
         rotational=rotational.factor if rotational else None,
         readings=weights + torques,
         residuals=np.concatenate(residuals),
-        residual_rms=rms(solved.fit.residuals[solved.fit.heard]),
+        residual_rms=rms(solved.fit.residuals[solved.fit.heard & ~solved.problem.near]),
         draws=draws,
         can_not_tell=_sentences(solved) + (rotational.sentences if rotational else ()),
         weight_scale=_told(solved, SCALE),
@@ -176,6 +176,12 @@ def _sentences(solved: Solved) -> tuple[str, ...]:
         said = "No steady pick-up, slack-off or rotating weight was found: the friction factors are assumed."
         return (said,)
     told = list(solved.verdict.sentences)
+    near = int((problem.near & solved.fit.heard).sum())
+    if near:
+        told.append(
+            f"{near} slack-off weights are of a string near or past its buckling load: they show the helix "
+            "as well as friction, count for less, and are in no error of the fit."
+        )
     signs = set(problem.sign.tolist())
     missing = [name for name, sign in (("pick-up", 1.0), ("slack-off", -1.0)) if sign not in signs]
     if len(missing) == 1:

@@ -154,17 +154,22 @@ def _best_start(problem: Problem) -> Floats:
         within_part = np.zeros(n)
         within_part[n * k // parts : n * (k + 1) // parts] = 1.0
         within_part[problem.sign == 0.0] = 1.0
-        p = start
-        for _ in range(25):
-            before = p
-            here = _standard(problem, p)
-            p = _step(problem, p, within_part * _envelope_weights(here[0], problem.sign), here)
-            if _settled(before, p, problem.prior):
-                break
+        p = follow_envelope(problem, start, within_part)
         size = robust_sigma(_standard(problem, p)[0][problem.sign != 0.0])
         if size < 0.8 * least:  # a part must fit clearly better than the whole to go before it
             best, least = p, size
     return best
+
+
+def follow_envelope(problem: Problem, p: Floats, counts: Floats, rounds: int = 25) -> Floats:
+    """Go from a start to where the readings' lower envelope lies; `counts` (n,) is 1 for those that count."""
+    for _ in range(rounds):
+        before = p
+        here = _standard(problem, p)
+        p = _step(problem, p, counts * _envelope_weights(here[0], problem.sign), here)
+        if _settled(before, p, problem.prior):
+            break
+    return p
 
 
 def robust_sigma(standard: Floats) -> float:

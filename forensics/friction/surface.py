@@ -14,6 +14,8 @@ from typing import Protocol
 import numpy as np
 from numpy.typing import NDArray
 
+from forensics.mechanics.offbottom import Weighed
+
 Floats = NDArray[np.float64]
 
 #: Grid of factors. A capstan of 2 rad of bends is held to 1e-5 of its value by cubics of this step.
@@ -44,6 +46,14 @@ class OffBottom(Protocol):
 
     def above_rotary(self, block: Floats, bit_depth: Floats) -> Floats:
         """Weight of the pipe between rotary and hook [N]."""
+
+    def divided(self, edges: tuple[float, ...]) -> OffBottom:
+        """Cut the open hole into friction sections at depths [m]."""
+
+    def weigh_readings(
+        self, kinds: tuple[str, ...], bit_depth: Floats, factors: tuple[float, ...]
+    ) -> Weighed:
+        """Weights and their slopes against each section's factor, of readings of any kind."""
 
 
 @dataclass(frozen=True)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import copy
 from dataclasses import dataclass, replace
 from pathlib import Path
 from types import SimpleNamespace
@@ -14,6 +15,7 @@ from forensics.estimate import Estimate
 from forensics.friction.assumptions import assumed_factor
 from forensics.friction.calibrate import calibrate
 from forensics.friction.result import Reading
+from forensics.mechanics.offbottom import Weighed
 
 SHOE = 1900.0
 KICK_OFF, BUILT, LAST = 1500.0, 2100.0, np.radians(86.0)
@@ -26,9 +28,11 @@ class PlainString:
     w: float = 260.0
     vary: float = 0.0
     step: float = 60.0
+    edges: tuple = ()
 
-    def string_weight(self, kind, bit_depth, mu_cased, mu_open):
+    def string_weight(self, kind, bit_depth, mu_cased, *mu_open):
         """March from the bit up, every reading at once [N]."""
+        mu_open = mu_open * (len(self.edges) + 1 if len(mu_open) == 1 else 1)
         sign = {"pick_up": 1.0, "slack_off": -1.0, "rotating": 0.0}[kind]
         bit = np.asarray(bit_depth, dtype=float)
         n = int(np.ceil(bit.max() / self.step))
@@ -39,10 +43,32 @@ class PlainString:
             part = np.clip((bit - (i - 1) * h) / h, 0.0, 1.0)
             angle = np.clip((middle - KICK_OFF) / (BUILT - KICK_OFF), 0.0, 1.0) * LAST
             bend = LAST / (BUILT - KICK_OFF) if KICK_OFF < middle < BUILT else 0.0
-            mu = (mu_cased if middle < SHOE else mu_open) * (1.0 + self.vary * np.sin(middle / 25.0))
+            here = mu_open[np.searchsorted(self.edges, middle)]
+            mu = (mu_cased if middle < SHOE else here) * (1.0 + self.vary * np.sin(middle / 25.0))
             contact = np.abs(tension * bend - self.w * np.sin(angle))
             tension = tension + part * h * (self.w * np.cos(angle) + sign * mu * contact)
         return tension
+
+    def divided(self, edges):
+        """Cut the open hole at depths."""
+        other = copy.copy(self)
+        object.__setattr__(other, "edges", tuple(edges))
+        return other
+
+    def weigh_readings(self, kinds, bit_depth, factors):
+        """Weights and slopes by small differences: slow and plain."""
+        bit, kinds = np.asarray(bit_depth, dtype=float), np.array(kinds)
+
+        def weigh(at):
+            out = np.zeros(len(bit))
+            for kind in set(kinds.tolist()):
+                out[kinds == kind] = self.string_weight(kind, bit[kinds == kind], *at)
+            return out
+
+        steps = np.eye(len(factors)) * 1e-4
+        weight = weigh(factors)
+        slopes = np.column_stack([(weigh(np.array(factors) + step) - weight) / 1e-4 for step in steps])
+        return Weighed(weight, slopes, weight)
 
     def torque(self, bit_depth, mu):
         """Torque that grows with the pipe beyond the kick-off [N.m]."""
@@ -157,19 +183,15 @@ def test_slant_well_against_closed_form():
     """Straight slant: drag is mu w L sin I exactly, so nothing is marched on the truth's side."""
     w, angle = 300.0, np.radians(50.0)
 
-    class Slant:
+    class Slant(PlainString):
         """Closed form."""
 
-        def string_weight(self, kind, bit_depth, mu_cased, mu_open):
+        def string_weight(self, kind, bit_depth, mu_cased, mu_open, *_):
             """Weight and drag of a straight string [N]."""
             sign = {"pick_up": 1.0, "slack_off": -1.0, "rotating": 0.0}[kind]
             cased = np.minimum(bit_depth, 1900.0)
             felt = mu_cased * cased + mu_open * (bit_depth - cased)
             return w * (bit_depth * np.cos(angle) + sign * felt * np.sin(angle))
-
-        string_weights = PlainString.string_weights
-        open_length, above_rotary, torque = PlainString().open_length, PlainString().above_rotary, None
-        slack_off_ratio = PlainString().slack_off_ratio
 
     found = calibrate(
         make_readings(Slant(), RUN, TRUTH, noise=0.0), make_well(), make_case(), Slant(), make_rig()
@@ -344,6 +366,7 @@ def test_cost_stays_small_for_many_readings(plain):
         open_length=plain.open_length,
         above_rotary=plain.above_rotary,
         slack_off_ratio=plain.slack_off_ratio,
+        divided=plain.divided,
     )
     readings = make_readings(plain, np.linspace(1000.0, 4500.0, 400), TRUTH)
     check(calibrate(readings, make_well(), make_case(), model, make_rig()))
@@ -441,3 +464,27 @@ def test_gain_tells_how_another_model_would_be_fitted(plain):
     assert found.gain.shape == (3, len(depths))
     assert np.abs(real).max() > 0.002
     assert moved[:2] == pytest.approx(real, abs=0.0005)
+
+
+def test_open_hole_is_cut_where_its_friction_changes(plain):
+    """Planted: 0.24 down to 3000 m, 0.40 below."""
+    truth = plain.divided((3000.0,))
+    readings = make_readings(truth, RUN, (0.22, 0.24, 0.40))
+    found = calibrate(readings, make_well(), make_case(), plain, make_rig())
+    (edge,) = found.edges
+    assert edge == pytest.approx(3000.0, abs=170.0)  # candidates lie that far apart
+    cased, upper, lower = (s.factor for s in found.sections)
+    assert cased.low <= 0.22 <= cased.high
+    assert upper.value == pytest.approx(0.24, abs=0.03)
+    assert lower.value == pytest.approx(0.40, abs=0.03)
+    assert [s.kind for s in found.sections] == ["cased", "open", "open"]
+    assert found.draws.shape == (64, 4)
+    assert found.gain.shape[0] == 4
+
+
+@pytest.mark.parametrize("seed", [1, 2, 3])
+def test_even_friction_is_not_cut(plain, seed):
+    rng = np.random.default_rng(seed)
+    truth = PlainString(vary=0.1)
+    readings = (replace(r, value=r.value + rng.normal(0.0, 1e3)) for r in make_readings(truth, RUN, TRUTH))
+    assert calibrate(tuple(readings), make_well(), make_case(), plain, make_rig()).edges == ()
