@@ -36,8 +36,8 @@ def hold_out(
     Notes
     -----
     Readings of one stand share their errors, so leaving out rows at random would prove nothing. What the
-    fit to all lets go, and strings near buckling, are left out of both errors, so that they speak of the
-    same readings.
+    fit to all lets go, strings near buckling and weights written down by hand are left out of both errors,
+    so that they speak of the same readings.
     """
     label = blocks(bit_depth)
     groups = int(label.max()) + 1 if len(label) else 0
@@ -49,7 +49,7 @@ def hold_out(
         without = fit(problem.take(~out), whole.p)
         foretold, _ = problem.take(out).model(without.p)
         residuals[out] = problem.value[out] - foretold
-    heard = whole.heard & ~problem.near
+    heard = whole.heard & problem.plain
     torque = (float("nan"), float("nan")) if rotational is None else rotational.held_out
     return HeldOut(
         folds=groups,

@@ -88,7 +88,7 @@ def result(
         rotational=rotational.factor if rotational else None,
         readings=weights + torques,
         residuals=np.concatenate(residuals),
-        residual_rms=rms(solved.fit.residuals[solved.fit.heard & ~solved.problem.near]),
+        residual_rms=rms(solved.fit.residuals[solved.fit.heard & solved.problem.plain]),
         draws=draws,
         can_not_tell=_sentences(solved) + (rotational.sentences if rotational else ()),
         weight_scale=_told(solved, SCALE),

@@ -77,6 +77,7 @@ def build_problem(weights: tuple[Reading, ...], model: OffBottom, prior: Prior) 
         pumping=np.array([r.pumping for r in weights], dtype=float),
         hanging=surface.at(np.zeros(2))[0],
         near=np.zeros(len(weights), dtype=bool),
+        rough=np.array([r.by_hand for r in weights], dtype=bool),
         surface=surface,
         prior=prior,
     )

@@ -49,7 +49,8 @@ class Problem:
     `sign` is +1 where more friction lifts the reading (pick-up), -1 where it lowers it (slack-off),
     0 where it does not matter. `sigma` is each reading's own uncertainty [N]. `place` and `when` run from
     -1 to 1 over the readings' depths and times; `pumping` is 1 with pumps on. `hanging` is the string's
-    weight without friction [N]; `near` marks strings near or past their buckling load.
+    weight without friction [N]; `near` marks strings near or past their buckling load, `rough` weights
+    written down by hand: neither says how well the model fits.
     """
 
     value: Floats
@@ -61,14 +62,20 @@ class Problem:
     pumping: Floats
     hanging: Floats
     near: Bools
+    rough: Bools
     surface: Weights
     prior: Prior
 
     def take(self, rows: Bools) -> Problem:
         """Only some of the readings."""
-        names = ("value", "above", "sign", "sigma", "place", "when", "pumping", "hanging", "near")
+        names = ("value", "above", "sign", "sigma", "place", "when", "pumping", "hanging", "near", "rough")
         part = {name: getattr(self, name)[rows] for name in names}
         return replace(self, surface=self.surface.take(rows), **part)
+
+    @property
+    def plain(self) -> Bools:
+        """Readings by which the fit is judged, shape (n,)."""
+        return ~self.near & ~self.rough
 
     def model(self, p: Floats) -> tuple[Floats, Floats]:
         """Modelled readings [N], shape (n,), and their Jacobian, shape (n, p)."""

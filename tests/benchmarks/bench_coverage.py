@@ -33,9 +33,8 @@ def solve(made: Sample) -> Calibration:
 def rows(made: Sample, found: Calibration) -> Iterator[Row]:
     """Name, determined, truth, value, low and high of every number whose truth is known."""
     truth = made.truth
-    if len(found.sections) == len(truth.factors):
-        for k, section in enumerate(found.sections):
-            yield f"{section.kind} factor", *_row(truth.factors[k], section.factor)
+    for k, section in enumerate(found.sections):  # a hole cut in vain has the same truth in every part
+        yield f"{section.kind} factor", *_row(truth.factors[min(k, len(truth.factors) - 1)], section.factor)
     if made.case.rig.block_weight is None:
         yield "block weight", *_row(truth.block, found.block_weight)
     else:

@@ -26,7 +26,8 @@ def test_nothing_recorded_shows_nothing(findings):
 def test_a_weight_stands_beside_the_log_s_reading(weighed):
     findings, reading = weighed
     assert recorded.nearest_reading(findings.calibration.readings, findings.weights[0]) == reading
-    (table,) = recorded.tables(make_scene(findings, "metric"))
+    table, said = recorded.tables(make_scene(findings, "metric"))
+    assert "pick-up 10.0 kN above (1)" in said.text
     near, far = table.rows
     assert near[1:3] == ("pick-up", "on")
     assert "kN" in near[4]
@@ -34,7 +35,7 @@ def test_a_weight_stands_beside_the_log_s_reading(weighed):
 
 
 def test_weights_follow_the_units(weighed):
-    (table,) = recorded.tables(make_scene(weighed[0], "field"))
+    table, _ = recorded.tables(make_scene(weighed[0], "field"))
     assert "klbf" in table.rows[0][3]
     assert " ft" in table.rows[0][0]
 

@@ -45,17 +45,18 @@ def fan_chart(scene: Scene) -> Figure:
             ax.fill_betweenx(depth, _finite(low, show), _finite(high, show), color=colour, alpha=0.18, lw=0)
         ax.plot(_finite(line, show), depth, color=colour, linewidth=1.4, linestyle=dash)
     for kind, (_, colour, marker) in KINDS.items():
-        picked = [r for r in readings if r.kind == kind]
-        ax.plot(
-            show.scaled([r.value for r in picked], "force"),
-            show.scaled([r.bit_depth for r in picked], "length"),
-            linestyle="none",
-            marker=marker,
-            markersize=5,
-            mfc="white",
-            mec=colour,
-            mew=1.2,
+        same = [r for r in readings if r.kind == kind]
+        groups = (
+            ([r for r in same if not (r.by_hand or r.buckled)], marker, 1.0),
+            ([r for r in same if r.buckled], marker, 0.35),
+            ([r for r in same if r.by_hand], "s", 1.0),
         )
+        for picked, mark, alpha in groups:
+            ax.plot(
+                show.scaled([r.value for r in picked], "force"),
+                show.scaled([r.bit_depth for r in picked], "length"),
+                linestyle="none", marker=mark, markersize=5, mfc="white", mec=colour, mew=1.2, alpha=alpha,
+            )  # fmt: skip
     if len(depth):
         _end_names(ax, depth, {k: show.scaled(v[0], "force") for k, v in lines.items()})
     else:
@@ -125,7 +126,7 @@ def _reading_residuals(ax: Axes, scene: Scene) -> None:
     """Residual of each steady hookload reading against bit depth."""
     cal, show = scene.findings.calibration, scene.show
     for kind, (name, colour, marker) in KINDS.items():
-        picked = [k for k, r in enumerate(cal.readings) if r.kind == kind]
+        picked = [k for k, r in enumerate(cal.readings) if r.kind == kind and not (r.buckled or r.by_hand)]
         if picked:
             ax.plot(
                 show.scaled(cal.residuals[picked], "force"),

@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 
 from forensics.report.elements import Column, Element, Picture, Section, Table, Text
-from forensics.report.figures import weights
+from forensics.report.figures import breakover, weights
 from forensics.report.scene import Scene
 from forensics.report.sections import recorded
 from forensics.report.words import count, fixed
@@ -19,7 +19,7 @@ def describe(scene: Scene) -> Section:
     """Describe fit and residuals."""
     elements: list[Element] = [Text(_fit_sentence(scene)), _fan(scene), proof_table(scene)]
     elements += [Text(text) for text in _open(scene)]
-    elements += [_residuals(scene), parameter_table(scene), tare_table(scene)]
+    elements += [_residuals(scene), parameter_table(scene), *_breakover(scene), tare_table(scene)]
     elements += recorded.tables(scene)
     elements += [Text(text) for text in (_mud(scene),) if text]
     return Section("fit", "How far the model fits", tuple(elements))
@@ -98,6 +98,30 @@ def parameter_table(scene: Scene) -> Table:
     )
 
 
+def _breakover(scene: Scene) -> list[Element]:
+    """Show the peaks as a string that stood still starts to move up; say so where there are none."""
+    found, show = scene.findings.calibration.breakover, scene.show
+    if found is None or not len(found):
+        return [
+            Text(
+                "No breakover peak was seen: none of the log's starts upward followed a stand of twenty "
+                "seconds or more, with samples five seconds apart or less and a steady weight after it."
+            )
+        ]
+    excess = found.peak - found.steady
+    worst = int(np.argmax(excess))
+    middle, most = (show.value(float(x), "force") for x in (np.median(excess), excess[worst]))
+    where, stood = show.value(float(found.bit[worst]), "length", 0), fixed(found.still[worst] / 60.0, 1)
+    caption = (
+        "Breakover: the largest hookload as a string that stood still starts to move up, less the pick-up "
+        f"weight that follows; {count(len(found), 'start')}, median {middle}, largest {most} at {where} "
+        f"after {stood} min. They are in no fit. Peaks that grow with standing time hint at gels or at "
+        "sticking by differential pressure."
+    )
+    alt = f"Breakover peaks against standing time and bit depth, {count(len(found), 'start')}."
+    return [Picture(lambda: breakover.breakover_chart(scene), caption, alt)]
+
+
 def _mud(scene: Scene) -> str:
     """Hold the case's mud against the log's, where the log has one."""
     found, show = scene.findings, scene.show
@@ -116,8 +140,9 @@ def _fan(scene: Scene) -> Picture:
     caption = (
         "Hookload against bit depth, block weight included: lines are the model at the calibrated "
         "friction, bands its 90 % friction interval, marks the steady readings (triangle up: pick-up; "
-        "circle: rotating; triangle down: slack-off). Marks along the lines: a good fit. All marks "
-        "shifted alike: a tare. Marks that cross the band: friction changed with depth."
+        "circle: rotating; triangle down: slack-off; pale: near buckling; square: written down by hand). "
+        "Marks along the lines: a good fit. All marks shifted alike: a tare. Marks that cross the band: "
+        "friction changed with depth."
     )
     readings = count(len(scene.findings.calibration.readings), "reading")
     alt = f"Three model lines of hookload over bit depth with {readings}."

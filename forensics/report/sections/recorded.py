@@ -7,7 +7,7 @@ import numpy as np
 from forensics.findings import Findings
 from forensics.friction.result import Reading
 from forensics.logs.records import RecordedSlide, RecordedWeight
-from forensics.report.elements import Column, Element, Table
+from forensics.report.elements import Column, Element, Table, Text
 from forensics.report.scene import Scene
 from forensics.report.words import UNKNOWN, duration, fixed
 from forensics.rig.view import Activity, Bools
@@ -22,7 +22,7 @@ def tables(scene: Scene) -> list[Element]:
     """Tables of the records the case gives; none where it gives none."""
     made: list[Element] = []
     if scene.findings.weights:
-        made.append(weight_table(scene))
+        made += [weight_table(scene), Text(weights_against_log(scene))]
     if scene.findings.slides:
         made.append(slide_table(scene))
     return made
@@ -59,6 +59,30 @@ def weight_table(scene: Scene) -> Table:
     if len(found.weights) > ROWS:
         note += f" The first {ROWS} of {len(found.weights)} are listed."
     return Table("Weights written down by hand, and what the log shows", columns, tuple(rows), note)
+
+
+def weights_against_log(scene: Scene) -> str:
+    """Say how the weights written down lie beside the log's own, by kind."""
+    found, show = scene.findings, scene.show
+    told = []
+    for kind, name in NAMES.items():
+        pairs = [
+            (weight, nearest_reading(found.calibration.readings, weight))
+            for weight in found.weights
+            if weight.kind == kind
+        ]
+        apart = [weight.value - near.value for weight, near in pairs if near is not None]
+        if apart:
+            middle = float(np.median(apart))
+            side = "above" if middle >= 0.0 else "below"
+            told.append(f"{name} {show.value(abs(middle), 'force')} {side} ({len(apart)})")
+    if not told:
+        return "None of the weights written down has a reading of the log near it to be held against."
+    return (
+        f"Written down against the log's nearest reading, median and number of pairs: {', '.join(told)}. All "
+        "three apart alike is another zero; pick-up and slack-off apart to opposite sides is another speed, "
+        "or a peak read for the flat part."
+    )
 
 
 def nearest_reading(readings: tuple[Reading, ...], weight: RecordedWeight) -> Reading | None:
