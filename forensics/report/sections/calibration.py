@@ -119,7 +119,7 @@ def _breakover(scene: Scene) -> list[Element]:
         "sticking by differential pressure."
     )
     alt = f"Breakover peaks against standing time and bit depth, {count(len(found), 'start')}."
-    return [Picture(lambda: breakover.breakover_chart(scene), caption, alt)]
+    return [Picture(lambda: breakover.breakover_chart(scene), caption, alt, "breakover-chart")]
 
 
 def _mud(scene: Scene) -> str:
