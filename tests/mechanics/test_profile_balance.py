@@ -69,5 +69,5 @@ def test_no_element_rubs_more_than_it_is_pressed(changes, drilling):
         if state[j] == 2 and half < 0.0:
             pressed += half**2 * float(one.criteria.at[one.criteria.kind[j], row, GIVE])
         rubs = abs(tension[j + 1] - tension[j] - weight * way.tangent[j, 2] * length[j])
-        # a hookload may change by the dead band and not be followed
-        assert rubs <= 1.03 * FACTOR * pressed * length[j] + 5.0 * BAND, (j, rubs, pressed * length[j])
+        # a hookload may change by the dead band and not be followed, once for each move made
+        assert rubs <= 1.03 * FACTOR * pressed * length[j] + 10.0 * BAND, (j, rubs, pressed * length[j])
