@@ -10,10 +10,13 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics.episodes.catalogue import Episode
-from forensics.mechanics.fatigue import HALF_JOINT
+from forensics.mechanics.fatigue import HALF_JOINT, permissible_dogleg
 from forensics.mechanics.helix import bending_stress
+from forensics.mechanics.hoisting import block_efficiency, derrick_load
+from forensics.mechanics.pipe import Tube, worn
+from forensics.mechanics.toll import fatigue_grade
 from forensics.mechanics.tool_joint import sag
-from forensics.well.string import PIPE, buoyed_weight
+from forensics.well.string import PIPE, Component, buoyed_weight
 
 if TYPE_CHECKING:
     from forensics.findings import Findings
@@ -21,6 +24,8 @@ if TYPE_CHECKING:
     from forensics.logs.table import TimeLog
 
 Floats = NDArray[np.float64]
+
+BEND_STEP = 10.0  # m between places at which turning pipe is looked at
 
 
 @dataclass(frozen=True)
@@ -38,6 +43,22 @@ class Margin:
     def left(self) -> float:
         """What is left below the limit, negative where it was passed [SI]."""
         return self.limit - self.largest
+
+
+@dataclass(frozen=True)
+class TurningBend:
+    """Where the hole bends turning drill pipe to the most of what it stands.
+
+    `part` of the string lies at `md` with the bit at `bit` [m] and carries `tension` there [N]; the hole
+    bends by `hole`, the pipe stands `stands` [rad/m].
+    """
+
+    part: Component
+    bit: float
+    md: float
+    tension: float
+    hole: float
+    stands: float
 
 
 def row_seconds(findings: Findings) -> Floats:
@@ -129,6 +150,64 @@ def sag_between_joints(findings: Findings, episode: Episode) -> tuple[float, flo
     side = weight * math.sin(float(well.trajectory.at(np.array([episode.peak_md])).inclination[0]))
     hang = float(sag(force, part.stiffness, side, 2.0 * HALF_JOINT))
     return hang, (part.tool_joint_od - part.od) / 2.0
+
+
+def turning_bend(findings: Findings) -> TurningBend | None:
+    """Find where the hole comes nearest to bending turning drill pipe more than it stands.
+
+    Parameters
+    ----------
+    findings : Findings
+        Gives hole, string, mud, wear class, and the deepest bit at which the string turned.
+
+    Returns
+    -------
+    TurningBend or None
+        Off bottom and without friction; None where the string never turned or no drill pipe hangs in it.
+    """
+    bit = findings.log.get("bit_depth")
+    turned = None if bit is None else bit[findings.rig.turning & np.isfinite(bit)]
+    if turned is None or not turned.size or turned.max() <= BEND_STEP:
+        return None
+    well, deepest = findings.well, float(turned.max())
+    md = np.arange(0.5 * BEND_STEP, deepest, BEND_STEP)
+    parts, index = well.string.components, well.string.index_at(deepest - md)
+    tangent, curvature = well.likely.mean.bends(md)
+    weight = np.array([float(buoyed_weight(p, well.fluid.typical, well.fluid.inside)) for p in parts])
+    hung = weight[index] * tangent[:, 2] * BEND_STEP
+    pull = np.cumsum(hung[::-1])[::-1] - 0.5 * hung
+    bend, stands = np.linalg.norm(curvature, axis=1), np.full(len(md), np.nan)
+    for row in np.unique(index):
+        part, some = parts[int(row)], (index == row) & (pull > 0.0)
+        if part.kind == "drillpipe":
+            tube = worn(Tube(part.od, part.id), findings.case.limits.pipe_class or "new")
+            stands[some] = permissible_dogleg(tube, pull[some], part.youngs_modulus, fatigue_grade(part))
+    if not np.isfinite(stands).any():
+        return None
+    at = int(np.nanargmax(bend / np.maximum(stands, 1e-9)))
+    return TurningBend(
+        parts[int(index[at])], deepest, float(md[at]), float(pull[at]), float(bend[at]), float(stands[at])
+    )
+
+
+def crown_load(findings: Findings) -> float:
+    """Load on the crown at the run's largest hookload, hoisting: hook and block, fast and dead line [N].
+
+    Parameters
+    ----------
+    findings : Findings
+        Gives hookload, lines and efficiency per sheave.
+
+    Returns
+    -------
+    float
+        NaN where one of them is not there.
+    """
+    rig, hookload = findings.case.rig, findings.rig.hookload
+    if rig.lines is None or rig.sheave_efficiency is None or not np.isfinite(hookload).any():
+        return math.nan
+    efficiency = block_efficiency(rig.sheave_efficiency, rig.lines)
+    return derrick_load(float(np.nanmax(hookload)), efficiency, rig.lines)
 
 
 def other_clearance(findings: Findings) -> str:

@@ -4,11 +4,14 @@ from __future__ import annotations
 
 from dataclasses import replace
 
+import numpy as np
 import pytest
 
 from forensics.case import CriteriaSettings
 from forensics.episodes.catalogue import Consequence
 from forensics.episodes.pipe import PartToll, PipeToll, Turned
+from forensics.mechanics.fatigue import permissible_dogleg
+from forensics.mechanics.pipe import Tube
 from forensics.report import derived
 from forensics.report.describe import make_scene
 from forensics.report.elements import Notice, Table
@@ -92,3 +95,34 @@ def test_pumps_are_told_as_learned_and_as_the_jets_have_it(findings, build_case)
     told = make_scene(replace(findings, rig=rig, case=build_case(nozzle_area=5e-4)), "metric")
     thrust = findings.well.fluid.typical * 0.035**2 / 5e-4
     assert f"lift the bit with {thrust / 1e3:.2f} kN" in method.pump_words(told)
+
+
+def test_turning_pipe_is_held_against_the_hole(findings):
+    """Tension by the true depth below, curvature by the survey's own angles; the worst of both."""
+    found = derived.turning_bend(findings)
+    well, bit = findings.well, findings.log.get("bit_depth")
+    assert found.bit == bit[findings.rig.turning].max()
+    # the one bend of the well that hanging pipe feels: 35 to 60 degrees over 300 m
+    assert 1500.0 < found.md < 1800.0
+    angle = float(np.radians(25.0)) / 300.0
+    assert found.hole == pytest.approx(angle, rel=0.05)
+    below = well.rotating_weight(found.bit)[0] - 310.0 * (1 - 1320.0 / 7850.0) * _depth(well, found.md)
+    assert found.tension == pytest.approx(below, rel=2e-3)
+    stands = permissible_dogleg(Tube(0.127, 0.1086), found.tension, 206.8e9)
+    assert found.stands == pytest.approx(float(stands), rel=1e-3)
+
+
+def test_the_bend_is_told_with_its_share(findings):
+    found, scene = derived.turning_bend(findings), make_scene(findings, "metric")
+    text = pipe.bend_sentence(scene)[0].text
+    assert f"{100.0 * found.hole / found.stands:.0f} % of it" in text
+    assert "E75 pipe" in text
+
+
+def test_pipe_that_never_turned_is_not_held_against_the_hole(findings):
+    still = replace(findings.rig, turning=np.zeros_like(findings.rig.turning))
+    assert derived.turning_bend(replace(findings, rig=still)) is None
+
+
+def _depth(well, md):
+    return float(well.trajectory.at(np.array([md])).tvd[0])

@@ -6,12 +6,14 @@ from math import inf, nan, pi
 import numpy as np
 import pytest
 
-from forensics.case import LimitSettings
+from forensics.case import LimitSettings, RigSettings
 from forensics.episodes.catalogue import Consequence, Kind, State
 from forensics.episodes.groups import is_routine
 from forensics.estimate import Estimate
 from forensics.report import derived
+from forensics.report.describe import make_scene
 from forensics.report.scene import main_episodes
+from forensics.report.sections.first import describe_margins
 from forensics.report.words import THIN, Show, count, duration, fixed
 
 METRIC = Show("metric", "Europe/Oslo")
@@ -148,3 +150,14 @@ def test_main_episodes_leave_routine_running_out(build, build_episode):
     assert main_episodes((drag, locked), cap=1) == (locked,)
     assert main_episodes((routine,)) == (routine,)
     assert main_episodes(()) == ()
+
+
+def test_crown_carries_hook_fast_line_and_dead_line(build, build_case):
+    bare = build(n=100)
+    assert np.isnan(derived.crown_load(bare))
+    made = build(n=100, case=build_case(rig=RigSettings(lines=8, sheave_efficiency=1 / 1.04)))
+    largest = np.nanmax(made.rig.hookload)
+    # fast line as the Well Engineers Notebook has it, 1.188 / 8; the dead line an eighth, free of friction
+    assert derived.crown_load(made) / largest == pytest.approx(1 + 1.188 / 8 + 1 / 8, rel=1e-3)
+    note = describe_margins(make_scene(made, "metric")).note
+    assert f"puts {METRIC.value(derived.crown_load(made), 'force')} on the crown" in note

@@ -214,6 +214,7 @@ def describe_margins(scene: Scene) -> Table | None:
     aligns = ("text", "number", "number", "text", "number", "text")
     grade = scene.findings.case.limits.pipe_class
     note = "Single samples count. A limit on one quantity says nothing of pull, torque and pressure together."
+    note += _crown(scene)
     if grade:
         note += (
             f" The case states pipe class {grade}: ratings are used here as the string table gives them; the "
@@ -221,6 +222,18 @@ def describe_margins(scene: Scene) -> Table | None:
         )
     columns = tuple(Column(t, a) for t, a in zip(titles, aligns, strict=True))
     return Table("Margins against the limits given", columns, tuple(rows), note)
+
+
+def _crown(scene: Scene) -> str:
+    """Say what the crown carried at the largest hookload; nothing where lines and sheaves are not given."""
+    load, rig = derived.crown_load(scene.findings), scene.findings.case.rig
+    if not math.isfinite(load):
+        return ""
+    return (
+        f" Hoisting the largest hookload puts {scene.show.value(load, 'force')} on the crown: hook and "
+        f"block, fast line and dead line, {rig.lines} lines, {fixed(rig.sheave_efficiency or 1.0, 3)} a "
+        "sheave."
+    )
 
 
 def _tally(scene: Scene) -> str:

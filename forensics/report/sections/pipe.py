@@ -6,6 +6,8 @@ import math
 from typing import TYPE_CHECKING
 
 from forensics.episodes.catalogue import Episode
+from forensics.mechanics.toll import fatigue_grade
+from forensics.report import derived
 from forensics.report.elements import Column, Element, Notice, Section, Table, Text
 from forensics.report.scene import Scene
 from forensics.report.words import fixed
@@ -47,12 +49,31 @@ def describe(scene: Scene) -> Section:
     """Rank the episodes in which the string turned while buckled, and say what to heed."""
     tolls = scene.findings.tolls
     turned = [(e, toll) for e in scene.findings.episodes if (toll := tolls.get(e.id)) and toll.turned]
-    elements: list[Element] = [Text(HOW), ranking_table(turned)]
+    elements: list[Element] = [Text(HOW), ranking_table(turned), *bend_sentence(scene)]
     if turned:
         elements.append(Notice("Cautions that apply to stress and fatigue", CAUTIONS))
     else:
         elements.append(Notice("Cautions that apply to stress", CAUTIONS[2:]))
     return Section("pipe", "What it did to the pipe", tuple(elements))
+
+
+def bend_sentence(scene: Scene) -> list[Text]:
+    """Hold the bend that turning drill pipe stands against the hole's, where the two come nearest."""
+    found, show = derived.turning_bend(scene.findings), scene.show
+    if found is None:
+        return []
+    hole, stands = (show.value(bend, "angle_per_length", 1) for bend in (found.hole, found.stands))
+    share = f", {fixed(100.0 * found.hole / found.stands, 0)} % of it" if found.stands else ""
+    bit, md = (show.value(depth, "length", 0) for depth in (found.bit, found.md))
+    return [
+        Text(
+            f"Turned off bottom with the bit at {bit}, {found.part.name} carries "
+            f"{show.value(found.tension, 'force')} at {md} and stands a bend of {stands} there for very many "
+            f"turns; the hole bends by {hole}{share}. Nowhere do the two come nearer. Origin: Lubinski 1961 "
+            f"as in API RP 7G, {fatigue_grade(found.part)} pipe, not corroded; string weight without "
+            "friction; hole as the loads are reckoned in."
+        )
+    ]
 
 
 def ranking_table(turned: list[tuple[Episode, PipeToll]]) -> Table:
