@@ -109,8 +109,9 @@ def weigh(well: Well, bit_depth: Floats) -> Floats:
 def _moves(signals: Signals, slips: Slips, case: Case) -> Moves:
     speed = block_speed(signals)
     direction = direction_of(speed, signals)
-    hookload = signals.hookload * hook_factor(direction, signals, case.rig)
-    return Moves(hookload, speed, direction, fill_block(signals, slips.rows), slips.rows)
+    height = fill_block(signals, slips.rows)
+    hookload = signals.hookload * hook_factor(height, case.rig)
+    return Moves(hookload, speed, direction, height, slips.rows)
 
 
 def _from_readings(judged: Judged, facts: Facts) -> Estimate:
