@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import difflib
+import re
 import stat
 from collections.abc import Iterable
 from pathlib import Path
@@ -75,6 +76,26 @@ def nearest(word: str, known: Iterable[str]) -> str:
     if close:
         return f"did you mean {close[0]!r}?"
     return f"known are: {', '.join(sorted(names))}"
+
+
+# Controls but tab and line end, and marks that turn the direction of all text after them.
+_HIDDEN = re.compile(
+    "[\x00-\x08\x0b-\x1f\x7f-\x9f\u061c\u200b\u200e\u200f\u202a-\u202e\u2028\u2029\u2066-\u2069\ufeff]"
+)
+
+
+def legible(text: str) -> str:
+    r"""Show letters that steer a screen instead of standing on it; letters of any script stay as they are.
+
+    Names come from other people's files: an escape code can repaint a terminal, and a mark of direction can
+    make the words after it read backwards.
+
+    Examples
+    --------
+    >>> legible("Kestrel\u202e 3")
+    'Kestrel<U+202E> 3'
+    """
+    return _HIDDEN.sub(lambda found: f"<U+{ord(found[0]):04X}>", text)
 
 
 def no_file(path: Path, most: int | None = None) -> str | None:

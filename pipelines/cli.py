@@ -152,6 +152,9 @@ def build_parser(commands: Sequence[Command] = COMMANDS) -> argparse.ArgumentPar
 
 
 def _print(text: str) -> None:
+    from forensics.errors import legible
+
+    text = legible(text)
     encoding = sys.stdout.encoding or "utf-8"
     try:
         sys.stdout.write(text.encode(encoding, "replace").decode(encoding))  # a title may hold any letter
@@ -161,7 +164,9 @@ def _print(text: str) -> None:
 
 
 def _say(message: str) -> None:
-    sys.stderr.write(f"tallyback: {message}\n")
+    from forensics.errors import legible
+
+    sys.stderr.write(f"tallyback: {legible(message)}\n")
 
 
 def _fault(error: Exception) -> int:

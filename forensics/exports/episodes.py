@@ -10,6 +10,7 @@ from pathlib import Path
 from forensics.episodes.catalogue import Episode, Kind, Travel
 from forensics.estimate import Estimate
 from forensics.exports.stamps import number, stamp
+from forensics.exports.text import inert
 from forensics.findings import Findings
 from forensics.logs.zone import tzinfo_of
 
@@ -163,4 +164,4 @@ def write_episodes(findings: Findings, path: Path) -> None:
     with path.open("w", encoding="utf-8", newline="") as file:
         writer = csv.DictWriter(file, COLUMNS, lineterminator="\n")
         writer.writeheader()
-        writer.writerows(episode_rows(findings))
+        writer.writerows({name: inert(cell) for name, cell in row.items()} for row in episode_rows(findings))

@@ -9,7 +9,7 @@ from typing import Any
 
 from forensics.estimate import Estimate
 from forensics.exports.stamps import number
-from forensics.exports.text import write_json
+from forensics.exports.text import inert, write_json
 from forensics.friction.plan import ROTATIONAL, Plan, RunFactors
 from forensics.friction.pool import Pooled
 
@@ -110,4 +110,4 @@ def _write(path: Path, columns: Sequence[str], rows: Sequence[Row]) -> None:
     with path.open("w", encoding="utf-8", newline="") as file:
         writer = csv.DictWriter(file, columns, lineterminator="\n")
         writer.writeheader()
-        writer.writerows(rows)
+        writer.writerows({name: inert(cell) for name, cell in row.items()} for row in rows)

@@ -5,6 +5,7 @@ from __future__ import annotations
 import textwrap
 from collections.abc import Iterable
 
+from forensics.errors import legible
 from forensics.report.elements import (
     Bullets,
     Element,
@@ -43,11 +44,11 @@ def to_text(report: Report) -> str:
         lines += _elements(section.elements)
         for part in section.parts:
             lines += ["", *_headed(part.title, "-"), *_elements(part.elements)]
-    return "\n".join(line.rstrip() for line in lines) + "\n"
+    return "\n".join(legible(line).rstrip() for line in lines) + "\n"
 
 
 def _headed(title: str, mark: str) -> list[str]:
-    return [title, mark * len(title)]
+    return [title, mark * min(len(title), WIDTH)]
 
 
 def _elements(elements: Iterable[Element]) -> list[str]:

@@ -15,6 +15,7 @@ from jinja2 import Environment, PackageLoader, StrictUndefined
 from matplotlib.backends.backend_agg import FigureCanvasAgg
 from PIL import Image
 
+from forensics.errors import legible
 from forensics.report.describe import describe
 from forensics.report.elements import Element, Part, Picture, Report, Section
 from forensics.report.figures.spare import hand_back, spare_sheets
@@ -114,12 +115,18 @@ def _draw(picture: Picture, number: int) -> Drawn:
     return Drawn(number, data, width, height, picture.caption, picture.alt, picture.anchor)
 
 
+def _legible(value: object) -> object:
+    """Let no letter through that steers the page; what the templates themselves made stays as it is."""
+    return legible(value) if type(value) is str else value
+
+
 @cache
 def _environment() -> Environment:
     return Environment(
         loader=PackageLoader("forensics.report", "templates"),
         autoescape=True,
         undefined=StrictUndefined,
+        finalize=_legible,
         trim_blocks=True,
         lstrip_blocks=True,
     )

@@ -44,6 +44,8 @@ RATIO_OVER = "#3d0f2b"
 _STYLE = {
     "font.family": ["DejaVu Sans"],
     "font.size": 8.0,
+    # Names from the case may hold a dollar sign; nothing here is set as mathematics.
+    "text.parse_math": False,
     "axes.labelsize": 8.0,
     "axes.titlesize": 8.5,
     "axes.titlelocation": "left",
