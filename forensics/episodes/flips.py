@@ -51,7 +51,7 @@ class Flip:
     finding : str
         "helix", "sinusoid" or "lockup".
     source : str
-        "open-hole friction", "cased-hole friction", "block weight" or "open-hole diameter over the table's".
+        "open-hole friction", "cased-hole friction", "block weight" or "hole diameter over the table's".
     quantity : str
         Of the input: "dimensionless" or "force".
     found : Estimate
@@ -237,7 +237,7 @@ def _hole(run: Replay, mu: Floats) -> _Input:
     def at(value: float) -> tuple[OffBottomModel, Floats, float]:
         return departed(model, Departure(path, opened=value)), mu, 0.0
 
-    return _Input("open-hole diameter over the table's", "dimensionless", found, HOLE, at)
+    return _Input("hole diameter over the table's", "dimensionless", found, HOLE, at)
 
 
 def _mean(sections: Sequence, reached: float) -> Estimate:
@@ -298,5 +298,5 @@ def with_flip(headline: Headline, flips: Sequence[Flip], system: str) -> Headlin
     said = flip_sentence(nearest, system)
     if not any(nearest.turns):
         sources = [flip.source for flip in own]
-        said = f"no {', '.join(sources[:-1])} or {sources[-1]} that was tried would turn it"
+        said = f"nothing tried would turn it ({', '.join(sources)})"
     return replace(headline, confidence=f"{headline.confidence}; {said}")

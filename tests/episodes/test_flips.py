@@ -77,7 +77,7 @@ def test_the_headline_names_the_nearest_turn():
     assert "below 0.28" in with_flip(plain, (far, near, other), "metric").confidence
     calm = (flip((0.05, 0.6)), flip((0.05, 0.6), source="block weight"))
     assert with_flip(plain, calm, "metric").confidence.endswith(
-        "no open-hole friction or block weight that was tried would turn it"
+        "nothing tried would turn it (open-hole friction, block weight)"
     )
 
 
