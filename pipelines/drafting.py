@@ -14,13 +14,15 @@ from forensics import channels
 from forensics.case import Case, ChannelChoice, FluidSettings, LogSettings
 from forensics.case.skeleton import Known, write_skeleton
 from forensics.errors import InputError, TableError
+from forensics.logs.clock_column import is_time_name
 from forensics.logs.mapping import NoUnitError
+from forensics.logs.naming import split_name
 from forensics.logs.read import read_time_logs
 from forensics.logs.records import SLIDE_COLUMNS, WEIGHT_COLUMNS
 from forensics.logs.registry import read_head
 from forensics.logs.table import TimeLog
 from forensics.tables import Column, decode
-from forensics.tables.columns import match_columns
+from forensics.tables.columns import Rows, match_columns
 from forensics.tables.reader import header_of
 from forensics.well.fluid import MUD_COLUMNS
 from forensics.well.hole import HOLE_COLUMNS
@@ -42,9 +44,10 @@ _ID_LETTERS = re.compile(r"[^A-Za-z0-9._-]+")
 
 @dataclass(frozen=True)
 class Gathered:
-    """Files told apart: logs, and tables by kind."""
+    """Files told apart: logs by time, logs by depth, and tables by kind."""
 
     logs: tuple[Path, ...]
+    depth: tuple[Path, ...] = ()
     tables: Mapping[str, Path] = field(default_factory=dict)
 
 
@@ -66,13 +69,15 @@ def gather(files: Sequence[Path]) -> Gathered:
         no log.
     """
     logs: list[Path] = []
+    depth: list[Path] = []
     tables: dict[str, Path] = {}
     for path in files:
         if path.suffix == ".toml":
             raise InputError("is a case file; give one case file alone, or logs and tables", file=path)
-        kind = _kind(path)
+        head = read_head(path)
+        kind = _kind(path, head)
         if kind is None:
-            logs.append(path)
+            (depth if _is_by_depth(path, head) else logs).append(path)
         elif kind in tables:
             raise InputError(
                 f"looks like a table of the {kind}, and so does {tables[kind].name}; give one", file=path
@@ -80,16 +85,40 @@ def gather(files: Sequence[Path]) -> Gathered:
         else:
             tables[kind] = path
     if not logs:
-        raise InputError(f"none of {', '.join(path.name for path in files)} is a log; give at least one log")
-    return Gathered(tuple(logs), tables)
+        names = ", ".join(path.name for path in files)
+        raise InputError(f"none of {names} is a log by time; give at least one")
+    return Gathered(tuple(logs), tuple(depth), tables)
 
 
-def _kind(path: Path) -> str | None:
+def _is_by_depth(path: Path, head: bytes) -> bool:
+    """Tell a log that goes by depth: depth leads and no column is a time."""
+    text = decode(head)
+    if kinds := re.findall(r"<(?:\w+:)?indexType>([^<]*)<", text):
+        return all("depth" in kind.casefold() for kind in kinds)
+    if curves := re.search(r"^\s*~C[^\n]*\n(.*?)(?=^\s*~)", text, re.MULTILINE | re.DOTALL):
+        lines = (line.strip() for line in curves[1].splitlines())
+        names = [line.split(".")[0].strip() for line in lines if line and not line.startswith("#")]
+    else:
+        cells = _header(text, path)
+        names = list(cells.cells[0]) if cells else []
+    if not names or any(is_time_name(name) for name in names):
+        return False
+    return channels.match(split_name(names[0])[0])[0] == "hole_depth"
+
+
+def _header(text: str, path: Path) -> Rows | None:
+    """Cells of a text's first line; None where it can't be a table's."""
+    try:
+        return header_of(text, path)
+    except TableError:
+        return None
+
+
+def _kind(path: Path, head: bytes) -> str | None:
     """Kind of table a file is by its header; None for a log."""
-    head = read_head(path)
     if head.lstrip(b"\xef\xbb\xbf \r\n\t").startswith(b"<"):
         return object_kind(head)
-    if path.suffix.casefold() not in {".csv", ".txt", ".tsv"} or not (cells := header_of(decode(head), path)):
+    if path.suffix.casefold() not in {".csv", ".txt", ".tsv"} or not (cells := _header(decode(head), path)):
         return None
     found = {channels.match(cell)[0] for cell in cells.cells[0]}
     if "hookload" in found and found & {"bit_depth", "block_position", "time"}:
@@ -140,7 +169,7 @@ def _bare_case(made: Gathered) -> Case:
     name = _ID_LETTERS.sub("-", made.logs[0].name.split(".")[0]).strip("-.") or "run"
     nowhere = Path()
     return Case(
-        path=nowhere, id=name, title=name, logs=LogSettings(time=made.logs),
+        path=nowhere, id=name, title=name, logs=LogSettings(time=made.logs, depth=made.depth),
         survey=made.tables.get("survey", nowhere), hole=made.tables.get("hole", nowhere),
         string=made.tables.get("string", nowhere), fluid=FluidSettings(file=made.tables.get("mud")),
     )  # fmt: skip
@@ -201,6 +230,7 @@ def write_draft(target: Path, made: Gathered, case: Case, log: TimeLog) -> None:
     known = Known(
         id=case.id,
         logs=tuple(from_there(path) for path in made.logs),
+        depth=tuple(from_there(path) for path in made.depth),
         tables={kind: from_there(path) for kind, path in made.tables.items()},
         well=next((name for name in map(_well_name, made.logs) if name), None),
         timezone=case.logs.timezone,

@@ -21,9 +21,9 @@ class Known:
         For `[case]`.
     well : str or None
         Name of the well, as a log's header has it.
-    logs, tables : tuple of str, mapping of str to str
-        Paths of the logs, and of "survey", "hole", "string", "mud", "weights" and "slides" where they were
-        given, as the case file is to write them.
+    logs, depth, tables : tuple of str, tuple of str, mapping of str to str
+        Paths of the logs by time, by depth, and of "survey", "hole", "string", "mud", "weights" and "slides"
+        where they were given, as the case file is to write them.
     timezone : str
         Zone of stamps that carry none.
     choices : mapping of str to ChannelChoice
@@ -36,6 +36,7 @@ class Known:
 
     id: str
     logs: tuple[str, ...]
+    depth: tuple[str, ...] = ()
     tables: Mapping[str, str] = field(default_factory=dict)
     well: str | None = None
     timezone: str = "UTC"
@@ -64,6 +65,8 @@ def write_skeleton(known: Known) -> str:
     lines.append(f"{'' if known.well else '# '}well = {quoted(well)}")
     lines.append('# mud_system = "water-base mud"  # its usual friction is where calibration starts')
     lines += ["", "[logs]", f"time = [{', '.join(quoted(name) for name in known.logs)}]"]
+    if known.depth:
+        lines.append(f"depth = [{', '.join(quoted(name) for name in known.depth)}]")
     lines.append(f"timezone = {quoted(known.timezone)}  # {CHECK}: zone of stamps that carry none")
     lines += _choices(known)
     for name, columns in _TABLES.items():

@@ -17,6 +17,7 @@ from forensics.logs.naming import split_name
 from forensics.logs.nulls import find_codes
 from forensics.logs.raw import RawLog
 from forensics.logs.registry import read_raw, require
+from forensics.logs.repeats import NONE, Repeats, find_repeats
 from forensics.logs.smear import find_smeared
 
 Floats = NDArray[np.float64]
@@ -38,12 +39,15 @@ class DepthLog:
         Channels of `WITNESSED` it has [SI], NaN where missing or absurd.
     units : mapping of str to str
         Units they were read in.
+    repeats : Repeats
+        How many of its rows repeat the row before.
     """
 
     path: Path
     depth: Floats
     values: Mapping[str, Floats]
     units: Mapping[str, str]
+    repeats: Repeats = NONE
 
 
 def read_depth_logs(paths: tuple[Path, ...]) -> tuple[DepthLog, ...]:
@@ -105,7 +109,8 @@ def _read(raw: RawLog) -> DepthLog:
         for name, data in mapped.values.items()
         if name in WITNESSED
     }
-    return DepthLog(raw.path, depth[order], values, {name: mapped.units[name] for name in values})
+    read_in = {name: mapped.units[name] for name in values}
+    return DepthLog(raw.path, depth[order], values, read_in, find_repeats(values, depth[order]))
 
 
 def _is_depth(name: str) -> bool:

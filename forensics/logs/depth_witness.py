@@ -12,6 +12,7 @@ from numpy.typing import NDArray
 from forensics import units
 from forensics.channels import BY_NAME
 from forensics.logs.depth_log import WITNESSED, DepthLog
+from forensics.logs.repeats import REPEATING
 from forensics.logs.table import FileRecord, Step
 from forensics.units import show
 
@@ -77,6 +78,13 @@ def hold_against_depth(
             step, words = _judge(channel, mine, its, log, read_in.get(channel))
             steps.append(step)
             said += [words] if words else []
+        if log.repeats.share >= REPEATING:
+            steps.append(Step("repeats the row before", log.repeats.same, detail=log.path.name))
+            said.append(
+                f"{log.path.name}: {100.0 * log.repeats.share:.0f} % of {log.repeats.rows} rows repeat "
+                "torque and WOB of the row before: step-filled, one reading every "
+                f"{log.repeats.stride:.0f} rows"
+            )
         if not set(log.values) & set(drilled.values):
             said.append(f"{log.path.name} has no channel to hold the time log against: torque, WOB or mud")
     return steps, said

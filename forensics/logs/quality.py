@@ -11,7 +11,7 @@ from numpy.typing import NDArray
 from forensics.channels import BY_NAME
 from forensics.logs.frozen import FREEZABLE, find_frozen
 from forensics.logs.likely import likely_fix
-from forensics.logs.repeats import find_repeats
+from forensics.logs.repeats import REPEATING, find_repeats
 from forensics.logs.saturated import CLIPPED, find_ceiling
 from forensics.logs.slow import fill_between
 from forensics.logs.spikes import COARSE, find_jumps, find_spikes, rule_for
@@ -65,8 +65,6 @@ LEAST_WHILE = {
     "standpipe_pressure": ("flow_in", 5.0e-3, 2.0e4),
     "flow_in": ("standpipe_pressure", 5.0e6, 1.0e-4),
 }
-# Part of the rows that may repeat the row before in a log sampled as often as it is written.
-REPEATING = 0.4
 CONSTANT_IS_FAULT = ("block_position", "torque", "standpipe_pressure", "wob", "hookload_max")
 _CAUSES = {"hookload": Reason.SPIKE_HOOKLOAD, "bit_depth": Reason.SPIKE_DEPTH}
 

@@ -29,6 +29,11 @@ class Repeats:
         return self.same / self.rows if self.rows else 0.0
 
 
+NONE = Repeats(0, 0, 1.0)
+# Part of the rows that may repeat the row before in a log sampled as often as it is written.
+REPEATING = 0.4
+
+
 def find_repeats(values: Mapping[str, Floats], depth: Floats) -> Repeats:
     """Count rows that repeat the row before in all that is logged of the rig's work.
 
@@ -53,7 +58,7 @@ def find_repeats(values: Mapping[str, Floats], depth: Floats) -> Repeats:
     """
     told = [values[name] for name in MECHANICS if name in values and _says(values[name])]
     if len(told) < 2 or len(depth) <= ACROSS:
-        return Repeats(0, 0, 1.0)
+        return NONE
     with np.errstate(invalid="ignore"):
         far = np.abs(depth[ACROSS:] - depth[:-ACROSS]) > MOVED
     moving = np.zeros(len(depth), dtype=bool)
@@ -66,7 +71,7 @@ def find_repeats(values: Mapping[str, Floats], depth: Floats) -> Repeats:
         same &= known & (data[1:] == data[:-1])
     rows, repeated = int(judged.sum()), int(same.sum())
     if rows < FEWEST:
-        return Repeats(0, 0, 1.0)
+        return NONE
     return Repeats(rows, repeated, rows / max(1, rows - repeated))
 
 

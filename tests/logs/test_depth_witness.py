@@ -136,6 +136,13 @@ def test_steps_of_nulls_and_rows_out_of_order_do_no_harm(held):
     assert held(text)[1] == []
 
 
+def test_a_step_filled_log_by_depth_is_told_with_its_share(held):
+    head, rows = by_depth().splitlines()[:2], by_depth().splitlines()[2:]
+    filled = [f"{row.split(',')[0]},{rows[i // 4 * 4].split(',', 1)[1]}" for i, row in enumerate(rows)]
+    _, said = held("\n".join([*head, *filled]) + "\n")
+    assert any("75 % of" in words and "one reading every 4 rows" in words for words in said)
+
+
 def test_a_log_without_a_channel_to_compare_is_said(held):
     said = held("DEPT,GR\nm,gAPI\n" + "".join(f"{2000 + i},{50 + i % 9}\n" for i in range(60)))[1]
     assert "no channel to hold the time log against" in said[0]

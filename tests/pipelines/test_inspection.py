@@ -8,7 +8,7 @@ import pytest
 import cases
 from forensics.case import load_case
 from forensics.errors import InputError
-from pipelines import cli, inspection
+from pipelines import cli, drafting, inspection
 
 JOB = cases.Job(duration=3700.0)
 
@@ -132,3 +132,40 @@ def test_the_well_of_a_las_log_is_in_the_draft(tmp_path):
     las.write_text("~Version\nVERS. 2.0 :\n~Well\nSTRT.S 0 :\nWELL.   Plover 4 : well\n~A\n")
     assert _well_name(las) == "Plover 4"
     assert 'well = "Plover 4"' in write_skeleton(Known("plover", ("run.las",), well="Plover 4"))
+
+
+DEPTH_LOGS = {
+    "mud.csv": "DEPT,HKLA,TQA\nM,KKGF,KN.M\n" + "".join(f"{d},90,{9 + d % 3}\n" for d in range(40)),
+    "mud.las": "~V\n VERS. 2.0 :\n WRAP. NO :\n~C\n DEPT.M :\n HKLD.KKGF :\n TQA.KN.M :\n~A\n"
+    + "".join(f"{d} 90 {9 + d % 3}\n" for d in range(40)),
+    "mud.xml": "<logs><log><indexType>measured depth</indexType><logCurveInfo><mnemonic>DEPT</mnemonic>"
+    "<unit>m</unit></logCurveInfo><logCurveInfo><mnemonic>TQA</mnemonic><unit>kN.m</unit></logCurveInfo><logData>"
+    "<mnemonicList>DEPT,TQA</mnemonicList><unitList>m,kN.m</unitList>"
+    + "".join(f"<data>{d},{9 + d % 3}</data>" for d in range(40))
+    + "</logData></log></logs>",
+}
+OBJECTS = {
+    "path.xml": "<trajectorys><trajectory><nameWell>W</nameWell>{}</trajectory></trajectorys>",
+    "pipe.xml": "<tubulars><tubular><nameWell>W</nameWell></tubular></tubulars>",
+    "hole.xml": "<wbGeometrys><wbGeometry><nameWell>W</nameWell></wbGeometry></wbGeometrys>",
+}
+
+
+@pytest.mark.parametrize("name", DEPTH_LOGS)
+def test_a_log_by_depth_goes_where_those_belong(copy, name):
+    (copy / name).write_text(DEPTH_LOGS[name])
+    target = copy / "draft.toml"
+    inspection.run([copy / "time.csv", copy / name], copy / "out", quiet=True, draft=target)
+    assert f'depth = ["{name}"]' in target.read_text()
+    with pytest.raises(InputError, match="is a log by time"):
+        inspection.run([copy / name], copy / "out", quiet=True)
+
+
+def test_well_objects_are_told_from_logs(copy):
+    for name, text in OBJECTS.items():
+        (copy / name).write_text(text)
+    made = drafting.gather([copy / "time.csv", *(copy / name for name in OBJECTS)])
+    assert made.tables == {
+        "survey": copy / "path.xml", "string": copy / "pipe.xml", "hole": copy / "hole.xml"
+    }  # fmt: skip
+    assert made.logs == (copy / "time.csv",)
