@@ -15,6 +15,7 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
+from forensics.mechanics.runs import run_lengths
 from forensics.units import G
 from forensics.well.model import Well
 from forensics.well.string import Component, buoyed_weight
@@ -26,7 +27,6 @@ Ints = NDArray[np.int64]
 DEPTH_STEP = 0.5  # m; a quarter of a metre of placement error is far below survey error
 STATION_STEP = 10.0  # m
 MIN_CLEARANCE = 0.002  # m; less than this and the place is a support
-LIKE_STIFFNESS = 2.0  # a fall by more than half ends a run of like stiffness
 
 
 @dataclass(frozen=True)
@@ -165,7 +165,7 @@ def pipe_grid(well: Well, depth: float, clearance: str = "tool_joint") -> PipeGr
         ea=np.array([part.axial for part in chosen]),
         clearance_od=np.array([part.contact_diameter(clearance) for part in chosen]),
         radius=np.array([0.5 * part.contact_diameter("tool_joint") for part in chosen]),
-        stiff_run=_runs(ei, lengths),
+        stiff_run=run_lengths(ei, lengths),
         ends=np.append(well.string.ends[:-1], np.inf),
         hanging=np.array([part.weight + fill * G * part.inner_area for part in parts]),
     )
@@ -198,18 +198,6 @@ def _cut(
         rows.extend([row] * pieces)
         weights.extend([per_length] * pieces)
     return np.array(edges, dtype=np.int64), rows, weights
-
-
-def _runs(ei: Floats, lengths: Floats) -> Floats:
-    """Length of the run of like stiffness each element belongs to [m]."""
-    runs = np.empty_like(ei)
-    start = 0
-    for i in range(1, len(ei) + 1):
-        ends = i == len(ei) or ei[i] * LIKE_STIFFNESS < ei[i - 1] or ei[i] > LIKE_STIFFNESS * ei[i - 1]
-        if ends:
-            runs[start:i] = lengths[start:i].sum()
-            start = i
-    return runs
 
 
 def weight_in_air(pipe: PipeGrid, bit_depth: Floats, height: Floats) -> Floats:
