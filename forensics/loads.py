@@ -10,6 +10,8 @@ from typing import ClassVar
 import numpy as np
 from numpy.typing import NDArray
 
+from forensics.mechanics.lockup import SlackOff
+
 Floats = NDArray[np.float64]
 
 
@@ -169,25 +171,6 @@ class BitWitness:
     beyond: Floats
     responses: tuple[Response, ...] = ()
     slides: tuple[WitnessCheck, ...] = ()
-
-
-@dataclass(frozen=True)
-class SlackOff:
-    """What more slacking off would have brought to the lower end at one moment [N].
-
-    Parameters
-    ----------
-    more : float
-        Weight slacked off further: 50 kN, or what was left on the hook.
-    arrives : float
-        Of it, what would have reached the lower end.
-    limit : float
-        Most that can stand on the lower end, with all that hung slacked off.
-    """
-
-    more: float
-    arrives: float
-    limit: float
 
 
 @dataclass(frozen=True)

@@ -10,8 +10,9 @@ from numpy.typing import NDArray
 
 from forensics.episodes.catalogue import Episode, Kind
 from forensics.episodes.material import Material
-from forensics.loads import Profile, SlackOff
+from forensics.loads import Profile
 from forensics.mechanics.fatigue import ranking
+from forensics.mechanics.lockup import SlackOff
 from forensics.mechanics.toll import MomentLoads, Toll, joined, toll, worst_by_component
 from forensics.replay.loaded import Loaded, loaded
 from forensics.replay.moments import profiles_in_turn

@@ -41,18 +41,20 @@ def pipe_content(toll: PipeToll | None) -> dict[str, Any] | None:
     }
 
 
-def slack_off_content(toll: PipeToll | None) -> dict[str, float | None] | None:
+def slack_off_content(toll: PipeToll | None, surface_weight: float) -> dict[str, float | None] | None:
     """Lay out what slacking off more would have brought to the lower end at the peak of an episode.
 
     Parameters
     ----------
     toll : PipeToll or None
         None where the episode has none.
+    surface_weight : float
+        Weight set down at surface at that moment [N].
 
     Returns
     -------
     dict or None
-        Forces [kN]; None where the string was not sliding.
+        Forces [kN], length [m]; None where the string was not sliding.
     """
     if toll is None or toll.slack_off is None:
         return None
@@ -61,6 +63,9 @@ def slack_off_content(toll: PipeToll | None) -> dict[str, float | None] | None:
         "more_kN": number(asked.more / 1e3, 2),
         "would_arrive_kN": number(asked.arrives / 1e3, 2),
         "most_that_arrives_kN": number(asked.limit / 1e3, 2),
+        "nothing_more_from_surface_weight_kN": number((surface_weight + asked.spent) / 1e3, 2),
+        "closed_form_most_kN": number(asked.quick.limit / 1e3, 2) if asked.quick else None,
+        "closed_form_length_m": number(asked.quick.length, 1) if asked.quick else None,
     }
 
 

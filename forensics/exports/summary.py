@@ -79,7 +79,9 @@ def summary_content(findings: Findings) -> dict[str, Any]:
                 **row,
                 "causes": causes_content(episode, episode.id in findings.profiles),
                 "pipe": pipe_content(findings.tolls.get(episode.id)),
-                "slack_off": slack_off_content(findings.tolls.get(episode.id)),
+                "slack_off": slack_off_content(
+                    findings.tolls.get(episode.id), float(findings.rig.wob_surface[episode.peak])
+                ),
             }
             for episode, row in zip(findings.episodes, episode_rows(findings), strict=True)
         ],

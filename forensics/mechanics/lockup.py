@@ -64,6 +64,50 @@ class HelicalRun:
         return math.sqrt(abs(self.growth) / self.helical_growth)
 
 
+@dataclass(frozen=True)
+class QuickLimit:
+    """The closed form's answer for the lowest stretch of the hole, with a helix all along.
+
+    Parameters
+    ----------
+    limit : float
+        Most load that reaches the bit through it, however much is slacked off [N].
+    length : float
+        Of the stretch, from the bit up [m].
+    inclination : float
+        Mean of the stretch [rad].
+    """
+
+    limit: float
+    length: float
+    inclination: float
+
+
+@dataclass(frozen=True)
+class SlackOff:
+    """What more slacking off would have brought to the lower end at one moment [N].
+
+    Parameters
+    ----------
+    more : float
+        Weight slacked off further: 50 kN, or what was left on the hook.
+    arrives : float
+        Of it, what would have reached the lower end.
+    limit : float
+        Most that can stand on the lower end, with all that hung slacked off.
+    spent : float
+        Weight slacked off further, beyond which less than a twentieth of any addition arrives; NaN for none.
+    quick : QuickLimit or None
+        The closed form's answer; None where the hole is not even over a long enough stretch.
+    """
+
+    more: float
+    arrives: float
+    limit: float
+    spent: float = float("nan")
+    quick: QuickLimit | None = None
+
+
 def sliding_angle(friction: float) -> float:
     """Give the inclination beyond which pipe does not slide down under its own weight, ``atan(1 / mu)``.
 

@@ -2,22 +2,27 @@
 
 from __future__ import annotations
 
+import math
+
 import numpy as np
 from numba import njit
 from numpy.typing import NDArray
 
-from forensics.loads import SlackOff
 from forensics.mechanics.kernels_judge import Setting, Stand, stand_at
 from forensics.mechanics.kernels_march import Array
 from forensics.mechanics.kernels_memory import Memory, march_down
 from forensics.mechanics.kernels_replay import SLIDE, Samples
+from forensics.mechanics.lockup import SlackOff
 from forensics.mechanics.offbottom import OffBottomModel
+from forensics.replay.quick import quick_limit
 from forensics.replay.room import fresh
 
 Floats = NDArray[np.float64]
 
 MORE = 50e3  # N; a load that a driller would slack off next (common practice, no source)
 THINNED_SECONDS = 30.0  # the limit moves with bit depth and friction only
+STEPS = 40  # in which all that hangs is slacked off, to see from where on nothing more arrives
+NOTHING = 0.05  # less of an increment than this is as good as nothing
 
 
 @njit(cache=True, nogil=True)
@@ -74,7 +79,19 @@ def slack_off(setting: Setting, memory: Memory, samples: Samples, row: int) -> S
         spent = memory._replace(tension=memory.tension.copy(), state=memory.state.copy())
         return max(_bit_load(setting, spent, place, samples.down[row], hookload), now)
 
-    return SlackOff(more, at_bit(top - more) - now, at_bit(min(top, 0.0)))
+    loads = np.array([at_bit(hookload) for hookload in np.linspace(top, min(top, 0.0), STEPS + 1)])
+    spent, quick = _spent(loads, max(top, 0.0)), quick_limit(setting, place)
+    return SlackOff(more, at_bit(top - more) - now, float(loads[-1]), spent, quick)
+
+
+def _spent(loads: Floats, top: float) -> float:
+    """Weight slacked off from which on next to nothing more arrives [N]; NaN where it does to the last."""
+    step = top / STEPS
+    if step <= 0.0:
+        return math.nan
+    arriving = np.flatnonzero(np.diff(loads) > NOTHING * step)
+    from_step = int(arriving[-1]) + 1 if len(arriving) else 0
+    return from_step * step if from_step < STEPS else math.nan
 
 
 def bit_load_limit(

@@ -11,11 +11,13 @@ from forensics.case import CriteriaSettings
 from forensics.episodes.catalogue import Consequence
 from forensics.episodes.pipe import PartToll, PipeToll, Turned
 from forensics.mechanics.fatigue import permissible_dogleg
+from forensics.mechanics.lockup import QuickLimit, SlackOff
 from forensics.mechanics.pipe import Tube
 from forensics.report import derived
 from forensics.report.describe import make_scene
 from forensics.report.elements import Notice, Table
 from forensics.report.sections import method, pipe
+from forensics.report.sections.episodes import slack_off_sentence
 
 NAN = float("nan")
 
@@ -122,6 +124,24 @@ def test_the_bend_is_told_with_its_share(findings):
 def test_pipe_that_never_turned_is_not_held_against_the_hole(findings):
     still = replace(findings.rig, turning=np.zeros_like(findings.rig.turning))
     assert derived.turning_bend(replace(findings, rig=still)) is None
+
+
+def test_slacking_off_is_told_with_the_closed_form_beside_it(with_tolls):
+    episode = with_tolls.episodes[2]
+    even = QuickLimit(210e3, 1500.0, float(np.radians(90.0)))
+
+    def said(slack: SlackOff) -> list[str]:
+        toll = replace(with_tolls.tolls[episode.id], slack_off=slack)
+        found = replace(with_tolls, tolls={**with_tolls.tolls, episode.id: toll})
+        return slack_off_sentence(make_scene(found, "metric"), episode)
+
+    march, closed = said(SlackOff(50e3, 3e3, 66e3, 100e3, even))
+    weight = with_tolls.rig.wob_surface[episode.peak] + 100e3
+    beyond = make_scene(with_tolls, "metric").show.value(weight, "force")
+    assert f"beyond {beyond} of surface weight less than a twentieth" in march
+    assert "lowest 1500 m at 90°" in closed
+    assert "210 kN" in closed
+    assert said(SlackOff(50e3, 3e3, 66e3)) == [march.split(", and beyond")[0]]
 
 
 def _depth(well, md):

@@ -10,6 +10,7 @@ from forensics.episodes.catalogue import Consequence, Episode, Kind, State
 from forensics.episodes.causes.words import cause_sentence
 from forensics.episodes.groups import is_routine
 from forensics.episodes.headline import gravity
+from forensics.mechanics.lockup import SlackOff
 from forensics.report import derived
 from forensics.report.elements import (
     Column,
@@ -147,7 +148,23 @@ def slack_off_sentence(scene: Scene, episode: Episode) -> list[str]:
         return [f"Nothing was left on the hook to slack off; {limit} stood on the {end}"]
     more, arrives = show.value(asked.more, "force"), show.value(asked.arrives, "force")
     said = f"Of {more} more slacked off at the peak {arrives} would have reached the {end}"
-    return [f"{said}; the most that any slacking off brings there is {limit}"]
+    said += f"; the most that any slacking off brings there is {limit}"
+    surface = float(scene.findings.rig.wob_surface[episode.peak]) + asked.spent
+    if math.isfinite(surface):
+        beyond = show.value(surface, "force")
+        said += f", and beyond {beyond} of surface weight less than a twentieth of any addition gets there"
+    return [said, *_quick(scene, asked)]
+
+
+def _quick(scene: Scene, asked: SlackOff) -> list[str]:
+    """Hold the closed form's limit beside the march's, where the hole is even enough for it."""
+    quick, show = asked.quick, scene.show
+    if quick is None:
+        return []
+    where = f"{show.value(quick.length, 'length', 0)} at {show.value(quick.inclination, 'angle', 0)}"
+    most = show.value(quick.limit, "force")
+    said = f"Were the lowest {where} a helix all along, at most {most} could get through it, however much is"
+    return [f"{said} slacked off (closed form: Mitchell 1986, Wu and Juvkam-Wold 1993)"]
 
 
 def _numbers(scene: Scene, episode: Episode) -> tuple[Number, ...]:
