@@ -18,22 +18,17 @@ from forensics.episodes.catalogue import (
 from forensics.episodes.causes.names import Cause
 from forensics.episodes.causes.weigh import UNTOLD
 from forensics.episodes.causes.words import cause_sentence
-from forensics.episodes.chances import CERTAIN
+from forensics.episodes.confidence import confidence
 from forensics.episodes.groups import DOING, is_routine, rule_label
 from forensics.episodes.material import NOISE_MULTIPLE, Material
 from forensics.episodes.measure import helical_span
-from forensics.episodes.ordinary import near_threshold, ordinary_loss
+from forensics.episodes.ordinary import ordinary_loss
 from forensics.episodes.sensitivity import sensitivity_sentence
 from forensics.episodes.spans import Span
 from forensics.estimate import Estimate
 
 #: Episodes told one by one below the sentence.
 TOLD = 6
-
-#: Chance that the rule holds from which a finding is called sure, and likely.
-SURE, LIKELY = 0.9, 0.6
-#: Friction factors outside this mean that the model is wrong (common practice, no source).
-USUAL = (0.10, 0.50)
 
 #: Torque left in a string that does not turn counts from this part of the usual rotating torque.
 TRAPPED = 0.3
@@ -79,7 +74,7 @@ def headline(material: Material, episodes: tuple[Episode, ...]) -> Headline:
         sentence = f"{sentence} {ordinary_loss(material, system, bool(main))}".rstrip()
     return Headline(
         sentence=sentence,
-        confidence=_confidence(material, main),
+        confidence=confidence(material, main),
         details=_details(material, episodes, main, system),
         can_not_tell=_unknown(material, main),
     )
@@ -183,49 +178,6 @@ def _beyond(residual: Estimate, quantity: str, system: str) -> str:
     low, high = sorted((abs(residual.low), abs(residual.high)))
     size = Estimate(abs(residual.value), low, high, residual.source)
     return f"{wording.size(size, quantity, system)} {side} than the model says"
-
-
-def _friction_words(material: Material) -> tuple[str, bool]:
-    """Say what the friction rests on, and whether that is weak."""
-    sections = [s for s in material.calibration.sections if s.bottom > s.top]
-    assumed = [s.kind for s in sections if not s.factor.determined]
-    if assumed:
-        return f"the {' and '.join(assumed)}-hole friction is assumed, not determined", True
-    odd = [s for s in sections if not USUAL[0] <= s.factor.value <= USUAL[1]]
-    if odd:
-        found = " and ".join(f"{s.kind}-hole {s.factor.value:.2f}" for s in odd)
-        said = f"the friction found ({found}) is outside what any mud gives"
-        return f"{said}, so string, mud, survey or block weight may be wrong", True
-    return "friction was determined from this run's own weights", False
-
-
-def _confidence(material: Material, main: list[Episode]) -> str:
-    """Grade the finding, and say on what."""
-    friction, weak = _friction_words(material)
-    blind = material.log.get("rpm") is None and material.log.get("torque") is None
-    if blind:
-        friction += "; rotation was not logged and is guessed"
-    weak |= blind
-    if material.doubts:
-        friction += "; the log contradicts the case's survey, string or mud (see the data account)"
-        weak = True
-    if not material.calibration.readings and not material.calibration.block_weight.determined:
-        return (
-            "low: the log shows neither a steady off-bottom weight nor the block's weight, so friction and "
-            "block weight are assumed"
-        )
-    if not main:
-        near = near_threshold(material)
-        said = f"{friction}; {near}" if near else friction
-        return f"{'moderate' if weak or near else 'high'}: {said}"
-    chance = main[0].probability
-    if not np.isfinite(chance):
-        return f"low: the spread over friction draws was not reckoned; {friction}"
-    grade = "high" if chance >= SURE and not weak else "moderate" if chance >= LIKELY else "low"
-    if blind and main[0].kind is Kind.LOCKUP:  # its rule asks for a string that doesn't turn
-        grade = "low"
-    share = "every draw" if chance >= CERTAIN else f"{100.0 * chance:.0f} % of the draws"
-    return f"{grade}: its rule holds in {share} of friction, weight, survey and hole; {friction}"
 
 
 def _details(

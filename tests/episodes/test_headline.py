@@ -9,9 +9,10 @@ import numpy as np
 import pytest
 
 from forensics.episodes.catalogue import Kind
+from forensics.episodes.confidence import confidence
 from forensics.episodes.describe import describe
-from forensics.episodes.headline import _confidence
 from forensics.episodes.wording import period
+from forensics.loads import BitWitness
 from forensics.rig.view import Activity
 
 
@@ -60,9 +61,9 @@ def test_weight_lost_to_plain_friction_is_told(make_run):
 def test_a_near_miss_lowers_the_confidence(make_run):
     run = make_run()
     run.loads["peak_ratio"][100:200] = 0.95
-    confidence = describe(run.material()).headline.confidence
-    assert confidence.startswith("moderate")
-    assert "0.95" in confidence
+    told = describe(run.material()).headline.confidence
+    assert told.startswith("moderate")
+    assert "0.95" in told
 
 
 def test_field_units(make_run):
@@ -91,9 +92,9 @@ def test_assumed_friction_lowers_the_confidence(make_run):
     run = stacked(make_run)
     sections = tuple(replace(s, factor=replace(s.factor, determined=False)) for s in run.calibration.sections)
     run.calibration = replace(run.calibration, sections=sections)
-    confidence = describe(run.material()).headline.confidence
-    assert not confidence.startswith("high")
-    assert "assumed" in confidence
+    told = describe(run.material()).headline.confidence
+    assert told.startswith("moderate")
+    assert "assumed" in told
 
 
 @pytest.mark.parametrize("odd", [0.06, 0.62])
@@ -101,9 +102,28 @@ def test_a_factor_no_mud_gives_lowers_the_confidence(make_run, odd):
     run = stacked(make_run)
     sections = tuple(replace(s, factor=replace(s.factor, value=odd)) for s in run.calibration.sections)
     run.calibration = replace(run.calibration, sections=sections)
-    confidence = describe(run.material()).headline.confidence
-    assert not confidence.startswith("high")
-    assert f"{odd:.2f}" in confidence
+    told = describe(run.material()).headline.confidence
+    assert told.startswith("low")
+    assert f"{odd:.2f}" in told
+
+
+def test_a_log_that_contradicts_its_case_is_never_sure(make_run):
+    material = replace(stacked(make_run).material(), doubts=("the string does not fit",))
+    told = describe(material).headline.confidence
+    assert told.startswith("low")
+    assert "contradicts" in told
+
+
+@pytest.mark.parametrize(("apart", "word", "grade"), [(0.0, "agrees", "high"), (60e3, "another", "moderate")])
+def test_the_bits_own_witness_supports_or_weakens(make_run, apart, word, grade):
+    material = stacked(make_run).material()
+    n = len(material.log)
+    own, sigma = np.full(n, 40e3), np.full(n, 4e3)
+    none = np.zeros(n)
+    witness = BitWitness(own + apart, sigma, none.astype(np.int8), own, sigma, none, none)
+    told = describe(replace(material, loads=replace(material.loads, witness=witness))).headline.confidence
+    assert told.startswith(grade)
+    assert word in told
 
 
 def test_without_draws_the_spread_is_said_to_be_unknown(make_run):
@@ -139,8 +159,8 @@ def test_nothing_read_off_the_log_is_low_confidence(make_run):
         readings=(),
         block_weight=replace(material.calibration.block_weight, determined=False),
     )
-    confidence = describe(replace(material, calibration=bare)).headline.confidence
-    assert confidence.startswith("low: the log shows neither")
+    told = describe(replace(material, calibration=bare)).headline.confidence
+    assert told.startswith("low: the log shows neither")
 
 
 def test_a_lockup_is_not_sure_where_rotation_was_not_logged(make_run):
@@ -148,5 +168,5 @@ def test_a_lockup_is_not_sure_where_rotation_was_not_logged(make_run):
     found = replace(describe(material).episodes[0], probability=0.99)
     kept = {name: values for name, values in material.log.values.items() if name not in ("rpm", "torque")}
     blind = replace(material, log=replace(material.log, values=kept))
-    assert _confidence(blind, [replace(found, kind=Kind.LOCKUP)]).startswith("low")
-    assert _confidence(blind, [found]).startswith("moderate")
+    assert confidence(blind, [replace(found, kind=Kind.LOCKUP)]).startswith("low")
+    assert confidence(blind, [found]).startswith("moderate")
