@@ -19,6 +19,10 @@ UNPACK_ERRORS = (OSError, EOFError, zlib.error)
 MOST_TIMES, SMALL = 200, 2**26
 # No file of one run comes near this unpacked [bytes].
 MOST = 2**32
+# No row of a log comes near this, and parsed it takes many times its size [bytes].
+LONGEST_LINE = 2**22
+# A file is searched for line ends at so many places a longest line; packed files below a size not at all.
+STEPS, PIECE, FEW = 4, 2**14, 2**21
 
 
 class _Bounded(io.RawIOBase):
@@ -86,3 +90,36 @@ def read_bytes(path: Path) -> bytes:
             return file.read()
     except UNPACK_ERRORS as error:
         raise LogError(f"the file can't be unpacked: {error}", file=path) from error
+
+
+def refuse_endless_line(path: Path) -> None:
+    """Refuse a text file with a line far longer than any row, before a parser builds it up in memory.
+
+    Raises
+    ------
+    LogError
+        If more than `LONGEST_LINE` bytes hold no line end.
+
+    Notes
+    -----
+    A plain file is looked at here and there, each time as far as the next line end: a file of ordinary rows
+    costs a hundredth of its reading.
+    """
+    packed = is_packed(path)
+    if path.stat().st_size < (FEW if packed else LONGEST_LINE):
+        return
+    try:
+        with open_bytes(path) as file:
+            without = 0
+            while piece := file.read(PIECE):
+                ends = b"\n" in piece or b"\r" in piece
+                without = 0 if ends else without + len(piece)
+                if without > LONGEST_LINE:
+                    raise LogError(
+                        f"one line is longer than {LONGEST_LINE / 2**20:g} MiB; expected rows of data",
+                        file=path,
+                    )
+                if ends and not packed:
+                    file.seek(LONGEST_LINE // STEPS, io.SEEK_CUR)
+    except UNPACK_ERRORS as error:
+        raise LogError(f"the file can't be read: {error}", file=path) from error

@@ -9,17 +9,18 @@ from pathlib import Path
 
 from forensics.errors import LogError, no_file
 from forensics.logs import csv_log, las_log, parquet_log, wits_log, witsml_log
-from forensics.logs.packed import UNPACK_ERRORS, open_bytes
+from forensics.logs.packed import UNPACK_ERRORS, open_bytes, refuse_endless_line
 from forensics.logs.raw import Keep, RawLog
 
 
 @dataclass(frozen=True)
 class Reader:
-    """A format: `sniff` says whether a file is one of its kind, `read` reads it."""
+    """A format: `sniff` tells a file of its kind, `read` reads it; in `rows` a line is a row."""
 
     name: str
     sniff: Callable[[Path, bytes], bool]
     read: Callable[[Path, bytes, Keep], RawLog]
+    rows: bool = False
 
 
 # The more particular format stands first; delimited text takes what is left.
@@ -27,8 +28,8 @@ READERS: tuple[Reader, ...] = (
     Reader("Parquet", parquet_log.sniff, parquet_log.read),
     Reader("WITSML", witsml_log.sniff, witsml_log.read),
     Reader("WITS", wits_log.sniff, wits_log.read),
-    Reader("LAS", las_log.sniff, las_log.read),
-    Reader("CSV", csv_log.sniff, csv_log.read),
+    Reader("LAS", las_log.sniff, las_log.read, rows=True),
+    Reader("CSV", csv_log.sniff, csv_log.read, rows=True),
 )
 
 # First bytes of zip files (spreadsheets are such), of older spreadsheets, 7z, xz and bzip2 files.
@@ -95,6 +96,8 @@ def read_raw(path: Path, keep: Keep) -> RawLog:
     head = read_head(path)
     for reader in READERS:
         if reader.sniff(path, head):
+            if reader.rows:
+                refuse_endless_line(path)
             return reader.read(path, head, keep)
     known = ", ".join(reader.name for reader in READERS)
     raise LogError(f"the file is in no known format; known are {known}", file=path)

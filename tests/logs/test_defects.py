@@ -221,7 +221,9 @@ def test_every_file_of_defects_is_used():
              "null_smeared.csv", "garbled_lines.csv", "last_line_breaks_off.csv", "all_zero_channels.csv",
              "rpm_zero_while_torque_is_not.csv", "run_on_and_broken_lines.las",
              "stamp_out_of_line.csv", "stamp_far_ahead.csv", "frames_broken_off.wits",
-             "stars_and_errors.csv", "infinities.las", "clock_set_back.csv"}  # fmt: skip
+             "stars_and_errors.csv", "infinities.las", "clock_set_back.csv",
+             "torque_at_the_end_of_its_count.csv", "pressure_at_the_end_of_its_count.csv",
+             "density_in_pounds_per_gallon.csv", "two_hookloads_apart.csv"}  # fmt: skip
     assert {path.name for path in DATA.iterdir()} == (SAME.keys() | REFUSED.keys() | other) - {
         "no_such_file.csv"
     }
@@ -397,3 +399,31 @@ def test_average_hookload_is_preferred_and_said_so():
 def test_bad_zone_is_an_input_error():
     with pytest.raises(InputError, match="unknown time zone"):
         read("clean.csv", timezone="Mars/Olympus")
+
+
+@pytest.mark.parametrize(
+    ("name", "channel"),
+    [
+        ("torque_at_the_end_of_its_count.csv", "torque"),
+        ("pressure_at_the_end_of_its_count.csv", "standpipe_pressure"),
+    ],
+)
+def test_readings_at_the_end_of_a_count_are_set_aside_by_that_name(name, channel):
+    log = read(name)
+    assert done(log)["saturated", channel] == 3
+    assert np.isnan(log.values[channel][5:8]).all()
+    assert np.isfinite(log.values[channel][8:]).all()
+
+
+def test_density_in_another_unit_is_left_out_with_the_likely_one():
+    log = read("density_in_pounds_per_gallon.csv")
+    assert "mud_density" not in log.values
+    assert any("likely in ppg (1.294 g/cm3)" in words for words in log.warnings)
+    mended = read("density_in_pounds_per_gallon.csv", mud_density=ChannelChoice("mud density [g/cm3]", "ppg"))
+    np.testing.assert_allclose(mended.values["mud_density"], 1294.0, rtol=0.02)
+
+
+def test_two_hookloads_that_differ_are_told_by_how_much():
+    log = read("two_hookloads_apart.csv")
+    np.testing.assert_allclose(log.values["hookload"], HOOKLOAD)
+    assert any("'THKD'; that reads 40.0 kN less" in words for words in log.warnings)

@@ -94,9 +94,31 @@ def test_a_damaged_parquet_file_is_refused(tmp_path):
 @pytest.mark.parametrize("name", ["x.csv", "x.las"])
 def test_one_endless_line_is_refused(tmp_path, name):
     words = refusal(tmp_path / name, b"1,2," * 5_000_000)
-    assert "no line break" in words or "no data section" in words
+    assert "no line break" in words or "one line is longer" in words
 
 
 def test_a_million_columns_are_refused(tmp_path):
     data = "a," * 1_000_000 + "\n" + ("1," * 1_000_000 + "\n") * 2
     assert "no line break" in refusal(tmp_path / "x.csv", data)
+
+
+@pytest.mark.parametrize("packed_up", [False, True])
+@pytest.mark.parametrize("name", ["x.csv", "x.las"])
+@pytest.mark.parametrize("before", [0, 70, 5000])
+def test_a_row_without_end_after_good_ones_is_refused(tmp_path, monkeypatch, name, packed_up, before):
+    monkeypatch.setattr(packed, "LONGEST_LINE", 2**18)
+    monkeypatch.setattr(packed, "FEW", 2**8)
+    head = "~V\n VERS. 2.0 :\n~C\n TIME.S :\n HKLD.KN :\n~A\n" if name == "x.las" else "time,HKLD [kN]\n"
+    mark = " " if name == "x.las" else ","
+    rows = "".join(f"{i}{mark}1200\n" for i in range(60 + before))
+    data = (head + rows + f"7{mark}" * 300_000 + "\n" + rows).encode()
+    path = tmp_path / (f"{name}.gz" if packed_up else name)
+    assert "one line is longer" in refusal(path, gzip.compress(data) if packed_up else data)
+
+
+@pytest.mark.parametrize("end", ["\n", "\r\n", "\r"])
+def test_ordinary_rows_are_never_taken_for_one(tmp_path, monkeypatch, end):
+    monkeypatch.setattr(packed, "LONGEST_LINE", 2**16)
+    path = tmp_path / "x.csv"
+    path.write_bytes(end.join(["a,b", *(f"{i},{'9' * 200}" for i in range(4000))]).encode())
+    packed.refuse_endless_line(path)
