@@ -43,8 +43,8 @@ _PATTERNS = tuple(
     for pattern, channel in (
         (r"^(?:dh|downhole|mwd).*(?:wob|weightonbit)|(?:wob|weightonbit).*downhole", "downhole_wob"),
         (r"^(?:dh|downhole|mwd).*(?:torque|tq)|torque.*downhole", "downhole_torque"),
-        (r"(?:hook|hk).*(?:max|mx)", "hookload_max"),
-        (r"hookl|hookweight|hkl|stringweight|hoistload", "hookload"),
+        (r"(?:hook|(?<!s)hk).*(?:max|mx)", "hookload_max"),
+        (r"hookl|hookweight|(?<!s)hkl|stringweight|hoistload", "hookload"),
         (r"weightonbit|wtonbit|bitw|wob", "wob"),
         (r"bit.*(?:dep|md|dpt)|^bitd|^bdep|dep.*bit", "bit_depth"),
         (r"(?:hole|total).*(?:dep|md)|^hd(?:ep|th|pt)|^tdep|dep.*hole", "hole_depth"),

@@ -1,6 +1,7 @@
 """The inspection, of a case and of bare logs, and the case file it drafts."""
 
 import shutil
+from pathlib import Path
 
 import numpy as np
 import pytest
@@ -10,6 +11,7 @@ from forensics.case import load_case
 from forensics.errors import InputError
 from pipelines import cli, drafting, inspection
 
+SMALL = Path(__file__).parents[1] / "data" / "logs"
 JOB = cases.Job(duration=3700.0)
 
 
@@ -169,3 +171,19 @@ def test_well_objects_are_told_from_logs(copy):
         "survey": copy / "path.xml", "string": copy / "pipe.xml", "hole": copy / "hole.xml"
     }  # fmt: skip
     assert made.logs == (copy / "time.csv",)
+
+
+def told(path, folder):
+    """Give what inspecting a file says, or the words of its refusal."""
+    try:
+        return inspection.run([path], folder, quiet=True).text
+    except InputError as refusal:
+        return refusal.text
+
+
+def test_every_small_file_gives_a_text_or_one_refusal(tmp_path, monkeypatch):
+    monkeypatch.setattr("forensics.report.render.render_report", lambda report: report.title)
+    for path in sorted(SMALL.iterdir()):
+        words = told(path, tmp_path / path.name)
+        assert path.name in words
+        assert "What was read" in words or "\n" not in words, path.name
