@@ -141,6 +141,8 @@ def test_slacking_off_is_told_with_the_closed_form_beside_it(with_tolls):
     assert f"beyond {beyond} of surface weight less than a twentieth" in march
     assert "lowest 1500 m at 90°" in closed
     assert "210 kN" in closed
+    locked = said(SlackOff(50e3, 0.0, 66e3, 0.0))[0]
+    assert locked.endswith(", and less than a twentieth of any addition gets there")
     assert said(SlackOff(50e3, 3e3, 66e3)) == [march.split(", and beyond")[0]]
 
 

@@ -151,8 +151,8 @@ def slack_off_sentence(scene: Scene, episode: Episode) -> list[str]:
     said += f"; the most that any slacking off brings there is {limit}"
     surface = float(scene.findings.rig.wob_surface[episode.peak]) + asked.spent
     if math.isfinite(surface):
-        beyond = show.value(surface, "force")
-        said += f", and beyond {beyond} of surface weight less than a twentieth of any addition gets there"
+        beyond = f" beyond {show.value(surface, 'force')} of surface weight" if asked.spent > 0.0 else ""
+        said += f", and{beyond} less than a twentieth of any addition gets there"
     return [said, *_quick(scene, asked)]
 
 
