@@ -141,7 +141,7 @@ def _limit() -> float:
 def _ratings() -> float:
     tube = Tube(5 * INCH, 4.276 * INCH)
     grades = (75000, 95000, 135000)
-    pulls = [pipe.tensile_yield(tube, grade * PSI) / LBF for grade in grades]
+    pulls = [float(pipe.tension_left(tube, grade * PSI, 0.0)) / LBF for grade in grades]
     turns = [pipe.torsional_yield(tube, grade * PSI) / FT_LBF for grade in grades]
     return worst(pulls + turns, (395600, 501090, 712070, 41170, 52140, 74100))
 

@@ -15,7 +15,6 @@ from numpy.typing import ArrayLike, NDArray
 
 from forensics.mechanics.critical import CRITERIA, HELICAL_ONSETS, Place
 from forensics.mechanics.eigen import Floats
-from forensics.mechanics.selfconsistent import local_load
 from forensics.mechanics.threshold import helical_load
 from forensics.units import display_unit
 
@@ -103,35 +102,6 @@ def band_words(least: int, most: int | None = None) -> str:
     return ", ".join(f"{word} {_list(some)}" for word, some in parts if some)
 
 
-def outside_validity(place: Place) -> tuple[str, ...]:
-    """Say which published criteria are used beyond the range their authors give, at one place.
-
-    Parameters
-    ----------
-    place : Place
-        One place: scalars.
-
-    Returns
-    -------
-    tuple of str
-        One sentence a criterion; empty where all hold.
-    """
-    found = []
-    degrees = math.degrees(float(np.asarray(place.inclination)))
-    bend = math.degrees(float(np.hypot(place.build, np.asarray(place.turn) * np.sin(place.inclination)))) * 30
-    for criterion, validity in CRITERIA.items():
-        if bool(np.all(validity.covers(place))):
-            continue
-        low, high = (math.degrees(angle) for angle in validity.inclination)
-        most = math.degrees(validity.curvature) * 30
-        author = criterion.__name__.rsplit("_", 1)
-        found.append(
-            f"{author[0].replace('_', ' ').title()} {author[1]} holds for {low:.0f} to {high:.0f} deg "
-            f"and up to {most:.1f} deg/30 m; here {degrees:.1f} deg and {bend:.1f} deg/30 m"
-        )
-    return tuple(found)
-
-
 def validity_words(place: Place, system: str = "metric") -> str:
     """Say at one place which helical onsets are used beyond the range they were published for.
 
@@ -170,42 +140,6 @@ def validity_words(place: Place, system: str = "metric") -> str:
     ]
     bend = float(np.hypot(place.build, np.asarray(place.turn) * math.sin(angle))) / scale
     return f"{'; '.join(said)}; here {math.degrees(angle):.1f} deg and {bend:.1f} {label}"
-
-
-def clearance_band(
-    stiffness: ArrayLike, contact: ArrayLike, hole: ArrayLike, body: ArrayLike, joint: ArrayLike
-) -> tuple[Floats, Floats]:
-    """Give the local load by the clearance of the body and by that of the tool joint.
-
-    Parameters
-    ----------
-    stiffness : array_like
-        EI of the body [N.m2].
-    contact : array_like
-        Contact force per length [N/m].
-    hole, body, joint : array_like
-        Diameters [m]; `joint` not smaller than `body`.
-
-    Returns
-    -------
-    tuple of ndarray
-        Low (body) and high (joint) F_DP [N].
-
-    Notes
-    -----
-    Joints hold the pipe off the wall: the joint's clearance is right while the body between joints does not
-    touch (see `tool_joint`), the body's where it does. The load goes as one over the root of the
-    clearance, so that for ordinary drill pipe the choice moves it by about a third; the helix's own contact
-    force, which goes with the clearance, moves by about half the other way.
-
-    References
-    ----------
-    Mitchell, R. F. (2000), "Helical buckling of pipe with connectors in vertical wells", SPE Drill. & Compl.
-    15 (from memory: joints raise the load or not, by their spacing over the pitch).
-    """
-    hole = np.asarray(hole, dtype=float)
-    low = local_load(stiffness, contact, (hole - body) / 2)
-    return low, local_load(stiffness, contact, (hole - joint) / 2)
 
 
 def _list(names: list[str]) -> str:

@@ -98,10 +98,6 @@ class Buckled:
     shortening: Floats
     rate: Floats
 
-    def bending_stress(self, outer_diameter: ArrayLike, inertia: ArrayLike) -> Floats:
-        """Give the bending stress at the outer wall, ``M OD / (2 I)`` [Pa]."""
-        return self.moment * np.asarray(outer_diameter) / (2 * np.asarray(inertia, dtype=float))
-
 
 def helical(place: PipeInHole) -> Buckled:
     """Give what the helix does: Lubinski's helix, pressed on the wall by its side weight beside.

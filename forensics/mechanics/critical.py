@@ -6,7 +6,7 @@ file to those for helical onset. What the replay compares with is in `threshold`
 contact force that is there, plus the near-vertical term.
 
 What the criteria leave out stands elsewhere: torque lowers the helical ones by some per cent (`torque`); tool
-joints decide the clearance (`tool_joint`, and the two loads of `band.clearance_band`); friction on the pipe
+joints decide the clearance (`tool_joint`; a report gives both); friction on the pipe
 raises all of them, which nothing here does; and that authors differ by a factor of two is told as a band
 (`band`).
 """

@@ -96,7 +96,8 @@ class SlackOff:
     limit : float
         Most that can stand on the lower end, with all that hung slacked off.
     spent : float
-        Weight slacked off further, beyond which less than a twentieth of any addition arrives; NaN for none.
+        Weight slacked off further, beyond which less than a twentieth of any addition arrives; NaN where more
+        than that does until nine tenths of what hung are slacked off.
     quick : QuickLimit or None
         The closed form's answer; None where the hole is not even over a long enough stretch.
     """

@@ -14,8 +14,8 @@ from numpy.typing import ArrayLike
 
 from forensics.errors import CaseError, nearest
 from forensics.mechanics.eigen import Floats
+from forensics.units import G
 
-G = 9.80665
 SHEAR_YIELD = 0.577
 """Yield in shear over yield in tension, as API RP 7G rounds 1/sqrt(3)."""
 
@@ -123,24 +123,6 @@ def worn(tube: Tube, pipe_class: str) -> Tube:
     return Tube(bore + WALL_LEFT[pipe_class] * (tube.outer_diameter - bore), bore)
 
 
-def tensile_yield(tube: Tube, yield_strength: float) -> float:
-    """Give the pull at which the body yields, ``A Y``.
-
-    Parameters
-    ----------
-    tube : Tube
-        The body, worn as its class says.
-    yield_strength : float
-        Minimum yield stress [Pa].
-
-    Returns
-    -------
-    float
-        [N]
-    """
-    return tube.area * yield_strength
-
-
 def torsional_yield(tube: Tube, yield_strength: float, tension: ArrayLike = 0.0) -> Floats:
     """Give the torque at which the body yields while it carries a tension.
 
@@ -182,7 +164,7 @@ def tension_left(tube: Tube, yield_strength: float, torque: ArrayLike) -> Floats
     Returns
     -------
     ndarray
-        [N]; zero where the torque alone yields it.
+        ``A Y`` without torque [N]; zero where the torque alone yields it.
     """
     shear = np.asarray(torque, dtype=float) / (SHEAR_YIELD * tube.polar_modulus)
     return tube.area * np.sqrt(np.maximum(yield_strength**2 - shear**2, 0.0))

@@ -23,6 +23,7 @@ MORE = 50e3  # N; a load that a driller would slack off next (common practice, n
 THINNED_SECONDS = 30.0  # the limit moves with bit depth and friction only
 STEPS = 40  # in which all that hangs is slacked off, to see from where on nothing more arrives
 NOTHING = 0.05  # less of an increment than this is as good as nothing
+LAST = 0.9  # of what hangs: that the rest of it brings nothing is not worth telling
 
 
 @njit(cache=True, nogil=True)
@@ -85,13 +86,13 @@ def slack_off(setting: Setting, memory: Memory, samples: Samples, row: int) -> S
 
 
 def _spent(loads: Floats, top: float) -> float:
-    """Weight slacked off from which on next to nothing more arrives [N]; NaN where it does to the last."""
+    """Weight slacked off from which on next to nothing more arrives [N]; NaN where some does to the last."""
     step = top / STEPS
     if step <= 0.0:
         return math.nan
     arriving = np.flatnonzero(np.diff(loads) > NOTHING * step)
     from_step = int(arriving[-1]) + 1 if len(arriving) else 0
-    return from_step * step if from_step < STEPS else math.nan
+    return from_step * step if from_step <= LAST * STEPS else math.nan
 
 
 def bit_load_limit(

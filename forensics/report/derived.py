@@ -10,10 +10,11 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics.episodes.catalogue import Episode
+from forensics.mechanics import helix
 from forensics.mechanics.fatigue import HALF_JOINT, permissible_dogleg
-from forensics.mechanics.helix import bending_stress
 from forensics.mechanics.hoisting import block_efficiency, derrick_load
 from forensics.mechanics.pipe import Tube, worn
+from forensics.mechanics.selfconsistent import local_load
 from forensics.mechanics.toll import fatigue_grade
 from forensics.mechanics.tool_joint import sag
 from forensics.well.string import PIPE, Component, buoyed_weight
@@ -119,7 +120,7 @@ def helix_bending_stress(findings: Findings, episode: Episode, compression: floa
     diameter = float(well.hole.diameter_at(episode.peak_md)[0])
     contact = part.contact_diameter(findings.case.criteria.clearance)
     clearance = max((diameter - contact) / 2.0, 0.0)
-    return float(bending_stress(compression, clearance, part.od, part.inertia))
+    return float(helix.bending_stress(compression, clearance, part.od, part.inertia))
 
 
 def sag_between_joints(findings: Findings, episode: Episode) -> tuple[float, float] | None:
@@ -232,12 +233,14 @@ def other_threshold(findings: Findings, profile: Profile) -> Floats:
 
     Notes
     -----
-    Only the local term 2 sqrt(EI w_c / r) follows the clearance; the term for near-vertical hole stays.
-    The wall force of a helix, r F^2 / (4 EI), is not part of w_c.
+    Joints hold the pipe off the wall: theirs is the clearance while the body between them does not touch (see
+    `mechanics.tool_joint`), the body's where it does. Only the local load follows it, by a third for ordinary
+    drill pipe; the term for near-vertical hole stays. The wall force of a helix is not part of the contact.
 
     References
     ----------
-    Dawson, R. and Paslay, P. R. (1984), Drillpipe buckling in inclined holes.
+    Mitchell, R. F. (2000), "Helical buckling of pipe with connectors in vertical wells", SPE Drill. & Compl.
+    15 (from memory: joints raise the load or not, by their spacing over the pitch).
     """
     well = findings.well
     above_bit = np.clip(float(np.nanmax(profile.md)) - profile.md, 0.0, None)
@@ -247,14 +250,13 @@ def other_threshold(findings: Findings, profile: Profile) -> Floats:
     hole = well.hole.diameter_at(profile.md)
     radii = []
     for kind in (chosen, other):
-        contact = np.array([part.contact_diameter(kind) for part in well.string.components])
-        radii.append(np.maximum((hole - contact[index]) / 2.0, 1e-3))
+        diameter = np.array([part.contact_diameter(kind) for part in well.string.components])
+        radii.append(np.maximum((hole - diameter[index]) / 2.0, 1e-3))
     stiffness = well.string.values("stiffness")[index]
-    compression = np.clip(-profile.tension, 0.0, None)
-    helix = np.where(profile.state == 2, radii[0] * compression**2 / (4.0 * stiffness), 0.0)
-    local = 2.0 * np.sqrt(stiffness * np.clip(profile.contact - helix, 0.0, None) / radii[0])
-    moved: Floats = profile.sinusoidal + local * (np.sqrt(radii[0] / radii[1]) - 1.0)
-    return moved
+    wound = np.where(profile.state == 2, helix.contact_force(-profile.tension, stiffness, radii[0]), 0.0)
+    contact = np.clip(profile.contact - wound, 0.0, None)
+    here, there = (local_load(stiffness, contact, radius) for radius in radii)
+    return profile.sinusoidal + there - here
 
 
 def margins(findings: Findings) -> tuple[Margin, ...]:

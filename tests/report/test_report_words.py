@@ -14,6 +14,7 @@ from forensics.report import derived
 from forensics.report.describe import make_scene
 from forensics.report.scene import main_episodes
 from forensics.report.sections.first import describe_margins
+from forensics.report.sections.run import slides_up_to
 from forensics.report.words import THIN, Show, count, duration, fixed
 
 METRIC = Show("metric", "Europe/Oslo")
@@ -161,3 +162,13 @@ def test_crown_carries_hook_fast_line_and_dead_line(build, build_case):
     assert derived.crown_load(made) / largest == pytest.approx(1 + 1.188 / 8 + 1 / 8, rel=1e-3)
     note = describe_margins(make_scene(made, "metric")).note
     assert f"puts {METRIC.value(derived.crown_load(made), 'force')} on the crown" in note
+
+
+def test_pipe_slides_up_to_a_steepness_that_friction_sets(build):
+    """As the trade's tables have it: at 0.25 up to 75.96 degrees, at 0.2 and 0.3 up to 78.69 and 73.30."""
+    made = build(n=100)
+    section = dataclasses.replace(made.calibration.sections[-1], factor=Estimate(0.25, 0.2, 0.3, "readings"))
+    made = dataclasses.replace(made, calibration=dataclasses.replace(made.calibration, sections=(section,)))
+    (row,) = slides_up_to(make_scene(made, "metric"))
+    assert row.value == "76.0°"
+    assert row.interval == "73.3 to 78.7°"

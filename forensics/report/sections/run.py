@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 import math
+from dataclasses import replace
 
 import numpy as np
 
+from forensics.mechanics.lockup import sliding_angle
 from forensics.report.elements import Column, Number, Numbers, Section, Table
 from forensics.report.scene import Scene
 from forensics.report.sections.first import friction_numbers, number, section_name
@@ -124,10 +126,27 @@ def string_table(well: Well, show: Show) -> Table:
     return Table("The string (string table)", columns, rows, note)
 
 
+def slides_up_to(scene: Scene) -> list[Number]:
+    """Inclination up to which pipe slides down the open hole under its own weight."""
+    factors = [s.factor for s in scene.findings.calibration.sections if s.kind == "open"]
+    if not factors:
+        return []
+    mu = factors[-1]
+    angle, low, high = (sliding_angle(max(one, 0.0)) for one in (mu.value, mu.high, mu.low))
+    return [
+        number(
+            "inclination up to which pipe slides by its own weight, open hole",
+            replace(mu, value=angle, low=low, high=high, source="atan(1 / friction factor)"),
+            "angle",
+            scene.show,
+        )
+    ]
+
+
 def calibration_numbers(scene: Scene) -> tuple[Number, ...]:
     """Friction, block weight by the rig's view and the calibration's, pipe above the rotary."""
     found, show = scene.findings, scene.show
-    rows = friction_numbers(scene)
+    rows = [*friction_numbers(scene), *slides_up_to(scene)]
     rows.append(number("block weight before calibration", found.rig.block_weight, "force", show))
     rows.append(
         number(
