@@ -12,7 +12,7 @@ Floats = NDArray[np.float64]
 # What a row of a record tells of the rig's work; at least two of them must be there.
 MECHANICS = ("hookload", "wob", "torque", "rpm", "standpipe_pressure", "flow_in")
 # Rows while the bit moved that are needed to judge by, and how far it moves over so many rows [m].
-FEWEST, ACROSS, MOVED = 200, 20, 0.1
+FEWEST, ACROSS, MOVED = 200, 20, 0.03
 
 
 @dataclass(frozen=True)
