@@ -84,13 +84,13 @@ def drag_lines(
     """
     samples = prepared.samples
     moving, helical = found.full, found.state == 2
-    away = samples.free & (rig.direction != 0)
-    still = samples.free & (rig.direction == 0) & (samples.mode == SLIDE)
+    up, down = samples.free & (rig.direction < 0), samples.free & (rig.direction > 0)
+    still = samples.free & (rig.direction == 0) & (samples.mode == SLIDE) & _lifted(rig)
     string = prepared.hookload - prepared.hanging
     kinds = {
         # a helix has its own drag: the line of a string that has none says nothing of it
-        "slack_off": (away & (moving == 1) & ~helical, still & ~helical, -1.0),
-        "pick_up": (away & (moving == -1), still, 1.0),
+        "slack_off": (down & (moving == 1) & ~helical, still & ~helical, -1.0),
+        "pick_up": (up & (moving == -1), still, 1.0),
         "rotating": (samples.free & (moving == 2), np.zeros_like(still), 0.0),
     }
     expected = np.full(len(samples.bit), np.nan)
@@ -104,6 +104,14 @@ def drag_lines(
             rows = rows | held
             expected[rows] = weight[rows] + prepared.hanging[rows]
     return expected, prepared.hookload - expected
+
+
+def _lifted(rig: RigView) -> NDArray[np.bool_]:
+    """Mark rows at which the block has moved since slips: till then they may hold part of the string."""
+    rows = np.arange(len(rig.slips))
+    slips = np.maximum.accumulate(np.where(rig.slips, rows, -1))
+    moved = np.maximum.accumulate(np.where((rig.direction != 0) & ~rig.slips, rows, -1))
+    return moved > slips
 
 
 def torque_lines(

@@ -27,10 +27,18 @@ Floats = NDArray[np.float64]
 
 BAND_NOISES = 1.5
 
+TALLEST = 70.0  # m; no block travels further
+
 
 def block_zero(rig: RigView) -> float:
-    """Block height taken as no pipe above the rotary: the lowest seen out of slips [m]."""
+    """Block height taken as no pipe above the rotary: the lowest seen out of slips [m].
+
+    Infinite, so that none ever is above it, where heights span more than any derrick: they were made up
+    from bit depth over several stands, and say nothing of how much pipe stands above the rotary.
+    """
     height = rig.block[~rig.slips & np.isfinite(rig.block)]
+    if len(height) and np.ptp(height) > TALLEST:
+        return float("inf")
     return float(np.percentile(height, 1.0)) if len(height) else 0.0
 
 

@@ -20,6 +20,8 @@ from forensics.well.model import Well
 Floats = NDArray[np.float64]
 
 SMOOTH_SECONDS = 15.0  # moving median of the hookload; longer hides tags, shorter lets noise ratchet
+SETTING_SECONDS = 10.0  # before slips are seen the hookload may be coming down for this long
+SET_SHARE = 0.05  # of the hookload, at least, that slips have taken off it by then
 EDGE_SECONDS = 3.0  # around slips the hookload is neither the block's nor the string's
 BRIDGED_SECONDS = 15.0  # shorter gaps of hookload or bit depth are read across
 STILL_ON_BOTTOM = 5.0  # m; further than a string stretches in a partial pick-up, the bit is off bottom
@@ -100,10 +102,31 @@ def _mode(log: TimeLog, rig: RigView) -> NDArray[np.int8]:
     held = rig.slips | (rig.activity == Activity.CONNECTION)
     edge = max(1, round(EDGE_SECONDS / log.interval))
     held = ndimage.binary_dilation(held, iterations=edge)
+    held |= _being_set(rig, held, max(1, round(SETTING_SECONDS / log.interval)))
     missing = ~np.isfinite(rig.hookload) | ~np.isfinite(log.values["bit_depth"])
     bridged = np.ones(max(3, round(BRIDGED_SECONDS / log.interval)) + 1, dtype=bool)
     held |= ndimage.binary_opening(missing, structure=bridged)
     return np.where(held, HOLD, np.where(rig.turning, TURN, SLIDE)).astype(np.int8)
+
+
+def _being_set(rig: RigView, held: NDArray[np.bool_], most: int) -> NDArray[np.bool_]:
+    """Mark up to `most` rows before slips on which the hookload has come down with the block still.
+
+    A slow indicator, or a spike at the wrong moment, hides for a few seconds that the slips have the string:
+    what they take off the hook would press it.
+    """
+    setting = np.zeros(len(held), dtype=bool)
+    noise = rig.noise.get("hookload", 0.0)
+    for start in (np.flatnonzero(held[1:] & ~held[:-1]) + 1).tolist():
+        before = rig.hookload[max(start - 3 * most, 0) : max(start - most, 1)]
+        if not np.isfinite(before).any():
+            continue
+        level = float(np.nanmedian(before))
+        for row in range(start - 1, max(start - 1 - most, -1), -1):
+            if rig.direction[row] != 0 or not rig.hookload[row] < level - max(6.0 * noise, SET_SHARE * level):
+                break
+            setting[row] = True
+    return setting
 
 
 def _smooth(values: Floats, good: NDArray[np.bool_], interval: float) -> Floats:

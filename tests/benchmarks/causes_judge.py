@@ -89,6 +89,7 @@ def report(rows: list[dict[str, str]]) -> str:
     )
     lines += ["", f"{len(cause)} incidents with an episode: leading cause right {own['right']:.1%}", stated]
     lines.append(f"log score {own['log']:.3f}, Brier {own['brier']:.3f}")
+    lines.append(f"leading cause is one of those present (some hold two): {_present(rows, chance):.1%}")
     for name, (other, truth) in simpler(rows).items():
         s = scores(other, truth)
         lines.append(
@@ -109,6 +110,14 @@ def report(rows: list[dict[str, str]]) -> str:
                 + ", ".join(f"{c} {n}" for c, n in mistaken)
             )
     return "\n".join(lines)
+
+
+def _present(rows: list[dict[str, str]], chance: Floats) -> float:
+    """Share of incidents whose leading cause is any of the causes planted."""
+    used = [row for row in rows if row["episode"] and row["cause"] in cl.CAUSES]
+    leading = [cl.CAUSES[top] for top in chance.argmax(axis=1)]
+    held = [{row["cause"], *row["present"].split(";")} for row in used]
+    return float(np.mean([cause in causes for cause, causes in zip(leading, held, strict=True)]))
 
 
 def _detection(rows: list[dict[str, str]]) -> list[str]:

@@ -147,7 +147,7 @@ def test_what_was_learned_agrees_with_the_trade(cause, values):
 
 def test_learned_counts_take_over_from_the_rule():
     """By hand: ten incidents' worth of rule against 990 counted ones leave a hundredth of the rule."""
-    measure = BY_NAME["sampling"]
+    measure = BY_NAME["returns"]
     counts = np.full((len(Cause), measure.bins), 250.0)
     counts[0] = (20.0, 20.0, 20.0, 930.0)
     weights = weights_of(measure, counts, 1.0)
@@ -157,6 +157,15 @@ def test_learned_counts_take_over_from_the_rule():
     assert np.exp(weights[0, 0]) < 0.2
     half = weights_of(measure, counts, 0.5)
     np.testing.assert_allclose(half, 0.5 * weights, rtol=1e-9)
+
+
+def test_the_logs_poverty_speaks_of_nothing_but_not_enough_data():
+    measure = BY_NAME["sampling"]
+    rng = np.random.default_rng(5)
+    weights = weights_of(measure, rng.integers(5, 200, (len(Cause), measure.bins)).astype(float), 0.6)
+    others = [k for k, cause in enumerate(Cause) if cause is not Cause.NO_DATA]
+    np.testing.assert_allclose(weights[others], np.tile(weights[others[0]], (len(others), 1)))
+    assert not np.allclose(weights[-1], weights[0])
 
 
 def test_origins_tell_how_many_incidents_stand_behind():

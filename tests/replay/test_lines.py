@@ -13,7 +13,7 @@ from forensics.replay.lines import drag_lines
 UP, DOWN, HANGING = 500e3, 400e3, 300e3
 
 
-def residual(string, direction=0, mode=SLIDE, full=0, state=0):
+def residual(string, direction=0, mode=SLIDE, full=0, state=0, slips_last=False):
     """Drag residual of one row, NaN for none; lines lie at 500 and 400 kN over 300 kN of block."""
     model = SimpleNamespace(
         string_weight=lambda kind, depth, *_: np.full(
@@ -21,15 +21,16 @@ def residual(string, direction=0, mode=SLIDE, full=0, state=0):
         )
     )
     samples = SimpleNamespace(
-        bit=np.array([2000.0]), scale=np.ones(1), free=np.array([True]), mode=np.array([mode])
+        bit=np.full(2, 2000.0), scale=np.ones(2), free=np.ones(2, bool), mode=np.array([mode, mode])
     )
     prepared = SimpleNamespace(
-        samples=samples, hookload=np.array([string + HANGING]), hanging=np.array([HANGING])
+        samples=samples, hookload=np.full(2, string + HANGING), hanging=np.full(2, HANGING)
     )
     calibration = SimpleNamespace(sections=())
-    rig = SimpleNamespace(direction=np.array([direction]))
-    found = SimpleNamespace(full=np.array([full]), state=np.array([state]))
-    return float(drag_lines(prepared, rig, calibration, model, found)[1][0])
+    before = 0 if slips_last else 1  # the row before: held in slips, or moving
+    rig = SimpleNamespace(direction=np.array([before, direction]), slips=np.array([slips_last, False]))
+    found = SimpleNamespace(full=np.array([0, full]), state=np.array([state, state]))
+    return float(drag_lines(prepared, rig, calibration, model, found)[1][1])
 
 
 @pytest.mark.parametrize(
@@ -64,3 +65,11 @@ def test_moving_strings_are_held_against_their_own_line():
     assert residual(520e3, direction=-1, full=-1) == pytest.approx(20e3)
     assert residual(410e3, direction=1, full=1) == pytest.approx(10e3)
     assert np.isnan(residual(520e3, direction=-1, full=0))
+
+
+def test_a_string_just_taken_from_slips_may_hang_in_part():
+    assert np.isnan(residual(340e3, slips_last=True))
+
+
+def test_a_string_that_still_slides_the_other_way_has_no_line():
+    assert np.isnan(residual(520e3, direction=-1, full=1))

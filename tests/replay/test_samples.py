@@ -8,7 +8,8 @@ import numpy as np
 import pytest
 
 from forensics.logs.table import TimeLog
-from forensics.replay.samples import _bit_turns, _calm, _share
+from forensics.replay.ready import block_zero
+from forensics.replay.samples import _being_set, _bit_turns, _calm, _share
 
 
 def log_with(**channels) -> TimeLog:
@@ -47,3 +48,31 @@ def test_a_lone_block_reading_is_no_rush_up_and_down():
     share = _share(log_with(rpm=np.full(5, 100.0)), _calm(off), model)
     assert np.abs(share).max() < 0.5
     assert np.array_equal(_calm(height), height)
+
+
+def being_set(hookload, direction=0):
+    """Rows held before slips, which are seen from row 20 on, three rows being the most."""
+    n = len(hookload)
+    rig = SimpleNamespace(
+        hookload=np.array(hookload), direction=np.full(n, direction), noise={"hookload": 1e3}
+    )
+    return np.flatnonzero(_being_set(rig, np.arange(n) >= 20, 3)).tolist()
+
+
+def test_what_slips_take_off_the_hook_before_they_are_seen_is_held():
+    falling = [900e3] * 18 + [600e3, 450e3] + [400e3] * 5
+    assert being_set(falling) == [18, 19]
+    assert being_set([900e3] * 20 + [400e3] * 5) == []
+
+
+def test_a_hookload_lowered_by_the_block_is_no_slips():
+    falling = [900e3] * 18 + [600e3, 450e3] + [400e3] * 5
+    assert being_set(falling, direction=1) == []
+
+
+def test_heights_made_up_from_depth_put_no_pipe_above_the_rotary():
+    slips = np.zeros(4, dtype=bool)
+    of_a_block = SimpleNamespace(block=np.array([2.0, 10.0, 30.0, np.nan]), slips=slips)
+    of_a_trip = SimpleNamespace(block=np.array([2.0, 100.0, 900.0, np.nan]), slips=slips)
+    assert block_zero(of_a_block) == pytest.approx(2.0, abs=0.3)
+    assert block_zero(of_a_trip) == np.inf

@@ -98,10 +98,20 @@ def shares(measure: Measure, counts: Floats) -> Floats:
     ndarray, shape (causes, bins)
         Each row adds up to one.
     """
+    if measure.about is not None:
+        counts = _pooled(counts, list(Cause).index(measure.about))
     usual = counts.sum(axis=0) + 1.0
     ruled = rules_of(measure) * usual
     ruled /= ruled.sum(axis=1, keepdims=True)
     return (counts + RULE_WORTH * ruled) / (counts.sum(axis=1, keepdims=True) + RULE_WORTH)
+
+
+def _pooled(counts: Floats, row: int) -> Floats:
+    """Put together the counts of all causes but one, each of them getting their mean."""
+    others = np.arange(len(counts)) != row
+    pooled = counts.copy()
+    pooled[others] = counts[others].mean(axis=0)
+    return pooled
 
 
 def log_ratios(measure: Measure, counts: Floats) -> Floats:

@@ -40,6 +40,7 @@ class Usual:
 
     def __init__(self, material: Material) -> None:
         self.material = material
+        self._channels: dict[str, Floats | None] = {}
 
     @cached_property
     def in_slips(self) -> Floats:
@@ -105,23 +106,29 @@ class Usual:
         known = share[np.isfinite(share)]
         return share, float(np.median(known)) if len(known) else float("nan")
 
+    def channel(self, name: str) -> Floats | None:
+        """Values of a channel of the log [SI], or None; looked up once."""
+        if name not in self._channels:
+            self._channels[name] = self.material.log.get(name)
+        return self._channels[name]
+
     @cached_property
     def by_depth(self) -> tuple[NDArray[np.int64], Floats]:
-        """Rows in the order of bit depth, and those depths [m]; rows without one come last."""
+        """Rows that have a bit depth, in its order, and those depths [m]."""
         order = np.argsort(self.material.bit, kind="stable")
+        order = order[: int(np.isfinite(self.material.bit).sum())]
         return order, self.material.bit[order]
 
     def rows_at(self, depth: float, within: float) -> NDArray[np.int64]:
         """Rows, in order of time, with the bit within so many metres of a depth."""
         order, depths = self.by_depth
-        known = int(np.isfinite(depths).sum())
-        first, stop = np.searchsorted(depths[:known], [depth - within, depth + within]).tolist()
+        first, stop = np.searchsorted(depths, [depth - within, depth + within]).tolist()
         return np.sort(order[first:stop])
 
     @cached_property
     def lacking(self) -> int:
         """How many of the wanted channels the log lacks."""
-        return sum(self.material.log.get(name) is None for name in WANTED)
+        return sum(self.channel(name) is None for name in WANTED)
 
     @cached_property
     def places(self) -> dict[Kind, Floats]:

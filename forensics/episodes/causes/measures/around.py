@@ -49,7 +49,7 @@ def dragging_down(s: Subject) -> float:
 
 def hard_to_turn(s: Subject) -> float:
     """Time within the hour with torque beyond its threshold [s]."""
-    if s.material.log.get("torque") is None or s.material.calibration.rotational is None:
+    if s.usual.channel("torque") is None or s.material.calibration.rotational is None:
         return NAN
     return _time(s, _flags(s, Kind.TORQUE))
 
@@ -148,6 +148,16 @@ def turning_spread(s: Subject) -> float:
     return float(np.subtract(*np.quantile(turned, [0.9, 0.1]))) if len(turned) >= 4 * FEWEST else NAN
 
 
+def mud_change(s: Subject) -> float:
+    """Give the change of logged mud density from the two hours before to those after, over the former."""
+    density = s.usual.channel("mud_density")
+    if density is None:
+        return NAN
+    start = s.episode.start
+    before = middle(density[s.material.rows_between(start - 2.0 * HOUR, start)], 60)
+    return middle(density[s.material.rows_between(start, start + 2.0 * HOUR)], 60) / before - 1.0
+
+
 def returns(s: Subject) -> float:
     """Flow out over flow in during the episode, over the run's own."""
     share, usual = s.usual.returns
@@ -230,6 +240,14 @@ MEASURES = (
         "{} of the largest drag, both ways together, is going up",
         "residuals",
         "share",
+    ),
+    Measure(
+        "mud density change",
+        mud_change,
+        (-0.01, -0.003, 0.003, 0.01),
+        "logged mud density changed by {} from before to after",
+        "run",
+        "part",
     ),
     Measure(
         "left while turning",

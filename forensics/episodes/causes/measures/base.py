@@ -11,6 +11,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics.episodes.catalogue import Episode
+from forensics.episodes.causes.names import Cause
 from forensics.episodes.causes.usual import Usual
 from forensics.episodes.material import Material
 from forensics.units import display_unit, show
@@ -25,6 +26,9 @@ NEAR = 900.0
 
 #: A run's usual pressure is taken over this much time on both sides [s].
 AROUND = 6.0 * 3600.0
+
+#: Passes of the same depth lie within this [m].
+SAME_DEPTH = 15.0
 
 #: Fewer readings than this make no measurement.
 FEWEST = 5
@@ -62,6 +66,11 @@ class Subject:
         return here if np.isfinite(here) else middle(self.material.bit[self.rows], 1)
 
     @cached_property
+    def same_depth(self) -> NDArray[np.int64]:
+        """Rows with the bit at the episode's depth, whenever, in order of time."""
+        return self.usual.rows_at(self.place, SAME_DEPTH)
+
+    @cached_property
     def usual_pressure(self) -> float:
         """Median pressure at usual flow in the hours around, on or off bottom as at the peak [Pa]."""
         m, episode = self.material, self.episode
@@ -93,10 +102,12 @@ class Measure:
     figure : str
         What shows it: "strip", "profile", "residuals", "fan", "path", "run" or "files".
     quantity : str
-        As `forensics.units` names it, or "threshold" (multiples of what counts), "share", "ratio", "count" or
-        "word".
+        As `forensics.units` names it, or "threshold" (multiples of what counts), "share", "part", "ratio",
+        "count" or "word".
     levels : tuple of str
         For "word": what the numbers 0, 1, 2... stand for.
+    about : Cause, optional
+        The one cause it tells from all others, which it does not tell from one another.
     """
 
     name: str
@@ -106,6 +117,7 @@ class Measure:
     figure: str = "strip"
     quantity: str = "threshold"
     levels: tuple[str, ...] = ()
+    about: Cause | None = None
 
     @property
     def bins(self) -> int:
@@ -148,12 +160,13 @@ class Measure:
 FORMS = {
     "share": (100.0, "{:.0f} %"),
     "count": (1.0, "{:.0f}"),
+    "part": (100.0, "{:.2f} %"),
     "ratio": (1.0, "{:.2f}"),
     "threshold": (1.0, "{:.1f} of the threshold"),
 }
 
 #: What outputs call their units.
-PLAIN = {"threshold": "of the threshold", "share": "1", "ratio": "1", "count": "1", "word": ""}
+PLAIN = {"threshold": "of the threshold", "share": "1", "part": "1", "ratio": "1", "count": "1", "word": ""}
 
 
 def named(levels: tuple[str, ...]) -> tuple[float, ...]:

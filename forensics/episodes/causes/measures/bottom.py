@@ -28,7 +28,7 @@ def pressure_peak(s: Subject) -> float:
 def differential(s: Subject) -> float:
     """Differential pressure at its highest, a few samples left out, over the run's while drilling."""
     m = s.material
-    values = m.log.get("differential_pressure")
+    values = s.usual.channel("differential_pressure")
     if values is None or not s.usual.differential > 0.0:
         return NAN
     rows = m.rows_between(s.episode.start - 60.0, s.episode.end + 60.0)
@@ -45,6 +45,18 @@ def answer(s: Subject) -> float:
     if len(drilled) < 2 * FEWEST or not usual > 0.0:
         return NAN
     return slope(m, drilled) / usual
+
+
+def witness(s: Subject) -> float:
+    """Bit load by hookload less that by the bit's own witness, in standard errors of the difference."""
+    heard = s.material.loads.witness
+    if heard is None:
+        return NAN
+    rows = s.rows
+    with np.errstate(invalid="ignore"):
+        return middle(
+            (heard.by_hookload[rows] - heard.load[rows]) / np.hypot(heard.own_sigma[rows], heard.sigma[rows])
+        )
 
 
 def progress(s: Subject) -> float:
@@ -96,6 +108,14 @@ MEASURES = (
         answer,
         (0.1, 0.4, 0.8, 1.3),
         "pressure answered the surface weight at {} of the run's slope",
+        "strip",
+        "ratio",
+    ),
+    Measure(
+        "bit's own witness",
+        witness,
+        (-2.0, -0.5, 0.5, 2.0, 4.0),
+        "bit load by hookload less by the bit's own witness: {} standard errors",
         "strip",
         "ratio",
     ),

@@ -8,8 +8,7 @@ from numpy.typing import NDArray
 from forensics.episodes.catalogue import Kind
 from forensics.episodes.causes.measures.base import FEWEST, NAN, Floats, Measure, Subject, middle, spread
 
-#: Passes of the same depth lie within this [m], and apart in time by at least this [s].
-SAME_DEPTH = 15.0
+#: Passes of the same depth lie apart in time by at least this [s].
 NEW_PASS = 900.0
 
 #: Like drag is looked for this far in time [s]; it ends where this much bit travel [m] shows less than
@@ -64,7 +63,7 @@ def torque(s: Subject) -> float:
 
 def _passes(s: Subject) -> tuple[Floats, Floats]:
     """Drag in the episode's direction (or torque) over its threshold at its depth, and when [s]."""
-    rows = s.usual.rows_at(s.place, SAME_DEPTH)
+    rows = s.same_depth
     if s.episode.kind is Kind.TORQUE:
         values = s.usual.torque[rows]
     else:

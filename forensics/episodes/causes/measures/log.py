@@ -2,9 +2,12 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
+
 import numpy as np
 
 from forensics.episodes.causes.measures.base import NAN, Measure, Subject
+from forensics.episodes.causes.names import Cause
 
 
 def missing(s: Subject) -> float:
@@ -32,40 +35,47 @@ def uncalibrated(s: Subject) -> float:
     return float(np.mean([not x.factor.determined for x in sections])) if sections else 1.0
 
 
+def _of_the_log(
+    name: str,
+    take: Callable[[Subject], float],
+    edges: tuple[float, ...],
+    words: str,
+    how: tuple[str, str],
+) -> Measure:
+    """Make a measurement that speaks of nothing but whether the log is enough; `how`: figure, quantity."""
+    return Measure(name, take, edges, words, how[0], how[1], about=Cause.NO_DATA)
+
+
 MEASURES = (
-    Measure(
+    _of_the_log(
         "channels missing",
         missing,
         (0.5, 1.5, 2.5, 4.5),
         "of six channels that tell causes apart the log lacks {}",
-        "files",
-        "count",
+        ("files", "count"),
     ),
-    Measure("sampling", interval, (1.5, 5.5, 15.0), "the log has a sample every {}", "files", "time"),
-    Measure(
+    _of_the_log("sampling", interval, (1.5, 5.5, 15.0), "the log has a sample every {}", ("files", "time")),
+    _of_the_log(
         "time without samples",
         lost,
         (0.03, 0.15, 0.4),
         "{} of the time around it has no usable sample",
-        "strip",
-        "share",
+        ("strip", "share"),
     ),
-    Measure(
+    _of_the_log(
         "friction not determined",
         uncalibrated,
         (0.25, 0.75),
         "the run did not determine the friction of {} of its sections",
-        "fan",
-        "share",
+        ("fan", "share"),
     ),
 )
 
 #: Taken from the other measurements, once they are.
-SILENT = Measure(
+SILENT = _of_the_log(
     "measurements without a reading",
     lambda _: NAN,
     (0.15, 0.25, 0.35, 0.5),
     "{} of the measurements could not be taken",
-    "files",
-    "share",
+    ("files", "share"),
 )

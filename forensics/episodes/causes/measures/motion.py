@@ -26,7 +26,7 @@ def still_before(s: Subject) -> float:
     """Time the string stood still, neither moved nor turned, up to two minutes before the episode [s]."""
     m, start = s.material, s.episode.start
     before = m.rows_between(start - BACK, start)
-    if m.log.get("block_position") is None or before.stop - before.start < FEWEST:
+    if s.usual.channel("block_position") is None or before.stop - before.start < FEWEST:
         return NAN
     moving = ((m.rig.direction[before] != 0) & ~m.rig.slips[before]) | m.rig.turning[before]
     moving |= s.usual.drilling[before]
@@ -41,7 +41,7 @@ def longest_still(s: Subject) -> float:
     """Longest time the string stood still out of slips in the hour before [s]."""
     m, start = s.material, s.episode.start
     rows = m.rows_between(start - 3600.0, start + 60.0)
-    if m.log.get("block_position") is None or rows.stop - rows.start < FEWEST:
+    if s.usual.channel("block_position") is None or rows.stop - rows.start < FEWEST:
         return NAN
     moving = (m.rig.direction[rows] != 0) | m.rig.turning[rows] | s.usual.drilling[rows]
     stops = np.flatnonzero(moving)
@@ -52,7 +52,7 @@ def longest_still(s: Subject) -> float:
 def held_torque(s: Subject) -> float:
     """Largest torque while the string did not turn, over the run's usual torque while turning."""
     m = s.material
-    torque = m.log.get("torque")
+    torque = s.usual.channel("torque")
     if torque is None or not m.usual_torque > 0.0:
         return NAN
     rows = m.rows_between(s.episode.start - 60.0, s.episode.end + 300.0)
@@ -64,7 +64,7 @@ def held_torque(s: Subject) -> float:
 def torque_peak(s: Subject) -> float:
     """Largest torque while turning, spikes of a few samples left out, over the run's usual."""
     m = s.material
-    torque = m.log.get("torque")
+    torque = s.usual.channel("torque")
     if torque is None or not m.usual_torque > 0.0:
         return NAN
     rows = m.rows_between(s.episode.start - 60.0, s.episode.end + 60.0)
