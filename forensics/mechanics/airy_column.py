@@ -81,8 +81,8 @@ def exact_column_load(length: float, ends: Ends = STRING, mode: int = 1) -> floa
 
     Notes
     -----
-    A vertical string has no load of its own but by its length: 1.94, Lubinski's, at 7.93 only, 1.71 at 20, and
-    on towards 1.0188 as one over the logarithm of the length.
+    A vertical string has no load of its own but by its length: 1.94, Lubinski's, at 7.93 only, 1.71 at 20,
+    and on towards 1.0188 as one over the logarithm of the length.
 
     Examples
     --------

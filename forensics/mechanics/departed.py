@@ -7,8 +7,8 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
+from forensics.mechanics.criteria_table import tabulate
 from forensics.mechanics.grid import directions
-from forensics.mechanics.limits import tabulate
 from forensics.mechanics.offbottom import OffBottomModel, hole_arrays, pipe_arrays
 from forensics.well.trajectory import Trajectory
 

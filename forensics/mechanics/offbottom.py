@@ -11,12 +11,12 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from forensics.case import CriteriaSettings
+from forensics.mechanics.criteria_table import tabulate
 from forensics.mechanics.grid import HoleGrid, PipeGrid, hole_grid, pipe_grid, weight_in_air
 from forensics.mechanics.ground import Ground, build_ground, divide
 from forensics.mechanics.kernels_judge import Setting
 from forensics.mechanics.kernels_lanes import AtRotary, Strings, march_lanes
 from forensics.mechanics.kernels_march import RUN_AWAY, Hole, Pipe
-from forensics.mechanics.limits import tabulate
 from forensics.well.model import Well
 
 Floats = NDArray[np.float64]

@@ -67,8 +67,8 @@ def near_vertical_term(stiffness: ArrayLike, local: ArrayLike, w_cos: ArrayLike,
     Notes
     -----
     The load is taken to fall off upwards at w cos I, without friction. For a vertical hole other figures may
-    be at hand: 1.94 is that of a string of length 7.93, and 1.0188 is what no real one comes near, as a million
-    lengths still need 1.183. From n = 0.1 on c is between 1.5 and 1.62 for strings longer than 20 lengths.
+    be at hand: 1.94 is that of a string of length 7.93, and 1.0188 is what no real one comes near, as a
+    million lengths still need 1.183. From n = 0.1 and 20 lengths on c is between 1.5 and 1.62.
 
     References
     ----------

@@ -8,6 +8,7 @@ import numpy as np
 from numba import njit
 
 from forensics.loads import Profile
+from forensics.mechanics.criteria_table import SUPPORT
 from forensics.mechanics.kernels_judge import (
     CONSTANT,
     GIVE,
@@ -23,7 +24,6 @@ from forensics.mechanics.kernels_judge import (
 )
 from forensics.mechanics.kernels_march import Array, contact
 from forensics.mechanics.kernels_memory import Memory
-from forensics.mechanics.limits import SUPPORT
 from forensics.mechanics.selfconsistent import ContactSize
 from forensics.mechanics.threshold import self_consistent_load
 from forensics.replay.margin import slack_off

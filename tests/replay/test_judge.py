@@ -9,10 +9,10 @@ from types import SimpleNamespace
 import numpy as np
 import pytest
 
+from forensics.mechanics.criteria_table import SUPPORT
 from forensics.mechanics.critical import Place, he_kyllingstad_1995
 from forensics.mechanics.kernels_judge import latch, next_state, thresholds
 from forensics.mechanics.kernels_march import place_at
-from forensics.mechanics.limits import SUPPORT
 from forensics.mechanics.selfconsistent import ContactSize
 from forensics.mechanics.threshold import helical_load, self_consistent_load, sinusoidal_load
 from forensics.replay.model import build_model
