@@ -13,7 +13,7 @@ from numpy.typing import NDArray
 
 from forensics.channels import BY_NAME
 from forensics.logs.table import TimeLog
-from forensics.rig.misread import misread_rate, misread_toolface
+from forensics.rig.misread import misread_hookload, misread_rate, misread_toolface, misread_wob
 from forensics.rig.steady import Steady
 from forensics.rig.view import RigView
 from forensics.units import show
@@ -69,8 +69,9 @@ def contradictions(log: TimeLog, well: Well, rig: RigView | None = None) -> tupl
         A sentence each, with its numbers and its likely cause.
     """
     found = [_inclination(log, well), _vertical_depth(log, well), _mud(log, well)]
-    found += [misread_rate(log), misread_toolface(log)]
-    if rig is not None:
+    found += [misread_rate(log), misread_toolface(log), misread_wob(log)]
+    found.append(misread_hookload(log, well))
+    if rig is not None and not found[-1]:
         found.append(_string(rig, well))
     return (*(words for words in found if words), *_files(log))
 

@@ -7,7 +7,7 @@ import pytest
 
 from forensics import units
 from forensics.logs.table import FileRecord, SourceColumn, TimeLog
-from forensics.rig.misread import misread_rate, misread_toolface
+from forensics.rig.misread import misread_hookload, misread_rate, misread_toolface, misread_wob
 
 N = 6000
 RNG = np.random.default_rng(5)
@@ -62,3 +62,37 @@ def test_a_toolface_in_radians_is_told():
     assert misread_toolface(drilled(toolface=face)[0]) == ""
     assert misread_toolface(drilled(toolface=np.full(N, 0.05))[0]) == ""
     assert misread_toolface(drilled()[0]) == ""
+
+
+def forces(well, hook_in="kN", wob_in="kN", said="kN"):
+    """Log a run whose hookload and WOB are in one unit under a header that says another."""
+    wob = 60e3 + 40e3 * np.sin(np.arange(N) / 10.0) + 300.0 * RNG.standard_normal(N)
+    hook = float(well.rotating_weight([2400.0])[0]) + 250e3 - wob
+    scale = {name: units.factor(said, "force").scale / units.factor(u, "force").scale
+             for name, u in (("hookload", hook_in), ("wob", wob_in))}  # fmt: skip
+    log, _ = drilled(hookload=hook * scale["hookload"], wob=wob * scale["wob"], bit_depth=np.full(N, 2400.0))
+    columns = tuple(SourceColumn("a.csv", name, said, name, "") for name in scale)
+    return replace(log, files=(FileRecord("a.csv", "", "CSV", N, 0.0, N - 1.0, 1.0, columns),))
+
+
+@pytest.mark.parametrize(
+    ("true", "said"),
+    [("klbf", "kN"), ("kN", "klbf"), ("tonnef", "kN"), ("kN", "tonnef"), ("kdaN", "kN"), ("tonnef", "kdaN")],
+)
+def test_forces_in_another_unit_are_told(well, true, said):
+    hook, wob = forces(well, hook_in=true, said=said), forces(well, hook_in=said, wob_in=true, said=said)
+    if true == "tonnef" and said == "kdaN":
+        assert misread_hookload(hook, well) == misread_wob(wob) == ""  # 2 % apart: no matter
+        return
+    assert f" {true} (" in misread_hookload(hook, well).split("likely in")[1]
+    likely = misread_wob(wob).split("likely in ")[1].split(",")[0].split(" or ")
+    assert set(likely) == ({"tonnef", "kdaN"} if true in {"tonnef", "kdaN"} else {true})
+
+
+def test_forces_in_their_own_unit_are_left_alone(well):
+    log = forces(well)
+    assert misread_hookload(log, well) == ""
+    assert misread_wob(log) == ""
+    loose = replace(log, values={**log.values, "wob": 5e4 * RNG.random(N)})
+    assert misread_wob(loose) == ""
+    assert misread_wob(replace(log, values={"hookload": log.values["hookload"]})) == ""
