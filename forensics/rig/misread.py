@@ -176,7 +176,7 @@ def misread_wob(log: TimeLog) -> str:
         return ""
     return (
         f"The rig's weight on bit changes by {slope:.2g} for 1 of the hookload it is made from: it was read "
-        f"in {units_read[0]} and is likely in {' or '.join(fits)}, or the hookload is not in {units_read[1]}. "
+        f"in {units_read[0]} and is likely in {' or '.join(fits)}, or the hookload not in {units_read[1]}. "
         "Say which under [logs.channels]."
     )
 
