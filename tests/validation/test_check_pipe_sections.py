@@ -130,6 +130,17 @@ def test_collar_weights(row):
     assert found == pytest.approx(published, abs=0.7)
 
 
+@pytest.mark.parametrize(
+    ("od", "bore", "printed", "computed"),
+    [(9.5, 1.5, 234, 235.18), (9.5, 1.75, 232, 233.01), (9.75, 1.75, 245, 245.87)],
+)
+def test_p62_collars_that_the_table_has_too_light(od, bore, printed, computed):
+    """[S12]: three of its 48 are a pound off their own section and steel."""
+    found = plain_weight(od * INCH, bore * INCH, HANDBOOK_STEEL) / POUND_PER_FOOT
+    assert found == pytest.approx(computed, abs=6e-3)
+    assert found == pytest.approx(printed, abs=1.2)
+
+
 BUOYANCY = {
     "P-66": (9, 0.863), "P-67": (10, 0.847), "P-68": (11, 0.832), "P-69": (12, 0.817), "P-70": (14, 0.786),
     "P-71": (15, 0.771), "P-72": (16, 0.756), "P-73": (18, 0.725),

@@ -15,8 +15,9 @@ import pytest
 from scipy import integrate, optimize, special
 
 from field import EI_UNIT, FOOT, LB_PER_FT, LBF
+from forensics.mechanics.columns import Ends, column_load
 from forensics.mechanics.eigen import LIMIT, column_eigenvalue, interpolate
-from forensics.mechanics.threshold import near_vertical_term
+from forensics.mechanics.threshold import near_vertical_term, weight_cube
 
 # pinned-pinned, F / (w l) by length: computed two ways. At 20 the exact solution (40 digits) is 1.71104054,
 # four units of the seventh digit under the listed 1.71104095, hence the wider tolerance.
@@ -128,13 +129,19 @@ def test_b_v12_collars_in_pounds():
     # 1.94 belongs to 7.9278 of Lubinski's lengths; the table is good to 1e-4 there
     term = near_vertical_term(ei, 0.0, w, 7.9278 * 62.27233 * FOOT)
     assert float(term) / LBF == pytest.approx(10300.63, rel=2e-4)
-    assert float(term) / column_eigenvalue(0.0, 7.9278) / LBF == pytest.approx(5309.6047, rel=2e-4)
+    assert float(weight_cube(ei, w)) / LBF == pytest.approx(5309.6047, rel=1e-7)
+    # a top that is free sideways: x 1.018793
+    free = column_load(0.0, 60.0, Ends("pinned", "free"))
+    assert float(weight_cube(ei, w)) * free / LBF == pytest.approx(5409.39, rel=1e-6)
+    assert (ei / w) ** (1 / 3) / FOOT == pytest.approx(62.27233, rel=1e-7)
 
 
 def test_b_v13_drill_pipe_in_pounds():
     # 5 in pipe in 10 ppg mud: unit 976.5904 lbf, x1.94 = 1894.585 lbf (computed)
     ei, w = 4.28074752e8 * EI_UNIT, 17.700687 * LB_PER_FT
-    assert float(np.cbrt(ei * w**2)) / LBF == pytest.approx(976.5904, rel=1e-7)
+    assert float(weight_cube(ei, w)) / LBF == pytest.approx(976.5904, rel=1e-7)
+    free = column_load(0.0, 60.0, Ends("pinned", "free"))
+    assert float(weight_cube(ei, w)) * free / LBF == pytest.approx(994.943, rel=1e-6)
     assert float(near_vertical_term(ei, 0.0, w, 7.9278 * 55.17246 * FOOT)) / LBF == pytest.approx(
         1894.585, rel=2e-4
     )
