@@ -65,6 +65,10 @@ LEAST_WHILE = {
     "standpipe_pressure": ("flow_in", 5.0e-3, 2.0e4),
     "flow_in": ("standpipe_pressure", 5.0e6, 1.0e-4),
 }
+# Flow that no pump reaches with the pressure low, through a string as long as a run needs [m3/s], and what is
+# usual then: most flow [m3/s], least pressure [Pa] (common practice, no source).
+FULL_FLOW = 0.02
+UNUSUAL = {"flow_in": (0.0, 0.11), "standpipe_pressure": (2.5e6, np.inf)}
 CONSTANT_IS_FAULT = ("block_position", "torque", "standpipe_pressure", "wob", "hookload_max")
 _CAUSES = {"hookload": Reason.SPIKE_HOOKLOAD, "bit_depth": Reason.SPIKE_DEPTH}
 
@@ -139,6 +143,7 @@ def clean(
     _silent_channels(work)
     _out_of_range(work)
     _too_small(work)
+    _unusual(work)
     for channel in POSITIONS:
         if channel in work.values:
             jumps = find_jumps(work.values[channel], time)
@@ -199,6 +204,26 @@ def _too_small(work: Cleaning) -> None:
             fix = likely_fix(channel, said, work.read_in.get(channel))
             busy = BY_NAME[driver].meaning
             work.drop(channel, "absurd unit", f"no more than {top} while there was {busy}; {fix}")
+
+
+def _unusual(work: Cleaning) -> None:
+    """Say of flow and pressure that are possible but not usual in which unit they would be; they stay."""
+    flow = work.values.get("flow_in")
+    if flow is None:
+        return
+    with np.errstate(invalid="ignore"):
+        pumping = flow > FULL_FLOW
+    busy = {"flow_in": flow[pumping], "standpipe_pressure": np.zeros(0)}
+    if "standpipe_pressure" in work.values:
+        busy["standpipe_pressure"] = work.values["standpipe_pressure"][pumping]
+    for channel, (low, high) in UNUSUAL.items():
+        said = busy[channel][np.isfinite(busy[channel])]
+        if len(said) < 60 or low <= np.percentile(said, 95) <= high:
+            continue
+        fix = likely_fix(channel, said, work.read_in.get(channel))
+        if "likely" in fix:
+            top = show(float(np.percentile(said, 95)), BY_NAME[channel].quantity)
+            work.warnings.append(f"{channel.replace('_', ' ')} of {top} at full flow is not usual; {fix}")
 
 
 def _out_of_range(work: Cleaning) -> None:

@@ -116,3 +116,24 @@ def test_a_unit_that_can_not_be_is_told_with_the_likely_one(channel, value, read
     (words,) = [w for w in work.warnings if w.startswith(channel.replace("_", " "))]
     assert f" {likely} (" in words.split("likely in")[1]
     assert f"under [logs.channels] {channel}" in words
+
+
+@pytest.mark.parametrize(
+    ("channel", "value", "read_in", "likely"),
+    [
+        ("flow_in", 2050 * 6.309e-5, "gpm", "L/min"),
+        ("flow_in", 0.034, "L/min", None),
+        ("standpipe_pressure", 218 * 6894.76, "psi", "bar"),
+        ("standpipe_pressure", 22e5, "bar", "MPa"),
+        ("standpipe_pressure", 218e5, "bar", None),
+    ],
+)
+def test_what_is_possible_but_not_usual_is_told_and_kept(channel, value, read_in, likely):
+    time, values = rig(400, flow_in=np.full(400, 0.034), standpipe_pressure=np.full(400, 2e7))
+    values[channel] = value * (1.0 + 0.01 * RNG.standard_normal(400))
+    work = clean(time, values, 1.0, {channel: read_in})
+    assert channel in work.values
+    said = [words for words in work.warnings if "is not usual" in words]
+    assert bool(said) is (likely is not None)
+    if likely:
+        assert f" {likely} (" in said[0].split("likely in")[1]
