@@ -18,6 +18,7 @@ from forensics.well.model import Well
 if TYPE_CHECKING:
     from forensics.episodes.flips import Flip
     from forensics.episodes.pipe import PipeToll
+    from forensics.episodes.verdicts import PlacedVerdict
 
 
 @dataclass(frozen=True)
@@ -28,7 +29,7 @@ class Findings:
     episode rules set aside, by reason; `inputs` maps a file's name to its SHA-256; `weights` and `slides`
     are what the rig kept by hand; `tolls` tells by episode id what those that pressed the string did to
     the pipe; `draws` is the replay repeated under all that is uncertain; `flips` tells how far inputs would
-    have to be off to turn the main episodes.
+    have to be off to turn the main episodes; `verdicts` are the engineer's, each with its episode.
     """
 
     case: Case
@@ -50,3 +51,4 @@ class Findings:
     tolls: Mapping[str, PipeToll] = field(default_factory=dict)
     draws: DrawHistory | None = None
     flips: tuple[Flip, ...] = ()
+    verdicts: tuple[PlacedVerdict, ...] = ()

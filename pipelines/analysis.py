@@ -8,7 +8,7 @@ import numpy as np
 
 from forensics.case import Case
 from forensics.case.unused import unused_settings
-from forensics.episodes.catalogue import Episode, Kind
+from forensics.episodes.catalogue import Episode, Kind, standing
 from forensics.episodes.describe import tell, weigh_episodes
 from forensics.episodes.find import flag_rows, rows_in_doubt, rows_in_question
 from forensics.episodes.flips import find_flips, with_flip
@@ -17,6 +17,8 @@ from forensics.episodes.material import Material
 from forensics.episodes.onsets import with_onsets
 from forensics.episodes.pipe import pipe_tolls
 from forensics.episodes.travel import travel_of, with_free_length
+from forensics.episodes.verdict_file import WrittenVerdict, read_verdicts, verdicts_path
+from forensics.episodes.verdicts import Judged, judge, verdict_remarks
 from forensics.findings import Findings
 from forensics.friction.byhand import as_readings
 from forensics.friction.calibrate import calibrate
@@ -87,6 +89,8 @@ def analyse(case: Case, progress: Progress, units: str = "metric") -> Findings:
     InputError
         If a log or a table can't be used, or they contradict one another.
     """
+    with progress.stage("reading", "reading the verdicts"):
+        verdicts = read_verdicts(case)
     run = understand(case, progress)
     model, calibration = calibrate_run(run, progress)
     with progress.stage("replay", "replaying the run"):
@@ -98,6 +102,7 @@ def analyse(case: Case, progress: Progress, units: str = "metric") -> Findings:
     findings = _tell(
         Material(run.log, rig, loads, None, calibration, run.well, case, system=units, doubts=doubts),
         made,
+        verdicts,
         progress,
     )
     return replace(findings, weights=run.weights, slides=run.slides)
@@ -155,7 +160,9 @@ def calibrate_run(run: Run, progress: Progress) -> tuple[OffBottomModel, Calibra
         return model, calibrate(readings, run.well, run.case, model, run.rig)
 
 
-def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
+def _tell(
+    material: Material, made: Replay, verdicts: tuple[WrittenVerdict, ...], progress: Progress
+) -> Findings:
     """Find and weigh the episodes, and gather all that the run has to tell."""
     with progress.stage("episodes", "finding episodes"):
         material = replace(material, flagged=flag_rows(material))
@@ -165,6 +172,8 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
         material = replace(material, draws=more_draws(made, material.draws, rows_in_doubt(material)))
     with progress.stage("episodes", "weighing episodes"):
         weighed = weigh_episodes(material)
+        judged = _judge(material, weighed.episodes, verdicts)
+        weighed = replace(weighed, episodes=judged.episodes)
     if are_many(weighed.episodes):
         with progress.loading("loading the clustering"):
             load_clustering()
@@ -176,7 +185,7 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
         mains = main_episodes(episodes)
         taken = profiles(made, [episode.peak for episode in mains])
         peaks = {episode.id: profile for episode, profile in zip(mains, taken, strict=True)}
-        tolls = pipe_tolls(made, material, peaks, episodes)
+        tolls = pipe_tolls(made, material, peaks, standing(episodes))
     with progress.stage("flips", "searching what would turn the finding"):
         flips = find_flips(made, material, episodes)
     log, well = material.log, material.well
@@ -194,11 +203,22 @@ def _tell(material: Material, made: Replay, progress: Progress) -> Findings:
         headline=with_flip(told.headline, flips, material.system),
         dropped=told.dropped,
         inputs=fingerprints(material.case, log),
-        warnings=_remarks(material),
+        warnings=_remarks(material) + verdict_remarks(material.case, judged.placed),
         tolls=tolls,
         draws=material.draws,
         flips=flips,
+        verdicts=judged.placed,
     )
+
+
+def _judge(
+    material: Material, episodes: tuple[Episode, ...], verdicts: tuple[WrittenVerdict, ...]
+) -> Judged:
+    """Put the engineer's verdicts to the episodes."""
+    path = verdicts_path(material.case)
+    if path is None:
+        return Judged(episodes, ())
+    return judge(verdicts, episodes, path, material.log.timezone)
 
 
 def _placed(episode: Episode, made: Replay, material: Material) -> Episode:

@@ -36,9 +36,10 @@ def _incident_arguments(parser: argparse.ArgumentParser) -> None:
     parser.add_argument(
         "--also",
         action="append",
-        choices=("las", "figures"),
+        choices=("las", "figures", "verdicts"),
         default=[],
-        help="write besides: the reconstructed channels as LAS 2.0, or each figure as SVG and PNG",
+        help="write besides: the reconstructed channels as LAS 2.0, each figure as SVG and PNG, or "
+        "verdicts_draft.csv, to accept, reject or relabel episodes in",
     )
 
 
@@ -47,7 +48,7 @@ def _incident(arguments: argparse.Namespace) -> int:
 
     result = incident.run(arguments.case, arguments.out, arguments.units, arguments.quiet, arguments.also)
     if not arguments.quiet:
-        for remark in result.unused:
+        for remark in result.remarks:
             _say(remark)
     _print("\n".join(result.lines) + "\n")
     return DONE

@@ -8,6 +8,7 @@ from collections.abc import Mapping
 from pathlib import Path
 
 from forensics.case import Case
+from forensics.episodes.verdict_file import verdicts_path
 from forensics.logs.table import TimeLog
 
 
@@ -24,7 +25,7 @@ def fingerprints(case: Case, log: TimeLog) -> Mapping[str, str]:
     -------
     mapping of str to str
     """
-    kept = (case.records.weights, case.records.slides)
+    kept = (case.records.weights, case.records.slides, verdicts_path(case))
     tables = (case.path, case.survey, case.hole, case.string, case.fluid.file, *kept, *case.logs.depth)
     digests = [(path, _digest(path)) for path in tables if path is not None]
     digests += [(record.path, record.sha256) for record in log.files if record.path is not None]

@@ -30,15 +30,15 @@ class IncidentResult:
         flips, figures, exports.
     lines : tuple of str
         The result in a few lines, for the terminal.
-    unused : tuple of str
-        Settings of the case that changed nothing, in sentences.
+    remarks : tuple of str
+        Settings and verdicts of the case that changed nothing, and other doubts of verdicts, in sentences.
     """
 
     findings: Findings
     folder: Path
     timings: Mapping[str, float]
     lines: tuple[str, ...]
-    unused: tuple[str, ...] = ()
+    remarks: tuple[str, ...] = ()
 
 
 def run(
@@ -61,7 +61,8 @@ def run(
     quiet : bool
         Show no progress.
     also : collection of str
-        "las" for the channels as LAS 2.0, "figures" for each figure as SVG and PNG.
+        "las" for the channels as LAS 2.0, "figures" for each figure as SVG and PNG, "verdicts" for a file
+        of verdicts to be filled in.
 
     Returns
     -------
@@ -79,6 +80,8 @@ def run(
     with progress.loading("loading the libraries"):
         from forensics.case import load_case
         from forensics.case.unused import unused_settings
+        from forensics.episodes.verdicts import verdict_remarks
+        from forensics.exports.verdicts import DRAFT, keep_filled
         from forensics.mechanics.kernels_march import wake
         from pipelines import analysis, results
 
@@ -87,8 +90,11 @@ def run(
     case = load_case(Path(case_path))
     folder = Path(out) if out is not None else Path("reports") / case.id
     check_target(folder)
+    if "verdicts" in also:
+        keep_filled(folder / DRAFT)
     findings = analysis.analyse(case, progress, units)
     with whole_folder(folder) as fresh:
         results.write(findings, fresh, units, progress, also)
     said = results.lines(findings, folder, units)
-    return IncidentResult(findings, folder, progress.timings, said, unused_settings(case))
+    remarks = (*unused_settings(case), *verdict_remarks(case, findings.verdicts))
+    return IncidentResult(findings, folder, progress.timings, said, remarks)

@@ -8,7 +8,7 @@ from pathlib import Path
 
 import numpy as np
 
-from forensics.episodes.catalogue import Episode, Kind
+from forensics.episodes.catalogue import Episode, Kind, standing
 from forensics.episodes.groups import is_routine
 from forensics.exports.episodes import write_episodes
 from forensics.exports.friction import write_friction
@@ -16,6 +16,7 @@ from forensics.exports.history import write_history
 from forensics.exports.las import write_las
 from forensics.exports.stamps import stamp
 from forensics.exports.summary import write_summary
+from forensics.exports.verdicts import DRAFT, write_draft
 from forensics.findings import Findings
 from forensics.logs.zone import tzinfo_of
 from forensics.report.words import MINUS, Show, count, fixed
@@ -29,8 +30,9 @@ EXPORTS: Mapping[str, Callable[[Findings, Path], None]] = {
 }
 
 
-# What is written only when it is asked for: the same channels as LAS, the figures as files.
-EXTRAS = ("las", "figures")
+# What is written only when it is asked for: the same channels as LAS, the figures as files, a file of
+# verdicts to be filled in.
+EXTRAS = ("las", "figures", "verdicts")
 
 
 def write(
@@ -49,7 +51,8 @@ def write(
     progress : Progress
         Times the stages "imports", "figures" and "exports".
     also : collection of str
-        Of `EXTRAS`: "las" for `history.las`, "figures" for each figure as SVG and PNG.
+        Of `EXTRAS`: "las" for `history.las`, "figures" for each figure as SVG and PNG, "verdicts" for
+        `verdicts_draft.csv`.
     """
     with progress.loading("loading the report"):
         from forensics.report.describe import describe
@@ -62,6 +65,8 @@ def write(
             export(findings, folder / name)
         if "las" in also:
             write_las(findings, folder / "history.las")
+        if "verdicts" in also:
+            write_draft(findings, folder / DRAFT)
         if "figures" in also:
             from forensics.report.figure_files import write_figures
 
@@ -131,15 +136,19 @@ def _friction(findings: Findings) -> str:
 def _episodes(episodes: tuple[Episode, ...]) -> str:
     if not episodes:
         return "Episodes: none"
+    rejected = len(episodes) - len(standing(episodes))
+    episodes = standing(episodes)
     counts = Counter(episode.kind.value for episode in episodes)
     routine = sum(is_routine(episode) for episode in episodes)
     told = ", ".join(f"{counts[kind.value]} {kind.value}" for kind in Kind if counts[kind.value])
-    return f"Episodes: {told}" + (f" ({routine} of them routine sinusoidal running)" if routine else "")
+    said = f"Episodes: {told or 'none that stands'}"
+    said += f" ({routine} of them routine sinusoidal running)" if routine else ""
+    return said + (f"; {rejected} rejected by the engineer" if rejected else "")
 
 
 def _worst(findings: Findings, show: Show) -> str:
     """Name the episode that lost the most weight, if any did."""
-    losing = [e for e in findings.episodes if np.isfinite(e.lost_weight.value) and e.lost_weight.value > 0]
+    losing = [e for e in standing(findings.episodes) if e.lost_weight.value > 0]  # not so where it is NaN
     if not losing:
         return ""
     worst = max(losing, key=lambda e: e.lost_weight.value)

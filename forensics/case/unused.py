@@ -18,11 +18,6 @@ def unused_settings(case: Case) -> tuple[str, ...]:
         One sentence a setting.
     """
     rig, said = case.rig, []
-    if case.records.verdicts is not None:
-        said.append(
-            f"[records] verdicts ({case.records.verdicts.name}) is not used by this version: "
-            "no earlier verdict is carried over."
-        )
     if rig.lines is not None and rig.sheave_efficiency is None:
         said.append("[rig] lines changes nothing without sheave_efficiency: the hookload is taken as logged.")
     if rig.sheave_efficiency is not None and rig.lines is None:

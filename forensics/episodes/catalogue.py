@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import enum
 import math
+from collections.abc import Iterable
 from dataclasses import dataclass
 
 from forensics.estimate import Estimate
@@ -116,6 +117,28 @@ class Travel:
     elastic_length: float = float("nan")
 
 
+class Word(enum.StrEnum):
+    """What the engineer makes of an episode."""
+
+    ACCEPT = "accept"
+    REJECT = "reject"
+    RELABEL = "relabel"
+
+
+@dataclass(frozen=True)
+class Verdict:
+    """The engineer's verdict on an episode; who gave it is not recorded.
+
+    `cause` is the engineer's own, empty but for a relabelled episode; `program_cause` what the program had
+    named before it.
+    """
+
+    word: Word
+    cause: str = ""
+    note: str = ""
+    program_cause: str = ""
+
+
 @dataclass(frozen=True)
 class Episode:
     """One episode; times in s since 1970 UTC, depths in m, forces in N, SI throughout.
@@ -127,7 +150,8 @@ class Episode:
     passed, `onsets_beyond` which of them are used there beyond their range, `onsets_drop` what the surface
     torque would take off each [N]. `bit_load` is what reached the bit at the peak [N], `ends` the buckled
     interval's with how far they may be off [m] (both None for drag and torque); `probability_range` is the
-    90 % interval of the probability for the number of draws behind it.
+    90 % interval of the probability for the number of draws behind it. `verdict` is the engineer's, None
+    where there is none; a relabelled episode has the engineer's `cause`, `causes` stay the program's own.
     """
 
     id: str
@@ -161,11 +185,22 @@ class Episode:
     bit_load: Estimate | None = None
     ends: tuple[Estimate, Estimate] | None = None
     probability_range: tuple[float, float] = (float("nan"), float("nan"))
+    verdict: Verdict | None = None
 
     @property
     def duration(self) -> float:
         """Length in time [s]."""
         return self.end - self.start
+
+    @property
+    def word(self) -> Word | None:
+        """What the engineer makes of it; None where no verdict was given."""
+        return None if self.verdict is None else self.verdict.word
+
+
+def standing(episodes: Iterable[Episode]) -> tuple[Episode, ...]:
+    """Give the episodes that the engineer has not rejected: what headline, groups and counts rest on."""
+    return tuple(episode for episode in episodes if episode.word is not Word.REJECT)
 
 
 @dataclass(frozen=True)

@@ -74,7 +74,7 @@ def grounds(material: Material, episode: Episode | None) -> tuple[str, int]:
     return words, level
 
 
-def confidence(material: Material, main: Sequence[Episode]) -> str:
+def confidence(material: Material, main: Sequence[Episode], cleared: bool = False) -> str:
     """Grade the finding, and say on what.
 
     Parameters
@@ -82,6 +82,8 @@ def confidence(material: Material, main: Sequence[Episode]) -> str:
     material : Material
     main : sequence of Episode
         Those that matter, the gravest first.
+    cleared : bool
+        Whether the engineer rejected episodes: where none is left, the finding rests on that too.
 
     Returns
     -------
@@ -95,7 +97,7 @@ def confidence(material: Material, main: Sequence[Episode]) -> str:
         )
     words, level = grounds(material, main[0] if main else None)
     if not main:
-        near = near_threshold(material)
+        near = "it rests on the engineer's verdict" if cleared else near_threshold(material)
         grade = ("high", "moderate", "low")[max(level, WEAK) if near else level]
         return f"{grade}: {words}; {near}" if near else f"{grade}: {words}"
     chance = main[0].probability

@@ -5,12 +5,15 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass, replace
 
-from forensics.episodes.catalogue import Episode, Family, Headline
+from forensics.episodes.catalogue import Episode, Family, Headline, Kind, standing
 from forensics.episodes.causes import Usual, weigh
+from forensics.episodes.consequence import consequence_of
 from forensics.episodes.find import find_episodes
 from forensics.episodes.groups import group, is_routine
 from forensics.episodes.headline import headline
 from forensics.episodes.material import Material
+from forensics.episodes.spans import Span
+from forensics.episodes.verdicts import rejected
 
 __all__ = ["Described", "Material", "describe"]
 
@@ -78,11 +81,25 @@ def tell(material: Material, weighed: Weighed) -> Described:
     ----------
     material : Material
     weighed : Weighed
-        The run's episodes.
+        The run's episodes, with the engineer's verdicts where there are any.
 
     Returns
     -------
     Described
     """
-    grouped, families = group(material, weighed.episodes)
+    grouped, families = group(material, _without_rejected(material, weighed.episodes))
     return Described(grouped, families, headline(material, grouped), weighed.dropped)
+
+
+def _without_rejected(material: Material, episodes: tuple[Episode, ...]) -> tuple[Episode, ...]:
+    """Judge anew what buckling led to where it had led to a lockup that the engineer rejected."""
+    locked = [e for e in rejected(episodes) if e.kind is Kind.LOCKUP]
+    if not locked:
+        return episodes
+    left = [Span(e.first, e.last) for e in standing(episodes) if e.kind is Kind.LOCKUP]
+    return tuple(
+        replace(e, consequence=consequence_of(material, e, left))
+        if e.kind is Kind.BUCKLING and any(out.first <= e.last and out.last >= e.first for out in locked)
+        else e
+        for e in episodes
+    )

@@ -10,7 +10,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics.episodes import rules
-from forensics.episodes.catalogue import Episode, Headline, Kind, State
+from forensics.episodes.catalogue import Episode, Headline, Kind, State, standing
 from forensics.episodes.chances import CERTAIN, MOST, Z90, lasting
 from forensics.episodes.find import flag_rows, span_rule
 from forensics.episodes.groups import is_routine
@@ -123,7 +123,7 @@ def find_flips(run: Replay, material: Material, episodes: Sequence[Episode]) -> 
 
 def _asked(episodes: Sequence[Episode]) -> list[Episode]:
     """Choose the gravest episodes, and those whose rule is most in doubt."""
-    loaded = [e for e in episodes if e.kind in PRESSED and not is_routine(e)]
+    loaded = [e for e in standing(episodes) if e.kind in PRESSED and not is_routine(e)]
     ranked = sorted(loaded, key=gravity, reverse=True)
     rest = [e for e in ranked[GRAVEST:] if e.probability < CERTAIN]
     return ranked[:GRAVEST] + sorted(rest, key=lambda e: abs(e.probability - 0.5))[:DOUBTFUL]

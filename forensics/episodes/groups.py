@@ -9,7 +9,16 @@ import numpy as np
 from numpy.typing import NDArray
 
 from forensics.episodes import wording
-from forensics.episodes.catalogue import RESIDUAL_QUANTITY, Consequence, Episode, Family, Kind, State
+from forensics.episodes.catalogue import (
+    RESIDUAL_QUANTITY,
+    Consequence,
+    Episode,
+    Family,
+    Kind,
+    State,
+    Word,
+    standing,
+)
 from forensics.episodes.material import Material
 from forensics.units import display_unit
 
@@ -59,9 +68,10 @@ class Features:
 
 
 def is_routine(episode: Episode) -> bool:
-    """Whether an episode is sinusoidal running that cost nothing."""
+    """Whether an episode is sinusoidal running that cost nothing, and to which no engineer gave a cause."""
     return (
-        episode.kind is Kind.BUCKLING
+        episode.word is not Word.RELABEL
+        and episode.kind is Kind.BUCKLING
         and episode.state is not State.HELICAL
         and episode.consequence is Consequence.NONE
     )
@@ -69,7 +79,7 @@ def is_routine(episode: Episode) -> bool:
 
 def are_many(episodes: tuple[Episode, ...]) -> bool:
     """Whether more episodes are beyond routine than are listed singly: then scikit-learn groups them."""
-    return sum(not is_routine(e) for e in episodes) > SINGLY
+    return sum(not is_routine(e) for e in standing(episodes)) > SINGLY
 
 
 def load_clustering() -> None:
@@ -91,12 +101,13 @@ def group(
     Returns
     -------
     episodes : tuple of Episode
-        With `family` filled in.
+        With `family` filled in; those the engineer rejected belong to none.
     families : tuple of Family
         Largest first, routine running last.
     """
-    telling = [e for e in episodes if not is_routine(e)]
-    labels = {e.id: ROUTINE for e in episodes if is_routine(e)}
+    kept = standing(episodes)
+    telling = [e for e in kept if not is_routine(e)]
+    labels = {e.id: ROUTINE for e in kept if is_routine(e)}
     if len(telling) <= SINGLY:
         labels |= {e.id: rule_label(e) for e in telling}
         families = _families_by_rule(labels, episodes, material.system)
@@ -107,7 +118,7 @@ def group(
         families = _families_by_likeness(names, telling, found, stability, material.system)
         routine = {i: n for i, n in labels.items() if n == ROUTINE}
         families += _families_by_rule(routine, episodes, material.system)
-    return tuple(replace(e, family=labels[e.id]) for e in episodes), families
+    return tuple(replace(e, family=labels.get(e.id, "")) for e in episodes), families
 
 
 def rule_label(episode: Episode) -> str:

@@ -14,6 +14,7 @@ from forensics.episodes.catalogue import (
     Headline,
     Kind,
     State,
+    standing,
 )
 from forensics.episodes.causes.names import Cause
 from forensics.episodes.causes.weigh import UNTOLD
@@ -25,6 +26,7 @@ from forensics.episodes.measure import helical_span
 from forensics.episodes.ordinary import ordinary_loss
 from forensics.episodes.sensitivity import sensitivity_sentence
 from forensics.episodes.spans import Span
+from forensics.episodes.verdict_words import apart_from, confirmation, rejections, standing_word
 from forensics.estimate import Estimate
 
 #: Episodes told one by one below the sentence.
@@ -59,23 +61,26 @@ def headline(material: Material, episodes: tuple[Episode, ...]) -> Headline:
     -------
     Headline
         One sentence, its confidence, the main episodes, and what the data can't tell. Routine running is
-        counted in the details and kept out of the sentence.
+        counted in the details and kept out of the sentence, as is what the engineer rejected.
     """
     system = material.system
-    main = sorted((e for e in episodes if not is_routine(e)), key=gravity, reverse=True)
+    kept = standing(episodes)
+    main = sorted((e for e in kept if not is_routine(e)), key=gravity, reverse=True)
     loaded = bool(main) and main[0].kind in (Kind.BUCKLING, Kind.LOCKUP)
     if loaded:
         sentence = _loaded(material, main[0], system)
     elif main:
         sentence = _dragging(material, main, system)
     else:
-        sentence = QUIET
+        sentence = apart_from(episodes, QUIET)
     if not loaded:
         sentence = f"{sentence} {ordinary_loss(material, system, bool(main))}".rstrip()
+    if main:
+        sentence = f"{sentence} {confirmation(main[0])}".rstrip()
     return Headline(
         sentence=sentence,
-        confidence=confidence(material, main),
-        details=_details(material, episodes, main, system),
+        confidence=confidence(material, main, cleared=len(kept) < len(episodes)),
+        details=(*_details(material, kept, main, system), *rejections(episodes)),
         can_not_tell=_unknown(material, main),
     )
 
@@ -198,6 +203,8 @@ def _details(
             line += f", probability {episode.probability:.2f}"
         if episode.cause:
             line += f"; {episode.cause}"
+        if episode.verdict is not None:
+            line += f"; {standing_word(episode)}"
         said.append(line + ".")
     rest = len(main) - len(told[:TOLD])
     if rest:

@@ -11,6 +11,7 @@ from forensics.episodes.catalogue import Episode, Kind, Travel
 from forensics.estimate import Estimate
 from forensics.exports.stamps import number, stamp
 from forensics.exports.text import inert
+from forensics.exports.verdicts import verdict_cells
 from forensics.findings import Findings
 from forensics.logs.zone import tzinfo_of
 
@@ -60,6 +61,10 @@ COLUMNS = (
     *(f"{name}{end}" for name in (*RESIDUALS, *LATER) for end in ("", *(f"_{end}" for end in ENDS))),
     *(f"{name}_{end}" for name in BOUNDED for end in ENDS),
     *TRAVEL,
+    # The engineer's verdict, and the cause that the program had named where the engineer's took its place.
+    "verdict",
+    "verdict_note",
+    "program_cause",
 )
 
 
@@ -98,6 +103,7 @@ def episode_row(episode: Episode, tz: dt.tzinfo) -> dict[str, Cell]:
         "critical_load_kN": number(episode.critical_load / 1e3, 3),
         "onsets": episode.onsets,
         "onsets_beyond": episode.onsets_beyond,
+        **verdict_cells(episode),
     }
     for name, (attribute, scale, decimals) in ESTIMATES.items():
         row |= _cells(name, getattr(episode, attribute), scale, decimals)

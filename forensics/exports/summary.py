@@ -19,6 +19,7 @@ from forensics.exports.friction import friction_content
 from forensics.exports.pipe import pipe_content, slack_off_content
 from forensics.exports.stamps import number, stamp
 from forensics.exports.text import write_json
+from forensics.exports.verdicts import verdicts_content
 from forensics.exports.witness import witness_content
 from forensics.findings import Findings
 from forensics.logs.table import FileRecord, Reason
@@ -85,6 +86,7 @@ def summary_content(findings: Findings) -> dict[str, Any]:
             }
             for episode, row in zip(findings.episodes, episode_rows(findings), strict=True)
         ],
+        "verdicts": verdicts_content(findings),
         "flips": flips_content(findings),
         "episodes_dropped": {reason: int(count) for reason, count in sorted(findings.dropped.items())},
         "families": [

@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 from numpy.typing import NDArray
 
-from forensics.episodes.catalogue import Episode
+from forensics.episodes.catalogue import Episode, Kind, Word
 from forensics.mechanics import helix
 from forensics.mechanics.fatigue import HALF_JOINT, permissible_dogleg
 from forensics.mechanics.hoisting import block_efficiency, derrick_load
@@ -72,8 +72,12 @@ def row_seconds(findings: Findings) -> Floats:
 
 
 def seconds_in_state(findings: Findings, least: int) -> float:
-    """Time with the worst state at least sinusoidal (1) or helical (2) [s]."""
-    return float(row_seconds(findings)[findings.loads.state >= least].sum())
+    """Time with the worst state at least sinusoidal (1) or helical (2), rejected buckling left out [s]."""
+    counted = findings.loads.state >= least
+    for episode in findings.episodes:
+        if episode.word is Word.REJECT and episode.kind is Kind.BUCKLING:
+            counted[episode.first : episode.last + 1] = False
+    return float(row_seconds(findings)[counted].sum())
 
 
 def turns_while_buckled(findings: Findings, first: int = 0, last: int | None = None) -> float:

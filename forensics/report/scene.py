@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
-from forensics.episodes.catalogue import Episode
+from forensics.episodes.catalogue import Episode, standing
 from forensics.episodes.groups import is_routine
 from forensics.episodes.headline import gravity
 from forensics.report.words import Show
@@ -30,9 +30,11 @@ def main_episodes(episodes: tuple[Episode, ...], cap: int = MAIN_CAP) -> tuple[E
 
     The order of gravity is the headline's own, so that what it speaks of is among them.
 
-    Where every episode is routine, the one that came nearest to mattering stands in.
+    Where every episode is routine, the one that came nearest to mattering stands in. What the engineer
+    rejected gets none.
     """
-    notable = [episode for episode in episodes if not is_routine(episode)]
-    ranked = sorted(notable or episodes, key=gravity, reverse=True)
+    kept = standing(episodes)
+    notable = [episode for episode in kept if not is_routine(episode)]
+    ranked = sorted(notable or kept, key=gravity, reverse=True)
     chosen = ranked[: cap if notable else 1]
     return tuple(sorted(chosen, key=lambda e: (e.start, e.id)))

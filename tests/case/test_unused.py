@@ -29,7 +29,7 @@ def test_settings_that_take_effect_are_not_named():
         CASE,
         rig=RigSettings(block_weight=3e5, lines=12, sheave_efficiency=0.98),
         limits=LimitSettings(hookload=2e6, torque=3e4, pipe_class="premium"),
-        records=RecordSettings(weights=Path("w.csv"), slides=Path("s.csv")),
+        records=RecordSettings(weights=Path("w.csv"), slides=Path("s.csv"), verdicts=Path("v.csv")),
     )
     assert unused_settings(case) == ()
 
@@ -37,7 +37,6 @@ def test_settings_that_take_effect_are_not_named():
 @pytest.mark.parametrize(
     ("changes", "named"),
     [
-        ({"records": RecordSettings(verdicts=Path("verdicts.csv"))}, "verdicts.csv"),
         ({"rig": RigSettings(lines=12)}, "sheave_efficiency"),
         ({"rig": RigSettings(sheave_efficiency=0.98)}, "without lines"),
         ({"rig": RigSettings(block_weight=3e5, hookload_includes_block=False)}, "block_weight"),

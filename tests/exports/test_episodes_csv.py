@@ -55,6 +55,9 @@ def test_columns_begin_with_the_contracts(rows):
         *(f"free_length_m{end}" for end in ("", "_low", "_high")),
         *TRAVEL,
         *(f"{name}{end}" for name in RESIDUALS for end in ("", "_low", "_high")),
+        "verdict",
+        "verdict_note",
+        "program_cause",
     }
 
 

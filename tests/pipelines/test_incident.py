@@ -137,10 +137,10 @@ def test_inputs_of_one_name_are_told_apart_and_idle_settings_are_said(case, tmp_
     (folder / "kept").mkdir()
     (folder / "kept" / "survey.csv").write_text("depth [m],pick_up [kN]\n2500,1000\n")
     with (folder / "case.toml").open("a") as file:
-        file.write('[records]\nweights = "kept/survey.csv"\nverdicts = "survey.csv"\n')
+        file.write('[records]\nweights = "kept/survey.csv"\n[rig]\nlines = 12\n')
     assert cli.main(["incident", str(folder / "case.toml"), "--out", str(folder / "out")]) == 0
-    assert "verdicts (survey.csv) is not used" in capsys.readouterr().err
+    assert "lines changes nothing" in capsys.readouterr().err
     summary = json.loads((folder / "out" / "summary.json").read_text())
     assert {"survey.csv", "kept/survey.csv"} <= {entry["file"] for entry in summary["inputs"]}
-    assert any("verdicts" in remark for remark in summary["warnings"])
+    assert any("lines changes nothing" in remark for remark in summary["warnings"])
     assert "Weights written down by hand" in (folder / "out" / "report.html").read_text(encoding="utf-8")

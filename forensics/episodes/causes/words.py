@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
-from forensics.episodes.catalogue import CauseView, Episode
+from dataclasses import replace
+
+from forensics.episodes.catalogue import CauseView, Episode, Verdict, Word
 from forensics.episodes.causes.names import Cause
 from forensics.episodes.causes.weigh import UNTOLD
 
@@ -24,6 +26,8 @@ def cause_sentence(episode: Episode) -> str:
         A cause is called the best supported from `STATED` on; below, it is the likeliest one, and what is
         not ruled out stands beside it.
     """
+    if episode.verdict is not None and episode.word is Word.RELABEL:
+        return _relabelled(episode, episode.verdict)
     if episode.cause.startswith(UNTOLD):
         *most, last = [_chance_of(view) for view in episode.causes[: _leading(episode)]]
         return f"The causes {', '.join(most)} and {last} {UNTOLD}."
@@ -37,6 +41,15 @@ def cause_sentence(episode: Episode) -> str:
     beside = [_chance_of(view) for view in others if view.probability >= NOT_RULED_OUT][:3]
     rest = f"; not ruled out: {_joined(beside)}" if beside else ", not firmly"
     return f"Likeliest cause: {_chance_of(first)}{rest}."
+
+
+def _relabelled(episode: Episode, verdict: Verdict) -> str:
+    """Give the engineer's cause with what the program had said."""
+    said = f"Cause by the engineer: {verdict.cause}"
+    if not verdict.program_cause:
+        return f"{said}; the program had named none."
+    own = cause_sentence(replace(episode, cause=verdict.program_cause, verdict=None))
+    return f"{said}; the program's own: {own[:1].lower()}{own[1:]}"
 
 
 def _leading(episode: Episode) -> int:

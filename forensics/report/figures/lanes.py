@@ -8,7 +8,7 @@ import numpy as np
 from matplotlib.axes import Axes
 from numpy.typing import NDArray
 
-from forensics.episodes.catalogue import Episode, Kind, State
+from forensics.episodes.catalogue import Episode, Kind, State, Word
 from forensics.report.figures import style
 from forensics.report.figures.decimate import runs
 from forensics.rig.view import Activity
@@ -79,14 +79,19 @@ def _bars(flags: NDArray[np.bool_], time: NDArray[np.float64], interval: float) 
 
 
 def draw_episodes(axes: Axes, episodes: Sequence[Episode], start: float, span: float) -> None:
-    """Draw the episode band, one lane a kind; every episode at least a hair wide."""
+    """Draw the episode band, one lane a kind; every episode at least a hair wide, rejected ones hollow."""
     names = [name for name, _ in EPISODE_LANES if any(lane_of(e) == name for e in episodes)]
     colours = dict(EPISODE_LANES)
     for lane, name in enumerate(names):
-        bars = [(e.start - start, max(e.duration, span / 700)) for e in episodes if lane_of(e) == name]
-        axes.broken_barh(
-            sorted(bars), (lane - 0.36, 0.72), facecolor=colours[name], edgecolor=style.INK, linewidth=0.3
-        )
+        for out, face in ((True, "white"), (False, colours[name])):
+            bars = [
+                (e.start - start, max(e.duration, span / 700))
+                for e in episodes
+                if lane_of(e) == name and (e.word is Word.REJECT) is out
+            ]
+            axes.broken_barh(
+                sorted(bars), (lane - 0.36, 0.72), facecolor=face, edgecolor=style.INK, linewidth=0.3
+            )
     lane_axis(axes, names)
 
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from forensics.episodes.catalogue import CauseView, Episode, Evidence
+from forensics.episodes.catalogue import CauseView, Episode, Evidence, Word
 from forensics.episodes.causes import UNTOLD
 from forensics.report.elements import Column, Line, Linked, Table
 from forensics.report.words import fixed, plain
@@ -75,6 +75,8 @@ def _note(episode: Episode) -> str:
         "alike (for it), or how many times as seldom (against it); factors multiply. In brackets where it "
         "comes from; the strongest are listed, summary.json has all."
     )
+    if episode.word is Word.RELABEL:
+        note += f" The engineer's own is {episode.cause}; these are the program's."
     if episode.cause.startswith(UNTOLD):
         note += " No cause leads clearly enough to be named alone."
     return note

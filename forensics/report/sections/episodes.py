@@ -26,6 +26,7 @@ from forensics.report.elements import (
 )
 from forensics.report.figures import depths, timeline
 from forensics.report.scene import MAIN_CAP, Scene
+from forensics.report.sections import verdicts
 from forensics.report.sections.causes import anchor, cause_table
 from forensics.report.sections.cautions import for_episode
 from forensics.report.sections.first import RESIDUALS, episode_numbers, rotation_sentence
@@ -58,14 +59,17 @@ def describe(scene: Scene) -> Section:
             "episodes", "Main episodes", (Text("No episode passed the rules; there is nothing to show."),)
         )
     lead = f"{count(len(scene.mains), 'episode')} of {total} shown in detail, in order of time."
-    if all(is_routine(e) for e in scene.mains):
+    if not scene.mains:
+        lead = f"The engineer rejected all there were ({count(total, 'episode')}); the table below has them."
+    elif all(is_routine(e) for e in scene.mains):
         lead += (
             " All are harmless sinusoidal running; the one that came nearest to mattering stands for them."
         )
     elif total > len(scene.mains):
         lead += (
             f" At most {MAIN_CAP} are, the gravest: by consequence, then state, lost weight and size; "
-            "routine sinusoidal running is left out. The table below lists the rest."
+            "routine sinusoidal running and what the engineer rejected are left out. The table below lists "
+            "the rest."
         )
     parts = tuple(_part(scene, episode) for episode in scene.mains)
     return Section("episodes", "Main episodes", (Text(lead),), parts)
@@ -114,7 +118,7 @@ def summary(scene: Scene, episode: Episode) -> str:
         sentences += slack_off_sentence(scene, episode)
     if episode.note:
         sentences.append(episode.note[0].upper() + episode.note[1:].rstrip("."))
-    said = (travel_sentence(scene, episode), over_episode(scene, episode))
+    said = (travel_sentence(scene, episode), over_episode(scene, episode), verdicts.sentence(episode))
     sentences += [sentence for sentence in said if sentence]
     if episode.cause:
         sentences.append(cause_sentence(episode))
@@ -230,7 +234,8 @@ def _moment_picture(scene: Scene, episode: Episode) -> Picture:
 
 def describe_tables(scene: Scene) -> Section:
     """Describe all episodes and groups."""
-    return Section("catalogue", "All episodes and groups", (episode_table(scene), family_table(scene)))
+    elements = (episode_table(scene), *verdicts.tables(scene), family_table(scene))
+    return Section("catalogue", "All episodes and groups", elements)
 
 
 def episode_table(scene: Scene) -> Table:
@@ -252,6 +257,7 @@ def episode_table(scene: Scene) -> Table:
         Column("consequence"),
         Column("group"),
         Column("cause"),
+        *([Column("verdict")] if scene.findings.verdicts else []),
     )
     note = (
         "In brackets: 90 % interval. Lost weight is at the peak of load ratio; the second figure is the part "
@@ -288,7 +294,8 @@ def _episode_row(scene: Scene, e: Episode) -> tuple[str | tuple[str, ...], ...]:
         fixed(e.probability, 2) if math.isfinite(e.probability) else "",
         plain(e.consequence),
         e.family,
-        plain(e.cause),
+        verdicts.cause_cell(e),
+        *([verdicts.mark(e)] if scene.findings.verdicts else []),
     )
 
 

@@ -4,13 +4,14 @@ from __future__ import annotations
 
 import math
 
-from forensics.episodes.catalogue import Consequence, Episode, Kind
+from forensics.episodes.catalogue import Consequence, Episode, Kind, standing
 from forensics.episodes.groups import is_routine
 from forensics.episodes.headline import gravity
 from forensics.estimate import Estimate
 from forensics.report import derived
 from forensics.report.elements import Column, Element, Finding, Notice, Number, Numbers, Section, Table, Text
 from forensics.report.scene import Scene
+from forensics.report.sections import verdicts
 from forensics.report.words import Show, count, duration, fixed
 
 REPLAY = "replay at the calibrated friction"
@@ -29,6 +30,7 @@ def describe(scene: Scene) -> Section:
     head = scene.findings.headline
     elements: list[Element] = [Finding(head.sentence, head.confidence, head.details)]
     elements += rotation_notice(scene)
+    elements += verdicts.notices(scene)
     unknown = cannot_tell(scene)
     if unknown:
         elements.append(Notice("What the data can't tell", unknown, tone="limit"))
@@ -152,7 +154,7 @@ def _ends(episode: Episode) -> tuple[tuple[str, Estimate, str], ...]:
 
 def rotation_notice(scene: Scene) -> list[Element]:
     """Put up a red notice where the string was turned while buckled."""
-    turned = [e for e in scene.findings.episodes if e.consequence is Consequence.ROTATED_BUCKLED]
+    turned = [e for e in standing(scene.findings.episodes) if e.consequence is Consequence.ROTATED_BUCKLED]
     if not turned:
         return []
     items = tuple(rotation_sentence(scene, e) for e in turned[:5])
@@ -238,9 +240,10 @@ def _crown(scene: Scene) -> str:
 
 def _tally(scene: Scene) -> str:
     """How many episodes of what kind, in a sentence."""
-    episodes = scene.findings.episodes
+    episodes = standing(scene.findings.episodes)
+    rejected = len(scene.findings.episodes) - len(episodes)
     if not episodes:
-        text = "No episode passed the rules."
+        text = "No episode that stands." if rejected else "No episode passed the rules."
     else:
         parts = [
             count(sum(1 for e in episodes if e.kind is kind), f"{kind} episode")
@@ -254,6 +257,8 @@ def _tally(scene: Scene) -> str:
                 f" {count(routine, 'of the buckling episodes is', 'of the buckling episodes are')} harmless "
                 "sinusoidal running: counted, kept out of the finding."
             )
+    if rejected:
+        text += f" Beside them {count(rejected, 'episode')} that the engineer rejected, not counted."
     dropped = scene.findings.dropped
     if dropped:
         reasons = "; ".join(f"{reason}: {n}" for reason, n in sorted(dropped.items()))

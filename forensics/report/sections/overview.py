@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
+from forensics.episodes.verdicts import rejected
 from forensics.report.elements import Element, Picture, Section, Text
 from forensics.report.figures import depths, path, timeline, weights
 from forensics.report.scene import Scene
@@ -21,10 +22,11 @@ def describe(scene: Scene) -> Section:
 def _strip(scene: Scene) -> Picture:
     missing = timeline.missing_tracks(scene)
     lacking = f" Not in this log: {', '.join(missing)}." if missing else ""
+    hollow = ", hollow where the engineer rejected it" if rejected(scene.findings.episodes) else ""
     ids = ", ".join(e.id for e in scene.mains) or "none"
     caption = (
-        "The whole run. Top: episodes, one lane a kind. Middle: what the rig recorded; the weight on bit "
-        "three ways, as the rig logged it, re-zeroed on the rotating off-bottom weight, and as "
+        f"The whole run. Top: episodes, one lane a kind{hollow}. Middle: what the rig recorded; the weight "
+        "on bit three ways, as the rig logged it, re-zeroed on the rotating off-bottom weight, and as "
         "reconstructed at the bit: where the last falls away from the others, weight is being "
         "lost (what the rig logged in slips may run off the scale). "
         f"Bottom: what the rig was doing. Shaded spans are the episodes shown in detail below ({ids}). "
