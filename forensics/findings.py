@@ -19,6 +19,7 @@ if TYPE_CHECKING:
     from forensics.episodes.flips import Flip
     from forensics.episodes.pipe import PipeToll
     from forensics.episodes.verdicts import PlacedVerdict
+    from forensics.replay.course import Course
 
 
 @dataclass(frozen=True)
@@ -29,7 +30,8 @@ class Findings:
     episode rules set aside, by reason; `inputs` maps a file's name to its SHA-256; `weights` and `slides`
     are what the rig kept by hand; `tolls` tells by episode id what those that pressed the string did to
     the pipe; `draws` is the replay repeated under all that is uncertain; `flips` tells how far inputs would
-    have to be off to turn the main episodes; `verdicts` are the engineer's, each with its episode.
+    have to be off to turn the main episodes; `verdicts` are the engineer's, each with its episode;
+    `course` holds load profiles through the whole run.
     """
 
     case: Case
@@ -52,3 +54,4 @@ class Findings:
     draws: DrawHistory | None = None
     flips: tuple[Flip, ...] = ()
     verdicts: tuple[PlacedVerdict, ...] = ()
+    course: Course | None = None

@@ -28,6 +28,7 @@ from forensics.logs.read import read_time_logs
 from forensics.logs.records import RecordedSlide, RecordedWeight, read_slides, read_weights
 from forensics.logs.table import TimeLog
 from forensics.mechanics.offbottom import OffBottomModel
+from forensics.replay.course import course
 from forensics.replay.draws import more_draws, replay_draws
 from forensics.replay.lines import fan
 from forensics.replay.model import build_model
@@ -50,6 +51,9 @@ from pipelines.progress import Progress
 
 # The fan of model weights starts here: shallower, friction tells nothing [m].
 SHALLOW = 100.0
+
+# Episodes whose peak has its own profile among those of the whole run, the gravest first.
+PEAKS = 200
 
 # Kinds that press the string; the others have no load to be critical.
 PRESSED = (Kind.BUCKLING, Kind.LOCKUP)
@@ -186,6 +190,8 @@ def _tell(
         taken = profiles(made, [episode.peak for episode in mains])
         peaks = {episode.id: profile for episode, profile in zip(mains, taken, strict=True)}
         tolls = pipe_tolls(made, material, peaks, standing(episodes))
+        told_peaks = [episode.peak for episode in main_episodes(episodes, PEAKS)]
+        through = course(made, material.loads, told_peaks)
     with progress.stage("flips", "searching what would turn the finding"):
         flips = find_flips(made, material, episodes)
     log, well = material.log, material.well
@@ -208,6 +214,7 @@ def _tell(
         draws=material.draws,
         flips=flips,
         verdicts=judged.placed,
+        course=through,
     )
 
 

@@ -19,7 +19,7 @@ MARK = "summary.json"
 RESULTS = frozenset(
     {
         *(MARK, "report.html", "report.pdf", "episodes.csv", "history.parquet", "friction.json"),
-        *("history.las", "figures"),
+        *("explore.html", "history.las", "figures"),
     }
 )
 # What a folder of this program may hold beside, or without, the results of the main job.

@@ -55,11 +55,14 @@ def write(
         `verdicts_draft.csv`.
     """
     with progress.loading("loading the report"):
-        from forensics.report.describe import describe
+        from forensics.report.describe import describe, make_scene
+        from forensics.report.explore.page import render_explorer
         from forensics.report.render import render_report
     with progress.stage("figures", "drawing the report"):
         report = describe(findings, system)
         (folder / "report.html").write_text(render_report(report), encoding="utf-8", newline="\n")
+        explorer = render_explorer(make_scene(findings, system))
+        (folder / "explore.html").write_text(explorer, encoding="utf-8", newline="\n")
     with progress.stage("exports", "writing the exports"):
         for name, export in EXPORTS.items():
             export(findings, folder / name)

@@ -39,6 +39,8 @@ SECTIONS = (
     method.describe,
 )
 
+BESIDE = (("explore.html", "Move through the run in time, and along the hole at any moment"),)
+
 
 def make_scene(findings: Findings, units: str) -> Scene:
     """Choose the main episodes and the way to show things."""
@@ -64,7 +66,7 @@ def describe(findings: Findings, units: str = "metric") -> Report:
     scene = make_scene(findings, units)
     case = findings.case
     sections = tuple(section(scene) for section in SECTIONS)
-    return Report(case.title, "Post-run event report", _facts(scene), sections, _footer(units))
+    return Report(case.title, "Post-run event report", _facts(scene), sections, _footer(units), BESIDE)
 
 
 def _facts(scene: Scene) -> tuple[tuple[str, str], ...]:
@@ -90,11 +92,12 @@ def _facts(scene: Scene) -> tuple[tuple[str, str], ...]:
 
 def _footer(units: str) -> str:
     names = ("tallyback", "numpy", "matplotlib")
-    versions = ", ".join(f"{name} {_version(name)}" for name in names)
+    versions = ", ".join(f"{name} {version(name)}" for name in names)
     return f"Made by {versions}; units {units}."
 
 
-def _version(name: str) -> str:
+def version(name: str) -> str:
+    """Give the version of an installed package."""
     try:
         return metadata.version(name)
     except metadata.PackageNotFoundError:

@@ -147,10 +147,11 @@ class Section:
 
 @dataclass(frozen=True)
 class Report:
-    """A whole report, ready to be rendered."""
+    """A whole report, ready to be rendered; `beside` links pages in its folder: file and words."""
 
     title: str
     subtitle: str
     facts: tuple[tuple[str, str], ...]
     sections: tuple[Section, ...]
     footer: str
+    beside: tuple[tuple[str, str], ...] = ()

@@ -66,7 +66,7 @@ def render_report(report: Report) -> str:
     counter = itertools.count(1)
     with house_style(), spare_sheets():
         sections = [_draw_section(section, counter) for section in report.sections]
-    return _environment().get_template("report.html.j2").render(report=report, sections=sections)
+    return environment().get_template("report.html.j2").render(report=report, sections=sections)
 
 
 def png(figure: Figure) -> bytes:
@@ -121,7 +121,8 @@ def _legible(value: object) -> object:
 
 
 @cache
-def _environment() -> Environment:
+def environment() -> Environment:
+    """Set up the templates: everything escaped, nothing undefined."""
     return Environment(
         loader=PackageLoader("forensics.report", "templates"),
         autoescape=True,

@@ -59,14 +59,16 @@ def draw_activity(axes: Axes, time: NDArray[np.float64], activity: NDArray[np.in
     names = [name for name, _ in lanes]
     span = max(float(time[-1] - time[0]), 1.0) if len(time) else 1.0
     for lane, (_, flags) in enumerate(lanes):
-        bars = merge(_bars(flags, time, interval), span / _CELLS)
+        bars = merge(bars_of(flags, time, interval), span / _CELLS)
         axes.broken_barh(
             bars, (lane - 0.36, 0.72), facecolor=style.MUTED, edgecolor="none", antialiased=False
         )
     lane_axis(axes, names)
 
 
-def _bars(flags: NDArray[np.bool_], time: NDArray[np.float64], interval: float) -> list[tuple[float, float]]:
+def bars_of(
+    flags: NDArray[np.bool_], time: NDArray[np.float64], interval: float
+) -> list[tuple[float, float]]:
     """Start since the first row and length of each unbroken run of flagged rows."""
     gaps = np.flatnonzero(np.diff(time) > 5 * interval) + 1
     bars = []
