@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from forensics.episodes import wording
-from forensics.episodes.catalogue import Episode, Word
+from forensics.episodes.catalogue import Episode, Word, standing
 from forensics.episodes.groups import is_routine, rule_label
 from forensics.episodes.verdicts import rejected
 
@@ -44,7 +44,9 @@ def rejections(episodes: Sequence[Episode]) -> tuple[str, ...]:
     more = f" and {len(out) - TOLD} more" if len(out) > TOLD else ""
     count = wording.times(len(out), "episode")
     said = f"{count} rejected by the engineer, left out of finding, groups and counts"
-    return (f"{said}: {', '.join(named)}{more}.",)
+    inside = [e.id for e in standing(episodes) if any(o.start <= e.start and e.end <= o.end for o in out)]
+    left = f" Inside, {', '.join(inside[:TOLD])} not rejected, still counted." if inside else ""
+    return (f"{said}: {', '.join(named)}{more}.{left}",)
 
 
 def apart_from(episodes: Sequence[Episode], quiet: str) -> str:

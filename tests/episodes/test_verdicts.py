@@ -231,3 +231,15 @@ def test_groups_count_what_stands(buckled):
     grouped, families = group(buckled, out)
     assert [f.members for f in families] == [("E1", "E2")]
     assert grouped[0].family == ""
+
+
+def test_buckling_did_not_lead_to_a_lockup_that_was_rejected(buckled):
+    weighed = weigh_episodes(buckled)
+    first = replace(weighed.episodes[0], consequence=Consequence.LOCKED_UP)
+    lock = replace(first, id="E900", kind=Kind.LOCKUP, first=first.first + 10, verdict=Verdict(Word.REJECT))
+    out = tell(buckled, replace(weighed, episodes=(first, lock)))
+    assert out.episodes[0].consequence is not Consequence.LOCKED_UP
+    kept = tell(buckled, replace(weighed, episodes=(first, replace(lock, verdict=None))))
+    assert kept.episodes[0].consequence is Consequence.LOCKED_UP
+    outer = tell(buckled, replace(weighed, episodes=(replace(first, verdict=Verdict(Word.REJECT)), lock)))
+    assert outer.families == ()

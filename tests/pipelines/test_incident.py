@@ -144,3 +144,24 @@ def test_inputs_of_one_name_are_told_apart_and_idle_settings_are_said(case, tmp_
     assert {"survey.csv", "kept/survey.csv"} <= {entry["file"] for entry in summary["inputs"]}
     assert any("lines changes nothing" in remark for remark in summary["warnings"])
     assert "Weights written down by hand" in (folder / "out" / "report.html").read_text(encoding="utf-8")
+
+
+def test_verdicts_beside_the_case_are_read_and_never_written(case, tmp_path, capsys):
+    folder = tmp_path / "judged"
+    shutil.copytree(case.parent, folder, ignore=shutil.ignore_patterns("out*"))
+    text = "start,end,verdict\n2001-01-01T00:00:00Z,2001-01-01T00:10:00Z,reject\n"
+    (folder / "verdicts.csv").write_text(text)
+    asked = ["incident", str(folder / "case.toml"), "--out", str(folder / "out"), "--also", "verdicts"]
+    assert cli.main(asked) == 0
+    said = capsys.readouterr().err
+    assert "verdicts.csv beside the case file was read" in said
+    assert "line 2: the verdict matches no episode" in said
+    assert (folder / "verdicts.csv").read_text() == text
+    summary = json.loads((folder / "out" / "summary.json").read_text())
+    assert "verdicts.csv" in {entry["file"] for entry in summary["inputs"]}
+    assert any("matches no episode" in remark for remark in summary["warnings"])
+    draft = (folder / "out" / "verdicts_draft.csv").read_text()
+    assert "2001-01-01T00:00:00+00:00" in draft
+    (folder / "out" / "verdicts_draft.csv").write_text(draft.replace(",reject,", ",accept,"))
+    assert cli.main(asked) == 2
+    assert "is filled in" in capsys.readouterr().err

@@ -7,6 +7,7 @@ import math
 from forensics.episodes.catalogue import Consequence, Episode, Kind, standing
 from forensics.episodes.groups import is_routine
 from forensics.episodes.headline import gravity
+from forensics.episodes.verdicts import rejected
 from forensics.estimate import Estimate
 from forensics.report import derived
 from forensics.report.elements import Column, Element, Finding, Notice, Number, Numbers, Section, Table, Text
@@ -71,9 +72,10 @@ def key_numbers(scene: Scene) -> tuple[Number, ...]:
         rows += episode_numbers(worst, show, prefix=f"{worst.id}: ")
     if found.loads.state.size:
         helical, any_state = (derived.seconds_in_state(found, k) for k in (2, 1))
+        origin = f"{REPLAY}; rejected episodes left out" if rejected(found.episodes) else REPLAY
         rows += [
-            Number("time with a helix somewhere in the string", duration(helical), "", REPLAY),
-            Number("time with any buckling, sinusoidal included", duration(any_state), "", REPLAY),
+            Number("time with a helix somewhere in the string", duration(helical), "", origin),
+            Number("time with any buckling, sinusoidal included", duration(any_state), "", origin),
         ]
     rows += friction_numbers(scene)
     return tuple(rows)
@@ -241,9 +243,9 @@ def _crown(scene: Scene) -> str:
 def _tally(scene: Scene) -> str:
     """How many episodes of what kind, in a sentence."""
     episodes = standing(scene.findings.episodes)
-    rejected = len(scene.findings.episodes) - len(episodes)
+    out = len(rejected(scene.findings.episodes))
     if not episodes:
-        text = "No episode that stands." if rejected else "No episode passed the rules."
+        text = "No episode stands." if out else "No episode passed the rules."
     else:
         parts = [
             count(sum(1 for e in episodes if e.kind is kind), f"{kind} episode")
@@ -257,8 +259,8 @@ def _tally(scene: Scene) -> str:
                 f" {count(routine, 'of the buckling episodes is', 'of the buckling episodes are')} harmless "
                 "sinusoidal running: counted, kept out of the finding."
             )
-    if rejected:
-        text += f" Beside them {count(rejected, 'episode')} that the engineer rejected, not counted."
+    if out:
+        text += f" Not counted: {count(out, 'episode')} that the engineer rejected."
     dropped = scene.findings.dropped
     if dropped:
         reasons = "; ".join(f"{reason}: {n}" for reason, n in sorted(dropped.items()))
