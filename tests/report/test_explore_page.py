@@ -7,26 +7,13 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
-from forensics.replay.course import Course
+from explored import with_course
 from forensics.report.describe import make_scene
 from forensics.report.explore.content import content_of
 from forensics.report.explore.page import as_script_data, render_explorer
 from forensics.well.hole import Hole
 
 HOSTILE = "</script><script>alert(1)</script><b>&amp;\u202e"
-
-
-def with_course(found, moments=40, places=120):
-    """Give made-up findings some profiles through the run."""
-    rows = np.unique(np.linspace(0, max(len(found.log) - 1, 0), moments).astype(np.int64))
-    md = np.linspace(3300.0, 0.0, places, dtype=np.float32)
-    shape = (len(rows), places)
-    tension = np.linspace(-80e3, 700e3, places, dtype=np.float32) + np.arange(len(rows))[:, None] * 1e3
-    threshold = np.full(shape, 90e3, dtype=np.float32)
-    state = np.zeros(shape, dtype=np.int8)
-    state[:, 3:9] = 1
-    arrays = np.broadcast_to(md, shape), tension.astype(np.float32), threshold, 1.4 * threshold
-    return replace(found, course=Course(rows, *arrays, state))
 
 
 def render(found, units="metric"):

@@ -13,7 +13,7 @@ Floats = NDArray[np.float64]
 # Numbers a series may have at its finest level, and those that need no coarser one.
 FINEST = 200_000
 COARSEST = 4_000
-STEP = 8
+STEP = 4
 # A whole number of 16 bits tells 65,534 values apart; the lowest is kept for "missing".
 MISSING = -32768
 COUNTS = 65534
@@ -34,7 +34,7 @@ def steps(count: int, finest: int = FINEST, coarsest: int = COARSEST) -> tuple[i
     Examples
     --------
     >>> steps(1000), steps(172_800), steps(1_000_000)
-    ((1,), (1, 8, 64, 512), (10, 80, 640))
+    ((1,), (1, 4, 16, 64, 256), (10, 40, 160, 640))
     """
     step = 1 if count <= finest else -(-2 * count // finest)
     levels = [step]

@@ -261,7 +261,7 @@
     const { from, to, level } = wanted();
     const apart = to - from;
     if (!held || held.level !== level || from < held.from || to > held.to || apart < (held.to - held.from) / 5) {
-      held = { level, from: from - 0.6 * apart, to: to + 0.6 * apart };
+      held = { level, from: from - 0.4 * apart, to: to + 0.4 * apart };
       fill(level, held.from, held.to);
       document.documentElement.dataset.level = told.levels[level];
     }
@@ -599,7 +599,15 @@
     if (along) shown.push([along.made, byId("profile")]);
     for (const [made] of shown) whole.add_root(made);
     const views = await Bokeh.embed.add_document_standalone(whole, document.body, shown.map(([, element]) => element));
+    // The plots are no stops on the way through the page by Tab: every key works wherever the reader is.
+    for (const [model] of shown) noStop(views.get(model).el);
     return views.get(shown[0][0]);
+  }
+
+  function noStop(element) {
+    if (element.tabIndex >= 0) element.tabIndex = -1;
+    const inside = [...element.children, ...(element.shadowRoot ? element.shadowRoot.children : [])];
+    inside.forEach(noStop);
   }
 
   // ---- begin ----------------------------------------------------------------------------------------------------
