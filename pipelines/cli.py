@@ -41,13 +41,19 @@ def _incident_arguments(parser: argparse.ArgumentParser) -> None:
         help="write besides: the reconstructed channels as LAS 2.0, each figure as SVG and PNG, or "
         "verdicts_draft.csv, to accept, reject or relabel episodes in",
     )
+    parser.add_argument(
+        "--paper",
+        choices=("a4", "letter"),
+        help="sheets of report.pdf (default a4, letter with --units field)",
+    )
 
 
 def _incident(arguments: argparse.Namespace) -> int:
     from pipelines import incident  # heavy: loaded only when the job runs
 
-    result = incident.run(arguments.case, arguments.out, arguments.units, arguments.quiet, arguments.also)
-    if not arguments.quiet:
+    a = arguments
+    result = incident.run(a.case, a.out, a.units, a.quiet, a.also, a.paper)
+    if not a.quiet:
         for remark in result.remarks:
             _say(remark)
     _print("\n".join(result.lines) + "\n")

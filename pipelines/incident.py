@@ -14,6 +14,9 @@ from pipelines.progress import Progress
 if TYPE_CHECKING:
     from forensics.findings import Findings
 
+#: What a reader's printer holds, by the units he chose.
+USUAL_PAPER: Mapping[str, str] = {"metric": "a4", "field": "letter"}
+
 
 @dataclass(frozen=True)
 class IncidentResult:
@@ -27,7 +30,7 @@ class IncidentResult:
         Where the results are.
     timings : mapping of str to float
         Seconds spent by stage: imports, reading, well, rig, calibration, replay, draws, episodes, profiles,
-        flips, figures, exports.
+        flips, figures, pdf, exports.
     lines : tuple of str
         The result in a few lines, for the terminal.
     remarks : tuple of str
@@ -47,6 +50,7 @@ def run(
     units: str = "metric",
     quiet: bool = False,
     also: Collection[str] = (),
+    paper: str | None = None,
 ) -> IncidentResult:
     """Read a case, reconstruct its loads, find its episodes, and write report and exports.
 
@@ -63,6 +67,8 @@ def run(
     also : collection of str
         "las" for the channels as LAS 2.0, "figures" for each figure as SVG and PNG, "verdicts" for a file
         of verdicts to be filled in.
+    paper : str, optional
+        "a4" or "letter": the sheets of the PDF; what goes with the units where left out.
 
     Returns
     -------
@@ -76,6 +82,8 @@ def run(
     """
     if units not in ("metric", "field"):
         raise InputError(f"units are {units!r}; expected 'metric' or 'field'")
+    if paper not in (None, "a4", "letter"):
+        raise InputError(f"paper is {paper!r}; expected 'a4' or 'letter'")
     progress = Progress(quiet)
     with progress.loading("loading the libraries"):
         from forensics.case import load_case
@@ -94,7 +102,7 @@ def run(
         keep_filled(folder / DRAFT)
     findings = analysis.analyse(case, progress, units)
     with whole_folder(folder) as fresh:
-        results.write(findings, fresh, units, progress, also)
+        results.write(findings, fresh, units, progress, also, paper or USUAL_PAPER[units])
     said = results.lines(findings, folder, units)
     remarks = (*unused_settings(case), *verdict_remarks(case, findings.verdicts))
     return IncidentResult(findings, folder, progress.timings, said, remarks)

@@ -36,7 +36,12 @@ EXTRAS = ("las", "figures", "verdicts")
 
 
 def write(
-    findings: Findings, folder: Path, system: str, progress: Progress, also: Collection[str] = ()
+    findings: Findings,
+    folder: Path,
+    system: str,
+    progress: Progress,
+    also: Collection[str] = (),
+    paper: str = "a4",
 ) -> None:
     """Write the report and every export into a folder.
 
@@ -49,20 +54,27 @@ def write(
     system : str
         "metric" or "field": what the report shows.
     progress : Progress
-        Times the stages "imports", "figures" and "exports".
+        Times the stages "imports", "figures", "pdf" and "exports".
     also : collection of str
         Of `EXTRAS`: "las" for `history.las`, "figures" for each figure as SVG and PNG, "verdicts" for
         `verdicts_draft.csv`.
+    paper : str
+        "a4" or "letter": the sheets of `report.pdf`.
     """
     with progress.loading("loading the report"):
         from forensics.report.describe import describe, make_scene
+        from forensics.report.drawing import draw_figures
         from forensics.report.explore.page import render_explorer
+        from forensics.report.pdf import to_pdf
         from forensics.report.render import render_report
     with progress.stage("figures", "drawing the report"):
         report = describe(findings, system)
-        (folder / "report.html").write_text(render_report(report), encoding="utf-8", newline="\n")
+        drawn = draw_figures(report, vector=True)
+        (folder / "report.html").write_text(render_report(drawn), encoding="utf-8", newline="\n")
         explorer = render_explorer(make_scene(findings, system))
         (folder / "explore.html").write_text(explorer, encoding="utf-8", newline="\n")
+    with progress.stage("pdf", "setting the report on paper"):
+        (folder / "report.pdf").write_bytes(to_pdf(drawn, paper))
     with progress.stage("exports", "writing the exports"):
         for name, export in EXPORTS.items():
             export(findings, folder / name)

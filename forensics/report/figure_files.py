@@ -5,10 +5,10 @@ from __future__ import annotations
 import re
 from pathlib import Path
 
+from forensics.report.drawing import png
 from forensics.report.elements import Picture, Report
 from forensics.report.figures.spare import hand_back
 from forensics.report.figures.style import house_style
-from forensics.report.render import png
 
 _NOT_LETTERS = re.compile(r"[^a-z0-9]+")
 

@@ -28,7 +28,7 @@ import psutil
 import cases
 
 COMPUTATION = ("reading", "well", "rig", "calibration", "replay", "draws", "episodes", "flips")
-OTHER = ("imports", "figures", "exports")
+OTHER = ("imports", "figures", "pdf", "exports")
 
 # Runs in a process of its own, so that imports and peak memory are the job's alone.
 CHILD = """

@@ -18,7 +18,7 @@ from pipelines.output import RESULTS
 JOB = cases.Job(duration=3700.0)
 STAGES = {
     "imports", "reading", "well", "rig", "calibration", "replay", "draws", "episodes", "profiles", "flips",
-    "figures", "exports",
+    "figures", "pdf", "exports",
 }  # fmt: skip
 
 
@@ -34,7 +34,7 @@ def result(case):
 
 def test_writes_every_result(result):
     asked_for = {"history.las", "figures"}
-    assert {path.name for path in result.folder.iterdir()} == RESULTS - {"report.pdf"} - asked_for
+    assert {path.name for path in result.folder.iterdir()} == RESULTS - asked_for
 
 
 def test_summary_keeps_to_the_schema(result):

@@ -3,10 +3,10 @@
 import pytest
 
 from forensics.report.describe import make_scene
+from forensics.report.drawing import png
 from forensics.report.figures import depths, timeline
 from forensics.report.figures.spare import hand_back, lay_out, spare_sheets
 from forensics.report.figures.style import house_style
-from forensics.report.render import png
 
 
 @pytest.fixture
