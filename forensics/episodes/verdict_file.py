@@ -1,6 +1,6 @@
 """`verdicts.csv`: what the engineer makes of the episodes, kept by hand beside the case.
 
-One row a verdict, as CSV with a header; lines that start with # are passed over.
+One row a verdict, as CSV with a header; lines that start with #, and columns of other names, are passed over.
 
 ========= =========================================================================================
 column    holds
@@ -19,6 +19,7 @@ id        optional: the episode's id when the verdict was given; ids change betw
 
 from __future__ import annotations
 
+import difflib
 from dataclasses import dataclass
 from pathlib import Path
 from typing import TypeVar
@@ -26,9 +27,10 @@ from typing import TypeVar
 from forensics.case import Case
 from forensics.episodes.catalogue import Kind, Word
 from forensics.episodes.causes.names import Cause
-from forensics.errors import TableError, legible, nearest
+from forensics.errors import TableError, legible, nearest, no_file
 from forensics.logs.table_stamps import table_stamps
-from forensics.tables import NULLS, Column, Table, decode, read_table
+from forensics.tables import NULLS, Column, Table, decode, plain, read_table
+from forensics.tables.reader import LARGEST
 
 W = TypeVar("W", Word, Cause, Kind)
 
@@ -95,8 +97,7 @@ def read_verdicts(case: Case) -> tuple[WrittenVerdict, ...]:
     if path is None or not has_rows(path):
         return ()
     table = read_table(path, COLUMNS)
-    if "verdict" not in table.headers:
-        raise TableError("has no column 'verdict'; accept, reject or relabel is needed there", file=path)
+    _check_columns(table)
     ends = [table_stamps(table, case.logs.timezone, clock=name, date="") for name in ("start", "end")]
     read = []
     for row in range(len(table)):
@@ -114,10 +115,23 @@ def read_verdicts(case: Case) -> tuple[WrittenVerdict, ...]:
 def has_rows(path: Path) -> bool:
     """Whether a file holds more than its header: a run without episodes gives a draft without rows."""
     try:
-        lines = decode(path.read_bytes()).splitlines()
+        lines = decode(path.read_bytes()).splitlines() if no_file(path, LARGEST) is None else []
     except OSError:
-        return True  # the reader of tables says why it can't be read
+        lines = []
+    # Where there are no lines at all, the reader of tables says what is wrong with the file.
     return sum(line.strip()[:1] not in ("", "#") for line in lines) != 1
+
+
+def _check_columns(table: Table) -> None:
+    """Refuse a table without verdicts, or with a header so near to one of ours that it must be meant."""
+    absent = {plain(column.name): column.name for column in COLUMNS if column.name not in table.headers}
+    for header in table.ignored:
+        for key in difflib.get_close_matches(plain(header), absent, n=1, cutoff=0.75):
+            said = f"has a column {legible(header)!r}; did you mean {absent[key]!r}?"
+            raise TableError(said, file=table.file)
+    if "verdict" in absent:
+        said = "has no column 'verdict'; accept, reject or relabel is needed there"
+        raise TableError(said, file=table.file)
 
 
 def _written(table: Table, row: int, word: Word, span: tuple[float, float]) -> WrittenVerdict:

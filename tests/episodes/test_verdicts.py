@@ -98,6 +98,13 @@ def test_a_file_without_the_column_is_refused(tmp_path):
         read(tmp_path, SPAN, head="start,end\n")
 
 
+def test_a_header_spelt_nearly_right_is_refused_and_a_strange_one_passed_over(tmp_path):
+    row = f"{SPAN},accept,seen"
+    with pytest.raises(TableError, match="did you mean 'note'"):
+        read(tmp_path, row, head="start,end,verdict,notte\n")
+    assert [w.note for w in read(tmp_path, row, head="start,end,verdict,who\n")] == [""]
+
+
 def test_a_file_beside_the_case_is_taken_and_said(tmp_path):
     read(tmp_path, f"{SPAN},,,,reject,,,")
     case = case_in(tmp_path)
