@@ -8,6 +8,7 @@ import numpy as np
 import pytest
 
 from explored import with_course
+from forensics.episodes.catalogue import Verdict, Word
 from forensics.report.describe import make_scene
 from forensics.report.explore.content import content_of
 from forensics.report.explore.page import as_script_data, render_explorer
@@ -86,6 +87,20 @@ def test_names_with_markup_come_out_escaped(build, build_case):
     assert "<script>alert" not in page
     assert "\u202e" not in own_part(page)
     assert told(page)["hole"][0]["name"].startswith("</script><script>alert(1)")
+
+
+def test_engineers_verdict_stands_in_the_list(build):
+    found = build(n=400, episodes=2)
+    rejected = replace(found.episodes[0], verdict=Verdict(Word.REJECT))
+    page = own_part(render(replace(found, episodes=(rejected, *found.episodes[1:]))))
+    lines = re.findall(r"<option[^>]*>(.*?)</option>", page)
+    assert [line.endswith("rejected by the engineer") for line in lines] == [True, False]
+
+
+def test_thresholds_of_the_case_are_marked_and_no_band_is_made_up(page):
+    tracks = {track["name"]: track for track in told(page)["tracks"]}
+    assert tracks["load ratio"]["band"] is None, "no draws, no band"
+    assert [mark["at"] for mark in told(page)["ratio_marks"]] == [1.0, 1.41]
 
 
 def test_script_data_can_not_end_its_element():

@@ -10,7 +10,7 @@ import numpy as np
 from matplotlib.colors import to_hex
 from numpy.typing import NDArray
 
-from forensics.episodes.catalogue import Episode, Kind
+from forensics.episodes.catalogue import Episode, Kind, Word
 from forensics.replay.bands import band
 from forensics.report.explore.levels import Pack, level, level_times, steps
 from forensics.report.figures import lanes, style
@@ -32,6 +32,13 @@ BARS = 20_000
 # A threshold further out than so many times the largest load is drawn there.
 FAR = 4.0
 
+# What a figure's caption tells, its label tells here.
+LABELS = {("hookload", "model"): "model, off bottom"}
+SAID = {
+    Word.ACCEPT: "accepted by the engineer",
+    Word.REJECT: "rejected by the engineer",
+    Word.RELABEL: "relabelled by the engineer",
+}
 DASHES = {"-": "solid", "--": "dashed"}
 
 
@@ -83,7 +90,7 @@ def content_of(scene: Scene) -> tuple[Content, Pack]:
         "end": max(end, start + 1.0) - start,
         "offset": show.moment(start).utcoffset().total_seconds(),  # type: ignore[union-attr]
         "zone": zone_words(show, show.moment(start)),
-        "interval": log.interval,
+        "interval": log.interval if np.isfinite(log.interval) else 1.0,
         "levels": _times(pack, log.time - start),
         "tracks": [_track(pack, show, *pair) for pair in tracks_of(scene)],
         "ratio_marks": ratio_marks(found),
@@ -129,7 +136,7 @@ def _track(pack: Pack, show: Show, track: Track, under: Band | None) -> Content:
             continue
         curves.append({
             "key": _series(pack, f"{track.name}/{k}", show.scaled(curve.values, track.quantity)),
-            "label": curve.label or track.name,
+            "label": LABELS.get((track.name, curve.label), curve.label or track.name),
             "colour": curve.colour,
             "width": curve.width + 0.3,
             "dash": DASHES[curve.dash],
@@ -279,4 +286,6 @@ def episode_words(show: Show, episode: Episode) -> str:
     lost = episode.lost_weight.value
     if np.isfinite(lost) and lost > 0.0:
         parts.append(f"{show.value(lost, 'force')} short of the bit")
+    if episode.word is not None:
+        parts.append(SAID[episode.word])
     return ", ".join(parts)

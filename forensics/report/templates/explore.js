@@ -248,6 +248,7 @@
   }
 
   // ---- the window: which level, which part of it, and the scales that go with it ----------------------------
+  let shown = 0, resting = 0; // time last shown, and what waits for rest
   let held = null; // what the sources hold: level, and the time from and to
 
   function wanted() {
@@ -265,7 +266,11 @@
       fill(level, held.from, held.to);
       document.documentElement.dataset.level = told.levels[level];
     }
-    scale(level, from, to);
+    // While the window slides the scales wait for it to come to rest: new ones cost as much as all else.
+    clearTimeout(resting);
+    const rescale = () => scale(level, from, to);
+    if (Math.abs(apart - shown) > 1e-3 * apart) rescale(); else resting = setTimeout(rescale, 120);
+    shown = apart;
     placeMarks();
   }
 
