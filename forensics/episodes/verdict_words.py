@@ -45,7 +45,8 @@ def rejections(episodes: Sequence[Episode]) -> tuple[str, ...]:
     count = wording.times(len(out), "episode")
     said = f"{count} rejected by the engineer, left out of finding, groups and counts"
     inside = [e.id for e in standing(episodes) if any(o.start <= e.start and e.end <= o.end for o in out)]
-    left = f" Inside, {', '.join(inside[:TOLD])} not rejected, still counted." if inside else ""
+    rest = f" and {len(inside) - TOLD} more" if len(inside) > TOLD else ""
+    left = f" Within their time, still counted: {', '.join(inside[:TOLD])}{rest}." if inside else ""
     return (f"{said}: {', '.join(named)}{more}.{left}",)
 
 

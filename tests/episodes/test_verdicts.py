@@ -250,3 +250,6 @@ def test_buckling_did_not_lead_to_a_lockup_that_was_rejected(buckled):
     assert kept.episodes[0].consequence is Consequence.LOCKED_UP
     outer = tell(buckled, replace(weighed, episodes=(replace(first, verdict=Verdict(Word.REJECT)), lock)))
     assert outer.families == ()
+    inside = replace(lock, verdict=None)
+    named = tell(buckled, replace(weighed, episodes=(replace(first, verdict=Verdict(Word.REJECT)), inside)))
+    assert any("Within their time, still counted: E900." in line for line in named.headline.details)
