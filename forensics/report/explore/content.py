@@ -16,7 +16,7 @@ from forensics.report.explore.levels import Pack, level, level_times, steps
 from forensics.report.figures import lanes, style
 from forensics.report.figures.timeline import Curve, Track, run_tracks
 from forensics.report.scene import Scene, main_episodes
-from forensics.report.words import Show, fixed, plain
+from forensics.report.words import Show, duration, fixed, plain
 from forensics.rig.view import Activity
 
 if TYPE_CHECKING:
@@ -57,9 +57,10 @@ def tracks_of(scene: Scene) -> list[tuple[Track, Band | None]]:
     loads = found.loads
     largest = Curve(loads.peak_ratio, "largest anywhere", style.HELICAL, 1.2)
     ratio = Track("load ratio", "dimensionless", (largest,), 0.95)
+    low, high = band(found.draws, "peak_ratio", loads.peak_ratio)
     bands = {
         "weight on bit": Band(*band(found.draws, "bit_load", loads.bit_load), style.BIT),
-        "load ratio": Band(*band(found.draws, "peak_ratio", loads.peak_ratio), style.HELICAL),
+        "load ratio": Band(np.maximum(low, 0.0), high, style.HELICAL),
     }
     shown = run_tracks(scene)
     if ratio.present:
@@ -219,6 +220,7 @@ def _map(pack: Pack, scene: Scene, start: float) -> Content | None:
         "columns": int(classes.shape[1]),
         "from": float(grid.time_edges[0]) - start,
         "to": float(grid.time_edges[-1]) - start,
+        "bin": duration(float(grid.time_edges[1] - grid.time_edges[0])),
         "bottom": float(scene.show.scaled(grid.md_edges[-1], "length")),
         "palette": shades,
         "edges": [float(edge) for edge in edges],
@@ -280,12 +282,13 @@ def episode_words(show: Show, episode: Episode) -> str:
     """Put an episode in a line: when, what, how bad, what it cost."""
     what = plain(episode.state) if episode.kind is Kind.BUCKLING else plain(episode.kind)
     parts = [episode.id, show.time(episode.start)[5:16], what]
-    ratio = episode.peak_load_ratio.value
-    if np.isfinite(ratio) and ratio > 0.0:
-        parts.append(f"load ratio {fixed(ratio, 2)}")
-    lost = episode.lost_weight.value
-    if np.isfinite(lost) and lost > 0.0:
-        parts.append(f"{show.value(lost, 'force')} short of the bit")
+    ratio, lost = episode.peak_load_ratio.value, episode.lost_weight.value
+    if episode.peak_residual is not None:
+        quantity = "moment" if episode.kind is Kind.TORQUE else "force"
+        parts.append(f"{show.value(episode.peak_residual.value, quantity)} off the model")
+    else:
+        parts += [f"load ratio {fixed(ratio, 2)}"] if ratio > 0.0 else []
+        parts += [f"{show.value(lost, 'force')} short of the bit"] if lost > 0.0 else []
     if episode.word is not None:
         parts.append(SAID[episode.word])
     return ", ".join(parts)

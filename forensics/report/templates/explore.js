@@ -220,6 +220,7 @@
 
   function addMap(map) {
     const at = row("load ratio by depth", told.units.length, "Map of the load ratio over time and measured depth, with the path of the bit");
+    put(at.left, "span", `largest in each ${map.bin}`, "unit");
     const made = figure(230, new Bokeh.Range1d({ start: map.bottom, end: 0 }), {});
     const image = new (Bokeh.require("core/util/ndarray").Uint8NDArray)(array("map").codes.slice(), [map.rows, map.columns]);
     const source = new Bokeh.ColumnDataSource({ data: { image: [image] } });
