@@ -12,7 +12,7 @@ from pypdf.generic import ArrayObject, DictionaryObject, FloatObject, NameObject
 from reportlab.platypus import Flowable, Paragraph
 
 from forensics.report.drawing import Drawn
-from forensics.report.pdf_text import marked, style
+from forensics.report.pdf_text import marked, shortened, style
 
 if TYPE_CHECKING:
     from pypdf import PageObject
@@ -34,7 +34,7 @@ class FigureBox(Flowable):
         self.drawn, self.pages = drawn, pages
         self.spaceBefore, self.spaceAfter = 8.0, 10.0
         lead = f"<b>Figure {drawn.number}.</b> "
-        self.caption = Paragraph(lead + marked(drawn.caption[:1500]), style(8.0))
+        self.caption = Paragraph(lead + marked(shortened(drawn.caption, 1500)), style(8.0))
         _, self.under = self.caption.wrap(min(width, 640.0), height)
         self.wide, self.tall = (_INCH * side for side in drawn.size)
         self.full = min(1.0, width / self.wide, (height - self._words - 20.0) / self.tall)

@@ -21,7 +21,9 @@ from forensics.report.pdf_text import (
     WINE,
     broken,
     cut,
+    face,
     readable,
+    shortened,
 )
 
 if TYPE_CHECKING:
@@ -112,7 +114,9 @@ class Heading(Flowable):
     def __init__(self, title: str, layout: Layout, number: str = "") -> None:
         super().__init__()
         self.number, self.size = number, 13.0 if number else 10.5
-        self.lines = broken(readable(title)[:400], SERIF, self.size, layout.width - 30.0)
+        title = shortened(readable(title), 400)
+        self.font = face(SERIF, title)
+        self.lines = broken(title, self.font, self.size, layout.width - 30.0)
         self.spaceBefore, self.spaceAfter = (14.0 if number else 10.0), 5.0
 
     def wrap(self, width: float, _: float) -> tuple[float, float]:
@@ -135,6 +139,6 @@ class Heading(Flowable):
             canvas.setLineWidth(4.0)
             canvas.line(2.0, 1.0, 2.0, top)
         canvas.setFillColor(INK)
-        canvas.setFont(SERIF, self.size)
+        canvas.setFont(self.font, self.size)
         for k, line in enumerate(self.lines):
             canvas.drawString(22.0 if self.number else 10.0, top - self.size - k * step, line)

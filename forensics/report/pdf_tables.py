@@ -19,7 +19,9 @@ from forensics.report.pdf_text import (
     PROSE,
     SOFT,
     broken,
+    face,
     readable,
+    shortened,
     width_of,
 )
 
@@ -29,8 +31,10 @@ if TYPE_CHECKING:
 #: Rows shown of one table. What holds more than that is a data file, and the files beside the report have it.
 ROW_CAP = 500
 _GAP, _PAD, _LEADING = 9.0, 2.4, 1.3
+# A table no taller than this is not split [pt].
+_WHOLE = 190.0
 # A row taller than this goes on as another, so that no row outgrows a page [lines].
-_TALLEST = 24
+_TALLEST, _TALLEST_HEAD = 20, 8
 _WIDEST_WORD = 130.0
 _SIZES = (8.0, 7.2)
 _CAPTION, _NOTE = 8.2, 7.2
@@ -120,7 +124,7 @@ def _grid(content: _Content, width: float, size: float) -> Grid:
     look = _look(heads, content.aligns, shown, width, size)
     head = Row(
         tuple(
-            tuple(Word(line) for line in broken(text, BOLD, size, wide))
+            tuple(Word(line) for line in _first_lines(broken(text, BOLD, size, wide)))
             for text, wide in zip(heads, look.widths, strict=True)
         )
     )
@@ -128,9 +132,13 @@ def _grid(content: _Content, width: float, size: float) -> Grid:
     for row, kept in zip(shown, content.kept, strict=True):
         across = zip(row, look.fonts, look.widths, strict=True)
         rows += _portions(Row(tuple(_set_cell(cell, font, size, wide) for cell, font, wide in across), kept))
-    caption = tuple(broken(readable(content.caption), BOLD, _CAPTION, width))
-    note = broken(readable(content.note), BODY, _NOTE, min(width, PROSE)) if content.note else []
+    caption = tuple(broken(shortened(readable(content.caption), 900), BOLD, _CAPTION, width))
+    note = broken(shortened(readable(content.note), 1600), BODY, _NOTE, PROSE) if content.note else []
     return Grid(caption, tuple(note), look, head, tuple(rows))
+
+
+def _first_lines(lines: list[str]) -> list[str]:
+    return lines if len(lines) <= _TALLEST_HEAD else [*lines[: _TALLEST_HEAD - 1], "…"]
 
 
 def _readable(line: str | Linked) -> str | Linked:
@@ -143,7 +151,10 @@ def _look(
     heads: Sequence[str], aligns: Sequence[str], rows: Sequence[tuple[Cell, ...]], width: float, size: float
 ) -> Look:
     """Share the width out: what a column needs first, the rest by how much it has to say."""
-    fonts = tuple(CODE if align == "code" else BODY for align in aligns)
+    fonts = tuple(
+        face(CODE, *(_plain(line) for row in rows for line in row[k])) if align == "code" else BODY
+        for k, align in enumerate(aligns)
+    )
     right = tuple(align == "number" for align in aligns)
     least, best = [], []
     for k, head in enumerate(heads):
@@ -214,8 +225,9 @@ class Grid(Flowable):
 
     @property
     def least(self) -> float:
-        """Height under which the table does not begin on a page: head and a few rows [pt]."""
-        return self.top + sum(self.look.height(row) for row in self.rows[:3])
+        """Height under which the table does not begin on a page: a small one stays whole [pt]."""
+        _, whole = self.wrap(0.0, 0.0)
+        return whole if whole <= _WHOLE else self.top + sum(self.look.height(row) for row in self.rows[:3])
 
     def wrap(self, width: float, _: float) -> tuple[float, float]:
         """Say how much room it takes [pt]."""
@@ -230,9 +242,9 @@ class Grid(Flowable):
             if used > room:
                 break
             count += 1
-        # The last row takes the note with it.
-        count = min(count, len(self.rows) - 1)
-        if count < 1:
+        # The last two rows stay together, and take the note with them.
+        count = min(count, max(len(self.rows) - 2, 1))
+        if count in (0, len(self.rows)):
             return []
         first = Grid(self.caption, (), self.look, self.head, self.rows[:count])
         rest = Grid(self.caption, self.note, self.look, self.head, self.rows[count:])

@@ -21,6 +21,8 @@ from forensics.errors import legible
 # Matplotlib ships these, the figures are lettered in them, and they know more scripts than a PDF's own.
 BODY, BOLD, CODE, SERIF = "DejaVuSans", "DejaVuSans-Bold", "DejaVuSansMono", "DejaVuSerif-Bold"
 
+_PLAIN = {BODY: BODY, BOLD: BOLD, CODE: BODY, SERIF: BOLD}
+
 INK, SOFT, LINE, FAINT = (HexColor(c) for c in ("#1b2733", "#55616c", "#cfd4d8", "#eceff1"))
 OCHRE, WINE, TEAL, LINK = (HexColor(c) for c in ("#c77f0a", "#7a1f3d", "#0b4f4a", "#1d5f8a"))
 
@@ -32,16 +34,22 @@ _LONGEST = 2500
 
 
 @cache
-def load_fonts() -> frozenset[int]:
-    """Make the typefaces known to the PDF library; give the letters that all of them have."""
+def load_fonts() -> dict[str, frozenset[int]]:
+    """Make the typefaces known to the PDF library; give the letters that each has."""
     folder = Path(mpl.get_data_path()) / "fonts" / "ttf"
-    known = []
+    known = {}
     for name in (BODY, BOLD, CODE, SERIF):
         font = TTFont(name, str(folder / f"{name}.ttf"))
         pdfmetrics.registerFont(font)
-        known.append(frozenset(font.face.charToGlyph))
+        known[name] = frozenset(font.face.charToGlyph)
     pdfmetrics.registerFontFamily(BODY, normal=BODY, bold=BOLD, italic=BODY, boldItalic=BOLD)
-    return known[0]
+    return known
+
+
+def face(font: str, *texts: str) -> str:
+    """Give the typeface if it has all letters of the texts, else the plain one of its weight."""
+    known = load_fonts()[font]
+    return font if all(text.isascii() or known.issuperset(map(ord, text)) for text in texts) else _PLAIN[font]
 
 
 def style(size: float, font: str = BODY, **more: object) -> ParagraphStyle:
@@ -67,7 +75,7 @@ def readable(text: str) -> str:
     text = legible(text)
     if text.isascii():
         return text
-    known = load_fonts()
+    known = load_fonts()[BODY] & load_fonts()[BOLD]
     text = "".join(c if ord(c) in known else f"<U+{ord(c):04X}>" for c in text)
     return _as_seen(text)
 
@@ -79,6 +87,9 @@ def marked(text: str) -> str:
 
 def paragraphs(text: str, look: ParagraphStyle, lead: str = "") -> Iterator[Paragraph]:
     """Set a text as one paragraph, or several where it is very long; `lead` is ready markup before it."""
+    font = face(look.fontName, readable(text))
+    if font != look.fontName:
+        look = ParagraphStyle(look.name, look, fontName=font)
     for start in range(0, max(len(text), 1), _LONGEST):
         yield Paragraph((lead if start == 0 else "") + marked(text[start : start + _LONGEST]), look)
 
@@ -122,6 +133,11 @@ def _pieces(word: str, font: str, size: float, width: float) -> list[str]:
             piece, used = "", 0.0
         piece, used = piece + letter, used + step
     return [*pieces, piece]
+
+
+def shortened(text: str, letters: int) -> str:
+    """Keep what must stay in one piece shorter than a page; an ellipsis shows where something is left out."""
+    return text if len(text) <= letters else text[:letters].rstrip() + "…"
 
 
 def cut(text: str, font: str, size: float, width: float) -> str:

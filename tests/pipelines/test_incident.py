@@ -8,6 +8,7 @@ import jsonschema
 import numpy as np
 import pandas as pd
 import pytest
+from pypdf import PdfReader
 
 import cases
 from forensics.errors import InputError
@@ -107,6 +108,8 @@ def test_results_go_to_reports_by_default(case, tmp_path, monkeypatch, capsys):
     assert cli.main(["incident", str(case), "--units", "field"]) == 0
     captured = capsys.readouterr()
     assert (tmp_path / "reports" / "heron-1-run-2" / "report.html").is_file()
+    pdf = PdfReader(tmp_path / "reports" / "heron-1-run-2" / "report.pdf")
+    assert pdf.pages[0].mediabox.width == 792, "letter, on its side"
     assert "klbf" in captured.out
     assert captured.err == "", "no progress where nobody watches"
 
@@ -114,6 +117,11 @@ def test_results_go_to_reports_by_default(case, tmp_path, monkeypatch, capsys):
 def test_unknown_units_are_refused(case):
     with pytest.raises(InputError, match="units are 'cubits'; expected 'metric' or 'field'"):
         incident.run(case, units="cubits")
+
+
+def test_unknown_paper_is_refused(case):
+    with pytest.raises(InputError, match="paper is 'a3'; expected 'a4' or 'letter'"):
+        incident.run(case, paper="a3")
 
 
 def test_fault_in_the_report_leaves_earlier_results(case, tmp_path, monkeypatch):

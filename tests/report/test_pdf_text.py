@@ -2,7 +2,7 @@
 
 import pytest
 
-from forensics.report.pdf_text import BODY, broken, cut, readable, width_of
+from forensics.report.pdf_text import BODY, BOLD, CODE, SERIF, broken, cut, face, readable, width_of
 
 
 def test_lines_fit_and_nothing_is_lost():
@@ -45,3 +45,10 @@ def test_a_line_cut_short_says_so():
 )
 def test_what_is_seen(said, seen):
     assert readable(said) == seen
+
+
+def test_letters_a_typeface_lacks_are_set_in_a_plainer_one():
+    assert face(SERIF, "Kestrel", "") == SERIF
+    assert face(SERIF, "Kestrel", "באר") == BOLD
+    assert face(CODE, "באר") == BODY
+    assert face(BODY, "באר") == BODY

@@ -289,6 +289,14 @@ def test_a_very_long_text_is_carried_over():
     assert text_of(read(to_pdf(report))).count("word") == 5 * 6000
 
 
+def test_words_that_stand_whole_are_cut_short_before_they_outgrow_a_page():
+    endless = "on and on " * 2000
+    table = Table(endless, (Column(endless), Column("n")), (("a", "b"),), endless)
+    picture = dataclasses.replace(PICTURE, caption=endless)
+    reader = read(to_pdf(made(table, picture, parts=(Part("p", endless, (Text("x"),)),))))
+    assert text_of(reader).count("…") == 5
+
+
 def test_links_of_cells_lead_to_their_figures():
     table = Table("T", (Column("x"), Column("y")), ((Linked("seen in", "the strip", "here"), "b"),))
     filler = [Text("more")] * 40
@@ -315,3 +323,11 @@ def test_no_episode_and_very_many(build):
 
 def test_a_long_log_gives_a_file_that_mail_takes(build):
     assert len(to_pdf(describe(build(n=172_800, episodes=300)))) < 10e6
+
+
+def test_the_tallest_of_everything_still_finds_a_page():
+    cell = tuple(f"line {k}" for k in range(400))
+    table = Table("c " * 2000, (Column("h " * 2000), Column("n")), ((cell, "b"),), "n " * 2000)
+    picture = dataclasses.replace(PICTURE, caption="c " * 2000)
+    for paper in ("a4", "letter"):
+        assert len(read(to_pdf(made(table, table, picture, title="t " * 2000), paper)).pages) > 10
