@@ -44,7 +44,7 @@ DASHES = {"-": "solid", "--": "dashed"}
 
 @dataclass(frozen=True)
 class Band:
-    """A 90 % band drawn behind a track's curves: lower and upper end [SI], its colour."""
+    """The 90 % band of a track's last curve: lower and upper end [SI], its colour."""
 
     low: Floats
     high: Floats

@@ -140,7 +140,7 @@
     return { value: put(item, "b"), unit };
   }
 
-  function addCurve(made, track, curve, levels) {
+  function addCurve(made, curve, levels) {
     const source = new Bokeh.ColumnDataSource({ data: { x: [], y: [] } });
     made.line({
       x: { field: "x" }, y: { field: "y" }, source, line_color: curve.colour, line_width: curve.width, line_dash: curve.dash,
@@ -168,7 +168,7 @@
       mine.push(band);
     }
     for (const curve of track.curves) {
-      const drawn = addCurve(made, track, curve, levelsOf(curve.key));
+      const drawn = addCurve(made, curve, levelsOf(curve.key));
       drawn.shown = named(at.values, curve, track.unit);
       mine.push(drawn);
     }
@@ -236,7 +236,7 @@
       }));
     }
     const bit = told.tracks.flatMap((track) => track.curves).find((curve) => curve.label === "bit");
-    const mine = bit ? [addCurve(made, null, { ...bit, scales: false }, levelsOf(bit.key))] : [];
+    const mine = bit ? [addCurve(made, { ...bit, scales: false }, levelsOf(bit.key))] : [];
     const names = map.edges.map((edge, k) => (k === 4 ? `${edge} sinusoidal` : k === 5 ? `${edge} helical, about` : `${edge}`));
     [...names.keys()].reverse().forEach((k) => {
       const item = put(at.values, "li");
