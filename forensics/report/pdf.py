@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import io
-from collections.abc import Iterator
+from collections.abc import Iterable, Iterator
 from typing import TYPE_CHECKING
 
 from reportlab.lib.pagesizes import A4, LETTER, landscape
@@ -55,11 +55,11 @@ def to_pdf(report: Report, paper: str = "a4") -> bytes:
     load_fonts()
     report = draw_figures(report, vector=True)
     width, height = SHEETS[paper]
-    layout = Layout(width - 2 * _MARGIN, height - _MARGIN - _FOOT)
+    figures = {e.number: e for section in report.sections for e in _elements(section) if isinstance(e, Drawn)}
+    layout = Layout(width - 2 * _MARGIN, height - _MARGIN - _FOOT, _anchors(report, figures.values()))
     buffer = io.BytesIO()
     document = _Document(buffer, report, layout, SHEETS[paper])
     document.build(list(story(report, layout)))
-    figures = {e.number: e for section in report.sections for e in _elements(section) if isinstance(e, Drawn)}
     return fill_boxes(buffer.getvalue(), figures, layout.figures)
 
 
@@ -67,6 +67,11 @@ def _elements(section: Section) -> Iterator[object]:
     yield from section.elements
     for part in section.parts:
         yield from part.elements
+
+
+def _anchors(report: Report, figures: Iterable[Drawn]) -> frozenset[str]:
+    parts = (part.id for section in report.sections for part in section.parts)
+    return frozenset((*(s.id for s in report.sections), *parts, *(figure.anchor for figure in figures)))
 
 
 class _Document(BaseDocTemplate):

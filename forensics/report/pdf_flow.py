@@ -104,7 +104,7 @@ def _element(element: object, layout: Layout) -> Iterator[Flowable]:
         case Numbers():
             yield set_numbers(element, layout.width)
         case Table() if element.rows:
-            yield set_table(element, layout.width)
+            yield set_table(element, layout.width, layout.anchors)
         case Table():
             yield Paragraph(f"<b>{marked(element.caption)}:</b> {marked(element.empty)}", prose)
         case Drawn():

@@ -35,10 +35,11 @@ PAGES = "number-of-pages"
 
 @dataclass
 class Layout:
-    """What the layout learns on its way: the page of each section and figure; room on a sheet [pt]."""
+    """Room on a sheet [pt], what links can lead to, and the page of each section and figure."""
 
     width: float
     height: float
+    anchors: frozenset[str]
     sections: dict[str, int] = field(default_factory=dict)
     figures: dict[int, int] = field(default_factory=dict)
 

@@ -93,9 +93,10 @@ class _Content:
     kept: Sequence[bool]
 
 
-def set_table(table: Table, width: float) -> Grid:
-    """Set a table over a page's width [pt]."""
-    rows = [tuple(c if isinstance(c, tuple) else (c,) for c in row) for row in table.rows[:ROW_CAP]]
+def set_table(table: Table, width: float, anchors: frozenset[str]) -> Grid:
+    """Set a table over a page's width [pt]; a link to an anchor that is not there stays as words."""
+    cells = [[c if isinstance(c, tuple) else (c,) for c in row] for row in table.rows[:ROW_CAP]]
+    rows = [tuple(tuple(_leading(line, anchors) for line in cell) for cell in row) for row in cells]
     notes = [table.note] if table.note else []
     if len(table.rows) > ROW_CAP:
         notes.insert(0, f"The first {ROW_CAP} of {len(table.rows)} rows; report.html has them all.")
@@ -116,6 +117,10 @@ def set_numbers(numbers: Numbers, width: float) -> Grid:
     kept = [not n.determined for n in numbers.rows]
     content = _Content(numbers.caption, heads, aligns, rows, _KEPT if any(kept) else "", kept)
     return _grid(content, width, _SIZES[0])
+
+
+def _leading(line: str | Linked, anchors: frozenset[str]) -> str | Linked:
+    return line if isinstance(line, str) or line.anchor in anchors else _plain(line)
 
 
 def _grid(content: _Content, width: float, size: float) -> Grid:

@@ -331,3 +331,10 @@ def test_the_tallest_of_everything_still_finds_a_page():
     picture = dataclasses.replace(PICTURE, caption="c " * 2000)
     for paper in ("a4", "letter"):
         assert len(read(to_pdf(made(table, table, picture, title="t " * 2000), paper)).pages) > 10
+
+
+def test_a_link_to_what_this_report_has_not_is_left_out():
+    table = Table("T", (Column("x"), Column("y")), ((Linked("seen in", "the strip", "nowhere"), "b"),))
+    reader = read(to_pdf(made(table)))
+    assert "seeninthestrip" in text_of(reader)
+    assert len(reader.pages[0]["/Annots"]) == 1, "the contents' alone"
