@@ -69,7 +69,7 @@ def course(run: Replay, loads: LoadHistory, peaks: Sequence[int]) -> Course:
     shape = (len(rows), STATIONS)
     md, tension, sinusoidal, helical = (np.full(shape, np.nan, dtype=np.float32) for _ in range(4))
     state = np.zeros(shape, dtype=np.int8)
-    for k, profile in enumerate(profiles_in_turn(run, rows.tolist())):
+    for k, profile in enumerate(profiles_in_turn(run, rows.tolist(), spare=False)):
         at = worst_places(profile)
         part = slice(0, len(at))
         md[k, part], tension[k, part] = profile.md[at], profile.tension[at]

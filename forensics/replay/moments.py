@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Iterator, Sequence
+from dataclasses import replace
 
 import numpy as np
 from numba import njit
@@ -39,7 +40,7 @@ def profiles(run: Replay, rows: Sequence[int]) -> tuple[Profile, ...]:
     return tuple(taken[row] for row in rows)
 
 
-def profiles_in_turn(run: Replay, rows: Iterable[int]) -> Iterator[Profile]:
+def profiles_in_turn(run: Replay, rows: Iterable[int], spare: bool = True) -> Iterator[Profile]:
     """Axial load along the hole at the given rows of the log, each once, in order of time.
 
     Parameters
@@ -48,6 +49,8 @@ def profiles_in_turn(run: Replay, rows: Iterable[int]) -> Iterator[Profile]:
         Made ready.
     rows : iterable of int
         Rows of the log.
+    spare : bool
+        Whether to reckon what more slacking off would have brought: half of what a profile costs.
 
     Yields
     ------
@@ -62,7 +65,8 @@ def profiles_in_turn(run: Replay, rows: Iterable[int]) -> Iterator[Profile]:
             carried = fresh(run.model)
         go(at, take(samples, slice(max(lead, done), row + 1)), run.rules, carried)
         done = row + 1
-        yield _profile(run, at, carried[0], row)
+        found = _profile(run, at, carried[0], row)
+        yield replace(found, slack_off=slack_off(at, carried[0], samples, row)) if spare else found
 
 
 def critical_load(run: Replay, row: int, md: float) -> float:
@@ -129,5 +133,4 @@ def _profile(run: Replay, at: Setting, memory: Memory, row: int) -> Profile:
         helical=helical,
         contact=pressed,
         state=memory.state[: place.top + 1].copy(),
-        slack_off=slack_off(at, memory, samples, row),
     )
