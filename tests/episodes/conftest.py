@@ -36,9 +36,10 @@ class PlainHole:
 
 
 class PlainString:
-    """4000 m of one pipe of EA 600 MN: it gives 150 kN a metre."""
+    """4000 m of one pipe of EA 600 MN, which gives 150 kN a metre, above a motor."""
 
     ends = np.array([4000.0])
+    components = (SimpleNamespace(kind="motor"), SimpleNamespace(kind="drillpipe"))
 
     def values(self, name):
         """Property by component."""

@@ -8,6 +8,7 @@ from collections.abc import Mapping
 import numpy as np
 
 from forensics.episodes.catalogue import CauseView, Episode, Evidence
+from forensics.episodes.causes.excluded import excluded
 from forensics.episodes.causes.measures import MEASURES, Subject, take_all
 from forensics.episodes.causes.names import Cause
 from forensics.episodes.causes.strengths import Strengths, strengths
@@ -22,6 +23,9 @@ TIMES = 1.6
 BESIDE = 0.5
 
 UNTOLD = "can't be told apart"
+
+#: Stands for no chance at all where a likelihood ratio is told: a thousand to one against.
+NO_ROOM = -math.log(1000.0)
 
 
 def weigh(material: Material, usual: Usual, episode: Episode) -> tuple[str, tuple[CauseView, ...]]:
@@ -42,7 +46,34 @@ def weigh(material: Material, usual: Usual, episode: Episode) -> tuple[str, tupl
         All causes, likeliest first, with the evidence for and against each.
     """
     views = rank(take_all(Subject(material, usual, episode)), material.system)
+    views = without(views, excluded(material, episode))
     return name_cause(views), views
+
+
+def without(views: tuple[CauseView, ...], gone: Mapping[Cause, str]) -> tuple[CauseView, ...]:
+    """Take the chance of causes that the run leaves no room for and share it among the others.
+
+    Parameters
+    ----------
+    views : tuple of CauseView
+    gone : mapping of Cause to str
+        Why each is ruled out, which stands in place of its evidence.
+
+    Returns
+    -------
+    tuple of CauseView
+        Likeliest first.
+    """
+    left = sum(view.probability for view in views if view.cause not in gone)
+    told = [
+        CauseView(
+            view.cause, 0.0, (Evidence("ruled out", gone[Cause(view.cause)], NO_ROOM, "the case's tables"),)
+        )
+        if view.cause in gone
+        else CauseView(view.cause, view.probability / left, view.evidence)
+        for view in views
+    ]
+    return tuple(sorted(told, key=lambda v: -v.probability))
 
 
 def rank(
