@@ -28,7 +28,7 @@ import psutil
 import cases
 
 COMPUTATION = ("reading", "well", "rig", "calibration", "replay", "draws", "episodes", "flips")
-OTHER = ("imports", "figures", "pdf", "exports")
+OTHER = ("imports", "profiles", "figures", "pdf", "exports")
 
 # Runs in a process of its own, so that imports and peak memory are the job's alone.
 CHILD = """
@@ -143,7 +143,7 @@ def report(measured: dict, read: float) -> None:
         show(name, timings.get(name, 0.0), read)
     for name in sorted(set(timings) - {*COMPUTATION, *OTHER}):
         show(name, timings[name], read)
-    show("computation", computing, read, "(no imports, figures, exports; wanted: at most 40, aim 20)")
+    show("computation", computing, read, f"(no {', '.join(OTHER)}; wanted: at most 40, aim 20)")
     show("whole job", measured["whole"], read, f"= {rows / measured['whole']:,.0f} rows/s")
     show("process, from outside", measured["outside"], read)
     print(f"  peak memory           {measured['peak'] / 2**20:9.0f} MiB (wanted: at most 700 MB)")
